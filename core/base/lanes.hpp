@@ -1,0 +1,215 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// W numbers that travel together: one number each for W draws (or a plain double for W = 1).
+//
+// The same templates compute one run (W = 1) and a batch of eight draws (W = 8). Every operation here is the
+// same IEEE operation per lane for every W, and nothing is contracted (-ffp-contract=off), so a draw gives the
+// same bits alone and in a batch.
+
+#include <array>
+#include <cmath>
+#include <cstddef>
+#include <cstdint>
+#if defined(__AVX__)
+#include <immintrin.h>
+#endif
+
+#define HEADBAND_INLINE [[gnu::always_inline]] inline
+
+namespace headband::base {
+
+/// One T per lane, for what is not a double.
+template <class T, int W>
+using PerLane = std::array<T, static_cast<std::size_t>(W)>;
+
+/// Four doubles in one register. Lanes are built from these: g++ 12 takes wider vectors apart at every comparison.
+typedef double Quad [[gnu::vector_size(32)]];
+typedef std::int64_t QuadBits [[gnu::vector_size(32)]];
+
+/// Outcome of a comparison, all ones = true. W is 1 or a multiple of 4.
+template <int W>
+struct Mask {
+  static constexpr int parts = W / 4;
+  QuadBits part[parts];
+  [[nodiscard]] HEADBAND_INLINE bool operator[](int lane) const { return part[lane / 4][lane % 4] != 0; }
+  HEADBAND_INLINE void set(int lane, bool on) { part[lane / 4][lane % 4] = on ? -1 : 0; }
+};
+
+template <>
+struct Mask<1> {
+  bool bit;
+  [[nodiscard]] HEADBAND_INLINE bool operator[](int) const { return bit; }
+  HEADBAND_INLINE void set(int, bool on) { bit = on; }
+};
+
+/// W doubles, one per draw. Implicit from double (the same number in each lane).
+template <int W>
+struct Lanes {
+  static constexpr int parts = W / 4;
+  Quad part[parts];
+  Lanes() = default;
+  HEADBAND_INLINE Lanes(double x) {  // NOLINT(google-explicit-constructor)
+    for (auto& p : part) p = Quad{x, x, x, x};
+  }
+  [[nodiscard]] HEADBAND_INLINE double operator[](int lane) const { return part[lane / 4][lane % 4]; }
+  HEADBAND_INLINE void set(int lane, double x) { part[lane / 4][lane % 4] = x; }
+};
+
+template <>
+struct Lanes<1> {
+  double number;
+  Lanes() = default;
+  HEADBAND_INLINE Lanes(double x) : number(x) {}  // NOLINT(google-explicit-constructor)
+  [[nodiscard]] HEADBAND_INLINE double operator[](int) const { return number; }
+  HEADBAND_INLINE void set(int, double x) { number = x; }
+};
+
+#define HEADBAND_LANES_OPERATOR(op)                                                              \
+  template <int W>                                                                               \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, const Lanes<W>& b) {     \
+    if constexpr (W == 1) {                                                                      \
+      return Lanes<W>(a.number op b.number);                                                     \
+    } else {                                                                                     \
+      Lanes<W> r;                                                                                \
+      for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];              \
+      return r;                                                                                  \
+    }                                                                                            \
+  }                                                                                              \
+  template <int W>                                                                               \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, double b) {              \
+    return a op Lanes<W>(b);                                                                     \
+  }                                                                                              \
+  template <int W>                                                                               \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(double a, const Lanes<W>& b) {              \
+    return Lanes<W>(a) op b;                                                                     \
+  }                                                                                              \
+  template <int W>                                                                               \
+  HEADBAND_INLINE Lanes<W>& operator op##=(Lanes<W>& a, const Lanes<W>& b) {                     \
+    a = a op b;                                                                                  \
+    return a;                                                                                    \
+  }
+HEADBAND_LANES_OPERATOR(+)
+HEADBAND_LANES_OPERATOR(-)
+HEADBAND_LANES_OPERATOR(*)
+HEADBAND_LANES_OPERATOR(/)
+#undef HEADBAND_LANES_OPERATOR
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> operator-(const Lanes<W>& a) {
+  if constexpr (W == 1) {
+    return Lanes<W>(-a.number);
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = -a.part[i];
+    return r;
+  }
+}
+
+#define HEADBAND_LANES_COMPARE(op)                                                              \
+  template <int W>                                                                              \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, const Lanes<W>& b) {     \
+    if constexpr (W == 1) {                                                                     \
+      return Mask<W>{a.number op b.number};                                                     \
+    } else {                                                                                    \
+      Mask<W> r;                                                                                \
+      for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];             \
+      return r;                                                                                 \
+    }                                                                                           \
+  }                                                                                             \
+  template <int W>                                                                              \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, double b) {              \
+    return a op Lanes<W>(b);                                                                    \
+  }
+HEADBAND_LANES_COMPARE(<)
+HEADBAND_LANES_COMPARE(<=)
+HEADBAND_LANES_COMPARE(>)
+HEADBAND_LANES_COMPARE(>=)
+HEADBAND_LANES_COMPARE(==)
+#undef HEADBAND_LANES_COMPARE
+
+#define HEADBAND_MASK_OPERATOR(op, logical)                                                  \
+  template <int W>                                                                           \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Mask<W>& a, const Mask<W>& b) {    \
+    if constexpr (W == 1) {                                                                  \
+      return Mask<W>{a.bit logical b.bit};                                                   \
+    } else {                                                                                 \
+      Mask<W> r;                                                                             \
+      for (int i = 0; i < Mask<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];           \
+      return r;                                                                              \
+    }                                                                                        \
+  }
+HEADBAND_MASK_OPERATOR(&, &&)
+HEADBAND_MASK_OPERATOR(|, ||)
+#undef HEADBAND_MASK_OPERATOR
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Mask<W> operator!(const Mask<W>& a) {
+  if constexpr (W == 1) {
+    return Mask<W>{!a.bit};
+  } else {
+    Mask<W> r;
+    for (int i = 0; i < Mask<W>::parts; ++i) r.part[i] = ~a.part[i];
+    return r;
+  }
+}
+
+/// `yes` where the mask is set, else `no`. Both sides are evaluated.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> select(const Mask<W>& where, const Lanes<W>& yes, const Lanes<W>& no) {
+  if constexpr (W == 1) {
+    return Lanes<W>(where.bit ? yes.number : no.number);
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = where.part[i] ? yes.part[i] : no.part[i];
+    return r;
+  }
+}
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE bool any(const Mask<W>& m) {
+  if constexpr (W == 1) {
+    return m.bit;
+  } else {
+    QuadBits all = m.part[0];
+    for (int i = 1; i < Mask<W>::parts; ++i) all |= m.part[i];
+    return (all[0] | all[1] | all[2] | all[3]) != 0;
+  }
+}
+template <int W>
+[[nodiscard]] HEADBAND_INLINE bool all(const Mask<W>& m) {
+  return !any(!m);
+}
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> min(const Lanes<W>& a, const Lanes<W>& b) {
+  return select(b < a, b, a);
+}
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> max(const Lanes<W>& a, const Lanes<W>& b) {
+  return select(a < b, b, a);
+}
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> abs(const Lanes<W>& a) {
+  return select(a < Lanes<W>(0.0), -a, a);
+}
+
+/// Square root, correctly rounded in every lane.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> sqrt(const Lanes<W>& a) {
+  if constexpr (W == 1) {
+    return Lanes<W>(std::sqrt(a.number));
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) {
+#if defined(__AVX__)
+      r.part[i] = _mm256_sqrt_pd(a.part[i]);
+#else
+      for (int j = 0; j < 4; ++j) r.part[i][j] = std::sqrt(a.part[i][j]);
+#endif
+    }
+    return r;
+  }
+}
+
+}  // namespace headband::base

@@ -1,0 +1,49 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+
+#include "core/answers/study.hpp"
+#include "core/network/values.hpp"
+
+#include <atomic>
+#include <functional>
+#include <optional>
+#include <string>
+#include <vector>
+
+namespace headband::montecarlo {
+
+/// What the verb `band` asks beyond the case.
+struct BandOptions {
+  bool surge = false;                      ///< march every draw
+  int threads = 1;                         ///< >= 1
+  std::optional<unsigned long long> seed;  ///< overrides the case's
+  const std::atomic<bool>* stop = nullptr; ///< set by Ctrl-C: finish the block, keep what is done
+  std::function<void(long long done, long long all)> progress;  ///< called from the calling thread
+  std::string resume_file;                 ///< NAME.partial.h5 to take up; empty = start
+};
+
+/// What the band of a case says: blocks of a Study.
+struct BandOutcome {
+  answers::Bands bands;
+  std::vector<answers::LimitAnswer> limits;
+  std::vector<std::string> warnings;
+  bool stopped = false;    ///< by the user; `bands` holds the draws done
+  bool all_failed = false;
+};
+
+/// The central run's numbers the bands lean on.
+struct CentralRun {
+  std::vector<double> answer_value, limit_value;            ///< as Plan::answers, Plan::limits
+  std::vector<double> answer_grid_bound, limit_grid_bound;  ///< zero for steady answers; NaN = not converging
+  bool cavity = false;
+};
+
+/// Samples the case: draws, propagates, forms quantiles, probabilities, verdicts, budget.
+[[nodiscard]] BandOutcome run_band(const network::Case& c, const network::Plan& plan, const CentralRun& central,
+                                   const BandOptions& options);
+
+/// Scores of draw `draw` of the case's design: one uniform number per unknown, correlated as the case says.
+[[nodiscard]] std::vector<double> scores_of_draw(const network::Case& c, unsigned long long seed, long long draws,
+                                                 long long draw);
+
+}  // namespace headband::montecarlo
