@@ -31,7 +31,7 @@ typedef std::int64_t QuadBits [[gnu::vector_size(32)]];
 template <int W>
 struct Mask {
   static constexpr int parts = W / 4;
-  QuadBits part[parts];
+  QuadBits part[static_cast<std::size_t>(parts)];
   [[nodiscard]] HEADBAND_INLINE bool operator[](int lane) const { return part[lane / 4][lane % 4] != 0; }
   HEADBAND_INLINE void set(int lane, bool on) { part[lane / 4][lane % 4] = on ? -1 : 0; }
 };
@@ -47,7 +47,7 @@ struct Mask<1> {
 template <int W>
 struct Lanes {
   static constexpr int parts = W / 4;
-  Quad part[parts];
+  Quad part[static_cast<std::size_t>(parts)];
   Lanes() = default;
   HEADBAND_INLINE Lanes(double x) {  // NOLINT(google-explicit-constructor)
     for (auto& p : part) p = Quad{x, x, x, x};

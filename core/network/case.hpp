@@ -5,6 +5,7 @@
 // Filled by core/casefile, read by `validate`, `make_plan` and `realise`. Plain data, SI.
 
 #include "core/base/quantity.hpp"
+#include "core/friction/law.hpp"
 
 #include <array>
 #include <functional>
@@ -18,6 +19,8 @@ namespace headband::network {
 
 using base::Quantity;
 using base::SourcePlace;
+using friction::FrictionLaw;
+using friction::Transition;
 
 /// One weighted alternative of a model choice.
 template <class T>
@@ -257,17 +260,6 @@ struct Event {
   bool travel_in_shares = false;
   Quantity swing, period;
   int tripping = 0;  ///< pumps of a set that trip; 0 = all
-};
-
-enum class FrictionLaw {
-  colebrook_white, haaland, swamee_jain, serghides, zigrang_sylvester, churchill, smooth, hazen_williams, manning, none
-};
-
-/// How laminar and turbulent factors join.
-struct Transition {
-  enum class Kind { blend, sudden, churchill } kind = Kind::blend;
-  double from = 2100.0;  ///< Reynolds number where the blend starts, or of the switch
-  double to = 4000.0;    ///< where the blend ends
 };
 
 struct Friction {
