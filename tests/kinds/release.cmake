@@ -1,0 +1,2 @@
+# What users get.  cmake -C tests/kinds/release.cmake -S . -B build/release
+set(CMAKE_BUILD_TYPE Release CACHE STRING "Kind of build")
