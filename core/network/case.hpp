@@ -75,10 +75,10 @@ struct About {
 
 /// A spot of the network: a place, or a chainage along a pipe ("main @ 900 m").
 struct Spot {
-  std::string element;                                     ///< place (or basin) name, or pipe name
-  bool on_pipe = false;                                    ///< true: `element` is a pipe
-  std::optional<double> chainage;                          ///< [m] from the pipe's `from` end; only with on_pipe
-  std::string written;                                     ///< as the user named it
+  std::string element;             ///< place (or basin) name, or pipe name
+  bool on_pipe = false;            ///< true: `element` is a pipe
+  std::optional<double> chainage;  ///< [m] from the pipe's `from` end; only with on_pipe
+  std::string written;             ///< as the user named it
   SourcePlace place;
 };
 
@@ -94,7 +94,7 @@ struct Site {
 struct Liquid {
   std::string name = "water";
   Quantity temperature, density;
-  Quantity viscosity;                                        ///< dimension says kinematic or dynamic
+  Quantity viscosity;                                           ///< dimension says kinematic or dynamic
   std::vector<std::pair<Quantity, Quantity>> viscosity_points;  ///< temperature, kinematic viscosity
   Quantity viscosity_scatter, bulk_modulus, vapour_pressure, free_gas;
   SourcePlace place;
@@ -152,19 +152,19 @@ struct Pipe {
 enum class ValveLawKind { linear, power, equal_percentage, quick_opening, table };
 struct ValveLaw {
   ValveLawKind kind = ValveLawKind::linear;
-  double parameter = 1.0;                           ///< exponent, or rangeability
-  std::vector<std::pair<double, double>> points;    ///< travel [-], share of full coefficient [-]
+  double parameter = 1.0;                         ///< exponent, or rangeability
+  std::vector<std::pair<double, double>> points;  ///< travel [-], share of full coefficient [-]
 };
 
 struct Valve {
   std::string name, from, to;  ///< `to` = "air": free discharge
   SourcePlace place;
-  Quantity kv;                           ///< held as Kv/3600; `cv` arrives here converted
-  Quantity k, bore;                      ///< loss coefficient by stated bore
+  Quantity kv;       ///< held as Kv/3600; `cv` arrives here converted
+  Quantity k, bore;  ///< loss coefficient by stated bore
   Quantity area, discharge_coefficient;
-  Quantity flow;                         ///< sized to pass this at its starting opening
+  Quantity flow;  ///< sized to pass this at its starting opening
   ValveLaw law;
-  Quantity near_seat;                    ///< power on the share
+  Quantity near_seat;  ///< power on the share
   Quantity opening;
 };
 
@@ -253,10 +253,10 @@ struct Event {
   Quantity at;          ///< [s]
   std::optional<Condition> when;
   Quantity delay;
-  Quantity to;             ///< opening, flow, or level
-  bool instant = false;    ///< over = "instant"
-  Quantity over;           ///< [s]
-  Table travel;            ///< times or shares of `over`, opening
+  Quantity to;           ///< opening, flow, or level
+  bool instant = false;  ///< over = "instant"
+  Quantity over;         ///< [s]
+  Table travel;          ///< times or shares of `over`, opening
   bool travel_in_shares = false;
   Quantity swing, period;
   int tripping = 0;  ///< pumps of a set that trip; 0 = all
@@ -301,8 +301,8 @@ enum class AnswerKind { pressure_drop, flow, head, highest_pressure, lowest_pres
 /// A quantity asked for: answer of a band or subject of a limit.
 struct AnswerRequest {
   AnswerKind kind = AnswerKind::highest_pressure;
-  std::string name;          ///< as given, or KIND PLACE
-  std::vector<Spot> where;   ///< none = everywhere; two for pressure_drop between places
+  std::string name;         ///< as given, or KIND PLACE
+  std::vector<Spot> where;  ///< none = everywhere; two for pressure_drop between places
   SourcePlace place;
 };
 
@@ -321,12 +321,12 @@ struct Limit {
   std::string name;
   SourcePlace place;
   AnswerRequest subject;
-  Quantity bound;            ///< pressures: gauge
-  bool not_over = true;      ///< false: not under
-  double at_most = -1.0;     ///< allowed probability; < 0 = left out
+  Quantity bound;         ///< pressures: gauge
+  bool not_over = true;   ///< false: not under
+  double at_most = -1.0;  ///< allowed probability; < 0 = left out
   double confidence = 0.95;
   bool confidence_given = false;
-  std::string rule;          ///< named code rule; empty = plain bound
+  std::string rule;  ///< named code rule; empty = plain bound
   std::vector<std::pair<std::string, Quantity>> rule_numbers;
   std::string edition;
 };

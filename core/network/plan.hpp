@@ -24,8 +24,8 @@ using PipeId = Id<struct PipeTag>;
 /// A point where things meet. Basins are places too (their head is held).
 struct PlacePlan {
   std::string name;
-  int basin = -1;             ///< index into Case::basins, -1 = ordinary place
-  bool head_given = false;    ///< `[[place]] head`: part cut off from every basin
+  int basin = -1;           ///< index into Case::basins, -1 = ordinary place
+  bool head_given = false;  ///< `[[place]] head`: part cut off from every basin
 };
 
 /// Which loss law a pipe follows.
@@ -35,8 +35,8 @@ struct PipePlan {
   std::string name;
   PlaceId from, to;
   LossKind loss = LossKind::darcy;
-  int profile_points = 2;           ///< at least the two ends
-  bool wave_speed_known = false;    ///< false: not enough numbers for a wave speed (flow only)
+  int profile_points = 2;               ///< at least the two ends
+  bool wave_speed_known = false;        ///< false: not enough numbers for a wave speed (flow only)
   std::vector<bool> fitting_has_place;  ///< one per fitting: true = acts at its own chainage
 };
 
@@ -45,12 +45,12 @@ enum class DeviceKind { valve, pump, check_valve, draw_off, air_vessel, surge_ta
 struct DevicePlan {
   DeviceKind kind = DeviceKind::valve;
   std::string name;
-  int index = -1;   ///< into the case's vector of its kind
-  PlaceId from, to; ///< `to` not existing: air, or a device at one place
+  int index = -1;    ///< into the case's vector of its kind
+  PlaceId from, to;  ///< `to` not existing: air, or a device at one place
 };
 
 struct EventPlan {
-  int index = -1;    ///< into Case::events
+  int index = -1;  ///< into Case::events
   EventKind kind = EventKind::move_valve;
   int device = -1;   ///< into Plan::devices; basins: -1
   int basin = -1;    ///< into Case::basins
@@ -60,16 +60,16 @@ struct EventPlan {
 /// A Spot resolved to ids.
 struct SpotPlan {
   std::string name;
-  PlaceId place;     ///< exists for a place
-  PipeId pipe;       ///< exists for a pipe or a point on it
+  PlaceId place;           ///< exists for a place
+  PipeId pipe;             ///< exists for a pipe or a point on it
   double chainage = -1.0;  ///< [m], < 0 = the whole pipe
 };
 
 struct AnswerPlan {
   std::string name;
   AnswerKind kind = AnswerKind::highest_pressure;
-  SpotPlan where;         ///< neither exists = everywhere
-  SpotPlan other;         ///< second place of a pressure drop
+  SpotPlan where;  ///< neither exists = everywhere
+  SpotPlan other;  ///< second place of a pressure drop
   bool needs_surge() const {
     return kind == AnswerKind::highest_pressure || kind == AnswerKind::lowest_pressure || kind == AnswerKind::velocity;
   }
@@ -78,11 +78,11 @@ struct AnswerPlan {
 struct LimitPlan {
   std::string name;
   AnswerPlan subject;
-  double bound = 0.0;      ///< [SI of the answer], pressures gauge
+  double bound = 0.0;  ///< [SI of the answer], pressures gauge
   bool not_over = true;
-  double at_most = -1.0;   ///< < 0: left out
+  double at_most = -1.0;  ///< < 0: left out
   double confidence = 0.95;
-  int rating_of_pipe = -1; ///< the limit is a pipe's `rating`
+  int rating_of_pipe = -1;  ///< the limit is a pipe's `rating`
 };
 
 /// Topology and names of a case; const and shared by every draw.
@@ -91,9 +91,9 @@ struct Plan {
   std::vector<PipePlan> pipes;
   std::vector<DevicePlan> devices;  ///< in file order
   std::vector<EventPlan> events;
-  std::vector<SpotPlan> probes;     ///< histories kept: `show places`, all places when left out
+  std::vector<SpotPlan> probes;  ///< histories kept: `show places`, all places when left out
   std::vector<AnswerPlan> answers;
-  std::vector<LimitPlan> limits;    ///< the user's, then one per rated pipe
+  std::vector<LimitPlan> limits;  ///< the user's, then one per rated pipe
 
   [[nodiscard]] int place_named(const std::string& name) const;   ///< -1 = none
   [[nodiscard]] int pipe_named(const std::string& name) const;    ///< -1 = none

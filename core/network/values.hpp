@@ -33,30 +33,30 @@ struct FittingValues {
 
 template <int W>
 struct PipeValues {
-  Lanes<W> length, bore, area;         ///< [m], [m], [m2]
-  Lanes<W> wall;                       ///< metal wall [m]; NaN = unknown
-  Lanes<W> metal_inner_diameter;       ///< inner diameter of the metal, D of the wall formula [m]
-  Lanes<W> roughness;                  ///< [m]; NaN where another law is used
-  Lanes<W> loss_number;                ///< Hazen-Williams C, Manning n, or the fixed Darcy factor
-  Lanes<W> friction_scatter;           ///< factor on the turbulent Darcy factor [-]
-  Lanes<W> laminar_scatter;            ///< factor on the laminar one [-]
-  Lanes<W> spread_k;                   ///< fittings without a place, summed [-]
-  Lanes<W> spread_equivalent_length;   ///< the same [m]
+  Lanes<W> length, bore, area;        ///< [m], [m], [m2]
+  Lanes<W> wall;                      ///< metal wall [m]; NaN = unknown
+  Lanes<W> metal_inner_diameter;      ///< inner diameter of the metal, D of the wall formula [m]
+  Lanes<W> roughness;                 ///< [m]; NaN where another law is used
+  Lanes<W> loss_number;               ///< Hazen-Williams C, Manning n, or the fixed Darcy factor
+  Lanes<W> friction_scatter;          ///< factor on the turbulent Darcy factor [-]
+  Lanes<W> laminar_scatter;           ///< factor on the laminar one [-]
+  Lanes<W> spread_k;                  ///< fittings without a place, summed [-]
+  Lanes<W> spread_equivalent_length;  ///< the same [m]
   std::vector<FittingValues<W>> placed_fittings;
-  Lanes<W> restraint_factor;           ///< the wave-speed factor used [-]; NaN = wave speed given outright or unknown
-  Lanes<W> wall_compliance;            ///< restraint_factor D/(E e) [1/Pa]; 0 when the wave speed is given outright
-  Lanes<W> wave_speed_given;           ///< [m/s]; NaN = by formula
-  Lanes<W> wave_speed_scatter;         ///< factor [-]
-  Lanes<W> wave_speed_without_gas;     ///< [m/s]; NaN = unknown
-  Lanes<W> rating;                     ///< gauge [Pa]; NaN = unrated
-  std::vector<Lanes<W>> chainage;      ///< profile points [m], first 0, last = length
-  std::vector<Lanes<W>> elevation;     ///< [m]
+  Lanes<W> restraint_factor;        ///< the wave-speed factor used [-]; NaN = wave speed given outright or unknown
+  Lanes<W> wall_compliance;         ///< restraint_factor D/(E e) [1/Pa]; 0 when the wave speed is given outright
+  Lanes<W> wave_speed_given;        ///< [m/s]; NaN = by formula
+  Lanes<W> wave_speed_scatter;      ///< factor [-]
+  Lanes<W> wave_speed_without_gas;  ///< [m/s]; NaN = unknown
+  Lanes<W> rating;                  ///< gauge [Pa]; NaN = unrated
+  std::vector<Lanes<W>> chainage;   ///< profile points [m], first 0, last = length
+  std::vector<Lanes<W>> elevation;  ///< [m]
 };
 
 template <int W>
 struct PlaceValues {
-  Lanes<W> elevation;   ///< [m]
-  Lanes<W> held_head;   ///< basins and `head`: [m]; NaN = free
+  Lanes<W> elevation;  ///< [m]
+  Lanes<W> held_head;  ///< basins and `head`: [m]; NaN = free
 };
 
 template <int W>
@@ -73,7 +73,7 @@ struct PumpValues {
   Lanes<W> efficiency, speed, inertia;           ///< [-], [rad/s], m r2 of one pump [kg m2]
   Lanes<W> shut_off_torque;                      ///< share of rated torque [-]
   std::vector<Lanes<W>> torque_flow, torque_share;
-  Lanes<W> rated_flow, rated_head;               ///< NaN: the first operating point
+  Lanes<W> rated_flow, rated_head;  ///< NaN: the first operating point
   Lanes<W> reverse_velocity, check_bore, check_delay;
 };
 
@@ -90,7 +90,7 @@ struct DrawOffValues {
 
 template <int W>
 struct EventValues {
-  Lanes<W> at, to, over, swing, period, delay;          ///< [s], [subject's SI], [s], [-], [s], [s]
+  Lanes<W> at, to, over, swing, period, delay;         ///< [s], [subject's SI], [s], [-], [s], [s]
   std::vector<Lanes<W>> travel_time, travel_position;  ///< seconds after `at`; the stroke's own table
 };
 

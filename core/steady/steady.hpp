@@ -12,7 +12,18 @@ namespace headband::steady {
 
 using base::Lanes;
 
-enum class SteadyStatus { converged, not_converged, not_finite, on_jump };
+enum class SteadyStatus {
+  converged,
+  not_converged,
+  not_finite,
+  on_jump,            ///< converged, with a pipe held at the Reynolds number where a `switch` jumps
+  valve_without_head  ///< a valve sized by `flow` has no head difference in the direction of that flow
+};
+
+/// True where the numbers of the draw can be used.
+[[nodiscard]] constexpr bool is_usable(SteadyStatus status) {
+  return status == SteadyStatus::converged || status == SteadyStatus::on_jump;
+}
 
 /// Steady flow of W draws. Vectors repeat those of the Plan.
 template <int W>
@@ -27,13 +38,13 @@ struct SteadyState {
   std::vector<Lanes<W>> wave_speed;         ///< per pipe, free gas at the mean steady pressure [m/s]; NaN unknown
   std::vector<Lanes<W>> pump_speed;         ///< as Case::pumps, share of rated speed [-]
   base::PerLane<SteadyStatus, W> status{};
-  Lanes<W> residual;                        ///< worst head residual of a loop or device [m]
+  Lanes<W> residual;  ///< worst head residual of a loop or device [m]
   int iterations = 0;
 };
 
 struct SteadyOptions {
-  int most_iterations = 100;      ///< Newton steps, >= 1
-  double tolerance = 1e-9;        ///< relative on flow changes, and head residual as a share of the head range
+  int most_iterations = 100;  ///< Newton steps, >= 1
+  double tolerance = 1e-9;    ///< relative on flow changes, and head residual as a share of the head range
 };
 
 /// Steady flow of one plan: built once (pattern analysed once), then solved for many draws. Not shared between threads.
