@@ -133,6 +133,7 @@ struct LimitAnswer {
   double at_most = missing, confidence = missing;
   Verdict verdict = Verdict::none;
   std::string reason;  ///< in words: why, or what is missing ("needs surge")
+  std::string where;   ///< PLACE, PIPE, PIPE @ CHAINAGE; "A, B" for a difference; empty = everywhere
 };
 
 struct QuantileAnswer {
@@ -155,6 +156,7 @@ struct BandAnswer {
   double budget_inputs = missing, budget_friction_law = missing, budget_grid = missing, budget_sampling = missing;
   long long budget_draws = 0;
   std::vector<SensitivityAnswer> sensitivity;
+  std::string where;  ///< as LimitAnswer::where; tells which limit belongs to the answer
 };
 
 /// All sampled answers and their draws.
