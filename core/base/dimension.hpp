@@ -3,6 +3,9 @@
 
 namespace headband::base {
 
+/// What people are shown; files and memory stay SI.
+enum class UnitFamily { si, us };
+
 /// Kind of a quantity; decides which unit names are understood and how the value is shown.
 enum class Dimension {
   number,               ///< bare number [-]

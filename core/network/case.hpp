@@ -19,6 +19,7 @@ namespace headband::network {
 
 using base::Quantity;
 using base::SourcePlace;
+using base::UnitFamily;
 using friction::FrictionLaw;
 using friction::Transition;
 
@@ -66,8 +67,6 @@ struct Table {
   SourcePlace place;
   [[nodiscard]] bool given() const { return !rows.empty(); }
 };
-
-enum class UnitFamily { si, us };
 
 struct About {
   std::string title, note;
