@@ -187,9 +187,16 @@ constexpr std::array units{
     Unit{"h/d", hours_per_year, 3600, 86400, 0, "3600 s in 86400 s"},
 };
 
-void replace_all(std::string& text, std::string_view from, std::string_view to) {
-  for (std::size_t at = text.find(from); at != std::string::npos; at = text.find(from, at + to.size()))
-    text.replace(at, from.size(), to);
+std::string replaced(std::string_view text, std::string_view from, std::string_view to) {
+  std::string result;
+  while (!text.empty()) {
+    const std::size_t at = text.find(from);
+    result += text.substr(0, at);
+    if (at == std::string_view::npos) break;
+    result += to;
+    text.remove_prefix(at + from.size());
+  }
+  return result;
 }
 
 bool ends_with_word(std::string& text, std::string_view word) {
@@ -204,19 +211,13 @@ std::string normal_spelling(std::string_view given) {
   std::string text(given);
   for (const auto& [from, to] : {std::pair{"\u00b2", "2"}, {"\u00b3", "3"}, {"^", ""}, {"\u00b7", " "}, {"*", " "},
                                  {"\u00a0", " "}, {"\u00b0", "deg"}, {"\u00b5", "u"}, {"\u03bc", "u"}, {"\u2212", "-"}})
-    replace_all(text, from, to);
-  for (std::size_t at = text.find("  "); at != std::string::npos; at = text.find("  ")) text.erase(at, 1);
-  replace_all(text, " /", "/");
-  replace_all(text, "/ ", "/");
-  replace_all(text, "deg C", "degC");
-  replace_all(text, "deg F", "degF");
-  while (!text.empty() && text.front() == ' ') text.erase(0, 1);
-  while (!text.empty() && text.back() == ' ') text.pop_back();
-  replace_all(text, "Pa.s", "Pa s");
-  replace_all(text, "kg.m2", "kg m2");
-  if (text.starts_with("U.S. ")) text.replace(0, 5, "US ");
-  if (text.starts_with("imperial ")) text.replace(0, 9, "imp ");
-  if (text.starts_with("UK ")) text.replace(0, 3, "imp ");
+    text = replaced(text, from, to);
+  while (text.find("  ") != std::string::npos) text = replaced(text, "  ", " ");
+  for (const auto& [from, to] : {std::pair{" /", "/"}, {"/ ", "/"}, {"deg C", "degC"}, {"deg F", "degF"},
+                                 {"Pa.s", "Pa s"}, {"kg.m2", "kg m2"}, {"U.S.", "US"}, {"imperial ", "imp "}, {"UK ", "imp "}})
+    text = replaced(text, from, to);
+  while (text.starts_with(' ')) text.erase(0, 1);
+  while (text.ends_with(' ')) text.pop_back();
   return text;
 }
 
@@ -439,6 +440,16 @@ DisplayUnit display_unit(Dimension dimension, UnitFamily family, double magnitud
 
 double to_display(const DisplayUnit& unit, double value) { return value * unit.by / unit.times - unit.offset; }
 
+// Without trailing zeros and without a minus before nothing.
+static std::string trimmed(std::string text) {
+  if (text.find('.') != std::string::npos) {
+    while (text.back() == '0') text.pop_back();
+    if (text.back() == '.') text.pop_back();
+  }
+  if (text == "-0") text.assign(1, '0');
+  return text;
+}
+
 std::string significant(double number, int digits) {
   if (std::isnan(number)) return "-";
   if (std::isinf(number)) return number > 0 ? "infinite" : "-infinite";
@@ -451,29 +462,22 @@ std::string significant(double number, int digits) {
   }
   const int decimals = digits - 1 - static_cast<int>(std::floor(std::log10(size)));
   std::snprintf(text, sizeof text, "%.*f", decimals > 0 ? decimals : 0, number);
-  std::string shown_text = text;
-  if (shown_text.find('.') != std::string::npos) {
-    while (shown_text.back() == '0') shown_text.pop_back();
-    if (shown_text.back() == '.') shown_text.pop_back();
-  }
-  return shown_text == "-0" ? "0" : shown_text;
+  return trimmed(text);
 }
 
 std::string shown(double value, Dimension dimension, UnitFamily family, bool gauge, int digits) {
   if (std::isnan(value)) return "-";
   const DisplayUnit unit = display_unit(dimension, family, value);
-  // Temperatures lose no digit to the offset of the scale: one decimal.
-  if (dimension == Dimension::temperature) {
-    char text[64];
-    std::snprintf(text, sizeof text, "%.2f", to_display(unit, value));
-    std::string number = text;
-    while (number.back() == '0') number.pop_back();
-    if (number.back() == '.') number.pop_back();
-    return (number == "-0" ? "0" : number) + " " + unit.name;
+  std::string text;
+  if (dimension == Dimension::temperature) {  // digits counted from the scale's zero say nothing: two decimals
+    char number[64];
+    std::snprintf(number, sizeof number, "%.2f", to_display(unit, value));
+    text = trimmed(number);
+  } else {
+    text = significant(to_display(unit, value), digits);
   }
-  std::string text = significant(to_display(unit, value), digits);
-  if (!unit.name.empty()) text += " " + unit.name;
-  if (dimension == Dimension::pressure) text += gauge ? " g" : " abs";
+  if (!unit.name.empty()) text.append(" ").append(unit.name);
+  if (dimension == Dimension::pressure) text.append(gauge ? " g" : " abs");
   return text;
 }
 

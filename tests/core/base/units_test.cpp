@@ -19,7 +19,7 @@ double si(double number, std::string_view unit) {
 
 TEST(Units, ExactDefinitions) {
   EXPECT_EQ(si(508, "mm"), 0.508);
-  EXPECT_EQ(si(12, "in"), 12 * 0.0254);
+  EXPECT_DOUBLE_EQ(si(12, "in"), 12 * 0.0254);
   EXPECT_EQ(si(28.5, "mile"), 28.5 * 1609.344);
   EXPECT_EQ(si(100, "L/s"), 0.1);
   EXPECT_EQ(si(3600, "m3/h"), 1.0);
@@ -34,11 +34,11 @@ TEST(Units, ExactDefinitions) {
   EXPECT_EQ(si(1, "mH2O"), 9806.65);
   EXPECT_EQ(si(15, "degC"), 288.15);
   EXPECT_NEAR(si(60, "degF"), 288.70555555555555, 1e-12);
-  EXPECT_EQ(si(212, "degF"), 373.15);
+  EXPECT_DOUBLE_EQ(si(212, "degF"), 373.15);
   EXPECT_NEAR(si(1, "lb/ft3"), 16.018463373960142, 1e-13);
   EXPECT_NEAR(si(1480, "rpm"), 1480 * 2 * 3.14159265358979323846 / 60, 1e-12);
   EXPECT_NEAR(si(1, "lb ft2"), 0.04214011009380480, 1e-16);
-  EXPECT_EQ(si(3.6, "cSt"), 3.6e-6);
+  EXPECT_DOUBLE_EQ(si(3.6, "cSt"), 3.6e-6);
   EXPECT_DOUBLE_EQ(si(1, "ft2/s"), 0.09290304);
   EXPECT_DOUBLE_EQ(si(0.14, "/kWh"), 0.14 / 3.6e6);
   EXPECT_DOUBLE_EQ(si(8766, "h/year"), 1.0);
