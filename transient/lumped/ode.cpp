@@ -2,9 +2,7 @@
 #include "transient/lumped/ode.hpp"
 
 #include <boost/math/tools/toms748_solve.hpp>
-#include <boost/numeric/odeint/stepper/dense_output_runge_kutta.hpp>
-#include <boost/numeric/odeint/stepper/generation.hpp>
-#include <boost/numeric/odeint/stepper/runge_kutta_dopri5.hpp>
+#include <boost/numeric/odeint.hpp>
 
 #include <algorithm>
 #include <cmath>
@@ -55,7 +53,14 @@ OdeRun integrate(const OdeRates& rates, const OdeState& start, const std::vector
       run.status = OdeStatus::too_many_steps;
       return run;
     }
-    const auto [from, to] = stepper.do_step(watched);
+    std::pair<double, double> step;
+    try {
+      step = stepper.do_step(watched);
+    } catch (const odeint::odeint_error&) {  // it gives up after some hundred refused steps
+      run.status = rates_finite ? OdeStatus::step_too_small : OdeStatus::not_finite;
+      return run;
+    }
+    const auto [from, to] = step;
     if (!rates_finite || !finite(stepper.current_state())) {
       run.status = OdeStatus::not_finite;
       return run;
@@ -64,7 +69,7 @@ OdeRun integrate(const OdeRates& rates, const OdeState& start, const std::vector
     if (event) {
       const double value_after = event(stepper.current_state(), to);
       if (value_before != 0.0 && value_before * value_after <= 0.0) {
-        const auto along = [&](double time) {
+        const auto along = [&stepper, &at_time, &event](double time) {
           stepper.calc_state(time, at_time);
           return event(at_time, time);
         };
