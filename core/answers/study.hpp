@@ -18,8 +18,9 @@ inline constexpr double missing = std::numeric_limits<double>::quiet_NaN();
 
 enum class Verdict { ok, not_ok, cannot_tell, none };
 
-/// How the calculation ended; anything but `complete` gives exit code 3.
-enum class RunState { complete, incomplete };
+/// How the calculation ended: `incomplete` (exit code 3) could not finish, `partial` was stopped by the user (130, 143)
+/// and can be taken up again.
+enum class RunState { complete, incomplete, partial };
 
 /// Where the numbers came from. Times, commands and threads live here and nowhere else.
 struct Provenance {

@@ -2,6 +2,7 @@
 // SPDX-License-Identifier: MIT
 
 #include "core/answers/study.hpp"
+#include "core/base/problem.hpp"
 
 #include <map>
 #include <string>
@@ -10,6 +11,9 @@ namespace headband::show {
 
 /// The one JSON object of `--json`, SI, a newline at the end. A pure function of the study.
 [[nodiscard]] std::string json(const answers::Study& study);
+
+/// The JSON object in place of answers when the case is wrong (exit code 65); a place that is not known is null.
+[[nodiscard]] std::string problems_json(const base::Problems& problems);
 
 struct TerminalOptions {
   bool colour = false;

@@ -1,0 +1,68 @@
+// SPDX-License-Identifier: MIT
+#include "core/show/reported.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <cstddef>
+#include <numbers>
+#include <numeric>
+
+namespace headband::show {
+
+namespace {
+
+/// Volume of one reach of the pipe called `name` [m3]; NaN where bore, length or reaches are not known.
+double section_volume(const answers::Study& study, const std::string& name) {
+  if (!study.grid || study.grid->reaches.size() != study.pipes.size()) return answers::missing;
+  for (std::size_t i = 0; i < study.pipes.size(); ++i) {
+    const auto& pipe = study.pipes[i];
+    if (pipe.name != name) continue;
+    const int reaches = std::max(1, study.grid->reaches[i]);
+    return 0.25 * std::numbers::pi * pipe.bore * pipe.bore * pipe.length / reaches;
+  }
+  return answers::missing;
+}
+
+}  // namespace
+
+std::string words_of(answers::Verdict verdict) {
+  switch (verdict) {
+    case answers::Verdict::ok:
+      return "OK";
+    case answers::Verdict::not_ok:
+      return "NOT OK";
+    case answers::Verdict::cannot_tell:
+      return "CANNOT TELL";
+    case answers::Verdict::none:
+      break;
+  }
+  return {};
+}
+
+std::string file_name_of(const std::string& path) {
+  const auto cut = path.find_last_of('/');
+  return cut == std::string::npos ? path : path.substr(cut + 1);
+}
+
+std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study) {
+  std::vector<answers::CavityAnswer> told;
+  if (!study.transient) return told;
+  for (const auto& cavity : study.transient->cavities) {
+    // Not "volume > share": an unknown section volume (NaN) must not hide a cavity.
+    const bool small = cavity.max_volume <= reported_cavity_share * section_volume(study, cavity.pipe);
+    if (!small) told.push_back(cavity);
+  }
+  if (told.size() <= reported_cavities_at_most) return told;
+  std::vector<std::size_t> order(told.size());
+  std::iota(order.begin(), order.end(), std::size_t{0});
+  std::stable_sort(order.begin(), order.end(),
+                   [&](std::size_t a, std::size_t b) { return told[a].max_volume > told[b].max_volume; });
+  order.resize(reported_cavities_at_most);
+  std::sort(order.begin(), order.end());
+  std::vector<answers::CavityAnswer> largest;
+  largest.reserve(order.size());
+  for (const std::size_t i : order) largest.push_back(told[i]);
+  return largest;
+}
+
+}  // namespace headband::show

@@ -1,0 +1,27 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// What of a study is reported, the same for JSON, terminal and page.
+
+#include "core/answers/study.hpp"
+
+#include <string>
+#include <vector>
+
+namespace headband::show {
+
+/// "OK", "NOT OK", "CANNOT TELL"; empty for Verdict::none.
+[[nodiscard]] std::string words_of(answers::Verdict verdict);
+
+/// The last part of a path: what is shown of a case file's name.
+[[nodiscard]] std::string file_name_of(const std::string& path);
+
+/// Share of its section's volume a cavity must pass to be reported [-].
+inline constexpr double reported_cavity_share = 1e-6;
+inline constexpr std::size_t reported_cavities_at_most = 200;
+
+/// Cavities worth telling: over 1e-6 of the volume of their section (one reach), the largest 200, in file order.
+/// Where the section's volume is not known the cavity is told.
+[[nodiscard]] std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study);
+
+}  // namespace headband::show
