@@ -1,0 +1,321 @@
+// SPDX-License-Identifier: MIT
+#include "core/base/spread.hpp"
+
+#include "core/base/elementary.hpp"
+
+#include <algorithm>
+#include <boost/math/quadrature/gauss_kronrod.hpp>
+#include <cmath>
+#include <numbers>
+#include <tuple>
+#include <utility>
+
+namespace headband::base {
+
+namespace {
+
+// ---------------------------------------------------------------- normal quantile
+
+template <std::size_t N, int W>
+HEADBAND_INLINE Lanes<W> polynomial(const std::array<double, N>& c, const Lanes<W>& x) {
+  Lanes<W> r = c[N - 1];
+  for (std::size_t i = N - 1; i-- > 0;) r = r * x + c[i];
+  return r;
+}
+
+// AS 241 (Wichura 1988, Applied Statistics 37, 477-484), routine PPND16: coefficients from memory, checked in the
+// test against the inverse error function of Boost.Math to 1e-15.
+constexpr std::array<double, 8> central_over{3.3871328727963666080e0, 1.3314166789178437745e2, 1.9715909503065514427e3,
+                                             1.3731693765509461125e4, 4.5921953931549871457e4, 6.7265770927008700853e4,
+                                             3.3430575583588128105e4, 2.5090809287301226727e3};
+constexpr std::array<double, 8> central_under{1.0,
+                                              4.2313330701600911252e1,
+                                              6.8718700749205790830e2,
+                                              5.3941960214247511077e3,
+                                              2.1213794301586595867e4,
+                                              3.9307895800092710610e4,
+                                              2.8729085735721942674e4,
+                                              5.2264952788528545610e3};
+constexpr std::array<double, 8> tail_over{1.42343711074968357734e0, 4.63033784615654529590e0,  5.76949722146069140550e0,
+                                          3.64784832476320460504e0, 1.27045825245236838258e0,  2.41780725177450611770e-1,
+                                          2.27238449892691845833e-2, 7.74545014278341407640e-4};
+constexpr std::array<double, 8> tail_under{1.0,
+                                           2.05319162663775882187e0,
+                                           1.67638483018380384940e0,
+                                           6.89767334985100004550e-1,
+                                           1.48103976427480074590e-1,
+                                           1.51986665636164571966e-2,
+                                           5.47593808499534494600e-4,
+                                           1.05075007164441684324e-9};
+constexpr std::array<double, 8> far_over{6.65790464350110377720e0,  5.46378491116411436990e0,  1.78482653991729133580e0,
+                                         2.96560571828504891230e-1, 2.65321895265761230930e-2, 1.24266094738807843860e-3,
+                                         2.71155556874348757815e-5, 2.01033439929228813265e-7};
+constexpr std::array<double, 8> far_under{1.0,
+                                          5.99832206555887937690e-1,
+                                          1.36929880922735805310e-1,
+                                          1.48753612908506148525e-2,
+                                          7.86869131145613259100e-4,
+                                          1.84631831751005468180e-5,
+                                          1.42151175831644588870e-7,
+                                          2.04426310338993978564e-15};
+
+/// Normal quantile from both tails at once: `below` + `above` = 1, each exact in its own tail.
+template <int W>
+HEADBAND_INLINE Lanes<W> quantile_of_tails(const Lanes<W>& below, const Lanes<W>& above, const Lanes<W>& middle) {
+  const Lanes<W> r = 0.180625 - middle * middle;
+  const Mask<W> central = abs(middle) <= 0.425;
+  Lanes<W> z = middle * polynomial(central_over, r) / polynomial(central_under, r);
+  if (!all(central)) {
+    const Lanes<W> tail = min(below, above);
+    const Lanes<W> root = sqrt(-log(tail));
+    const Lanes<W> t = root - 1.6;
+    Lanes<W> size = polynomial(tail_over, t) / polynomial(tail_under, t);
+    const Mask<W> far = root > 5.0;
+    if (any(far)) {
+      const Lanes<W> u = root - 5.0;
+      size = select(far, polynomial(far_over, u) / polynomial(far_under, u), size);
+    }
+    z = select(central, z, select(middle < Lanes<W>(0.0), -size, size));
+  }
+  return z;
+}
+
+/// 1e-33 is under the last place of every score: a cut further out than this changes nothing.
+constexpr double no_effect_distance = 12.2;
+
+/// Share of the standard normal outside a cut, each side exact in its own tail.
+struct CutTails {
+  double below_low = 0.0, above_low = 1.0;    ///< P(z < low), P(z > low)
+  double below_high = 1.0, above_high = 0.0;  ///< the same of the upper cut
+  double inside = 1.0;
+};
+
+CutTails tails_of(double low, double high) {
+  CutTails t;
+  if (low > -no_effect_distance) {
+    t.below_low = normal_probability(low);
+    t.above_low = normal_probability(-low);
+  }
+  if (high < no_effect_distance) {
+    t.below_high = normal_probability(high);
+    t.above_high = normal_probability(-high);
+  }
+  t.inside = low > 0.0 ? t.above_low - t.above_high : t.below_high - t.below_low;
+  return t;
+}
+
+/// Standard normal inside [low, high] at `score`.
+template <int W>
+HEADBAND_INLINE Lanes<W> cut_normal(double low, double high, const Lanes<W>& score) {
+  if (low <= -no_effect_distance && high >= no_effect_distance) {
+    return quantile_of_tails<W>(score, 1.0 - score, score - 0.5);
+  }
+  const CutTails t = tails_of(low, high);
+  const Lanes<W> below = t.below_low + score * t.inside;
+  const Lanes<W> above = t.above_high + (1.0 - score) * t.inside;
+  return max(min(quantile_of_tails<W>(below, above, 0.5 * (below - above)), Lanes<W>(high)), Lanes<W>(low));
+}
+
+/// The cut in standard deviations about ln(central); [low, high].
+std::pair<double, double> log_cut(const Cut& cut, double central, double deviation) {
+  double low = cut.low, high = cut.high;
+  if (central < 0.0) {
+    std::swap(low, high);
+    low = -low;
+    high = -high;
+  }
+  const auto score = [&](double bound) {
+    if (!(bound > 0.0)) return -std::numeric_limits<double>::infinity();
+    if (bound == std::numeric_limits<double>::infinity()) return bound;
+    return log(Lanes<1>(bound / std::fabs(central))).number / deviation;
+  };
+  return {score(low), score(high)};
+}
+
+/// Distribution function of a triangle, and of its complement.
+struct TriangleTails {
+  double below, above;
+};
+TriangleTails triangle_tails(double low, double mode, double high, double x) {
+  if (x <= low) return {0.0, 1.0};
+  if (x >= high) return {1.0, 0.0};
+  if (x < mode) {
+    const double p = (x - low) * (x - low) / ((high - low) * (mode - low));
+    return {p, 1.0 - p};
+  }
+  const double p = (high - x) * (high - x) / ((high - low) * (high - mode));
+  return {1.0 - p, p};
+}
+
+template <int W>
+Lanes<W> triangle_quantile(double low, double mode, double high, const Cut& cut, const Lanes<W>& score) {
+  if (!(high > low)) return mode;
+  Lanes<W> below = score, above = 1.0 - score;
+  if (cut.active()) {
+    const TriangleTails at_low = triangle_tails(low, mode, high, cut.low);
+    const TriangleTails at_high = triangle_tails(low, mode, high, cut.high);
+    const double inside =
+        at_low.below > 0.5 ? at_low.above - at_high.above : at_high.below - at_low.below;
+    below = at_low.below + score * inside;
+    above = at_high.above + (1.0 - score) * inside;
+  }
+  const double width = high - low;
+  const Lanes<W> rising = low + sqrt(below * (width * (mode - low)));
+  const Lanes<W> falling = high - sqrt(above * (width * (high - mode)));
+  return select(below < Lanes<W>((mode - low) / width), rising, falling);
+}
+
+template <class... F>
+struct Overloaded : F... {
+  using F::operator()...;
+};
+
+double density(double z) { return std::isinf(z) ? 0.0 : std::exp(-0.5 * z * z) / std::sqrt(2.0 * std::numbers::pi); }
+
+struct Moments {
+  double mean, variance;
+};
+
+/// Mean and variance of `value_at(z)`, z standard normal inside a cut that leaves next to nothing: the closed forms
+/// lose all digits there, an adaptive Gauss-Kronrod rule does not.
+template <class ValueAt>
+Moments moments_in_thin_cut(double low, double high, const ValueAt& value_at) {
+  const double nearest = low > 0.0 ? low : (high < 0.0 ? high : 0.0);
+  const double a = std::max(low, nearest - 40.0), b = std::min(high, nearest + 40.0);
+  const double origin = value_at(nearest);
+  const auto weight = [&](double z) { return std::exp(-0.5 * (z - nearest) * (z + nearest)); };
+  const auto integral = [&](const auto& f) {
+    return boost::math::quadrature::gauss_kronrod<double, 31>::integrate(f, a, b, 12, 1e-13);
+  };
+  const double all = integral(weight);
+  const double m = integral([&](double z) { return weight(z) * (value_at(z) - origin); }) / all;
+  const double square = integral([&](double z) {
+    const double off = value_at(z) - origin - m;
+    return weight(z) * off * off;
+  });
+  return {origin + m, square / all};
+}
+
+/// Least share inside a cut at which the closed forms hold their ten digits.
+constexpr double thin_cut = 0.02;
+
+Moments normal_moments(double central, double deviation, const Cut& cut) {
+  if (!cut.active()) return {central, deviation * deviation};
+  const double low = (cut.low - central) / deviation, high = (cut.high - central) / deviation;
+  const CutTails t = tails_of(low, high);
+  if (t.inside < thin_cut) {
+    return moments_in_thin_cut(low, high, [&](double z) { return central + deviation * z; });
+  }
+  // Johnson, Kotz, Balakrishnan, Continuous Univariate Distributions 1 (1994), 13.10
+  const double at_low = density(low), at_high = density(high);
+  const double shift = (at_low - at_high) / t.inside;
+  const double low_term = std::isinf(low) ? 0.0 : low * at_low;
+  const double high_term = std::isinf(high) ? 0.0 : high * at_high;
+  return {central + deviation * shift,
+          deviation * deviation * (1.0 + (low_term - high_term) / t.inside - shift * shift)};
+}
+
+Moments log_normal_moments(double central, double deviation, const Cut& cut) {
+  const auto [low, high] = log_cut(cut, central, deviation);
+  const CutTails t = tails_of(low, high);
+  if (t.inside < thin_cut) {
+    return moments_in_thin_cut(low, high, [&](double z) { return central * std::exp(deviation * z); });
+  }
+  // E[x^n] = m^n exp(n^2 s^2 / 2) (share inside the cut of the density shifted by n s)
+  const double s = deviation;
+  const double first = std::exp(0.5 * s * s) * tails_of(low - s, high - s).inside / t.inside;
+  const double second = std::exp(2.0 * s * s) * tails_of(low - 2.0 * s, high - 2.0 * s).inside / t.inside;
+  if (!cut.active()) return {central * first, central * central * std::exp(s * s) * std::expm1(s * s)};
+  return {central * first, central * central * std::max(0.0, second - first * first)};
+}
+
+Moments even_moments(double low, double high, const Cut& cut) {
+  const double a = std::max(low, cut.low), b = std::min(high, cut.high);
+  return {0.5 * (a + b), (b - a) * (b - a) / 12.0};
+}
+
+/// The density is straight on each side of the mode: two Gauss points a piece are exact for mean and square.
+Moments triangle_moments(double low, double mode, double high, const Cut& cut) {
+  const double a = std::max(low, cut.low), b = std::min(high, cut.high);
+  if (!(b > a)) return {mode, 0.0};
+  double weight = 0.0, sum = 0.0, squares = 0.0;
+  const auto add = [&](double from, double to) {
+    if (!(to > from)) return;
+    const double half = 0.5 * (to - from), middle = 0.5 * (to + from);
+    for (const double side : {-1.0, 1.0}) {
+      const double x = middle + side * half / std::sqrt(3.0);
+      const double w = half * (x < mode ? (x - low) / (mode - low) : (high - x) / (high - mode));
+      weight += w;
+      sum += w * (x - mode);
+      squares += w * (x - mode) * (x - mode);
+    }
+  };
+  add(a, std::min(b, mode));
+  add(std::max(a, mode), b);
+  const double m = sum / weight;
+  return {mode + m, std::max(0.0, squares / weight - m * m)};
+}
+
+Moments moments(const Spread& spread, const Cut& cut, double central) {
+  return std::visit(Overloaded{
+                        [&](const Exact&) { return Moments{central, 0.0}; },
+                        [&](const Normal& n) { return normal_moments(central, n.standard_deviation, cut); },
+                        [&](const LogNormal& n) { return log_normal_moments(central, n.log_standard_deviation, cut); },
+                        [&](const Even& e) { return even_moments(e.low, e.high, cut); },
+                        [&](const Triangle& t) { return triangle_moments(t.low, central, t.high, cut); },
+                        [&](const NotRandom& n) { return even_moments(n.low, n.high, cut); },
+                    },
+                    spread);
+}
+
+template <int W>
+HEADBAND_INLINE Lanes<W> even_quantile(double low, double high, const Cut& cut, const Lanes<W>& score) {
+  const double a = std::max(low, cut.low), b = std::min(high, cut.high);
+  return a + (b - a) * score;
+}
+
+}  // namespace
+
+double normal_probability(double z) { return 0.5 * std::erfc(-z / std::numbers::sqrt2); }
+
+template <int W>
+Lanes<W> normal_quantile(const Lanes<W>& probability) {
+  return quantile_of_tails<W>(probability, 1.0 - probability, probability - 0.5);
+}
+
+template <int W>
+Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const Lanes<W>& score) {
+  return std::visit(
+      Overloaded{
+          [&](const Exact&) -> Lanes<W> { return central; },
+          [&](const Normal& n) -> Lanes<W> {
+            const double s = n.standard_deviation;
+            const Lanes<W> x = central + s * cut_normal<W>((cut.low - central) / s, (cut.high - central) / s, score);
+            return max(min(x, Lanes<W>(cut.high)), Lanes<W>(cut.low));
+          },
+          [&](const LogNormal& n) -> Lanes<W> {
+            const double s = n.log_standard_deviation;
+            double low = -std::numeric_limits<double>::infinity(), high = -low;
+            if (cut.active()) std::tie(low, high) = log_cut(cut, central, s);
+            const Lanes<W> x = central * exp(s * cut_normal<W>(low, high, score));
+            return max(min(x, Lanes<W>(cut.high)), Lanes<W>(cut.low));
+          },
+          [&](const Even& e) -> Lanes<W> { return even_quantile<W>(e.low, e.high, cut, score); },
+          [&](const Triangle& t) -> Lanes<W> { return triangle_quantile<W>(t.low, central, t.high, cut, score); },
+          [&](const NotRandom& r) -> Lanes<W> { return even_quantile<W>(r.low, r.high, cut, score); },
+      },
+      spread);
+}
+
+double mean(const Spread& spread, const Cut& cut, double central) { return moments(spread, cut, central).mean; }
+
+double standard_deviation(const Spread& spread, const Cut& cut, double central) {
+  return std::sqrt(moments(spread, cut, central).variance);
+}
+
+template Lanes<1> quantile<1>(const Spread&, const Cut&, double, const Lanes<1>&);
+template Lanes<8> quantile<8>(const Spread&, const Cut&, double, const Lanes<8>&);
+template Lanes<1> normal_quantile<1>(const Lanes<1>&);
+template Lanes<8> normal_quantile<8>(const Lanes<8>&);
+
+}  // namespace headband::base
