@@ -186,6 +186,32 @@ template <int W>
   }
 }
 
+namespace detail {
+/// log(x) within 6e-4; x normal and positive. The polynomial is the cubic Chebyshev fit of log(1 + f).
+template <class Number>
+[[nodiscard]] HEADBAND_INLINE Number quick_log_core(const Number& x) {
+  const Word<Number> bits = to_word(x);
+  const Word<Number> shifted = bits - std::bit_cast<std::uint64_t>(sqrt_half) + one_word;
+  const Word<Number> biased = shifted >> 52;
+  const Word<Number> mantissa = bits - (shifted & exponent_field) + one_word;
+  const Number exponent = to_number(biased | std::bit_cast<std::uint64_t>(two_to_52)) - (two_to_52 + 1023.0);
+  const Number f = to_number(mantissa) - 1.0;
+  return exponent * 0.6931471805599453 + (3.73947376e-4 + f * (1.00249762 + f * (-0.526455338 + f * 0.304754131)));
+}
+}  // namespace detail
+
+/// Natural logarithm within 6e-4 (absolute), for the start of an iteration; x normal and positive.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> quick_log(const Lanes<W>& x) {
+  if constexpr (W == 1) {
+    return Lanes<W>(detail::quick_log_core<double>(x.number));
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::quick_log_core<Quad>(x.part[i]);
+    return r;
+  }
+}
+
 /// Logarithm to base 10; relative error under 3 units in the last place.
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Lanes<W> log10(const Lanes<W>& x) {

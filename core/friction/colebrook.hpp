@@ -1,0 +1,117 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// Colebrook-White (Colebrook 1939): x = -2 log10(e/3.7 + 2.51 x/Re), x = 1/sqrt(f), and the smooth law of Prandtl,
+// x = 2 log10(Re/x) - 0.8, which is the same equation with e = 0 and 10^0.4 in place of 2.51.
+//
+// Notation of this file: k = 2/ln 10, e = roughness/bore, b = 2.51/Re, rough = e Re/(3.7 2.51), p = x + rough, so that
+// the argument of the logarithm is b p and the equation x + k ln(b p) = 0. With x = x0 + p0 u the residual r of x0
+// leaves u = u0 + q (u^2/2 - u^3/3 + …), u0 = -r/(p0 + k), q = k/(p0 + k): a power series in u0, one quotient a step.
+
+#include "core/base/elementary.hpp"
+#include "core/base/lanes.hpp"
+
+#include <span>
+
+namespace headband::friction {
+
+using base::Lanes;
+
+inline constexpr double two_over_ln_10 = 0.86858896380650365530;
+inline constexpr double colebrook_constant = 2.51;
+/// 10^0.4: Prandtl's 2.0 log10(Re sqrt f) - 0.8 in the form of Colebrook-White.
+inline constexpr double prandtl_constant = 2.5118864315095801111;
+/// Factor of e Re in `rough`.
+inline constexpr double colebrook_rough = 1.0 / (3.7 * colebrook_constant);
+/// Least Reynolds number at which a turbulent factor is evaluated; below it the value there is taken.
+inline constexpr double least_turbulent_reynolds = 100.0;
+
+/// Outcome of the plain solver.
+struct PlainRoot {
+  double factor = 0.0;     ///< Darcy f [-]
+  int iterations = 0;      ///< Newton steps taken, at most 50
+  bool converged = false;  ///< last step under 1e-15 of x
+};
+
+/// Colebrook-White by plain Newton steps with the library's logarithm: the oracle of the fast forms.
+/// @param relative_roughness [-], >= 0 @param reynolds [-], > 0. Accurate to rounding (about 4e-16).
+[[nodiscard]] PlainRoot colebrook_plain(double relative_roughness, double reynolds);
+
+namespace detail {
+
+/// One high-order correction of x; `log_argument` = ln(b p) at x. Order 4: error of order u0^5; order 5: u0^6.
+template <int W, int order>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> corrected(const Lanes<W>& x, const Lanes<W>& p, const Lanes<W>& log_argument) {
+  static_assert(order == 4 || order == 5);
+  const Lanes<W> inverse = 1.0 / (p + two_over_ln_10);
+  const Lanes<W> q = two_over_ln_10 * inverse;
+  const Lanes<W> u0 = -(x + two_over_ln_10 * log_argument) * inverse;
+  const Lanes<W> c2 = 0.5 * q;
+  const Lanes<W> c3 = q * (c2 - 1.0 / 3.0);
+  const Lanes<W> c4 = q * (q * (0.625 * q - 5.0 / 6.0) + 0.25);
+  Lanes<W> tail = c4;
+  if constexpr (order == 5) {
+    const Lanes<W> c5 = q * ((c4 + c2 * c3) - (c2 * c2 + c3) + (c2 - 0.2));
+    tail = c4 + u0 * c5;
+  }
+  return x + p * (u0 + u0 * u0 * (c2 + u0 * (c3 + u0 * tail)));
+}
+
+}  // namespace detail
+
+/// Root x = 1/sqrt(f) [-] from nothing: one step with a quick logarithm from x = 8, one with the full logarithm.
+/// @param rough colebrook_rough e Re (0 for the smooth law) @param b 2.51/Re (10^0.4/Re for the smooth law)
+/// Error of x under 4e-15 relative for Re >= 2000, under 1e-14 down to Re = 100, for e in 0 .. 0.3. Fixed work, no branch.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_root(const Lanes<W>& rough, const Lanes<W>& b) {
+  const Lanes<W> start = 8.0;
+  const Lanes<W> p0 = rough + start;
+  const Lanes<W> x1 = detail::corrected<W, 4>(start, p0, base::quick_log(b * p0));
+  const Lanes<W> p1 = rough + x1;
+  return detail::corrected<W, 5>(x1, p1, base::log(b * p1));
+}
+
+/// Where one correction of an older root is not enough (|u0| above this), the full solve is done.
+inline constexpr double widest_correction = 0.0125;
+
+/// The root from an older one of the same pipe, for a march in time: one logarithm where the flow has changed little
+/// (a few per cent), the full solve in the other lanes. Anything may stand in `older`, also not a number.
+/// @param idle lanes whose result nobody reads: they never force the full solve
+/// Error of x under 1e-12 relative. The same bits for every W.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
+                                                         const Lanes<W>& b,
+                                                         const Lanes<W>& older,
+                                                         const base::Mask<W>& idle) {
+  const Lanes<W> safe = select(older > Lanes<W>(0.0), older, Lanes<W>(8.0));
+  const Lanes<W> p = rough + safe;
+  const Lanes<W> l = base::log(b * p);
+  const auto near = abs(safe + two_over_ln_10 * l) <= widest_correction * (p + two_over_ln_10);
+  const Lanes<W> x = detail::corrected<W, 5>(safe, p, l);
+  if (all(near | idle)) return x;
+  return select(near, x, colebrook_root<W>(rough, b));
+}
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
+                                                         const Lanes<W>& b,
+                                                         const Lanes<W>& older) {
+  return colebrook_correct<W>(rough, b, older, b < Lanes<W>(0.0));
+}
+
+/// Slope d ln f / d ln Re [-] at the root.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_log_slope(const Lanes<W>& rough, const Lanes<W>& x) {
+  return -2.0 * two_over_ln_10 / (rough + x + two_over_ln_10);
+}
+
+/// Colebrook-White factors of many pipes. @param factor same length; @param reynolds >= 100 each
+/// Error under 1e-12 relative (observed 1e-15); the same bits as `colebrook_factor` one by one.
+void colebrook_factors(std::span<const double> relative_roughness,
+                       std::span<const double> reynolds,
+                       std::span<double> factor);
+
+/// One Colebrook-White factor, bounded work. @param reynolds >= 100; below it the factor at 100
+[[nodiscard]] double colebrook_factor(double relative_roughness, double reynolds);
+
+}  // namespace headband::friction

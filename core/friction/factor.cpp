@@ -1,0 +1,241 @@
+// SPDX-License-Identifier: MIT
+#include "core/friction/factor.hpp"
+
+#include "core/friction/colebrook.hpp"
+#include "core/friction/explicit_laws.hpp"
+
+#include <limits>
+#include <type_traits>
+
+namespace headband::friction {
+
+namespace {
+
+constexpr unsigned bit(FrictionLaw law) { return 1U << static_cast<unsigned>(law); }
+
+/// Laws that share the implicit solve, and those without a factor of Reynolds number.
+constexpr unsigned root_laws = bit(FrictionLaw::colebrook_white) | bit(FrictionLaw::smooth);
+constexpr unsigned factorless_laws =
+    bit(FrictionLaw::hazen_williams) | bit(FrictionLaw::manning) | bit(FrictionLaw::none);
+
+/// Least Reynolds number worked with.
+constexpr double least_reynolds = 1e-12;
+
+/// No older root at hand: the full solve.
+struct NoRoot {};
+
+/// An older root, left alone in `idle` lanes (laminar ones): what stays there must not hang on the other lanes.
+template <int W>
+struct OlderRoot {
+  Lanes<W>& root;
+  Mask<W> idle;
+};
+
+template <int W>
+HEADBAND_INLINE Lanes<W> solve(const Lanes<W>& rough, const Lanes<W>& b, const NoRoot&) {
+  return colebrook_root<W>(rough, b);
+}
+template <int W>
+HEADBAND_INLINE Lanes<W> solve(const Lanes<W>& rough, const Lanes<W>& b, const OlderRoot<W>& older) {
+  const Lanes<W> x = colebrook_correct<W>(rough, b, older.root, older.idle);
+  older.root = select(older.idle, older.root, x);
+  return x;
+}
+
+/// x and dx of one law; Colebrook-White and smooth through the shared solve.
+template <int W, class Kept>
+HEADBAND_INLINE Root<W> root_of(const PreparedRule<W>& rule,
+                                FrictionLaw law,
+                                const Lanes<W>& reynolds,
+                                const Lanes<W>& inverse,
+                                const Kept& kept) {
+  switch (law) {
+    case FrictionLaw::colebrook_white:
+    case FrictionLaw::smooth: {
+      const Lanes<W> rough = rule.rough_by_reynolds * reynolds;
+      const Lanes<W> x = solve<W>(rough, rule.root_constant * inverse, kept);
+      return {x, two_over_ln_10 * x / (rough + x + two_over_ln_10)};
+    }
+    case FrictionLaw::haaland:
+      return haaland<W>(rule.rough_term, inverse);
+    case FrictionLaw::swamee_jain:
+      return swamee_jain<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+    case FrictionLaw::serghides:
+      return serghides<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+    case FrictionLaw::zigrang_sylvester:
+      return zigrang_sylvester<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+    case FrictionLaw::churchill:
+      return churchill_turbulent<W>(rule.relative_roughness, inverse);
+    case FrictionLaw::hazen_williams:
+    case FrictionLaw::manning:
+    case FrictionLaw::none:
+      break;
+  }
+  return {Lanes<W>(1.0), Lanes<W>(0.0)};
+}
+
+/// The turbulent root in lanes of several laws: each law present is evaluated for all lanes and picked where it holds.
+template <int W, class Kept>
+Root<W> mixed_root(const PreparedRule<W>& rule, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
+  Root<W> r{Lanes<W>(1.0), Lanes<W>(0.0)};
+  constexpr FrictionLaw one_by_one[] = {FrictionLaw::colebrook_white, FrictionLaw::haaland,
+                                        FrictionLaw::swamee_jain,     FrictionLaw::serghides,
+                                        FrictionLaw::zigrang_sylvester, FrictionLaw::churchill};
+  for (const FrictionLaw law : one_by_one) {
+    const unsigned family = law == FrictionLaw::colebrook_white ? root_laws : bit(law);
+    if ((rule.laws_present & family) == 0) continue;
+    const Root<W> here = root_of<W>(rule, law, reynolds, inverse, kept);
+    Mask<W> on{};
+    for (int i = 0; i < W; ++i) on.set(i, (family & bit(rule.laws[static_cast<std::size_t>(i)])) != 0);
+    r.x = select(on, here.x, r.x);
+    r.dx = select(on, here.dx, r.dx);
+  }
+  return r;
+}
+
+/// Churchill's joint; lanes of the law `churchill` alone also pass here under the other transitions.
+template <int W>
+HEADBAND_INLINE Factor<W> churchill_factor(const Lanes<W>& laminar,
+                                           const Lanes<W>& inverse,
+                                           const Root<W>& root,
+                                           const Lanes<W>& scatter,
+                                           const Lanes<W>& turbulent_slope) {
+  const Lanes<W> a = power_16<W>(2.8284271247461900976 * root.x / sqrt(scatter));  // (8 x^2/scatter)^8
+  const Joined<W> j = churchill_joint<W>(laminar, inverse, a, turbulent_slope);
+  return {j.factor, j.log_slope};
+}
+
+/// The smooth step between laminar and turbulent, or the switch.
+template <int W>
+HEADBAND_INLINE Factor<W> join(const PreparedRule<W>& rule,
+                               const Lanes<W>& reynolds,
+                               const Lanes<W>& laminar,
+                               const Factor<W>& turbulent) {
+  const Mask<W> all_turbulent = reynolds >= rule.to;
+  if (all(all_turbulent)) return turbulent;
+  const Mask<W> all_laminar = (reynolds <= rule.from) & !all_turbulent;
+  if (all(all_laminar)) return {laminar, Lanes<W>(-1.0)};
+  const Lanes<W> t = (reynolds - rule.from) * rule.one_over_span;
+  const Lanes<W> s = t * t * (3.0 - 2.0 * t);
+  const Lanes<W> blended = (1.0 - s) * laminar + s * turbulent.factor;
+  // d s / d ln Re = 6 t (1 - t) Re / (to - from)
+  const Lanes<W> ds = 6.0 * t * (1.0 - t) * (reynolds * rule.one_over_span);
+  const Lanes<W> slope =
+      (s * turbulent.factor * turbulent.log_slope - (1.0 - s) * laminar + ds * (turbulent.factor - laminar)) / blended;
+  Factor<W> f{select(all_laminar, laminar, blended), select(all_laminar, Lanes<W>(-1.0), slope)};
+  f.factor = select(all_turbulent, turbulent.factor, f.factor);
+  f.log_slope = select(all_turbulent, turbulent.log_slope, f.log_slope);
+  return f;
+}
+
+/// The same bits come out whatever the other lanes hold: every branch on `all` skips work whose result no lane uses.
+template <int W, class Kept>
+HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& given, Kept kept) {
+  if ((rule.laws_present & ~factorless_laws) == 0) {
+    const Lanes<W> nothing = std::numeric_limits<double>::quiet_NaN();
+    return {select(rule.no_factor, nothing, Lanes<W>(0.0)), select(rule.no_factor, nothing, Lanes<W>(0.0))};
+  }
+  const Lanes<W> reynolds = max(given, Lanes<W>(least_reynolds));
+  const Lanes<W> inverse = 1.0 / reynolds;
+  const Lanes<W> laminar = 64.0 * inverse * rule.laminar_scatter;
+  const bool joint_only = rule.uniform && rule.kind == Transition::Kind::churchill;
+  const Mask<W> quiet = (reynolds <= rule.from) & (reynolds < rule.to) & !rule.churchill;
+  if (rule.uniform && all(quiet)) return {laminar, Lanes<W>(-1.0)};
+  if constexpr (std::is_same_v<Kept, OlderRoot<W>>) kept.idle = quiet;
+
+  const Mask<W> low = reynolds < Lanes<W>(least_turbulent_reynolds);
+  const Lanes<W> held = select(low, Lanes<W>(least_turbulent_reynolds), reynolds);
+  const Lanes<W> held_inverse = select(low, Lanes<W>(1.0 / least_turbulent_reynolds), inverse);
+  const Root<W> root = rule.uniform ? root_of<W>(rule, rule.law, held, held_inverse, kept)
+                                    : mixed_root<W, Kept>(rule, held, held_inverse, kept);
+  const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), -2.0 * root.dx / root.x);
+
+  if (joint_only) return churchill_factor<W>(laminar, inverse, root, rule.scatter, plain_slope);
+  Factor<W> turbulent{rule.scatter / (root.x * root.x), plain_slope};
+  if ((rule.laws_present & bit(FrictionLaw::churchill)) != 0) {
+    // the paper's formula is the turbulent side here, its own laminar term included
+    const Factor<W> full =
+        churchill_factor<W>(64.0 * held_inverse, held_inverse, root, Lanes<W>(1.0), plain_slope);
+    Mask<W> on{};
+    for (int i = 0; i < W; ++i) on.set(i, rule.laws[static_cast<std::size_t>(i)] == FrictionLaw::churchill);
+    turbulent.factor = select(on, rule.scatter * full.factor, turbulent.factor);
+    turbulent.log_slope = select(on, select(low, Lanes<W>(0.0), full.log_slope), turbulent.log_slope);
+  }
+  Factor<W> f = join<W>(rule, reynolds, laminar, turbulent);
+  if (rule.uniform) return f;
+  if (any(rule.churchill)) {
+    const Factor<W> joint = churchill_factor<W>(laminar, inverse, root, rule.scatter, plain_slope);
+    f.factor = select(rule.churchill, joint.factor, f.factor);
+    f.log_slope = select(rule.churchill, joint.log_slope, f.log_slope);
+  }
+  const Lanes<W> nothing = std::numeric_limits<double>::quiet_NaN();
+  f.factor = select(rule.lossless, Lanes<W>(0.0), select(rule.no_factor, nothing, f.factor));
+  f.log_slope = select(rule.lossless, Lanes<W>(0.0), select(rule.no_factor, nothing, f.log_slope));
+  return f;
+}
+
+}  // namespace
+
+template <int W>
+PreparedRule<W> prepare(const FactorRule<W>& rule) {
+  PreparedRule<W> p;
+  p.law = rule.law[0];
+  p.kind = rule.transition[0].kind;
+  p.laws = rule.law;
+  p.relative_roughness = rule.relative_roughness;
+  p.scatter = rule.scatter;
+  p.laminar_scatter = rule.laminar_scatter;
+  p.rough_by_reynolds = rule.relative_roughness * colebrook_rough;
+  p.root_constant = colebrook_constant;
+  p.from = p.to = p.one_over_span = Lanes<W>(0.0);
+  for (int i = 0; i < W; ++i) {
+    const auto lane = static_cast<std::size_t>(i);
+    const FrictionLaw law = rule.law[lane];
+    const Transition& transition = rule.transition[lane];
+    p.laws_present |= bit(law);
+    p.uniform = p.uniform && law == p.law && transition.kind == p.kind;
+    p.sudden.set(i, transition.kind == Transition::Kind::sudden);
+    p.churchill.set(i, transition.kind == Transition::Kind::churchill);
+    p.lossless.set(i, law == FrictionLaw::none);
+    p.no_factor.set(i, law == FrictionLaw::hazen_williams || law == FrictionLaw::manning);
+    const bool step = transition.kind == Transition::Kind::sudden || !(transition.to > transition.from);
+    p.from.set(i, transition.from);
+    p.to.set(i, step ? transition.from : transition.to);
+    p.one_over_span.set(i, step ? 0.0 : 1.0 / (transition.to - transition.from));
+    if (law == FrictionLaw::smooth) {
+      p.rough_by_reynolds.set(i, 0.0);
+      p.root_constant.set(i, prandtl_constant);
+    }
+  }
+  p.root_kept = (p.laws_present & root_laws) != 0;
+  p.rough_term = Lanes<W>(0.0);
+  if ((p.laws_present & bit(FrictionLaw::haaland)) != 0)
+    p.rough_term = base::pow(rule.relative_roughness / 3.7, 1.11);
+  return p;
+}
+
+template <int W>
+Factor<W> darcy_factor(const PreparedRule<W>& rule, const Lanes<W>& reynolds) {
+  return evaluate<W>(rule, reynolds, NoRoot{});
+}
+
+template <int W>
+Factor<W> darcy_factor(const FactorRule<W>& rule, const Lanes<W>& reynolds) {
+  return darcy_factor<W>(prepare<W>(rule), reynolds);
+}
+
+template <int W>
+Factor<W> darcy_factor_near(const PreparedRule<W>& rule, const Lanes<W>& reynolds, Lanes<W>& root) {
+  return evaluate<W>(rule, reynolds, OlderRoot<W>{root, {}});
+}
+
+template PreparedRule<1> prepare<1>(const FactorRule<1>&);
+template PreparedRule<8> prepare<8>(const FactorRule<8>&);
+template Factor<1> darcy_factor<1>(const PreparedRule<1>&, const Lanes<1>&);
+template Factor<8> darcy_factor<8>(const PreparedRule<8>&, const Lanes<8>&);
+template Factor<1> darcy_factor<1>(const FactorRule<1>&, const Lanes<1>&);
+template Factor<8> darcy_factor<8>(const FactorRule<8>&, const Lanes<8>&);
+template Factor<1> darcy_factor_near<1>(const PreparedRule<1>&, const Lanes<1>&, Lanes<1>&);
+template Factor<8> darcy_factor_near<8>(const PreparedRule<8>&, const Lanes<8>&, Lanes<8>&);
+
+}  // namespace headband::friction
