@@ -1,0 +1,103 @@
+// SPDX-License-Identifier: MIT
+#include "core/report/markup.hpp"
+
+#include <fmt/format.h>
+
+#include <cctype>
+#include <cmath>
+
+namespace headband::report {
+
+std::string escaped(std::string_view text) {
+  std::string out;
+  out.reserve(text.size());
+  for (const char c : text) {
+    switch (c) {
+      case '&': out += "&amp;"; break;
+      case '<': out += "&lt;"; break;
+      case '>': out += "&gt;"; break;
+      case '"': out += "&quot;"; break;
+      case '\'': out += "&#39;"; break;
+      default:
+        // Control characters are not allowed in a page; a visible box takes their place.
+        if (static_cast<unsigned char>(c) < 0x20 && c != '\n' && c != '\t' && c != '\r')
+          out += "\u25a1";
+        else
+          out += c;
+    }
+  }
+  return out;
+}
+
+std::string slug(std::string_view text) {
+  std::string out;
+  for (const char c : text) {
+    const auto letter = static_cast<unsigned char>(c);
+    if (letter < 0x80 && std::isalnum(letter) != 0)
+      out += static_cast<char>(std::tolower(letter));
+    else if (letter >= 0x80)
+      out += fmt::format("{:02x}", letter);
+    else if (!out.empty() && out.back() != '-')
+      out += '-';
+  }
+  while (!out.empty() && out.back() == '-') out.pop_back();
+  return out.empty() ? "x" : out;
+}
+
+std::string both(const std::string& si, const std::string& us) {
+  if (si == us) return si;
+  return fmt::format(R"(<span class="si">{}</span><span class="us">{}</span>)", si, us);
+}
+
+std::string both(double si, Shown shown, int significant) {
+  return both(with_unit(si, shown, Family::si, significant), with_unit(si, shown, Family::us, significant));
+}
+
+std::string both_with_bound(double si, double bound, Shown shown, Shown bound_shown) {
+  const auto one = [&](Family family) {
+    const Measure in = measure(shown, family, si);
+    const Measure of_bound = measure(bound_shown, family, si);
+    if (std::isnan(bound)) return with_unit(si, shown, family);
+    const double width = bound * of_bound.scale;
+    // A bound far below the last useful figure is told as such instead of adding digits to the value.
+    const double least = 5e-4 * std::abs(in(si));
+    if (width < least)
+      return fmt::format("{} ± under {}\u00a0{}", figures(in(si)), figures(std::pow(10.0, std::floor(std::log10(least)) + 1), 1), in.unit);
+    const int places = places_for(width);
+    return fmt::format("{} ± {}\u00a0{}", decimals(in(si), places), decimals(width, places), in.unit);
+  };
+  return both(one(Family::si), one(Family::us));
+}
+
+std::string html(const Table& table) {
+  if (table.rows.empty()) return {};
+  std::string out = fmt::format(
+      "<div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"{0}\">\n<table>\n<caption>{0}</caption>\n<thead><tr>",
+      escaped(table.caption));
+  const auto shape = [&](std::size_t column) {
+    return column < table.columns.size() && table.columns[column].number ? " class=\"number\"" : "";
+  };
+  for (std::size_t i = 0; i < table.columns.size(); ++i)
+    out += fmt::format("<th scope=\"col\"{}>{}</th>", shape(i), table.columns[i].head);
+  out += "</tr></thead>\n<tbody>\n";
+  for (const auto& row : table.rows) {
+    out += "<tr>";
+    for (std::size_t i = 0; i < row.size(); ++i) {
+      if (i == 0)
+        out += fmt::format("<th scope=\"row\"{}>{}</th>", shape(i), row[i]);
+      else
+        out += fmt::format("<td{}>{}</td>", shape(i), row[i]);
+    }
+    out += "</tr>\n";
+  }
+  return out + "</tbody>\n</table>\n</div>\n";
+}
+
+std::string html(const std::vector<std::pair<std::string, std::string>>& terms) {
+  if (terms.empty()) return {};
+  std::string out = "<dl class=\"terms\">\n";
+  for (const auto& [term, value] : terms) out += fmt::format("<div><dt>{}</dt><dd>{}</dd></div>\n", escaped(term), value);
+  return out + "</dl>\n";
+}
+
+}  // namespace headband::report
