@@ -34,14 +34,15 @@ std::string slug(std::string_view text) {
   for (const char c : text) {
     const auto letter = static_cast<unsigned char>(c);
     if (letter < 0x80 && std::isalnum(letter) != 0)
-      out += static_cast<char>(std::tolower(letter));
-    else if (letter >= 0x80)
-      out += fmt::format("{:02x}", letter);
-    else if (!out.empty() && out.back() != '-')
+      out += c;
+    else if (c == ' ')
       out += '-';
+    else if (c == '-' || c == '_')
+      out += fmt::format("_{}", c);
+    else
+      out += fmt::format("_{:02x}", letter);
   }
-  while (!out.empty() && out.back() == '-') out.pop_back();
-  return out.empty() ? "x" : out;
+  return out.empty() ? "_" : out;
 }
 
 std::string both(const std::string& si, const std::string& us) {

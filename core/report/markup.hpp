@@ -14,7 +14,8 @@ namespace headband::report {
 /// `text` safe inside elements and quoted attributes.
 [[nodiscard]] std::string escaped(std::string_view text);
 
-/// A name usable as an id and as part of a file name: letters, digits, dashes.
+/// A name usable as an id and as part of a file name: letters and digits stay, a space becomes a dash, the rest "_" and its
+/// code. Different texts give different names.
 [[nodiscard]] std::string slug(std::string_view text);
 
 /// Both families in one place, the style sheet shows the one that is chosen; once only when they are equal. HTML in, HTML out.

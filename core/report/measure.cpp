@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: MIT
 #include "core/report/measure.hpp"
 
+#include "core/base/units.hpp"
+
 #include <fmt/format.h>
 
 #include <algorithm>
@@ -12,14 +14,11 @@
 namespace headband::report {
 namespace {
 
-// Exact definitions: inch, foot, pound, standard gravity, US gallon = 231 cubic inches.
-constexpr double foot = 0.3048;
-constexpr double inch = 0.0254;
-constexpr double mile = 5280.0 * foot;
-constexpr double pound = 0.45359237;
-constexpr double pound_force = pound * 9.80665;
-constexpr double psi = pound_force / (inch * inch);
-constexpr double gallon = 231.0 * inch * inch * inch;
+/// A unit of the house's table under the name it is printed with.
+Measure in(std::string_view name, std::string printed) {
+  const base::Unit unit = base::find_unit(name).value().unit;
+  return {std::move(printed), unit.by / unit.times, -unit.offset};
+}
 
 constexpr std::string_view narrow_space = "\u202f";
 
@@ -31,33 +30,34 @@ Measure measure(Shown shown, Family family, double largest) {
   const bool us = family == Family::us;
   const double most = std::abs(largest);
   switch (shown) {
-    case Shown::number: return {"", 1.0};
-    case Shown::share: return {"%", 100.0};
-    case Shown::pressure: return us ? Measure{"psig", 1.0 / psi} : Measure{"bar g", 1e-5};
-    case Shown::absolute_pressure: return us ? Measure{"psia", 1.0 / psi} : Measure{"bar abs", 1e-5};
-    case Shown::pressure_difference: return us ? Measure{"psi", 1.0 / psi} : Measure{"bar", 1e-5};
+    case Shown::number: return {};
+    case Shown::share: return {"%", 100.0, 0.0};
+    case Shown::pressure: return us ? in("psi", "psi g") : in("bar", "bar g");
+    case Shown::absolute_pressure: return us ? in("psi", "psi abs") : in("bar", "bar abs");
+    case Shown::pressure_difference: return us ? in("psi", "psi") : in("bar", "bar");
     case Shown::head:
-    case Shown::elevation: return us ? Measure{"ft", 1.0 / foot} : Measure{"m", 1.0};
+    case Shown::elevation: return us ? in("ft", "ft") : in("m", "m");
     case Shown::chainage:
-      if (us) return most > 5.0 * mile ? Measure{"miles", 1.0 / mile} : Measure{"ft", 1.0 / foot};
-      return most > 20e3 ? Measure{"km", 1e-3} : Measure{"m", 1.0};
+      if (us) return most >= 16e3 ? in("mile", "miles") : in("ft", "ft");
+      return most >= 20e3 ? in("km", "km") : in("m", "m");
     case Shown::diameter:
-    case Shown::roughness: return us ? Measure{"in", 1.0 / inch} : Measure{"mm", 1e3};
+    case Shown::roughness: return us ? in("in", "in") : in("mm", "mm");
     case Shown::flow:
-      if (us) return {"gpm", 60.0 / gallon};
-      return most > 2.0 ? Measure{"m³/s", 1.0} : Measure{"L/s", 1e3};
-    case Shown::velocity: return us ? Measure{"ft/s", 1.0 / foot} : Measure{"m/s", 1.0};
-    case Shown::time: return {"s", 1.0};
+      if (us) return in("gpm", "gpm");
+      return most >= 1.0 ? in("m3/s", "m³/s") : in("L/s", "L/s");
+    case Shown::velocity: return us ? in("ft/s", "ft/s") : in("m/s", "m/s");
+    case Shown::time: return in("s", "s");
     case Shown::volume:
-      if (us) return {"gal", 1.0 / gallon};
-      return most < 0.1 ? Measure{"L", 1e3} : Measure{"m³", 1.0};
-    case Shown::density: return us ? Measure{"lb/ft³", foot * foot * foot / pound} : Measure{"kg/m³", 1.0};
-    case Shown::kinematic_viscosity: return {"cSt", 1e6};
-    case Shown::dynamic_viscosity: return us ? Measure{"cP", 1e3} : Measure{"mPa s", 1e3};
-    case Shown::modulus: return us ? Measure{"ksi", 1e-3 / psi} : Measure{"GPa", 1e-9};
-    case Shown::temperature: return us ? Measure{"°F", 1.8, -459.67} : Measure{"°C", 1.0, -273.15};
-    case Shown::speed: return {"rpm", 30.0 / std::numbers::pi};
-    case Shown::torque: return us ? Measure{"lbf ft", 1.0 / (pound_force * foot)} : Measure{"N m", 1.0};
+      if (us) return in("US gal", "gal");
+      return most < 0.1 ? in("L", "L") : in("m3", "m³");
+    case Shown::density: return us ? in("lb/ft3", "lb/ft³") : in("kg/m3", "kg/m³");
+    case Shown::kinematic_viscosity: return in("cSt", "cSt");
+    case Shown::dynamic_viscosity: return us ? in("cP", "cP") : in("mPa s", "mPa s");
+    case Shown::modulus: return us ? in("ksi", "ksi") : in("GPa", "GPa");
+    case Shown::temperature: return us ? in("degF", "°F") : in("degC", "°C");
+    case Shown::speed: return in("rpm", "rpm");
+    // 1 lbf ft = 1 lbf over 1 ft, both by definition; the case file knows no torque.
+    case Shown::torque: return us ? Measure{"lbf ft", 1.0 / 1.3558179483314004, 0.0} : Measure{"N m", 1.0, 0.0};
   }
   return {};
 }
