@@ -1,0 +1,178 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/program/arguments.hpp"
+
+#include "montecarlo/program/caution.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <array>
+#include <charconv>
+
+namespace headband::program {
+namespace {
+
+#define HEADBAND_RUN_OPTIONS "--out --report --threads --units --quiet --json --no-color -f --gate"
+
+constexpr std::array verb_table{
+    VerbWords{"new", "KIND [FILE]", 0, 2, "write a starter case; alone: list the kinds", "-f --quiet", "headband new valve"},
+    VerbWords{"check", "CASE", 1, 1, "read a case and echo every value as understood",
+              "--units --quiet --json --no-color", "headband check valve.toml"},
+    VerbWords{"flow", "CASE", 1, 1, "steady flow, heads and pressure drops", HEADBAND_RUN_OPTIONS,
+              "headband flow valve.toml"},
+    VerbWords{"surge", "CASE", 1, 1, "one run through the events of the case", HEADBAND_RUN_OPTIONS,
+              "headband surge valve.toml --report valve.html"},
+    VerbWords{"band", "CASE", 1, 1, "sampled answers with bands and verdicts",
+              "--surge --seed --resume " HEADBAND_RUN_OPTIONS, "headband band --surge valve.toml --threads 2"},
+    VerbWords{"report", "RESULT", 1, 1, "the page, or tables and pictures, of a result file",
+              "--report --svg --csv --json --units --quiet --no-color -f", "headband report valve-band.h5"},
+    VerbWords{"liquid", "NAME", 1, 1, "properties of a liquid the program knows",
+              "--temperature --pressure --units --quiet --json --no-color",
+              "headband liquid water --temperature \"15 degC\""},
+    VerbWords{"fastest", "CASE", 1, 1, "shortest closing time at a confidence", "", "", false},
+    VerbWords{"age", "CASE", 1, 1, "growth of roughness over the years", "", "", false},
+    VerbWords{"match", "CASE", 1, 1, "unknowns from a field log", "", "", false},
+    VerbWords{"doubt", "CASE", 1, 1, "what to measure to settle a verdict", "", "", false},
+    VerbWords{"replay", "RESULT N", 2, 3, "one draw as a plain case", "", "", false},
+    VerbWords{"compare", "A.h5 B.h5", 2, 2, "two results side by side", "", "", false},
+    VerbWords{"at", "RESULT PLACE", 2, 2, "everything for one spot", "", "", false},
+};
+
+constexpr std::array option_table{
+    OptionWords{"--out", "FILE.h5", "result file (default CASE-VERB.h5 in this folder)"},
+    OptionWords{"--report", "FILE.html", "write the report page as well, under this name"},
+    OptionWords{"--svg", "FOLDER", "write the pictures instead of the page"},
+    OptionWords{"--csv", "FOLDER", "write the tables instead of the page"},
+    OptionWords{"--surge", "", "march every draw, not the steady answers alone"},
+    OptionWords{"--seed", "N", "seed of the draws (default: the case's)"},
+    OptionWords{"--resume", "", "take up an interrupted band: the same bits as without"},
+    OptionWords{"--threads", "N", "threads (default: all; no answer depends on it)"},
+    OptionWords{"--temperature", "T", "temperature with unit (default 20 degC)"},
+    OptionWords{"--pressure", "P", "absolute pressure with unit (default 1 atm)"},
+    OptionWords{"--units", "si|us", "units people are shown; files stay SI"},
+    OptionWords{"--gate", "", "exit 1: a limit is not kept, 2: cannot tell"},
+    OptionWords{"--json", "", "print one JSON object, SI, in place of the summary"},
+    OptionWords{"--quiet", "", "no progress and no remarks"},
+    OptionWords{"--no-color", "", "plain text; also by NO_COLOR or TERM=dumb"},
+    OptionWords{"-f", "", "replace a file of a name you gave"},
+    OptionWords{"--help", "", "this text; also after a verb"},
+};
+
+/// Optimal-string-alignment distance (Levenshtein with swaps of neighbours).
+std::size_t distance(std::string_view a, std::string_view b) {
+  const std::size_t rows = a.size() + 1, columns = b.size() + 1;
+  std::vector<std::size_t> table(rows * columns);
+  const auto at = [&](std::size_t i, std::size_t j) -> std::size_t& { return table[i * columns + j]; };
+  for (std::size_t i = 0; i < rows; ++i) at(i, 0) = i;
+  for (std::size_t j = 0; j < columns; ++j) at(0, j) = j;
+  for (std::size_t i = 1; i < rows; ++i) {
+    for (std::size_t j = 1; j < columns; ++j) {
+      const std::size_t other = a[i - 1] == b[j - 1] ? 0 : 1;
+      at(i, j) = std::min({at(i - 1, j) + 1, at(i, j - 1) + 1, at(i - 1, j - 1) + other});
+      if (i > 1 && j > 1 && a[i - 1] == b[j - 2] && a[i - 2] == b[j - 1]) {
+        at(i, j) = std::min(at(i, j), at(i - 2, j - 2) + 1);
+      }
+    }
+  }
+  return at(rows - 1, columns - 1);
+}
+
+std::string option_line(const OptionWords& option) {
+  std::string left = std::string(option.name);
+  if (!option.value.empty()) left += " " + std::string(option.value);
+  return fmt::format("  {:<20} {}\n", left, option.what);
+}
+
+}  // namespace
+
+std::span<const VerbWords> verbs() { return verb_table; }
+std::span<const OptionWords> all_options() { return option_table; }
+
+const VerbWords* verb_named(std::string_view name) {
+  for (const auto& verb : verb_table) {
+    if (verb.name == name) return &verb;
+  }
+  return nullptr;
+}
+
+bool takes(const VerbWords& verb, std::string_view option) {
+  if (option == "--help") return true;
+  std::string_view rest = verb.options;
+  while (!rest.empty()) {
+    const auto end = std::min(rest.find(' '), rest.size());
+    if (rest.substr(0, end) == option) return true;
+    rest.remove_prefix(std::min(end + 1, rest.size()));
+  }
+  return false;
+}
+
+unsigned long long whole_number(std::string_view option, const std::string& text, unsigned long long low,
+                                unsigned long long high) {
+  const bool digits = !text.empty() && std::ranges::all_of(text, [](char c) { return c >= '0' && c <= '9'; });
+  const bool plain = digits && (text.size() == 1 || text.front() != '0');
+  unsigned long long number = 0;
+  const auto [end, error] = std::from_chars(text.data(), text.data() + text.size(), number);
+  if (!plain || error != std::errc() || end != text.data() + text.size() || number < low || number > high) {
+    throw UsageError(fmt::format("{} takes a whole number from {} to {} in plain digits, not '{}'", option, low, high, text));
+  }
+  return number;
+}
+
+std::string nearest(std::string_view word, const std::vector<std::string>& known) {
+  std::string best;
+  std::size_t least = 3;
+  for (const auto& candidate : known) {
+    const std::size_t d = distance(word, candidate);
+    if (d < least) {
+      least = d;
+      best = candidate;
+    }
+  }
+  return best;
+}
+
+std::string help() {
+  std::string text =
+      "headband: surge and pressure drop of liquid pipelines, with error bars\n\n"
+      "  headband new valve                     a starter case to edit: valve.toml\n"
+      "  headband check valve.toml              every value as understood\n"
+      "  headband flow valve.toml               steady flow and pressure drop\n"
+      "  headband surge valve.toml              what the event does, one run\n"
+      "  headband band --surge valve.toml       how far that answer can be trusted\n"
+      "  headband report valve-band.h5          the page for the file\n\n";
+  text += caution_text();
+  text += "\nVerbs:\n";
+  for (const auto& verb : verb_table) {
+    if (verb.ready) text += fmt::format("  {:<20} {}\n", fmt::format("{} {}", verb.name, verb.words), verb.what);
+  }
+  text += "\nKnown words this version does not compute yet (exit 64):\n  ";
+  bool first = true;
+  for (const auto& verb : verb_table) {
+    if (verb.ready) continue;
+    text += fmt::format("{}{}", first ? "" : ", ", verb.name);
+    first = false;
+  }
+  text += "\n\nOptions (headband VERB --help shows those of a verb):\n";
+  for (const auto& option : option_table) text += option_line(option);
+  text +=
+      "\nA case named - is read from standard input. Results go to standard output,\n"
+      "everything else to standard error.\n\n"
+      "Exit codes: 0 done; with --gate 1 a limit is not kept, 2 cannot tell;\n"
+      "3 the calculation did not finish; 64 wrong usage; 65 wrong case, damaged file,\n"
+      "or more memory or time than allowed; 66 input missing; 70 internal error;\n"
+      "73 cannot create a file; 74 cannot write; 130 or 143 stopped by the user.\n";
+  return text;
+}
+
+std::string help(const VerbWords& verb) {
+  if (!verb.ready) return fmt::format("headband {} {}: {}\nNot computed yet by this version.\n", verb.name, verb.words, verb.what);
+  std::string text = fmt::format("headband {} {}: {}\n\n  {}\n\n", verb.name, verb.words, verb.what, verb.example);
+  text += caution_text();
+  text += "\nOptions:\n";
+  for (const auto& option : option_table) {
+    if (takes(verb, option.name)) text += option_line(option);
+  }
+  return text;
+}
+
+}  // namespace headband::program
