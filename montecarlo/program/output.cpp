@@ -42,9 +42,9 @@ std::string folder_of(const std::string& path) {
   return folder.empty() ? "." : folder;
 }
 
-bool carries(const std::string& path, const std::string& mark) {
+bool carries(const std::string& path, std::string_view mark) {
   std::ifstream file(path, std::ios::binary);
-  std::string head(4096, '\0');
+  std::string head(262144, '\0');
   file.read(head.data(), static_cast<std::streamsize>(head.size()));
   head.resize(static_cast<std::size_t>(file.gcount()));
   return !mark.empty() && head.find(mark) != std::string::npos;

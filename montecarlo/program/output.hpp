@@ -28,8 +28,12 @@ void remark(const Options& options, std::string_view text);
 struct Replace {
   bool force = false;     ///< -f: replace whatever it is
   bool own_name = true;   ///< the name is headband's own; then a file that carries `mark` is replaced
-  std::string mark;       ///< text in the first 4 KiB by which headband knows its own
+  std::string_view mark;  ///< text in the first 256 KiB by which headband knows its own; empty: it knows none
 };
+
+/// How headband knows a page or a result file of its own.
+inline constexpr std::string_view page_mark = "<meta name=\"generator\" content=\"headband";
+inline constexpr std::string_view result_mark = "headband-results";
 
 /// Looks whether `path` could be written later, before anything is computed.
 /// @throws base::IoError (cannot_create)

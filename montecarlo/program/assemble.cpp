@@ -1,0 +1,129 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/program/assemble.hpp"
+
+#include "core/casefile/read.hpp"
+#include "montecarlo/program/decide.hpp"
+#include "montecarlo/program/judge.hpp"
+#include "montecarlo/program/provenance.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+#include <utility>
+
+namespace headband::program {
+namespace {
+
+void add_once(std::vector<std::string>& list, const std::string& text) {
+  if (std::ranges::find(list, text) == list.end()) list.push_back(text);
+}
+
+/// The cautions that belong beside the numbers of this study (common practice).
+std::vector<std::string> cautions(const answers::Study& study, const network::Case& c, const network::Plan& plan) {
+  std::vector<std::string> list{
+      "This is a calculation aid. The code in force and a licensed engineer decide. Ratings were typed by the user.",
+      "Not covered: slam of check valves, structures that move with the liquid, human error, wrong drawings, a wrong "
+      "valve."};
+  const bool surged = study.transient.has_value() || (study.bands && study.bands->surged);
+  if (study.transient && !study.transient->cavities.empty()) {
+    list.emplace_back("Vapour formed in this run; pressures after a cavity rejoins are of the right order of size only.");
+  }
+  if (study.bands && study.bands->surged && study.bands->with_cavity > 0) {
+    list.push_back(fmt::format("Vapour formed in {} of {} draws; pressures after a cavity rejoins are of the right order of "
+                               "size only.", study.bands->with_cavity, study.bands->draws));
+  }
+  if (surged) list.emplace_back("A smooth pipe is worse for surge and better for pressure drop.");
+  if (c.liquid.free_gas.given() && (c.liquid.free_gas.value > 0.0 || !c.liquid.free_gas.exact())) {
+    list.emplace_back("Free gas lowers the first peak but lengthens the swing; it is not a safety device.");
+  }
+  const bool checked = std::ranges::any_of(plan.devices, [&](const network::DevicePlan& d) {
+    if (d.kind == network::DeviceKind::check_valve) return true;
+    return d.kind == network::DeviceKind::pump &&
+           c.pumps[static_cast<std::size_t>(d.index)].check_valve.kind == network::CheckValveKind::ideal;
+  });
+  if (surged && checked) list.emplace_back("Ideal closure of check valves is assumed unless their data are given; slam is not assessed.");
+  const auto plastic = [](const network::Pipe& pipe) {
+    return (pipe.modulus.given() && pipe.modulus.value < 10e9) || !pipe.creep.empty();
+  };
+  if (surged && std::ranges::any_of(c.pipes, plastic)) {
+    list.emplace_back("Plastic walls: the modulus depends on temperature, age and time under load.");
+  }
+  return list;
+}
+
+}  // namespace
+
+answers::Study begin_study(const network::Case& c, const Options& options, const std::string& verb) {
+  answers::Study study;
+  study.verb = verb;
+  study.provenance = begin_provenance(c, options, verb);
+  study.title = c.about.title.empty() ? c.file_name : c.about.title;
+  study.note = c.about.note;
+  study.units_shown = !options.units.empty() ? options.units : c.show.units == network::UnitFamily::us ? "us" : "si";
+  study.values = casefile::echo(c);
+  study.guesses = c.guesses;
+  study.warnings = c.warnings;
+  return study;
+}
+
+void add_run(answers::Study& study, transient::SurgeRun run) {
+  for (std::size_t i = 0; i < study.places.size() && i < run.places.size(); ++i) {
+    auto& place = study.places[i];
+    const auto& surged = run.places[i];
+    place.surged = surged.surged;
+    place.max_head = surged.max_head;
+    place.max_pressure = surged.max_pressure;
+    place.time_of_max = surged.time_of_max;
+    place.min_head = surged.min_head;
+    place.min_pressure = surged.min_pressure;
+    place.time_of_min = surged.time_of_min;
+  }
+  for (std::size_t i = 0; i < study.devices.size() && i < run.devices.size(); ++i) {
+    auto& numbers = study.devices[i].numbers;
+    for (const auto& [key, value] : run.devices[i].numbers) {
+      const auto known = std::ranges::find(numbers, key, &std::pair<std::string, double>::first);
+      if (known == numbers.end()) numbers.emplace_back(key, value);
+    }
+  }
+  study.highest = std::move(run.highest);
+  study.lowest = std::move(run.lowest);
+  study.events = std::move(run.events);
+  study.audit = run.audit;
+  study.grid = std::move(run.grid);
+  for (const auto& warning : run.warnings) add_once(study.warnings, warning);
+  if (!run.completed) {
+    study.state = answers::RunState::incomplete;
+    add_once(study.warnings, fmt::format("the run did not finish: {}; last good time {} s", run.transient.status,
+                                         run.transient.last_good_time));
+  }
+  study.transient = std::move(run.transient);
+}
+
+void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOutcome outcome) {
+  for (const auto& limit : c.limits) {
+    if (limit.at_most < 0.0) add_once(study.guesses, fmt::format("limit {}: at_most 5 % (default)", limit.name));
+  }
+  for (const auto& warning : outcome.warnings) add_once(study.warnings, warning);
+  study.limits = std::move(outcome.limits);
+  study.bands = std::move(outcome.bands);
+  if (outcome.all_failed) {
+    study.state = answers::RunState::incomplete;
+    add_once(study.warnings, "every draw failed");
+  }
+  if (outcome.stopped && study.state == answers::RunState::complete) study.state = answers::RunState::partial;
+}
+
+void conclude(answers::Study& study, const network::Case& c, const network::Plan& plan) {
+  study.cautions = cautions(study, c, plan);
+  if (study.state == answers::RunState::incomplete && study.limits_shown) {
+    for (auto& limit : study.limits) limit.verdict = answers::Verdict::cannot_tell;
+    study.verdict = answers::Verdict::cannot_tell;
+  } else {
+    study.verdict = study.limits_shown ? worst(study.limits) : answers::Verdict::none;
+  }
+  study.decision = decision(study);
+  end_provenance(study.provenance);
+}
+
+}  // namespace headband::program
