@@ -28,8 +28,9 @@ LEVELS = [
     ["transient/march"],
     ["transient/lumped"],
     ["montecarlo/sampling"],
+    ["montecarlo/bands"],
     ["montecarlo/propagate"],
-    ["montecarlo/bands", "montecarlo/sensitivity"],
+    ["montecarlo/sensitivity"],
     ["montecarlo/closing", "montecarlo/ageing", "montecarlo/matching"],
     ["montecarlo/program"],
 ]

@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/program/arguments.hpp"
 
+#include "core/network/nearest_word.hpp"
 #include "montecarlo/program/caution.hpp"
 
 #include <fmt/format.h>
@@ -48,7 +49,7 @@ constexpr std::array option_table{
     OptionWords{"--resume", "", "take up an interrupted band: the same bits as without"},
     OptionWords{"--threads", "N", "threads (default: all; no answer depends on it)"},
     OptionWords{"--temperature", "T", "temperature with unit (default 20 degC)"},
-    OptionWords{"--pressure", "P", "absolute pressure with unit (default 1 atm)"},
+    OptionWords{"--pressure", "P", "absolute pressure with unit (default 1 bar)"},
     OptionWords{"--units", "si|us", "units people are shown; files stay SI"},
     OptionWords{"--gate", "", "exit 1: a limit is not kept, 2: cannot tell"},
     OptionWords{"--json", "", "print one JSON object, SI, in place of the summary"},
@@ -58,28 +59,9 @@ constexpr std::array option_table{
     OptionWords{"--help", "", "this text; also after a verb"},
 };
 
-/// Optimal-string-alignment distance (Levenshtein with swaps of neighbours).
-std::size_t distance(std::string_view a, std::string_view b) {
-  const std::size_t rows = a.size() + 1, columns = b.size() + 1;
-  std::vector<std::size_t> table(rows * columns);
-  const auto at = [&](std::size_t i, std::size_t j) -> std::size_t& { return table[i * columns + j]; };
-  for (std::size_t i = 0; i < rows; ++i) at(i, 0) = i;
-  for (std::size_t j = 0; j < columns; ++j) at(0, j) = j;
-  for (std::size_t i = 1; i < rows; ++i) {
-    for (std::size_t j = 1; j < columns; ++j) {
-      const std::size_t other = a[i - 1] == b[j - 1] ? 0 : 1;
-      at(i, j) = std::min({at(i - 1, j) + 1, at(i, j - 1) + 1, at(i - 1, j - 1) + other});
-      if (i > 1 && j > 1 && a[i - 1] == b[j - 2] && a[i - 2] == b[j - 1]) {
-        at(i, j) = std::min(at(i, j), at(i - 2, j - 2) + 1);
-      }
-    }
-  }
-  return at(rows - 1, columns - 1);
-}
-
 std::string option_line(const OptionWords& option) {
   std::string left = std::string(option.name);
-  if (!option.value.empty()) left += " " + std::string(option.value);
+  if (!option.value.empty()) left.append(" ").append(option.value);
   return fmt::format("  {:<20} {}\n", left, option.what);
 }
 
@@ -118,17 +100,9 @@ unsigned long long whole_number(std::string_view option, const std::string& text
   return number;
 }
 
-std::string nearest(std::string_view word, const std::vector<std::string>& known) {
-  std::string best;
-  std::size_t least = 3;
-  for (const auto& candidate : known) {
-    const std::size_t d = distance(word, candidate);
-    if (d < least) {
-      least = d;
-      best = candidate;
-    }
-  }
-  return best;
+std::string did_you_mean(const std::string& word, const std::vector<std::string>& known) {
+  const std::string near = network::nearest_word(word, known);
+  return near.empty() ? "" : fmt::format("; did you mean {}?", near);
 }
 
 std::string help() {

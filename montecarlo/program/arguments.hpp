@@ -46,8 +46,8 @@ struct VerbWords {
 [[nodiscard]] unsigned long long whole_number(std::string_view option, const std::string& text, unsigned long long low,
                                               unsigned long long high);
 
-/// The nearest of `known` within two edits (a swap counts one); empty where none is that near.
-[[nodiscard]] std::string nearest(std::string_view word, const std::vector<std::string>& known);
+/// "; did you mean WORD?" with the nearest known word, or nothing where none is near.
+[[nodiscard]] std::string did_you_mean(const std::string& word, const std::vector<std::string>& known);
 
 /// Help of the whole program and of one verb, at most 80 columns wide.
 [[nodiscard]] std::string help();

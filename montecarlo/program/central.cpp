@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/program/central.hpp"
 
+#include "core/base/error.hpp"
 #include "core/base/units.hpp"
 
 #include <fmt/format.h>
@@ -129,6 +130,31 @@ void judge_vapour(const network::Case& c, Central& central) {
   }
 }
 
+/// A valve sized by its flow needs head in the direction of that flow (convention n): the case is wrong.
+[[noreturn]] void refuse_valve(const network::Case& c, const Central& central) {
+  base::Problems problems;
+  for (const auto& device : central.plan.devices) {
+    if (device.kind != network::DeviceKind::valve) continue;
+    const auto at = static_cast<std::size_t>(device.index);
+    const auto& valve = c.valves[at];
+    const double flow = central.values.valves[at].sizing_flow.number;
+    if (!valve.flow.given() || std::isnan(flow)) continue;
+    const double before = head_of(central, device.from);
+    const double after = device.to.exists() ? head_of(central, device.to) : central.values.places[device.from.at()].elevation.number;
+    if (flow * (before - after) > 0.0) continue;
+    const auto words = [&](double head) { return base::shown(head, base::Dimension::length, c.show.units); };
+    problems.push_back({.place = valve.flow.place,
+                        .path = "valve/" + valve.name + "/flow",
+                        .what = fmt::format("no head drives this flow through valve {}: {} before it, {} behind it", valve.name,
+                                            words(before), words(after)),
+                        .value = valve.flow.written,
+                        .bound = "a flow that the heads of the basins allow",
+                        .hint = "state a smaller flow, or check levels and elevations"});
+  }
+  if (problems.empty()) problems.push_back({{}, "valve", "no head drives the flow a valve is sized by", "", "", "check levels and elevations"});
+  throw base::InputError(problems);
+}
+
 }  // namespace
 
 Central central_run(const network::Case& c) {
@@ -146,6 +172,7 @@ Central central_run(const network::Case& c) {
     case steady::SteadyStatus::not_converged:
       central.failure = fmt::format("no steady state: not converged after {} steps", central.state.iterations);
       break;
+    case steady::SteadyStatus::valve_without_head: refuse_valve(c, central);
     case steady::SteadyStatus::not_finite: central.failure = "no steady state: the numbers became not finite"; break;
   }
   if (central.solved) judge_vapour(c, central);

@@ -14,11 +14,6 @@
 namespace headband::program {
 namespace {
 
-std::string did_you_mean(std::string_view word, const std::vector<std::string>& known) {
-  const std::string near = nearest(word, known);
-  return near.empty() ? "" : fmt::format("; did you mean {}?", near);
-}
-
 const VerbWords& find_verb(const std::vector<std::string>& arguments) {
   std::vector<std::string> names;
   for (const auto& verb : verbs()) names.emplace_back(verb.name);
@@ -28,8 +23,8 @@ const VerbWords& find_verb(const std::vector<std::string>& arguments) {
   if (word.starts_with('-')) {
     throw UsageError(fmt::format("the verb comes first, then {}; headband --help shows the verbs", word));
   }
-  throw UsageError(fmt::format("unknown verb '{}'{} headband --help shows them all", word,
-                               nearest(word, names).empty() ? ";" : did_you_mean(word, names)));
+  const std::string hint = did_you_mean(word, names);
+  throw UsageError(fmt::format("unknown verb '{}'{}", word, hint.empty() ? "; headband --help shows them all" : hint));
 }
 
 /// Texts of the options as CLI11 collects them; every number stays text until our own reader has seen it.
@@ -59,6 +54,9 @@ void collect(const VerbWords& verb, std::vector<std::string> rest, Collected& in
   } catch (const CLI::ParseError& error) {
     throw UsageError(fmt::format("{} ({}); headband {} --help shows the options", error.what(), verb.name, verb.name));
   }
+  for (const auto& [name, text] : into.texts) {
+    if (text.empty() && app.get_option(name)->count() > 0) throw UsageError(fmt::format("{} is given without a value", name));
+  }
   for (const auto& extra : app.remaining()) {
     if (!extra.starts_with('-') || extra == "-") continue;
     const std::string name = extra.substr(0, extra.find('='));
@@ -80,7 +78,7 @@ std::string without_folders(const std::vector<std::string>& arguments) {
     const std::string tail = equals == std::string::npos ? argument : argument.substr(equals + 1);
     const std::string plain = tail.find('/') == std::string::npos ? tail : file_name(tail);
     const bool quotes = plain.find(' ') != std::string::npos || plain.empty();
-    text += " " + head + (quotes ? "\"" + plain + "\"" : plain);
+    text += quotes ? fmt::format(" {}\"{}\"", head, plain) : fmt::format(" {}{}", head, plain);
   }
   return text;
 }

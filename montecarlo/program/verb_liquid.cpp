@@ -1,7 +1,7 @@
 // SPDX-License-Identifier: MIT
 #include "core/base/units.hpp"
 #include "core/base/version.hpp"
-#include "core/liquid/water.hpp"
+#include "core/liquid/words.hpp"
 #include "core/show/show.hpp"
 #include "montecarlo/program/arguments.hpp"
 #include "montecarlo/program/output.hpp"
@@ -9,9 +9,9 @@
 
 #include <fmt/format.h>
 
-#include <algorithm>
 #include <charconv>
 #include <cmath>
+#include <utility>
 
 namespace headband::program {
 namespace {
@@ -41,70 +41,59 @@ double value_of(std::string_view option, const std::string& text, Dimension dime
   return base::to_si(found->unit, number);
 }
 
-void check_range(std::string_view option, const std::string& text, double value, double low, double high, Dimension dimension,
-                 const std::string& name) {
-  if (value >= low && value <= high) return;
-  throw UsageError(fmt::format("{} '{}': {} is known from {} to {}", option, text, name,
-                               base::shown(low, dimension, base::UnitFamily::si, false),
-                               base::shown(high, dimension, base::UnitFamily::si, false)));
+Dimension dimension_of(liquid::Property property) {
+  switch (property) {
+    case liquid::Property::density: return Dimension::density;
+    case liquid::Property::kinematic_viscosity: return Dimension::kinematic_viscosity;
+    case liquid::Property::dynamic_viscosity: return Dimension::dynamic_viscosity;
+    case liquid::Property::bulk_modulus_isentropic:
+    case liquid::Property::bulk_modulus_isothermal: return Dimension::modulus;
+    case liquid::Property::sound_speed: return Dimension::velocity;
+    case liquid::Property::vapour_pressure: return Dimension::pressure;
+  }
+  return Dimension::number;
 }
 
-struct Row {
-  const char* what;
-  double value;
-  Dimension dimension;
-};
-
-std::string table(const answers::Study& study, double pressure) {
-  const auto& liquid = *study.liquid;
+std::string table(const liquid::LiquidSheet& sheet, base::UnitFamily first) {
   using base::UnitFamily;
-  std::string text = fmt::format("{} at {} ({}), {}\n\n", liquid.name, base::shown(liquid.temperature, Dimension::temperature, UnitFamily::si),
-                                 base::shown(liquid.temperature, Dimension::temperature, UnitFamily::us),
-                                 base::shown(pressure, Dimension::pressure, UnitFamily::si, false));
-  const Row rows[] = {{"density", liquid.density, Dimension::density},
-                      {"kinematic viscosity", liquid.kinematic_viscosity, Dimension::kinematic_viscosity},
-                      {"dynamic viscosity", liquid.dynamic_viscosity, Dimension::dynamic_viscosity},
-                      {"bulk modulus, isentropic", liquid.bulk_modulus_isentropic, Dimension::modulus},
-                      {"bulk modulus, isothermal", liquid.bulk_modulus_isothermal, Dimension::modulus},
-                      {"speed of sound", liquid.sound_speed, Dimension::velocity},
-                      {"vapour pressure", liquid.vapour_pressure, Dimension::pressure}};
-  const bool us_first = study.units_shown == "us";
-  for (const auto& row : rows) {
-    const std::string si = base::shown(row.value, row.dimension, UnitFamily::si, false, 5);
-    const std::string us = base::shown(row.value, row.dimension, UnitFamily::us, false, 5);
-    text += fmt::format("  {:<26} {:<20} {}\n", row.what, us_first ? us : si, us_first ? si : us);
+  const UnitFamily second = first == UnitFamily::si ? UnitFamily::us : UnitFamily::si;
+  const auto both = [&](double value, Dimension dimension, int digits) {
+    return std::pair{base::shown(value, dimension, first, false, digits), base::shown(value, dimension, second, false, digits)};
+  };
+  const auto [here, there] = both(sheet.temperature, Dimension::temperature, 4);
+  std::string text = fmt::format("{} at {} ({}), {}\n\n", sheet.name, here, there,
+                                 base::shown(sheet.pressure, Dimension::pressure, first, false));
+  for (const auto& row : sheet.rows) {
+    const auto [one, other] = both(row.value, dimension_of(row.property), 5);
+    text += fmt::format("  {:<25} {:<18} {:<18} {:<10} {}\n", row.words, one, other, row.spread, row.source);
   }
-  return text + fmt::format("\nSource: {}\n", liquid.source);
+  for (const auto& remark : sheet.remarks) text += fmt::format("\n  {}\n", remark);
+  return text;
 }
 
 }  // namespace
 
 ExitCode verb_liquid(const Options& options) {
   const std::string& name = options.words.front();
-  const std::vector<std::string> known{"water", "seawater"};
-  if (std::ranges::find(known, name) == known.end()) {
-    const std::string near = nearest(name, known);
-    throw UsageError(fmt::format("no liquid '{}' here; there are: {}{}. Others are given in the case", name,
-                                 fmt::join(known, ", "), near.empty() ? "" : fmt::format("; did you mean {}?", near)));
-  }
-  const std::string temperature_text = options.temperature.empty() ? "20 degC" : options.temperature;
-  const double temperature = value_of("--temperature", temperature_text, Dimension::temperature);
+  const double temperature =
+      value_of("--temperature", options.temperature.empty() ? "20 degC" : options.temperature, Dimension::temperature);
   const double pressure = options.pressure.empty() ? liquid::standard_pressure
                                                    : value_of("--pressure", options.pressure, Dimension::pressure);
-  const bool sea = name == "seawater";
-  check_range("--temperature", temperature_text, temperature, liquid::water_coldest, sea ? 313.15 : liquid::water_hottest,
-              Dimension::temperature, name);
-  if (sea && !options.pressure.empty()) throw UsageError("--pressure: seawater is known at atmospheric pressure only");
-  check_range("--pressure", options.pressure, pressure, liquid::water_lowest_pressure, liquid::water_highest_pressure,
-              Dimension::pressure, name);
-  const liquid::Properties p = sea ? liquid::sea_water(temperature) : liquid::water(temperature, pressure);
-
+  if (!(temperature > 0.0 && pressure > 0.0)) throw UsageError("temperature and pressure of a liquid are above absolute zero");
+  const auto sheet = liquid::sheet(name, temperature, pressure);
+  if (!sheet) {
+    std::vector<std::string> known;
+    for (const auto word : liquid::known_names()) known.emplace_back(word);
+    throw UsageError(fmt::format("no liquid '{}' here (any other is described in its case); there are: {}{}", name,
+                                 fmt::join(known, ", "), did_you_mean(name, known)));
+  }
+  const auto& p = sheet->properties;
   answers::Study study;
   study.verb = "liquid";
   study.provenance.version = base::version();
-  study.units_shown = options.units.empty() ? "si" : options.units;
-  study.liquid = answers::LiquidAnswer{.name = name,
-                                       .source = std::string(sea ? liquid::sea_water_source : liquid::water_source),
+  study.warnings = sheet->remarks;
+  study.liquid = answers::LiquidAnswer{.name = sheet->name,
+                                       .source = sheet->rows.empty() ? "" : sheet->rows.front().source,
                                        .temperature = temperature,
                                        .density = p.density,
                                        .kinematic_viscosity = p.dynamic_viscosity / p.density,
@@ -113,7 +102,7 @@ ExitCode verb_liquid(const Options& options) {
                                        .bulk_modulus_isothermal = p.bulk_modulus_isothermal,
                                        .sound_speed = p.speed_of_sound,
                                        .vapour_pressure = p.vapour_pressure};
-  print(options.json ? show::json(study) : table(study, pressure));
+  print(options.json ? show::json(study) : table(*sheet, options.units == "us" ? base::UnitFamily::us : base::UnitFamily::si));
   return ExitCode::done;
 }
 
