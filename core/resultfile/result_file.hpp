@@ -12,7 +12,8 @@ struct WriteOptions {
   bool own_name = true;  ///< the name is headband's default, not the user's `--out`
 };
 
-/// Writes the whole study or nothing: temporary file beside the target, explicit closes, re-open and check, fsync, rename.
+/// Writes the whole study or nothing: temporary file beside the target, explicit closes, re-open and check, fsync,
+/// rename.
 /// @throws base::IoError (cannot_create, cannot_write)
 void write(const answers::Study& study, const std::string& path, const WriteOptions& options);
 

@@ -65,7 +65,8 @@ Json values(const answers::Study& study) {
 Json pipes(const answers::Study& study) {
   Json object = Json::object();
   for (const auto& p : study.pipes) {
-    add(object, p.name,
+    add(object,
+        p.name,
         {{"bore_m", number(p.bore)},
          {"roughness_m", number(p.roughness)},
          {"restraint_factor", number(p.restraint_factor)},

@@ -16,9 +16,7 @@ namespace {
 using Json = nlohmann::ordered_json;
 
 /// Quoted and escaped by the library, so that no escaping rule lives here.
-std::string quoted(const std::string& text) {
-  return Json(text).dump(-1, ' ', false, Json::error_handler_t::replace);
-}
+std::string quoted(const std::string& text) { return Json(text).dump(-1, ' ', false, Json::error_handler_t::replace); }
 
 bool all_plain(const Json& array) {
   return std::none_of(array.begin(), array.end(), [](const Json& item) { return item.is_structured(); });

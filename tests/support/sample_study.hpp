@@ -86,10 +86,28 @@ inline void steady(answers::Study& s) {
   s.gravity = gravity;
   s.atmosphere = 101325.0;
 
-  answers::ValueEcho wall{"pipe/main/wall", "main wall", "8 mm between 7.2 mm and 8.4 mm", 0.008, "m",
-                          "even between 7.2 mm and 8.4 mm", "mill sheet", "B", false, "8 mm", "0.315 in"};
-  answers::ValueEcho scatter{"friction/scatter", "friction scatter", "± 10 %", 1.0, "1", "normal, 95 % within ± 10 %",
-                             "default", "", true, "1", "1"};
+  answers::ValueEcho wall{"pipe/main/wall",
+                          "main wall",
+                          "8 mm between 7.2 mm and 8.4 mm",
+                          0.008,
+                          "m",
+                          "even between 7.2 mm and 8.4 mm",
+                          "mill sheet",
+                          "B",
+                          false,
+                          "8 mm",
+                          "0.315 in"};
+  answers::ValueEcho scatter{"friction/scatter",
+                             "friction scatter",
+                             "± 10 %",
+                             1.0,
+                             "1",
+                             "normal, 95 % within ± 10 %",
+                             "default",
+                             "",
+                             true,
+                             "1",
+                             "1"};
   answers::ValueEcho sudden{"event/closing/over", "closing over", "1 s", 1.0, "s", "", "", "", false, "1 s", "1 s"};
   s.values = {wall, scatter, sudden};
 
@@ -228,7 +246,9 @@ inline void bands(answers::Study& s) {
   b.surged = true;
   b.input_name = {"main wall", "main roughness", "main wave_speed_scatter", "friction scatter"};
   b.input_units = {"m", "m", "1", "1"};
-  b.input_distribution = {"even between 7.2 mm and 8.4 mm", "lognormal, 95 % within x/ 3", "normal, 95 % within ± 3 %",
+  b.input_distribution = {"even between 7.2 mm and 8.4 mm",
+                          "lognormal, 95 % within x/ 3",
+                          "normal, 95 % within ± 3 %",
                           "normal, 95 % within ± 10 %"};
   const std::vector<std::string> names = {"drop", "peak", "flow lower main"};
   const std::vector<std::string> kinds = {"pressure_drop", "highest_pressure", "flow"};
