@@ -171,7 +171,12 @@ struct Bands {
   std::vector<std::string> input_name, input_units, input_distribution;
   std::vector<double> input_value;              ///< row-major (run, input)
   std::vector<double> output_value;             ///< row-major (run, answer)
-  std::vector<std::int8_t> run_status;          ///< 0 finished, 1 no steady state, 2 not finite, 3 boundary
+  std::vector<std::int8_t> run_status;          ///< 0 finished, 1 no steady state, 2 not finite, 3 boundary, 4 grid refused
+  std::vector<std::int8_t> run_cavity;          ///< 1: a cavity formed; empty without surge
+  std::vector<std::string> limit_name;          ///< as Study::limits
+  std::vector<double> limit_value;              ///< row-major (run, limit): the numbers the limits are judged by
+  // only in the file of a stopped band (stride 1), for taking it up: the envelopes of each draw
+  std::vector<double> run_head_max, run_head_min;  ///< row-major (run, station) [m]
   // bands over the profile (sampled surge): per station quantiles of the envelope
   std::vector<double> profile_probability;      ///< e.g. 0.025, 0.5, 0.975
   std::vector<std::int32_t> profile_station_pipe;

@@ -75,11 +75,11 @@ ExitCode verb_band(const Options& options) {
     const std::string partial = partial_name(outputs.result);
     answers::Study study = begin_study(c, options, "band");
     montecarlo::BandOptions band{.surge = options.surge, .threads = threads_for(options), .seed = options.seed,
-                                 .stop = &stop_asked(), .progress = {}, .resume_file = {}};
+                                 .stop = &stop_asked(), .progress = {}, .resumed = {}, .checkpoint = {}};
     if (options.resume) {
       const ExitCode usable = look_at_partial(partial, study);
       if (usable != ExitCode::done) return usable;
-      band.resume_file = partial;
+      band.resumed = resultfile::read(partial).bands;
     }
     const Central central = central_run(c);
     add_steady(study, c, central);

@@ -19,7 +19,10 @@ struct BandOptions {
   std::optional<unsigned long long> seed;  ///< overrides the case's
   const std::atomic<bool>* stop = nullptr; ///< set by Ctrl-C: finish the block, keep what is done
   std::function<void(long long done, long long all)> progress;  ///< called from the calling thread
-  std::string resume_file;                 ///< NAME.partial.h5 to take up; empty = start
+  /// Draws of a stopped band of the same case, seed and verb, as `checkpoint` or a stopped BandOutcome gave them.
+  std::optional<answers::Bands> resumed;
+  /// Called from the calling thread about once a minute with all draws done so far (stride 1).
+  std::function<void(const answers::Bands&)> checkpoint;
 };
 
 /// What the band of a case says: blocks of a Study.
@@ -27,6 +30,7 @@ struct BandOutcome {
   answers::Bands bands;
   std::vector<answers::LimitAnswer> limits;
   std::vector<std::string> warnings;
+  std::vector<std::string> left_out;  ///< answers that this verb does not compute, in words (for standard error)
   bool stopped = false;    ///< by the user; `bands` holds the draws done
   bool all_failed = false;
 };
