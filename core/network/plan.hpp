@@ -103,4 +103,7 @@ struct Plan {
 /// Builds the plan of a case that `validate` found nothing wrong with.
 [[nodiscard]] Plan make_plan(const Case& c);
 
+/// The loss law a pipe follows: its own number before the one of `[friction]`; `law = "none"` before all.
+[[nodiscard]] LossKind loss_kind(const Case& c, const Pipe& pipe);
+
 }  // namespace headband::network

@@ -8,6 +8,7 @@
 
 #include <algorithm>
 #include <map>
+#include <tuple>
 #include <variant>
 
 namespace headband::network {
@@ -18,6 +19,7 @@ struct Candidate {
   Quantity* quantity = nullptr;
   int* choice_unknown = nullptr;  ///< Choice::unknown
   Unknown unknown;
+  std::size_t order = 0;          ///< as met: decides where places are equal
 };
 
 template <class T>
@@ -131,8 +133,9 @@ base::Problems number_unknowns(Case& c) {
   add_choice(c.friction.law, "friction law", "friction/laws", list);
   add_choice(c.friction.transition, "friction transition", "friction/transitions", list);
 
-  std::stable_sort(list.begin(), list.end(), [](const Candidate& a, const Candidate& b) {
-    return a.unknown.place < b.unknown.place;
+  for (std::size_t i = 0; i < list.size(); ++i) list[i].order = i;
+  std::sort(list.begin(), list.end(), [](const Candidate& a, const Candidate& b) {
+    return std::tie(a.unknown.place, a.order) < std::tie(b.unknown.place, b.order);
   });
   refuse_repeated_names(list, problems);
   c.unknowns.clear();
