@@ -57,6 +57,7 @@ class PlanMaker {
     add_places();
     add_pipes();
     add_devices();
+    add_elevations();
     add_events();
     add_probes();
     add_answers_and_limits();
@@ -131,7 +132,59 @@ class PlanMaker {
     add(DeviceKind::air_valve, case_.air_valves, at, nowhere);
     std::sort(found.begin(), found.end(),
               [](const Found& a, const Found& b) { return std::tie(a.place, a.order) < std::tie(b.place, b.order); });
-    for (auto& entry : found) plan_.devices.push_back(std::move(entry.device));
+    for (auto& entry : found) {
+      entry.device.adjoining = pipe_at(entry.device.from);
+      if (!entry.device.adjoining.exists()) entry.device.adjoining = pipe_at(entry.device.to);
+      plan_.devices.push_back(std::move(entry.device));
+    }
+  }
+
+  /// First pipe that ends at `place`.
+  [[nodiscard]] PipeId pipe_at(PlaceId place) const {
+    if (!place.exists()) return {};
+    for (std::size_t i = 0; i < plan_.pipes.size(); ++i)
+      if (plan_.pipes[i].from == place || plan_.pipes[i].to == place) return PipeId{static_cast<int>(i)};
+    return {};
+  }
+
+  /// Convention (e): the place's own entry, a profile that ends there, a basin's level; else the other side of a
+  /// device without pipe; else 0 m.
+  void add_elevations() {
+    const auto set = [&](std::size_t place, ElevationSource source, int index) {
+      if (plan_.places[place].elevation != ElevationSource::nowhere) return;
+      plan_.places[place].elevation = source;
+      plan_.places[place].elevation_index = index;
+    };
+    for (std::size_t i = 0; i < case_.places.size(); ++i)
+      if (case_.places[i].elevation.given())
+        set(place_id(case_.places[i].name).at(), ElevationSource::entry, static_cast<int>(i));
+    for (std::size_t i = 0; i < case_.pipes.size(); ++i) {
+      if (case_.pipes[i].profile.empty()) continue;
+      set(plan_.pipes[i].from.at(), ElevationSource::pipe_start, static_cast<int>(i));
+      set(plan_.pipes[i].to.at(), ElevationSource::pipe_end, static_cast<int>(i));
+    }
+    for (std::size_t i = 0; i < plan_.places.size(); ++i)
+      if (plan_.places[i].basin >= 0) set(i, ElevationSource::level, plan_.places[i].basin);
+    for (auto& place : plan_.places) place.elevation_guessed = place.elevation == ElevationSource::nowhere;
+    spread_elevations_through_devices();
+  }
+
+  void spread_elevations_through_devices() {
+    for (bool changed = true; changed;) {
+      changed = false;
+      for (const auto& device : plan_.devices) {
+        if (!device.from.exists() || !device.to.exists()) continue;
+        for (const auto& [known, other] : {std::pair{device.from, device.to}, std::pair{device.to, device.from}}) {
+          PlacePlan& target = plan_.places[other.at()];
+          const PlacePlan& origin = plan_.places[known.at()];
+          if (target.elevation != ElevationSource::nowhere || origin.elevation == ElevationSource::nowhere) continue;
+          if (origin.elevation == ElevationSource::level || pipe_at(other).exists()) continue;
+          target.elevation = origin.elevation;
+          target.elevation_index = origin.elevation_index;
+          changed = true;
+        }
+      }
+    }
   }
 
   void add_events() {
@@ -238,6 +291,16 @@ LossKind loss_kind(const Case& c, const Pipe& pipe) {
   if (pipe.manning.given()) return LossKind::manning;
   if (c.friction.fixed_factor.given()) return LossKind::fixed_factor;
   return LossKind::darcy;
+}
+
+std::vector<std::string> guesses_of(const Plan& plan) {
+  std::vector<std::string> guesses;
+  for (const auto& place : plan.places) {
+    if (!place.elevation_guessed) continue;
+    guesses.push_back("elevation of '" + place.name + "': stated nowhere, taken as " +
+                      (place.elevation == ElevationSource::nowhere ? "0 m" : "that of the other side of the device there"));
+  }
+  return guesses;
 }
 
 int Plan::place_named(const std::string& name) const { return index_of_name(places, name); }

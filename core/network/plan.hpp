@@ -21,11 +21,23 @@ struct Id {
 using PlaceId = Id<struct PlaceTag>;
 using PipeId = Id<struct PipeTag>;
 
+/// Where the elevation of a place comes from (convention e).
+enum class ElevationSource {
+  entry,       ///< `[[place]] elevation`, index into Case::places
+  pipe_start,  ///< first profile point of a pipe, index into Plan::pipes
+  pipe_end,    ///< last profile point of a pipe
+  level,       ///< the basin's own level, index into Case::basins
+  nowhere      ///< stated nowhere: 0 m, a guess
+};
+
 /// A point where things meet. Basins are places too (their head is held).
 struct PlacePlan {
   std::string name;
   int basin = -1;           ///< index into Case::basins, -1 = ordinary place
   bool head_given = false;  ///< `[[place]] head`: part cut off from every basin
+  ElevationSource elevation = ElevationSource::nowhere;
+  int elevation_index = -1;
+  bool elevation_guessed = false;  ///< taken from the other side of a device, or 0 m
 };
 
 /// Which loss law a pipe follows.
@@ -46,7 +58,8 @@ struct DevicePlan {
   DeviceKind kind = DeviceKind::valve;
   std::string name;
   int index = -1;    ///< into the case's vector of its kind
-  PlaceId from, to;  ///< `to` not existing: air, or a device at one place
+  PlaceId from{}, to{};  ///< `to` not existing: air, or a device at one place
+  PipeId adjoining{};  ///< first pipe that ends at `from`, else at `to`
 };
 
 struct EventPlan {
@@ -105,5 +118,8 @@ struct Plan {
 
 /// The loss law a pipe follows: its own number before the one of `[friction]`; `law = "none"` before all.
 [[nodiscard]] LossKind loss_kind(const Case& c, const Pipe& pipe);
+
+/// Guesses `make_plan` had to make, in words: places whose elevation is stated nowhere.
+[[nodiscard]] std::vector<std::string> guesses_of(const Plan& plan);
 
 }  // namespace headband::network

@@ -22,13 +22,15 @@ struct LiquidValues {
   Lanes<W> bulk_modulus_isothermal;  ///< [Pa]; NaN where only one modulus is known
   Lanes<W> vapour_pressure;          ///< absolute [Pa]
   Lanes<W> free_gas;                 ///< volume fraction at 101 325 Pa [-]
+  /// Viscosity of the temperature alone: dynamic of water [Pa s], kinematic of a two-point law [m2/s].
+  Lanes<W> viscosity_by_temperature;
 };
 
 template <int W>
 struct FittingValues {
   Lanes<W> k;                  ///< loss coefficient by the pipe's bore, count included [-]
   Lanes<W> equivalent_length;  ///< count included [m]
-  Lanes<W> at;                 ///< chainage [m]; NaN = spread evenly
+  Lanes<W> at;                 ///< chainage [m]
 };
 
 template <int W>
@@ -42,7 +44,7 @@ struct PipeValues {
   Lanes<W> laminar_scatter;           ///< factor on the laminar one [-]
   Lanes<W> spread_k;                  ///< fittings without a place, summed [-]
   Lanes<W> spread_equivalent_length;  ///< the same [m]
-  std::vector<FittingValues<W>> placed_fittings;
+  std::vector<FittingValues<W>> placed_fittings;  ///< those with a chainage of their own, in file order
   Lanes<W> restraint_factor;        ///< the wave-speed factor used [-]; NaN = wave speed given outright or unknown
   Lanes<W> wall_compliance;         ///< restraint_factor D/(E e) [1/Pa]; 0 when the wave speed is given outright
   Lanes<W> wave_speed_given;        ///< [m/s]; NaN = by formula
@@ -118,10 +120,40 @@ using Scores = std::vector<Lanes<W>>;
 /// The central run: written values, heaviest choices, middles of not-random ranges.
 [[nodiscard]] Values<1> realise(const Case& c, const Plan& plan);
 
+/// Fills Values again and again for the draws of one case: what no draw changes is filled once.
+/// Shared between threads; the case and the plan must outlive it.
+class Realiser {
+ public:
+  Realiser(const Case& c, const Plan& plan);
+
+  /// The central run with its storage: where every Values handed to `draw` must come from.
+  template <int W>
+  [[nodiscard]] Values<W> prepare() const;
+
+  /// Overwrites what the scores of W draws change. No allocation. The same bits as `realise`.
+  template <int W>
+  void draw(const Scores<W>& scores, Values<W>& values) const;
+
+ private:
+  /// Which groups of a pipe's numbers some draw changes.
+  struct PipeChanges {
+    bool geometry = false, wave = false, friction = false, fittings = false, profile = false, rating = false;
+  };
+  const Case* case_;
+  const Plan* plan_;
+  bool site_ = false, liquid_ = false, temperature_ = false, places_ = false, choices_ = false;
+  std::vector<PipeChanges> pipes_;
+  std::vector<bool> valves_, pumps_, check_valves_, draw_offs_, events_;
+};
+
 /// W draws. `values` keeps its storage between calls: nothing is allocated after the first one.
 template <int W>
 void realise(const Case& c, const Plan& plan, const Scores<W>& scores, Values<W>& values);
 
+extern template Values<1> Realiser::prepare<1>() const;
+extern template Values<8> Realiser::prepare<8>() const;
+extern template void Realiser::draw<1>(const Scores<1>&, Values<1>&) const;
+extern template void Realiser::draw<8>(const Scores<8>&, Values<8>&) const;
 extern template void realise<1>(const Case&, const Plan&, const Scores<1>&, Values<1>&);
 extern template void realise<8>(const Case&, const Plan&, const Scores<8>&, Values<8>&);
 

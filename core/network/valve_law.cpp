@@ -7,15 +7,6 @@
 namespace headband::network {
 namespace {
 
-/// Smallest number a power is taken of; below it the share is 0 for every practical exponent.
-constexpr double shut_below = 1e-300;
-
-template <int W>
-HEADBAND_INLINE Lanes<W> power(const Lanes<W>& x, const Lanes<W>& exponent) {
-  const Lanes<W> safe = base::max(x, Lanes<W>(shut_below));
-  return base::select(x > Lanes<W>(0.0), base::pow(safe, exponent), Lanes<W>(0.0));
-}
-
 /// Straight lines between the points of a table.
 template <int W>
 Lanes<W> share_by_table(const std::vector<std::pair<double, double>>& points, const Lanes<W>& travel) {
@@ -35,7 +26,7 @@ Lanes<W> inherent_share(const ValveLaw& law, const Lanes<W>& travel) {
     case ValveLawKind::linear:
       return travel;
     case ValveLawKind::power:
-      return power(travel, Lanes<W>(law.parameter));
+      return base::pow(travel, law.parameter);
     case ValveLawKind::equal_percentage:
       return base::select(travel > Lanes<W>(0.0), base::pow(Lanes<W>(law.parameter), travel - 1.0), Lanes<W>(0.0));
     case ValveLawKind::quick_opening:
@@ -54,7 +45,7 @@ Lanes<W> share_of_full(const ValveLaw& law, const Lanes<W>& travel, const Lanes<
   const Lanes<W> share = inherent_share(law, inside);
   const base::Mask<W> plain = seat_power == Lanes<W>(1.0);
   if (base::all(plain)) return share;
-  return base::select(plain, share, power(share, seat_power));
+  return base::select(plain, share, base::pow(share, seat_power));
 }
 
 template Lanes<1> share_of_full<1>(const ValveLaw&, const Lanes<1>&, const Lanes<1>&);

@@ -67,4 +67,7 @@ class SteadySolver {
   std::unique_ptr<Parts> parts_;
 };
 
+extern template void SteadySolver::solve<1>(const network::Values<1>&, SteadyState<1>&);
+extern template void SteadySolver::solve<8>(const network::Values<8>&, SteadyState<8>&);
+
 }  // namespace headband::steady

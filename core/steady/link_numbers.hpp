@@ -1,0 +1,75 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+
+#include "core/network/pump_curve.hpp"
+#include "core/network/valve_law.hpp"
+#include "core/steady/flow_graph.hpp"
+#include "core/steady/pipe_loss.hpp"
+
+#include <vector>
+
+namespace headband::steady {
+
+/// What the links of a graph do to the head, for W draws. Storage is kept between draws.
+template <int W>
+struct LinkNumbers {
+  std::vector<PipeFriction<W>> pipes;          ///< as Plan::pipes
+  std::vector<Lanes<W>> valve_share;           ///< as Case::valves: share of full coefficient at the start [-]
+  std::vector<Lanes<W>> valve_resistance;      ///< dH = this Q|Q| [s2/m5]; infinite when shut, NaN when sized by flow
+  std::vector<Lanes<W>> check_resistance;      ///< as Case::check_valves [s2/m5]
+  std::vector<network::PumpCurve<W>> curves;   ///< as Case::pumps: one pump, rated speed
+  std::vector<Lanes<W>> pump_count;            ///< pumps in parallel [-]
+  std::vector<Lanes<W>> node_head;             ///< per node of the graph: held heads filled, others unset [m]
+  std::vector<Lanes<W>> outflow;               ///< per node: known flows out of the network of links [m3/s]
+
+  void fill(const network::Case& c, const network::Plan& plan, const FlowGraph& graph,
+            const network::Values<W>& values);
+};
+
+/// Flow of a known flow, in the direction of its device [m3/s].
+template <int W>
+[[nodiscard]] Lanes<W> known_flow(const network::Plan& plan, const network::Values<W>& values, const KnownFlow& known) {
+  const network::DevicePlan& device = plan.devices[static_cast<std::size_t>(known.device)];
+  const auto index = static_cast<std::size_t>(device.index);
+  return device.kind == network::DeviceKind::valve ? values.valves[index].sizing_flow : values.draw_offs[index].flow;
+}
+
+template <int W>
+void LinkNumbers<W>::fill(const network::Case& c, const network::Plan& plan, const FlowGraph& graph,
+                          const network::Values<W>& values) {
+  pipes.resize(values.pipes.size());
+  for (std::size_t i = 0; i < pipes.size(); ++i) pipes[i] = pipe_friction(plan, values, i);
+
+  valve_share.resize(values.valves.size());
+  valve_resistance.resize(values.valves.size());
+  for (std::size_t i = 0; i < values.valves.size(); ++i) {
+    const network::ValveValues<W>& valve = values.valves[i];
+    valve_share[i] = network::share_of_full<W>(c.valves[i].law, valve.starting_opening, valve.seat_power);
+    const Lanes<W> coefficient = valve.coefficient * valve_share[i];
+    valve_resistance[i] = 1.0 / (coefficient * coefficient);
+  }
+  check_resistance.resize(values.check_valves.size());
+  for (std::size_t i = 0; i < check_resistance.size(); ++i) {
+    const Lanes<W> coefficient = values.check_valves[i].coefficient;
+    check_resistance[i] = 1.0 / (coefficient * coefficient);
+  }
+  curves.resize(values.pumps.size());
+  pump_count.resize(values.pumps.size());
+  for (std::size_t i = 0; i < curves.size(); ++i) {
+    if (values.pumps[i].curve_flow.size() >= 2) curves[i].fit(values.pumps[i].curve_flow, values.pumps[i].curve_head);
+    pump_count[i] = static_cast<double>(c.pumps[i].count);
+  }
+
+  node_head.resize(static_cast<std::size_t>(graph.nodes()));
+  outflow.assign(static_cast<std::size_t>(graph.nodes()), Lanes<W>(0.0));
+  for (std::size_t n = 0; n < values.places.size(); ++n) node_head[n] = values.places[n].held_head;
+  for (std::size_t a = 0; a < graph.air_of_node.size(); ++a)
+    node_head[values.places.size() + a] = values.places[static_cast<std::size_t>(graph.air_of_node[a])].elevation;
+  for (const auto& known : graph.known) {
+    const Lanes<W> flow = known_flow(plan, values, known);
+    outflow[static_cast<std::size_t>(known.from)] += flow;
+    if (known.to >= 0) outflow[static_cast<std::size_t>(known.to)] -= flow;
+  }
+}
+
+}  // namespace headband::steady

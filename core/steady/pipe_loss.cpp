@@ -1,0 +1,105 @@
+// SPDX-License-Identifier: MIT
+
+#include "core/steady/pipe_loss.hpp"
+
+#include "core/base/elementary.hpp"
+
+#include <numbers>
+
+namespace headband::steady {
+namespace {
+
+// Hazen-Williams in SI (common practice; convention p of the case file).
+constexpr double hazen_williams_constant = 10.67;
+constexpr double hazen_williams_flow_power = 1.852;
+constexpr double hazen_williams_bore_power = 4.8704;
+
+}  // namespace
+
+template <int W>
+PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W>& values, std::size_t index) {
+  const network::PipeValues<W>& pipe = values.pipes[index];
+  PipeFriction<W> out;
+  out.kind = plan.pipes[index].loss;
+  out.reynolds_per_flow = pipe.bore / (pipe.area * values.liquid.kinematic_viscosity);
+  out.velocity_head = 1.0 / (2.0 * values.gravity * pipe.area * pipe.area);
+  out.k = pipe.spread_k;
+  Lanes<W> length = pipe.length + pipe.spread_equivalent_length;
+  for (const auto& fitting : pipe.placed_fittings) {
+    out.k += fitting.k;
+    length += fitting.equivalent_length;
+  }
+  out.diameters = length / pipe.bore;
+  switch (out.kind) {
+    case network::LossKind::darcy:
+      out.rule.law = values.law;
+      out.rule.transition = values.transition;
+      out.rule.relative_roughness = pipe.roughness / pipe.bore;
+      out.rule.scatter = pipe.friction_scatter;
+      out.rule.laminar_scatter = pipe.laminar_scatter;
+      break;
+    case network::LossKind::hazen_williams:
+      // f = h 2 g D A^2 / (L Q^2) at Q = 1
+      out.factor_at_unit = pipe.friction_scatter * (2.0 * hazen_williams_constant) * values.gravity * pipe.bore *
+                           pipe.area * pipe.area /
+                           (base::pow(pipe.loss_number, hazen_williams_flow_power) *
+                            base::pow(pipe.bore, hazen_williams_bore_power));
+      break;
+    case network::LossKind::manning:
+      // f = 8 g n^2 / R^(1/3), R = D/4 hydraulic radius
+      out.fixed_factor = pipe.friction_scatter * 8.0 * values.gravity * pipe.loss_number * pipe.loss_number /
+                         base::pow(0.25 * pipe.bore, 1.0 / 3.0);
+      break;
+    case network::LossKind::fixed_factor:
+      out.fixed_factor = pipe.friction_scatter * pipe.loss_number;
+      break;
+    case network::LossKind::none:
+      break;
+  }
+  return out;
+}
+
+template <int W>
+friction::Factor<W> factor_at_flow(const PipeFriction<W>& pipe, const Lanes<W>& flow_size) {
+  switch (pipe.kind) {
+    case network::LossKind::darcy:
+      return friction::darcy_factor<W>(pipe.rule, pipe.reynolds_per_flow * flow_size);
+    case network::LossKind::hazen_williams:
+      return {pipe.factor_at_unit * base::pow(flow_size, hazen_williams_flow_power - 2.0),
+              Lanes<W>(hazen_williams_flow_power - 2.0)};
+    case network::LossKind::manning:
+    case network::LossKind::fixed_factor:
+    case network::LossKind::none:
+      break;
+  }
+  return {pipe.fixed_factor, Lanes<W>(0.0)};
+}
+
+template <int W>
+PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
+  const Lanes<W> size = base::abs(flow);
+  const Lanes<W> least = Lanes<W>(least_reynolds) / pipe.reynolds_per_flow;
+  const base::Mask<W> moving = size > least;
+  const Lanes<W> effective = base::select(moving, size, least);
+  const friction::Factor<W> factor = factor_at_flow(pipe, effective);
+  const Lanes<W> head_per_velocity_head = pipe.velocity_head * effective;
+  const Lanes<W> friction_part = factor.factor * pipe.diameters * head_per_velocity_head;  // head per flow [s/m2]
+  const Lanes<W> fitting_part = pipe.k * head_per_velocity_head;
+
+  PipeLoss<W> loss;
+  loss.head = (friction_part + fitting_part) * flow;
+  loss.slope = base::select(moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part,
+                            friction_part + fitting_part);
+  loss.factor = factor.factor;
+  loss.reynolds = pipe.reynolds_per_flow * size;
+  return loss;
+}
+
+template PipeFriction<1> pipe_friction<1>(const network::Plan&, const network::Values<1>&, std::size_t);
+template PipeFriction<8> pipe_friction<8>(const network::Plan&, const network::Values<8>&, std::size_t);
+template friction::Factor<1> factor_at_flow<1>(const PipeFriction<1>&, const Lanes<1>&);
+template friction::Factor<8> factor_at_flow<8>(const PipeFriction<8>&, const Lanes<8>&);
+template PipeLoss<1> pipe_loss<1>(const PipeFriction<1>&, const Lanes<1>&);
+template PipeLoss<8> pipe_loss<8>(const PipeFriction<8>&, const Lanes<8>&);
+
+}  // namespace headband::steady

@@ -1,0 +1,194 @@
+// SPDX-License-Identifier: MIT
+
+#include "core/steady/steady.hpp"
+
+#include "core/pipe/wave_speed.hpp"
+#include "core/steady/explicit_flow.hpp"
+
+#include <limits>
+#include <tuple>
+
+namespace headband::steady {
+namespace {
+
+using network::DeviceKind;
+
+constexpr double not_a_number = std::numeric_limits<double>::quiet_NaN();
+
+template <int W>
+struct Workspace {
+  LinkNumbers<W> numbers;
+  LinkFlows<W> flows;
+};
+
+/// Mean absolute pressure of a pipe over its length: straight head line with steps at placed fittings, profile by
+/// straight lines [Pa].
+template <int W>
+Lanes<W> mean_absolute_pressure(const network::Values<W>& values, const network::PipeValues<W>& pipe,
+                                const PipeFriction<W>& friction, const PipeLoss<W>& loss, const Lanes<W>& flow,
+                                const Lanes<W>& head_from, const Lanes<W>& head_to) {
+  Lanes<W> mean_head = 0.5 * (head_from + head_to);
+  for (const auto& fitting : pipe.placed_fittings) {
+    const Lanes<W> step = (fitting.k + loss.factor * fitting.equivalent_length / pipe.bore) * friction.velocity_head *
+                          flow * base::abs(flow);
+    mean_head += step * (fitting.at / pipe.length - 0.5);  // the step comes at `at`, not evenly along the pipe
+  }
+  Lanes<W> area = 0.0;
+  for (std::size_t i = 1; i < pipe.chainage.size(); ++i)
+    area += 0.5 * (pipe.elevation[i] + pipe.elevation[i - 1]) * (pipe.chainage[i] - pipe.chainage[i - 1]);
+  return values.atmosphere +
+         values.liquid.density * values.gravity * (mean_head - area / pipe.length);
+}
+
+}  // namespace
+
+struct SteadySolver::Parts {
+  Parts(const network::Case& c, const network::Plan& plan, SteadyOptions chosen)
+      : model(&c), topology(&plan), options(chosen), graph(make_flow_graph(c, plan)) {
+    gas_possible = c.liquid.free_gas.given() &&
+                   (c.liquid.free_gas.unknown >= 0 || c.liquid.free_gas.value > 0.0);
+  }
+
+  const network::Case* model;
+  const network::Plan* topology;
+  SteadyOptions options;
+  FlowGraph graph;
+  bool gas_possible = false;
+  std::tuple<Workspace<1>, Workspace<8>> workspaces;
+
+  template <int W>
+  [[nodiscard]] Workspace<W>& workspace() {
+    return std::get<Workspace<W>>(workspaces);
+  }
+
+  template <int W>
+  void size_state(SteadyState<W>& state) const {
+    const std::size_t pipes = topology->pipes.size();
+    state.pipe_flow.resize(pipes);
+    state.friction_factor.resize(pipes);
+    state.reynolds.resize(pipes);
+    state.head_loss.resize(pipes);
+    state.wave_speed.resize(pipes);
+    state.place_head.resize(topology->places.size());
+    state.device_flow.assign(topology->devices.size(), Lanes<W>(0.0));
+    state.valve_coefficient.resize(model->valves.size());
+    state.pump_speed.resize(model->pumps.size());
+    state.status.fill(SteadyStatus::converged);
+    state.residual = 0.0;
+    state.iterations = 0;
+  }
+
+  template <int W>
+  void copy_flows(const network::Values<W>& values, SteadyState<W>& state) {
+    Workspace<W>& work = workspace<W>();
+    for (std::size_t i = 0; i < state.place_head.size(); ++i) state.place_head[i] = work.numbers.node_head[i];
+    for (std::size_t l = 0; l < graph.links.size(); ++l) {
+      const Link& link = graph.links[l];
+      if (link.kind == LinkKind::pipe) {
+        const auto pipe = static_cast<std::size_t>(link.index);
+        state.pipe_flow[pipe] = work.flows.flow[l];
+        state.friction_factor[pipe] = work.flows.losses[pipe].factor;
+        state.reynolds[pipe] = work.flows.losses[pipe].reynolds;
+        state.head_loss[pipe] = work.flows.losses[pipe].head;
+      } else {
+        state.device_flow[static_cast<std::size_t>(link.device)] = work.flows.flow[l];
+      }
+    }
+    for (const auto& known : graph.known)
+      state.device_flow[static_cast<std::size_t>(known.device)] = known_flow(*topology, values, known);
+    for (std::size_t i = 0; i < model->pumps.size(); ++i)
+      state.pump_speed[i] = starts_at_rest(*model, model->pumps[i]) ? 0.0 : 1.0;
+  }
+
+  /// Coefficients of valves; those sized by `flow` get what passes it at the starting opening (convention n).
+  template <int W>
+  void size_valves(const network::Values<W>& values, SteadyState<W>& state) {
+    const Workspace<W>& work = workspace<W>();
+    for (std::size_t i = 0; i < values.valves.size(); ++i) state.valve_coefficient[i] = values.valves[i].coefficient;
+    for (const auto& known : graph.known) {
+      const network::DevicePlan& device = topology->devices[static_cast<std::size_t>(known.device)];
+      if (device.kind != DeviceKind::valve) continue;
+      const auto valve = static_cast<std::size_t>(device.index);
+      const Lanes<W> flow = values.valves[valve].sizing_flow;
+      const Lanes<W> to_head = known.to >= 0 ? state.place_head[static_cast<std::size_t>(known.to)]
+                                             : values.places[static_cast<std::size_t>(known.from)].elevation;
+      const Lanes<W> fall = state.place_head[static_cast<std::size_t>(known.from)] - to_head;
+      const Lanes<W> zero(0.0);
+      const base::Mask<W> backwards = fall * flow <= zero;
+      for (int lane = 0; lane < W; ++lane)
+        if (backwards[lane]) set_status(state, lane, SteadyStatus::valve_without_head);
+      state.valve_coefficient[valve] =
+          base::abs(flow) / (work.numbers.valve_share[valve] * base::sqrt(base::abs(fall)));
+    }
+  }
+
+  /// Wave speeds: free gas is compressed to the pipe's mean steady pressure, not below the vapour pressure.
+  template <int W>
+  void find_wave_speeds(const network::Values<W>& values, SteadyState<W>& state) {
+    const Workspace<W>& work = workspace<W>();
+    for (std::size_t i = 0; i < values.pipes.size(); ++i) {
+      const network::PipeValues<W>& pipe = values.pipes[i];
+      state.wave_speed[i] = pipe.wave_speed_without_gas;
+      const bool by_formula = topology->pipes[i].wave_speed_known && !model->pipes[i].wave_speed.given();
+      if (!gas_possible || !by_formula) continue;
+      const Lanes<W> mean = mean_absolute_pressure(values, pipe, work.numbers.pipes[i], work.flows.losses[i],
+                                                   state.pipe_flow[i],
+                                                   state.place_head[topology->pipes[i].from.at()],
+                                                   state.place_head[topology->pipes[i].to.at()]);
+      const Lanes<W> least = base::max(values.liquid.vapour_pressure, Lanes<W>(least_gas_pressure));
+      state.wave_speed[i] =
+          pipe.wave_speed_scatter * headband::pipe::wave_speed<W>(values.liquid.density, values.liquid.bulk_modulus,
+                                                                  pipe.wall_compliance, values.liquid.free_gas,
+                                                                  base::max(mean, least), values.liquid.temperature);
+    }
+  }
+
+  template <int W>
+  static void set_status(SteadyState<W>& state, int lane, SteadyStatus status) {
+    auto& current = state.status[static_cast<std::size_t>(lane)];
+    if (is_usable(current)) current = status;
+  }
+
+  /// Marks lanes whose heads or flows are not numbers.
+  template <int W>
+  static void find_lost_lanes(SteadyState<W>& state) {
+    Lanes<W> sum = 0.0;
+    for (const auto& head : state.place_head) sum += head * 0.0;
+    for (const auto& flow : state.pipe_flow) sum += flow * 0.0;
+    for (const auto& flow : state.device_flow) sum += flow * 0.0;
+    const base::Mask<W> finite = sum == Lanes<W>(0.0);
+    for (int lane = 0; lane < W; ++lane)
+      if (!finite[lane]) state.status[static_cast<std::size_t>(lane)] = SteadyStatus::not_finite;
+  }
+
+  static constexpr double least_gas_pressure = 100.0;  ///< keeps the gas modulus above zero in lost lines [Pa]
+};
+
+SteadySolver::SteadySolver(const network::Case& c, const network::Plan& plan, SteadyOptions options)
+    : parts_(std::make_unique<Parts>(c, plan, options)) {}
+SteadySolver::~SteadySolver() = default;
+SteadySolver::SteadySolver(SteadySolver&&) noexcept = default;
+SteadySolver& SteadySolver::operator=(SteadySolver&&) noexcept = default;
+
+bool SteadySolver::is_explicit() const { return parts_->graph.is_tree_each; }
+
+template <int W>
+void SteadySolver::solve(const network::Values<W>& values, SteadyState<W>& state) {
+  Workspace<W>& work = parts_->workspace<W>();
+  parts_->size_state(state);
+  work.numbers.fill(*parts_->model, *parts_->topology, parts_->graph, values);
+  if (is_explicit()) {
+    solve_explicit(parts_->graph, work.numbers, work.flows);
+    for (int lane = 0; lane < W; ++lane)
+      if (!work.flows.possible[lane]) Parts::set_status(state, lane, SteadyStatus::not_converged);
+  }
+  parts_->copy_flows(values, state);
+  parts_->size_valves(values, state);
+  parts_->find_wave_speeds(values, state);
+  Parts::find_lost_lanes(state);
+}
+
+template void SteadySolver::solve<1>(const network::Values<1>&, SteadyState<1>&);
+template void SteadySolver::solve<8>(const network::Values<8>&, SteadyState<8>&);
+
+}  // namespace headband::steady
