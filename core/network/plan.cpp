@@ -115,7 +115,8 @@ class PlanMaker {
     std::vector<Found> found;
     const auto add = [&](DeviceKind kind, const auto& list, const auto& from, const auto& to) {
       for (std::size_t i = 0; i < list.size(); ++i)
-        found.push_back({list[i].place, found.size(),
+        found.push_back({list[i].place,
+                         found.size(),
                          {kind, list[i].name, static_cast<int>(i), place_id(from(list[i])), place_id(to(list[i]))}});
     };
     const auto from = [](const auto& e) { return e.from; };
@@ -130,8 +131,9 @@ class PlanMaker {
     add(DeviceKind::surge_tank, case_.surge_tanks, at, nowhere);
     add(DeviceKind::relief, case_.reliefs, at, to);
     add(DeviceKind::air_valve, case_.air_valves, at, nowhere);
-    std::sort(found.begin(), found.end(),
-              [](const Found& a, const Found& b) { return std::tie(a.place, a.order) < std::tie(b.place, b.order); });
+    std::sort(found.begin(), found.end(), [](const Found& a, const Found& b) {
+      return std::tie(a.place, a.order) < std::tie(b.place, b.order);
+    });
     for (auto& entry : found) {
       entry.device.adjoining = pipe_at(entry.device.from);
       if (!entry.device.adjoining.exists()) entry.device.adjoining = pipe_at(entry.device.to);
@@ -272,7 +274,8 @@ class PlanMaker {
     std::set<std::string> taken;
     for (auto& entry : list) {
       const std::string plain = entry.name;
-      for (int repeat = 2; !taken.insert(entry.name).second; ++repeat) entry.name = plain + " " + std::to_string(repeat);
+      for (int repeat = 2; !taken.insert(entry.name).second; ++repeat)
+        entry.name = plain + " " + std::to_string(repeat);
     }
   }
 
@@ -297,8 +300,9 @@ std::vector<std::string> guesses_of(const Plan& plan) {
   std::vector<std::string> guesses;
   for (const auto& place : plan.places) {
     if (!place.elevation_guessed) continue;
-    guesses.push_back("elevation of '" + place.name + "': stated nowhere, taken as " +
-                      (place.elevation == ElevationSource::nowhere ? "0 m" : "that of the other side of the device there"));
+    guesses.push_back(
+        "elevation of '" + place.name + "': stated nowhere, taken as " +
+        (place.elevation == ElevationSource::nowhere ? "0 m" : "that of the other side of the device there"));
   }
   return guesses;
 }

@@ -57,9 +57,9 @@ enum class DeviceKind { valve, pump, check_valve, draw_off, air_vessel, surge_ta
 struct DevicePlan {
   DeviceKind kind = DeviceKind::valve;
   std::string name;
-  int index = -1;    ///< into the case's vector of its kind
+  int index = -1;        ///< into the case's vector of its kind
   PlaceId from{}, to{};  ///< `to` not existing: air, or a device at one place
-  PipeId adjoining{};  ///< first pipe that ends at `from`, else at `to`
+  PipeId adjoining{};    ///< first pipe that ends at `from`, else at `to`
 };
 
 struct EventPlan {

@@ -76,7 +76,10 @@ void PumpCurve<W>::fit_monotone_cubic(const std::vector<Lanes<W>>& flow, const s
   pieces_[0] = {flow[0], value[0], slopes_[0], zero, zero};
   for (std::size_t i = 0; i + 1 < n; ++i) {
     const Lanes<W> h = width(i), d = mean_slope(i);
-    pieces_[i + 1] = {flow[i], value[i], slopes_[i], (3.0 * d - 2.0 * slopes_[i] - slopes_[i + 1]) / h,
+    pieces_[i + 1] = {flow[i],
+                      value[i],
+                      slopes_[i],
+                      (3.0 * d - 2.0 * slopes_[i] - slopes_[i + 1]) / h,
                       (slopes_[i] + slopes_[i + 1] - 2.0 * d) / (h * h)};
   }
   const Parabola<W> last = parabola_through<W>(&flow[n - 3], &value[n - 3], flow[n - 1]);

@@ -22,7 +22,7 @@ constexpr double bar = 1e5;
 
 template <int W>
 void realise_site(const Site& site, const Draw<W>& draw, Values<W>& values) {
-  values.gravity = draw(site.gravity, 9.80665);        // standard gravity, ISO 80000-3
+  values.gravity = draw(site.gravity, 9.80665);         // standard gravity, ISO 80000-3
   values.atmosphere = draw(site.atmosphere, 101325.0);  // standard atmosphere, ISO 2533
 }
 
@@ -85,8 +85,8 @@ Lanes<W> coefficient_of_kv(const Lanes<W>& kv, const Lanes<W>& gravity) {
 }
 
 template <int W>
-Lanes<W> bore_of(const Quantity& stated, const Plan& plan, const std::string& device, const Draw<W>& draw,
-                 const Values<W>& values) {
+Lanes<W> bore_of(
+    const Quantity& stated, const Plan& plan, const std::string& device, const Draw<W>& draw, const Values<W>& values) {
   if (stated.given()) return draw(stated);
   const int index = plan.device_named(device);
   const PipeId pipe = index >= 0 ? plan.devices[static_cast<std::size_t>(index)].adjoining : PipeId{};
@@ -94,8 +94,8 @@ Lanes<W> bore_of(const Quantity& stated, const Plan& plan, const std::string& de
 }
 
 template <int W>
-void realise_valve(const Valve& valve, const Plan& plan, const Draw<W>& draw, const Values<W>& values,
-                   ValveValues<W>& out) {
+void realise_valve(
+    const Valve& valve, const Plan& plan, const Draw<W>& draw, const Values<W>& values, ValveValues<W>& out) {
   out.sizing_flow = draw(valve.flow);
   out.seat_power = draw(valve.near_seat, 1.0);
   out.starting_opening = draw(valve.opening, 1.0);
@@ -104,16 +104,16 @@ void realise_valve(const Valve& valve, const Plan& plan, const Draw<W>& draw, co
   if (valve.kv.given()) {
     out.coefficient = coefficient_of_kv(draw(valve.kv), values.gravity);
   } else if (valve.k.given()) {
-    out.coefficient = coefficient_of_k(draw(valve.k), bore_of(valve.bore, plan, valve.name, draw, values),
-                                       values.gravity);
+    out.coefficient =
+        coefficient_of_k(draw(valve.k), bore_of(valve.bore, plan, valve.name, draw, values), values.gravity);
   } else if (valve.area.given()) {
     out.coefficient = draw(valve.area) * draw(valve.discharge_coefficient, 1.0) * base::sqrt(2.0 * values.gravity);
   }
 }
 
 template <int W>
-void realise_check_valve(const CheckValve& check, const Plan& plan, const Draw<W>& draw, const Values<W>& values,
-                         CheckValveValues<W>& out) {
+void realise_check_valve(
+    const CheckValve& check, const Plan& plan, const Draw<W>& draw, const Values<W>& values, CheckValveValues<W>& out) {
   out.bore = bore_of(check.bore.given() ? check.bore : check.rule.bore, plan, check.name, draw, values);
   out.reverse_velocity = draw(check.rule.reverse_velocity);
   out.delay = draw(check.rule.delay);
@@ -128,7 +128,10 @@ void realise_check_valve(const CheckValve& check, const Plan& plan, const Draw<W
 
 /// Rows of a table, the second column times `factor`.
 template <int W>
-void realise_table(const Table& table, const Draw<W>& draw, const Lanes<W>& factor, std::vector<Lanes<W>>& first,
+void realise_table(const Table& table,
+                   const Draw<W>& draw,
+                   const Lanes<W>& factor,
+                   std::vector<Lanes<W>>& first,
                    std::vector<Lanes<W>>& second) {
   first.resize(table.rows.size());
   second.resize(table.rows.size());
@@ -139,8 +142,8 @@ void realise_table(const Table& table, const Draw<W>& draw, const Lanes<W>& fact
 }
 
 template <int W>
-void realise_pump(const Pump& pump, const Plan& plan, const Draw<W>& draw, const Values<W>& values,
-                  PumpValues<W>& out) {
+void realise_pump(
+    const Pump& pump, const Plan& plan, const Draw<W>& draw, const Values<W>& values, PumpValues<W>& out) {
   realise_table(pump.curve, draw, draw(pump.head_scatter, 1.0), out.curve_flow, out.curve_head);
   realise_table(pump.torque, draw, Lanes<W>(1.0), out.torque_flow, out.torque_share);
   out.efficiency = draw(pump.efficiency);
@@ -223,8 +226,8 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan) {
   site_ = varies(c.site.atmosphere, c.site.gravity);
   const Liquid& l = c.liquid;
   temperature_ = varies(l.temperature) || varies_in_rows(l.viscosity_points);
-  liquid_ = temperature_ || varies(l.density, l.viscosity, l.viscosity_scatter, l.bulk_modulus, l.vapour_pressure,
-                                   l.free_gas);
+  liquid_ = temperature_ ||
+            varies(l.density, l.viscosity, l.viscosity_scatter, l.bulk_modulus, l.vapour_pressure, l.free_gas);
   bool any_profile = false;
   for (const auto& p : c.pipes) {
     PipeChanges changes;
@@ -232,11 +235,16 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan) {
     const bool profile = varies_in_rows(p.profile);
     any_profile = any_profile || profile;
     changes.geometry = varies(p.length, p.outside, p.wall, p.bore, p.rating) || lining || profile;
-    changes.wave = changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
-                   varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed,
-                          p.wave_speed_scatter);
-    changes.friction = varies(p.roughness, p.hazen_williams, p.manning, p.friction_factor, c.friction.scatter,
-                              c.friction.laminar_scatter, c.friction.fixed_factor);
+    changes.wave =
+        changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
+        varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed, p.wave_speed_scatter);
+    changes.friction = varies(p.roughness,
+                              p.hazen_williams,
+                              p.manning,
+                              p.friction_factor,
+                              c.friction.scatter,
+                              c.friction.laminar_scatter,
+                              c.friction.fixed_factor);
     if (c.friction.scatter_per_pipe && pipes_.size() < c.friction.pipe_scatter.size())
       changes.friction = changes.friction || varies(c.friction.pipe_scatter[pipes_.size()]);
     for (const auto& f : p.fittings)
@@ -256,15 +264,23 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan) {
     any_bore = any_bore || p.geometry;
   }
   for (const auto& v : c.valves)
-    valves_.push_back(site_ || any_bore || varies(v.kv, v.k, v.bore, v.area, v.discharge_coefficient, v.flow,
-                                                  v.near_seat, v.opening));
+    valves_.push_back(site_ || any_bore ||
+                      varies(v.kv, v.k, v.bore, v.area, v.discharge_coefficient, v.flow, v.near_seat, v.opening));
   for (const auto& p : c.pumps)
     pumps_.push_back(any_bore || varies_in_rows(p.curve.rows) || varies_in_rows(p.torque.rows) ||
-                     varies(p.head_scatter, p.efficiency, p.speed, p.inertia, p.shut_off_torque, p.rated_flow,
-                            p.rated_head, p.check_valve.reverse_velocity, p.check_valve.bore, p.check_valve.delay));
+                     varies(p.head_scatter,
+                            p.efficiency,
+                            p.speed,
+                            p.inertia,
+                            p.shut_off_torque,
+                            p.rated_flow,
+                            p.rated_head,
+                            p.check_valve.reverse_velocity,
+                            p.check_valve.bore,
+                            p.check_valve.delay));
   for (const auto& v : c.check_valves)
-    check_valves_.push_back(site_ || any_bore || varies(v.kv, v.k, v.bore, v.rule.reverse_velocity, v.rule.bore,
-                                                        v.rule.delay));
+    check_valves_.push_back(site_ || any_bore ||
+                            varies(v.kv, v.k, v.bore, v.rule.reverse_velocity, v.rule.bore, v.rule.delay));
   for (const auto& d : c.draw_offs) draw_offs_.push_back(varies(d.flow));
   for (const auto& e : c.events)
     events_.push_back(varies(e.at, e.to, e.over, e.swing, e.period, e.delay) || varies_in_rows(e.travel.rows));

@@ -19,7 +19,7 @@ struct Candidate {
   Quantity* quantity = nullptr;
   int* choice_unknown = nullptr;  ///< Choice::unknown
   Unknown unknown;
-  std::size_t order = 0;          ///< as met: decides where places are equal
+  std::size_t order = 0;  ///< as met: decides where places are equal
 };
 
 template <class T>

@@ -35,15 +35,15 @@ struct FittingValues {
 
 template <int W>
 struct PipeValues {
-  Lanes<W> length, bore, area;        ///< [m], [m], [m2]
-  Lanes<W> wall;                      ///< metal wall [m]; NaN = unknown
-  Lanes<W> metal_inner_diameter;      ///< inner diameter of the metal, D of the wall formula [m]
-  Lanes<W> roughness;                 ///< [m]; NaN where another law is used
-  Lanes<W> loss_number;               ///< Hazen-Williams C, Manning n, or the fixed Darcy factor
-  Lanes<W> friction_scatter;          ///< factor on the turbulent Darcy factor [-]
-  Lanes<W> laminar_scatter;           ///< factor on the laminar one [-]
-  Lanes<W> spread_k;                  ///< fittings without a place, summed [-]
-  Lanes<W> spread_equivalent_length;  ///< the same [m]
+  Lanes<W> length, bore, area;                    ///< [m], [m], [m2]
+  Lanes<W> wall;                                  ///< metal wall [m]; NaN = unknown
+  Lanes<W> metal_inner_diameter;                  ///< inner diameter of the metal, D of the wall formula [m]
+  Lanes<W> roughness;                             ///< [m]; NaN where another law is used
+  Lanes<W> loss_number;                           ///< Hazen-Williams C, Manning n, or the fixed Darcy factor
+  Lanes<W> friction_scatter;                      ///< factor on the turbulent Darcy factor [-]
+  Lanes<W> laminar_scatter;                       ///< factor on the laminar one [-]
+  Lanes<W> spread_k;                              ///< fittings without a place, summed [-]
+  Lanes<W> spread_equivalent_length;              ///< the same [m]
   std::vector<FittingValues<W>> placed_fittings;  ///< those with a chainage of their own, in file order
   Lanes<W> restraint_factor;        ///< the wave-speed factor used [-]; NaN = wave speed given outright or unknown
   Lanes<W> wall_compliance;         ///< restraint_factor D/(E e) [1/Pa]; 0 when the wave speed is given outright

@@ -8,9 +8,9 @@ namespace headband::steady {
 /// Flows and heads of W draws.
 template <int W>
 struct LinkFlows {
-  std::vector<Lanes<W>> flow;        ///< per link [m3/s]
-  std::vector<PipeLoss<W>> losses;   ///< per pipe
-  base::Mask<W> possible;            ///< false: a one-way link would have to flow backwards
+  std::vector<Lanes<W>> flow;       ///< per link [m3/s]
+  std::vector<PipeLoss<W>> losses;  ///< per pipe
+  base::Mask<W> possible;           ///< false: a one-way link would have to flow backwards
 };
 
 /// Head lost from `from` to `to` of a link that is not a pipe [m].

@@ -15,10 +15,10 @@ enum class LinkKind { pipe, valve, pump, check_valve };
 /// A link whose head difference is a function of its flow.
 struct Link {
   LinkKind kind = LinkKind::pipe;
-  int index = -1;   ///< into Plan::pipes, or the case's vector of its kind
-  int device = -1;  ///< into Plan::devices; -1 for pipes
-  int from = -1;    ///< node
-  int to = -1;      ///< node
+  int index = -1;        ///< into Plan::pipes, or the case's vector of its kind
+  int device = -1;       ///< into Plan::devices; -1 for pipes
+  int from = -1;         ///< node
+  int to = -1;           ///< node
   bool one_way = false;  ///< check valves, pumps with one, valves to the air: no flow to -> from
 };
 
@@ -37,14 +37,14 @@ struct TreeStep {
 };
 
 struct FlowGraph {
-  int places = 0;                 ///< nodes 0 .. places-1 are the plan's places, then one air node per valve to air
-  std::vector<int> air_of_node;   ///< per node beyond the places: the place whose elevation is its head
-  std::vector<bool> held;         ///< per node: head known
-  std::vector<Link> links;        ///< pipes first, in the plan's order
+  int places = 0;                ///< nodes 0 .. places-1 are the plan's places, then one air node per valve to air
+  std::vector<int> air_of_node;  ///< per node beyond the places: the place whose elevation is its head
+  std::vector<bool> held;        ///< per node: head known
+  std::vector<Link> links;       ///< pipes first, in the plan's order
   std::vector<KnownFlow> known;
-  bool is_tree_each = false;      ///< every part is a tree with exactly one held head: flows follow from continuity
-  std::vector<TreeStep> steps;    ///< outwards from the held heads; filled where `is_tree_each`
-  std::vector<int> headless;      ///< one place of every part without a held head
+  bool is_tree_each = false;    ///< every part is a tree with exactly one held head: flows follow from continuity
+  std::vector<TreeStep> steps;  ///< outwards from the held heads; filled where `is_tree_each`
+  std::vector<int> headless;    ///< one place of every part without a held head
 
   [[nodiscard]] int nodes() const { return static_cast<int>(held.size()); }
 };

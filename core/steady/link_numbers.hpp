@@ -13,16 +13,18 @@ namespace headband::steady {
 /// What the links of a graph do to the head, for W draws. Storage is kept between draws.
 template <int W>
 struct LinkNumbers {
-  std::vector<PipeFriction<W>> pipes;          ///< as Plan::pipes
-  std::vector<Lanes<W>> valve_share;           ///< as Case::valves: share of full coefficient at the start [-]
-  std::vector<Lanes<W>> valve_resistance;      ///< dH = this Q|Q| [s2/m5]; infinite when shut, NaN when sized by flow
-  std::vector<Lanes<W>> check_resistance;      ///< as Case::check_valves [s2/m5]
-  std::vector<network::PumpCurve<W>> curves;   ///< as Case::pumps: one pump, rated speed
-  std::vector<Lanes<W>> pump_count;            ///< pumps in parallel [-]
-  std::vector<Lanes<W>> node_head;             ///< per node of the graph: held heads filled, others unset [m]
-  std::vector<Lanes<W>> outflow;               ///< per node: known flows out of the network of links [m3/s]
+  std::vector<PipeFriction<W>> pipes;         ///< as Plan::pipes
+  std::vector<Lanes<W>> valve_share;          ///< as Case::valves: share of full coefficient at the start [-]
+  std::vector<Lanes<W>> valve_resistance;     ///< dH = this Q|Q| [s2/m5]; infinite when shut, NaN when sized by flow
+  std::vector<Lanes<W>> check_resistance;     ///< as Case::check_valves [s2/m5]
+  std::vector<network::PumpCurve<W>> curves;  ///< as Case::pumps: one pump, rated speed
+  std::vector<Lanes<W>> pump_count;           ///< pumps in parallel [-]
+  std::vector<Lanes<W>> node_head;            ///< per node of the graph: held heads filled, others unset [m]
+  std::vector<Lanes<W>> outflow;              ///< per node: known flows out of the network of links [m3/s]
 
-  void fill(const network::Case& c, const network::Plan& plan, const FlowGraph& graph,
+  void fill(const network::Case& c,
+            const network::Plan& plan,
+            const FlowGraph& graph,
             const network::Values<W>& values);
 };
 
@@ -35,7 +37,9 @@ template <int W>
 }
 
 template <int W>
-void LinkNumbers<W>::fill(const network::Case& c, const network::Plan& plan, const FlowGraph& graph,
+void LinkNumbers<W>::fill(const network::Case& c,
+                          const network::Plan& plan,
+                          const FlowGraph& graph,
                           const network::Values<W>& values) {
   pipes.resize(values.pipes.size());
   for (std::size_t i = 0; i < pipes.size(); ++i) pipes[i] = pipe_friction(plan, values, i);

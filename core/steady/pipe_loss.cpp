@@ -40,10 +40,9 @@ PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W
       break;
     case network::LossKind::hazen_williams:
       // f = h 2 g D A^2 / (L Q^2) at Q = 1
-      out.factor_at_unit = pipe.friction_scatter * (2.0 * hazen_williams_constant) * values.gravity * pipe.bore *
-                           pipe.area * pipe.area /
-                           (base::pow(pipe.loss_number, hazen_williams_flow_power) *
-                            base::pow(pipe.bore, hazen_williams_bore_power));
+      out.factor_at_unit =
+          pipe.friction_scatter * (2.0 * hazen_williams_constant) * values.gravity * pipe.bore * pipe.area * pipe.area /
+          (base::pow(pipe.loss_number, hazen_williams_flow_power) * base::pow(pipe.bore, hazen_williams_bore_power));
       break;
     case network::LossKind::manning:
       // f = 8 g n^2 / R^(1/3), R = D/4 hydraulic radius
@@ -88,8 +87,8 @@ PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
 
   PipeLoss<W> loss;
   loss.head = (friction_part + fitting_part) * flow;
-  loss.slope = base::select(moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part,
-                            friction_part + fitting_part);
+  loss.slope =
+      base::select(moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part, friction_part + fitting_part);
   loss.factor = factor.factor;
   loss.reynolds = pipe.reynolds_per_flow * size;
   return loss;

@@ -23,13 +23,14 @@ struct PipeFriction {
 
 /// The friction law of pipe `index` of a plan, its numbers taken from `values`.
 template <int W>
-[[nodiscard]] PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W>& values,
+[[nodiscard]] PipeFriction<W> pipe_friction(const network::Plan& plan,
+                                            const network::Values<W>& values,
                                             std::size_t index);
 
 /// Darcy factor (scatter included) and d ln f / d ln Q at a flow.
 ///
-/// Hazen-Williams h = 10.67 L Q^1.852 / (C^1.852 D^4.8704) and Manning h = n^2 V^2 L / (D/4)^(4/3), both SI, are told as
-/// the Darcy factor that gives the same loss.
+/// Hazen-Williams h = 10.67 L Q^1.852 / (C^1.852 D^4.8704) and Manning h = n^2 V^2 L / (D/4)^(4/3), both SI, are told
+/// as the Darcy factor that gives the same loss.
 /// @param flow_size |Q| [m3/s], > 0
 template <int W>
 [[nodiscard]] friction::Factor<W> factor_at_flow(const PipeFriction<W>& pipe, const Lanes<W>& flow_size);

@@ -24,9 +24,13 @@ struct Workspace {
 /// Mean absolute pressure of a pipe over its length: straight head line with steps at placed fittings, profile by
 /// straight lines [Pa].
 template <int W>
-Lanes<W> mean_absolute_pressure(const network::Values<W>& values, const network::PipeValues<W>& pipe,
-                                const PipeFriction<W>& friction, const PipeLoss<W>& loss, const Lanes<W>& flow,
-                                const Lanes<W>& head_from, const Lanes<W>& head_to) {
+Lanes<W> mean_absolute_pressure(const network::Values<W>& values,
+                                const network::PipeValues<W>& pipe,
+                                const PipeFriction<W>& friction,
+                                const PipeLoss<W>& loss,
+                                const Lanes<W>& flow,
+                                const Lanes<W>& head_from,
+                                const Lanes<W>& head_to) {
   Lanes<W> mean_head = 0.5 * (head_from + head_to);
   for (const auto& fitting : pipe.placed_fittings) {
     const Lanes<W> step = (fitting.k + loss.factor * fitting.equivalent_length / pipe.bore) * friction.velocity_head *
@@ -36,8 +40,7 @@ Lanes<W> mean_absolute_pressure(const network::Values<W>& values, const network:
   Lanes<W> area = 0.0;
   for (std::size_t i = 1; i < pipe.chainage.size(); ++i)
     area += 0.5 * (pipe.elevation[i] + pipe.elevation[i - 1]) * (pipe.chainage[i] - pipe.chainage[i - 1]);
-  return values.atmosphere +
-         values.liquid.density * values.gravity * (mean_head - area / pipe.length);
+  return values.atmosphere + values.liquid.density * values.gravity * (mean_head - area / pipe.length);
 }
 
 }  // namespace
@@ -45,8 +48,7 @@ Lanes<W> mean_absolute_pressure(const network::Values<W>& values, const network:
 struct SteadySolver::Parts {
   Parts(const network::Case& c, const network::Plan& plan, SteadyOptions chosen)
       : model(&c), topology(&plan), options(chosen), graph(make_flow_graph(c, plan)) {
-    gas_possible = c.liquid.free_gas.given() &&
-                   (c.liquid.free_gas.unknown >= 0 || c.liquid.free_gas.value > 0.0);
+    gas_possible = c.liquid.free_gas.given() && (c.liquid.free_gas.unknown >= 0 || c.liquid.free_gas.value > 0.0);
   }
 
   const network::Case* model;
@@ -131,15 +133,20 @@ struct SteadySolver::Parts {
       state.wave_speed[i] = pipe.wave_speed_without_gas;
       const bool by_formula = topology->pipes[i].wave_speed_known && !model->pipes[i].wave_speed.given();
       if (!gas_possible || !by_formula) continue;
-      const Lanes<W> mean = mean_absolute_pressure(values, pipe, work.numbers.pipes[i], work.flows.losses[i],
+      const Lanes<W> mean = mean_absolute_pressure(values,
+                                                   pipe,
+                                                   work.numbers.pipes[i],
+                                                   work.flows.losses[i],
                                                    state.pipe_flow[i],
                                                    state.place_head[topology->pipes[i].from.at()],
                                                    state.place_head[topology->pipes[i].to.at()]);
       const Lanes<W> least = base::max(values.liquid.vapour_pressure, Lanes<W>(least_gas_pressure));
-      state.wave_speed[i] =
-          pipe.wave_speed_scatter * headband::pipe::wave_speed<W>(values.liquid.density, values.liquid.bulk_modulus,
-                                                                  pipe.wall_compliance, values.liquid.free_gas,
-                                                                  base::max(mean, least), values.liquid.temperature);
+      state.wave_speed[i] = pipe.wave_speed_scatter * headband::pipe::wave_speed<W>(values.liquid.density,
+                                                                                    values.liquid.bulk_modulus,
+                                                                                    pipe.wall_compliance,
+                                                                                    values.liquid.free_gas,
+                                                                                    base::max(mean, least),
+                                                                                    values.liquid.temperature);
     }
   }
 
@@ -181,6 +188,9 @@ void SteadySolver::solve(const network::Values<W>& values, SteadyState<W>& state
     solve_explicit(parts_->graph, work.numbers, work.flows);
     for (int lane = 0; lane < W; ++lane)
       if (!work.flows.possible[lane]) Parts::set_status(state, lane, SteadyStatus::not_converged);
+  } else {
+    work.flows.flow.assign(parts_->graph.links.size(), Lanes<W>(not_a_number));
+    work.flows.losses.resize(work.numbers.pipes.size());
   }
   parts_->copy_flows(values, state);
   parts_->size_valves(values, state);

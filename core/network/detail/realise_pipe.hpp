@@ -44,8 +44,8 @@ void realise_geometry(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& valu
 /// A lining of known modulus carries hoop stress with the metal: E e of both add up (thin ring, one hoop strain;
 /// Wylie & Streeter, composite pipes). Needs geometry and liquid.
 template <int W>
-void realise_wave(const Pipe& pipe, const PipePlan& plan, const Draw<W>& draw, const LiquidValues<W>& liquid,
-                  PipeValues<W>& values) {
+void realise_wave(
+    const Pipe& pipe, const PipePlan& plan, const Draw<W>& draw, const LiquidValues<W>& liquid, PipeValues<W>& values) {
   values.wave_speed_scatter = draw(pipe.wave_speed_scatter, 1.0);
   values.wave_speed_given = draw(pipe.wave_speed);
   values.restraint_factor = not_a_number;
@@ -63,17 +63,21 @@ void realise_wave(const Pipe& pipe, const PipePlan& plan, const Draw<W>& draw, c
   if (pipe.restraint_factor.given()) {
     values.restraint_factor = draw(pipe.restraint_factor);
   } else {
-    values.restraint_factor =
-        headband::pipe::restraint_factor<W>(restraint_of(pipe.joint), pipe.wall_formula == WallFormula::thick, poisson,
-                                            values.metal_inner_diameter, values.wall);
+    values.restraint_factor = headband::pipe::restraint_factor<W>(restraint_of(pipe.joint),
+                                                                  pipe.wall_formula == WallFormula::thick,
+                                                                  poisson,
+                                                                  values.metal_inner_diameter,
+                                                                  values.wall);
   }
   Lanes<W> stiffness = modulus * values.wall;
   if (pipe.lining_modulus.given()) stiffness += draw(pipe.lining_modulus) * draw(pipe.lining_thickness, 0.0);
   values.wall_compliance = values.restraint_factor * values.metal_inner_diameter / stiffness;
-  values.wave_speed_without_gas =
-      values.wave_speed_scatter * headband::pipe::wave_speed<W>(liquid.density, liquid.bulk_modulus,
-                                                                values.wall_compliance, Lanes<W>(0.0),
-                                                                Lanes<W>(101325.0), liquid.temperature);
+  values.wave_speed_without_gas = values.wave_speed_scatter * headband::pipe::wave_speed<W>(liquid.density,
+                                                                                            liquid.bulk_modulus,
+                                                                                            values.wall_compliance,
+                                                                                            Lanes<W>(0.0),
+                                                                                            Lanes<W>(101325.0),
+                                                                                            liquid.temperature);
 }
 
 /// Roughness or the number of another law, and the scatter factors.
@@ -124,8 +128,11 @@ void realise_fittings(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& valu
 
 /// Profile points, stretched to the drawn length; without a profile the straight line between the places.
 template <int W>
-void realise_profile(const Pipe& pipe, const PipePlan& plan, const Draw<W>& draw,
-                     const std::vector<PlaceValues<W>>& places, PipeValues<W>& values) {
+void realise_profile(const Pipe& pipe,
+                     const PipePlan& plan,
+                     const Draw<W>& draw,
+                     const std::vector<PlaceValues<W>>& places,
+                     PipeValues<W>& values) {
   if (pipe.profile.empty()) {
     values.chainage.assign(2, Lanes<W>(0.0));
     values.elevation.assign(2, Lanes<W>(0.0));
