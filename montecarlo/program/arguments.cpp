@@ -2,7 +2,6 @@
 #include "montecarlo/program/arguments.hpp"
 
 #include "core/network/nearest_word.hpp"
-#include "montecarlo/program/caution.hpp"
 
 #include <fmt/format.h>
 
@@ -59,6 +58,12 @@ constexpr std::array option_table{
     OptionWords{"--help", "", "this text; also after a verb"},
 };
 
+/// The cautions of --help, lines of at most 80 columns.
+constexpr std::string_view caution_text =
+    "A calculation aid: the code in force and a licensed engineer decide. Ratings are\n"
+    "the user's. Not modelled: slam of check valves, structures that move with the\n"
+    "liquid, column filling, human error.\n";
+
 std::string option_line(const OptionWords& option) {
   std::string left = std::string(option.name);
   if (!option.value.empty()) left.append(" ").append(option.value);
@@ -114,7 +119,7 @@ std::string help() {
       "  headband surge valve.toml              what the event does, one run\n"
       "  headband band --surge valve.toml       how far that answer can be trusted\n"
       "  headband report valve-band.h5          the page for the file\n\n";
-  text += caution_text();
+  text += caution_text;
   text += "\nVerbs:\n";
   for (const auto& verb : verb_table) {
     if (verb.ready) text += fmt::format("  {:<20} {}\n", fmt::format("{} {}", verb.name, verb.words), verb.what);
@@ -141,7 +146,7 @@ std::string help() {
 std::string help(const VerbWords& verb) {
   if (!verb.ready) return fmt::format("headband {} {}: {}\nNot computed yet by this version.\n", verb.name, verb.words, verb.what);
   std::string text = fmt::format("headband {} {}: {}\n\n  {}\n\n", verb.name, verb.words, verb.what, verb.example);
-  text += caution_text();
+  text += caution_text;
   text += "\nOptions:\n";
   for (const auto& option : option_table) {
     if (takes(verb, option.name)) text += option_line(option);

@@ -5,11 +5,14 @@
 #include "montecarlo/program/arguments.hpp"
 #include "montecarlo/program/output.hpp"
 #include "montecarlo/program/study_case.hpp"
+#include "montecarlo/program/verbs.hpp"
 
 #include <fmt/format.h>
 
 #include <new>
 #include <stdexcept>
+#include <string_view>
+#include <utility>
 
 namespace headband::program {
 namespace {
@@ -57,6 +60,17 @@ ExitCode told(const Options& options, const std::function<ExitCode()>& work) noe
     say("headband: stopped, and the reason could not be told\n");
     return ExitCode::internal_error;
   }
+}
+
+ExitCode run(const Options& options) noexcept {
+  using Verb = ExitCode (*)(const Options&);
+  static constexpr std::pair<std::string_view, Verb> table[] = {
+      {"new", verb_new},   {"check", verb_check},   {"flow", verb_flow},    {"surge", verb_surge},
+      {"band", verb_band}, {"report", verb_report}, {"liquid", verb_liquid}};
+  for (const auto& [name, verb] : table) {
+    if (name == options.verb) return told(options, [&, go = verb] { return go(options); });
+  }
+  return ExitCode::internal_error;  // the table of words has a ready verb that stands not here
 }
 
 }  // namespace headband::program

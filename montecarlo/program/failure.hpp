@@ -1,7 +1,6 @@
 #pragma once
 // SPDX-License-Identifier: MIT
 
-#include "montecarlo/program/exit_code.hpp"
 #include "montecarlo/program/options.hpp"
 
 #include <functional>

@@ -1,7 +1,7 @@
 #pragma once
 // SPDX-License-Identifier: MIT
 
-#include "montecarlo/program/exit_code.hpp"
+#include "montecarlo/program/options.hpp"
 
 #include <functional>
 #include <string>

@@ -3,7 +3,6 @@
 
 #include "core/base/hash.hpp"
 #include "core/base/version.hpp"
-#include "montecarlo/program/threads.hpp"
 
 #include <fmt/chrono.h>
 #include <fmt/format.h>

@@ -5,7 +5,6 @@
 
 #include "core/answers/study.hpp"
 #include "core/network/case.hpp"
-#include "montecarlo/program/exit_code.hpp"
 #include "montecarlo/program/options.hpp"
 
 #include <functional>

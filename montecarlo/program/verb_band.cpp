@@ -8,7 +8,6 @@
 #include "montecarlo/program/progress.hpp"
 #include "montecarlo/program/signals.hpp"
 #include "montecarlo/program/study_case.hpp"
-#include "montecarlo/program/threads.hpp"
 #include "montecarlo/program/verbs.hpp"
 
 #include <fmt/format.h>
