@@ -3,6 +3,8 @@
 #include "core/show/reported.hpp"
 #include "core/show/show.hpp"
 
+#include "core/base/version.hpp"
+
 #include <nlohmann/json.hpp>
 
 #include <algorithm>
@@ -248,7 +250,7 @@ std::string problems_json(const base::Problems& problems) {
                     {"bound", p.bound},
                     {"hint", p.hint}});
   }
-  return json_text({{"headband", HEADBAND_VERSION}, {"problems", std::move(list)}});
+  return json_text({{"headband", base::version()}, {"problems", std::move(list)}});
 }
 
 }  // namespace headband::show

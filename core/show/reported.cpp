@@ -55,8 +55,8 @@ std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study
   if (told.size() <= reported_cavities_at_most) return told;
   std::vector<std::size_t> order(told.size());
   std::iota(order.begin(), order.end(), std::size_t{0});
-  std::stable_sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
-    return told[a].max_volume > told[b].max_volume;
+  std::sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
+    return told[a].max_volume != told[b].max_volume ? told[a].max_volume > told[b].max_volume : a < b;
   });
   order.resize(reported_cavities_at_most);
   std::sort(order.begin(), order.end());
