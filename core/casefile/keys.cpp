@@ -101,6 +101,8 @@ constexpr std::array rules{
     positive("valve", "discharge_coefficient", Dimension::number, "0.6"),
     any("valve", "flow", Dimension::flow),
     scatter("valve", "near_seat"),
+    chosen(between("valve", "law travel", Dimension::share, 0.0, 1.0, "50 %"), "the points are exact: state the doubt as near_seat"),
+    chosen(between("valve", "law share", Dimension::share, 0.0, 1.0, "0.28"), "the points are exact: state the doubt as near_seat"),
     between("valve", "opening", Dimension::share, 0.0, 1.0, "100 %"),
     // pumps, check valves
     chosen(any("pump", "curve flow", Dimension::flow, "175 L/s"), "the points are exact: state the doubt as head_scatter"),

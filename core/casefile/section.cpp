@@ -123,13 +123,15 @@ std::string written(const toml::node& node) {
   return out.str();
 }
 
-Section::Section(Context& context, const toml::table& table, std::string section, std::string element, std::string path, std::string prefix)
+Section::Section(Context& context, const toml::table& table, std::string section, std::string element, std::string path, std::string rule_prefix,
+                 std::string name_prefix)
     : context_(context),
       table_(table),
       section_(std::move(section)),
       element_(std::move(element)),
       path_(std::move(path)),
-      prefix_(std::move(prefix)),
+      rule_prefix_(std::move(rule_prefix)),
+      name_prefix_(std::move(name_prefix)),
       place_(place_of(table)) {
   context_.places.emplace(path_, place_);
 }
@@ -148,19 +150,22 @@ SourcePlace Section::place(std::string_view key) const {
   return node == nullptr ? place_ : place_of(*node);
 }
 
-Quantity Section::quantity(std::string_view key) { return quantity(key, prefix_ + std::string(key)); }
+Quantity Section::quantity(std::string_view key) { return quantity(key, rule_prefix_ + std::string(key)); }
+
+std::string Section::name_of(std::string_view key) const {
+  return fmt::format("{} {}{}", element_.empty() ? section_ : element_, name_prefix_, key);
+}
 
 Quantity Section::quantity(std::string_view key, std::string_view rule_key) {
   const toml::node* node = ask(key);
   if (node == nullptr) return {};
-  const std::string name = fmt::format("{} {}{}", element_.empty() ? section_ : element_, prefix_, key);
-  return read_quantity(context_, *node, key_rule(section_, rule_key), context_.unique_name(name), path(key));
+  return read_quantity(context_, *node, key_rule(section_, rule_key), context_.unique_name(name_of(key)), path(key));
 }
 
 Quantity Section::quantity_or(std::string_view key, std::string_view default_text, bool guess) {
   if (has(key)) return quantity(key);
-  Quantity q = parse_quantity(default_text, key_rule(section_, prefix_ + std::string(key))).quantity;
-  q.name = context_.unique_name(fmt::format("{} {}{}", element_.empty() ? section_ : element_, prefix_, key));
+  Quantity q = parse_quantity(default_text, key_rule(section_, rule_prefix_ + std::string(key))).quantity;
+  q.name = context_.unique_name(name_of(key));
   q.path = path(key);
   q.source = "default";
   q.guess = guess;

@@ -45,9 +45,11 @@ struct Context {
 class Section {
  public:
   /// @param section word of the rules (`pipe`) @param element its name, empty where it has none
-  /// @param path of its values, `pipe/main`  @param prefix of the keys in the rules and names (`lining `)
+  /// @param path of its values, `pipe/main`
+  /// @param rule_prefix of the keys in the table of rules (`fitting `)
+  /// @param name_prefix of the keys in names and paths (`fitting bend 90 `)
   Section(Context& context, const toml::table& table, std::string section, std::string element, std::string path,
-          std::string prefix = {});
+          std::string rule_prefix = {}, std::string name_prefix = {});
 
   [[nodiscard]] bool has(std::string_view key);
   /// The node of a key, null when it is not there. The key counts as asked for.
@@ -55,7 +57,8 @@ class Section {
   [[nodiscard]] SourcePlace place() const { return place_; }
   [[nodiscard]] SourcePlace place(std::string_view key) const;
   [[nodiscard]] const std::string& path() const { return path_; }
-  [[nodiscard]] std::string path(std::string_view key) const { return path_ + "/" + std::string(key); }
+  [[nodiscard]] std::string path(std::string_view key) const { return path_ + "/" + name_prefix_ + std::string(key); }
+  [[nodiscard]] const std::string& rule_section() const { return section_; }
   [[nodiscard]] const std::string& element() const { return element_; }
   [[nodiscard]] Context& context() { return context_; }
 
@@ -96,7 +99,8 @@ class Section {
  private:
   Context& context_;
   const toml::table& table_;
-  std::string section_, element_, path_, prefix_;
+  std::string section_, element_, path_, rule_prefix_, name_prefix_;
+  [[nodiscard]] std::string name_of(std::string_view key) const;
   SourcePlace place_;
   std::set<std::string, std::less<>> asked_;
 };
