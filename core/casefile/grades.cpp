@@ -6,6 +6,8 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
+
 namespace headband::casefile {
 
 void apply_default_spread(base::Quantity& quantity, const KeyRule& rule) {
@@ -14,14 +16,14 @@ void apply_default_spread(base::Quantity& quantity, const KeyRule& rule) {
   if (!spread) return;
   const bool bare = rule.form == Form::scatter;  // "none" or a factor: the spread stands alone about it
   const std::string number = bare ? fmt::format("{}", quantity.value) : quantity.written;
-  const ParsedQuantity parsed = parse_quantity(number + " " + spread->written(), rule);
+  const ParsedQuantity parsed = parse_quantity(fmt::format("{} {}", number, spread->written()), rule);
   if (parsed.problem) return;
   const base::Cut stated = quantity.cut;
   quantity.spread = parsed.quantity.spread;
   quantity.cut = parsed.quantity.cut;
   quantity.cut.low = std::max(quantity.cut.low, stated.low);
   quantity.cut.high = std::min(quantity.cut.high, stated.high);
-  quantity.written += " " + spread->written();
+  quantity.written = fmt::format("{} {}", quantity.written, spread->written());
   quantity.source += fmt::format("{}default for grade {}", quantity.source.empty() ? "" : "; ", quantity.grade);
 }
 

@@ -34,8 +34,8 @@ struct KeyRule {
   double high = std::numeric_limits<double>::infinity();   ///< physical limit [SI]
   bool low_open = false;      ///< the lower limit itself is not allowed
   Form form = Form::value;
-  std::string_view example;   ///< right form for messages; empty: that of the dimension
-  std::string_view instead;   ///< what to write in place of a spread, where it is refused
+  std::string_view example{};   ///< right form for messages; empty: that of the dimension
+  std::string_view instead{};   ///< what to write in place of a spread, where it is refused
 };
 
 /// All keys.
