@@ -186,11 +186,11 @@ Properties water(double temperature, double pressure) {
     p.speed_of_sound = w.speed_of_sound;
     p.bulk_modulus_isothermal = -w.specific_volume / w.volume_by_pressure;
   } else {
-    const WaterUnderPressure w = water_under_pressure(temperature, pressure);
-    p.density = 1.0 / w.specific_volume;
+    p.density = density_of_water(temperature, pressure);
+    const WaterByDensity w = water_by_density(temperature, p.density);
     p.dynamic_viscosity = viscosity_of_water(temperature, p.density);
     p.speed_of_sound = w.speed_of_sound;
-    p.bulk_modulus_isothermal = 1.0 / w.isothermal_compressibility;
+    p.bulk_modulus_isothermal = w.isothermal_bulk_modulus;
   }
   p.bulk_modulus_isentropic = p.density * p.speed_of_sound * p.speed_of_sound;
   return p;

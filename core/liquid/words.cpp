@@ -83,7 +83,7 @@ void remark_boiling(LiquidSheet& s) {
 LiquidSheet water_sheet(double temperature, double pressure) {
   LiquidSheet s{"water", temperature, pressure, water(temperature, pressure), {}, {}};
   const bool one_bar = pressure <= 0.15e6;
-  const std::string state = one_bar ? "IAPWS SR6-08(2011), liquid water at 0.1 MPa" : "IAPWS R7-97(2012) IF97, region 1";
+  const std::string state = one_bar ? "IAPWS SR6-08(2011), liquid water at 0.1 MPa" : "IAPWS R6-95(2018), IAPWS-95";
   const std::string viscosity = one_bar ? "IAPWS SR6-08(2011)" : "IAPWS R12-08, at the density above";
   const WaterSpread w;
   s.rows = rows_of(s.properties, {state, viscosity, viscosity, state, state, state, "IAPWS R7-97(2012) IF97, region 4"},
