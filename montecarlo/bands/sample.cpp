@@ -1,0 +1,152 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/bands/sample.hpp"
+
+#include <algorithm>
+#include <boost/math/distributions/students_t.hpp>
+#include <cmath>
+#include <numbers>
+
+namespace headband::montecarlo {
+
+namespace {
+
+/// Gaussian kernel estimate of the density on an even grid: counts in fine bins, then a convolution.
+std::vector<double> density(const std::vector<double>& sorted, double low, double high, double width, int bins) {
+  const double step = (high - low) / bins;
+  std::vector<double> count(static_cast<std::size_t>(bins), 0.0);
+  for (const double x : sorted) {
+    if (x < low || x > high) continue;
+    const int bin = std::clamp(static_cast<int>((x - low) / step), 0, bins - 1);
+    count[static_cast<std::size_t>(bin)] += 1.0;
+  }
+  const int reach = std::min(bins, static_cast<int>(std::ceil(5.0 * width / step)));
+  std::vector<double> kernel(static_cast<std::size_t>(reach) + 1);
+  for (std::size_t k = 0; k < kernel.size(); ++k) {
+    const double z = static_cast<double>(k) * step / width;
+    kernel[k] = std::exp(-0.5 * z * z);
+  }
+  const double scale = 1.0 / (static_cast<double>(sorted.size()) * width * std::sqrt(2.0 * std::numbers::pi));
+  std::vector<double> result(count.size());
+  for (int i = 0; i < bins; ++i) {
+    double sum = 0.0;
+    for (int k = std::max(0, i - reach); k <= std::min(bins - 1, i + reach); ++k) {
+      sum += count[static_cast<std::size_t>(k)] * kernel[static_cast<std::size_t>(std::abs(i - k))];
+    }
+    result[static_cast<std::size_t>(i)] = sum * scale;
+  }
+  return result;
+}
+
+}  // namespace
+
+double quantile_of_sorted(std::span<const double> sorted, double probability) {
+  if (sorted.empty()) return answers::missing;
+  const double place = std::clamp(probability, 0.0, 1.0) * static_cast<double>(sorted.size() - 1);
+  const auto below = std::min(static_cast<std::size_t>(place), sorted.size() - 1);
+  const std::size_t above = std::min(below + 1, sorted.size() - 1);
+  const double share = place - static_cast<double>(below);
+  return sorted[below] + share * (sorted[above] - sorted[below]);
+}
+
+std::vector<double> asked_probabilities(double coverage) {
+  // the ends to 15 digits, so that (1 - 0.95)/2 is written 0.025
+  const auto rounded = [](double p) { return std::round(p * 1e15) / 1e15; };
+  std::vector<double> all{0.05, 0.5, 0.95, rounded(0.5 * (1.0 - coverage)), rounded(0.5 * (1.0 + coverage))};
+  std::sort(all.begin(), all.end());
+  all.erase(std::unique(all.begin(), all.end()), all.end());
+  return all;
+}
+
+Sample::Sample(std::span<const double> values, std::span<const std::int8_t> status, SampleShape shape)
+    : shape_(shape), draws_(static_cast<long long>(values.size())) {
+  const auto replicates = static_cast<std::size_t>(std::max(1, shape.replicates));
+  if (replicates > 1) replicate_.resize(replicates);
+  sorted_.reserve(values.size());
+  for (std::size_t i = 0; i < values.size(); ++i) {
+    if (status[i] != 0 || std::isnan(values[i])) continue;
+    sorted_.push_back(values[i]);
+    if (replicates > 1) replicate_[i % replicates].push_back(values[i]);
+  }
+  if (sorted_.empty()) return;
+  // in draw order, before sorting, and about a pivot: no digits lost, the same bits for any threads
+  const double pivot = sorted_.front(), n = static_cast<double>(sorted_.size());
+  double sum = 0.0, squares = 0.0;
+  for (const double x : sorted_) sum += x - pivot;
+  const double shift = sum / n;
+  for (const double x : sorted_) squares += (x - pivot - shift) * (x - pivot - shift);
+  mean_ = pivot + shift;
+  standard_deviation_ = n > 1.0 ? std::sqrt(squares / (n - 1.0)) : 0.0;
+  std::sort(sorted_.begin(), sorted_.end());
+  for (auto& r : replicate_) std::sort(r.begin(), r.end());
+}
+
+answers::QuantileAnswer Sample::quantile(double probability) const {
+  answers::QuantileAnswer q;
+  q.probability = probability;
+  if (sorted_.empty()) return q;
+  q.value = quantile_of_sorted(sorted_, probability);
+  const bool usable = std::ranges::all_of(replicate_, [](const auto& r) { return r.size() >= 2; });
+  if (replicate_.empty() || !usable) {
+    const Ranks ranks = quantile_ranks(draws_, probability, shape_.confidence);
+    const long long lower = ranks.lower - failed();
+    if (lower >= 1) q.lower = sorted_[static_cast<std::size_t>(lower - 1)];
+    if (ranks.upper <= finished()) q.upper = sorted_[static_cast<std::size_t>(ranks.upper - 1)];
+    return q;
+  }
+  const auto replicates = static_cast<double>(replicate_.size());
+  double sum = 0.0, squares = 0.0;
+  for (const auto& r : replicate_) sum += quantile_of_sorted(r, probability) - q.value;
+  for (const auto& r : replicate_) {
+    const double off = quantile_of_sorted(r, probability) - q.value - sum / replicates;
+    squares += off * off;
+  }
+  const boost::math::students_t student(replicates - 1.0);
+  const double half = boost::math::quantile(student, 0.5 * (1.0 + shape_.confidence)) *
+                      std::sqrt(squares / (replicates - 1.0) / replicates);
+  const auto all = static_cast<double>(draws_), good = static_cast<double>(finished());
+  // half a draw each way: no definition of a sample quantile is nearer to the truth than that in a stratified design
+  const double lowest = (probability * all - (all - good) - 0.5) / good, highest = (probability * all + 0.5) / good;
+  if (lowest >= 0.0) q.lower = quantile_of_sorted(sorted_, lowest) - half;
+  if (highest <= 1.0) q.upper = quantile_of_sorted(sorted_, highest) + half;
+  return q;
+}
+
+int Sample::modes() const {
+  if (sorted_.empty()) return 0;
+  const auto n = static_cast<double>(sorted_.size());
+  const double quartiles = quantile_of_sorted(sorted_, 0.75) - quantile_of_sorted(sorted_, 0.25);
+  const double spread = quartiles > 0.0 ? std::min(standard_deviation_, quartiles / 1.34) : standard_deviation_;
+  if (!(spread > 1e-12 * std::fabs(mean_)) || sorted_.size() < 50) return 1;
+  // Silverman, Density Estimation (1986), 3.31, and half of it: humps of a mixture are narrower than the whole
+  const double width = 0.45 * spread * std::pow(n, -0.2);
+  const double low = quantile_of_sorted(sorted_, 0.001) - 3.0 * width, high = quantile_of_sorted(sorted_, 0.999) + 3.0 * width;
+  const int bins = std::clamp(static_cast<int>(4.0 * (high - low) / width), 64, 4000);
+  const std::vector<double> f = density(sorted_, low, high, width, bins);
+  // standard error of a kernel estimate: sqrt(f R(K) / (n h)), R = 1 / (2 sqrt(pi))
+  const double noise = 1.0 / (2.0 * std::sqrt(std::numbers::pi) * n * width);
+  int humps = 0;
+  double peak = 0.0, valley = 0.0;
+  bool rising = true;  // between a valley and the next peak
+  const auto deep = [&](double top, double bottom) {
+    return top - bottom > 3.5 * std::sqrt((top + bottom) * noise) && top - bottom > 0.1 * top;
+  };
+  for (const double x : f) {
+    if (rising) {
+      peak = std::max(peak, x);
+      if (deep(peak, x)) {
+        ++humps;
+        rising = false;
+        valley = x;
+      }
+    } else {
+      valley = std::min(valley, x);
+      if (deep(x, valley)) {
+        rising = true;
+        peak = x;
+      }
+    }
+  }
+  return std::max(1, humps);
+}
+
+}  // namespace headband::montecarlo

@@ -1,0 +1,59 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// Quantiles of sampled answers with their confidence, moments, and humps of the density.
+
+#include "core/answers/study.hpp"
+#include "montecarlo/bands/counts.hpp"
+
+#include <span>
+#include <vector>
+
+namespace headband::montecarlo {
+
+/// How the draws of an answer hang together.
+struct SampleShape {
+  int replicates = 1;         ///< > 1: draw i belongs to replicate i mod replicates, replicates are independent
+  double confidence = 0.95;
+};
+
+/// One answer's finished draws, ready for questions.
+class Sample {
+ public:
+  /// @param values one per draw, NaN or a status other than 0 = failed
+  Sample(std::span<const double> values, std::span<const std::int8_t> status, SampleShape shape);
+
+  [[nodiscard]] long long draws() const { return draws_; }
+  [[nodiscard]] long long failed() const { return draws_ - finished(); }
+  [[nodiscard]] long long finished() const { return static_cast<long long>(sorted_.size()); }
+  [[nodiscard]] double mean() const { return mean_; }
+  [[nodiscard]] double standard_deviation() const { return standard_deviation_; }
+
+  /// Quantile of the finished draws (straight line between order statistics) with its confidence interval.
+  ///
+  /// Independent draws: the order statistics of `quantile_ranks`. Replicated designs: the spread of the replicates'
+  /// own quantiles, Student's t, and half a draw. Failed draws may lie anywhere: they stand below all others for the lower end and above
+  /// all others for the upper end. An end that no draw can hold is missing.
+  [[nodiscard]] answers::QuantileAnswer quantile(double probability) const;
+
+  /// Humps of the density: 1 or more (0 where nothing finished). A hump counts when the valley beside it is deeper than
+  /// the noise of the sample (3.5 standard errors of a Gaussian kernel estimate) and than a tenth of its height.
+  [[nodiscard]] int modes() const;
+
+  [[nodiscard]] const std::vector<double>& sorted() const { return sorted_; }
+
+ private:
+  SampleShape shape_;
+  long long draws_ = 0;
+  std::vector<double> sorted_;
+  std::vector<std::vector<double>> replicate_;  ///< sorted finished draws of each replicate
+  double mean_ = answers::missing, standard_deviation_ = answers::missing;
+};
+
+/// Quantile of sorted numbers: straight line between order statistics, (n - 1) p + 1 (Hyndman & Fan 1996, type 7).
+[[nodiscard]] double quantile_of_sorted(std::span<const double> sorted, double probability);
+
+/// The probabilities every answer is asked at: 0.05, 0.5, 0.95 and the ends of `coverage`, rising, each once.
+[[nodiscard]] std::vector<double> asked_probabilities(double coverage);
+
+}  // namespace headband::montecarlo

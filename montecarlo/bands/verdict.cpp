@@ -1,0 +1,68 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/bands/verdict.hpp"
+
+#include "montecarlo/bands/counts.hpp"
+
+#include <algorithm>
+#include <cmath>
+
+namespace headband::montecarlo {
+
+bool kept(const Bound& bound, double value) { return bound.not_over ? value <= bound.bound : value >= bound.bound; }
+
+double moved_towards(const Bound& bound, double value, double by) { return bound.not_over ? value + by : value - by; }
+
+double moved_away(const Bound& bound, double value, double by) { return moved_towards(bound, value, -by); }
+
+double margin(const Bound& bound, double value) { return bound.not_over ? bound.bound - value : value - bound.bound; }
+
+Verdict verdict_of_run(const Bound& bound, double value, double grid_bound) {
+  if (!std::isfinite(value) || !std::isfinite(grid_bound)) return Verdict::cannot_tell;
+  if (kept(bound, moved_towards(bound, value, grid_bound))) return Verdict::ok;
+  return kept(bound, moved_away(bound, value, grid_bound)) ? Verdict::cannot_tell : Verdict::not_ok;
+}
+
+Verdict verdict_of_probability(double lower, double upper, double at_most) {
+  if (upper <= at_most) return Verdict::ok;
+  return lower > at_most ? Verdict::not_ok : Verdict::cannot_tell;
+}
+
+Verdict worst(std::span<const Verdict> verdicts) {
+  const auto any = [&](Verdict v) { return std::ranges::find(verdicts, v) != verdicts.end(); };
+  if (any(Verdict::not_ok)) return Verdict::not_ok;
+  if (any(Verdict::cannot_tell)) return Verdict::cannot_tell;
+  return any(Verdict::ok) ? Verdict::ok : Verdict::none;
+}
+
+Verdict over_outer_points(std::span<const Verdict> verdicts) {
+  if (verdicts.empty()) return Verdict::none;
+  for (const Verdict v : {Verdict::ok, Verdict::not_ok}) {
+    if (std::ranges::all_of(verdicts, [v](Verdict each) { return each == v; })) return v;
+  }
+  return Verdict::cannot_tell;
+}
+
+Judged judge(const Bound& bound, std::span<const double> values, std::span<const std::int8_t> status, double grid_bound,
+             double at_most, double confidence) {
+  Judged j;
+  j.draws = static_cast<long long>(values.size());
+  const bool bound_known = std::isfinite(grid_bound);
+  for (std::size_t i = 0; i < values.size(); ++i) {
+    const double value = values[i];
+    if (status[i] != 0 || std::isnan(value)) {
+      ++j.failed;
+      continue;
+    }
+    j.broken += kept(bound, value) ? 0 : 1;
+    j.broken_towards += bound_known && kept(bound, moved_towards(bound, value, grid_bound)) ? 0 : 1;
+    j.broken_away += !bound_known || kept(bound, moved_away(bound, value, grid_bound)) ? 0 : 1;
+  }
+  if (j.draws == 0) return j;
+  if (j.draws > j.failed) j.probability = static_cast<double>(j.broken) / static_cast<double>(j.draws - j.failed);
+  j.lower = probability_at_least(j.broken_away, j.draws, confidence);
+  j.upper = probability_at_most(j.broken_towards + j.failed, j.draws, confidence);
+  j.verdict = verdict_of_probability(j.lower, j.upper, at_most);
+  return j;
+}
+
+}  // namespace headband::montecarlo
