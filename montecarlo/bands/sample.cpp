@@ -39,13 +39,21 @@ std::vector<double> density(const std::vector<double>& sorted, double low, doubl
 
 }  // namespace
 
-double quantile_of_sorted(std::span<const double> sorted, double probability) {
-  if (sorted.empty()) return answers::missing;
-  const double place = std::clamp(probability, 0.0, 1.0) * static_cast<double>(sorted.size() - 1);
+namespace {
+
+/// Straight line between the sorted numbers at a place counted from 0.
+double at_place(std::span<const double> sorted, double place) {
   const auto below = std::min(static_cast<std::size_t>(place), sorted.size() - 1);
   const std::size_t above = std::min(below + 1, sorted.size() - 1);
   const double share = place - static_cast<double>(below);
   return sorted[below] + share * (sorted[above] - sorted[below]);
+}
+
+}  // namespace
+
+double quantile_of_sorted(std::span<const double> sorted, double probability) {
+  if (sorted.empty()) return answers::missing;
+  return at_place(sorted, std::clamp(probability, 0.0, 1.0) * static_cast<double>(sorted.size() - 1));
 }
 
 std::vector<double> asked_probabilities(double coverage) {
@@ -104,10 +112,10 @@ answers::QuantileAnswer Sample::quantile(double probability) const {
   const double half = boost::math::quantile(student, 0.5 * (1.0 + shape_.confidence)) *
                       std::sqrt(squares / (replicates - 1.0) / replicates);
   const auto all = static_cast<double>(draws_), good = static_cast<double>(finished());
-  // half a draw each way: no definition of a sample quantile is nearer to the truth than that in a stratified design
-  const double lowest = (probability * all - (all - good) - 0.5) / good, highest = (probability * all + 0.5) / good;
-  if (lowest >= 0.0) q.lower = quantile_of_sorted(sorted_, lowest) - half;
-  if (highest <= 1.0) q.upper = quantile_of_sorted(sorted_, highest) + half;
+  // a stratified sample puts the quantile at place n p - 1/2 (from 0); half a draw each way is its own coarseness
+  const double lowest = probability * all - (all - good) - 1.0, highest = probability * all;
+  if (lowest >= 0.0) q.lower = std::min(q.value, at_place(sorted_, lowest)) - half;
+  if (highest <= good - 1.0) q.upper = std::max(q.value, at_place(sorted_, highest)) + half;
   return q;
 }
 
