@@ -29,8 +29,9 @@ class Gathering {
  public:
   void put(const std::string& name, double x, double y) {
     if (!std::isfinite(x) || !std::isfinite(y)) return;
-    points_[name][x] = y;
-    at_.insert(x);
+    const auto near = at_.lower_bound(x - same_place);
+    const double place = near != at_.end() && *near <= x + same_place ? *near : *at_.insert(x).first;
+    points_[name][place] = y;
   }
   [[nodiscard]] std::vector<double> abscissa() const { return {at_.begin(), at_.end()}; }
   [[nodiscard]] bool has(const std::string& name) const { return points_.contains(name); }
@@ -45,14 +46,14 @@ class Gathering {
   }
 
  private:
+  /// Chainages nearer than this are one place: a share of a length times the length is off by a rounding [m].
+  static constexpr double same_place = 1e-6;
   std::map<std::string, std::map<double, double>> points_;
   std::set<double> at_;
 };
 
 /// Height of a gauge pressure in metres of the liquid.
 double height(const Study& study, double pressure) { return pressure / (study.density * study.gravity); }
-
-std::string percent(double share) { return figures(100.0 * share, 3) + " %"; }
 
 void put_stations(const Study& study, std::size_t pipe, Gathering& points) {
   if (!study.transient) return;
@@ -207,7 +208,7 @@ std::vector<Plot> dealt(const Plot& pattern, std::vector<Curve> curves) {
 void add_limit_levels(const Study& study, Plot& plot) {
   for (const auto& limit : study.limits) {
     if (limit.kind != "highest_pressure" && limit.kind != "lowest_pressure") continue;
-    const auto at_probe = [&](const Curve& curve) { return !limit.where.empty() && curve.name == limit.where; };
+    const auto at_probe = [&](const Curve& curve) { return limit.where.empty() || curve.name == limit.where; };
     if (std::any_of(plot.curves.begin(), plot.curves.end(), at_probe))
       plot.levels.push_back({limit.name, limit.limit, false, Ink::black, Dash::long_dashed});
   }

@@ -73,7 +73,7 @@ std::string both_with_bound(double si, double bound, Shown shown, Shown bound_sh
 std::string html(const Table& table) {
   if (table.rows.empty()) return {};
   std::string out = fmt::format(
-      "<div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"{0}\">\n<table>\n<caption>{0}</caption>\n<thead><tr>",
+      "<div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"Table: {0}\">\n<table>\n<caption>{0}</caption>\n<thead><tr>",
       escaped(table.caption));
   const auto shape = [&](std::size_t column) {
     return column < table.columns.size() && table.columns[column].number ? " class=\"number\"" : "";

@@ -146,6 +146,16 @@ int places_for(double spread) {
   return std::clamp(1 - std::stoi(scientific.substr(scientific.find('e') + 1)), 0, 9);
 }
 
+std::string percent(double share) {
+  if (std::isnan(share)) return "–";
+  std::string text = figures(100.0 * share, 3);
+  if (text.find('.') != std::string::npos && text.find("×") == std::string::npos) {
+    text.erase(text.find_last_not_of('0') + 1);
+    if (text.back() == '.') text.pop_back();
+  }
+  return text + "\u00a0%";
+}
+
 std::string with_unit(double si, Shown shown, Family family, int significant) {
   const Measure in = measure(shown, family, si);
   std::string text = figures(in(si), significant);

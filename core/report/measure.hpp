@@ -67,6 +67,9 @@ struct KeyWords {
 /// Decimals at which two figures of `spread` show.
 [[nodiscard]] int places_for(double spread);
 
+/// A share in percent without idle zeros: "95 %", "2.5 %", "0.26 %".
+[[nodiscard]] std::string percent(double share);
+
 /// Number and unit of an SI value: "11.95 bar".
 [[nodiscard]] std::string with_unit(double si, Shown shown, Family family, int significant = 4);
 

@@ -58,9 +58,9 @@ std::string page(const answers::Study& study, const std::string& units) {
   out += fmt::format("<style>{}</style>\n<style>{}</style>\n</head>\n<body>\n", plot_style.text, page_style.text);
   out += "<a class=\"skip\" href=\"#answers\">To the answers</a>\n";
   out += head_of_page(study);
-  out += "<div class=\"tools\">\n<nav aria-label=\"On this page\"><ul>\n";
+  out += "<section class=\"tools\" aria-label=\"Tools of this page\">\n<nav aria-label=\"On this page\"><ul>\n";
   for (const Section& section : sections) out += fmt::format("<li><a href=\"#{}\">{}</a></li>\n", section.id, section.title);
-  out += "</ul></nav>\n" + unit_switch(family) + "</div>\n<main id=\"answers\">\n";
+  out += "</ul></nav>\n" + unit_switch(family) + "</section>\n<main id=\"answers\">\n";
   for (const Section& section : sections)
     out += fmt::format("<section class=\"part\" id=\"{0}\" aria-labelledby=\"head-{0}\">\n<h2 id=\"head-{0}\">{1}</h2>\n<div class=\"body\">\n{2}</div>\n</section>\n",
                        section.id, section.title, section.html);

@@ -112,8 +112,6 @@ std::string place_extremes(const Study& study) {
   return fmt::format("<details><summary>Highest and lowest at each of {} places</summary>\n{}</details>\n", table.rows.size(), body);
 }
 
-std::string percent(double share) { return std::isnan(share) ? "–" : figures(100.0 * share, share < 0.1 ? 2 : 3) + "\u00a0%"; }
-
 std::string probability_cell(const answers::LimitAnswer& limit) {
   const auto range = [](const std::array<double, 2>& r) { return percent(r[0]) + " … " + percent(r[1]); };
   if (limit.probability_range) {
@@ -126,6 +124,31 @@ std::string probability_cell(const answers::LimitAnswer& limit) {
   if (std::isnan(limit.probability)) return "–";
   return fmt::format("{}<br><small>at least {}, at most {}</small>", percent(limit.probability), percent(limit.probability_lower),
                      percent(limit.probability_upper));
+}
+
+/// The margin with the decimals of the value it belongs to.
+std::string margin_cell(const answers::LimitAnswer& limit, Shown shown, Shown difference) {
+  const auto one = [&](Family family) {
+    const double scale = measure(difference, family, limit.value).scale;
+    const double value = measure(shown, family, limit.value)(limit.value);
+    const std::string like = figures(std::isfinite(value) ? value : 1.0, 4);
+    const std::size_t point = like.find('.');
+    const int places = point == std::string::npos || like.find("×") != std::string::npos ? 0 : static_cast<int>(like.size() - point - 1);
+    if (std::isnan(limit.margin)) return std::string("–");
+    return decimals(limit.margin * scale, places) + "\u00a0" + measure(difference, family, limit.value).unit;
+  };
+  return both(one(Family::si), one(Family::us));
+}
+
+/// Two ends of a band with the unit once.
+std::string band_cell(double low, double high, Shown shown) {
+  const auto one = [&](Family family) {
+    const Measure in = measure(shown, family, std::max(std::abs(low), std::abs(high)));
+    const std::string ends = figures(in(low)) + " … " + figures(in(high));
+    return in.unit.empty() ? ends : ends + "\u00a0" + in.unit;
+  };
+  if (std::isnan(low) || std::isnan(high)) return "–";
+  return both(one(Family::si), one(Family::us));
 }
 
 const answers::BandAnswer* answer_of(const Study& study, const answers::LimitAnswer& limit) {
@@ -159,7 +182,7 @@ std::string limits(const Study& study) {
     chances = chances || limit.probability_range || !std::isnan(limit.probability);
     table.rows.push_back({escaped(limit.name) + "<br><small>" + about + "</small>",
                           (fails_over(limit) ? "not over " : "not under ") + both(limit.limit, shown), both(limit.value, shown),
-                          both(limit.margin, difference), chance,
+                          margin_cell(limit, shown, difference), chance,
                           strip(limit, answer_of(study, limit), study.bands ? study.bands->coverage : 0.95, bound, std::to_string(i)),
                           verdict});
   }
@@ -236,8 +259,8 @@ std::string bands(const Study& study) {
       if (std::abs(q.probability - 0.5) < 1e-9) median = q.value;
     }
     std::string middle = both(median, shown);
-    if (answer.range) middle += "<br><small>" + both((*answer.range)[0], shown) + " … " + both((*answer.range)[1], shown) + "</small>";
-    table.rows.push_back({escaped(answer.name), both(answer.central, shown), middle, both(low, shown) + " … " + both(high, shown),
+    if (answer.range) middle += "<br><small>" + band_cell((*answer.range)[0], (*answer.range)[1], shown) + "</small>";
+    table.rows.push_back({escaped(answer.name), both(answer.central, shown), middle, band_cell(low, high, shown),
                           both(answer.standard_deviation, difference, 3), fmt::format("{} of {}", answer.failed, answer.draws)});
   }
   std::string out = html(table);

@@ -19,6 +19,8 @@ constexpr double left = 66.0;
 constexpr double bottom_margin = 46.0;
 constexpr double line_height = 15.0;
 constexpr std::size_t longest_label = 30;
+/// Edges of bands are thinner than this and carry no label: the line they surround does.
+constexpr double labelled_width = 1.0;
 
 struct InkNames {
   const char* name;
@@ -108,7 +110,7 @@ void part(std::vector<SideLabel>& labels, double top, double bottom) {
 std::vector<SideLabel> side_labels(const Plot& plot, const Frame& frame) {
   std::vector<SideLabel> labels;
   for (const Curve& curve : plot.curves) {
-    if (curve.shape == Shape::step || curve.name.empty()) continue;
+    if (curve.shape == Shape::step || curve.name.empty() || curve.width < labelled_width) continue;
     for (std::size_t i = std::min(curve.y.size(), plot.abscissa.size()); i-- > 0;) {
       if (!std::isfinite(curve.y[i]) || plot.abscissa[i] > plot.x.high) continue;
       labels.push_back({shortened(curve.name), curve.ink, frame.y(curve.y[i]), 0.0});
@@ -125,7 +127,7 @@ std::vector<SideLabel> side_labels(const Plot& plot, const Frame& frame) {
 double right_margin(const Plot& plot) {
   double widest = 0.0;
   for (const Curve& curve : plot.curves)
-    if (curve.shape != Shape::step) widest = std::max(widest, text_width(shortened(curve.name)));
+    if (curve.shape != Shape::step && curve.width >= labelled_width) widest = std::max(widest, text_width(shortened(curve.name)));
   for (const Level& level : plot.levels)
     if (!level.upright) widest = std::max(widest, text_width(shortened(level.name)));
   return std::clamp(widest + 14.0, 22.0, 200.0);

@@ -62,9 +62,26 @@
     const measuring = document.createElement('canvas').getContext('2d');
     const font = (size) => size + 'px ' + getComputedStyle(document.body).fontFamily;
     measuring.font = font(12);
-    const named = stepped ? [] : data.curves.map((c) => c.name);
+    const labelled = (c) => !stepped && c.width >= 1;  // edges of bands carry no name
+    const named = data.curves.filter(labelled).map((c) => c.name);
     const widest = Math.max(0, ...named.concat(level.map((l) => l.name)).map((n) => measuring.measureText(n).width));
     const right = Math.min(220, widest + 16);
+
+    // Names of upright lines, in as many rows above the plot as they need.
+    const rowsOf = (position, low, high) => {
+      const taken = [], rows = [];
+      for (const l of upright.slice().sort((a, b) => a.value - b.value)) {
+        const at = position(toX(l.value));
+        if (at < low - 1 || at > high + 1) continue;
+        const half = measuring.measureText(l.name).width / 2 + 5;
+        let row = taken.findIndex((t) => t <= at - half);
+        if (row < 0) row = taken.push(0) - 1;
+        taken[row] = at + half;
+        rows.push({ l, at, row });
+      }
+      rows.count = taken.length;
+      return rows;
+    };
 
     const drawLevels = (u, ctx) => {
       for (const l of data.levels) {
@@ -141,7 +158,7 @@
       };
       const lastX = u.scales.x.max;
       data.curves.forEach((c, i) => {
-        if (stepped || !shown[i]) return;
+        if (!labelled(c) || !shown[i]) return;
         for (let k = x.length - 1; k >= 0; --k)
           if (ys[i][k] != null && x[k] <= lastX) { keep(c.name, c.ink, u.valToPos(ys[i][k], 'y', true)); break; }
       });
@@ -152,22 +169,11 @@
         ctx.fillStyle = colour(l.ink);
         ctx.fillText(l.name, end + 7 * pixels, l.y + 4 * pixels);
       }
-      // Names of upright lines, in as many rows as they need.
       ctx.textAlign = 'center';
-      const taken = [];
-      const rows = [];
-      for (const l of upright.slice().sort((a, b) => a.value - b.value)) {
-        const at = u.valToPos(toX(l.value), 'x', true);
-        if (at < u.bbox.left - 1 || at > end + 1) continue;
-        const half = ctx.measureText(l.name).width / 2 + 5 * pixels;
-        let row = taken.findIndex((t) => t <= at - half);
-        if (row < 0) row = taken.push(0) - 1;
-        taken[row] = at + half;
-        rows.push({ l, at, row });
-      }
-      for (const { l, at, row } of rows) {
+      const stack = rowsOf((v) => u.valToPos(v, 'x', true) / pixels, u.bbox.left / pixels, end / pixels);
+      for (const { l, at, row } of stack) {
         ctx.fillStyle = colour(l.ink);
-        ctx.fillText(l.name, at, u.bbox.top - (6 + 15 * (taken.length - 1 - row)) * pixels);
+        ctx.fillText(l.name, at * pixels, u.bbox.top - (6 + 15 * (stack.count - 1 - row)) * pixels);
       }
     };
 
@@ -200,21 +206,29 @@
       fill: c.shape === 'ground' ? () => colour('soil') : c.shape === 'step' ? () => colour(c.ink) + '30' : undefined,
       fillTo: c.shape === 'ground' ? (u) => u.scales.y.min : 0,
     });
+    // All marks of an axis with the same number of decimals.
+    const marks = (self, splits) => {
+      const step = splits.length > 1 ? Math.abs(splits[1] - splits[0]) : 1;
+      const places = Math.max(0, Math.min(9, Math.ceil(-Math.log10(step) - 1e-9) + (Math.abs(step / 10 ** Math.floor(Math.log10(step)) - 2.5) < 1e-6 ? 1 : 0)));
+      return splits.map((v) => v.toFixed(places).replace('-', '−'));
+    };
     const axis = (name, label) => ({
       scale: name,
       label,
       labelSize: 22,
       size: name === 'x' ? 34 : 58,
+      values: marks,
       font: font(12),
       labelFont: font(12),
-      stroke: () => colour(name === 'x' ? 'muted' : 'muted'),
+      stroke: () => colour('muted'),
       grid: { show: name === 'y', stroke: () => colour('rule'), width: 1 },
       ticks: { stroke: () => colour('muted'), width: 1, size: name === 'x' ? 5 : 0 },
       border: { show: name === 'x', stroke: () => colour('muted'), width: 1 },
     });
     const isWhole = (u) => Math.abs(u.scales.x.min - whole[0]) + Math.abs(u.scales.x.max - whole[1]) < 1e-9 * reachX;
-    const topRows = upright.length ? 3 : 0;
-    const size = () => ({ width: Math.max(280, live.clientWidth), height: (stepped ? 300 : 360) + 15 * topRows });
+    const wide = Math.max(280, live.clientWidth), inner = wide - 70 - right;
+    const topRows = rowsOf((v) => 70 + (v - whole[0]) / (whole[1] - whole[0]) * inner, 0, wide).count;
+    const size = () => ({ width: Math.max(280, live.clientWidth), height: (stepped ? 270 : 350) + 15 * topRows });
     let u = null;
     const options = {
       ...size(),
