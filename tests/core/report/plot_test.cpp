@@ -193,7 +193,7 @@ TEST(DataBlock, long_curves_are_thinned_to_exact_rows_with_all_extremes) {
   plot.id = "long";
   plot.x = {"time", Shown::time};
   plot.y = {"head", Shown::head};
-  Curve a{"a"}, b{"b"};
+  Curve a, b;
   for (int i = 0; i < 200'000; ++i) {
     plot.abscissa.push_back(1e-3 * i);
     a.y.push_back(std::sin(1e-2 * i) * std::exp(-1e-5 * i));
