@@ -111,7 +111,6 @@ void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOut
     study.state = answers::RunState::incomplete;
     add_once(study.warnings, "every draw failed");
   }
-  if (outcome.stopped && study.state == answers::RunState::complete) study.state = answers::RunState::partial;
 }
 
 void conclude(answers::Study& study, const network::Case& c, const network::Plan& plan) {

@@ -89,7 +89,7 @@ void check_can_create(const std::string& path, const Replace& replace) {
   struct stat status {};
   if (::stat(path.c_str(), &status) == 0) {
     if (S_ISDIR(status.st_mode)) cannot_create(path, "it is a folder");
-    if (!S_ISREG(status.st_mode)) cannot_create(path, "it is not an ordinary file");
+    if (!S_ISREG(status.st_mode) && !replace.force) cannot_create(path, "it is not an ordinary file");
     if (!replace.force) {
       if (!replace.own_name) cannot_create(path, "it exists; give -f to replace it, or another name");
       if (!carries(path, replace.mark)) {

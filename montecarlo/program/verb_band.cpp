@@ -2,16 +2,19 @@
 #include "core/base/error.hpp"
 #include "core/resultfile/result_file.hpp"
 #include "montecarlo/program/assemble.hpp"
+#include "montecarlo/program/failure.hpp"
 #include "montecarlo/program/guard.hpp"
 #include "montecarlo/program/judge.hpp"
 #include "montecarlo/program/output.hpp"
 #include "montecarlo/program/progress.hpp"
+#include "montecarlo/program/provenance.hpp"
 #include "montecarlo/program/signals.hpp"
 #include "montecarlo/program/study_case.hpp"
 #include "montecarlo/program/verbs.hpp"
 
 #include <fmt/format.h>
 
+#include <optional>
 #include <unistd.h>
 #include <utility>
 
@@ -38,32 +41,57 @@ montecarlo::CentralRun steady_central(const Central& central) {
   return numbers;
 }
 
-/// Looks at an interrupted band's file: read in a child first, for it may be damaged; then it must be of this case.
+/// The draws of an interrupted band: read in a child first, for the file may be damaged; then it must be of this case.
+/// @return the code to end with, or nothing where `draws` can be taken up
 /// @throws base::InputError, base::IoError
-ExitCode look_at_partial(const std::string& partial, const answers::Study& study) {
+std::optional<ExitCode> take_up(const Options& options, const std::string& partial, const answers::Study& study,
+                                std::optional<answers::Bands>& draws) {
   if (::access(partial.c_str(), F_OK) != 0) {
     throw base::IoError(base::IoFailure::missing, fmt::format("nothing to resume: no {}", partial));
   }
   const ExitCode readable = guarded(partial, [&] {
-    try {
+    return told(options, [&] {
       static_cast<void>(resultfile::read(partial));
       return ExitCode::done;
-    } catch (const std::exception& error) {
-      say(fmt::format("headband: {}\n", error.what()));
-      return ExitCode::wrong_case;
-    }
+    });
   });
   if (readable != ExitCode::done) return readable;
-  const answers::Study before = resultfile::read(partial);
-  if (before.provenance.case_sha256 != study.provenance.case_sha256 ||
-      before.provenance.side_files != study.provenance.side_files || before.provenance.seed != study.provenance.seed ||
-      before.provenance.version != study.provenance.version) {
-    base::Problem problem;
-    problem.what = fmt::format("{} was begun with another case, seed or version", partial);
-    problem.hint = "start anew without --resume, or give back the case it was begun with";
-    throw base::InputError({problem});
+  answers::Study before = resultfile::read(partial);
+  const auto& was = before.provenance;
+  const auto& is = study.provenance;
+  const bool same = was.case_sha256 == is.case_sha256 && was.side_files == is.side_files && was.seed == is.seed &&
+                    was.version == is.version;
+  if (!same || !before.bands || before.bands->surged != options.surge) {
+    throw base::InputError({{{}, "", fmt::format("{} was begun with another case, seed, version or --surge", partial), "", "",
+                             "start anew without --resume, or give back the case it was begun with"}});
   }
-  return ExitCode::done;
+  draws = std::move(before.bands);
+  return std::nullopt;
+}
+
+/// Central run and its steady numbers; marched as well with --surge. The study's state tells whether it finished.
+montecarlo::CentralRun run_central(const network::Case& c, const Central& central, bool surge, answers::Study& study) {
+  add_steady(study, c, central);
+  if (!central.solved) return {};
+  if (!surge) return steady_central(central);
+  transient::SurgeRun run = transient::run_surge(c, central.plan, central.values, central.state);
+  montecarlo::CentralRun numbers{run.answer_value, run.limit_value, run.answer_grid_bound, run.limit_grid_bound, run.cavity};
+  add_run(study, std::move(run));
+  return numbers;
+}
+
+/// Draws, with progress on the terminal, a checkpoint each minute and a gentle stop.
+montecarlo::BandOutcome sample(const network::Case& c, const network::Plan& plan, const montecarlo::CentralRun& numbers,
+                               const Options& options, montecarlo::BandOptions band,
+                               const std::function<void(const answers::Bands&)>& keep) {
+  Progress progress(options);
+  band.progress = [&](long long done, long long all) { progress.show(done, all); };
+  band.checkpoint = keep;
+  band.stop = &stop_asked();
+  stop_gently(true);
+  montecarlo::BandOutcome outcome = montecarlo::run_band(c, plan, numbers, band);
+  stop_gently(false);
+  return outcome;
 }
 
 }  // namespace
@@ -73,45 +101,40 @@ ExitCode verb_band(const Options& options) {
     const Outputs outputs = prepare_outputs(options, "band");
     const std::string partial = partial_name(outputs.result);
     answers::Study study = begin_study(c, options, "band");
-    montecarlo::BandOptions band{.surge = options.surge, .threads = threads_for(options), .seed = options.seed,
-                                 .stop = &stop_asked(), .progress = {}, .resumed = {}, .checkpoint = {}};
+    montecarlo::BandOptions band;
+    band.surge = options.surge;
+    band.threads = threads_for(options);
+    band.seed = options.seed;
     if (options.resume) {
-      const ExitCode usable = look_at_partial(partial, study);
-      if (usable != ExitCode::done) return usable;
-      band.resumed = resultfile::read(partial).bands;
+      if (const auto code = take_up(options, partial, study, band.resumed)) return *code;
     }
-    const Central central = central_run(c);
-    add_steady(study, c, central);
     study.limits_shown = true;
-    montecarlo::CentralRun numbers;
-    if (central.solved) numbers = steady_central(central);
-    if (central.solved && options.surge) {
-      transient::SurgeRun run = transient::run_surge(c, central.plan, central.values, central.state);
-      numbers = {run.answer_value, run.limit_value, run.answer_grid_bound, run.limit_grid_bound, run.cavity};
-      add_run(study, std::move(run));
-    }
+    const Central central = central_run(c);
+    const montecarlo::CentralRun numbers = run_central(c, central, options.surge, study);
     if (study.state != answers::RunState::complete) {  // nothing to lean the bands on
       study.limits = judge_nothing(central.plan, "the central run did not finish");
       conclude(study, c, central.plan);
       return finish(options, outputs, study);
     }
-    Progress progress(options);
-    band.progress = [&](long long done, long long all) { progress.show(done, all); };
-    stop_gently(true);
-    montecarlo::BandOutcome outcome = montecarlo::run_band(c, central.plan, numbers, band);
-    stop_gently(false);
-    progress.clear();
-    const bool stopped = outcome.stopped;
-    add_band(study, c, std::move(outcome));
-    conclude(study, c, central.plan);
-    if (stopped) {
+    const auto keep = [&](const answers::Bands& bands) {
+      answers::Study so_far = study;
+      so_far.bands = bands;
+      so_far.state = answers::RunState::partial;
+      end_provenance(so_far.provenance);
       const HoldSignals hold;
-      resultfile::write(study, partial, {.replace = options.force || options.resume, .own_name = true});
-      say(fmt::format("stopped; {} draws kept in {}: go on with --resume\n", study.bands->draws, partial));
+      resultfile::write(so_far, partial, {.replace = options.force, .own_name = true});
+    };
+    montecarlo::BandOutcome outcome = sample(c, central.plan, numbers, options, std::move(band), keep);
+    if (outcome.stopped) {
+      keep(outcome.bands);
+      say(fmt::format("stopped; {} draws are kept in {}: go on with --resume\n", outcome.bands.draws, partial));
       return signal_noted() == SIGTERM ? ExitCode::terminated : ExitCode::interrupted;
     }
+    for (const auto& answer : outcome.left_out) remark(options, fmt::format("left out: {}\n", answer));
+    add_band(study, c, std::move(outcome));
+    conclude(study, c, central.plan);
     const ExitCode code = finish(options, outputs, study);
-    if (options.resume) ::unlink(partial.c_str());
+    ::unlink(partial.c_str());  // of this case's earlier, stopped run
     return code;
   });
 }
