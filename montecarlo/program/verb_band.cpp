@@ -116,6 +116,7 @@ ExitCode verb_band(const Options& options) {
       conclude(study, c, central.plan);
       return finish(options, outputs, study);
     }
+    bool kept = options.resume;
     const auto keep = [&](const answers::Bands& bands) {
       answers::Study so_far = study;
       so_far.bands = bands;
@@ -123,6 +124,7 @@ ExitCode verb_band(const Options& options) {
       end_provenance(so_far.provenance);
       const HoldSignals hold;
       resultfile::write(so_far, partial, {.replace = options.force, .own_name = true});
+      kept = true;
     };
     montecarlo::BandOutcome outcome = sample(c, central.plan, numbers, options, std::move(band), keep);
     if (outcome.stopped) {
@@ -134,7 +136,7 @@ ExitCode verb_band(const Options& options) {
     add_band(study, c, std::move(outcome));
     conclude(study, c, central.plan);
     const ExitCode code = finish(options, outputs, study);
-    ::unlink(partial.c_str());  // of this case's earlier, stopped run
+    if (kept) ::unlink(partial.c_str());
     return code;
   });
 }
