@@ -5,6 +5,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <string_view>
 
 namespace headband::show {
 
@@ -23,6 +24,27 @@ std::string words_of_kind(const std::string& kind) {
   std::string words = kind;
   std::replace(words.begin(), words.end(), '_', ' ');
   return words;
+}
+
+KeyWords words_of_key(const std::string& key) {
+  struct Ending {
+    std::string_view text;
+    Dimension dimension;
+  };
+  // Longest first: "_m3_per_s" ends in "_s" too.
+  static constexpr Ending endings[] = {{"_rad_per_s", Dimension::rotational_speed},
+                                       {"_m3_per_s", Dimension::flow},
+                                       {"_m_per_s", Dimension::velocity},
+                                       {"_m3", Dimension::volume},
+                                       {"_Pa", Dimension::pressure},
+                                       {"_m", Dimension::length},
+                                       {"_s", Dimension::time}};
+  for (const auto& ending : endings) {
+    if (key.size() > ending.text.size() && key.ends_with(ending.text)) {
+      return {words_of_kind(key.substr(0, key.size() - ending.text.size())), ending.dimension};
+    }
+  }
+  return {words_of_kind(key), Dimension::number};
 }
 
 std::string percent(double share) {

@@ -14,6 +14,13 @@ namespace headband::show {
 /// A kind in words: "highest pressure".
 [[nodiscard]] std::string words_of_kind(const std::string& kind);
 
+/// A key with its unit at the end ("max_gas_volume_m3") taken apart: "max gas volume" and what the number is.
+struct KeyWords {
+  std::string words;
+  base::Dimension dimension = base::Dimension::number;
+};
+[[nodiscard]] KeyWords words_of_key(const std::string& key);
+
 /// A share in percent, two or three figures: "26 %", "2.5 %"; "-" for a missing number.
 [[nodiscard]] std::string percent(double share);
 

@@ -24,7 +24,8 @@ struct TerminalOptions {
 /// The terminal summary: decision, extremes (never a maximum without the minimum), limits, bands, audit, cautions.
 [[nodiscard]] std::string summary(const answers::Study& study, const TerminalOptions& options);
 
-/// CSV tables by file name ("histories.csv", "envelope.csv", "bands.csv", …), RFC 4180, units in the header.
+/// CSV tables by file name ("histories.csv", "envelope.csv", "bands.csv", …): RFC 4180, SI units in the header, text
+/// that a spreadsheet would take for a formula starts with a quote sign.
 [[nodiscard]] std::map<std::string, std::string> csv(const answers::Study& study);
 
 }  // namespace headband::show
