@@ -120,7 +120,7 @@ class Grammar {
     if (error == std::errc::result_out_of_range)
       fail_at(begin, "the number is too large or too small to hold", "a number between 1e-300 and 1e300", "check the exponent");
     if (error != std::errc() || !std::isfinite(value))
-      fail_at(begin, fmt::format("a finite number is expected, not '{}'", text_.substr(begin)), right_form(),
+      fail_at(begin, fmt::format("a finite number is expected, not '{}'", text_.substr(begin)), fmt::format("\"{}\"", right_form()),
               fmt::format("write a value such as \"{}\"", right_form()));
     at_ = static_cast<std::size_t>(stopped - text_.data());
     if (!done() && text_[at_] == ',' && at_ + 1 < text_.size() && is_digit(text_[at_ + 1]))
@@ -128,7 +128,7 @@ class Grammar {
            "write 0.046 or 3200");
     const std::size_t after = at_;
     skip_spaces();
-    if (after != at_ && !done() && is_digit(text_[at_]))
+    if (after != at_ && !done() && is_digit(text_[at_]) && !text_.substr(at_).starts_with("1/"))
       fail("two numbers stand side by side", "one number without spaces inside", "write 12000, not 12 000");
     return value;
   }

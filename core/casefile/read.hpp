@@ -33,6 +33,11 @@ struct Reading {
 /// @param verb "flow", "surge", "band", "band --surge"
 [[nodiscard]] base::Problems refused_by_verb(const network::Case& c, const std::string& verb);
 
+/// The case as a plain one: each uncertain value is the number it has at `scores` (one per unknown, empty = central run),
+/// each choice settled, SI units, shortest digits that give the same bits when read again. Bands are left out.
+/// @param note added to the note of the case ("draw 17 of …")
+[[nodiscard]] std::string write_case(const network::Case& c, const std::vector<double>& scores, const std::string& note);
+
 /// Starter case of `new KIND` (valve, trip, oil, ageing, ring); empty when the kind is unknown.
 [[nodiscard]] std::string starter(const std::string& kind);
 [[nodiscard]] std::vector<std::string> starter_kinds();

@@ -1,0 +1,105 @@
+// SPDX-License-Identifier: MIT
+#include "core/base/units.hpp"
+#include "core/casefile/choice_words.hpp"
+#include "core/casefile/quantity_text.hpp"
+#include "core/casefile/read.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+
+namespace headband::casefile {
+namespace {
+
+using namespace network;
+using answers::ValueEcho;
+
+struct Placed {
+  SourcePlace place;
+  ValueEcho echo;
+};
+
+class Echoes {
+ public:
+  void add(const Quantity& q) {
+    if (!q.given() && q.same_as.empty()) return;
+    ValueEcho e;
+    e.path = q.path;
+    e.name = q.name;
+    e.written = q.written;
+    e.value = q.value;
+    e.unit = std::string(base::si_name(q.dimension));
+    e.spread = words_of_spread(q, base::UnitFamily::si);
+    e.source = q.source;
+    e.grade = q.grade;
+    e.guess = q.guess;
+    e.shown_si = words(q, base::UnitFamily::si);
+    e.shown_us = words(q, base::UnitFamily::us);
+    list_.push_back({q.place, std::move(e)});
+  }
+
+  void add_choice(SourcePlace place, const std::string& path, const std::string& name, const std::string& written, bool guess) {
+    ValueEcho e;
+    e.path = path;
+    e.name = name;
+    e.written = e.shown_si = e.shown_us = written;
+    e.guess = guess;
+    list_.push_back({place, std::move(e)});
+  }
+
+  std::vector<ValueEcho> take() {
+    std::stable_sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) { return a.place < b.place; });
+    std::vector<ValueEcho> echoes;
+    echoes.reserve(list_.size());
+    for (Placed& p : list_) echoes.push_back(std::move(p.echo));
+    return echoes;
+  }
+
+ private:
+  static std::string words(const Quantity& q, base::UnitFamily family) {
+    std::string text = base::shown(q.value, q.dimension, family, q.gauge);
+    const std::string spread = words_of_spread(q, family);
+    if (!spread.empty()) text.append(", ").append(spread);
+    return text;
+  }
+  std::vector<Placed> list_;
+};
+
+template <class T, class Words>
+std::string weights(const Choice<T>& choice, const Words& words) {
+  if (choice.options.size() == 1) return words(choice.options.front().choice);
+  std::string text;
+  for (const auto& option : choice.options)
+    text += fmt::format("{}{} (weight {})", text.empty() ? "" : ", ", words(option.choice), option.weight);
+  return text;
+}
+
+}  // namespace
+
+std::vector<ValueEcho> echo(const Case& c) {
+  Echoes echoes;
+  for_each_quantity(c, [&](const Quantity& q) { echoes.add(q); });
+  for (const Pipe& p : c.pipes) {
+    echoes.add(p.wave_speed_change);
+    if (!p.restraint_factor.given() && !p.wave_speed.given() && p.wall.given())
+      echoes.add_choice(p.place, "pipe/" + p.name + "/joint", p.name + " joint", words_of(p.joint), !p.joint_given);
+  }
+  for (const Basin& b : c.basins)
+    for (const auto& [time, level] : b.level_table.rows) {
+      echoes.add(time);
+      echoes.add(level);
+    }
+  for (const Pump& p : c.pumps)
+    if (p.check_valve.guess) echoes.add_choice(p.place, "pump/" + p.name + "/check_valve", p.name + " check_valve", "ideal", true);
+  for (const Valve& v : c.valves) echoes.add_choice(v.place, "valve/" + v.name + "/law", v.name + " law", words_of(v.law), false);
+  for (const Event& e : c.events)
+    if (e.instant) echoes.add_choice(e.place, "event/" + (e.name.empty() ? e.subject : e.name) + "/over", (e.name.empty() ? e.subject : e.name) + " over", "instant", false);
+  echoes.add_choice(c.friction.law.place, "friction/law", "friction law", weights(c.friction.law, [](FrictionLaw law) { return words_of(law); }), false);
+  echoes.add_choice(c.friction.transition.place, "friction/transition", "friction transition", weights(c.friction.transition, [](const Transition& t) { return words_of(t); }), false);
+  echoes.add(c.surge.duration);
+  echoes.add(c.surge.time_step);
+  for (const Limit& l : c.limits) echoes.add(l.bound);
+  return echoes.take();
+}
+
+}  // namespace headband::casefile
