@@ -385,4 +385,8 @@ void for_each_quantity(const Case& c, const std::function<void(const Quantity&)>
 /// Everything wrong with the case as a pipeline (topology, sizes, missing numbers), by path.
 [[nodiscard]] base::Problems validate(const Case& c);
 
+/// What a verb needs beyond `validate` and the case does not give: numbers of the wave speed, duration, rotor …
+/// @param verb "check", "flow", "surge", "band", "band --surge"
+[[nodiscard]] base::Problems validate_for(const Case& c, const std::string& verb);
+
 }  // namespace headband::network

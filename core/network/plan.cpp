@@ -149,8 +149,7 @@ class PlanMaker {
     return {};
   }
 
-  /// Convention (e): the place's own entry, a profile that ends there, a basin's level; else the other side of a
-  /// device without pipe; else 0 m.
+  /// Convention (e): the place's own entry, a profile that ends there, a basin's level; else 0 m.
   void add_elevations() {
     const auto set = [&](std::size_t place, ElevationSource source, int index) {
       if (plan_.places[place].elevation != ElevationSource::nowhere) return;
@@ -167,26 +166,6 @@ class PlanMaker {
     }
     for (std::size_t i = 0; i < plan_.places.size(); ++i)
       if (plan_.places[i].basin >= 0) set(i, ElevationSource::level, plan_.places[i].basin);
-    for (auto& place : plan_.places) place.elevation_guessed = place.elevation == ElevationSource::nowhere;
-    spread_elevations_through_devices();
-  }
-
-  void spread_elevations_through_devices() {
-    for (bool changed = true; changed;) {
-      changed = false;
-      for (const auto& device : plan_.devices) {
-        if (!device.from.exists() || !device.to.exists()) continue;
-        for (const auto& [known, other] : {std::pair{device.from, device.to}, std::pair{device.to, device.from}}) {
-          PlacePlan& target = plan_.places[other.at()];
-          const PlacePlan& origin = plan_.places[known.at()];
-          if (target.elevation != ElevationSource::nowhere || origin.elevation == ElevationSource::nowhere) continue;
-          if (origin.elevation == ElevationSource::level || pipe_at(other).exists()) continue;
-          target.elevation = origin.elevation;
-          target.elevation_index = origin.elevation_index;
-          changed = true;
-        }
-      }
-    }
   }
 
   void add_events() {
@@ -296,15 +275,15 @@ LossKind loss_kind(const Case& c, const Pipe& pipe) {
   return LossKind::darcy;
 }
 
-std::vector<std::string> guesses_of(const Plan& plan) {
-  std::vector<std::string> guesses;
-  for (const auto& place : plan.places) {
-    if (!place.elevation_guessed) continue;
-    guesses.push_back(
-        "elevation of '" + place.name + "': stated nowhere, taken as " +
-        (place.elevation == ElevationSource::nowhere ? "0 m" : "that of the other side of the device there"));
-  }
-  return guesses;
+bool starts_shut(const Valve& valve) {
+  return valve.opening.given() && valve.opening.unknown < 0 && valve.opening.value <= 0.0;
+}
+
+bool starts_at_rest(const Case& c, const Pump& pump) {
+  for (const auto& event : c.events)
+    if (event.subject == pump.name && (event.kind == EventKind::start_pump || event.kind == EventKind::trip_pump))
+      return event.kind == EventKind::start_pump;
+  return false;
 }
 
 int Plan::place_named(const std::string& name) const { return index_of_name(places, name); }

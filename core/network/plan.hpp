@@ -37,7 +37,6 @@ struct PlacePlan {
   bool head_given = false;  ///< `[[place]] head`: part cut off from every basin
   ElevationSource elevation = ElevationSource::nowhere;
   int elevation_index = -1;
-  bool elevation_guessed = false;  ///< taken from the other side of a device, or 0 m
 };
 
 /// Which loss law a pipe follows.
@@ -119,7 +118,10 @@ struct Plan {
 /// The loss law a pipe follows: its own number before the one of `[friction]`; `law = "none"` before all.
 [[nodiscard]] LossKind loss_kind(const Case& c, const Pipe& pipe);
 
-/// Guesses `make_plan` had to make, in words: places whose elevation is stated nowhere.
-[[nodiscard]] std::vector<std::string> guesses_of(const Plan& plan);
+/// True for a valve that is shut at the start in every draw.
+[[nodiscard]] bool starts_shut(const Valve& valve);
+
+/// True for a pump that stands still at the start: its first event is a start.
+[[nodiscard]] bool starts_at_rest(const Case& c, const Pump& pump);
 
 }  // namespace headband::network

@@ -102,18 +102,6 @@ void find_order(FlowGraph& graph) {
 
 }  // namespace
 
-bool starts_shut(const network::Valve& valve) {
-  return valve.opening.given() && valve.opening.unknown < 0 && valve.opening.value <= 0.0;
-}
-
-bool starts_at_rest(const network::Case& c, const network::Pump& pump) {
-  for (const auto& event : c.events)
-    if (event.subject == pump.name &&
-        (event.kind == network::EventKind::start_pump || event.kind == network::EventKind::trip_pump))
-      return event.kind == network::EventKind::start_pump;
-  return false;
-}
-
 FlowGraph make_flow_graph(const network::Case& c, const network::Plan& plan) {
   FlowGraph graph;
   graph.places = static_cast<int>(plan.places.size());

@@ -49,12 +49,6 @@ struct FlowGraph {
   [[nodiscard]] int nodes() const { return static_cast<int>(held.size()); }
 };
 
-/// True for a valve that is shut at the start in every draw.
-[[nodiscard]] bool starts_shut(const network::Valve& valve);
-
-/// True for a pump that stands still at the start: its first event is a start.
-[[nodiscard]] bool starts_at_rest(const network::Case& c, const network::Pump& pump);
-
 [[nodiscard]] FlowGraph make_flow_graph(const network::Case& c, const network::Plan& plan);
 
 }  // namespace headband::steady

@@ -99,7 +99,7 @@ struct SteadySolver::Parts {
     for (const auto& known : graph.known)
       state.device_flow[static_cast<std::size_t>(known.device)] = known_flow(*topology, values, known);
     for (std::size_t i = 0; i < model->pumps.size(); ++i)
-      state.pump_speed[i] = starts_at_rest(*model, model->pumps[i]) ? 0.0 : 1.0;
+      state.pump_speed[i] = network::starts_at_rest(*model, model->pumps[i]) ? 0.0 : 1.0;
   }
 
   /// Coefficients of valves; those sized by `flow` get what passes it at the starting opening (convention n).
