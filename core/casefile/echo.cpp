@@ -7,6 +7,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <tuple>
 
 namespace headband::casefile {
 namespace {
@@ -48,7 +49,7 @@ class Echoes {
   }
 
   std::vector<ValueEcho> take() {
-    std::stable_sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) { return a.place < b.place; });
+    std::sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) { return std::tie(a.place, a.echo.path) < std::tie(b.place, b.echo.path); });
     std::vector<ValueEcho> echoes;
     echoes.reserve(list_.size());
     for (Placed& p : list_) echoes.push_back(std::move(p.echo));

@@ -53,7 +53,7 @@ class Grammar {
     quantity_.dimension = rule_.dimension;
     quantity_.written = std::string(text_);
     skip_spaces();
-    if (done()) fail("the value is empty", right_form(), fmt::format("write a value such as \"{}\"", right_form()));
+    if (done()) fail("the value is empty", quoted_form(), fmt::format("write a value such as \"{}\"", right_form()));
     if (rule_.form == Form::scatter && text_.substr(at_) == "none") {
       quantity_.value = 1.0;
       return std::move(quantity_);
@@ -103,6 +103,7 @@ class Grammar {
   [[nodiscard]] std::string right_form() const {
     return std::string(rule_.example.empty() ? base::example_of(rule_.dimension) : rule_.example);
   }
+  [[nodiscard]] std::string quoted_form() const { return fmt::format("\"{}\"", right_form()); }
   [[nodiscard]] std::string right_form_with_spread() const {
     if (rule_.spread == SpreadUse::refused) return fmt::format("\"{}\"", right_form());
     if (rule_.form == Form::scatter) return "\"± 10 %\", \"x/ 1.1\", \"between -10 % and 10 %\" or \"none\"";
@@ -120,7 +121,7 @@ class Grammar {
     if (error == std::errc::result_out_of_range)
       fail_at(begin, "the number is too large or too small to hold", "a number between 1e-300 and 1e300", "check the exponent");
     if (error != std::errc() || !std::isfinite(value))
-      fail_at(begin, fmt::format("a finite number is expected, not '{}'", text_.substr(begin)), fmt::format("\"{}\"", right_form()),
+      fail_at(begin, fmt::format("a finite number is expected, not '{}'", text_.substr(begin)), quoted_form(),
               fmt::format("write a value such as \"{}\"", right_form()));
     at_ = static_cast<std::size_t>(stopped - text_.data());
     if (!done() && text_[at_] == ',' && at_ + 1 < text_.size() && is_digit(text_[at_ + 1]))
@@ -156,7 +157,7 @@ class Grammar {
     a.unit = base::find_unit(name);
     if (!a.unit) {
       const UnitHint hint = hint_for_unit(name, rule_.dimension);
-      fail_at(unit_at, hint.what, right_form(), hint.hint);
+      fail_at(unit_at, hint.what, quoted_form(), hint.hint);
     }
     a.percent = a.unit->unit.kind == base::UnitKind::share;
     at_ = unit_at + name.size();
@@ -175,12 +176,12 @@ class Grammar {
     const auto kind = base::kind_of(rule_.dimension);
     if (!a.unit) {
       if (!kind || takes_percent()) return;
-      fail_at(at, fmt::format("the unit is missing: {} needs one", base::words_of(*kind)), right_form(), missing_unit_hint(a.number, rule_));
+      fail_at(at, fmt::format("the unit is missing: {} needs one", base::words_of(*kind)), quoted_form(), missing_unit_hint(a.number, rule_));
     }
     const Unit& unit = a.unit->unit;
     if (!kind) {
       if (rule_.dimension == Dimension::factor && a.percent) return;
-      fail_at(at, fmt::format("'{}' is {}, a number without a unit is needed", unit.name, base::words_of(unit.kind)), right_form(),
+      fail_at(at, fmt::format("'{}' is {}, a number without a unit is needed", unit.name, base::words_of(unit.kind)), quoted_form(),
               "write the number alone");
     }
     if (rule_.form == Form::viscosity && (unit.kind == base::UnitKind::kinematic_viscosity || unit.kind == base::UnitKind::dynamic_viscosity)) {
@@ -189,9 +190,9 @@ class Grammar {
     }
     if (unit.kind != *kind) {
       const UnitHint hint = hint_for_kind(unit, rule_);
-      fail_at(at, hint.what, right_form(), hint.hint);
+      fail_at(at, hint.what, quoted_form(), hint.hint);
     }
-    if (const auto hint = hint_for_coefficient(unit, rule_)) fail_at(at, hint->what, right_form(), hint->hint);
+    if (const auto hint = hint_for_coefficient(unit, rule_)) fail_at(at, hint->what, quoted_form(), hint->hint);
     check_reference(*a.unit, at);
   }
 
@@ -203,7 +204,7 @@ class Grammar {
                 "is this counted from the atmosphere (g) or from vacuum (abs)? Write it after the unit");
     } else if (counted && found.unit.kind == base::UnitKind::pressure) {
       fail_at(at, fmt::format("{} has no gauge or absolute", rule_.dimension == Dimension::modulus ? "a modulus" : "a difference of pressures"),
-              right_form(), "leave out g or abs");
+              quoted_form(), "leave out g or abs");
     }
   }
 
@@ -230,7 +231,7 @@ class Grammar {
 
   void refuse_spread(std::size_t at) const {
     if (rule_.spread == SpreadUse::refused)
-      fail_at(at, "a spread is not taken here", fmt::format("\"{}\"", right_form()), std::string(rule_.instead));
+      fail_at(at, "a spread is not taken here", quoted_form(), std::string(rule_.instead));
   }
 
   void read_spread() {
@@ -324,7 +325,7 @@ class Grammar {
     if (a.percent && !unit_is_percent()) {
       if (rule_.form == Form::scatter) return 1.0 + a.number / 100.0;
       if (rule_.dimension == Dimension::temperature || quantity_.value == 0.0)
-        fail_at(a.at, "a percentage of this value has no meaning", right_form(), "state the bounds with their unit");
+        fail_at(a.at, "a percentage of this value has no meaning", quoted_form(), "state the bounds with their unit");
       return quantity_.value + a.number / 100.0 * std::abs(quantity_.value);
     }
     Amount whole = a;
@@ -376,7 +377,7 @@ class Grammar {
     const double low = bound(first, second.unit);
     const double high = bound(second, second.unit ? second.unit : first.unit);
     if (rule_.form != Form::scatter && first.percent != second.percent && second.percent && !unit_is_percent())
-      fail_at(second.at, "a range has its bounds in one unit", right_form(), "write both bounds with their unit");
+      fail_at(second.at, "a range has its bounds in one unit", quoted_form(), "write both bounds with their unit");
     check_bounds(first, second, low, high);
     if (!take_word(",")) missing_not_random();
     if (!take_word("not random")) missing_not_random();
@@ -393,8 +394,16 @@ class Grammar {
 
   void finish() {
     if (const auto p = outside_limits(quantity_.value, rule_)) fail_at(central_at_, p->what, p->bound, p->hint);
-    const bool tails = std::holds_alternative<base::Normal>(quantity_.spread) || std::holds_alternative<base::LogNormal>(quantity_.spread);
-    if (tails) quantity_.cut = {rule_.low, rule_.high};
+    // Tails are cut at the physical limits. Scores lie inside 1e-16 .. 1 - 1e-16, that is 8.3 standard deviations: a limit
+    // farther out cuts nothing and stays out of the arithmetic.
+    constexpr double reach = 8.5;
+    if (const auto* normal = std::get_if<base::Normal>(&quantity_.spread)) {
+      if (rule_.low > quantity_.value - reach * normal->standard_deviation) quantity_.cut.low = rule_.low;
+      if (rule_.high < quantity_.value + reach * normal->standard_deviation) quantity_.cut.high = rule_.high;
+    } else if (const auto* lognormal = std::get_if<base::LogNormal>(&quantity_.spread)) {
+      if (rule_.low > 0.0) quantity_.cut.low = rule_.low;
+      if (rule_.high < quantity_.value * std::exp(reach * lognormal->log_standard_deviation)) quantity_.cut.high = rule_.high;
+    }
   }
 
   std::string_view text_;
@@ -416,9 +425,7 @@ std::optional<TextProblem> outside_limits(double value, const KeyRule& rule) {
     return TextProblem{0, "the value is too small", fmt::format("{} {}", rule.low_open ? "above" : "at least", in_words(rule.low)),
                        "check the sign and the unit"};
   if (!(value <= rule.high)) {
-    std::string hint = "check the unit";
-    if (rule.dimension == Dimension::share) hint = fmt::format("for a percentage write \"{} %\"", base::significant(value));
-    return TextProblem{0, "the value is too large", "at most " + in_words(rule.high), hint};
+    return TextProblem{0, "the value is too large", "at most " + in_words(rule.high), "check the unit"};
   }
   return std::nullopt;
 }
@@ -441,10 +448,13 @@ ParsedQuantity parse_number(double number, const std::string& written, const Key
     parsed.problem = TextProblem{0, "the number is not finite", "a finite number", "write the number itself"};
   } else if (kind && rule.dimension != Dimension::share) {
     const std::string form(rule.example.empty() ? base::example_of(rule.dimension) : rule.example);
-    parsed.problem = TextProblem{0, fmt::format("a bare number where a unit belongs: {} needs one", base::words_of(*kind)),
+    parsed.problem = TextProblem{0, fmt::format("a bare number where a unit belongs: {} needs one",
+                                                 rule.dimension == Dimension::kv ? "a flow coefficient" : base::words_of(*kind)),
                                  fmt::format("\"{}\"", form), missing_unit_hint(number, rule)};
   } else {
     parsed.problem = outside_limits(number, rule);
+    if (parsed.problem && number > rule.high && rule.dimension == Dimension::share)
+      parsed.problem->hint = fmt::format("for a percentage write \"{} %\"", number);
     parsed.quantity.value = number;
     parsed.quantity.dimension = rule.dimension;
     parsed.quantity.written = written;

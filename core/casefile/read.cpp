@@ -10,6 +10,7 @@
 #include <fstream>
 #include <iostream>
 #include <sstream>
+#include <tuple>
 
 namespace headband::casefile {
 namespace {
@@ -68,7 +69,7 @@ void add_network_problems(Context& context, const Case& c, base::Problems found)
 }
 
 void sort_and_thin(base::Problems& problems) {
-  std::stable_sort(problems.begin(), problems.end(), [](const base::Problem& a, const base::Problem& b) { return a.place < b.place; });
+  std::sort(problems.begin(), problems.end(), [](const base::Problem& a, const base::Problem& b) { return std::tie(a.place, a.path, a.what) < std::tie(b.place, b.path, b.what); });
   const auto same = [](const base::Problem& a, const base::Problem& b) { return a.place == b.place && a.what == b.what; };
   problems.erase(std::unique(problems.begin(), problems.end(), same), problems.end());
 }
@@ -140,7 +141,7 @@ std::string problems_text(const std::string& file_name, const std::string& text,
   const auto lines = lines_of(text);
   std::string out;
   for (const base::Problem& p : problems) {
-    out += fmt::format("{}:{}:{}: {}\n", file_name, p.place.line, p.place.column, p.what);
+    out += fmt::format("{}:{}:{}: {}{}{}\n", file_name, p.place.line, p.place.column, p.path, p.path.empty() ? "" : ": ", p.what);
     if (!p.value.empty()) out += fmt::format("  value: {}\n", p.value);
     if (!p.bound.empty()) out += fmt::format("  needs: {}\n", p.bound);
     if (p.place.line >= 1 && static_cast<std::size_t>(p.place.line) <= lines.size()) {

@@ -5,6 +5,7 @@
 
 #include <algorithm>
 #include <string_view>
+#include <tuple>
 
 namespace headband::casefile {
 namespace {
@@ -24,7 +25,7 @@ class Refusals {
       add(e.place, fmt::format("{}/{}", kind, e.name), fmt::format("the {} \"{}\"", words, e.name), "leave it out for this verb, or use `flow`, where it passes nothing");
   }
   base::Problems take() {
-    std::stable_sort(problems_.begin(), problems_.end(), [](const auto& a, const auto& b) { return a.place < b.place; });
+    std::sort(problems_.begin(), problems_.end(), [](const auto& a, const auto& b) { return std::tie(a.place, a.path) < std::tie(b.place, b.path); });
     return std::move(problems_);
   }
 

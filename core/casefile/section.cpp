@@ -115,6 +115,8 @@ std::string written(const toml::node& node) {
     return table->empty() ? "{ }" : "{ … }";
   } else if (const auto* array = node.as_array()) {
     return array->empty() ? "[ ]" : "[ … ]";
+  } else if (const auto* number = node.as_floating_point()) {
+    return fmt::format("{}", number->get());
   } else {
     node.visit([&](const auto& value) {
       if constexpr (toml::is_value<decltype(value)>) out << value;

@@ -63,7 +63,7 @@ Quantity cell_quantity(double number, const CsvColumn& column, const KeyRule& ru
     parsed = parse_number(number, fmt::format("{}", number), rule);
   else
     parsed = parse_quantity(fmt::format("{} {}", number, column.unit), rule);
-  if (parsed.problem) problem = parsed.problem->what + (parsed.problem->hint.empty() ? "" : " (" + parsed.problem->hint + ")");
+  if (parsed.problem) problem = parsed.problem->what;
   return std::move(parsed.quantity);
 }
 
@@ -88,7 +88,7 @@ void table_from_csv(Section& section, std::string_view key, const std::string& f
     const CsvColumn& column = row.first.given() ? *columns[1] : *columns[0];
     if (!problem.empty()) {
       report_csv(section, key, file,
-                 {reading.table.row_line[i], column.name, problem, fmt::format("{} {}", column.numbers[i], column.unit),
+                 {reading.table.row_line[i], column.name, problem, fmt::format("{}{}{}", column.numbers[i], column.unit.empty() ? "" : " ", column.unit),
                   fmt::format("units in the header, \"{} [{}]\"", column.name, base::si_name(row.first.given() ? second.dimension : first.dimension)), "correct the header or the row"});
       table.rows.clear();
       return;
