@@ -1,7 +1,8 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/program/judge.hpp"
 
-#include <algorithm>
+#include "montecarlo/bands/verdict.hpp"
+
 #include <cmath>
 
 namespace headband::program {
@@ -51,15 +52,6 @@ std::string where_name(const network::AnswerPlan& answer) {
   return two ? answer.where.name + ", " + answer.other.name : answer.where.name;
 }
 
-Verdict judge(double value, double grid_bound, double limit, bool not_over) {
-  if (!std::isfinite(value) || !std::isfinite(grid_bound)) return Verdict::cannot_tell;
-  const double worst = not_over ? value + grid_bound : value - grid_bound;
-  const double best = not_over ? value - grid_bound : value + grid_bound;
-  if (not_over ? worst <= limit : worst >= limit) return Verdict::ok;
-  if (not_over ? best > limit : best < limit) return Verdict::not_ok;
-  return Verdict::cannot_tell;
-}
-
 namespace {
 
 LimitAnswer blank(const network::LimitPlan& limit) {
@@ -75,7 +67,7 @@ LimitAnswer blank(const network::LimitPlan& limit) {
 
 void set_value(LimitAnswer& answer, const network::LimitPlan& limit, double value) {
   answer.value = value;
-  answer.margin = limit.not_over ? limit.bound - value : value - limit.bound;
+  answer.margin = montecarlo::margin({limit.bound, limit.not_over}, value);
 }
 
 }  // namespace
@@ -85,7 +77,7 @@ std::vector<LimitAnswer> judge_steady(const network::Case& c, const Central& cen
   for (const auto& limit : central.plan.limits) {
     LimitAnswer answer = blank(limit);
     set_value(answer, limit, steady::answer<1>(central.plan, central.values, central.state, limit.subject).number);
-    answer.verdict = judge(answer.value, 0.0, limit.bound, limit.not_over);
+    answer.verdict = montecarlo::verdict_of_run({limit.bound, limit.not_over}, answer.value, 0.0);
     if (!c.events.empty() && limit.subject.needs_surge() && answer.verdict == Verdict::ok) {
       answer.verdict = Verdict::cannot_tell;
       answer.reason = "needs surge";
@@ -103,7 +95,7 @@ std::vector<LimitAnswer> judge_run(const network::Plan& plan, const std::vector<
     const auto& limit = plan.limits[i];
     LimitAnswer answer = blank(limit);
     set_value(answer, limit, value.at(i));
-    answer.verdict = judge(value[i], grid_bound.at(i), limit.bound, limit.not_over);
+    answer.verdict = montecarlo::verdict_of_run({limit.bound, limit.not_over}, value[i], grid_bound.at(i));
     if (answer.verdict == Verdict::cannot_tell) {
       answer.reason = !std::isfinite(value[i])        ? "the value is not known"
                       : !std::isfinite(grid_bound[i]) ? "the grid is not converging"
@@ -124,13 +116,9 @@ std::vector<LimitAnswer> judge_nothing(const network::Plan& plan, const std::str
 }
 
 Verdict worst(const std::vector<LimitAnswer>& limits) {
-  Verdict worst = Verdict::none;
-  for (const auto& limit : limits) {
-    if (limit.verdict == Verdict::not_ok) return Verdict::not_ok;
-    if (limit.verdict == Verdict::cannot_tell) worst = Verdict::cannot_tell;
-    if (limit.verdict == Verdict::ok && worst == Verdict::none) worst = Verdict::ok;
-  }
-  return worst;
+  std::vector<Verdict> verdicts;
+  for (const auto& limit : limits) verdicts.push_back(limit.verdict);
+  return montecarlo::worst(verdicts);
 }
 
 }  // namespace headband::program

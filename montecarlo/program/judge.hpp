@@ -14,10 +14,6 @@ namespace headband::program {
 [[nodiscard]] base::Dimension dimension_of(network::AnswerKind kind);
 [[nodiscard]] std::string where_name(const network::AnswerPlan& answer);
 
-/// Verdict on one number: kept for sure, not kept for sure, or inside the grid bound of its limit.
-/// @param grid_bound >= 0 [the value's unit]; NaN = not converging: cannot tell
-[[nodiscard]] answers::Verdict judge(double value, double grid_bound, double limit, bool not_over);
-
 /// The limits by the steady state. In a case with events, extremes of pressure and velocity can only be told NOT OK.
 [[nodiscard]] std::vector<answers::LimitAnswer> judge_steady(const network::Case& c, const Central& central);
 

@@ -10,48 +10,50 @@ namespace {
 
 using answers::Verdict;
 
-TEST(Judge, AValueOnTheLimitIsKept) {
-  EXPECT_EQ(judge(12.0, 0.0, 12.0, true), Verdict::ok);
-  EXPECT_EQ(judge(12.0, 0.0, 12.0, false), Verdict::ok);
-  EXPECT_EQ(judge(12.0 + 1e-9, 0.0, 12.0, true), Verdict::not_ok);
-  EXPECT_EQ(judge(12.0 - 1e-9, 0.0, 12.0, false), Verdict::not_ok);
+network::Plan plan_with_limits() {
+  network::Plan plan;
+  plan.limits.resize(2);
+  plan.limits[0].name = "peak";
+  plan.limits[0].subject.kind = network::AnswerKind::highest_pressure;
+  plan.limits[0].subject.where.name = "chamber";
+  plan.limits[0].bound = 12e5;
+  plan.limits[1].name = "vacuum";
+  plan.limits[1].subject.kind = network::AnswerKind::lowest_pressure;
+  plan.limits[1].bound = -0.5e5;
+  plan.limits[1].not_over = false;
+  return plan;
 }
 
-TEST(Judge, InsideTheGridBoundNobodyCanTell) {
-  EXPECT_EQ(judge(11.95, 0.1, 12.0, true), Verdict::cannot_tell);
-  EXPECT_EQ(judge(12.05, 0.1, 12.0, true), Verdict::cannot_tell);
-  EXPECT_EQ(judge(11.85, 0.1, 12.0, true), Verdict::ok);
-  EXPECT_EQ(judge(12.15, 0.1, 12.0, true), Verdict::not_ok);
-  EXPECT_EQ(judge(12.05, 0.1, 12.0, false), Verdict::cannot_tell);
-  EXPECT_EQ(judge(11.85, 0.1, 12.0, false), Verdict::not_ok);
+TEST(JudgeRun, ValueMarginAndVerdictStandOnTheRightSide) {
+  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.6e5}, {0.05e5, 0.05e5});
+  ASSERT_EQ(limits.size(), 2U);
+  EXPECT_EQ(limits[0].verdict, Verdict::ok);
+  EXPECT_NEAR(limits[0].margin, 0.1e5, 1e-6);
+  EXPECT_EQ(limits[0].where, "chamber");
+  EXPECT_EQ(limits[0].kind, "highest_pressure");
+  EXPECT_EQ(limits[0].unit, "Pa");
+  EXPECT_TRUE(limits[0].reason.empty());
+  EXPECT_EQ(limits[1].verdict, Verdict::not_ok);
+  EXPECT_NEAR(limits[1].margin, -0.1e5, 1e-6);
+  EXPECT_EQ(worst(limits), Verdict::not_ok);
 }
 
-TEST(Judge, MirroredQuestionsHaveMirroredAnswers) {
-  for (const double value : {-3.0, -1.0, 0.0, 0.5, 2.0}) {
-    for (const double bound : {0.0, 0.7}) {
-      for (const double limit : {-1.0, 0.0, 0.4}) {
-        EXPECT_EQ(judge(value, bound, limit, true), judge(-value, bound, -limit, false));
-      }
-    }
-  }
-}
-
-TEST(Judge, UnknownValueOrGridIsCannotTell) {
+TEST(JudgeRun, InsideTheGridBoundOrWithoutOneNobodyCanTell) {
   const double nan = std::numeric_limits<double>::quiet_NaN();
-  EXPECT_EQ(judge(nan, 0.0, 1.0, true), Verdict::cannot_tell);
-  EXPECT_EQ(judge(0.0, nan, 1.0, true), Verdict::cannot_tell);
+  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.4e5}, {0.2e5, nan});
+  EXPECT_EQ(limits[0].verdict, Verdict::cannot_tell);
+  EXPECT_NE(limits[0].reason.find("grid bound"), std::string::npos);
+  EXPECT_EQ(limits[1].verdict, Verdict::cannot_tell);
+  EXPECT_NE(limits[1].reason.find("not converging"), std::string::npos);
 }
 
-TEST(Judge, TheCaseIsAsGoodAsItsWorstLimit) {
-  answers::LimitAnswer ok, not_ok, unknown;
-  ok.verdict = Verdict::ok;
-  not_ok.verdict = Verdict::not_ok;
-  unknown.verdict = Verdict::cannot_tell;
+TEST(JudgeNothing, EveryLimitCannotTellAndSaysWhy) {
+  for (const auto& limit : judge_nothing(plan_with_limits(), "no steady state")) {
+    EXPECT_EQ(limit.verdict, Verdict::cannot_tell);
+    EXPECT_EQ(limit.reason, "no steady state");
+    EXPECT_TRUE(limit.value != limit.value);
+  }
   EXPECT_EQ(worst({}), Verdict::none);
-  EXPECT_EQ(worst({ok}), Verdict::ok);
-  EXPECT_EQ(worst({ok, unknown}), Verdict::cannot_tell);
-  EXPECT_EQ(worst({unknown, ok}), Verdict::cannot_tell);
-  EXPECT_EQ(worst({unknown, not_ok, ok}), Verdict::not_ok);
 }
 
 }  // namespace
