@@ -9,6 +9,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <tuple>
 
 namespace headband::report {
 namespace {
@@ -224,7 +225,9 @@ std::string sensitivity(const answers::BandAnswer& answer) {
               {{"Unknown"}, {"alone", true}, {"with others", true}, {"alone (dark), with others (light)"}},
               {}};
   std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;
-  std::stable_sort(ranked.begin(), ranked.end(), [](const auto& a, const auto& b) { return a.total > b.total; });
+  std::sort(ranked.begin(), ranked.end(), [](const auto& a, const auto& b) {
+    return std::tie(b.total, a.input) < std::tie(a.total, b.input);
+  });
   for (const auto& s : ranked)
     table.rows.push_back({escaped(s.input), figures(s.first, 2), figures(s.total, 2),
                           bar_cell(std::max(s.first, s.total), s.first, 1.0)});

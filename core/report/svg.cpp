@@ -10,6 +10,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <tuple>
 
 namespace headband::report {
 namespace {
@@ -94,7 +95,9 @@ struct SideLabel {
 
 /// Pushes labels apart, keeping their order, and the stack inside the frame.
 void part(std::vector<SideLabel>& labels, double top, double bottom) {
-  std::stable_sort(labels.begin(), labels.end(), [](const auto& a, const auto& b) { return a.wanted < b.wanted; });
+  std::sort(labels.begin(), labels.end(), [](const auto& a, const auto& b) {
+    return std::tie(a.wanted, a.text) < std::tie(b.wanted, b.text);
+  });
   double next = top;
   for (SideLabel& label : labels) {
     label.placed = std::max(label.wanted, next);
@@ -145,7 +148,9 @@ std::vector<TopLabel> top_labels(const Plot& plot, double right, int& rows) {
   for (const Level& level : plot.levels)
     if (level.upright && level.value >= plot.x.low && level.value <= plot.x.high)
       labels.push_back({&level, left + (level.value - plot.x.low) / (plot.x.high - plot.x.low) * (right - left), 0});
-  std::stable_sort(labels.begin(), labels.end(), [](const auto& a, const auto& b) { return a.x < b.x; });
+  std::sort(labels.begin(), labels.end(), [](const auto& a, const auto& b) {
+    return std::tie(a.x, a.level->name) < std::tie(b.x, b.level->name);
+  });
   std::vector<double> taken;
   for (TopLabel& label : labels) {
     const double half = 0.5 * text_width(shortened(label.level->name)) + 5.0;
