@@ -170,6 +170,11 @@ Plot profile(const Study& study, std::size_t pipe) {
   return plot;
 }
 
+std::string history_message(std::size_t rows) {
+  return rows <= rows_carried_whole ? "One run at the written values; every computed step."
+                                    : "One run at the written values; thinned so that every peak stays. The result file holds every step.";
+}
+
 /// Six curves a plot, no two alike in colour and dash.
 void dress(Curve& curve, std::size_t i) {
   curve.ink = inks[i % inks.size()];
@@ -210,7 +215,7 @@ void add_limit_levels(const Study& study, Plot& plot) {
     if (limit.kind != "highest_pressure" && limit.kind != "lowest_pressure") continue;
     const auto at_probe = [&](const Curve& curve) { return limit.where.empty() || curve.name == limit.where; };
     if (std::any_of(plot.curves.begin(), plot.curves.end(), at_probe))
-      plot.levels.push_back({limit.name, limit.limit, false, Ink::black, Dash::long_dashed});
+      plot.levels.push_back({limit.name, limit.limit, false, Ink::black, plot.levels.size() % 2 == 0 ? Dash::long_dashed : Dash::dash_dot});
   }
 }
 
@@ -245,7 +250,7 @@ std::vector<Plot> histories(const Study& study) {
     pattern.x = {"time", Shown::time};
     pattern.y = std::move(axis);
     pattern.abscissa = t.time;
-    pattern.message = "One run at the written values; every computed step.";
+    pattern.message = history_message(t.time.size());
     std::vector<Curve> curves;
     for (std::size_t i = 0; i < t.probe_name.size(); ++i) {
       std::vector<double> y = column_of(table, t.time.size(), t.probe_name.size(), i);
@@ -289,7 +294,7 @@ std::vector<Plot> device_series(const Study& study) {
     pattern.x = {"time", Shown::time};
     pattern.y = {words, shown_of_unit(units[quantity], quantity)};
     pattern.abscissa = t.time;
-    pattern.message = "One run at the written values; every computed step.";
+    pattern.message = history_message(t.time.size());
     pattern.height = 250;
     for (Plot& plot : dealt(pattern, std::move(curves[quantity]))) {
       set_ranges(plot);

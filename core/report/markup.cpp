@@ -63,9 +63,9 @@ std::string both_with_bound(double si, double bound, Shown shown, Shown bound_sh
     // A bound far below the last useful figure is told as such instead of adding digits to the value.
     const double least = 5e-4 * std::abs(in(si));
     if (width < least)
-      return fmt::format("{} ± under {}\u00a0{}", figures(in(si)), figures(std::pow(10.0, std::floor(std::log10(least)) + 1), 1), in.unit);
+      return fmt::format("{} ± under {}{}", figures(in(si)), figures(std::pow(10.0, std::floor(std::log10(least)) + 1), 1), behind_number(in.unit));
     const int places = places_for(width);
-    return fmt::format("{} ± {}\u00a0{}", decimals(in(si), places), decimals(width, places), in.unit);
+    return fmt::format("{} ± {}{}", decimals(in(si), places), decimals(width, places), behind_number(in.unit));
   };
   return both(one(Family::si), one(Family::us));
 }
@@ -92,6 +92,11 @@ std::string html(const Table& table) {
     out += "</tr>\n";
   }
   return out + "</tbody>\n</table>\n</div>\n";
+}
+
+std::string folded(const Table& table, std::size_t most) {
+  if (table.rows.size() <= most) return html(table);
+  return fmt::format("<details><summary>{} ({} rows)</summary>\n{}</details>\n", escaped(table.caption), table.rows.size(), html(table));
 }
 
 std::string html(const std::vector<std::pair<std::string, std::string>>& terms) {

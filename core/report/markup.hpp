@@ -7,6 +7,7 @@
 
 #include <string>
 #include <string_view>
+#include <utility>
 #include <vector>
 
 namespace headband::report {
@@ -41,6 +42,9 @@ struct Table {
 
 /// Empty when the table has no rows.
 [[nodiscard]] std::string html(const Table& table);
+
+/// The same, folded away behind its caption when it has more than `most` rows.
+[[nodiscard]] std::string folded(const Table& table, std::size_t most);
 
 /// Terms and their values, for identity and audit blocks. HTML values.
 [[nodiscard]] std::string html(const std::vector<std::pair<std::string, std::string>>& terms);

@@ -156,11 +156,21 @@ std::string percent(double share) {
   return text + "\u00a0%";
 }
 
+std::string behind_number(const std::string& unit) {
+  std::string text = unit.empty() ? "" : "\u00a0";
+  for (const char c : unit) {
+    if (c == ' ')
+      text += "\u00a0";
+    else
+      text += c;
+  }
+  return text;
+}
+
 std::string with_unit(double si, Shown shown, Family family, int significant) {
   const Measure in = measure(shown, family, si);
-  std::string text = figures(in(si), significant);
-  if (!in.unit.empty() && !std::isnan(si)) text += "\u00a0" + in.unit;
-  return text;
+  const std::string text = figures(in(si), significant);
+  return std::isnan(si) ? text : text + behind_number(in.unit);
 }
 
 }  // namespace headband::report

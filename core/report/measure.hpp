@@ -70,6 +70,9 @@ struct KeyWords {
 /// A share in percent without idle zeros: "95 %", "2.5 %", "0.26 %".
 [[nodiscard]] std::string percent(double share);
 
+/// The unit behind a number, all of it kept on the number's line: a hard space and "bar g" with another; may be empty.
+[[nodiscard]] std::string behind_number(const std::string& unit);
+
 /// Number and unit of an SI value: "11.95 bar".
 [[nodiscard]] std::string with_unit(double si, Shown shown, Family family, int significant = 4);
 

@@ -108,6 +108,9 @@ struct Ticks {
 /// @param suffix makes the ids inside the picture unique within a page
 [[nodiscard]] std::string svg(const Plot& plot, Family family, const std::string& suffix = "");
 
+/// Above this many rows a data block carries the rows that hold the peaks of each stretch, not all of them.
+inline constexpr std::size_t rows_carried_whole = 8'000;
+
 /// The data block of the interactive plot: JSON, SI numbers with shortest round-trip digits, every "<" as \u003c.
 [[nodiscard]] std::string data_block(const Plot& plot);
 

@@ -12,9 +12,11 @@ namespace {
 
 using nlohmann::ordered_json;
 
-/// Above this many rows a plot carries the rows that hold the peaks of each stretch, not all of them.
-constexpr std::size_t most_rows = 20'000;
-constexpr int stretches_kept = 2'000;
+/// Stretches whose peaks are kept of long curves: about two a pixel of a wide screen for one curve, one for several.
+int stretches_kept(std::size_t curves) {
+  const std::size_t share = rows_carried_whole / (4 * std::max<std::size_t>(1, curves));
+  return static_cast<int>(std::max<std::size_t>(800, share));
+}
 
 ordered_json number(double value) { return std::isfinite(value) ? ordered_json(value) : ordered_json(nullptr); }
 
@@ -26,13 +28,13 @@ ordered_json numbers(const std::vector<double>& values, const std::vector<std::s
 
 std::vector<std::size_t> rows_of(const Plot& plot) {
   std::vector<std::size_t> rows;
-  if (plot.abscissa.size() <= most_rows) {
+  if (plot.abscissa.size() <= rows_carried_whole) {
     for (std::size_t i = 0; i < plot.abscissa.size(); ++i) rows.push_back(i);
     return rows;
   }
   std::set<std::size_t> kept;
   for (const Curve& curve : plot.curves)
-    for (const std::size_t row : thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, stretches_kept)) kept.insert(row);
+    for (const std::size_t row : thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, stretches_kept(plot.curves.size()))) kept.insert(row);
   return {kept.begin(), kept.end()};
 }
 

@@ -4,6 +4,7 @@
 #include "core/report/markup.hpp"
 #include "core/report/sections.hpp"
 #include "core/show/reported.hpp"
+#include "core/show/words.hpp"
 
 #include <fmt/format.h>
 
@@ -17,6 +18,9 @@ namespace {
 using answers::Study;
 using answers::Verdict;
 
+/// Share of the volume passed that may be unaccounted for before the page says so beside the verdict.
+constexpr double doubtful_residual = 1e-2;
+
 std::string paragraph(const std::string& html, const char* kind = "") {
   return html.empty() ? "" : fmt::format("<p{}{}{}>{}</p>\n", *kind ? " class=\"" : "", kind, *kind ? "\"" : "", html);
 }
@@ -29,6 +33,20 @@ std::string word_of_verb(const std::string& verb) {
   if (verb == "age") return "Ageing";
   if (verb == "match") return "Match to a field log";
   return verb;
+}
+
+/// The decision as HTML, without the verdict that already stands over it.
+std::string sentence(const Study& study, const char* units) {
+  std::string text = show::decision(study, units);
+  const std::string stamp = show::words_of(study.verdict) + ": ";
+  if (study.verdict != Verdict::none && text.rfind(stamp, 0) == 0) {
+    text.erase(0, stamp.size());
+    if (!text.empty() && text[0] >= 'a' && text[0] <= 'z') text[0] = static_cast<char>(text[0] - 'a' + 'A');
+  }
+  // The first sentence is the answer; the others stand below it, smaller.
+  const std::size_t end = text.find(". ");
+  if (end == std::string::npos) return escaped(text);
+  return escaped(text.substr(0, end + 1)) + "<span class=\"rest\">" + escaped(text.substr(end + 2)) + "</span>";
 }
 
 const char* class_of(Verdict verdict) {
@@ -108,9 +126,7 @@ std::string place_extremes(const Study& study) {
                           both(place.max_pressure, Shown::pressure), both(place.time_of_max, Shown::time, 3),
                           both(place.min_pressure, Shown::pressure), both(place.time_of_min, Shown::time, 3)});
   }
-  const std::string body = html(table);
-  if (table.rows.size() <= 24) return body;
-  return fmt::format("<details><summary>Highest and lowest at each of {} places</summary>\n{}</details>\n", table.rows.size(), body);
+  return folded(table, 24);
 }
 
 std::string probability_cell(const answers::LimitAnswer& limit) {
@@ -136,7 +152,7 @@ std::string margin_cell(const answers::LimitAnswer& limit, Shown shown, Shown di
     const std::size_t point = like.find('.');
     const int places = point == std::string::npos || like.find("×") != std::string::npos ? 0 : static_cast<int>(like.size() - point - 1);
     if (std::isnan(limit.margin)) return std::string("–");
-    return decimals(limit.margin * scale, places) + "\u00a0" + measure(difference, family, limit.value).unit;
+    return decimals(limit.margin * scale, places) + behind_number(measure(difference, family, limit.value).unit);
   };
   return both(one(Family::si), one(Family::us));
 }
@@ -145,8 +161,7 @@ std::string margin_cell(const answers::LimitAnswer& limit, Shown shown, Shown di
 std::string band_cell(double low, double high, Shown shown) {
   const auto one = [&](Family family) {
     const Measure in = measure(shown, family, std::max(std::abs(low), std::abs(high)));
-    const std::string ends = figures(in(low)) + " … " + figures(in(high));
-    return in.unit.empty() ? ends : ends + "\u00a0" + in.unit;
+    return figures(in(low)) + " … " + figures(in(high)) + behind_number(in.unit);
   };
   if (std::isnan(low) || std::isnan(high)) return "–";
   return both(one(Family::si), one(Family::us));
@@ -160,7 +175,7 @@ const answers::BandAnswer* answer_of(const Study& study, const answers::LimitAns
 }
 
 std::string limits(const Study& study) {
-  Table table{"Limits, who wins and by how much",
+  Table table{"Limits: by how much they are kept, and how surely",
               {{"Limit"}, {"bound", true}, {"one run", true}, {"margin", true}, {"chance that it is not kept", true}, {"picture"}, {"verdict"}},
               {}};
   bool chances = false;
@@ -213,7 +228,7 @@ std::string budget(const answers::BandAnswer& answer) {
   for (const auto& [name, value] : groups)
     if (std::isfinite(value)) largest = std::max(largest, value);
   Table table{fmt::format("Where the width of {} comes from (first {} draws)", answer.name, answer.budget_draws),
-              {{"Group"}, {"standard deviation", true}, {"share"}},
+              {{"Group"}, {"standard deviation", true}, {"in proportion"}},
               {}};
   for (const auto& [name, value] : groups)
     if (std::isfinite(value)) table.rows.push_back({name, both(value, difference, 3), bar_cell(value, 0.0, largest)});
@@ -244,7 +259,7 @@ std::string quantile_table(const Study& study) {
     for (const auto& q : answer.quantiles)
       table.rows.push_back({escaped(answer.name), percent(q.probability), both(q.value, shown), both(q.lower, shown), both(q.upper, shown)});
   }
-  return fmt::format("<details><summary>All quantiles with their intervals</summary>\n{}</details>\n", html(table));
+  return folded(table, 0);
 }
 
 std::string bands(const Study& study) {
@@ -302,13 +317,13 @@ std::string head_of_page(const Study& study) {
   if (!study.note.empty()) out += paragraph(escaped(study.note), "note");
   out += fmt::format("<section class=\"decision {}\" aria-label=\"Decision\">\n", class_of(study.verdict));
   if (study.verdict != Verdict::none) out += paragraph(verdict_mark(study.verdict), "stamp");
-  out += paragraph(escaped(study.decision), "sentence");
-  if (study.state == answers::RunState::incomplete)
-    out += paragraph("<strong>The calculation did not finish.</strong> What stands here is what was reached.", "sentence");
-  const auto counted = [](std::size_t n, const char* one) { return fmt::format("{} {}{}", n, one, n == 1 ? "" : "s"); };
+  out += paragraph(both(sentence(study, "si"), sentence(study, "us")), "sentence");
+  if (study.audit && std::abs(study.audit->volume_residual_relative) > doubtful_residual)
+    out += paragraph("<strong>Over 1\u00a0% of the volume passed is not accounted for: do not use these numbers.</strong>");
+  const auto counted = [](std::size_t n, const char* one, const char* more) { return fmt::format("{} {}{}", n, one, n == 1 ? "" : more); };
   std::vector<std::string> open;
-  if (!study.guesses.empty()) open.push_back(fmt::format("<a href=\"#open\">{}</a>", fmt::format("{} guess{}", study.guesses.size(), study.guesses.size() == 1 ? "" : "es")));
-  if (!study.warnings.empty()) open.push_back(fmt::format("<a href=\"#open\">{}</a>", counted(study.warnings.size(), "warning")));
+  if (!study.guesses.empty()) open.push_back(fmt::format("<a href=\"#open\">{}</a>", counted(study.guesses.size(), "guess", "es")));
+  if (!study.warnings.empty()) open.push_back(fmt::format("<a href=\"#open\">{}</a>", counted(study.warnings.size(), "warning", "s")));
   std::string line;
   for (const auto& one : open) line += (line.empty() ? "" : " · ") + one;
   out += paragraph(line, "open");
@@ -340,7 +355,7 @@ std::string figure(const Plot& plot) {
                           both(curve.y[high], plot.y.shown), both(plot.abscissa[high], plot.x.shown)});
   }
   const std::string body = html(table);
-  if (!body.empty()) out += fmt::format("<details class=\"numbers\"><summary>Lowest and highest as numbers</summary>\n{}</details>\n", body);
+  if (!body.empty()) out += fmt::format("<details><summary>Lowest and highest as numbers</summary>\n{}</details>\n", body);
   return out + "</figure>\n";
 }
 

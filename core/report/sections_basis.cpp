@@ -3,6 +3,7 @@
 #include "core/report/markup.hpp"
 #include "core/report/sections.hpp"
 #include "core/show/reported.hpp"
+#include "core/show/words.hpp"
 
 #include <fmt/format.h>
 
@@ -28,9 +29,7 @@ std::string events(const Study& study) {
     std::replace(kind.begin(), kind.end(), '_', ' ');
     table.rows.push_back({both(event.time, Shown::time), escaped(event.subject), escaped(kind), escaped(event.what)});
   }
-  const std::string body = html(table);
-  if (table.rows.size() <= 60) return body;
-  return fmt::format("<details><summary>{} events</summary>\n{}</details>\n", table.rows.size(), body);
+  return folded(table, 60);
 }
 
 std::string cavities(const Study& study) {
@@ -54,7 +53,7 @@ std::string devices(const Study& study) {
       table.rows.push_back({escaped(device.name), escaped(kind), escaped(words.words), both(value, words.shown)});
     }
   }
-  return html(table);
+  return folded(table, 60);
 }
 
 std::string checks(const Study& study) {
@@ -79,7 +78,7 @@ std::string checks(const Study& study) {
     for (std::size_t i = 0; i < study.pipes.size() && i < grid.reaches.size() && i < grid.marched_wave_speed.size(); ++i)
       table.rows.push_back({escaped(study.pipes[i].name), grid.reaches[i] == 0 ? "rigid" : std::to_string(grid.reaches[i]),
                             both(study.pipes[i].wave_speed, Shown::velocity, 5), both(grid.marched_wave_speed[i], Shown::velocity, 5)});
-    out += html(table);
+    out += folded(table, 60);
   }
   if (study.audit) {
     const auto& audit = *study.audit;
@@ -141,11 +140,11 @@ std::string steady(const Study& study) {
                           both(p.velocity, Shown::velocity, 3), decimals(p.reynolds, 0), figures(p.friction_factor, 4),
                           both(p.head_loss, Shown::head, 3), both(p.pressure_drop, Shown::pressure_difference),
                           both(p.wave_speed, Shown::velocity), both(p.joukowsky_head, Shown::head, 3)});
-  out += html(pipes);
+  out += folded(pipes, 60);
   Table places{"Places in the first steady state", {{"Place"}, {"elevation", true}, {"head", true}, {"pressure", true}}, {}};
   for (const auto& p : study.places)
     places.rows.push_back({escaped(p.name), both(p.elevation, Shown::elevation), both(p.head, Shown::head), both(p.pressure, Shown::pressure)});
-  return out + html(places) + liquid(study);
+  return out + folded(places, 60) + liquid(study);
 }
 
 std::string inputs(const Study& study) {
@@ -156,7 +155,7 @@ std::string inputs(const Study& study) {
     table.rows.push_back({escaped(v.name.empty() ? v.path : v.name), escaped(v.written) + (v.guess ? " <span class=\"guess\">guess</span>" : ""),
                           escaped(v.shown_si), escaped(v.shown_us), v.spread.empty() ? "–" : escaped(v.spread),
                           v.source.empty() ? "–" : escaped(v.source), v.grade.empty() ? "–" : escaped(v.grade)});
-  return html(table);
+  return folded(table, 120);
 }
 
 std::string open_points(const Study& study) {
@@ -224,7 +223,7 @@ std::vector<Section> basis_sections(const Study& study) {
   add("steady", "Steady flow", steady(study));
   add("inputs", "Inputs", inputs(study));
   add("open", "Open points", open_points(study));
-  add("cautions", "Cautions", list_of(study.cautions));
+  add("cautions", "Cautions", list_of(show::cautions(study)));
   add("identity", "Identity", identity(study));
   add("case", "Case text", case_text(study));
   return sections;

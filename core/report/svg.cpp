@@ -301,17 +301,21 @@ std::string levels(const Plot& plot, const Frame& frame, const std::vector<TopLa
                        escaped(level.name), at(left), at(frame.y(level.value)), at(frame.right), ink.colour,
                        dash_attribute(level.dash));
   }
+  const auto height_of = [&](const TopLabel& label) { return frame.top - 6.0 - line_height * (top_rows - 1 - label.row); };
   for (const TopLabel& label : tops) {
     const InkNames ink = ink_names(label.level->ink);
-    const double y = frame.top - 6.0 - line_height * (top_rows - 1 - label.row);
     out += fmt::format("<path class=\"curve {}\" data-name=\"{}\" d=\"M{} {}V{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"1.4\"{}/>\n", ink.name,
-                       escaped(label.level->name), at(label.x), at(y + 3.0), at(frame.bottom), ink.colour,
+                       escaped(label.level->name), at(label.x), at(height_of(label) + 3.0), at(frame.bottom), ink.colour,
                        dash_attribute(label.level->dash));
+  }
+  // Names last, so that no line runs over one.
+  for (const TopLabel& label : tops) {
+    const InkNames ink = ink_names(label.level->ink);
     const double half = 0.5 * text_width(shortened(label.level->name));
     const double x = std::clamp(label.x, half + 2.0, width - half - 2.0);
     out += fmt::format("<text class=\"name {0}\" x=\"{1}\" y=\"{2}\" text-anchor=\"middle\" fill=\"{3}\" stroke=\"#ffffff\" "
                        "stroke-width=\"4\" paint-order=\"stroke\">{4}</text>\n",
-                       ink.name, at(x), at(y), ink.colour, escaped(shortened(label.level->name)));
+                       ink.name, at(x), at(height_of(label)), ink.colour, escaped(shortened(label.level->name)));
   }
   return out;
 }

@@ -83,6 +83,15 @@
       return rows;
     };
 
+    const haloed = (ctx, text, tx, ty) => {
+      ctx.lineWidth = 4 * pixels;
+      ctx.strokeStyle = colour('paper');
+      ctx.lineJoin = 'round';
+      ctx.strokeText(text, tx, ty);
+      ctx.fillStyle = colour('ink');
+      ctx.fillText(text, tx, ty);
+    };
+
     const drawLevels = (u, ctx) => {
       for (const l of data.levels) {
         ctx.strokeStyle = colour(l.ink);
@@ -122,6 +131,10 @@
         }
         ctx.stroke();
         ctx.restore();
+        ctx.font = font(12 * pixels);
+        if (ctx.measureText(s.name).width + 8 * pixels > to - from) continue;
+        ctx.textAlign = 'center';
+        haloed(ctx, s.name, (from + to) / 2, u.bbox.top + 16 * pixels);
       }
     };
 
@@ -141,12 +154,7 @@
         const half = ctx.measureText(p.name).width / 2 + 4 * pixels;
         const tx = Math.max(u.bbox.left + half, Math.min(u.bbox.left + u.bbox.width - half, px));
         const ty = py - 10 * pixels < u.bbox.top + 12 * pixels ? py + 20 * pixels : py - 10 * pixels;
-        ctx.lineWidth = 4 * pixels;
-        ctx.strokeStyle = colour('paper');
-        ctx.lineJoin = 'round';
-        ctx.strokeText(p.name, tx, ty);
-        ctx.fillStyle = colour('ink');
-        ctx.fillText(p.name, tx, ty);
+        haloed(ctx, p.name, tx, ty);
       }
     };
 

@@ -25,17 +25,17 @@ TEST(Markup, different_names_have_different_slugs) {
 }
 
 TEST(Markup, both_families_stand_side_by_side) {
-  EXPECT_EQ(both(12e5, Shown::pressure), "<span class=\"si\">12.00\u00a0bar g</span><span class=\"us\">174.0\u00a0psi g</span>");
+  EXPECT_EQ(both(12e5, Shown::pressure), "<span class=\"si\">12.00\u00a0bar\u00a0g</span><span class=\"us\">174.0\u00a0psi\u00a0g</span>");
   EXPECT_EQ(both(1.5, Shown::time), "1.500\u00a0s");
   EXPECT_EQ(both(std::numeric_limits<double>::quiet_NaN(), Shown::pressure), "–");
 }
 
 TEST(Markup, a_value_is_rounded_by_its_bound) {
   const std::string text = both_with_bound(11.4961e5, 4200.0, Shown::pressure, Shown::pressure_difference);
-  EXPECT_NE(text.find("11.496 ± 0.042\u00a0bar g"), std::string::npos) << text;
-  EXPECT_NE(text.find("166.74 ± 0.61\u00a0psi g"), std::string::npos) << text;
+  EXPECT_NE(text.find("11.496 ± 0.042\u00a0bar\u00a0g"), std::string::npos) << text;
+  EXPECT_NE(text.find("166.74 ± 0.61\u00a0psi\u00a0g"), std::string::npos) << text;
   const std::string tiny = both_with_bound(11.4961e5, 1.0, Shown::pressure, Shown::pressure_difference);
-  EXPECT_NE(tiny.find("11.50 ± under 0.01\u00a0bar g"), std::string::npos) << tiny;
+  EXPECT_NE(tiny.find("11.50 ± under 0.01\u00a0bar\u00a0g"), std::string::npos) << tiny;
   const std::string none = both_with_bound(11.4961e5, std::numeric_limits<double>::quiet_NaN(), Shown::pressure, Shown::pressure_difference);
   EXPECT_EQ(none.find("±"), std::string::npos);
 }

@@ -147,7 +147,7 @@ def main():
             check(points >= 5 * 25, f"only {points} points were compared")
             browser.run("document.getElementById('units-us').click()")
             check_series(browser, expected, "us")
-            check(browser.run("return document.body.innerText.includes('psi g') && !document.body.innerText.includes('bar g')"),
+            check(browser.run("const text = document.body.innerText.replaceAll('\u00a0', ' '); return text.includes('psi g') && !text.includes('bar g')"),
                   "the switch to US units leaves SI units on the page")
 
             # The reading line by keyboard, the switch of a curve, the zoom.

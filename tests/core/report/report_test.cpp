@@ -35,7 +35,7 @@ TEST(Page, blocks_stand_in_order) {
   const std::string text = page(support::sample_study());
   std::size_t last = 0;
   for (const char* id : {"extremes", "limits", "profile", "history", "series", "bands", "events", "cavities", "devices", "checks", "steady",
-                         "inputs", "open", "identity", "case"}) {
+                         "inputs", "open", "cautions", "identity", "case"}) {
     const std::size_t at = text.find(std::string("<section class=\"part\" id=\"") + id + "\"");
     ASSERT_NE(at, std::string::npos) << id;
     EXPECT_GT(at, last) << id;
