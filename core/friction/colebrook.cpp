@@ -43,10 +43,14 @@ HEADBAND_INLINE Lanes<W> factor_of(const Lanes<W>& relative_roughness, const Lan
   return 1.0 / (x * x);
 }
 
-Lanes<8> load(const double* from) {
+/// Register by register: a copy of the whole struct would pass through memory.
+HEADBAND_INLINE Lanes<8> load(const double* from) {
   Lanes<8> r;
-  std::memcpy(&r, from, sizeof r);
+  for (int i = 0; i < Lanes<8>::parts; ++i) std::memcpy(&r.part[i], from + 4 * i, sizeof(base::Quad));
   return r;
+}
+HEADBAND_INLINE void store(const Lanes<8>& from, double* to) {
+  for (int i = 0; i < Lanes<8>::parts; ++i) std::memcpy(to + 4 * i, &from.part[i], sizeof(base::Quad));
 }
 
 }  // namespace
@@ -62,8 +66,7 @@ void colebrook_factors(std::span<const double> relative_roughness,
   const std::size_t n = std::min({relative_roughness.size(), reynolds.size(), factor.size()});
   std::size_t i = 0;
   for (; i + lanes <= n; i += lanes) {
-    const Lanes<8> f = factor_of<8>(load(&relative_roughness[i]), load(&reynolds[i]));
-    std::memcpy(&factor[i], &f, sizeof f);
+    store(factor_of<8>(load(&relative_roughness[i]), load(&reynolds[i])), &factor[i]);
   }
   for (; i < n; ++i) factor[i] = colebrook_factor(relative_roughness[i], reynolds[i]);
 }
