@@ -53,6 +53,17 @@ struct Parted {
   Number exponent, fraction;
 };
 
+/// The same for a positive normal number.
+template <class Number>
+[[nodiscard]] HEADBAND_INLINE Parted<Number> part_normal(const Number& x) {
+  const Word<Number> bits = to_word(x);
+  const Word<Number> shifted = bits - std::bit_cast<std::uint64_t>(sqrt_half) + one_word;
+  const Word<Number> biased = shifted >> 52;
+  const Word<Number> mantissa = bits - (shifted & exponent_field) + one_word;
+  const Number as_number = to_number(biased | std::bit_cast<std::uint64_t>(two_to_52)) - two_to_52;
+  return {as_number - 1023.0, to_number(mantissa) - 1.0};
+}
+
 template <class Number>
 [[nodiscard]] HEADBAND_INLINE Parted<Number> part(const Number& x) {
   const auto tiny = x < std::numeric_limits<double>::min();
@@ -82,15 +93,19 @@ template <class Number>
 }
 
 template <class Number>
-[[nodiscard]] HEADBAND_INLINE Number log_core(const Number& x) {
-  const Parted<Number> p = part(x);
+[[nodiscard]] HEADBAND_INLINE Number log_of_parts(const Parted<Number>& p) {
   const Number f = p.fraction;
   const Number s = f / (2.0 + f);
   const Number half_square = 0.5 * f * f;
   // log(1+f) = 2 atanh(s) = f - f^2/2 + s (f^2/2 + 2 rest): the leading term is exact
   const Number inner = s * (half_square + 2.0 * atanh_rest<Number>(s * s));
   const Number small = p.exponent * log_two_tail + inner;
-  const Number usual = p.exponent * log_two_head + (f - (half_square - small));
+  return p.exponent * log_two_head + (f - (half_square - small));
+}
+
+template <class Number>
+[[nodiscard]] HEADBAND_INLINE Number log_core(const Number& x) {
+  const Number usual = log_of_parts<Number>(part(x));
   Number r = x < std::numeric_limits<double>::infinity() ? usual : x;
   r = x == 0.0 ? same<Number>(-std::numeric_limits<double>::infinity()) : r;
   return x < 0.0 ? same<Number>(std::numeric_limits<double>::quiet_NaN()) : r;
@@ -190,15 +205,23 @@ namespace detail {
 /// log(x) within 6e-4; x normal and positive. The polynomial is the cubic Chebyshev fit of log(1 + f).
 template <class Number>
 [[nodiscard]] HEADBAND_INLINE Number quick_log_core(const Number& x) {
-  const Word<Number> bits = to_word(x);
-  const Word<Number> shifted = bits - std::bit_cast<std::uint64_t>(sqrt_half) + one_word;
-  const Word<Number> biased = shifted >> 52;
-  const Word<Number> mantissa = bits - (shifted & exponent_field) + one_word;
-  const Number exponent = to_number(biased | std::bit_cast<std::uint64_t>(two_to_52)) - (two_to_52 + 1023.0);
-  const Number f = to_number(mantissa) - 1.0;
-  return exponent * 0.6931471805599453 + (3.73947376e-4 + f * (1.00249762 + f * (-0.526455338 + f * 0.304754131)));
+  const Parted<Number> p = part_normal(x);
+  const Number f = p.fraction;
+  return p.exponent * 0.6931471805599453 + (3.73947376e-4 + f * (1.00249762 + f * (-0.526455338 + f * 0.304754131)));
 }
 }  // namespace detail
+
+/// Natural logarithm of a positive normal number: the bits of `log` without its questions about special numbers.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> log_of_normal(const Lanes<W>& x) {
+  if constexpr (W == 1) {
+    return Lanes<W>(detail::log_of_parts<double>(detail::part_normal(x.number)));
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::log_of_parts<Quad>(detail::part_normal(x.part[i]));
+    return r;
+  }
+}
 
 /// Natural logarithm within 6e-4 (absolute), for the start of an iteration; x normal and positive.
 template <int W>

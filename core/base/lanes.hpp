@@ -171,9 +171,13 @@ template <int W>
   if constexpr (W == 1) {
     return m.bit;
   } else {
-    QuadBits all = m.part[0];
-    for (int i = 1; i < Mask<W>::parts; ++i) all |= m.part[i];
-    return (all[0] | all[1] | all[2] | all[3]) != 0;
+    QuadBits some = m.part[0];
+    for (int i = 1; i < Mask<W>::parts; ++i) some |= m.part[i];
+#if defined(__AVX__)
+    return _mm256_movemask_pd(reinterpret_cast<__m256d>(some)) != 0;
+#else
+    return (some[0] | some[1] | some[2] | some[3]) != 0;
+#endif
   }
 }
 template <int W>

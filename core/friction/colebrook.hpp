@@ -69,11 +69,11 @@ template <int W>
   const Lanes<W> p0 = rough + start;
   const Lanes<W> x1 = detail::corrected<W, 4>(start, p0, base::quick_log(b * p0));
   const Lanes<W> p1 = rough + x1;
-  return detail::corrected<W, 5>(x1, p1, base::log(b * p1));
+  return detail::corrected<W, 5>(x1, p1, base::log_of_normal(b * p1));
 }
 
 /// Where one correction of an older root is not enough (|u0| above this), the full solve is done.
-inline constexpr double widest_correction = 0.0125;
+inline constexpr double widest_correction = 0.006;
 
 /// The root from an older one of the same pipe, for a march in time: one logarithm where the flow has changed little
 /// (a few per cent), the full solve in the other lanes. Anything may stand in `older`, also not a number.
@@ -86,9 +86,9 @@ template <int W>
                                                          const base::Mask<W>& idle) {
   const Lanes<W> safe = select((older > Lanes<W>(0.0)) & (older < Lanes<W>(1000.0)), older, Lanes<W>(9.0));
   const Lanes<W> p = rough + safe;
-  const Lanes<W> l = base::log(b * p);
+  const Lanes<W> l = base::log_of_normal(b * p);
   const auto near = abs(safe + two_over_ln_10 * l) <= widest_correction * (p + two_over_ln_10);
-  const Lanes<W> x = detail::corrected<W, 5>(safe, p, l);
+  const Lanes<W> x = detail::corrected<W, 4>(safe, p, l);
   if (all(near | idle)) return x;
   return select(near, x, colebrook_root<W>(rough, b));
 }

@@ -42,9 +42,21 @@ HEADBAND_INLINE Lanes<W> solve(const Lanes<W>& rough, const Lanes<W>& b, const O
   return x;
 }
 
-/// x and dx of one law; Colebrook-White and smooth through the shared solve.
+/// The turbulent side: x = 1/sqrt(f), f without scatter, d ln f/d ln Re.
+template <int W>
+struct Turbulent {
+  Lanes<W> x, factor, slope;
+};
+
+template <int W>
+HEADBAND_INLINE Turbulent<W> explicit_side(const Root<W>& r) {
+  const Lanes<W> inverse = 1.0 / r.x;
+  return {r.x, inverse * inverse, -2.0 * r.dx * inverse};
+}
+
+/// One law; Colebrook-White and smooth through the shared solve.
 template <int W, class Kept>
-HEADBAND_INLINE Root<W> root_of(const PreparedRule<W>& rule,
+HEADBAND_INLINE Turbulent<W> side_of(const PreparedRule<W>& rule,
                                 FrictionLaw law,
                                 const Lanes<W>& reynolds,
                                 const Lanes<W>& inverse,
@@ -54,41 +66,45 @@ HEADBAND_INLINE Root<W> root_of(const PreparedRule<W>& rule,
     case FrictionLaw::smooth: {
       const Lanes<W> rough = rule.rough_by_reynolds * reynolds;
       const Lanes<W> x = solve<W>(rough, rule.root_constant * inverse, kept);
-      return {x, two_over_ln_10 * x / (rough + x + two_over_ln_10)};
+      // f = 1/x^2 and the slope -2k/(rough + x + k) by one quotient
+      const Lanes<W> square = x * x, sum = rough + x + two_over_ln_10;
+      const Lanes<W> both = 1.0 / (square * sum);
+      return {x, sum * both, (-2.0 * two_over_ln_10) * (square * both)};
     }
     case FrictionLaw::haaland:
-      return haaland<W>(rule.rough_term, inverse);
+      return explicit_side<W>(haaland<W>(rule.rough_term, inverse));
     case FrictionLaw::swamee_jain:
-      return swamee_jain<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+      return explicit_side<W>(swamee_jain<W>(rule.relative_roughness * (1.0 / 3.7), inverse));
     case FrictionLaw::serghides:
-      return serghides<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+      return explicit_side<W>(serghides<W>(rule.relative_roughness * (1.0 / 3.7), inverse));
     case FrictionLaw::zigrang_sylvester:
-      return zigrang_sylvester<W>(rule.relative_roughness * (1.0 / 3.7), inverse);
+      return explicit_side<W>(zigrang_sylvester<W>(rule.relative_roughness * (1.0 / 3.7), inverse));
     case FrictionLaw::churchill:
-      return churchill_turbulent<W>(rule.relative_roughness, inverse);
+      return explicit_side<W>(churchill_turbulent<W>(rule.relative_roughness, inverse));
     case FrictionLaw::hazen_williams:
     case FrictionLaw::manning:
     case FrictionLaw::none:
       break;
   }
-  return {Lanes<W>(1.0), Lanes<W>(0.0)};
+  return {Lanes<W>(1.0), Lanes<W>(1.0), Lanes<W>(0.0)};
 }
 
 /// The turbulent root in lanes of several laws: each law present is evaluated for all lanes and picked where it holds.
 template <int W, class Kept>
-Root<W> mixed_root(const PreparedRule<W>& rule, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
-  Root<W> r{Lanes<W>(1.0), Lanes<W>(0.0)};
+Turbulent<W> mixed_side(const PreparedRule<W>& rule, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
+  Turbulent<W> r{Lanes<W>(1.0), Lanes<W>(1.0), Lanes<W>(0.0)};
   constexpr FrictionLaw one_by_one[] = {FrictionLaw::colebrook_white, FrictionLaw::haaland,
                                         FrictionLaw::swamee_jain,     FrictionLaw::serghides,
                                         FrictionLaw::zigrang_sylvester, FrictionLaw::churchill};
   for (const FrictionLaw law : one_by_one) {
     const unsigned family = law == FrictionLaw::colebrook_white ? root_laws : bit(law);
     if ((rule.laws_present & family) == 0) continue;
-    const Root<W> here = root_of<W>(rule, law, reynolds, inverse, kept);
+    const Turbulent<W> here = side_of<W>(rule, law, reynolds, inverse, kept);
     Mask<W> on{};
     for (int i = 0; i < W; ++i) on.set(i, (family & bit(rule.laws[static_cast<std::size_t>(i)])) != 0);
     r.x = select(on, here.x, r.x);
-    r.dx = select(on, here.dx, r.dx);
+    r.factor = select(on, here.factor, r.factor);
+    r.slope = select(on, here.slope, r.slope);
   }
   return r;
 }
@@ -97,10 +113,10 @@ Root<W> mixed_root(const PreparedRule<W>& rule, const Lanes<W>& reynolds, const 
 template <int W>
 HEADBAND_INLINE Factor<W> churchill_factor(const Lanes<W>& laminar,
                                            const Lanes<W>& inverse,
-                                           const Root<W>& root,
+                                           const Lanes<W>& x,
                                            const Lanes<W>& scatter,
                                            const Lanes<W>& turbulent_slope) {
-  const Lanes<W> a = power_16<W>(2.8284271247461900976 * root.x / sqrt(scatter));  // (8 x^2/scatter)^8
+  const Lanes<W> a = power_16<W>(2.8284271247461900976 * x / sqrt(scatter));  // (8 x^2/scatter)^8
   const Joined<W> j = churchill_joint<W>(laminar, inverse, a, turbulent_slope);
   return {j.factor, j.log_slope};
 }
@@ -146,16 +162,16 @@ HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& 
   const Mask<W> low = reynolds < Lanes<W>(least_turbulent_reynolds);
   const Lanes<W> held = select(low, Lanes<W>(least_turbulent_reynolds), reynolds);
   const Lanes<W> held_inverse = select(low, Lanes<W>(1.0 / least_turbulent_reynolds), inverse);
-  const Root<W> root = rule.uniform ? root_of<W>(rule, rule.law, held, held_inverse, kept)
-                                    : mixed_root<W, Kept>(rule, held, held_inverse, kept);
-  const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), -2.0 * root.dx / root.x);
+  const Turbulent<W> side = rule.uniform ? side_of<W>(rule, rule.law, held, held_inverse, kept)
+                                    : mixed_side<W, Kept>(rule, held, held_inverse, kept);
+  const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), side.slope);
 
-  if (joint_only) return churchill_factor<W>(laminar, inverse, root, rule.scatter, plain_slope);
-  Factor<W> turbulent{rule.scatter / (root.x * root.x), plain_slope};
+  if (joint_only) return churchill_factor<W>(laminar, inverse, side.x, rule.scatter, plain_slope);
+  Factor<W> turbulent{rule.scatter * side.factor, plain_slope};
   if ((rule.laws_present & bit(FrictionLaw::churchill)) != 0) {
     // the paper's formula is the turbulent side here, its own laminar term included
     const Factor<W> full =
-        churchill_factor<W>(64.0 * held_inverse, held_inverse, root, Lanes<W>(1.0), plain_slope);
+        churchill_factor<W>(64.0 * held_inverse, held_inverse, side.x, Lanes<W>(1.0), plain_slope);
     Mask<W> on{};
     for (int i = 0; i < W; ++i) on.set(i, rule.laws[static_cast<std::size_t>(i)] == FrictionLaw::churchill);
     turbulent.factor = select(on, rule.scatter * full.factor, turbulent.factor);
@@ -164,7 +180,7 @@ HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& 
   Factor<W> f = join<W>(rule, reynolds, laminar, turbulent);
   if (rule.uniform) return f;
   if (any(rule.churchill)) {
-    const Factor<W> joint = churchill_factor<W>(laminar, inverse, root, rule.scatter, plain_slope);
+    const Factor<W> joint = churchill_factor<W>(laminar, inverse, side.x, rule.scatter, plain_slope);
     f.factor = select(rule.churchill, joint.factor, f.factor);
     f.log_slope = select(rule.churchill, joint.log_slope, f.log_slope);
   }
