@@ -5,6 +5,7 @@
 #include "core/resultfile/reader.hpp"
 #include "core/resultfile/safe_file.hpp"
 #include "core/resultfile/schema.hpp"
+#include "core/resultfile/seal.hpp"
 #include "core/resultfile/writer.hpp"
 
 #include "core/base/error.hpp"
@@ -14,6 +15,7 @@
 #include <charconv>
 #include <new>
 #include <optional>
+#include <span>
 
 namespace headband::resultfile {
 
@@ -106,6 +108,7 @@ int major_of(const std::string& version) {
 
 /// True where the file at `path` is a result of headband.
 bool carries_mark(const std::string& path) {
+  if (check_seal(path) == Seal::broken) return false;
   try {
     H5::H5File file = open_file(path);
     H5::Group root = file.openGroup("/");
@@ -170,7 +173,8 @@ void write(const answers::Study& study, const std::string& path, const WriteOpti
   } catch (const std::bad_alloc&) {
     throw IoError(IoFailure::cannot_write, path + ": cannot be written (not enough memory)");
   }
-  write_whole(path, image, replace, [&](const std::string& temporary) {
+  const std::string seal = seal_line(image);
+  write_whole(path, {image, std::as_bytes(std::span(seal))}, replace, [&](const std::string& temporary) {
     if (!carries_mark(temporary)) {
       throw IoError(IoFailure::cannot_write, path + ": cannot be read back after writing");
     }
@@ -182,6 +186,9 @@ answers::Study read(const std::string& path) {
   struct stat info{};
   if (::stat(path.c_str(), &info) != 0) throw IoError(IoFailure::missing, path + ": is not there");
   if (!S_ISREG(info.st_mode)) throw IoError(IoFailure::damaged, path + ": is no plain file");
+  if (check_seal(path) == Seal::broken) {
+    throw IoError(IoFailure::damaged, path + ": is damaged (its checksum does not hold)");
+  }
   try {
     return read_study(path, static_cast<std::size_t>(info.st_size));
   } catch (const Damage& e) {

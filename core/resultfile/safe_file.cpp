@@ -81,20 +81,27 @@ void write_all(int file, std::span<const std::byte> bytes, const std::string& ta
   }
 }
 
-/// True where the file holds exactly `bytes`.
-bool holds(const std::string& path, std::span<const std::byte> bytes) {
-  Descriptor file(::open(path.c_str(), O_RDONLY | O_CLOEXEC));
-  if (file.number() < 0) return false;
+/// True where the next bytes of `file` are `bytes`.
+bool next_are(int file, std::span<const std::byte> bytes) {
   std::array<std::byte, 65536> piece{};
-  for (;;) {
-    const ssize_t got = ::read(file.number(), piece.data(), piece.size());
+  while (!bytes.empty()) {
+    const ssize_t got = ::read(file, piece.data(), std::min(piece.size(), bytes.size()));
     if (got < 0 && errno == EINTR) continue;
-    if (got < 0) return false;
-    if (got == 0) return bytes.empty();
-    const auto count = static_cast<std::size_t>(got);
-    if (count > bytes.size() || !std::equal(piece.begin(), piece.begin() + got, bytes.begin())) return false;
-    bytes = bytes.subspan(count);
+    if (got <= 0 || !std::equal(piece.begin(), piece.begin() + got, bytes.begin())) return false;
+    bytes = bytes.subspan(static_cast<std::size_t>(got));
   }
+  return true;
+}
+
+/// True where the file holds exactly `pieces`.
+bool holds(const std::string& path, const Pieces& pieces) {
+  const Descriptor file(::open(path.c_str(), O_RDONLY | O_CLOEXEC));
+  if (file.number() < 0) return false;
+  for (const auto& piece : pieces) {
+    if (!next_are(file.number(), piece)) return false;
+  }
+  std::byte more{};
+  return ::read(file.number(), &more, 1) == 0;
 }
 
 /// Renames; without `replace` in one step that refuses an existing target, where the file system can do that.
@@ -122,7 +129,7 @@ Standing standing(const std::string& path) {
 }
 
 void write_whole(const std::string& path,
-                 std::span<const std::byte> bytes,
+                 const Pieces& pieces,
                  bool replace,
                  const std::function<void(const std::string& temporary)>& check) {
   const std::string name = path + ".tmp-" + std::to_string(::getpid());
@@ -134,10 +141,10 @@ void write_whole(const std::string& path,
   if (number < 0) fail(IoFailure::cannot_create, path, "temporary file beside it", errno);
   Temporary temporary(name);
   Descriptor file(number);
-  write_all(file.number(), bytes, path);
+  for (const auto& piece : pieces) write_all(file.number(), piece, path);
   if (::fsync(file.number()) != 0) fail(IoFailure::cannot_write, path, "sync", errno);
   if (!file.close()) fail(IoFailure::cannot_write, path, "close", errno);
-  if (!holds(name, bytes)) throw IoError(IoFailure::cannot_write, path + ": the disk does not hold what was written");
+  if (!holds(name, pieces)) throw IoError(IoFailure::cannot_write, path + ": the disk does not hold what was written");
   check(name);
   if (put_in_place(name, path, replace) != 0) {
     fail(errno == EEXIST ? IoFailure::cannot_create : IoFailure::cannot_write, path, "rename", errno);
