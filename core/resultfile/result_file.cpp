@@ -106,13 +106,12 @@ int major_of(const std::string& version) {
   return major;
 }
 
-/// True where the file at `path` is a result of headband.
-bool carries_mark(const std::string& path) {
-  if (check_seal(path) == Seal::broken) return false;
+/// True where HDF5 opens the file at `path` and its root says that it is a result of headband.
+bool opens_as_result(const std::string& path) {
   try {
     H5::H5File file = open_file(path);
     H5::Group root = file.openGroup("/");
-    const bool ours = root_text(root, "schema") == schema_name;
+    const bool ours = root_text(root, "schema") == schema_name && state_of(root_text(root, "state"));
     root.close();
     file.close();
     return ours;
@@ -120,6 +119,9 @@ bool carries_mark(const std::string& path) {
     return false;
   }
 }
+
+/// The same for a file nobody has looked at yet: a broken seal is seen before HDF5 reads it.
+bool carries_mark(const std::string& path) { return check_seal(path) != Seal::broken && opens_as_result(path); }
 
 /// True: the target may be replaced; false: it must not be there when the file is put in place.
 bool may_replace(const std::string& path, const WriteOptions& options) {
@@ -175,7 +177,7 @@ void write(const answers::Study& study, const std::string& path, const WriteOpti
   }
   const std::string seal = seal_line(image);
   write_whole(path, {image, std::as_bytes(std::span(seal))}, replace, [&](const std::string& temporary) {
-    if (!carries_mark(temporary)) {
+    if (!opens_as_result(temporary)) {
       throw IoError(IoFailure::cannot_write, path + ": cannot be read back after writing");
     }
   });
