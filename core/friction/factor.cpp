@@ -192,6 +192,46 @@ HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& 
 
 }  // namespace
 
+namespace {
+
+/// What the law and the transition of lane `lane` mean for the prepared rule.
+template <int W>
+void prepare_lane(PreparedRule<W>& p, FrictionLaw law, const Transition& transition, int lane) {
+  p.sudden.set(lane, transition.kind == Transition::Kind::sudden);
+  p.churchill.set(lane, transition.kind == Transition::Kind::churchill);
+  p.lossless.set(lane, law == FrictionLaw::none);
+  p.no_factor.set(lane, law == FrictionLaw::hazen_williams || law == FrictionLaw::manning);
+  const bool step = transition.kind == Transition::Kind::sudden || !(transition.to > transition.from);
+  p.from.set(lane, transition.from);
+  p.to.set(lane, step ? transition.from : transition.to);
+  p.one_over_span.set(lane, step ? 0.0 : 1.0 / (transition.to - transition.from));
+  if (law == FrictionLaw::smooth) {
+    p.rough_by_reynolds.set(lane, 0.0);
+    p.root_constant.set(lane, prandtl_constant);
+  }
+}
+
+/// The same for every lane at once, from a rule of one lane.
+template <int W>
+void prepare_all(PreparedRule<W>& p, FrictionLaw law, const Transition& transition) {
+  PreparedRule<1> one;
+  one.rough_by_reynolds = Lanes<1>(1.0);
+  one.root_constant = Lanes<1>(colebrook_constant);
+  prepare_lane<1>(one, law, transition, 0);
+  p.from = Lanes<W>(one.from.number);
+  p.to = Lanes<W>(one.to.number);
+  p.one_over_span = Lanes<W>(one.one_over_span.number);
+  p.root_constant = Lanes<W>(one.root_constant.number);
+  if (law == FrictionLaw::smooth) p.rough_by_reynolds = Lanes<W>(0.0);
+  const auto everywhere = [](bool on) { return Lanes<W>(on ? 1.0 : 0.0) > Lanes<W>(0.5); };
+  p.sudden = everywhere(one.sudden[0]);
+  p.churchill = everywhere(one.churchill[0]);
+  p.lossless = everywhere(one.lossless[0]);
+  p.no_factor = everywhere(one.no_factor[0]);
+}
+
+}  // namespace
+
 template <int W>
 PreparedRule<W> prepare(const FactorRule<W>& rule) {
   PreparedRule<W> p;
@@ -202,26 +242,18 @@ PreparedRule<W> prepare(const FactorRule<W>& rule) {
   p.scatter = rule.scatter;
   p.laminar_scatter = rule.laminar_scatter;
   p.rough_by_reynolds = rule.relative_roughness * colebrook_rough;
-  p.root_constant = colebrook_constant;
-  p.from = p.to = p.one_over_span = Lanes<W>(0.0);
-  for (int i = 0; i < W; ++i) {
-    const auto lane = static_cast<std::size_t>(i);
-    const FrictionLaw law = rule.law[lane];
-    const Transition& transition = rule.transition[lane];
-    p.laws_present |= bit(law);
-    p.uniform = p.uniform && law == p.law && transition.kind == p.kind;
-    p.sudden.set(i, transition.kind == Transition::Kind::sudden);
-    p.churchill.set(i, transition.kind == Transition::Kind::churchill);
-    p.lossless.set(i, law == FrictionLaw::none);
-    p.no_factor.set(i, law == FrictionLaw::hazen_williams || law == FrictionLaw::manning);
-    const bool step = transition.kind == Transition::Kind::sudden || !(transition.to > transition.from);
-    p.from.set(i, transition.from);
-    p.to.set(i, step ? transition.from : transition.to);
-    p.one_over_span.set(i, step ? 0.0 : 1.0 / (transition.to - transition.from));
-    if (law == FrictionLaw::smooth) {
-      p.rough_by_reynolds.set(i, 0.0);
-      p.root_constant.set(i, prandtl_constant);
-    }
+  p.root_constant = Lanes<W>(colebrook_constant);
+  bool alike = true;
+  for (std::size_t lane = 0; lane < static_cast<std::size_t>(W); ++lane) {
+    p.laws_present |= bit(rule.law[lane]);
+    p.uniform = p.uniform && rule.law[lane] == p.law && rule.transition[lane].kind == p.kind;
+    alike = alike && rule.law[lane] == p.law && rule.transition[lane] == rule.transition[0];
+  }
+  if (alike) {
+    prepare_all<W>(p, p.law, rule.transition[0]);
+  } else {
+    for (int i = 0; i < W; ++i)
+      prepare_lane<W>(p, rule.law[static_cast<std::size_t>(i)], rule.transition[static_cast<std::size_t>(i)], i);
   }
   p.root_kept = (p.laws_present & root_laws) != 0;
   p.rough_term = Lanes<W>(0.0);

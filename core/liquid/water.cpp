@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: MIT
 #include "core/liquid/water.hpp"
 
+#include "core/liquid/draws.hpp"
+
 #include <array>
 #include <cmath>
 
@@ -18,81 +20,12 @@ double integer_power(double x, int n) {
   return result;
 }
 
-/// One term: coefficient times a power.
-struct Term {
-  double c;
-  int power;
-};
-
-/// Value, first and second derivative of a sum of powers, by temperature.
-struct Jet {
-  double value = 0.0, first = 0.0, second = 0.0;
-};
-
-/// Adds sum of c x^power with dx/dT = x * rate (rate itself +x/10 or -x/10: x = 10/(593-T) or 10/(T-232)).
-template <std::size_t N>
-void add(Jet& jet, const std::array<Term, N>& terms, double x, double sign) {
-  for (const Term& t : terms) {
-    const double n = t.power, p = t.c * integer_power(x, t.power);
-    jet.value += p;
-    jet.first += sign * n * p * x / 10.0;
-    jet.second += n * (n + 1.0) * p * x * x / 100.0;
-  }
-}
-
 }  // namespace
 
-// IAPWS SR6-08(2011), Supplementary Release on Properties of Liquid Water at 0.1 MPa, tables 1 to 3
-// (coefficients from memory, proved by its check table 8).
 WaterAtOneBar water_at_one_bar(double temperature) {
-  constexpr double gas_constant = 461.51805, unit_temperature = 10.0, unit_pressure = 0.1e6;
-  constexpr std::array<Term, 3> a_gibbs{{{-1.661470539e5, 4}, {2.708781640e6, 5}, {-1.557191544e8, 7}}};
-  constexpr std::array<Term, 4> b_gibbs{
-      {{-8.237426256e-1, 2}, {1.908956353, 3}, {-2.017597384, 4}, {8.546361348e-1, 5}}};
-  constexpr double c_log = -8.983025854;
-  constexpr double a_constant = 1.93763157e-2;
-  constexpr std::array<Term, 5> a_volume{
-      {{6.74458446e3, 4}, {-2.22521604e5, 5}, {1.00231247e8, 7}, {-1.63552118e9, 8}, {8.32299658e9, 9}}};
-  constexpr std::array<Term, 6> b_volume{{{5.78545292e-3, 1},
-                                          {-1.53195665e-2, 2},
-                                          {3.11337859e-2, 3},
-                                          {-4.23546241e-2, 4},
-                                          {3.38713507e-2, 5},
-                                          {-1.19946761e-2, 6}}};
-  constexpr std::array<Term, 5> a_slope{
-      {{-7.5245878e-6, 1}, {-1.3767418e-2, 3}, {1.0627293e1, 5}, {-2.0457795e2, 6}, {1.2037414e3, 7}}};
-  constexpr std::array<Term, 7> b_slope{{{-3.1091470e-6, 1},
-                                         {2.8964919e-5, 3},
-                                         {-1.3112763e-4, 4},
-                                         {3.0410453e-4, 5},
-                                         {-3.9034594e-4, 6},
-                                         {2.3403117e-4, 7},
-                                         {-4.8510101e-5, 9}}};
-  constexpr std::array<Term, 4> viscosity_terms{{{280.68, -19}, {511.45, -77}, {61.131, -196}, {0.45903, -400}}};
-
-  const double alpha = unit_temperature / (593.0 - temperature);
-  const double beta = unit_temperature / (temperature - 232.0);
-  Jet gibbs, volume, slope;
-  add(gibbs, a_gibbs, alpha, 1.0);
-  add(gibbs, b_gibbs, beta, -1.0);
-  add(volume, a_volume, alpha, 1.0);
-  add(volume, b_volume, beta, -1.0);
-  add(slope, a_slope, alpha, 1.0);
-  add(slope, b_slope, beta, -1.0);
-
-  WaterAtOneBar w{};
-  w.specific_volume = gas_constant * unit_temperature / unit_pressure * (a_constant + volume.value);
-  w.volume_by_temperature = gas_constant * unit_temperature / unit_pressure * volume.first;
-  w.volume_by_pressure = gas_constant * unit_temperature / (unit_pressure * unit_pressure) * slope.value;
-  const double tau = temperature / unit_temperature;
-  w.heat_capacity = -gas_constant * (c_log + tau * unit_temperature * unit_temperature * gibbs.second);
-  const double denominator =
-      -w.volume_by_pressure - temperature * w.volume_by_temperature * w.volume_by_temperature / w.heat_capacity;
-  w.speed_of_sound = std::sqrt(w.specific_volume * w.specific_volume / denominator);
-  double sum = 0.0;
-  for (const Term& t : viscosity_terms) sum += t.c * std::pow(temperature / 300.0, t.power / 10.0);
-  w.dynamic_viscosity = 1e-6 * sum;
-  return w;
+  const auto w = water_at_one_bar<1>(base::Lanes<1>(temperature));
+  return {w.specific_volume.number, w.volume_by_pressure.number, w.volume_by_temperature.number,
+          w.heat_capacity.number,   w.speed_of_sound.number,     w.dynamic_viscosity.number};
 }
 
 namespace {
@@ -162,18 +95,7 @@ WaterUnderPressure water_under_pressure(double temperature, double pressure) {
   return w;
 }
 
-double vapour_pressure(double temperature) {
-  // IAPWS R7-97(2012), table 34, eq. 30 (from memory, proved by its check table 35)
-  constexpr double n1 = 0.11670521452767e4, n2 = -0.72421316703206e6, n3 = -0.17073846940092e2,
-                   n4 = 0.12020824702470e5, n5 = -0.32325550322333e7, n6 = 0.14915108613530e2,
-                   n7 = -0.48232657361591e4, n8 = 0.40511340542057e6, n9 = -0.23855557567849, n10 = 0.65017534844798e3;
-  const double theta = temperature + n9 / (temperature - n10);
-  const double a = (theta + n1) * theta + n2;
-  const double b = (n3 * theta + n4) * theta + n5;
-  const double c = (n6 * theta + n7) * theta + n8;
-  const double root = 2.0 * c / (-b + std::sqrt(b * b - 4.0 * a * c));
-  return 1e6 * root * root * root * root;
-}
+double vapour_pressure(double temperature) { return vapour_pressure<1>(base::Lanes<1>(temperature)).number; }
 
 Properties water(double temperature, double pressure) {
   constexpr double one_bar_formula_to = 0.15e6;
