@@ -24,7 +24,8 @@ std::string bar_cell(double value, double inner, double largest) {
       "<svg class=\"bar\" viewBox=\"0 0 100 10\" preserveAspectRatio=\"none\" aria-hidden=\"true\">"
       "<rect class=\"bar-outer\" width=\"{:.2f}\" height=\"10\"/>",
       length(value));
-  if (std::isfinite(inner) && inner > 0.0) out += fmt::format("<rect class=\"bar-inner\" width=\"{:.2f}\" height=\"10\"/>", length(inner));
+  if (std::isfinite(inner) && inner > 0.0)
+    out += fmt::format("<rect class=\"bar-inner\" width=\"{:.2f}\" height=\"10\"/>", length(inner));
   return out + "</svg>";
 }
 
@@ -35,19 +36,37 @@ std::string bars_svg(const std::string& id, const std::string& title, const std:
     if (std::isfinite(bar.value)) largest = std::max(largest, bar.value);
   const double height = 16.0 + row * static_cast<double>(bars.size());
   std::string out = fmt::format(
-      "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"plot\" width=\"720\" height=\"{0}\" viewBox=\"0 0 720 {0}\" role=\"img\" "
-      "aria-labelledby=\"title-{1}\" font-family=\"system-ui, 'Segoe UI', 'DejaVu Sans', sans-serif\" font-size=\"12\">\n"
+      "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"plot\" width=\"720\" height=\"{0}\" viewBox=\"0 0 720 {0}\" "
+      "role=\"img\" "
+      "aria-labelledby=\"title-{1}\" font-family=\"system-ui, 'Segoe UI', 'DejaVu Sans', sans-serif\" "
+      "font-size=\"12\">\n"
       "<title id=\"title-{1}\">{2}</title>\n",
-      height, slug(id), escaped(title));
+      height,
+      slug(id),
+      escaped(title));
   double y = 8.0;
   for (const Bar& bar : bars) {
-    const auto length = [&](double v) { return largest > 0.0 && std::isfinite(v) ? bar_width * std::clamp(v / largest, 0.0, 1.0) : 0.0; };
-    out += fmt::format("<text x=\"{}\" y=\"{}\" text-anchor=\"end\" fill=\"#22303c\">{}</text>\n", name_width, y + 15.0, escaped(bar.name));
-    out += fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{:.2f}\" height=\"14\" fill=\"#0072b2\" fill-opacity=\"0.45\"/>\n", name_width + 10.0,
-                       y + 4.0, length(bar.value));
+    const auto length = [&](double v) {
+      return largest > 0.0 && std::isfinite(v) ? bar_width * std::clamp(v / largest, 0.0, 1.0) : 0.0;
+    };
+    out += fmt::format("<text x=\"{}\" y=\"{}\" text-anchor=\"end\" fill=\"#22303c\">{}</text>\n",
+                       name_width,
+                       y + 15.0,
+                       escaped(bar.name));
+    out +=
+        fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{:.2f}\" height=\"14\" fill=\"#0072b2\" fill-opacity=\"0.45\"/>\n",
+                    name_width + 10.0,
+                    y + 4.0,
+                    length(bar.value));
     if (bar.inner > 0.0)
-      out += fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{:.2f}\" height=\"14\" fill=\"#0072b2\"/>\n", name_width + 10.0, y + 4.0, length(bar.inner));
-    out += fmt::format("<text x=\"{:.2f}\" y=\"{}\" fill=\"#22303c\">{}</text>\n", name_width + 18.0 + length(bar.value), y + 15.0, escaped(bar.text));
+      out += fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{:.2f}\" height=\"14\" fill=\"#0072b2\"/>\n",
+                         name_width + 10.0,
+                         y + 4.0,
+                         length(bar.inner));
+    out += fmt::format("<text x=\"{:.2f}\" y=\"{}\" fill=\"#22303c\">{}</text>\n",
+                       name_width + 18.0 + length(bar.value),
+                       y + 15.0,
+                       escaped(bar.text));
     y += row;
   }
   return out + "</svg>\n";
@@ -80,14 +99,19 @@ std::string strip(const answers::LimitAnswer& limit,
   const bool over = fails_over(limit);
   std::string out = fmt::format(
       "<svg class=\"strip\" viewBox=\"0 0 150 24\" width=\"150\" height=\"24\" aria-hidden=\"true\">"
-      "<pattern id=\"strip-{0}\" width=\"6\" height=\"6\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\">"
+      "<pattern id=\"strip-{0}\" width=\"6\" height=\"6\" patternUnits=\"userSpaceOnUse\" "
+      "patternTransform=\"rotate(45)\">"
       "<path class=\"hatch\" d=\"M0 0V6\"/></pattern>"
       "<rect x=\"{1:.1f}\" y=\"3\" width=\"{2:.1f}\" height=\"18\" fill=\"url(#strip-{0})\"/>"
       "<path class=\"base\" d=\"M0 12H150\"/>",
-      id, over ? at : 0.0, over ? 150.0 - at : at);
-  if (high > low) out += fmt::format("<path class=\"span\" d=\"M{:.1f} 12H{:.1f}\"/>", x(low), std::max(x(high), x(low) + 1.0));
+      id,
+      over ? at : 0.0,
+      over ? 150.0 - at : at);
+  if (high > low)
+    out += fmt::format("<path class=\"span\" d=\"M{:.1f} 12H{:.1f}\"/>", x(low), std::max(x(high), x(low) + 1.0));
   if (std::isfinite(median)) out += fmt::format("<path class=\"middle\" d=\"M{:.1f} 7v10\"/>", x(median));
-  if (std::isfinite(limit.value)) out += fmt::format("<circle class=\"value\" cx=\"{:.1f}\" cy=\"12\" r=\"4\"/>", x(limit.value));
+  if (std::isfinite(limit.value))
+    out += fmt::format("<circle class=\"value\" cx=\"{:.1f}\" cy=\"12\" r=\"4\"/>", x(limit.value));
   return out + fmt::format("<path class=\"limit\" d=\"M{:.1f} 1v22\"/></svg>", at);
 }
 

@@ -13,9 +13,9 @@ namespace headband::report {
 
 struct Bar {
   std::string name;
-  double value = 0.0;       ///< decides the length
-  double inner = 0.0;       ///< darker part, 0 = none
-  std::string text;         ///< number as shown, plain text
+  double value = 0.0;  ///< decides the length
+  double inner = 0.0;  ///< darker part, 0 = none
+  std::string text;    ///< number as shown, plain text
 };
 
 /// A bar in a table cell, decoration only: the number stands beside it.
@@ -24,7 +24,8 @@ struct Bar {
 /// Bars as a picture of its own.
 [[nodiscard]] std::string bars_svg(const std::string& id, const std::string& title, const std::vector<Bar>& bars);
 
-/// Value (dot), band (thick line, median as a gap), limit (upright line) and the side that fails (hatched), on one strip.
+/// Value (dot), band (thick line, median as a gap), limit (upright line) and the side that fails (hatched), on one
+/// strip.
 /// @param answer the sampled answer the limit judges, or null
 /// @param grid_bound of the value when there is no band; NaN = none
 [[nodiscard]] std::string strip(const answers::LimitAnswer& limit,

@@ -11,6 +11,7 @@
 #include <cmath>
 #include <map>
 #include <set>
+#include <tuple>
 
 namespace headband::report {
 namespace {
@@ -151,28 +152,33 @@ Plot profile(const Study& study, std::size_t pipe) {
   if (study.bands && study.bands->profile_probability.size() >= 2) {
     const std::string low = percent(study.bands->profile_probability.front());
     const std::string high = percent(study.bands->profile_probability.back());
-    for (const auto& [name, ink] : {std::pair{std::string("highest"), Ink::vermilion}, std::pair{std::string("lowest"), Ink::blue}}) {
+    for (const auto& [name, ink] :
+         {std::pair{std::string("highest"), Ink::vermilion}, std::pair{std::string("lowest"), Ink::blue}}) {
       if (!index.contains(name + " low") || !index.contains(name + " high")) continue;
       plot.fills.push_back({"band of the " + name, index[name + " low"], index[name + " high"], ink});
       plot.curves[index[name + " low"]].name = name + ", " + low;
       plot.curves[index[name + " high"]].name = name + ", " + high;
     }
-    plot.message = fmt::format("Shaded: {} to {} of the draws at each section. Look where a band touches a line.", low, high);
+    plot.message =
+        fmt::format("Shaded: {} to {} of the draws at each section. Look where a band touches a line.", low, high);
   } else if (study.transient) {
-    plot.message = "Highest and lowest head at each computed section, each at its own time. Look where they touch a line.";
+    plot.message =
+        "Highest and lowest head at each computed section, each at its own time. Look where they touch a line.";
   } else {
     plot.message = "Ground and steady head.";
   }
   for (const auto& [name, extreme, ink] : {std::tuple{"highest pressure", &study.highest, Ink::vermilion},
                                            std::tuple{"lowest pressure", &study.lowest, Ink::blue}})
-    if (*extreme && (*extreme)->pipe == p.name) plot.points.push_back({name, (*extreme)->chainage, (*extreme)->head, ink});
+    if (*extreme && (*extreme)->pipe == p.name)
+      plot.points.push_back({name, (*extreme)->chainage, (*extreme)->head, ink});
   set_ranges(plot);
   return plot;
 }
 
 std::string history_message(std::size_t rows) {
-  return rows <= rows_carried_whole ? "One run at the written values; every computed step."
-                                    : "One run at the written values; thinned so that every peak stays. The result file holds every step.";
+  return rows <= rows_carried_whole
+             ? "One run at the written values; every computed step."
+             : "One run at the written values; thinned so that every peak stays. The result file holds every step.";
 }
 
 /// Six curves a plot, no two alike in colour and dash.
@@ -182,7 +188,10 @@ void dress(Curve& curve, std::size_t i) {
 }
 
 /// One column of a row-major table.
-std::vector<double> column_of(const std::vector<double>& table, std::size_t rows, std::size_t columns, std::size_t column) {
+std::vector<double> column_of(const std::vector<double>& table,
+                              std::size_t rows,
+                              std::size_t columns,
+                              std::size_t column) {
   std::vector<double> values;
   values.reserve(rows);
   for (std::size_t row = 0; row < rows; ++row) {
@@ -215,7 +224,11 @@ void add_limit_levels(const Study& study, Plot& plot) {
     if (limit.kind != "highest_pressure" && limit.kind != "lowest_pressure") continue;
     const auto at_probe = [&](const Curve& curve) { return limit.where.empty() || curve.name == limit.where; };
     if (std::any_of(plot.curves.begin(), plot.curves.end(), at_probe))
-      plot.levels.push_back({limit.name, limit.limit, false, Ink::black, plot.levels.size() % 2 == 0 ? Dash::long_dashed : Dash::dash_dot});
+      plot.levels.push_back({limit.name,
+                             limit.limit,
+                             false,
+                             Ink::black,
+                             plot.levels.size() % 2 == 0 ? Dash::long_dashed : Dash::dash_dot});
   }
 }
 
@@ -351,9 +364,11 @@ Plot density(const Study& study, std::size_t index) {
     const bool middle = std::abs(q.probability - 0.5) < 1e-9;
     const bool ends = std::abs(q.probability - end) < 1e-9 || std::abs(q.probability - (1.0 - end)) < 1e-9;
     if (middle || ends)
-      plot.levels.push_back({middle ? "median" : percent(q.probability), q.value, true, Ink::blue, middle ? Dash::solid : Dash::dashed});
+      plot.levels.push_back(
+          {middle ? "median" : percent(q.probability), q.value, true, Ink::blue, middle ? Dash::solid : Dash::dashed});
   }
-  if (std::isfinite(answer.central)) plot.levels.push_back({"one run", answer.central, true, Ink::green, Dash::dash_dot});
+  if (std::isfinite(answer.central))
+    plot.levels.push_back({"one run", answer.central, true, Ink::green, Dash::dash_dot});
   plot.x.low = low;
   plot.x.high = low + reach;
   if (const auto* limit = limit_of(study, answer); limit != nullptr && std::isfinite(limit->limit)) {
@@ -363,16 +378,76 @@ Plot density(const Study& study, std::size_t index) {
       plot.x.low = std::min(plot.x.low, limit->limit - 0.05 * reach);
       plot.x.high = std::max(plot.x.high, limit->limit + 0.05 * reach);
       plot.levels.push_back({"limit", limit->limit, true, Ink::vermilion, Dash::long_dashed});
-      plot.stretches.push_back({over_fails ? "over the limit" : "under the limit", over_fails ? limit->limit : plot.x.low,
+      plot.stretches.push_back({over_fails ? "over the limit" : "under the limit",
+                                over_fails ? limit->limit : plot.x.low,
                                 over_fails ? plot.x.high : limit->limit});
     }
   }
-  plot.message = fmt::format("{} finished draws{}.{}", draws.size(),
+  plot.message = fmt::format("{} finished draws{}.{}",
+                             draws.size(),
                              bands.stride > 1 ? fmt::format(" (every {}th is drawn)", bands.stride) : "",
                              answer.modes > 1 ? fmt::format(" {} humps: read them apart.", answer.modes) : "");
   plot.height = 270;
   set_ranges(plot);
   return plot;
+}
+
+std::vector<Plot> scatters(const Study& study, std::size_t index, std::size_t most) {
+  std::vector<Plot> plots;
+  if (!study.bands || index >= study.bands->answers.size()) return plots;
+  const auto& bands = *study.bands;
+  const auto& answer = bands.answers[index];
+  constexpr std::size_t dots = 2'000;
+  const std::size_t inputs = bands.input_name.size(), outputs = bands.answers.size();
+  const std::size_t rows =
+      inputs == 0 ? 0 : std::min(bands.input_value.size() / inputs, bands.output_value.size() / outputs);
+  std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;
+  std::sort(ranked.begin(), ranked.end(), [](const auto& a, const auto& b) {
+    return std::tie(b.total, a.input) < std::tie(a.total, b.input);
+  });
+  for (const auto& unknown : ranked) {
+    const auto found = std::find(bands.input_name.begin(), bands.input_name.end(), unknown.input);
+    if (found == bands.input_name.end() || plots.size() == most) continue;
+    const auto column = static_cast<std::size_t>(found - bands.input_name.begin());
+    std::vector<std::pair<double, double>> pairs;
+    for (std::size_t row = 0; row < rows && pairs.size() < dots; ++row) {
+      const std::pair pair{bands.input_value[row * inputs + column], bands.output_value[row * outputs + index]};
+      if (std::isfinite(pair.first) && std::isfinite(pair.second)) pairs.push_back(pair);
+    }
+    if (pairs.size() < 20) continue;
+    std::sort(pairs.begin(), pairs.end());
+    Plot plot;
+    plot.id = "scatter " + answer.name + " by " + unknown.input;
+    plot.title = answer.name + " against " + unknown.input;
+    plot.message = fmt::format("The first {} finished draws; share of the variance alone {}, with others {}.",
+                               pairs.size(),
+                               figures(unknown.first, 2),
+                               figures(unknown.total, 2));
+    const std::string unit = column < bands.input_units.size() ? bands.input_units[column] : "";
+    Shown shown = shown_of_unit(unit, unknown.input);
+    if (shown == Shown::head && std::abs(pairs.back().first) < 1.0) shown = Shown::diameter;
+    const bool bare = shown == Shown::number && !unit.empty() && unit != "1";
+    plot.x = {bare ? unknown.input + ", " + unit : unknown.input, shown};
+    std::string words = answer.kind.empty() ? answer.name : answer.kind;
+    std::replace(words.begin(), words.end(), '_', ' ');
+    plot.y = {words, shown_of_unit(answer.unit, answer.kind)};
+    Curve curve{"draws", {}, Ink::blue, Dash::solid, Shape::dots, 1.6};
+    for (const auto& [x, y] : pairs) {
+      plot.abscissa.push_back(x);
+      curve.y.push_back(y);
+    }
+    plot.curves.push_back(std::move(curve));
+    if (const auto* limit = limit_of(study, answer); limit != nullptr && std::isfinite(limit->limit)) {
+      const auto [low, high] = std::minmax_element(plot.curves[0].y.begin(), plot.curves[0].y.end());
+      const double reach = *high - *low;
+      if (limit->limit > *low - reach && limit->limit < *high + reach)
+        plot.levels.push_back({"limit", limit->limit, false, Ink::vermilion, Dash::long_dashed});
+    }
+    plot.height = 270;
+    set_ranges(plot);
+    plots.push_back(std::move(plot));
+  }
+  return plots;
 }
 
 }  // namespace headband::report

@@ -24,6 +24,9 @@ namespace headband::report {
 /// An empty abscissa when fewer than 20 draws finished.
 [[nodiscard]] Plot density(const answers::Study& study, std::size_t index);
 
+/// Answer `index` against the unknowns that move it most by its sensitivity, one plot an unknown, `most` at most.
+[[nodiscard]] std::vector<Plot> scatters(const answers::Study& study, std::size_t index, std::size_t most = 3);
+
 /// The limit judged on this answer, if any: same name, else same kind and unit and name of the place.
 [[nodiscard]] const answers::LimitAnswer* limit_of(const answers::Study& study, const answers::BandAnswer& answer);
 

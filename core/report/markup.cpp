@@ -13,11 +13,21 @@ std::string escaped(std::string_view text) {
   out.reserve(text.size());
   for (const char c : text) {
     switch (c) {
-      case '&': out += "&amp;"; break;
-      case '<': out += "&lt;"; break;
-      case '>': out += "&gt;"; break;
-      case '"': out += "&quot;"; break;
-      case '\'': out += "&#39;"; break;
+      case '&':
+        out += "&amp;";
+        break;
+      case '<':
+        out += "&lt;";
+        break;
+      case '>':
+        out += "&gt;";
+        break;
+      case '"':
+        out += "&quot;";
+        break;
+      case '\'':
+        out += "&#39;";
+        break;
       default:
         // Control characters are not allowed in a page; a visible box takes their place.
         if (static_cast<unsigned char>(c) < 0x20 && c != '\n' && c != '\t' && c != '\r')
@@ -45,6 +55,11 @@ std::string slug(std::string_view text) {
   return out.empty() ? "_" : out;
 }
 
+std::string paragraph(const std::string& inside, std::string_view kind) {
+  if (inside.empty()) return {};
+  return kind.empty() ? fmt::format("<p>{}</p>\n", inside) : fmt::format("<p class=\"{}\">{}</p>\n", kind, inside);
+}
+
 std::string both(const std::string& si, const std::string& us) {
   if (si == us) return si;
   return fmt::format(R"(<span class="si">{}</span><span class="us">{}</span>)", si, us);
@@ -63,7 +78,10 @@ std::string both_with_bound(double si, double bound, Shown shown, Shown bound_sh
     // A bound far below the last useful figure is told as such instead of adding digits to the value.
     const double least = 5e-4 * std::abs(in(si));
     if (width < least)
-      return fmt::format("{} ± under {}{}", figures(in(si)), figures(std::pow(10.0, std::floor(std::log10(least)) + 1), 1), behind_number(in.unit));
+      return fmt::format("{} ± under {}{}",
+                         figures(in(si)),
+                         figures(std::pow(10.0, std::floor(std::log10(least)) + 1), 1),
+                         behind_number(in.unit));
     const int places = places_for(width);
     return fmt::format("{} ± {}{}", decimals(in(si), places), decimals(width, places), behind_number(in.unit));
   };
@@ -72,22 +90,24 @@ std::string both_with_bound(double si, double bound, Shown shown, Shown bound_sh
 
 std::string html(const Table& table) {
   if (table.rows.empty()) return {};
+  std::vector<bool> idle(table.columns.size(), true);
+  for (const auto& row : table.rows)
+    for (std::size_t i = 0; i < row.size() && i < idle.size(); ++i)
+      idle[i] = idle[i] && i > 0 && (row[i].empty() || row[i] == "–");
   std::string out = fmt::format(
-      "<div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"Table: {0}\">\n<table>\n<caption>{0}</caption>\n<thead><tr>",
+      "<div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"Table: {0}\">\n"
+      "<table>\n<caption>{0}</caption>\n<thead><tr>",
       escaped(table.caption));
-  const auto shape = [&](std::size_t column) {
-    return column < table.columns.size() && table.columns[column].number ? " class=\"number\"" : "";
-  };
+  const auto shape = [&](std::size_t column) { return table.columns[column].number ? " class=\"number\"" : ""; };
   for (std::size_t i = 0; i < table.columns.size(); ++i)
-    out += fmt::format("<th scope=\"col\"{}>{}</th>", shape(i), table.columns[i].head);
+    if (!idle[i]) out += fmt::format("<th scope=\"col\"{}>{}</th>", shape(i), table.columns[i].head);
   out += "</tr></thead>\n<tbody>\n";
   for (const auto& row : table.rows) {
     out += "<tr>";
-    for (std::size_t i = 0; i < row.size(); ++i) {
-      if (i == 0)
-        out += fmt::format("<th scope=\"row\"{}>{}</th>", shape(i), row[i]);
-      else
-        out += fmt::format("<td{}>{}</td>", shape(i), row[i]);
+    for (std::size_t i = 0; i < row.size() && i < table.columns.size(); ++i) {
+      if (idle[i]) continue;
+      out += i == 0 ? fmt::format("<th scope=\"row\"{}>{}</th>", shape(i), row[i])
+                    : fmt::format("<td{}>{}</td>", shape(i), row[i]);
     }
     out += "</tr>\n";
   }
@@ -96,13 +116,17 @@ std::string html(const Table& table) {
 
 std::string folded(const Table& table, std::size_t most) {
   if (table.rows.size() <= most) return html(table);
-  return fmt::format("<details><summary>{} ({} rows)</summary>\n{}</details>\n", escaped(table.caption), table.rows.size(), html(table));
+  return fmt::format("<details><summary>{} ({} rows)</summary>\n{}</details>\n",
+                     escaped(table.caption),
+                     table.rows.size(),
+                     html(table));
 }
 
 std::string html(const std::vector<std::pair<std::string, std::string>>& terms) {
   if (terms.empty()) return {};
   std::string out = "<dl class=\"terms\">\n";
-  for (const auto& [term, value] : terms) out += fmt::format("<div><dt>{}</dt><dd>{}</dd></div>\n", escaped(term), value);
+  for (const auto& [term, value] : terms)
+    out += fmt::format("<div><dt>{}</dt><dd>{}</dd></div>\n", escaped(term), value);
   return out + "</dl>\n";
 }
 

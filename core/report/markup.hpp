@@ -15,12 +15,16 @@ namespace headband::report {
 /// `text` safe inside elements and quoted attributes.
 [[nodiscard]] std::string escaped(std::string_view text);
 
-/// A name usable as an id and as part of a file name: letters and digits stay, a space becomes a dash, the rest "_" and its
-/// code. Different texts give different names.
+/// A name usable as an id and as part of a file name: letters and digits stay, a space becomes a dash, the rest "_" and
+/// its code. Different texts give different names.
 [[nodiscard]] std::string slug(std::string_view text);
 
-/// Both families in one place, the style sheet shows the one that is chosen; once only when they are equal. HTML in, HTML out.
+/// Both families in one place, the style sheet shows the one that is chosen; once only when they are equal. HTML in,
+/// HTML out.
 [[nodiscard]] std::string both(const std::string& si, const std::string& us);
+
+/// A paragraph of the given class; empty when there is nothing to say. HTML in, HTML out.
+[[nodiscard]] std::string paragraph(const std::string& inside, std::string_view kind = {});
 
 /// An SI number in both families.
 [[nodiscard]] std::string both(double si, Shown shown, int significant = 4);
@@ -33,7 +37,8 @@ struct Column {
   bool number = false;
 };
 
-/// A table with caption; the first cell of each row is the row's heading. Cells are HTML.
+/// A table with caption; the first cell of each row is the row's heading. Cells are HTML. A column with nothing in it
+/// but dashes is left out.
 struct Table {
   std::string caption;  ///< plain text
   std::vector<Column> columns;

@@ -30,41 +30,58 @@ Measure measure(Shown shown, Family family, double largest) {
   const bool us = family == Family::us;
   const double most = std::abs(largest);
   switch (shown) {
-    case Shown::number: return {};
-    case Shown::share: return {"%", 100.0, 0.0};
-    case Shown::pressure: return us ? in("psi", "psi g") : in("bar", "bar g");
-    case Shown::absolute_pressure: return us ? in("psi", "psi abs") : in("bar", "bar abs");
-    case Shown::pressure_difference: return us ? in("psi", "psi") : in("bar", "bar");
+    case Shown::number:
+      return {};
+    case Shown::share:
+      return {"%", 100.0, 0.0};
+    case Shown::pressure:
+      return us ? in("psi", "psi g") : in("bar", "bar g");
+    case Shown::absolute_pressure:
+      return us ? in("psi", "psi abs") : in("bar", "bar abs");
+    case Shown::pressure_difference:
+      return us ? in("psi", "psi") : in("bar", "bar");
     case Shown::head:
-    case Shown::elevation: return us ? in("ft", "ft") : in("m", "m");
+    case Shown::elevation:
+      return us ? in("ft", "ft") : in("m", "m");
     case Shown::chainage:
       if (us) return most >= 16e3 ? in("mile", "miles") : in("ft", "ft");
       return most >= 20e3 ? in("km", "km") : in("m", "m");
     case Shown::diameter:
-    case Shown::roughness: return us ? in("in", "in") : in("mm", "mm");
+    case Shown::roughness:
+      return us ? in("in", "in") : in("mm", "mm");
     case Shown::flow:
       if (us) return in("gpm", "gpm");
       return most >= 1.0 ? in("m3/s", "m³/s") : in("L/s", "L/s");
-    case Shown::velocity: return us ? in("ft/s", "ft/s") : in("m/s", "m/s");
-    case Shown::time: return in("s", "s");
+    case Shown::velocity:
+      return us ? in("ft/s", "ft/s") : in("m/s", "m/s");
+    case Shown::time:
+      return in("s", "s");
     case Shown::volume:
       if (us) return in("US gal", "gal");
       return most < 0.1 ? in("L", "L") : in("m3", "m³");
-    case Shown::density: return us ? in("lb/ft3", "lb/ft³") : in("kg/m3", "kg/m³");
-    case Shown::kinematic_viscosity: return in("cSt", "cSt");
-    case Shown::dynamic_viscosity: return us ? in("cP", "cP") : in("mPa s", "mPa s");
-    case Shown::modulus: return us ? in("ksi", "ksi") : in("GPa", "GPa");
-    case Shown::temperature: return us ? in("degF", "°F") : in("degC", "°C");
-    case Shown::speed: return in("rpm", "rpm");
+    case Shown::density:
+      return us ? in("lb/ft3", "lb/ft³") : in("kg/m3", "kg/m³");
+    case Shown::kinematic_viscosity:
+      return in("cSt", "cSt");
+    case Shown::dynamic_viscosity:
+      return us ? in("cP", "cP") : in("mPa s", "mPa s");
+    case Shown::modulus:
+      return us ? in("ksi", "ksi") : in("GPa", "GPa");
+    case Shown::temperature:
+      return us ? in("degF", "°F") : in("degC", "°C");
+    case Shown::speed:
+      return in("rpm", "rpm");
     // 1 lbf ft = 1 lbf over 1 ft, both by definition; the case file knows no torque.
-    case Shown::torque: return us ? Measure{"lbf ft", 1.0 / 1.3558179483314004, 0.0} : Measure{"N m", 1.0, 0.0};
+    case Shown::torque:
+      return us ? Measure{"lbf ft", 1.0 / 1.3558179483314004, 0.0} : Measure{"N m", 1.0, 0.0};
   }
   return {};
 }
 
 Shown shown_of_unit(std::string_view unit, std::string_view kind) {
   if (unit == "Pa") {
-    const bool gauge = kind == "highest_pressure" || kind == "lowest_pressure" || kind == "rating" || kind == "pressure";
+    const bool gauge =
+        kind == "highest_pressure" || kind == "lowest_pressure" || kind == "rating" || kind == "pressure";
     return gauge ? Shown::pressure : Shown::pressure_difference;
   }
   static constexpr std::array<std::pair<std::string_view, Shown>, 14> known{{

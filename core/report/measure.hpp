@@ -15,8 +15,8 @@ enum class Family { si, us };
 
 enum class Shown {
   number,
-  share,                ///< shown in percent
-  pressure,             ///< gauge
+  share,     ///< shown in percent
+  pressure,  ///< gauge
   absolute_pressure,
   pressure_difference,
   head,
@@ -48,7 +48,8 @@ struct Measure {
 /// @param largest largest magnitude that will be shown [SI]; picks between m and km, L/s and m³/s, L and m³
 [[nodiscard]] Measure measure(Shown shown, Family family, double largest = 0.0);
 
-/// What a quantity of SI unit `unit` ("Pa", "m", "m3/s", "m3 s-1", …) is; `kind` tells gauge pressures from differences.
+/// What a quantity of SI unit `unit` ("Pa", "m", "m3/s", "m3 s-1", …) is; `kind` tells gauge pressures from
+/// differences.
 [[nodiscard]] Shown shown_of_unit(std::string_view unit, std::string_view kind = {});
 
 /// A key with its unit as in the JSON (`max_gas_volume_m3`) taken apart: words ("max gas volume") and what it is.

@@ -22,6 +22,7 @@ enum class Shape {
   line,
   step,    ///< y[i] holds from x[i] to x[i+1]; filled down to zero
   ground,  ///< line, filled down to the bottom of the plot
+  dots,    ///< points that are not joined
 };
 
 struct Curve {
@@ -70,7 +71,7 @@ struct PlotAxis {
 };
 
 struct Plot {
-  std::string id;       ///< also the name of the picture file
+  std::string id;  ///< also the name of the picture file
   std::string title;
   std::string message;  ///< what to see in it, one sentence; also its description for screen readers
   PlotAxis x, y;
@@ -98,11 +99,8 @@ struct Ticks {
 
 /// Which rows of a curve to keep so that every peak of each of `buckets` stretches of [low, high] stays: first, lowest,
 /// highest and last of each stretch, in order. Never an average. Rows where `y` is NaN are left out.
-[[nodiscard]] std::vector<std::size_t> thinned(const std::vector<double>& x,
-                                               const std::vector<double>& y,
-                                               double low,
-                                               double high,
-                                               int buckets);
+[[nodiscard]] std::vector<std::size_t> thinned(
+    const std::vector<double>& x, const std::vector<double>& y, double low, double high, int buckets);
 
 /// A picture, 720 px wide, the same bytes for the same plot.
 /// @param suffix makes the ids inside the picture unique within a page

@@ -34,7 +34,9 @@ std::vector<std::size_t> rows_of(const Plot& plot) {
   }
   std::set<std::size_t> kept;
   for (const Curve& curve : plot.curves)
-    for (const std::size_t row : thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, stretches_kept(plot.curves.size()))) kept.insert(row);
+    for (const std::size_t row :
+         thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, stretches_kept(plot.curves.size())))
+      kept.insert(row);
   return {kept.begin(), kept.end()};
 }
 
@@ -49,32 +51,48 @@ ordered_json axis_json(const PlotAxis& axis) {
 
 const char* name_of(Ink ink) {
   switch (ink) {
-    case Ink::black: return "black";
-    case Ink::blue: return "blue";
-    case Ink::vermilion: return "vermilion";
-    case Ink::green: return "green";
-    case Ink::purple: return "purple";
-    case Ink::earth: return "earth";
+    case Ink::black:
+      return "black";
+    case Ink::blue:
+      return "blue";
+    case Ink::vermilion:
+      return "vermilion";
+    case Ink::green:
+      return "green";
+    case Ink::purple:
+      return "purple";
+    case Ink::earth:
+      return "earth";
   }
   return "black";
 }
 
 ordered_json dash_json(Dash dash) {
   switch (dash) {
-    case Dash::solid: return ordered_json::array();
-    case Dash::dashed: return {7, 4};
-    case Dash::dotted: return {1.5, 3.5};
-    case Dash::dash_dot: return {9, 3, 1.5, 3};
-    case Dash::long_dashed: return {14, 5};
+    case Dash::solid:
+      return ordered_json::array();
+    case Dash::dashed:
+      return {7, 4};
+    case Dash::dotted:
+      return {1.5, 3.5};
+    case Dash::dash_dot:
+      return {9, 3, 1.5, 3};
+    case Dash::long_dashed:
+      return {14, 5};
   }
   return ordered_json::array();
 }
 
 const char* name_of(Shape shape) {
   switch (shape) {
-    case Shape::line: return "line";
-    case Shape::step: return "step";
-    case Shape::ground: return "ground";
+    case Shape::line:
+      return "line";
+    case Shape::step:
+      return "step";
+    case Shape::ground:
+      return "ground";
+    case Shape::dots:
+      return "dots";
   }
   return "line";
 }
@@ -100,7 +118,8 @@ std::string data_block(const Plot& plot) {
                              {"y", numbers(curve.y, rows)}});
   out["fills"] = ordered_json::array();
   for (const Fill& fill : plot.fills)
-    out["fills"].push_back({{"name", fill.name}, {"lower", fill.lower}, {"upper", fill.upper}, {"ink", name_of(fill.ink)}});
+    out["fills"].push_back(
+        {{"name", fill.name}, {"lower", fill.lower}, {"upper", fill.upper}, {"ink", name_of(fill.ink)}});
   out["levels"] = ordered_json::array();
   for (const Level& level : plot.levels)
     out["levels"].push_back({{"name", level.name},
@@ -113,7 +132,8 @@ std::string data_block(const Plot& plot) {
     out["stretches"].push_back({{"name", stretch.name}, {"from", number(stretch.from)}, {"to", number(stretch.to)}});
   out["points"] = ordered_json::array();
   for (const Point& point : plot.points)
-    out["points"].push_back({{"name", point.name}, {"x", number(point.x)}, {"y", number(point.y)}, {"ink", name_of(point.ink)}});
+    out["points"].push_back(
+        {{"name", point.name}, {"x", number(point.x)}, {"y", number(point.y)}, {"ink", name_of(point.ink)}});
 
   std::string text = out.dump(-1, ' ', true, ordered_json::error_handler_t::replace);
   std::string safe;

@@ -22,6 +22,12 @@ struct Section {
 /// Extremes, limits, profile, histories, devices in time, draws with budget and sensitivity.
 [[nodiscard]] std::vector<Section> answer_sections(const answers::Study& study);
 
+/// Limits: bound, value, margin, chance with its bounds, picture, verdict with its reason.
+[[nodiscard]] std::string limits_block(const answers::Study& study);
+
+/// Sampled answers: quantiles, draws, budget, sensitivity.
+[[nodiscard]] std::string bands_block(const answers::Study& study);
+
 /// Events, cavities, devices, checks, steady flow, inputs, open points, identity, case text.
 [[nodiscard]] std::vector<Section> basis_sections(const answers::Study& study);
 

@@ -33,9 +33,13 @@ std::string events(const Study& study) {
 }
 
 std::string cavities(const Study& study) {
-  Table table{"Vapour cavities", {{"pipe"}, {"chainage", true}, {"opens", true}, {"closes", true}, {"largest volume", true}}, {}};
+  Table table{"Vapour cavities",
+              {{"pipe"}, {"chainage", true}, {"opens", true}, {"closes", true}, {"largest volume", true}},
+              {}};
   for (const auto& cavity : show::reported_cavities(study))
-    table.rows.push_back({escaped(cavity.pipe), both(cavity.chainage, Shown::chainage), both(cavity.opens, Shown::time),
+    table.rows.push_back({escaped(cavity.pipe),
+                          both(cavity.chainage, Shown::chainage),
+                          both(cavity.opens, Shown::time),
                           std::isnan(cavity.closes) ? "open at the end" : both(cavity.closes, Shown::time),
                           both(cavity.max_volume, Shown::volume, 3)});
   const std::string body = html(table);
@@ -63,7 +67,8 @@ std::string checks(const Study& study) {
     std::vector<std::pair<std::string, std::string>> terms{
         {"Time step", figures(1e3 * grid.time_step, 4) + "\u00a0ms"},
         {"Worst change of a wave speed",
-         fmt::format("{}\u00a0%{}", figures(100.0 * grid.worst_wave_speed_change, 2),
+         fmt::format("{}\u00a0%{}",
+                     figures(100.0 * grid.worst_wave_speed_change, 2),
                      grid.worst_pipe.empty() ? "" : " in " + escaped(grid.worst_pipe))},
         {"Grids marched", fmt::format("{}{}", grid.grids, grid.converging ? "" : ", <strong>not converging</strong>")}};
     std::string rigid;
@@ -72,12 +77,17 @@ std::string checks(const Study& study) {
     for (const auto& [name, extreme] : {std::pair{"highest", &study.highest}, std::pair{"lowest", &study.lowest}})
       if (*extreme)
         terms.emplace_back(fmt::format("Grid bound of the {} pressure", name),
-                           std::isnan((*extreme)->grid_bound) ? "none" : "± " + both((*extreme)->grid_bound, Shown::pressure_difference, 2));
+                           std::isnan((*extreme)->grid_bound)
+                               ? "none"
+                               : "± " + both((*extreme)->grid_bound, Shown::pressure_difference, 2));
     out += "<h3>Grid</h3>\n" + html(terms);
     Table table{"Grid of each pipe", {{"Pipe"}, {"reaches", true}, {"wave speed", true}, {"marched with", true}}, {}};
-    for (std::size_t i = 0; i < study.pipes.size() && i < grid.reaches.size() && i < grid.marched_wave_speed.size(); ++i)
-      table.rows.push_back({escaped(study.pipes[i].name), grid.reaches[i] == 0 ? "rigid" : std::to_string(grid.reaches[i]),
-                            both(study.pipes[i].wave_speed, Shown::velocity, 5), both(grid.marched_wave_speed[i], Shown::velocity, 5)});
+    for (std::size_t i = 0; i < study.pipes.size() && i < grid.reaches.size() && i < grid.marched_wave_speed.size();
+         ++i)
+      table.rows.push_back({escaped(study.pipes[i].name),
+                            grid.reaches[i] == 0 ? "rigid" : std::to_string(grid.reaches[i]),
+                            both(study.pipes[i].wave_speed, Shown::velocity, 5),
+                            both(grid.marched_wave_speed[i], Shown::velocity, 5)});
     out += folded(table, 60);
   }
   if (study.audit) {
@@ -92,8 +102,9 @@ std::string checks(const Study& study) {
         {"Negative cavity volume set to zero", both(audit.cavity_reset_volume, Shown::volume, 3)}});
   }
   if (study.transient && !study.transient->status.empty())
-    out += html(std::vector<std::pair<std::string, std::string>>{{"March", escaped(study.transient->status)},
-                                                                 {"Last good time", both(study.transient->last_good_time, Shown::time)}});
+    out += html(std::vector<std::pair<std::string, std::string>>{
+        {"March", escaped(study.transient->status)},
+        {"Last good time", both(study.transient->last_good_time, Shown::time)}});
   return out;
 }
 
@@ -119,8 +130,10 @@ std::string liquid(const Study& study) {
 std::string steady(const Study& study) {
   std::string out;
   if (!study.steady_status.empty())
-    out += fmt::format("<p class=\"key\">Steady state: {}, {} iterations, residual {}.</p>\n", escaped(study.steady_status),
-                       study.steady_iterations, figures(study.steady_residual, 2));
+    out += fmt::format("<p class=\"key\">Steady state: {}, {} iterations, residual {}.</p>\n",
+                       escaped(study.steady_status),
+                       study.steady_iterations,
+                       figures(study.steady_residual, 2));
   Table pipes{"Pipes in the first steady state",
               {{"Pipe"},
                {"length", true},
@@ -136,25 +149,49 @@ std::string steady(const Study& study) {
               {}};
   for (const auto& p : study.pipes)
     pipes.rows.push_back({escaped(p.name) + "<br><small>" + escaped(p.from) + " → " + escaped(p.to) + "</small>",
-                          both(p.length, Shown::chainage), both(p.bore, Shown::diameter), both(p.flow, Shown::flow),
-                          both(p.velocity, Shown::velocity, 3), decimals(p.reynolds, 0), figures(p.friction_factor, 4),
-                          both(p.head_loss, Shown::head, 3), both(p.pressure_drop, Shown::pressure_difference),
-                          both(p.wave_speed, Shown::velocity), both(p.joukowsky_head, Shown::head, 3)});
+                          both(p.length, Shown::chainage),
+                          both(p.bore, Shown::diameter),
+                          both(p.flow, Shown::flow),
+                          both(p.velocity, Shown::velocity, 3),
+                          decimals(p.reynolds, 0),
+                          figures(p.friction_factor, 4),
+                          both(p.head_loss, Shown::head, 3),
+                          both(p.pressure_drop, Shown::pressure_difference),
+                          both(p.wave_speed, Shown::velocity),
+                          both(p.joukowsky_head, Shown::head, 3)});
   out += folded(pipes, 60);
-  Table places{"Places in the first steady state", {{"Place"}, {"elevation", true}, {"head", true}, {"pressure", true}}, {}};
+  Table places{
+      "Places in the first steady state", {{"Place"}, {"elevation", true}, {"head", true}, {"pressure", true}}, {}};
   for (const auto& p : study.places)
-    places.rows.push_back({escaped(p.name), both(p.elevation, Shown::elevation), both(p.head, Shown::head), both(p.pressure, Shown::pressure)});
+    places.rows.push_back({escaped(p.name),
+                           both(p.elevation, Shown::elevation),
+                           both(p.head, Shown::head),
+                           both(p.pressure, Shown::pressure)});
   return out + folded(places, 60) + liquid(study);
 }
 
+/// A value in words, its spread smaller below it.
+std::string value_cell(const std::string& shown) {
+  const std::size_t comma = shown.find(", ");
+  if (comma == std::string::npos) return escaped(shown);
+  return escaped(shown.substr(0, comma)) + "<br><small>" + escaped(shown.substr(comma + 2)) + "</small>";
+}
+
 std::string inputs(const Study& study) {
-  Table table{"Inputs as understood",
-              {{"Input"}, {"as written"}, {"SI", true}, {"US", true}, {"spread"}, {"source"}, {"grade"}},
-              {}};
-  for (const auto& v : study.values)
-    table.rows.push_back({escaped(v.name.empty() ? v.path : v.name), escaped(v.written) + (v.guess ? " <span class=\"guess\">guess</span>" : ""),
-                          escaped(v.shown_si), escaped(v.shown_us), v.spread.empty() ? "–" : escaped(v.spread),
-                          v.source.empty() ? "–" : escaped(v.source), v.grade.empty() ? "–" : escaped(v.grade)});
+  Table table{
+      "Inputs as understood", {{"Input"}, {"as written"}, {"SI"}, {"US"}, {"spread"}, {"source"}, {"grade"}}, {}};
+  const auto or_dash = [](const std::string& text) { return text.empty() ? std::string("–") : escaped(text); };
+  for (const auto& v : study.values) {
+    // The words of the value tell its spread already where they can.
+    const bool told = v.spread.empty() || v.shown_si.find(v.spread) != std::string::npos;
+    table.rows.push_back({escaped(v.name.empty() ? v.path : v.name),
+                          escaped(v.written) + (v.guess ? " <span class=\"guess\">guess</span>" : ""),
+                          value_cell(v.shown_si),
+                          value_cell(v.shown_us),
+                          told ? "–" : escaped(v.spread),
+                          or_dash(v.source),
+                          or_dash(v.grade)});
+  }
   return folded(table, 120);
 }
 
@@ -189,8 +226,10 @@ std::string identity(const Study& study) {
   if (!std::isnan(p.wall_time)) terms.emplace_back("Time taken", figures(p.wall_time, 3) + "\u00a0s");
   terms.emplace_back("Threads, ranks", fmt::format("{}, {}", p.threads, p.ranks));
   std::string out = html(terms);
-  out += "<table class=\"signatures\">\n<caption>For signature</caption>\n<thead><tr><th scope=\"col\">Role</th><th scope=\"col\">Name</th>"
-         "<th scope=\"col\">Date</th><th scope=\"col\">Signature</th></tr></thead>\n<tbody>\n";
+  out +=
+      "<table class=\"signatures\">\n<caption>For signature</caption>\n<thead><tr><th scope=\"col\">Role</th><th "
+      "scope=\"col\">Name</th>"
+      "<th scope=\"col\">Date</th><th scope=\"col\">Signature</th></tr></thead>\n<tbody>\n";
   for (const char* role : {"Author", "Checker"})
     out += fmt::format("<tr><th scope=\"row\">{}</th><td></td><td></td><td></td></tr>\n", role);
   return out + "</tbody>\n</table>\n";
@@ -202,7 +241,8 @@ std::string case_text(const Study& study) {
   const auto add = [&](const std::string& name, const std::string& text) {
     if (text.empty()) return;
     // A line break right after <pre> is dropped by the reader of a page; one more keeps the text verbatim.
-    out += fmt::format("<details><summary>{}</summary>\n<pre tabindex=\"0\">\n{}</pre>\n</details>\n", escaped(name), escaped(text));
+    out += fmt::format(
+        "<details><summary>{}</summary>\n<pre tabindex=\"0\">\n{}</pre>\n</details>\n", escaped(name), escaped(text));
   };
   add(show::file_name_of(p.case_file), p.case_text);
   for (const auto& side : p.side_files) add(side[0], side[2]);

@@ -1,7 +1,7 @@
 // SPDX-License-Identifier: MIT
 //
-// The picture of a plot. Colours: Okabe & Ito (2008), values from memory; the style sheet of the page overrides them in dark
-// mode, so every element carries a class beside its plain attributes.
+// The picture of a plot. Colours: Okabe & Ito (2008), values from memory; the style sheet of the page overrides them in
+// dark mode, so every element carries a class beside its plain attributes.
 
 #include "core/report/markup.hpp"
 #include "core/report/plot.hpp"
@@ -23,6 +23,11 @@ constexpr std::size_t longest_label = 30;
 /// Edges of bands are thinner than this and carry no label: the line they surround does.
 constexpr double labelled_width = 1.0;
 
+bool labelled(const Curve& curve) {
+  return (curve.shape == Shape::line || curve.shape == Shape::ground) && !curve.name.empty() &&
+         curve.width >= labelled_width;
+}
+
 struct InkNames {
   const char* name;
   const char* colour;
@@ -30,23 +35,34 @@ struct InkNames {
 
 InkNames ink_names(Ink ink) {
   switch (ink) {
-    case Ink::black: return {"black", "#22303c"};
-    case Ink::blue: return {"blue", "#0072b2"};
-    case Ink::vermilion: return {"vermilion", "#d55e00"};
-    case Ink::green: return {"green", "#00805c"};
-    case Ink::purple: return {"purple", "#a2487f"};
-    case Ink::earth: return {"earth", "#7d6a4f"};
+    case Ink::black:
+      return {"black", "#22303c"};
+    case Ink::blue:
+      return {"blue", "#0072b2"};
+    case Ink::vermilion:
+      return {"vermilion", "#d55e00"};
+    case Ink::green:
+      return {"green", "#00805c"};
+    case Ink::purple:
+      return {"purple", "#a2487f"};
+    case Ink::earth:
+      return {"earth", "#7d6a4f"};
   }
   return {"black", "#22303c"};
 }
 
 std::string dash_attribute(Dash dash) {
   switch (dash) {
-    case Dash::solid: return "";
-    case Dash::dashed: return " stroke-dasharray=\"7 4\"";
-    case Dash::dotted: return " stroke-dasharray=\"1.5 3.5\"";
-    case Dash::dash_dot: return " stroke-dasharray=\"9 3 1.5 3\"";
-    case Dash::long_dashed: return " stroke-dasharray=\"14 5\"";
+    case Dash::solid:
+      return "";
+    case Dash::dashed:
+      return " stroke-dasharray=\"7 4\"";
+    case Dash::dotted:
+      return " stroke-dasharray=\"1.5 3.5\"";
+    case Dash::dash_dot:
+      return " stroke-dasharray=\"9 3 1.5 3\"";
+    case Dash::long_dashed:
+      return " stroke-dasharray=\"14 5\"";
   }
   return "";
 }
@@ -113,7 +129,7 @@ void part(std::vector<SideLabel>& labels, double top, double bottom) {
 std::vector<SideLabel> side_labels(const Plot& plot, const Frame& frame) {
   std::vector<SideLabel> labels;
   for (const Curve& curve : plot.curves) {
-    if (curve.shape == Shape::step || curve.name.empty() || curve.width < labelled_width) continue;
+    if (!labelled(curve)) continue;
     for (std::size_t i = std::min(curve.y.size(), plot.abscissa.size()); i-- > 0;) {
       if (!std::isfinite(curve.y[i]) || plot.abscissa[i] > plot.x.high) continue;
       labels.push_back({shortened(curve.name), curve.ink, frame.y(curve.y[i]), 0.0});
@@ -130,7 +146,7 @@ std::vector<SideLabel> side_labels(const Plot& plot, const Frame& frame) {
 double right_margin(const Plot& plot) {
   double widest = 0.0;
   for (const Curve& curve : plot.curves)
-    if (curve.shape != Shape::step && curve.width >= labelled_width) widest = std::max(widest, text_width(shortened(curve.name)));
+    if (labelled(curve)) widest = std::max(widest, text_width(shortened(curve.name)));
   for (const Level& level : plot.levels)
     if (!level.upright) widest = std::max(widest, text_width(shortened(level.name)));
   return std::clamp(widest + 14.0, 22.0, 200.0);
@@ -173,31 +189,45 @@ std::string axes(const Plot& plot, const Frame& frame, Family family) {
     const double y = frame.y((tick - y_in.offset) / y_in.scale);
     out += fmt::format("<path class=\"grid\" d=\"M{} {}H{}\" stroke=\"#dfe3e2\"/>\n", at(left), at(y), at(frame.right));
     out += fmt::format("<text class=\"tick\" x=\"{}\" y=\"{}\" text-anchor=\"end\" fill=\"#4c5a66\">{}</text>\n",
-                       at(left - 8.0), at(y + 4.0), decimals(tick, y_ticks.places));
+                       at(left - 8.0),
+                       at(y + 4.0),
+                       decimals(tick, y_ticks.places));
   }
   const Ticks x_ticks = ticks(x_in(plot.x.low), x_in(plot.x.high), static_cast<int>((frame.right - left) / 80.0));
   for (const double tick : x_ticks.at) {
     const double x = frame.x((tick - x_in.offset) / x_in.scale);
     out += fmt::format("<path class=\"tickline\" d=\"M{} {}v5\" stroke=\"#4c5a66\"/>\n", at(x), at(frame.bottom));
     out += fmt::format("<text class=\"tick\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#4c5a66\">{}</text>\n",
-                       at(x), at(frame.bottom + 18.0), decimals(tick, x_ticks.places));
+                       at(x),
+                       at(frame.bottom + 18.0),
+                       decimals(tick, x_ticks.places));
   }
   out += fmt::format("<path class=\"axis\" d=\"M{} {}H{}\" stroke=\"#4c5a66\" fill=\"none\"/>\n",
-                     at(left), at(frame.bottom), at(frame.right));
+                     at(left),
+                     at(frame.bottom),
+                     at(frame.right));
   const auto titled = [](const PlotAxis& axis, const Measure& in) {
     return escaped(in.unit.empty() ? axis.label : axis.label + ", " + in.unit);
   };
   out += fmt::format("<text class=\"label\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#22303c\">{}</text>\n",
-                     at(0.5 * (left + frame.right)), at(frame.bottom + 38.0), titled(plot.x, x_in));
+                     at(0.5 * (left + frame.right)),
+                     at(frame.bottom + 38.0),
+                     titled(plot.x, x_in));
   const double middle = 0.5 * (frame.top + frame.bottom);
   out += fmt::format(
-      "<text class=\"label\" x=\"14\" y=\"{0}\" text-anchor=\"middle\" fill=\"#22303c\" transform=\"rotate(-90 14 {0})\">{1}</text>\n",
-      at(middle), titled(plot.y, y_in));
+      "<text class=\"label\" x=\"14\" y=\"{0}\" text-anchor=\"middle\" fill=\"#22303c\" transform=\"rotate(-90 14 "
+      "{0})\">{1}</text>\n",
+      at(middle),
+      titled(plot.y, y_in));
   return out + "</g>\n";
 }
 
 /// The way of a curve through its kept rows; `joined` starts with L instead of M.
-std::string way(const Plot& plot, const Curve& curve, const Frame& frame, const std::vector<std::size_t>& rows, bool joined = false) {
+std::string way(const Plot& plot,
+                const Curve& curve,
+                const Frame& frame,
+                const std::vector<std::size_t>& rows,
+                bool joined = false) {
   std::string d;
   for (const std::size_t row : rows) {
     d += d.empty() && !joined ? 'M' : 'L';
@@ -209,7 +239,8 @@ std::string way(const Plot& plot, const Curve& curve, const Frame& frame, const 
 std::string step_way(const Plot& plot, const Curve& curve, const Frame& frame) {
   std::string d = fmt::format("M{} {}", at(frame.x(plot.abscissa.front())), at(frame.bottom));
   for (std::size_t i = 0; i + 1 < plot.abscissa.size() && i < curve.y.size(); ++i)
-    d += fmt::format("V{}H{}", at(frame.y(std::isfinite(curve.y[i]) ? curve.y[i] : 0.0)), at(frame.x(plot.abscissa[i + 1])));
+    d += fmt::format(
+        "V{}H{}", at(frame.y(std::isfinite(curve.y[i]) ? curve.y[i] : 0.0)), at(frame.x(plot.abscissa[i + 1])));
   return d + fmt::format("V{}", at(frame.bottom));
 }
 
@@ -217,37 +248,67 @@ std::string curves(const Plot& plot, const Frame& frame) {
   std::string out;
   const int buckets = static_cast<int>(frame.right - left);
   std::vector<std::vector<std::size_t>> rows;
-  for (const Curve& curve : plot.curves) rows.push_back(thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, buckets));
+  for (const Curve& curve : plot.curves)
+    rows.push_back(thinned(plot.abscissa, curve.y, plot.x.low, plot.x.high, buckets));
 
   for (std::size_t i = 0; i < plot.curves.size(); ++i) {
     if (plot.curves[i].shape != Shape::ground || rows[i].empty()) continue;
     out += fmt::format("<path class=\"soil\" d=\"{}L{} {}L{} {}Z\" fill=\"#efe9dc\"/>\n",
                        way(plot, plot.curves[i], frame, rows[i]),
-                       at(frame.x(plot.abscissa[rows[i].back()])), at(frame.bottom),
-                       at(frame.x(plot.abscissa[rows[i].front()])), at(frame.bottom));
+                       at(frame.x(plot.abscissa[rows[i].back()])),
+                       at(frame.bottom),
+                       at(frame.x(plot.abscissa[rows[i].front()])),
+                       at(frame.bottom));
   }
   for (const Fill& fill : plot.fills) {
     if (rows[fill.lower].empty() || rows[fill.upper].empty()) continue;
     const InkNames ink = ink_names(fill.ink);
     std::vector<std::size_t> back(rows[fill.upper].rbegin(), rows[fill.upper].rend());
-    out += fmt::format("<path class=\"fill {}\" d=\"{}{}Z\" fill=\"{}\" fill-opacity=\"0.18\"/>\n", ink.name,
+    out += fmt::format("<path class=\"fill {}\" d=\"{}{}Z\" fill=\"{}\" fill-opacity=\"0.18\"/>\n",
+                       ink.name,
                        way(plot, plot.curves[fill.lower], frame, rows[fill.lower]),
-                       way(plot, plot.curves[fill.upper], frame, back, true), ink.colour);
+                       way(plot, plot.curves[fill.upper], frame, back, true),
+                       ink.colour);
   }
   for (std::size_t i = 0; i < plot.curves.size(); ++i) {
     const Curve& curve = plot.curves[i];
     if (rows[i].empty() || curve.width <= 0.0) continue;
     const InkNames ink = ink_names(curve.ink);
+    if (curve.shape == Shape::dots) {
+      std::string d;
+      for (std::size_t row = 0; row < curve.y.size() && row < plot.abscissa.size(); ++row)
+        if (std::isfinite(curve.y[row]))
+          d += fmt::format("M{} {}h0", at(frame.x(plot.abscissa[row])), at(frame.y(curve.y[row])));
+      out += fmt::format(
+          "<path class=\"curve {}\" data-name=\"{}\" d=\"{}\" stroke=\"{}\" stroke-width=\"3.2\" "
+          "stroke-opacity=\"0.5\" "
+          "stroke-linecap=\"round\"/>\n",
+          ink.name,
+          escaped(curve.name),
+          d,
+          ink.colour);
+      continue;
+    }
     if (curve.shape == Shape::step) {
       const std::string d = step_way(plot, curve, frame);
-      out += fmt::format("<path class=\"fill {}\" d=\"{}Z\" fill=\"{}\" fill-opacity=\"0.18\"/>\n", ink.name, d, ink.colour);
-      out += fmt::format("<path class=\"curve {}\" d=\"{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"{}\"/>\n", ink.name, d,
-                         ink.colour, at(curve.width));
+      out += fmt::format(
+          "<path class=\"fill {}\" d=\"{}Z\" fill=\"{}\" fill-opacity=\"0.18\"/>\n", ink.name, d, ink.colour);
+      out += fmt::format("<path class=\"curve {}\" d=\"{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"{}\"/>\n",
+                         ink.name,
+                         d,
+                         ink.colour,
+                         at(curve.width));
       continue;
     }
     out += fmt::format(
-        "<path class=\"curve {}\" data-name=\"{}\" d=\"{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"{}\" stroke-linejoin=\"round\"{}/>\n",
-        ink.name, escaped(curve.name), way(plot, curve, frame, rows[i]), ink.colour, at(curve.width), dash_attribute(curve.dash));
+        "<path class=\"curve {}\" data-name=\"{}\" d=\"{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"{}\" "
+        "stroke-linejoin=\"round\"{}/>\n",
+        ink.name,
+        escaped(curve.name),
+        way(plot, curve, frame, rows[i]),
+        ink.colour,
+        at(curve.width),
+        dash_attribute(curve.dash));
   }
   return out;
 }
@@ -255,20 +316,29 @@ std::string curves(const Plot& plot, const Frame& frame) {
 std::string stretches(const Plot& plot, const Frame& frame, const std::string& id) {
   if (plot.stretches.empty()) return {};
   std::string out = fmt::format(
-      "<pattern id=\"hatch-{0}\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\">"
-      "<path class=\"hatch\" d=\"M0 0V7\" stroke=\"#d55e00\" stroke-width=\"1.6\" stroke-opacity=\"0.45\"/></pattern>\n",
+      "<pattern id=\"hatch-{0}\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" "
+      "patternTransform=\"rotate(45)\">"
+      "<path class=\"hatch\" d=\"M0 0V7\" stroke=\"#d55e00\" stroke-width=\"1.6\" "
+      "stroke-opacity=\"0.45\"/></pattern>\n",
       id);
   for (const Stretch& stretch : plot.stretches) {
     const double from = std::clamp(frame.x(stretch.from), left, frame.right);
     const double to = std::clamp(frame.x(stretch.to), left, frame.right);
     if (!(to > from)) continue;
-    out += fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{}\" height=\"{}\" fill=\"url(#hatch-{})\"/>\n", at(from), at(frame.top),
-                       at(to - from), at(frame.bottom - frame.top), id);
+    out += fmt::format("<rect x=\"{}\" y=\"{}\" width=\"{}\" height=\"{}\" fill=\"url(#hatch-{})\"/>\n",
+                       at(from),
+                       at(frame.top),
+                       at(to - from),
+                       at(frame.bottom - frame.top),
+                       id);
     const std::string name = shortened(stretch.name);
     if (!name.empty() && to - from > text_width(name) + 8.0)
-      out += fmt::format("<text class=\"halo\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#22303c\" stroke=\"#ffffff\" "
-                         "stroke-width=\"4\" paint-order=\"stroke\">{}</text>\n",
-                         at(0.5 * (from + to)), at(frame.top + 16.0), escaped(name));
+      out += fmt::format(
+          "<text class=\"halo\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#22303c\" stroke=\"#ffffff\" "
+          "stroke-width=\"4\" paint-order=\"stroke\">{}</text>\n",
+          at(0.5 * (from + to)),
+          at(frame.top + 16.0),
+          escaped(name));
   }
   return out;
 }
@@ -283,11 +353,18 @@ std::string points(const Plot& plot, const Frame& frame) {
     const double half = 0.5 * text_width(name);
     const double text_x = std::clamp(x, left + half + 4.0, std::max(left + half + 4.0, frame.right - half - 4.0));
     const double text_y = y - 9.0 < frame.top + 10.0 ? y + 20.0 : y - 9.0;
-    out += fmt::format("<circle class=\"point {}\" cx=\"{}\" cy=\"{}\" r=\"4\" fill=\"#ffffff\" stroke=\"{}\" stroke-width=\"2\"/>\n",
-                       ink.name, at(x), at(y), ink.colour);
-    out += fmt::format("<text class=\"halo\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#22303c\" stroke=\"#ffffff\" "
-                       "stroke-width=\"4\" paint-order=\"stroke\">{}</text>\n",
-                       at(text_x), at(text_y), escaped(name));
+    out += fmt::format(
+        "<circle class=\"point {}\" cx=\"{}\" cy=\"{}\" r=\"4\" fill=\"#ffffff\" stroke=\"{}\" stroke-width=\"2\"/>\n",
+        ink.name,
+        at(x),
+        at(y),
+        ink.colour);
+    out += fmt::format(
+        "<text class=\"halo\" x=\"{}\" y=\"{}\" text-anchor=\"middle\" fill=\"#22303c\" stroke=\"#ffffff\" "
+        "stroke-width=\"4\" paint-order=\"stroke\">{}</text>\n",
+        at(text_x),
+        at(text_y),
+        escaped(name));
   }
   return out;
 }
@@ -297,25 +374,46 @@ std::string levels(const Plot& plot, const Frame& frame, const std::vector<TopLa
   for (const Level& level : plot.levels) {
     const InkNames ink = ink_names(level.ink);
     if (level.upright) continue;
-    out += fmt::format("<path class=\"curve {}\" data-name=\"{}\" d=\"M{} {}H{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"1.4\"{}/>\n", ink.name,
-                       escaped(level.name), at(left), at(frame.y(level.value)), at(frame.right), ink.colour,
-                       dash_attribute(level.dash));
+    out += fmt::format(
+        "<path class=\"curve {}\" data-name=\"{}\" d=\"M{} {}H{}\" fill=\"none\" stroke=\"{}\" "
+        "stroke-width=\"1.4\"{}/>\n",
+        ink.name,
+        escaped(level.name),
+        at(left),
+        at(frame.y(level.value)),
+        at(frame.right),
+        ink.colour,
+        dash_attribute(level.dash));
   }
-  const auto height_of = [&](const TopLabel& label) { return frame.top - 6.0 - line_height * (top_rows - 1 - label.row); };
+  const auto height_of = [&](const TopLabel& label) {
+    return frame.top - 6.0 - line_height * (top_rows - 1 - label.row);
+  };
   for (const TopLabel& label : tops) {
     const InkNames ink = ink_names(label.level->ink);
-    out += fmt::format("<path class=\"curve {}\" data-name=\"{}\" d=\"M{} {}V{}\" fill=\"none\" stroke=\"{}\" stroke-width=\"1.4\"{}/>\n", ink.name,
-                       escaped(label.level->name), at(label.x), at(height_of(label) + 3.0), at(frame.bottom), ink.colour,
-                       dash_attribute(label.level->dash));
+    out += fmt::format(
+        "<path class=\"curve {}\" data-name=\"{}\" d=\"M{} {}V{}\" fill=\"none\" stroke=\"{}\" "
+        "stroke-width=\"1.4\"{}/>\n",
+        ink.name,
+        escaped(label.level->name),
+        at(label.x),
+        at(height_of(label) + 3.0),
+        at(frame.bottom),
+        ink.colour,
+        dash_attribute(label.level->dash));
   }
   // Names last, so that no line runs over one.
   for (const TopLabel& label : tops) {
     const InkNames ink = ink_names(label.level->ink);
     const double half = 0.5 * text_width(shortened(label.level->name));
     const double x = std::clamp(label.x, half + 2.0, width - half - 2.0);
-    out += fmt::format("<text class=\"name {0}\" x=\"{1}\" y=\"{2}\" text-anchor=\"middle\" fill=\"{3}\" stroke=\"#ffffff\" "
-                       "stroke-width=\"4\" paint-order=\"stroke\">{4}</text>\n",
-                       ink.name, at(x), at(height_of(label)), ink.colour, escaped(shortened(label.level->name)));
+    out += fmt::format(
+        "<text class=\"name {0}\" x=\"{1}\" y=\"{2}\" text-anchor=\"middle\" fill=\"{3}\" stroke=\"#ffffff\" "
+        "stroke-width=\"4\" paint-order=\"stroke\">{4}</text>\n",
+        ink.name,
+        at(x),
+        at(height_of(label)),
+        ink.colour,
+        escaped(shortened(label.level->name)));
   }
   return out;
 }
@@ -334,21 +432,35 @@ std::string svg(const Plot& given, Family family, const std::string& suffix) {
   const Frame frame{right, top, height - bottom_margin, plot.x.low, plot.x.high, plot.y.low, plot.y.high};
 
   std::string out = fmt::format(
-      "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"plot\" width=\"{0}\" height=\"{1}\" viewBox=\"0 0 {0} {1}\" role=\"img\" "
-      "aria-labelledby=\"title-{2} about-{2}\" font-family=\"system-ui, 'Segoe UI', 'DejaVu Sans', sans-serif\" font-size=\"12\">\n",
-      at(width), at(height), id);
-  out += fmt::format("<title id=\"title-{0}\">{1}</title>\n<desc id=\"about-{0}\">{2}</desc>\n", id, escaped(plot.title),
+      "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"plot\" width=\"{0}\" height=\"{1}\" viewBox=\"0 0 {0} {1}\" "
+      "role=\"img\" "
+      "aria-labelledby=\"title-{2} about-{2}\" font-family=\"system-ui, 'Segoe UI', 'DejaVu Sans', sans-serif\" "
+      "font-size=\"12\">\n",
+      at(width),
+      at(height),
+      id);
+  out += fmt::format("<title id=\"title-{0}\">{1}</title>\n<desc id=\"about-{0}\">{2}</desc>\n",
+                     id,
+                     escaped(plot.title),
                      escaped(plot.message));
   out += axes(plot, frame, family);
-  out += fmt::format("<clipPath id=\"clip-{}\"><rect x=\"{}\" y=\"{}\" width=\"{}\" height=\"{}\"/></clipPath>\n", id, at(left),
-                     at(frame.top - 1.0), at(frame.right - left), at(frame.bottom - frame.top + 2.0));
+  out += fmt::format("<clipPath id=\"clip-{}\"><rect x=\"{}\" y=\"{}\" width=\"{}\" height=\"{}\"/></clipPath>\n",
+                     id,
+                     at(left),
+                     at(frame.top - 1.0),
+                     at(frame.right - left),
+                     at(frame.bottom - frame.top + 2.0));
   out += fmt::format("<g clip-path=\"url(#clip-{})\">\n{}</g>\n", id, curves(plot, frame));
   out += stretches(plot, frame, id);
   out += levels(plot, frame, tops, top_rows);
   for (const SideLabel& label : side_labels(plot, frame)) {
     const InkNames ink = ink_names(label.ink);
-    out += fmt::format("<text class=\"name {}\" x=\"{}\" y=\"{}\" fill=\"{}\">{}</text>\n", ink.name, at(frame.right + 7.0),
-                       at(label.placed + 4.0), ink.colour, escaped(label.text));
+    out += fmt::format("<text class=\"name {}\" x=\"{}\" y=\"{}\" fill=\"{}\">{}</text>\n",
+                       ink.name,
+                       at(frame.right + 7.0),
+                       at(label.placed + 4.0),
+                       ink.colour,
+                       escaped(label.text));
   }
   out += points(plot, frame);
   return out + "</svg>\n";

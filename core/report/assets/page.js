@@ -25,8 +25,9 @@
     svg.setAttribute('viewBox', '0 0 32 10');
     svg.setAttribute('aria-hidden', 'true');
     const line = document.createElementNS(ns, 'path');
-    line.setAttribute('d', 'M0 5H32');
-    line.setAttribute('stroke-width', curve.width < 1 ? 1.2 : 2.4);
+    line.setAttribute('d', curve.shape === 'dots' ? 'M4 5h0M16 5h0M28 5h0' : 'M0 5H32');
+    if (curve.shape === 'dots') line.setAttribute('stroke-linecap', 'round');
+    line.setAttribute('stroke-width', curve.shape === 'dots' ? 4 : curve.width < 1 ? 1.2 : 2.4);
     if (curve.dash.length) line.setAttribute('stroke-dasharray', curve.dash.join(' '));
     line.style.stroke = 'var(--' + curve.ink + ')';
     svg.append(line);
@@ -62,7 +63,7 @@
     const measuring = document.createElement('canvas').getContext('2d');
     const font = (size) => size + 'px ' + getComputedStyle(document.body).fontFamily;
     measuring.font = font(12);
-    const labelled = (c) => !stepped && c.width >= 1;  // edges of bands carry no name
+    const labelled = (c) => (c.shape === 'line' || c.shape === 'ground') && c.width >= 1;  // edges of bands carry no name
     const named = data.curves.filter(labelled).map((c) => c.name);
     const widest = Math.max(0, ...named.concat(level.map((l) => l.name)).map((n) => measuring.measureText(n).width));
     const right = Math.min(220, widest + 16);
@@ -209,8 +210,8 @@
       width: c.width,
       dash: c.dash,
       spanGaps: true,
-      points: { show: false },
-      paths: c.shape === 'step' ? uPlot.paths.stepped({ align: 1 }) : undefined,
+      points: c.shape === 'dots' ? { show: true, size: 4, width: 0, fill: () => colour(c.ink) + '90', stroke: () => 'transparent' } : { show: false },
+      paths: c.shape === 'step' ? uPlot.paths.stepped({ align: 1 }) : c.shape === 'dots' ? () => null : undefined,
       fill: c.shape === 'ground' ? () => colour('soil') : c.shape === 'step' ? () => colour(c.ink) + '30' : undefined,
       fillTo: c.shape === 'ground' ? (u) => u.scales.y.min : 0,
     });
@@ -313,6 +314,11 @@
     figure.uplot = u;
     figure.fit = () => { const s = size(); if (s.width !== u.width) u.setSize(s); };
   };
+
+  // A figure in a folded block has no width until it is opened.
+  addEventListener('toggle', (event) => {
+    for (const f of event.target.querySelectorAll('figure.figure')) f.fit();
+  }, true);
 
   const figures = Array.from(document.querySelectorAll('figure.figure'));
   figures.forEach(plotOf);

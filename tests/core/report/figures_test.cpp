@@ -49,7 +49,9 @@ TEST(Profiles, a_rating_is_a_line_its_pressure_above_the_ground) {
   const auto plots = profiles(study);
   const auto& pipe = study.pipes[0];
   for (std::size_t i = 0; i < pipe.chainage.size(); ++i)
-    EXPECT_NEAR(value_at(plots[0], "rating", pipe.chainage[i]), pipe.elevation[i] + pipe.rating / (study.density * study.gravity), 1e-9);
+    EXPECT_NEAR(value_at(plots[0], "rating", pipe.chainage[i]),
+                pipe.elevation[i] + pipe.rating / (study.density * study.gravity),
+                1e-9);
   EXPECT_EQ(curve_named(plots[1], "rating"), nullptr);  // lower main is unrated
 }
 
@@ -59,7 +61,9 @@ TEST(Profiles, bands_of_the_envelope_are_filled_between_their_ends) {
   ASSERT_EQ(plot.fills.size(), 2u);
   for (const Fill& fill : plot.fills)
     for (std::size_t i = 0; i < plot.abscissa.size(); ++i)
-      if (std::isfinite(plot.curves[fill.lower].y[i])) { EXPECT_LE(plot.curves[fill.lower].y[i], plot.curves[fill.upper].y[i]); }
+      if (std::isfinite(plot.curves[fill.lower].y[i])) {
+        EXPECT_LE(plot.curves[fill.lower].y[i], plot.curves[fill.upper].y[i]);
+      }
   EXPECT_TRUE(profiles(support::sample_surge())[1].fills.empty());
 }
 
@@ -71,7 +75,8 @@ TEST(Profiles, a_limit_stands_where_it_holds) {
   EXPECT_NE(curve_named(plots[0], "surge rating"), nullptr);
   EXPECT_EQ(curve_named(plots[1], "surge rating"), nullptr);
   EXPECT_EQ(curve_named(plots[1], "no vacuum"), nullptr);
-  const auto marked = std::find_if(plots[1].points.begin(), plots[1].points.end(), [](const Point& p) { return p.name == "no vacuum"; });
+  const auto marked = std::find_if(
+      plots[1].points.begin(), plots[1].points.end(), [](const Point& p) { return p.name == "no vacuum"; });
   ASSERT_NE(marked, plots[1].points.end());
   EXPECT_EQ(marked->x, 900.0);
 }
@@ -86,7 +91,8 @@ TEST(Profiles, many_pipes_keep_those_with_the_extremes) {
   study.highest->pipe = "branch 77";
   const auto plots = profiles(study, 10);
   EXPECT_EQ(plots.size(), 10u);
-  EXPECT_TRUE(std::any_of(plots.begin(), plots.end(), [](const Plot& p) { return p.title == "Heads along branch 77"; }));
+  EXPECT_TRUE(
+      std::any_of(plots.begin(), plots.end(), [](const Plot& p) { return p.title == "Heads along branch 77"; }));
 }
 
 TEST(Profiles, without_a_run_ground_and_steady_line_remain) {
@@ -103,7 +109,8 @@ TEST(Histories, hold_every_step_and_leave_out_what_is_missing) {
   ASSERT_EQ(plots.size(), 3u);
   const auto& t = *study.transient;
   EXPECT_EQ(plots[0].abscissa, t.time);
-  for (std::size_t row = 0; row < t.time.size(); ++row) EXPECT_EQ(plots[0].curves[1].y[row], t.probe_pressure[row * 3 + 1]);
+  for (std::size_t row = 0; row < t.time.size(); ++row)
+    EXPECT_EQ(plots[0].curves[1].y[row], t.probe_pressure[row * 3 + 1]);
   EXPECT_EQ(plots[2].curves.size(), 2u);  // the third probe has no flow of its own
 }
 
@@ -120,7 +127,9 @@ TEST(Histories, no_two_curves_of_a_plot_look_alike) {
   std::size_t curves = 0;
   for (const Plot& plot : plots) {
     for (std::size_t i = 0; i < plot.curves.size(); ++i)
-      for (std::size_t j = 0; j < i; ++j) EXPECT_NE(std::pair(plot.curves[i].ink, plot.curves[i].dash), std::pair(plot.curves[j].ink, plot.curves[j].dash));
+      for (std::size_t j = 0; j < i; ++j)
+        EXPECT_NE(std::pair(plot.curves[i].ink, plot.curves[i].dash),
+                  std::pair(plot.curves[j].ink, plot.curves[j].dash));
     curves += plot.curves.size();
     EXPECT_LE(plot.curves.size(), 6u);
   }
@@ -176,6 +185,26 @@ TEST(Density, a_few_draws_make_no_picture_and_equal_draws_no_trouble) {
   study.bands->output_value.resize(3 * 19);
   EXPECT_TRUE(density(study, 0).abscissa.empty());
   EXPECT_TRUE(density(study, 99).abscissa.empty());
+}
+
+TEST(Scatters, pair_each_draw_with_its_unknown_most_telling_first) {
+  const auto study = support::sample_study();
+  const auto& b = *study.bands;
+  const auto plots = scatters(study, 1);
+  ASSERT_EQ(plots.size(), 2u);
+  EXPECT_EQ(plots[0].title, "peak against main wave_speed_scatter");
+  EXPECT_EQ(plots[1].x.shown, Shown::diameter);  // a wall in metres is shown in mm
+  EXPECT_EQ(plots[0].abscissa.size(), 510u);
+  EXPECT_TRUE(std::is_sorted(plots[0].abscissa.begin(), plots[0].abscissa.end()));
+  for (std::size_t i = 0; i < plots[0].abscissa.size(); i += 50) {
+    bool found = false;
+    for (std::size_t run = 0; run < 512; ++run)
+      found = found || (b.input_value[run * 4 + 2] == plots[0].abscissa[i] &&
+                        b.output_value[run * 3 + 1] == plots[0].curves[0].y[i]);
+    EXPECT_TRUE(found) << i;
+  }
+  EXPECT_EQ(scatters(study, 1, 1).size(), 1u);
+  EXPECT_TRUE(scatters(study, 2).empty());  // no sensitivity was computed
 }
 
 TEST(LimitOf, goes_by_name_then_by_kind_and_place) {

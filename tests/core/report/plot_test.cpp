@@ -33,9 +33,11 @@ TEST(Thinned, keeps_every_peak_of_every_stretch_and_averages_nothing) {
   for (int b = 0; b < buckets; ++b) {
     double low = 1e300, high = -1e300, kept_low = 1e300, kept_high = -1e300;
     for (std::size_t i = 0; i < x.size(); ++i)
-      if (static_cast<int>(std::floor((x[i] - x.front()) / step)) == b) low = std::min(low, y[i]), high = std::max(high, y[i]);
+      if (static_cast<int>(std::floor((x[i] - x.front()) / step)) == b)
+        low = std::min(low, y[i]), high = std::max(high, y[i]);
     for (const std::size_t i : rows)
-      if (static_cast<int>(std::floor((x[i] - x.front()) / step)) == b) kept_low = std::min(kept_low, y[i]), kept_high = std::max(kept_high, y[i]);
+      if (static_cast<int>(std::floor((x[i] - x.front()) / step)) == b)
+        kept_low = std::min(kept_low, y[i]), kept_high = std::max(kept_high, y[i]);
     ASSERT_EQ(low, kept_low) << b;
     ASSERT_EQ(high, kept_high) << b;
   }
@@ -48,8 +50,12 @@ TEST(Thinned, short_curves_are_kept_whole_and_missing_values_left_out) {
 }
 
 TEST(Ticks, are_round_and_inside) {
-  for (const auto& [low, high] : {std::pair{0.0, 1.0}, std::pair{-13.2, 987.0}, std::pair{11.64, 12.02}, std::pair{-4.746, -4.686},
-                                  std::pair{1e-7, 3e-7}, std::pair{1e6, 1.001e6}}) {
+  for (const auto& [low, high] : {std::pair{0.0, 1.0},
+                                  std::pair{-13.2, 987.0},
+                                  std::pair{11.64, 12.02},
+                                  std::pair{-4.746, -4.686},
+                                  std::pair{1e-7, 3e-7},
+                                  std::pair{1e6, 1.001e6}}) {
     const Ticks marks = ticks(low, high, 6);
     ASSERT_GE(marks.at.size(), 2u) << low << " " << high;
     EXPECT_LE(marks.at.size(), 13u);

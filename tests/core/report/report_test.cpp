@@ -23,8 +23,11 @@ TEST(Page, stands_alone) {
   EXPECT_EQ(text.rfind("<!DOCTYPE html>", 0), 0u);
   EXPECT_NE(text.find("Content-Security-Policy\" content=\"default-src 'none'"), std::string::npos);
   EXPECT_EQ(text.find("unsafe"), std::string::npos);
-  // The only addresses are names of the drawing language, which nobody fetches, and the plot library's own in its licence line.
-  EXPECT_EQ(count(text, "http"), count(text, "http://www.w3.org/2000/svg") + count(text, "http-equiv") + count(std::string(plot_script.text), "http"));
+  // The only addresses are names of the drawing language, which nobody fetches, and the plot library's own in its
+  // licence line.
+  EXPECT_EQ(count(text, "http"),
+            count(text, "http://www.w3.org/2000/svg") + count(text, "http-equiv") +
+                count(std::string(plot_script.text), "http"));
   EXPECT_EQ(count(std::string(plot_script.text), "http"), 1u);
   EXPECT_EQ(count(text, " src="), 0u);
   EXPECT_EQ(count(text, "<link"), 0u);
@@ -34,8 +37,22 @@ TEST(Page, stands_alone) {
 TEST(Page, blocks_stand_in_order) {
   const std::string text = page(support::sample_study());
   std::size_t last = 0;
-  for (const char* id : {"extremes", "limits", "profile", "history", "series", "bands", "events", "cavities", "devices", "checks", "steady",
-                         "inputs", "open", "cautions", "identity", "case"}) {
+  for (const char* id : {"extremes",
+                         "limits",
+                         "profile",
+                         "history",
+                         "series",
+                         "bands",
+                         "events",
+                         "cavities",
+                         "devices",
+                         "checks",
+                         "steady",
+                         "inputs",
+                         "open",
+                         "cautions",
+                         "identity",
+                         "case"}) {
     const std::size_t at = text.find(std::string("<section class=\"part\" id=\"") + id + "\"");
     ASSERT_NE(at, std::string::npos) << id;
     EXPECT_GT(at, last) << id;
@@ -57,8 +74,11 @@ TEST(Page, never_a_maximum_without_the_minimum_nor_a_chance_without_its_bound) {
 TEST(Page, holds_identity_and_the_case_verbatim) {
   const auto study = support::sample_study();
   const std::string text = page(study);
-  for (const std::string& word : {study.provenance.case_sha256, study.provenance.commit, std::string("hollowmere.toml"),
-                                  std::string("<dt>Seed</dt><dd>20</dd>"), std::string("<th scope=\"row\">Checker</th><td></td>"),
+  for (const std::string& word : {study.provenance.case_sha256,
+                                  study.provenance.commit,
+                                  std::string("hollowmere.toml"),
+                                  std::string("<dt>Seed</dt><dd>20</dd>"),
+                                  std::string("<th scope=\"row\">Checker</th><td></td>"),
                                   std::string("# ü, ± and &quot;quotes&quot;")})
     EXPECT_NE(text.find(word), std::string::npos) << word;
 }
@@ -83,7 +103,8 @@ TEST(Page, ids_are_unique) {
   const std::string text = page(support::sample_study());
   std::map<std::string, int> seen;
   const std::regex id(" id=\"([^\"]+)\"");
-  for (auto it = std::sregex_iterator(text.begin(), text.end(), id); it != std::sregex_iterator(); ++it) ++seen[(*it)[1]];
+  for (auto it = std::sregex_iterator(text.begin(), text.end(), id); it != std::sregex_iterator(); ++it)
+    ++seen[(*it)[1]];
   EXPECT_GT(seen.size(), 40u);
   for (const auto& [name, times] : seen) EXPECT_EQ(times, 1) << name;
 }
@@ -111,8 +132,15 @@ TEST(Assets, sums_are_those_of_the_text) {
 TEST(Pictures, have_fixed_names_and_stand_alone) {
   const auto study = support::sample_study();
   const auto files = pictures(study);
-  for (const char* name : {"profile-upper-main.svg", "profile-lower-main.svg", "history-pressure.svg", "history-flow.svg",
-                           "device-opening.svg", "density-drop.svg", "density-peak.svg", "budget-peak.svg", "sensitivity-peak.svg"})
+  for (const char* name : {"profile-upper-main.svg",
+                           "profile-lower-main.svg",
+                           "history-pressure.svg",
+                           "history-flow.svg",
+                           "device-opening.svg",
+                           "density-drop.svg",
+                           "density-peak.svg",
+                           "budget-peak.svg",
+                           "sensitivity-peak.svg"})
     EXPECT_TRUE(files.contains(name)) << name;
   for (const auto& [name, text] : files) {
     EXPECT_EQ(text.rfind("<svg xmlns=\"http://www.w3.org/2000/svg\"", 0), 0u) << name;

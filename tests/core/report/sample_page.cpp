@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: MIT
 //
-// Writes pages of the invented study into a folder, and beside them what a browser must read back from the first of them:
+// Writes pages of the invented study into a folder, and beside them what a browser must read back from the first of
+// them:
 //   sample_page FOLDER
 
 #include "core/report/report.hpp"
@@ -62,6 +63,12 @@ json expected(const Study& study) {
   all["device-opening"]["end valve"] = five(t.time, t.series, 3, 0);
   all["device-flow"]["end valve"] = five(t.time, t.series, 3, 1);
   all["device-gas-volume"]["vessel"] = five(t.time, t.series, 3, 2);
+  const auto& b = *study.bands;
+  for (const std::size_t run : {std::size_t{0}, std::size_t{5}, std::size_t{100}, std::size_t{333}, std::size_t{511}}) {
+    all["scatter-peak-by-main-wall"]["draws"].push_back({b.input_value[run * 4], b.output_value[run * 3 + 1]});
+    all["scatter-peak-by-main-wave__speed__scatter"]["draws"].push_back(
+        {b.input_value[run * 4 + 2], b.output_value[run * 3 + 1]});
+  }
   for (std::int32_t pipe = 0; pipe < 2; ++pipe) {
     const auto& p = study.pipes[static_cast<std::size_t>(pipe)];
     json& profile = all[pipe == 0 ? "profile-upper-main" : "profile-lower-main"];
@@ -70,7 +77,6 @@ json expected(const Study& study) {
     profile["steady"] = five_stations(study, pipe, t.steady_head);
     profile["vapour line"] = five_stations(study, pipe, t.vapour_head);
     for (std::size_t k = 0; k < 5; ++k) profile["ground"].push_back({p.chainage[k], p.elevation[k]});
-    const auto& b = *study.bands;
     const std::size_t stations = b.profile_share.size();
     for (std::size_t k = 0; k < 5; ++k) {
       const std::size_t at = static_cast<std::size_t>(pipe) * 11 + 2 * k;
