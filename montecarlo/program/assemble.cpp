@@ -104,6 +104,9 @@ void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOut
   for (const auto& limit : c.limits) {
     if (limit.at_most < 0.0) add_once(study.guesses, fmt::format("limit {}: at_most 5 % (default)", limit.name));
   }
+  if (c.friction.scatter.guess) {
+    add_once(study.guesses, "friction scatter ± 10 %, shared by all pipes, nobody stated it");
+  }
   for (const auto& warning : outcome.warnings) add_once(study.warnings, warning);
   study.limits = std::move(outcome.limits);
   study.bands = std::move(outcome.bands);

@@ -25,7 +25,11 @@ ExitCode with_case(const Options& options, const std::string& verb, const std::f
   limit_memory();
   auto reading = casefile::read_file(options.words.front());
   auto& c = reading.value;
-  if (reading.problems.empty() && !verb.empty()) reading.problems = casefile::refused_by_verb(c, verb);
+  if (reading.problems.empty() && !verb.empty()) {
+    reading.problems = casefile::refused_by_verb(c, verb);
+    const auto missing = network::validate_for(c, verb);
+    reading.problems.insert(reading.problems.end(), missing.begin(), missing.end());
+  }
   if (!reading.problems.empty()) return tell_problems(options, c.file_name, c.text, reading.problems);
   if (options.units == "us") c.show.units = network::UnitFamily::us;
   if (options.units == "si") c.show.units = network::UnitFamily::si;

@@ -13,6 +13,9 @@ namespace headband::program {
 [[nodiscard]] ExitCode verb_surge(const Options& options);
 [[nodiscard]] ExitCode verb_band(const Options& options);
 [[nodiscard]] ExitCode verb_report(const Options& options);
+[[nodiscard]] ExitCode verb_replay(const Options& options);
+[[nodiscard]] ExitCode verb_at(const Options& options);
+[[nodiscard]] ExitCode verb_compare(const Options& options);
 [[nodiscard]] ExitCode verb_liquid(const Options& options);
 
 /// Runs the verb of `options`; whatever is thrown becomes a message and its exit code.

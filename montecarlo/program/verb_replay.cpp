@@ -1,0 +1,87 @@
+// SPDX-License-Identifier: MIT
+//
+// replay: one draw of a band as a plain case. `surge` on it gives the bits the draw had in the batch.
+#include "core/base/error.hpp"
+#include "core/casefile/read.hpp"
+#include "core/resultfile/result_file.hpp"
+#include "montecarlo/program/arguments.hpp"
+#include "montecarlo/program/failure.hpp"
+#include "montecarlo/program/guard.hpp"
+#include "montecarlo/program/output.hpp"
+#include "montecarlo/program/verbs.hpp"
+#include "montecarlo/program/worst_draws.hpp"
+#include "montecarlo/propagate/band.hpp"
+
+#include <fmt/format.h>
+
+#include <cstdlib>
+#include <filesystem>
+#include <fstream>
+
+namespace headband::program {
+namespace {
+
+/// The tables of a case beside it again, in a folder that goes with the object.
+class SideFiles {
+ public:
+  explicit SideFiles(const answers::Provenance& provenance) {
+    std::string pattern = (std::filesystem::temp_directory_path() / "headband-XXXXXX").string();
+    if (::mkdtemp(pattern.data()) == nullptr) throw base::IoError(base::IoFailure::cannot_create, "cannot create a folder for the tables of the case");
+    folder_ = pattern;
+    for (const auto& file : provenance.side_files) {
+      std::ofstream(std::filesystem::path(folder_) / file_name(file[0]), std::ios::binary) << file[2];
+    }
+  }
+  ~SideFiles() {
+    std::error_code ignored;
+    std::filesystem::remove_all(folder_, ignored);
+  }
+  SideFiles(const SideFiles&) = delete;
+  SideFiles& operator=(const SideFiles&) = delete;
+  [[nodiscard]] const std::string& folder() const { return folder_; }
+
+ private:
+  std::string folder_;
+};
+
+/// The draw meant: a number from 0, or the N-th worst.
+long long draw_meant(const Options& options, const answers::Study& study) {
+  const auto& bands = *study.bands;
+  const auto most = static_cast<unsigned long long>(std::max(bands.draws, 1LL));
+  if (options.words[1] != "worst") {
+    if (options.words.size() > 2) throw UsageError("replay takes N, or worst N");
+    return static_cast<long long>(whole_number("replay", options.words[1], 0, most - 1));
+  }
+  const std::string rank = options.words.size() > 2 ? options.words[2] : "1";
+  if (rank == "corner") throw UsageError("replay worst corner is not computed yet by this version");
+  return worst_draw(study, static_cast<long long>(whole_number("replay worst", rank, 1, most)));
+}
+
+ExitCode replay(const Options& options) {
+  const std::string& result = options.words.front();
+  const answers::Study study = resultfile::read(result);
+  if (!study.bands) throw UsageError(fmt::format("{} holds no draws: it is a result of {}", result, study.verb));
+  const long long draw = draw_meant(options, study);
+  const SideFiles side(study.provenance);
+  const auto reading = casefile::read_text(study.provenance.case_file, study.provenance.case_text, side.folder());
+  if (!reading.problems.empty()) throw base::IoError(base::IoFailure::damaged, fmt::format("{}: the case it holds cannot be read", result));
+  const auto scores = montecarlo::scores_of_draw(reading.value, study.bands->seed, study.bands->draws, draw);
+  const std::string note = fmt::format("draw {} of {} ({}, seed {}) of {}", draw, study.bands->draws, study.bands->design,
+                                       study.bands->seed, study.provenance.case_file);
+  const std::string text = casefile::write_case(reading.value, scores, note);
+  if (options.out.empty()) {
+    print(text);
+  } else {
+    write_text(options.out, text, {.force = options.force, .own_name = false, .mark = {}});
+    remark(options, fmt::format("case: {} ({})\n", options.out, note));
+  }
+  return ExitCode::done;
+}
+
+}  // namespace
+
+ExitCode verb_replay(const Options& options) {
+  return guarded(options.words.front(), [&] { return told(options, [&] { return replay(options); }); });
+}
+
+}  // namespace headband::program
