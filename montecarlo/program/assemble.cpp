@@ -1,39 +1,45 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/program/assemble.hpp"
 
+#include "core/base/hash.hpp"
+#include "core/base/version.hpp"
 #include "core/casefile/read.hpp"
-#include "montecarlo/program/decide.hpp"
+#include "core/show/words.hpp"
 #include "montecarlo/program/judge.hpp"
-#include "montecarlo/program/provenance.hpp"
 
+#include <fmt/chrono.h>
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <chrono>
 #include <cmath>
 #include <utility>
 
 namespace headband::program {
 namespace {
 
+/// ISO 8601 in UTC with milliseconds, so that the wall time can be told again.
+std::string timestamp(std::chrono::system_clock::time_point when) {
+  const auto seconds = std::chrono::floor<std::chrono::seconds>(when);
+  const auto rest = std::chrono::duration_cast<std::chrono::milliseconds>(when - seconds).count();
+  return fmt::format("{:%Y-%m-%dT%H:%M:%S}.{:03}Z", fmt::gmtime(std::chrono::system_clock::to_time_t(seconds)), rest);
+}
+
+void add_file(answers::Provenance& provenance, const network::Table& table) {
+  if (table.file.empty()) return;
+  for (const auto& known : provenance.side_files) {
+    if (known[0] == table.file) return;
+  }
+  provenance.side_files.push_back({table.file, base::sha256_hex(table.text), table.text});
+}
+
 void add_once(std::vector<std::string>& list, const std::string& text) {
   if (std::ranges::find(list, text) == list.end()) list.push_back(text);
 }
 
-/// The cautions that belong beside the numbers of this study (common practice).
-std::vector<std::string> cautions(const answers::Study& study, const network::Case& c, const network::Plan& plan) {
-  std::vector<std::string> list{
-      "This is a calculation aid. The code in force and a licensed engineer decide. Ratings were typed by the user.",
-      "Not covered: slam of check valves, structures that move with the liquid, human error, wrong drawings, a wrong "
-      "valve."};
-  const bool surged = study.transient.has_value() || (study.bands && study.bands->surged);
-  if (study.transient && !study.transient->cavities.empty()) {
-    list.emplace_back("Vapour formed in this run; pressures after a cavity rejoins are of the right order of size only.");
-  }
-  if (study.bands && study.bands->surged && study.bands->with_cavity > 0) {
-    list.push_back(fmt::format("Vapour formed in {} of {} draws; pressures after a cavity rejoins are of the right order of "
-                               "size only.", study.bands->with_cavity, study.bands->draws));
-  }
-  if (surged) list.emplace_back("A smooth pipe is worse for surge and better for pressure drop.");
+/// The cautions only the case tells of (common practice); those of the numbers are core/show's.
+std::vector<std::string> cautions_of_case(const network::Case& c, const network::Plan& plan) {
+  std::vector<std::string> list;
   if (c.liquid.free_gas.given() && (c.liquid.free_gas.value > 0.0 || !c.liquid.free_gas.exact())) {
     list.emplace_back("Free gas lowers the first peak but lengthens the swing; it is not a safety device.");
   }
@@ -42,17 +48,53 @@ std::vector<std::string> cautions(const answers::Study& study, const network::Ca
     return d.kind == network::DeviceKind::pump &&
            c.pumps[static_cast<std::size_t>(d.index)].check_valve.kind == network::CheckValveKind::ideal;
   });
-  if (surged && checked) list.emplace_back("Ideal closure of check valves is assumed unless their data are given; slam is not assessed.");
+  if (checked) {
+    list.emplace_back("Ideal closure of check valves is assumed unless their data are given; slam is not assessed.");
+  }
   const auto plastic = [](const network::Pipe& pipe) {
     return (pipe.modulus.given() && pipe.modulus.value < 10e9) || !pipe.creep.empty();
   };
-  if (surged && std::ranges::any_of(c.pipes, plastic)) {
+  if (std::ranges::any_of(c.pipes, plastic)) {
     list.emplace_back("Plastic walls: the modulus depends on temperature, age and time under load.");
   }
   return list;
 }
 
 }  // namespace
+
+answers::Provenance begin_provenance(const network::Case& c, const Options& options, const std::string& verb) {
+  answers::Provenance p;
+  p.case_file = c.file_name;
+  p.case_text = c.text;
+  p.case_sha256 = base::sha256_hex(c.text);
+  for (const auto& basin : c.basins) add_file(p, basin.level_table);
+  for (const auto& pipe : c.pipes) add_file(p, pipe.profile_table);
+  for (const auto& pump : c.pumps) {
+    add_file(p, pump.curve);
+    add_file(p, pump.torque);
+    add_file(p, pump.suter);
+  }
+  for (const auto& event : c.events) add_file(p, event.travel);
+  p.verb = verb;
+  p.command = options.command;
+  p.seed = options.seed.value_or(c.band.seed);
+  p.version = base::version();
+  p.commit = base::commit();
+  p.build_kind = base::build_kind();
+  p.compiler = base::compiler();
+  p.flags = base::flags();
+  p.libraries = base::libraries();
+  p.started = timestamp(std::chrono::system_clock::now());
+  p.wall_time = std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count();
+  p.threads = threads_for(options);
+  return p;
+}
+
+void end_provenance(answers::Provenance& p) {
+  // `wall_time` held the steady clock at the start.
+  p.wall_time = std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count() - p.wall_time;
+  p.finished = timestamp(std::chrono::system_clock::now());
+}
 
 answers::Study begin_study(const network::Case& c, const Options& options, const std::string& verb) {
   answers::Study study;
@@ -117,14 +159,16 @@ void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOut
 }
 
 void conclude(answers::Study& study, const network::Case& c, const network::Plan& plan) {
-  study.cautions = cautions(study, c, plan);
+  const bool surged = study.transient.has_value() || (study.bands && study.bands->surged);
+  if (surged) study.cautions = cautions_of_case(c, plan);
   if (study.state == answers::RunState::incomplete && study.limits_shown) {
     for (auto& limit : study.limits) limit.verdict = answers::Verdict::cannot_tell;
     study.verdict = answers::Verdict::cannot_tell;
   } else {
     study.verdict = study.limits_shown ? worst(study.limits) : answers::Verdict::none;
   }
-  study.decision = decision(study);
+  study.cautions = show::cautions(study);
+  study.decision = show::decision(study);
   end_provenance(study.provenance);
 }
 

@@ -12,6 +12,12 @@
 
 namespace headband::program {
 
+/// Where the numbers come from: case, side files, seed, version, build; `started` is now.
+[[nodiscard]] answers::Provenance begin_provenance(const network::Case& c, const Options& options, const std::string& verb);
+
+/// Sets `finished` and the wall time.
+void end_provenance(answers::Provenance& provenance);
+
 /// A study with what every verb says: provenance, title, values as understood, remarks and guesses of the reader.
 /// @param verb "check", "flow", "surge", "band"
 [[nodiscard]] answers::Study begin_study(const network::Case& c, const Options& options, const std::string& verb);

@@ -66,7 +66,8 @@ ExitCode run(const Options& options) noexcept {
   using Verb = ExitCode (*)(const Options&);
   static constexpr std::pair<std::string_view, Verb> table[] = {
       {"new", verb_new},   {"check", verb_check},   {"flow", verb_flow},    {"surge", verb_surge},
-      {"band", verb_band}, {"report", verb_report}, {"liquid", verb_liquid}};
+      {"band", verb_band}, {"report", verb_report}, {"liquid", verb_liquid},
+      {"at", verb_at},     {"compare", verb_compare}, {"replay", verb_replay}};
   for (const auto& [name, verb] : table) {
     if (name == options.verb) return told(options, [&, go = verb] { return go(options); });
   }

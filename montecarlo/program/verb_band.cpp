@@ -7,7 +7,6 @@
 #include "montecarlo/program/judge.hpp"
 #include "montecarlo/program/output.hpp"
 #include "montecarlo/program/progress.hpp"
-#include "montecarlo/program/provenance.hpp"
 #include "montecarlo/program/signals.hpp"
 #include "montecarlo/program/study_case.hpp"
 #include "montecarlo/program/verbs.hpp"

@@ -2,8 +2,8 @@
 """Words and options of the call: help, version, spelling, numbers; nothing is written when the call is wrong."""
 from outside import *
 
-READY = ["new", "check", "flow", "surge", "band", "report", "liquid"]
-LATER = ["fastest", "age", "match", "doubt", "replay", "compare", "at"]
+READY = ["new", "check", "flow", "surge", "band", "report", "liquid", "at", "compare", "replay"]
+LATER = ["fastest", "age", "match", "doubt"]
 
 
 class Help(Outside):
