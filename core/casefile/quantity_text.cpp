@@ -138,6 +138,7 @@ class Grammar {
   std::string_view unit_text() {
     static constexpr std::array<std::string_view, 11> ends{"±", "+/-", "+-", " x/", "×/", "between", "likely", "..", ",", "(", " and "};
     const std::string_view rest = text_.substr(at_);
+    if (rest.starts_with("and ")) return {};
     std::size_t length = rest.size();
     for (const std::string_view end : ends) length = std::min(length, rest.find(end));
     std::string_view unit = rest.substr(0, length);
@@ -283,7 +284,7 @@ class Grammar {
   double half_width(const Amount& half) {
     if (half.percent && rule_.dimension == Dimension::share) {
       // Points of per cent, unless that is senseless: "0.01 % ± 50 %" cannot be read without asking.
-      if (half.number / 100.0 > std::abs(quantity_.value))
+      if (quantity_.value != 0.0 && half.number / 100.0 > std::abs(quantity_.value))
         fail_at(half.at, fmt::format("'± {} %' of a share is unclear: points of per cent, or a share of the value?", half.number),
                 "\"A % between B % and C %\" or \"A % x/ 2\"", "write the bounds themselves");
       return half.number / 100.0;
