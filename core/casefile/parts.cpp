@@ -54,6 +54,7 @@ void Root::finish() {
     const std::string name(key.str());
     const std::string near = nearest(name, known);
     const bool section_like = node.is_table() || node.is_array_of_tables();
+    if (node.is_array_of_tables() || near == "liquid") context_.names_doubtful = true;
     std::string list;
     for (const std::string& k : known) list += (list.empty() ? "" : ", ") + k;
     context_.report(place_of(key), name, fmt::format("unknown {} `{}`", section_like ? "section" : "key outside of a section", name), "",
@@ -65,12 +66,14 @@ std::string element_name(Context& context, const toml::table& table, std::string
   const std::string stand_in = fmt::format("{} {}", kind, index + 1);
   const toml::node* node = table.get("name");
   if (node == nullptr) {
+    context.names_doubtful = true;
     context.report(place_of(table), fmt::format("{}/{}/name", kind, stand_in), fmt::format("a [[{}]] has no name", kind), "", "name = \"…\"", "give every element a name of its own");
     return stand_in;
   }
   const auto* text = node->as_string();
   const std::string name = text == nullptr ? std::string() : text->get();
   const auto complain = [&](std::string what, std::string bound) {
+    context.names_doubtful = true;
     context.report(place_of(*node), fmt::format("{}/{}/name", kind, name), std::move(what), written(*node), std::move(bound), "give the element another name");
   };
   if (text == nullptr)

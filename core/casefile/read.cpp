@@ -57,15 +57,20 @@ std::string element_of(const std::string& path) {
 }
 
 /// Problems of the pipeline, without those that only follow from a problem already told about the same element.
-void add_network_problems(Context& context, const Case& c, base::Problems found) {
+void add_network_problems(Context& context, base::Problems found) {
   std::set<std::string> told;
   for (const base::Problem& p : context.problems) told.insert(element_of(p.path));
   for (base::Problem& p : found) {
-    if (told.contains(element_of(p.path))) continue;
-    if (p.place.line == 0) p.place = place_of_path(context, p.path);
+    if (told.contains(element_of(p.path)) || told.contains(p.path.substr(0, p.path.find('/')))) continue;
+    const auto key = context.places.find(p.path);
+    const bool names_a_key = std::count(p.path.begin(), p.path.end(), '/') >= 2 && key != context.places.end();
+    if (names_a_key)
+      p.place = key->second;
+    else if (p.place.line == 0)
+      p.place = place_of_path(context, p.path);
+    if (p.bound.empty() && p.value.starts_with("as ")) p.bound = "the name of another value of the same kind";
     context.problems.push_back(std::move(p));
   }
-  (void)c;
 }
 
 void sort_and_thin(base::Problems& problems) {
@@ -113,9 +118,8 @@ Reading read_text(const std::string& file_name, const std::string& text, const s
   read_other_verbs(root, c);
   root.finish();
   settle(context, c);
-  base::Problems of_network = network::number_unknowns(c);
-  for (base::Problem& p : network::validate(c)) of_network.push_back(std::move(p));
-  add_network_problems(context, c, std::move(of_network));
+  add_network_problems(context, network::number_unknowns(c));
+  if (!context.names_doubtful) add_network_problems(context, network::validate(c));
   reading.problems = std::move(context.problems);
   sort_and_thin(reading.problems);
   return reading;

@@ -77,7 +77,7 @@ void read_answers(Section& section, BandRequest& band) {
       section.context().report(place_of(item), "band/answers", "an answer is a table", written(item), "{ flow = \"main\" }", "put its words in curly brackets");
       continue;
     }
-    Section inner(section.context(), *table, "band", "", fmt::format("band/answers {}", band.answers.size() + 1));
+    Section inner(section.context(), *table, "band", "", "band/answers");
     AnswerRequest answer;
     answer.place = inner.place();
     answer.name = inner.text("name");

@@ -30,6 +30,7 @@ struct Context {
   std::map<std::string, SourcePlace> places;  ///< path of a value → where it stands
   std::map<std::string, int> names;           ///< names of unknowns given so far
   std::vector<std::string> guesses, warnings;
+  bool names_doubtful = false;  ///< an element is missing or misnamed: what refers to it would be told again
 
   void report(SourcePlace place, std::string path, std::string what, std::string value, std::string bound, std::string hint);
   /// `name`, or `name 2`, `name 3` when it is taken.

@@ -16,8 +16,9 @@ void refuse_repeated_names(Context& context, const Case& c) {
   const auto take = [&](std::string_view kind, const auto& elements) {
     for (const auto& e : elements) {
       const auto [first, fresh] = seen.emplace(e.name, std::pair{std::string(kind), e.place});
-      if (!fresh)
-        context.report(e.place, fmt::format("{}/{}/name", kind, e.name), "two elements have one name", fmt::format("\"{}\"", e.name), fmt::format("the other one is the {} in line {}", first->second.first, first->second.second.line), "give one of them another name");
+      if (fresh) continue;
+      context.names_doubtful = true;
+      context.report(e.place, fmt::format("{}/{}/name", kind, e.name), "two elements have one name", fmt::format("\"{}\"", e.name), fmt::format("the other one is the {} in line {}", first->second.first, first->second.second.line), "give one of them another name");
     }
   };
   take("basin", c.basins);

@@ -16,7 +16,7 @@ void expect_two_by_two(const std::string& text) {
   EXPECT_EQ(r.table.columns[1].numbers, (std::vector<double>{1.5, -2.25}));
 }
 
-TEST(Csv, SeparatorsMarksAndLineEnds) {
+TEST(CsvTable, SeparatorsMarksAndLineEnds) {
   expect_two_by_two("time [h],level [m]\n0,1.5\n6,-2.25\n");
   expect_two_by_two("time [h];level [m]\n0;1.5\n6;-2.25");
   expect_two_by_two("time [h]\tlevel [m]\n0\t1.5\n6\t-2.25\n");
@@ -26,14 +26,14 @@ TEST(Csv, SeparatorsMarksAndLineEnds) {
   expect_two_by_two("\"time (h)\",\"level (m)\"\n0,1.5\n6,-2.25\n");
 }
 
-TEST(Csv, DecimalCommaIsDeclared) {
+TEST(CsvTable, DecimalCommaIsDeclared) {
   expect_two_by_two("# decimal comma\ntime [h];level [m]\n0;1,5\n6;-2,25\n");
   const CsvReading r = read_csv("time [h];level [m]\n0;1,5\n");
   ASSERT_EQ(r.problems.size(), 1U);
   EXPECT_NE(r.problems[0].hint.find("decimal comma"), std::string::npos);
 }
 
-TEST(Csv, ProblemsNameRowAndColumn) {
+TEST(CsvTable, ProblemsNameRowAndColumn) {
   const CsvReading r = read_csv("time [h],level [m]\n0,1\n1,high\n2\n3,nan\n4,inf\n");
   ASSERT_EQ(r.problems.size(), 4U);
   EXPECT_EQ(r.problems[0].line, 3);
