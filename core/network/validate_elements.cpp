@@ -153,7 +153,7 @@ void check_loss_law(const Case& c, const Pipe& pipe, const std::string& path, Pr
                        "the roughness is missing",
                        "roughness = \"0.1 mm\"",
                        "give it, or hazen_williams, manning or friction_factor in its place");
-  } else if (pipe.roughness.value > roughest * bore_of(pipe)) {
+  } else if (bore_of(pipe) > 0.0 && pipe.roughness.value > roughest * bore_of(pipe)) {  // no bore is told before
     problems.add(pipe.roughness,
                  pipe.place,
                  path + "/roughness",
