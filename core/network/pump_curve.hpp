@@ -41,7 +41,18 @@ class PumpCurve {
     return point;
   }
 
+  /// Writes the curve of one lane into `out`; storage of `out` is kept.
+  void copy_lane(int lane, PumpCurve<1>& out) const {
+    out.pieces_.resize(pieces_.size());
+    for (std::size_t i = 0; i < pieces_.size(); ++i)
+      out.pieces_[i] = {
+          pieces_[i].from[lane], pieces_[i].c0[lane], pieces_[i].c1[lane], pieces_[i].c2[lane], pieces_[i].c3[lane]};
+  }
+  [[nodiscard]] bool fitted() const { return !pieces_.empty(); }
+
  private:
+  template <int>
+  friend class PumpCurve;
   /// c0 + c1 t + c2 t^2 + c3 t^3 with t = flow - from, for flows from `from` on. The first piece is a straight line.
   struct Piece {
     Lanes<W> from, c0, c1, c2, c3;

@@ -14,10 +14,12 @@ namespace headband::steady {
 template <int W>
 struct LinkNumbers {
   std::vector<PipeFriction<W>> pipes;         ///< as Plan::pipes
+  std::vector<Lanes<W>> area;                 ///< as Plan::pipes [m2]
   std::vector<Lanes<W>> valve_share;          ///< as Case::valves: share of full coefficient at the start [-]
   std::vector<Lanes<W>> valve_resistance;     ///< dH = this Q|Q| [s2/m5]; infinite when shut, NaN when sized by flow
   std::vector<Lanes<W>> check_resistance;     ///< as Case::check_valves [s2/m5]
   std::vector<network::PumpCurve<W>> curves;  ///< as Case::pumps: one pump, rated speed
+  std::vector<Lanes<W>> last_curve_flow;      ///< as Case::pumps: last point of the curve [m3/s]
   std::vector<Lanes<W>> pump_count;           ///< pumps in parallel [-]
   std::vector<Lanes<W>> node_head;            ///< per node of the graph: held heads filled, others unset [m]
   std::vector<Lanes<W>> outflow;              ///< per node: known flows out of the network of links [m3/s]
@@ -42,7 +44,11 @@ void LinkNumbers<W>::fill(const network::Case& c,
                           const FlowGraph& graph,
                           const network::Values<W>& values) {
   pipes.resize(values.pipes.size());
-  for (std::size_t i = 0; i < pipes.size(); ++i) pipes[i] = pipe_friction(plan, values, i);
+  area.resize(values.pipes.size());
+  for (std::size_t i = 0; i < pipes.size(); ++i) {
+    pipes[i] = pipe_friction(plan, values, i);
+    area[i] = values.pipes[i].area;
+  }
 
   valve_share.resize(values.valves.size());
   valve_resistance.resize(values.valves.size());
@@ -59,8 +65,12 @@ void LinkNumbers<W>::fill(const network::Case& c,
   }
   curves.resize(values.pumps.size());
   pump_count.resize(values.pumps.size());
+  last_curve_flow.resize(values.pumps.size());
   for (std::size_t i = 0; i < curves.size(); ++i) {
-    if (values.pumps[i].curve_flow.size() >= 2) curves[i].fit(values.pumps[i].curve_flow, values.pumps[i].curve_head);
+    const network::PumpValues<W>& pump = values.pumps[i];
+    if (pump.curve_flow.size() < 2) continue;  // a pump known by its characteristic alone
+    curves[i].fit(pump.curve_flow, pump.curve_head);
+    last_curve_flow[i] = pump.curve_flow.back();
     pump_count[i] = static_cast<double>(c.pumps[i].count);
   }
 

@@ -4,8 +4,12 @@
 
 #include "core/pipe/wave_speed.hpp"
 #include "core/steady/explicit_flow.hpp"
+#include "core/steady/newton.hpp"
 
+#include <algorithm>
+#include <cmath>
 #include <limits>
+#include <optional>
 #include <tuple>
 
 namespace headband::steady {
@@ -49,12 +53,14 @@ struct SteadySolver::Parts {
   Parts(const network::Case& c, const network::Plan& plan, SteadyOptions chosen)
       : model(&c), topology(&plan), options(chosen), graph(make_flow_graph(c, plan)) {
     gas_possible = c.liquid.free_gas.given() && (c.liquid.free_gas.unknown >= 0 || c.liquid.free_gas.value > 0.0);
+    if (!graph.is_tree_each) newton.emplace(graph);
   }
 
   const network::Case* model;
   const network::Plan* topology;
   SteadyOptions options;
   FlowGraph graph;
+  std::optional<NewtonFlow> newton;  ///< where continuity alone does not fix the flows
   bool gas_possible = false;
   std::tuple<Workspace<1>, Workspace<8>> workspaces;
 
@@ -78,6 +84,46 @@ struct SteadySolver::Parts {
     state.status.fill(SteadyStatus::converged);
     state.residual = 0.0;
     state.iterations = 0;
+  }
+
+  /// Flows by continuity, or by Newton lane after lane.
+  template <int W>
+  void solve_flows(SteadyState<W>& state) {
+    Workspace<W>& work = workspace<W>();
+    if (!newton) {
+      solve_explicit(graph, work.numbers, work.flows);
+      for (int lane = 0; lane < W; ++lane)
+        if (!work.flows.possible[lane]) set_status(state, lane, SteadyStatus::not_converged);
+      return;
+    }
+    for (int lane = 0; lane < W; ++lane) {
+      const LaneOutcome outcome = newton->solve(graph, options, lane, work.numbers, work.flows);
+      state.status[static_cast<std::size_t>(lane)] = outcome.status;
+      state.residual.set(lane, outcome.residual);
+      state.iterations = std::max(state.iterations, outcome.iterations);
+    }
+    work.flows.losses.resize(work.numbers.pipes.size());
+    for (std::size_t i = 0; i < work.numbers.pipes.size(); ++i)
+      work.flows.losses[i] = pipe_loss(work.numbers.pipes[i], work.flows.flow[i]);  // pipes are the first links
+  }
+
+  /// A pipe on the jump of its law loses what the heads at its ends say, between both sides of the jump.
+  template <int W>
+  void tell_losses_on_jumps(SteadyState<W>& state) {
+    const Workspace<W>& work = workspace<W>();
+    for (int lane = 0; lane < W; ++lane) {
+      if (state.status[static_cast<std::size_t>(lane)] != SteadyStatus::on_jump) continue;
+      for (std::size_t i = 0; i < state.pipe_flow.size(); ++i) {
+        const double fall =
+            state.place_head[topology->pipes[i].from.at()][lane] - state.place_head[topology->pipes[i].to.at()][lane];
+        const double flow = state.pipe_flow[i][lane];
+        const PipeFriction<W>& pipe = work.numbers.pipes[i];
+        const double velocity_head = pipe.velocity_head[lane] * flow * flow;
+        state.head_loss[i].set(lane, fall);
+        if (velocity_head > 0.0)
+          state.friction_factor[i].set(lane, (std::abs(fall) / velocity_head - pipe.k[lane]) / pipe.diameters[lane]);
+      }
+    }
   }
 
   template <int W>
@@ -184,15 +230,9 @@ void SteadySolver::solve(const network::Values<W>& values, SteadyState<W>& state
   Workspace<W>& work = parts_->workspace<W>();
   parts_->size_state(state);
   work.numbers.fill(*parts_->model, *parts_->topology, parts_->graph, values);
-  if (is_explicit()) {
-    solve_explicit(parts_->graph, work.numbers, work.flows);
-    for (int lane = 0; lane < W; ++lane)
-      if (!work.flows.possible[lane]) Parts::set_status(state, lane, SteadyStatus::not_converged);
-  } else {
-    work.flows.flow.assign(parts_->graph.links.size(), Lanes<W>(not_a_number));
-    work.flows.losses.resize(work.numbers.pipes.size());
-  }
+  parts_->solve_flows(state);
   parts_->copy_flows(values, state);
+  parts_->tell_losses_on_jumps(state);
   parts_->size_valves(values, state);
   parts_->find_wave_speeds(values, state);
   Parts::find_lost_lanes(state);
