@@ -28,9 +28,8 @@ LEVELS = [
     ["transient/march"],
     ["transient/lumped"],
     ["montecarlo/sampling"],
-    ["montecarlo/bands"],
+    ["montecarlo/bands", "montecarlo/sensitivity"],
     ["montecarlo/propagate"],
-    ["montecarlo/sensitivity"],
     ["montecarlo/closing", "montecarlo/ageing", "montecarlo/matching"],
     ["montecarlo/program"],
 ]

@@ -307,6 +307,41 @@ Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const La
       spread);
 }
 
+double probability(const Spread& spread, const Cut& cut, double central, double x) {
+  const auto share = [](const CutTails& cut_tails, double z) {
+    const double inside = z > 0.0 ? cut_tails.inside - (normal_probability(-z) - cut_tails.above_high)
+                                  : normal_probability(z) - cut_tails.below_low;
+    return std::clamp(inside / cut_tails.inside, 0.0, 1.0);
+  };
+  const auto even = [&](double low, double high) {
+    const double a = std::max(low, cut.low), b = std::min(high, cut.high);
+    return std::clamp((x - a) / (b - a), 0.0, 1.0);
+  };
+  return std::visit(
+      Overloaded{
+          [&](const Exact&) { return 0.5; },
+          [&](const Normal& n) {
+            const double s = n.standard_deviation;
+            return share(tails_of((cut.low - central) / s, (cut.high - central) / s), (x - central) / s);
+          },
+          [&](const LogNormal& n) {
+            const double s = n.log_standard_deviation;
+            if (!(x / central > 0.0)) return 0.0;
+            const auto [low, high] = log_cut(cut, central, s);
+            return share(tails_of(low, high), std::log(x / central) / s);
+          },
+          [&](const Even& e) { return even(e.low, e.high); },
+          [&](const Triangle& t) {
+            const double low = triangle_tails(t.low, central, t.high, cut.low).below;
+            const double high = triangle_tails(t.low, central, t.high, cut.high).below;
+            const double at = triangle_tails(t.low, central, t.high, x).below;
+            return std::clamp((at - low) / (high - low), 0.0, 1.0);
+          },
+          [&](const NotRandom& r) { return even(r.low, r.high); },
+      },
+      spread);
+}
+
 double mean(const Spread& spread, const Cut& cut, double central) { return moments(spread, cut, central).mean; }
 
 double standard_deviation(const Spread& spread, const Cut& cut, double central) {

@@ -53,6 +53,10 @@ struct Cut {
 template <int W>
 [[nodiscard]] Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const Lanes<W>& score);
 
+/// Distribution function of the spread about `central` inside `cut`: the score at which `quantile` gives `x`, in
+/// [0, 1]. An exact value has no distribution: 0.5.
+[[nodiscard]] double probability(const Spread& spread, const Cut& cut, double central, double x);
+
 /// Mean of the spread about `central` inside `cut` [SI].
 [[nodiscard]] double mean(const Spread& spread, const Cut& cut, double central);
 

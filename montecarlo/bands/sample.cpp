@@ -5,16 +5,17 @@
 #include <boost/math/distributions/students_t.hpp>
 #include <cmath>
 #include <numbers>
+#include <utility>
 
 namespace headband::montecarlo {
 
 namespace {
 
 /// Gaussian kernel estimate of the density on an even grid: counts in fine bins, then a convolution.
-std::vector<double> density(const std::vector<double>& sorted, double low, double high, double width, int bins) {
+std::vector<double> density(const std::vector<double>& numbers, double low, double high, double width, int bins) {
   const double step = (high - low) / bins;
   std::vector<double> count(static_cast<std::size_t>(bins), 0.0);
-  for (const double x : sorted) {
+  for (const double x : numbers) {
     if (x < low || x > high) continue;
     const int bin = std::clamp(static_cast<int>((x - low) / step), 0, bins - 1);
     count[static_cast<std::size_t>(bin)] += 1.0;
@@ -25,7 +26,7 @@ std::vector<double> density(const std::vector<double>& sorted, double low, doubl
     const double z = static_cast<double>(k) * step / width;
     kernel[k] = std::exp(-0.5 * z * z);
   }
-  const double scale = 1.0 / (static_cast<double>(sorted.size()) * width * std::sqrt(2.0 * std::numbers::pi));
+  const double scale = 1.0 / (static_cast<double>(numbers.size()) * width * std::sqrt(2.0 * std::numbers::pi));
   std::vector<double> result(count.size());
   for (int i = 0; i < bins; ++i) {
     double sum = 0.0;
@@ -39,23 +40,6 @@ std::vector<double> density(const std::vector<double>& sorted, double low, doubl
 
 }  // namespace
 
-namespace {
-
-/// Straight line between the sorted numbers at a place counted from 0.
-double at_place(std::span<const double> sorted, double place) {
-  const auto below = std::min(static_cast<std::size_t>(place), sorted.size() - 1);
-  const std::size_t above = std::min(below + 1, sorted.size() - 1);
-  const double share = place - static_cast<double>(below);
-  return sorted[below] + share * (sorted[above] - sorted[below]);
-}
-
-}  // namespace
-
-double quantile_of_sorted(std::span<const double> sorted, double probability) {
-  if (sorted.empty()) return answers::missing;
-  return at_place(sorted, std::clamp(probability, 0.0, 1.0) * static_cast<double>(sorted.size() - 1));
-}
-
 std::vector<double> asked_probabilities(double coverage) {
   // the ends to 15 digits, so that (1 - 0.95)/2 is written 0.025
   const auto rounded = [](double p) { return std::round(p * 1e15) / 1e15; };
@@ -68,44 +52,55 @@ std::vector<double> asked_probabilities(double coverage) {
 Sample::Sample(std::span<const double> values, std::span<const std::int8_t> status, SampleShape shape)
     : shape_(shape), draws_(static_cast<long long>(values.size())) {
   const auto replicates = static_cast<std::size_t>(std::max(1, shape.replicates));
-  if (replicates > 1) replicate_.resize(replicates);
-  sorted_.reserve(values.size());
+  std::vector<double> finished;
+  finished.reserve(values.size());
+  std::vector<std::vector<double>> parts(replicates > 1 ? replicates : 0);
+  for (auto& part : parts) part.reserve(values.size() / replicates + 1);
   for (std::size_t i = 0; i < values.size(); ++i) {
     if (status[i] != 0 || std::isnan(values[i])) continue;
-    sorted_.push_back(values[i]);
-    if (replicates > 1) replicate_[i % replicates].push_back(values[i]);
+    finished.push_back(values[i]);
+    if (replicates > 1) parts[i % replicates].push_back(values[i]);
   }
-  if (sorted_.empty()) return;
-  // in draw order, before sorting, and about a pivot: no digits lost, the same bits for any threads
-  const double pivot = sorted_.front(), n = static_cast<double>(sorted_.size());
+  if (finished.empty()) return;
+  // in draw order and about a pivot: no digits lost, the same bits for any threads
+  const double pivot = finished.front(), n = static_cast<double>(finished.size());
   double sum = 0.0, squares = 0.0;
-  for (const double x : sorted_) sum += x - pivot;
+  for (const double x : finished) {
+    sum += x - pivot;
+    squares += (x - pivot) * (x - pivot);
+  }
   const double shift = sum / n;
-  for (const double x : sorted_) squares += (x - pivot - shift) * (x - pivot - shift);
+  if (squares > 1e8 * (squares - n * shift * shift)) {  // the pivot was a far one: once more about the mean
+    squares = 0.0;
+    for (const double x : finished) squares += (x - pivot - shift) * (x - pivot - shift);
+  } else {
+    squares -= n * shift * shift;
+  }
   mean_ = pivot + shift;
-  standard_deviation_ = n > 1.0 ? std::sqrt(squares / (n - 1.0)) : 0.0;
-  std::sort(sorted_.begin(), sorted_.end());
-  for (auto& r : replicate_) std::sort(r.begin(), r.end());
+  standard_deviation_ = n > 1.0 ? std::sqrt(std::max(0.0, squares) / (n - 1.0)) : 0.0;
+  ranked_ = Ranked(std::move(finished));
+  replicate_.reserve(parts.size());
+  for (auto& part : parts) replicate_.emplace_back(std::move(part));
 }
 
 answers::QuantileAnswer Sample::quantile(double probability) const {
   answers::QuantileAnswer q;
   q.probability = probability;
-  if (sorted_.empty()) return q;
-  q.value = quantile_of_sorted(sorted_, probability);
+  if (ranked_.empty()) return q;
+  q.value = ranked_.quantile(probability);
   const bool usable = std::ranges::all_of(replicate_, [](const auto& r) { return r.size() >= 2; });
   if (replicate_.empty() || !usable) {
     const Ranks ranks = quantile_ranks(draws_, probability, shape_.confidence);
     const long long lower = ranks.lower - failed();
-    if (lower >= 1) q.lower = sorted_[static_cast<std::size_t>(lower - 1)];
-    if (ranks.upper <= finished()) q.upper = sorted_[static_cast<std::size_t>(ranks.upper - 1)];
+    if (lower >= 1) q.lower = ranked_.at(static_cast<std::size_t>(lower - 1));
+    if (ranks.upper <= finished()) q.upper = ranked_.at(static_cast<std::size_t>(ranks.upper - 1));
     return q;
   }
   const auto replicates = static_cast<double>(replicate_.size());
   double sum = 0.0, squares = 0.0;
-  for (const auto& r : replicate_) sum += quantile_of_sorted(r, probability) - q.value;
+  for (const auto& r : replicate_) sum += r.quantile(probability) - q.value;
   for (const auto& r : replicate_) {
-    const double off = quantile_of_sorted(r, probability) - q.value - sum / replicates;
+    const double off = r.quantile(probability) - q.value - sum / replicates;
     squares += off * off;
   }
   const boost::math::students_t student(replicates - 1.0);
@@ -114,22 +109,22 @@ answers::QuantileAnswer Sample::quantile(double probability) const {
   const auto all = static_cast<double>(draws_), good = static_cast<double>(finished());
   // a stratified sample puts the quantile at place n p - 1/2 (from 0); half a draw each way is its own coarseness
   const double lowest = probability * all - (all - good) - 1.0, highest = probability * all;
-  if (lowest >= 0.0) q.lower = std::min(q.value, at_place(sorted_, lowest)) - half;
-  if (highest <= good - 1.0) q.upper = std::max(q.value, at_place(sorted_, highest)) + half;
+  if (lowest >= 0.0) q.lower = std::min(q.value, ranked_.at_place(lowest)) - half;
+  if (highest <= good - 1.0) q.upper = std::max(q.value, ranked_.at_place(highest)) + half;
   return q;
 }
 
 int Sample::modes() const {
-  if (sorted_.empty()) return 0;
-  const auto n = static_cast<double>(sorted_.size());
-  const double quartiles = quantile_of_sorted(sorted_, 0.75) - quantile_of_sorted(sorted_, 0.25);
+  if (ranked_.empty()) return 0;
+  const auto n = static_cast<double>(ranked_.size());
+  const double quartiles = ranked_.quantile(0.75) - ranked_.quantile(0.25);
   const double spread = quartiles > 0.0 ? std::min(standard_deviation_, quartiles / 1.34) : standard_deviation_;
-  if (!(spread > 1e-12 * std::fabs(mean_)) || sorted_.size() < 50) return 1;
+  if (!(spread > 1e-12 * std::fabs(mean_)) || ranked_.size() < 50) return 1;
   // Silverman, Density Estimation (1986), 3.31, and half of it: humps of a mixture are narrower than the whole
   const double width = 0.45 * spread * std::pow(n, -0.2);
-  const double low = quantile_of_sorted(sorted_, 0.001) - 3.0 * width, high = quantile_of_sorted(sorted_, 0.999) + 3.0 * width;
+  const double low = ranked_.quantile(0.001) - 3.0 * width, high = ranked_.quantile(0.999) + 3.0 * width;
   const int bins = std::clamp(static_cast<int>(4.0 * (high - low) / width), 64, 4000);
-  const std::vector<double> f = density(sorted_, low, high, width, bins);
+  const std::vector<double> f = density(ranked_.numbers(), low, high, width, bins);
   // standard error of a kernel estimate: sqrt(f R(K) / (n h)), R = 1 / (2 sqrt(pi))
   const double noise = 1.0 / (2.0 * std::sqrt(std::numbers::pi) * n * width);
   int humps = 0;

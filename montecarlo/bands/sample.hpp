@@ -5,6 +5,7 @@
 
 #include "core/answers/study.hpp"
 #include "montecarlo/bands/counts.hpp"
+#include "montecarlo/bands/ranked.hpp"
 
 #include <span>
 #include <vector>
@@ -25,7 +26,7 @@ class Sample {
 
   [[nodiscard]] long long draws() const { return draws_; }
   [[nodiscard]] long long failed() const { return draws_ - finished(); }
-  [[nodiscard]] long long finished() const { return static_cast<long long>(sorted_.size()); }
+  [[nodiscard]] long long finished() const { return static_cast<long long>(ranked_.size()); }
   [[nodiscard]] double mean() const { return mean_; }
   [[nodiscard]] double standard_deviation() const { return standard_deviation_; }
 
@@ -40,18 +41,13 @@ class Sample {
   /// the noise of the sample (3.5 standard errors of a Gaussian kernel estimate) and than a tenth of its height.
   [[nodiscard]] int modes() const;
 
-  [[nodiscard]] const std::vector<double>& sorted() const { return sorted_; }
-
  private:
   SampleShape shape_;
   long long draws_ = 0;
-  std::vector<double> sorted_;
-  std::vector<std::vector<double>> replicate_;  ///< sorted finished draws of each replicate
+  Ranked ranked_{{}};
+  std::vector<Ranked> replicate_;  ///< finished draws of each replicate
   double mean_ = answers::missing, standard_deviation_ = answers::missing;
 };
-
-/// Quantile of sorted numbers: straight line between order statistics, (n - 1) p + 1 (Hyndman & Fan 1996, type 7).
-[[nodiscard]] double quantile_of_sorted(std::span<const double> sorted, double probability);
 
 /// The probabilities every answer is asked at: 0.05, 0.5, 0.95 and the ends of `coverage`, rising, each once.
 [[nodiscard]] std::vector<double> asked_probabilities(double coverage);

@@ -159,6 +159,22 @@ TEST(Spread, EightLanesGiveTheBitsOfOne) {
   }
 }
 
+TEST(Spread, ProbabilityUndoesQuantile) {
+  std::vector<Sample> all = samples();
+  all.push_back({"lognormal cut", LogNormal{0.5}, {0.8, 2.0}, 1.0});
+  all.push_back({"negative lognormal", LogNormal{0.5}, {}, -1.0});
+  all.push_back({"normal cut above", Normal{1.0}, {0.5, 9.0}, 0.0});
+  all.push_back({"triangle cut", Triangle{0.0, 4.0}, {0.5, 3.0}, 1.0});
+  all.push_back({"not random", NotRandom{1.0, 1.4}, {}, 1.2});
+  for (const Sample& s : all) {
+    for (const double score : {0.001, 0.03, 0.25, 0.5, 0.75, 0.97, 0.999}) {
+      const double x = at(s.spread, s.cut, s.central, score);
+      const double back = probability(s.spread, s.cut, s.central, x);
+      EXPECT_NEAR(back, score, 1e-12) << s.name;
+    }
+  }
+}
+
 TEST(Spread, ExactIsTheValue) {
   EXPECT_EQ(at(Exact{}, {}, 3.25, 0.9), 3.25);
   EXPECT_EQ(standard_deviation(Exact{}, {}, 3.25), 0.0);

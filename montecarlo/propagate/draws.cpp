@@ -1,0 +1,164 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/propagate/draws.hpp"
+
+#include <algorithm>
+#include <chrono>
+#include <cmath>
+#include <condition_variable>
+#include <exception>
+#include <limits>
+#include <mutex>
+#include <thread>
+
+namespace headband::montecarlo {
+
+namespace {
+
+using base::Lanes;
+
+constexpr double nothing = std::numeric_limits<double>::quiet_NaN();
+constexpr std::int8_t not_finite = 2;
+/// Envelopes kept: 512 MB of them.
+constexpr std::size_t most_envelope_numbers = std::size_t{64} << 20;
+
+/// Deals blocks out in draw order and knows up to where all are done.
+class Dealer {
+ public:
+  Dealer(long long first, long long last, long long width, std::size_t threads)
+      : next_(first), last_(last), width_(width), held_(threads, free_) {}
+
+  /// The next range for `thread`, after what it held is done; empty at the end.
+  std::pair<long long, long long> take(std::size_t thread, bool stop) {
+    const std::lock_guard lock(mutex_);
+    if (stop || next_ >= last_) {
+      held_[thread] = free_;
+      return {last_, last_};
+    }
+    const long long from = next_;
+    next_ = std::min(last_, next_ + width_);
+    held_[thread] = from;
+    return {from, next_};
+  }
+
+  [[nodiscard]] long long done() {
+    const std::lock_guard lock(mutex_);
+    long long least = next_;
+    for (const long long from : held_) least = std::min(least, from);
+    return least;
+  }
+
+  void complain(long long draw, const std::string& what) {
+    const std::lock_guard lock(mutex_);
+    if (draw >= complaint_draw_) return;
+    complaint_draw_ = draw;
+    complaint_ = what;
+  }
+  [[nodiscard]] const std::string& complaint() const { return complaint_; }
+
+ private:
+  static constexpr long long free_ = std::numeric_limits<long long>::max();
+  std::mutex mutex_;
+  long long next_, last_, width_;
+  std::vector<long long> held_;
+  long long complaint_draw_ = free_;
+  std::string complaint_;
+};
+
+/// One thread's work: blocks until the dealer has none.
+void work(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockModel& model, DrawTable& table,
+          const std::atomic<bool>* stop) {
+  network::Scores<8> block_scores;
+  BlockAnswers block;
+  for (;;) {
+    const auto [from, to] = dealer.take(thread, stop != nullptr && stop->load(std::memory_order_relaxed));
+    if (from == to) return;
+    for (long long first = from; first < to; first += 8) {
+      try {
+        scores(first, block_scores);
+        model(block_scores, block);
+      } catch (const std::exception& error) {
+        dealer.complain(first, error.what());
+        block.answer.assign(table.answer.size(), Lanes<8>(nothing));
+        block.limit.assign(table.limit.size(), Lanes<8>(nothing));
+        block.head_max.clear();
+        block.head_min.clear();
+        block.status.fill(not_finite);
+      }
+      const int lanes = static_cast<int>(std::min(8LL, to - first));
+      for (int lane = 0; lane < lanes; ++lane) table.store(static_cast<std::size_t>(first + lane), lane, block);
+    }
+  }
+}
+
+}  // namespace
+
+
+void DrawTable::resize(long long draws) {
+  const auto n = static_cast<std::size_t>(draws);
+  for (auto* columns : {&answer, &limit})
+    for (auto& column : *columns) column.resize(n, nothing);
+  const std::size_t envelopes = head_max.empty() ? 0 : std::min(n, most_envelope_numbers / (2 * head_max.size()));
+  for (auto* columns : {&head_max, &head_min})
+    for (auto& column : *columns) column.resize(envelopes, nothing);
+  status.resize(n, not_finite);
+  cavity.resize(n, 0);
+}
+
+void DrawTable::store(std::size_t draw, int lane, const BlockAnswers& block) {
+  std::int8_t outcome = block.status[static_cast<std::size_t>(lane)];
+  double sum = 0.0;  // stays finite only where each number is
+  for (const auto* numbers : {&block.answer, &block.limit})
+    for (const auto& number : *numbers) sum += 0.0 * number[lane];
+  if (outcome == 0 && sum != 0.0) outcome = not_finite;
+  const bool good = outcome == 0;
+  status[draw] = outcome;
+  cavity[draw] = good && block.cavity[static_cast<std::size_t>(lane)] ? 1 : 0;
+  for (std::size_t i = 0; i < answer.size(); ++i) answer[i][draw] = good ? block.answer[i][lane] : nothing;
+  for (std::size_t i = 0; i < limit.size(); ++i) limit[i][draw] = good ? block.limit[i][lane] : nothing;
+  const bool envelopes = good && block.head_max.size() >= head_max.size();
+  for (std::size_t i = 0; i < head_max.size() && draw < head_max[i].size(); ++i) {
+    head_max[i][draw] = envelopes ? block.head_max[i][lane] : nothing;
+    head_min[i][draw] = envelopes ? block.head_min[i][lane] : nothing;
+  }
+}
+
+DrawSummary run_draws(long long first, long long last, const ScoreSource& scores, std::vector<BlockModel>& models,
+                      DrawTable& table, const DrawOptions& options) {
+  Dealer dealer(first, last, 8LL * std::max(1, options.blocks_at_once), models.size());
+  std::mutex mutex;
+  std::condition_variable ended;
+  std::size_t running = models.size();
+  {
+    std::vector<std::jthread> threads;
+    threads.reserve(models.size());
+    for (std::size_t t = 0; t < models.size(); ++t) {
+      threads.emplace_back([&, t] {
+        work(dealer, t, scores, models[t], table, options.stop);
+        const std::lock_guard lock(mutex);
+        --running;
+        ended.notify_one();
+      });
+    }
+    auto saved = std::chrono::steady_clock::now();
+    std::unique_lock lock(mutex);
+    while (!ended.wait_for(lock, std::chrono::milliseconds(200), [&] { return running == 0; })) {
+      lock.unlock();
+      const long long done = dealer.done();
+      if (options.progress) options.progress(done);
+      const auto now = std::chrono::steady_clock::now();
+      if (options.checkpoint && std::chrono::duration<double>(now - saved).count() >= options.checkpoint_seconds) {
+        options.checkpoint(done);
+        saved = std::chrono::steady_clock::now();
+      }
+      lock.lock();
+    }
+  }
+  DrawSummary summary;
+  summary.done = std::min(last, dealer.done());
+  summary.stopped = summary.done < last;
+  summary.complaint = dealer.complaint();
+  if (options.progress) options.progress(summary.done);
+  return summary;
+}
+
+}  // namespace headband::montecarlo

@@ -1,0 +1,61 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// Many draws over threads. A model answers eight draws at a time; what it says is stored by draw number, so nothing
+// depends on which thread took which block, or in what order.
+
+#include "core/network/values.hpp"
+#include "transient/march/surge.hpp"
+
+#include <atomic>
+#include <functional>
+#include <string>
+#include <vector>
+
+namespace headband::montecarlo {
+
+/// What a model says of eight draws.
+using BlockAnswers = transient::DrawAnswers<8>;
+
+/// Answers eight draws from their scores. Keeps its storage; used by one thread at a time.
+using BlockModel = std::function<void(const network::Scores<8>&, BlockAnswers&)>;
+
+/// Fills the scores of the draws `first` … `first + 7`. Used by all threads at once.
+using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;
+
+/// Every number of every draw; failed draws hold not-a-number.
+struct DrawTable {
+  std::vector<std::vector<double>> answer, limit;        ///< [which][draw]
+  std::vector<std::vector<double>> head_max, head_min;   ///< [station][draw], at most 512 MB of them
+  std::vector<std::int8_t> status, cavity;               ///< [draw]
+
+  DrawTable(std::size_t answers, std::size_t limits, std::size_t stations)
+      : answer(answers), limit(limits), head_max(stations), head_min(stations) {}
+  [[nodiscard]] long long draws() const { return static_cast<long long>(status.size()); }
+  void resize(long long draws);
+  /// Stores one lane; an answer or limit that is not finite makes the draw a failed one (status 2).
+  void store(std::size_t draw, int lane, const BlockAnswers& block);
+};
+
+struct DrawOptions {
+  int blocks_at_once = 1;                   ///< how many blocks a thread takes at a time, >= 1
+  const std::atomic<bool>* stop = nullptr;  ///< set: threads finish the blocks they hold
+  std::function<void(long long done)> progress;  ///< calling thread, about five times a second
+  std::function<void(long long done)> checkpoint;  ///< calling thread: draws `first` … `done - 1` are stored
+  double checkpoint_seconds = 60.0;
+};
+
+/// How a run of draws ended.
+struct DrawSummary {
+  long long done = 0;        ///< draws up to this one are stored, whatever stopped the run
+  bool stopped = false;
+  std::string complaint;     ///< of an exception in a model, the first in draw order; its draws are failed ones
+};
+
+/// Computes the draws `first` … `last - 1` into `table`, which holds at least `last`.
+/// @param first a multiple of 8
+/// @param models one per thread
+[[nodiscard]] DrawSummary run_draws(long long first, long long last, const ScoreSource& scores,
+                                    std::vector<BlockModel>& models, DrawTable& table, const DrawOptions& options);
+
+}  // namespace headband::montecarlo

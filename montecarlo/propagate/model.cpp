@@ -1,0 +1,114 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/propagate/model.hpp"
+
+#include "core/steady/evaluate.hpp"
+
+#include <memory>
+#include <optional>
+
+namespace headband::montecarlo {
+
+namespace {
+
+/// Solvers and storage of one thread.
+class PipelineModel {
+ public:
+  PipelineModel(const network::Case& c, const network::Plan& plan, bool surge)
+      : case_(&c), plan_(&plan), answers_(answers_computed(c, plan, surge)), solver_(c, plan) {
+    if (surge) marcher_.emplace(c, plan);
+  }
+
+  void answer(const network::Scores<8>& scores, BlockAnswers& out) {
+    solve(scores);
+    const auto status = statuses();
+    int good = -1;
+    bool all_good = true;
+    for (int lane = 0; lane < 8; ++lane) {
+      const bool finished = status[static_cast<std::size_t>(lane)] == 0;
+      if (finished && good < 0) good = lane;
+      all_good = all_good && finished;
+    }
+    if (!marcher_) {
+      evaluate(out);
+      out.status = status;
+      return;
+    }
+    if (good < 0) {
+      out.answer.resize(answers_.size());
+      out.limit.resize(plan_->limits.size());
+      out.status = status;
+      return;
+    }
+    if (!all_good) {
+      spare_ = scores;
+      for (auto& score : spare_)
+        for (int lane = 0; lane < 8; ++lane)
+          if (status[static_cast<std::size_t>(lane)] != 0) score.set(lane, score[good]);
+      solve(spare_);
+    }
+    marcher_->march<8>(values_, state_, out);
+    for (std::size_t lane = 0; lane < 8; ++lane)
+      if (status[lane] != 0) out.status[lane] = status[lane];
+  }
+
+ private:
+  void solve(const network::Scores<8>& scores) {
+    network::realise<8>(*case_, *plan_, scores, values_);
+    solver_.solve<8>(values_, state_);
+  }
+
+  [[nodiscard]] base::PerLane<std::int8_t, 8> statuses() const {
+    base::PerLane<std::int8_t, 8> status{};
+    const bool vapour = case_->surge.cavities != network::Cavities::off;
+    std::optional<steady::VapourCheck<8>> below;
+    if (vapour) below = steady::check_vapour<8>(*plan_, values_, state_);
+    for (std::size_t lane = 0; lane < 8; ++lane) {
+      const bool usable = steady::is_usable(state_.status[lane]) && !(below && below->pipe[lane] >= 0);
+      status[lane] = usable ? 0 : (state_.status[lane] == steady::SteadyStatus::not_finite ? 2 : 1);
+    }
+    return status;
+  }
+
+  void evaluate(BlockAnswers& out) {
+    out.answer.resize(answers_.size());
+    out.limit.resize(plan_->limits.size());
+    out.cavity.fill(false);
+    for (std::size_t i = 0; i < answers_.size(); ++i) {
+      out.answer[i] = steady::answer<8>(*plan_, values_, state_, plan_->answers[answers_[i]]);
+    }
+    for (std::size_t i = 0; i < plan_->limits.size(); ++i) {
+      out.limit[i] = steady::answer<8>(*plan_, values_, state_, plan_->limits[i].subject);
+    }
+  }
+
+  const network::Case* case_;
+  const network::Plan* plan_;
+  std::vector<std::size_t> answers_;
+  steady::SteadySolver solver_;
+  std::optional<transient::BatchMarcher> marcher_;
+  network::Values<8> values_;
+  steady::SteadyState<8> state_;
+  network::Scores<8> spare_;
+};
+
+}  // namespace
+
+std::vector<std::size_t> answers_computed(const network::Case& c, const network::Plan& plan, bool surge) {
+  std::vector<std::size_t> computed;
+  for (std::size_t i = 0; i < plan.answers.size(); ++i) {
+    if (surge || c.events.empty() || !plan.answers[i].needs_surge()) computed.push_back(i);
+  }
+  return computed;
+}
+
+BlockModel make_model(const network::Case& c, const network::Plan& plan, bool surge) {
+  const auto model = std::make_shared<PipelineModel>(c, plan, surge);
+  return [model](const network::Scores<8>& scores, BlockAnswers& out) { model->answer(scores, out); };
+}
+
+std::vector<transient::BatchStation> model_stations(const network::Case& c, const network::Plan& plan, bool surge) {
+  if (!surge) return {};
+  return transient::BatchMarcher(c, plan).stations();
+}
+
+}  // namespace headband::montecarlo

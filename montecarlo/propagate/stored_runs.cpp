@@ -1,0 +1,86 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/propagate/stored_runs.hpp"
+
+#include <algorithm>
+
+namespace headband::montecarlo {
+
+namespace {
+
+constexpr long long most_stored_runs = 100000;
+
+/// Columns by draw → rows of a file, every `stride`-th of the first `draws`.
+std::vector<double> rows_of(const std::vector<std::vector<double>>& columns, std::size_t draws, std::size_t stride) {
+  std::vector<double> rows;
+  rows.reserve((draws + stride - 1) / stride * columns.size());
+  for (std::size_t draw = 0; draw < draws; draw += stride)
+    for (const auto& column : columns) rows.push_back(draw < column.size() ? column[draw] : answers::missing);
+  return rows;
+}
+
+void columns_of(const std::vector<double>& rows, std::vector<std::vector<double>>& columns, std::size_t draws) {
+  for (std::size_t i = 0; i < columns.size(); ++i)
+    for (std::size_t draw = 0; draw < std::min(draws, columns[i].size()); ++draw) columns[i][draw] = rows[draw * columns.size() + i];
+}
+
+}  // namespace
+
+long long stride_of(long long draws) { return std::max(1LL, (draws + most_stored_runs - 1) / most_stored_runs); }
+
+void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const network::Plan& plan,
+               const std::vector<std::size_t>&) {
+  for (const auto& input : inputs) {
+    bands.input_name.push_back(input.name);
+    bands.input_units.push_back(input.units);
+    bands.input_distribution.push_back(input.distribution);
+  }
+  for (const auto& limit : plan.limits) bands.limit_name.push_back(limit.name);
+}
+
+void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, const std::vector<Input>& inputs,
+               const Sampler& sampler, const Ranges& ranges, long long stride, bool with_envelopes) {
+  const auto n = static_cast<std::size_t>(draws), step = static_cast<std::size_t>(stride);
+  bands.draws = draws;
+  bands.stride = stride;
+  bands.output_value = rows_of(table.answer, n, step);
+  bands.limit_value = rows_of(table.limit, n, step);
+  bands.run_status.clear();
+  bands.run_cavity.clear();
+  bands.input_value.clear();
+  bands.input_value.reserve((n + step - 1) / step * inputs.size());
+  for (std::size_t draw = 0; draw < n; draw += step) {
+    bands.run_status.push_back(table.status[draw]);
+    if (bands.surged) bands.run_cavity.push_back(table.cavity[draw]);
+    network::Scores<1> scores = sampler.draw(static_cast<long long>(draw));
+    for (const std::size_t unknown : ranges.unknown) scores[unknown] = 0.5;
+    for (std::size_t u = 0; u < inputs.size(); ++u) bands.input_value.push_back(inputs[u].value(scores[u].number));
+  }
+  bands.run_head_max.clear();
+  bands.run_head_min.clear();
+  if (with_envelopes) {
+    bands.run_head_max = rows_of(table.head_max, n, 1);
+    bands.run_head_min = rows_of(table.head_min, n, 1);
+  }
+}
+
+long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
+  const std::size_t runs = bands.run_status.size();
+  const auto fits = [&](const std::vector<double>& rows, const std::vector<std::vector<double>>& columns) {
+    return rows.size() == runs * columns.size();
+  };
+  if (bands.stride != 1 || !fits(bands.output_value, table.answer) || !fits(bands.limit_value, table.limit) ||
+      !fits(bands.run_head_max, table.head_max) || !fits(bands.run_head_min, table.head_min)) {
+    return 0;
+  }
+  const std::size_t whole = runs / 8 * 8;  // an odd end is computed again
+  table.resize(static_cast<long long>(whole));
+  columns_of(bands.output_value, table.answer, whole);
+  columns_of(bands.limit_value, table.limit, whole);
+  columns_of(bands.run_head_max, table.head_max, whole);
+  columns_of(bands.run_head_min, table.head_min, whole);
+  std::copy_n(bands.run_status.begin(), whole, table.status.begin());
+  if (bands.run_cavity.size() == runs) std::copy_n(bands.run_cavity.begin(), whole, table.cavity.begin());
+  return static_cast<long long>(whole);
+}
+
+}  // namespace headband::montecarlo
