@@ -185,17 +185,40 @@ template <int W>
   return !any(!m);
 }
 
+/// The smaller; `a` where they are equal or one is not a number.
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Lanes<W> min(const Lanes<W>& a, const Lanes<W>& b) {
+#if defined(__AVX__)
+  if constexpr (W > 1) {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = _mm256_min_pd(b.part[i], a.part[i]);
+    return r;
+  }
+#endif
   return select(b < a, b, a);
 }
+/// The larger; `a` where they are equal or one is not a number.
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Lanes<W> max(const Lanes<W>& a, const Lanes<W>& b) {
-  return select(a < b, b, a);
+#if defined(__AVX__)
+  if constexpr (W > 1) {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = _mm256_max_pd(b.part[i], a.part[i]);
+    return r;
+  }
+#endif
+  return select(b > a, b, a);
 }
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Lanes<W> abs(const Lanes<W>& a) {
-  return select(a < Lanes<W>(0.0), -a, a);
+  if constexpr (W == 1) {
+    return Lanes<W>(std::fabs(a.number));
+  } else {
+    Lanes<W> r;
+    for (int i = 0; i < Lanes<W>::parts; ++i)
+      r.part[i] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[i]) & INT64_MAX);
+    return r;
+  }
 }
 
 /// Square root, correctly rounded in every lane.
