@@ -1,0 +1,86 @@
+#pragma once
+// SPDX-License-Identifier: MIT
+//
+// Friction along a characteristic: what one reach takes away from a wave, second order in every mode.
+//
+// With F(Q) = loss of one reach, the march uses F_A + F'_A (Q_P - Q_A) / 2 (A the foot of the characteristic, P its
+// head). Written as H_P = (H_A + carry Q_A) - damp Q_P it costs one divide a node:
+//   loss g Q, g growing as |Q|^(1+s):  carry = B + g s/2,  damp = B + g (1 + s/2)
+// s = 0 quadratic (fixed factor), s = -1 linear (laminar: the trapezoid), between them the law's own slope.
+
+#include "core/base/elementary.hpp"
+#include "core/friction/factor.hpp"
+
+namespace headband::transient {
+
+using base::Lanes;
+
+/// Which terms the pipe's friction needs at each node and step.
+enum class Form {
+  quadratic,  ///< fixed factors and linear friction: constants only
+  darcy,      ///< some lane follows f(Re) at each step
+  power       ///< Hazen-Williams at each step
+};
+
+/// Friction of one pipe on its grid, per lane.
+template <int W>
+struct Resistance {
+  Form form = Form::quadratic;
+  Lanes<W> carry = 0.0;      ///< impedance B of the marched wave speed, less half the linear loss [s/m2]
+  Lanes<W> damp = 0.0;       ///< B plus half the linear loss [s/m2]
+  Lanes<W> quadratic = 0.0;  ///< loss of a reach = quadratic Q|Q|: fixed factors and fittings [s2/m5]
+  Lanes<W> darcy = 0.0;      ///< loss of a reach = darcy f Q|Q|; 0 in lanes that do not follow f(Re) [s2/m5]
+  Lanes<W> reynolds = 0.0;   ///< Reynolds number of a flow of 1 m3/s [s/m3]
+  friction::FactorRule<W> rule;
+  Lanes<W> power = 0.0;      ///< loss of a reach = power Q |Q|^0.852; 0 in lanes that do not follow it
+};
+
+/// What a node sends along a characteristic.
+template <int W>
+struct Sent {
+  Lanes<W> carry;  ///< head carried per unit of flow at the foot [s/m2]
+  Lanes<W> damp;   ///< head lost per unit of flow at the head of the characteristic [s/m2]
+};
+
+/// Exponent of the Hazen-Williams formula less one.
+inline constexpr double hazen_williams_slope = 0.852;
+/// Below this Reynolds number the laminar factor is followed to zero flow without dividing by it.
+inline constexpr double still = 1e-9;
+
+/// Carry and damp of a node with flow `q`.
+/// @param fitting  extra quadratic loss of this reach (fittings with a place) [s2/m5]
+/// @param longer   extra equivalent length of this reach as a share of its own loss [-]
+template <int W, Form form>
+[[nodiscard]] HEADBAND_INLINE Sent<W> sent_by(
+    const Resistance<W>& r, const Lanes<W>& q, const Lanes<W>& fitting, const Lanes<W>& longer) {
+  const Lanes<W> size = abs(q);
+  Sent<W> s{r.carry, r.damp + (r.quadratic + fitting) * size};
+  if constexpr (form == Form::darcy) {
+    const Lanes<W> re = max(size * r.reynolds, Lanes<W>(still));
+    const friction::Factor<W> f = friction::darcy_factor<W>(r.rule, re);
+    const Lanes<W> g = r.darcy * (Lanes<W>(1.0) + longer) * f.factor * (re / r.reynolds);
+    const Lanes<W> half = 0.5 * f.log_slope;
+    s.carry += g * half;
+    s.damp += g * (Lanes<W>(1.0) + half);
+  } else if constexpr (form == Form::power) {
+    const Lanes<W> floor = max(size, Lanes<W>(1e-15));
+    const Lanes<W> g = r.power * (Lanes<W>(1.0) + longer) * exp(hazen_williams_slope * log(floor));
+    const Lanes<W> half = 0.5 * (hazen_williams_slope - 1.0);
+    // g is the loss per unit of flow here: loss = g Q, g ~ |Q|^0.852, so that F' = g (1 + 0.852)
+    s.carry += g * half;
+    s.damp += g * (Lanes<W>(1.0) + half);
+  } else {
+    (void)longer;
+  }
+  return s;
+}
+
+/// Loss of one reach at a steady flow [m], signed with the flow: what the march itself takes from a still wave.
+template <int W, Form form>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> steady_loss(
+    const Resistance<W>& r, const Lanes<W>& q, const Lanes<W>& fitting, const Lanes<W>& longer) {
+  const Sent<W> s = sent_by<W, form>(r, q, fitting, longer);
+  return (s.damp - s.carry) * q;
+}
+
+}  // namespace headband::transient
