@@ -31,7 +31,7 @@ struct Resistance {
   Lanes<W> quadratic = 0.0;  ///< loss of a reach = quadratic Q|Q|: fixed factors and fittings [s2/m5]
   Lanes<W> darcy = 0.0;      ///< loss of a reach = darcy f Q|Q|; 0 in lanes that do not follow f(Re) [s2/m5]
   Lanes<W> reynolds = 0.0;   ///< Reynolds number of a flow of 1 m3/s [s/m3]
-  friction::FactorRule<W> rule;
+  friction::PreparedRule<W> rule;  ///< of the lanes that do
   Lanes<W> power = 0.0;      ///< loss of a reach = power Q |Q|^0.852; 0 in lanes that do not follow it
 };
 
