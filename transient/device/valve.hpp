@@ -1,18 +1,13 @@
 #pragma once
 // SPDX-License-Identifier: MIT
 //
-// A valve: share of its full coefficient by travel, and the flow it passes between two places.
+// The flow a valve passes between two places.
 
-#include "core/network/case.hpp"
 #include "core/base/lanes.hpp"
 
 namespace headband::transient {
 
 using base::Lanes;
-
-/// Share of the full coefficient at a travel in 0 .. 1, raised to the near-seat power; 0 when shut.
-template <int W>
-[[nodiscard]] Lanes<W> valve_share(const network::ValveLaw& law, const Lanes<W>& travel, const Lanes<W>& seat_power);
 
 /// Flow through Q = coefficient sqrt(dH) between two sides that give way: dH = head - impedance Q [m3/s].
 ///

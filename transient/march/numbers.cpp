@@ -287,6 +287,82 @@ void add_events(const network::Case& c,
 }
 
 template <int W>
+void fit_lane(network::PumpCurve<1>& curve,
+              const std::vector<Lanes<W>>& flow,
+              const std::vector<Lanes<W>>& value,
+              int lane) {
+  std::vector<Lanes<1>> x, y;
+  for (std::size_t k = 0; k < flow.size(); ++k) {
+    x.emplace_back(flow[k][lane]);
+    y.emplace_back(value[k][lane]);
+  }
+  curve.fit(x, y);
+}
+
+// One pump of a set in one draw. `quadrants`: the user's table where he gave one.
+template <int W>
+void fill_pump(const network::Pump& given,
+               const network::PumpValues<W>& v,
+               double weight,
+               double first_flow,
+               double first_head,
+               const FourQuadrants* quadrants,
+               int lane,
+               PumpModel& pump) {
+  pump.has_curve = !v.curve_flow.empty();
+  if (pump.has_curve) fit_lane(pump.curve, v.curve_flow, v.curve_head, lane);
+  pump.has_torque_table = !v.torque_flow.empty();
+  if (pump.has_torque_table) fit_lane(pump.torque_curve, v.torque_flow, v.torque_share, lane);
+  pump.shut_off_torque = v.shut_off_torque[lane];
+  pump.rated_flow = std::isnan(v.rated_flow[lane]) ? first_flow : v.rated_flow[lane];
+  pump.rated_head = std::isnan(v.rated_head[lane]) ? first_head : v.rated_head[lane];
+  pump.rated_speed = v.speed[lane];
+  pump.rated_torque = weight * pump.rated_flow * pump.rated_head / (v.efficiency[lane] * pump.rated_speed);
+  pump.inertia = v.inertia[lane];
+  pump.quadrants = nullptr;
+  const bool can_reverse = given.check_valve.kind != network::CheckValveKind::ideal;
+  if (quadrants != nullptr) {
+    pump.quadrants = quadrants;
+  } else if (given.characteristic == network::Characteristic::by_specific_speed &&
+             (can_reverse || (std::isnan(pump.shut_off_torque) && !pump.has_torque_table))) {
+    pump.quadrants = &quadrants_ns25();
+  }
+}
+
+template <int W>
+void fill_pumps(const network::Case& c,
+                const Layout& layout,
+                const network::Values<W>& values,
+                const steady::SteadyState<W>& steady,
+                Numbers<W>& n) {
+  n.quadrants.resize(c.pumps.size());
+  for (std::size_t j = 0; j < layout.branches.size(); ++j) {
+    const Branch& b = layout.branches[j];
+    if (b.kind != BranchKind::pump) continue;
+    const auto index = static_cast<std::size_t>(b.index);
+    const network::Pump& given = c.pumps[index];
+    FourQuadrants* own = nullptr;
+    if (given.characteristic == network::Characteristic::table && given.suter.given()) {
+      own = &n.quadrants[index];
+      own->angle.clear();
+      own->head.clear();
+      for (const auto& [x, head] : given.suter.rows) {
+        own->angle.push_back(x.value);
+        own->head.push_back(head.value);
+      }
+      own->torque = given.suter_torque;
+    }
+    for (int lane = 0; lane < W; ++lane) {
+      const double weight = values.liquid.density[lane] * values.gravity[lane];
+      const double flow = steady.device_flow[static_cast<std::size_t>(b.device)][lane] / given.count;
+      const double head = steady.place_head[static_cast<std::size_t>(b.to)][lane] -
+                          steady.place_head[static_cast<std::size_t>(b.from)][lane];
+      fill_pump(given, values.pumps[index], weight, flow, head, own, lane, n.pump[j * W + static_cast<std::size_t>(lane)]);
+    }
+  }
+}
+
+template <int W>
 void fill_branches(const Layout& layout,
                    const network::Values<W>& values,
                    const steady::SteadyState<W>& steady,
@@ -367,6 +443,7 @@ void fill_numbers(const network::Case& c,
   n.place_elevation.resize(plan.places.size());
   for (std::size_t k = 0; k < plan.places.size(); ++k) n.place_elevation[k] = values.places[k].elevation;
   fill_branches(layout, values, steady, n);
+  fill_pumps(c, layout, values, steady, n);
   jumps.clear();
   start_movements(c, plan, layout, values, n);
   add_events(c, plan, layout, values, n, jumps);

@@ -53,6 +53,7 @@ struct Numbers {
   std::vector<Movement<W>> branch_movement;   ///< per branch: opening, or share of the starting flow
   std::vector<Movement<W>> draw_movement;     ///< per fixed draw-off: flow
   std::vector<Movement<W>> basin_movement;    ///< per place: head; only basins are used
+  std::vector<FourQuadrants> quadrants;   ///< the user's own tables, per pump of the case
   std::vector<PumpModel> pump;            ///< per branch and lane, [branch * W + lane]
   std::vector<double> trip_time, start_time, start_over;  ///< per branch and lane; infinity = never
 };

@@ -28,12 +28,13 @@ struct Peak {
 /// Both ends of one history.
 struct Extremes {
   Peak high, low;
-  double last = 0.0;  ///< value of the row before
+  double first = 0.0;  ///< of the first steady state
+  double last = 0.0;   ///< value of the row before
 
-  void begin(double first) {
-    high.begin(first);
-    low.begin(first);
-    last = first;
+  void begin(double value) {
+    high.begin(value);
+    low.begin(value);
+    first = last = value;
   }
   void take(double now, double at, long long row) {
     high.take(1.0, now, last, at, row);

@@ -81,8 +81,6 @@ void Record::begin(March<1>& march) {
   place_speed_time_.assign(places, 0.0);
   row_cavity_.assign(rows, {});
   place_cavity_.assign(places, {});
-  cavity_volume_max_.assign(rows, 0.0);
-  cavity_time_.assign(rows, 0.0);
   limit_crossed_.assign(plan.limits.size(), 0);
   audit_.begin(march);
   watch_stations(march, 0, true);
@@ -183,15 +181,42 @@ void Record::watch_stations(const March<1>& march, long long row, bool instant) 
   }
 }
 
-void Record::watch_cavity(OpenCavity& c, double volume, double scale, double time, int pipe, double chainage) {
-  const auto tell = [&](double closes) {
-    if (c.volume * scale <= told_cavity) return;
-    const std::string& name = out_.probe_name.empty() && pipe < 0 ? std::string() : pipe_name_(pipe);
-    out_.cavities.push_back({name, chainage, c.opens, closes, c.volume});
-  };
-  (void)tell;
-  (void)volume;
-  (void)time;
+void Record::before_jump(March<1>& march, long long row) {
+  (void)row;
+  audit_.before_jump(march);
 }
+
+void Record::after_jump(March<1>& march, long long row) {
+  audit_.after_jump(march);
+  watch_stations(march, row, true);
+  if (histories_) watch_devices(march);
+}
+
+bool Record::finite(const March<1>& march) const {
+  double sum = 0.0;
+  for (const auto& h : march.state().place_head) sum += h.number;
+  for (const auto& q : march.state().side_flow) sum += q.number;
+  for (const auto& h : march.state().head) sum += h.number;
+  return std::isfinite(sum);
+}
+
+bool Record::step(March<1>& march, long long row) {
+  if (!finite(march)) {
+    march.set_status(0, MarchStatus::not_finite);
+    finished_ = false;
+    return false;
+  }
+  out_.last_good_time = march.time().number;
+  watch_stations(march, row, false);
+  audit_.step(march);
+  watch_cavities(march);
+  if (!histories_) return true;
+  watch_devices(march);
+  keep_row(march);
+  watch_limits(march);
+  return true;
+}
+
+bool Record::cavity(const March<1>& march) const { return march.state().tally.share.number > told_cavity; }
 
 }  // namespace headband::transient

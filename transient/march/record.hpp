@@ -56,7 +56,10 @@ class Record {
  private:
   struct OpenCavity {
     bool open = false;
-    double opens = 0.0, volume = 0.0;
+    double opens = 0.0;   ///< [s]
+    double volume = 0.0;  ///< largest of this opening [m3]
+    double largest = 0.0; ///< of the run [m3]
+    double standing = 0.0;  ///< time with a cavity [s]
   };
   struct SeriesSource {
     enum class What { flow, head, opening, speed, torque } what;
@@ -67,7 +70,9 @@ class Record {
   void keep_row(March<1>& march);
   void watch_stations(const March<1>& march, long long row, bool instant);
   void watch_cavities(const March<1>& march);
-  void watch_cavity(OpenCavity& c, double volume, double scale, double time, int pipe, double chainage);
+  void watch_cavity(OpenCavity& c, double volume, double scale, const March<1>& march, int pipe, double chainage);
+  void close_cavity(OpenCavity& c, double scale, double closes, const std::string& pipe, double chainage);
+  void finish_cavities(const March<1>& march);
   void watch_devices(const March<1>& march);
   void watch_limits(const March<1>& march);
   void plan_events(const March<1>& march);
@@ -88,7 +93,6 @@ class Record {
   std::vector<Extremes> place_head_;
   std::vector<double> place_speed_, place_speed_time_;
   std::vector<OpenCavity> row_cavity_, place_cavity_;
-  std::vector<double> cavity_volume_max_, cavity_time_;   ///< per row
   std::vector<Spot> probe_spots_;                         ///< per probe; pipe < 0: a place
   std::vector<SeriesSource> series_;
   std::vector<Extremes> device_flow_, device_speed_;
