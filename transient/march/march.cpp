@@ -401,6 +401,7 @@ void March<W>::load_branch(const Branch& b,
 
 template <int W>
 void March<W>::solve_lane(const Cluster& cluster, int lane, double time_step) {
+  if (numbers_.last_step[at(lane)] == 0) return;  // a lane that rests
   solver_.place_count = cluster.places.size();
   solver_.branch_count = cluster.branches.size();
   for (std::size_t i = 0; i < cluster.places.size(); ++i) {

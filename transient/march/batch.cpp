@@ -1,0 +1,350 @@
+// SPDX-License-Identifier: MIT
+//
+// Many draws, of which only the asked extremes are kept.
+#include "core/pipe/profile.hpp"
+#include "core/steady/evaluate.hpp"
+#include "transient/march/spots.hpp"
+#include "transient/march/surge.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <span>
+
+namespace headband::transient {
+namespace {
+
+constexpr double told_cavity = 1e-6;      // share of its section's volume below which a cavity is rounding
+constexpr int station_intervals = 40;     // of each pipe, for the whole-line bands
+
+std::size_t at(int i) { return static_cast<std::size_t>(i); }
+
+using network::AnswerKind;
+using network::AnswerPlan;
+
+/// Points between rows that some answer looks at, and pipes whose velocity is asked.
+struct Watch {
+  struct Point {
+    int pipe = 0;
+    int profile = -1;        ///< profile point, or
+    double chainage = -1.0;  ///< a point of an answer [m]
+  };
+  std::vector<Point> points;
+  std::vector<bool> velocity;  ///< per pipe
+};
+
+Watch make_watch(const network::Plan& plan) {
+  Watch w;
+  w.velocity.assign(plan.pipes.size(), false);
+  std::vector<bool> profile(plan.pipes.size(), false);
+  const auto look = [&](const AnswerPlan& a) {
+    if (!a.needs_surge()) return;
+    for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+      const bool whole = !a.where.place.exists() && (!a.where.pipe.exists() || (a.where.pipe.at() == i && a.where.chainage < 0.0));
+      if (a.kind == AnswerKind::velocity) {
+        const bool touches = a.where.place.exists() && (plan.pipes[i].from == a.where.place || plan.pipes[i].to == a.where.place);
+        if (whole || touches || (a.where.pipe.exists() && a.where.pipe.at() == i)) w.velocity[i] = true;
+      } else if (whole) {
+        profile[i] = true;
+      }
+    }
+    if (a.kind != AnswerKind::velocity && a.where.pipe.exists() && a.where.chainage >= 0.0)
+      w.points.push_back({a.where.pipe.index, -1, a.where.chainage});
+  };
+  for (const auto& a : plan.answers) look(a);
+  for (const auto& l : plan.limits) look(l.subject);
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i)
+    if (profile[i])
+      for (int k = 1; k + 1 < plan.pipes[i].profile_points; ++k) w.points.push_back({static_cast<int>(i), k, -1.0});
+  return w;
+}
+
+/// Observer of a batch: extremes beside those the rows keep, answers of each lane when its time is over.
+template <int W>
+class BatchRecord {
+ public:
+  BatchRecord(const Watch& watch, const std::vector<BatchStation>& stations) : watch_(&watch), stations_(&stations) {}
+
+  void start(const network::Values<W>& values, const base::PerLane<bool, W>& take, DrawAnswers<W>& out) {
+    values_ = &values;
+    take_ = take;
+    out_ = &out;
+  }
+
+  void begin(March<W>& march) {
+    const auto& plan = march.plan();
+    const std::size_t count = watch_->points.size();
+    spots_.resize(count);
+    for (std::size_t k = 0; k < count; ++k) {
+      const auto& point = watch_->points[k];
+      SpotTrack& t = spots_[k];
+      for (int lane = 0; lane < W; ++lane) {
+        const auto& v = values_->pipes[at(point.pipe)];
+        const double x = point.profile >= 0 ? v.chainage[at(point.profile)][lane] : point.chainage;
+        t.spot[at(lane)] = make_spot<W>(march, *values_, point.pipe, x, lane);
+        t.elevation.set(lane, t.spot[at(lane)].elevation);
+        t.high.set(lane, head_at<W>(march, t.spot[at(lane)], lane));
+      }
+      t.low = t.high;
+    }
+    top_flow_.assign(march.numbers().rows, Lanes<W>(0.0));
+    place_flow_.assign(march.layout().sides.size(), Lanes<W>(0.0));
+    row_elevation_.resize(march.numbers().rows);
+    for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+      const auto& p = march.numbers().pipes[i];
+      const auto& v = values_->pipes[i];
+      const std::span<const Lanes<W>> x(v.chainage), z(v.elevation);
+      for (int row = 0; row <= p.most_reaches; ++row) {
+        const Lanes<W> chainage = min(p.reach * static_cast<double>(row), v.length);
+        row_elevation_[p.first_row + at(row)] = pipe::elevation_at<W>(x, z, chainage);
+      }
+    }
+    watch_velocity(march);
+  }
+
+  bool step(March<W>& march, long long row) {
+    for (SpotTrack& t : spots_) {
+      for (int lane = 0; lane < W; ++lane) {
+        const double h = head_at<W>(march, t.spot[at(lane)], lane);
+        if (h > t.high[lane]) t.high.set(lane, h);
+        if (h < t.low[lane]) t.low.set(lane, h);
+      }
+    }
+    watch_velocity(march);
+    for (int lane = 0; lane < W; ++lane)
+      if (march.numbers().last_step[at(lane)] == row && take_[at(lane)]) collect(march, lane);
+    return true;
+  }
+  void before_jump(March<W>&, long long) {}
+  void after_jump(March<W>& march, long long row) {
+    (void)row;
+    watch_velocity(march);
+  }
+
+ private:
+  struct SpotTrack {
+    base::PerLane<Spot, W> spot;
+    Lanes<W> elevation, high, low;
+  };
+
+  void watch_velocity(March<W>& march) {
+    const auto& state = march.state();
+    for (std::size_t i = 0; i < watch_->velocity.size(); ++i) {
+      if (!watch_->velocity[i]) continue;
+      const auto& p = march.numbers().pipes[i];
+      for (int row = 0; row <= p.most_reaches; ++row) {
+        const std::size_t r = p.first_row + at(row);
+        Lanes<W> q = abs(state.flow[r]);
+        if (state.cavities[i] != 0) q = max(q, abs(state.flow_before[r]));
+        top_flow_[r] = max(top_flow_[r], q);
+      }
+    }
+  }
+
+  // The extreme of an answer in one lane; sections between the ends, ends by their places, points between rows.
+  double extreme(const March<W>& march, const AnswerPlan& a, int lane) const {
+    const auto& plan = march.plan();
+    const auto& n = march.numbers();
+    const bool highest = a.kind == AnswerKind::highest_pressure;
+    const double weight = n.density[lane] * n.gravity[lane];
+    bool any = false;
+    double best = 0.0;
+    const auto take = [&](double value) {
+      if (!any || (a.kind == AnswerKind::lowest_pressure ? value < best : value > best)) best = value;
+      any = true;
+    };
+    const auto place_head = [&](std::size_t place) {
+      return highest ? march.state().place_max[place][lane] : march.state().place_min[place][lane];
+    };
+    if (a.where.place.exists() && a.kind != AnswerKind::velocity)
+      return weight * (place_head(a.where.place.at()) - n.place_elevation[a.where.place.at()][lane]);
+    for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+      if (a.where.pipe.exists() && a.where.pipe.at() != i) continue;
+      const auto& p = n.pipes[i];
+      const int reaches = p.reaches[at(lane)];
+      if (a.kind == AnswerKind::velocity) {
+        const double area = values_->pipes[i].area[lane];
+        if (a.where.place.exists()) {
+          if (plan.pipes[i].from == a.where.place) take(top_flow_[p.first_row][lane] / area);
+          if (plan.pipes[i].to == a.where.place) take(top_flow_[p.first_row + at(reaches)][lane] / area);
+          continue;
+        }
+        for (int row = 0; row <= reaches; ++row) take(top_flow_[p.first_row + at(row)][lane] / area);
+        continue;
+      }
+      if (a.where.pipe.exists() && a.where.chainage >= 0.0) continue;
+      take(weight * (place_head(plan.pipes[i].from.at()) - row_elevation_[p.first_row][lane]));
+      for (int row = 1; row < reaches; ++row) {
+        const std::size_t r = p.first_row + at(row);
+        const double h = highest ? march.state().head_max[r][lane] : march.state().head_min[r][lane];
+        take(weight * (h - row_elevation_[r][lane]));
+      }
+      const double end_z = reaches > 0 ? row_elevation_[p.first_row + at(reaches)][lane]
+                                       : values_->pipes[i].elevation.back()[lane];
+      take(weight * (place_head(plan.pipes[i].to.at()) - end_z));
+    }
+    if (a.kind != AnswerKind::velocity) {
+      for (std::size_t k = 0; k < spots_.size(); ++k) {
+        const auto& point = watch_->points[k];
+        if (a.where.pipe.exists() && a.where.pipe.index != point.pipe) continue;
+        const bool one = a.where.pipe.exists() && a.where.chainage >= 0.0;
+        if (one ? point.chainage != a.where.chainage : point.profile < 0) continue;
+        const double h = highest ? spots_[k].high[lane] : spots_[k].low[lane];
+        take(weight * (h - spots_[k].elevation[lane]));
+      }
+    }
+    return any ? best : answers::missing;
+  }
+
+  void collect(March<W>& march, int lane) {
+    const auto& plan = march.plan();
+    double sum = 0.0;
+    for (const auto& h : march.state().place_head) sum += h[lane];
+    for (const auto& q : march.state().side_flow) sum += q[lane];
+    if (!std::isfinite(sum)) {
+      out_->status[at(lane)] = 2;
+      return;
+    }
+    out_->status[at(lane)] = march.status(lane) == MarchStatus::completed ? 0 : 3;
+    out_->cavity[at(lane)] = march.state().tally.share[lane] > told_cavity;
+    for (std::size_t k = 0; k < plan.answers.size(); ++k)
+      if (plan.answers[k].needs_surge()) out_->answer[k].set(lane, extreme(march, plan.answers[k], lane));
+    for (std::size_t k = 0; k < plan.limits.size(); ++k)
+      if (plan.limits[k].subject.needs_surge()) out_->limit[k].set(lane, extreme(march, plan.limits[k].subject, lane));
+    for (std::size_t k = 0; k < stations_->size(); ++k) {
+      out_->head_max[k].set(lane, envelope(march, (*stations_)[k], true, lane));
+      out_->head_min[k].set(lane, envelope(march, (*stations_)[k], false, lane));
+    }
+  }
+
+  // Envelope at a share of a pipe's length: a straight line between the sections beside it.
+  double envelope(const March<W>& march, const BatchStation& s, bool highest, int lane) const {
+    const auto& p = march.numbers().pipes[at(s.pipe)];
+    const auto& ends = march.plan().pipes[at(s.pipe)];
+    const int reaches = std::max(1, p.reaches[at(lane)]);
+    const auto& place = highest ? march.state().place_max : march.state().place_min;
+    const auto& rows = highest ? march.state().head_max : march.state().head_min;
+    const auto of_row = [&](int row) {
+      if (row == 0) return place[ends.from.at()][lane];
+      if (row == reaches) return place[ends.to.at()][lane];
+      return rows[p.first_row + at(row)][lane];
+    };
+    const double x = s.share * reaches;
+    const int row = std::clamp(static_cast<int>(x), 0, reaches - 1);
+    const double a = of_row(row), b = of_row(row + 1);
+    return a + (x - row) * (b - a);
+  }
+
+  const Watch* watch_;
+  const std::vector<BatchStation>* stations_;
+  const network::Values<W>* values_ = nullptr;
+  base::PerLane<bool, W> take_{};
+  DrawAnswers<W>* out_ = nullptr;
+  std::vector<SpotTrack> spots_;
+  std::vector<Lanes<W>> top_flow_, place_flow_, row_elevation_;
+};
+
+/// The marches of one lane width, one per set of rigid pipes.
+template <int W>
+struct Width {
+  std::vector<March<W>> marches;
+  std::vector<std::vector<bool>> rigid;
+  base::PerLane<Grid, W> grids;
+};
+
+}  // namespace
+
+struct BatchMarcher::Parts {
+  const network::Case* c;
+  const network::Plan* plan;
+  Watch watch;
+  std::vector<BatchStation> stations;
+  Width<1> one;
+  Width<8> eight;
+
+  template <int W>
+  Width<W>& width() {
+    if constexpr (W == 1) {
+      return one;
+    } else {
+      return eight;
+    }
+  }
+
+  template <int W>
+  March<W>& march_for(const std::vector<bool>& rigid) {
+    Width<W>& w = width<W>();
+    for (std::size_t k = 0; k < w.rigid.size(); ++k)
+      if (w.rigid[k] == rigid) return w.marches[k];
+    w.rigid.push_back(rigid);
+    return w.marches.emplace_back(*c, *plan, make_layout(*c, *plan, rigid));
+  }
+};
+
+BatchMarcher::BatchMarcher(const network::Case& c, const network::Plan& plan)
+    : parts_(std::make_unique<Parts>(Parts{&c, &plan, make_watch(plan), {}, {}, {}})) {
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i)
+    for (int k = 0; k <= station_intervals; ++k)
+      parts_->stations.push_back({static_cast<int>(i), static_cast<double>(k) / station_intervals});
+}
+BatchMarcher::~BatchMarcher() = default;
+BatchMarcher::BatchMarcher(BatchMarcher&&) noexcept = default;
+BatchMarcher& BatchMarcher::operator=(BatchMarcher&&) noexcept = default;
+
+const std::vector<BatchStation>& BatchMarcher::stations() const { return parts_->stations; }
+
+template <int W>
+void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyState<W>& steady, DrawAnswers<W>& out) {
+  const network::Plan& plan = *parts_->plan;
+  const Lanes<W> none(answers::missing);
+  out.answer.assign(plan.answers.size(), none);
+  out.limit.assign(plan.limits.size(), none);
+  out.head_max.assign(parts_->stations.size(), none);
+  out.head_min.assign(parts_->stations.size(), none);
+  out.cavity = {};
+  for (std::size_t k = 0; k < plan.answers.size(); ++k)
+    if (!plan.answers[k].needs_surge()) out.answer[k] = steady::answer<W>(plan, values, steady, plan.answers[k]);
+  for (std::size_t k = 0; k < plan.limits.size(); ++k)
+    if (!plan.limits[k].subject.needs_surge()) out.limit[k] = steady::answer<W>(plan, values, steady, plan.limits[k].subject);
+
+  Width<W>& width = parts_->template width<W>();
+  base::PerLane<bool, W> waiting{};
+  for (int lane = 0; lane < W; ++lane) {
+    Grid& grid = width.grids[at(lane)];
+    out.status[at(lane)] = 2;
+    if (!steady::is_usable(steady.status[at(lane)])) continue;
+    choose_grid(grid_request(*parts_->c, plan, values, steady, lane), grid);
+    if (grid.status == GridStatus::good) {
+      waiting[at(lane)] = true;
+    } else if (grid.status != GridStatus::not_finite) {
+      out.status[at(lane)] = 4;
+    }
+  }
+  Grid idle;
+  std::vector<bool> rigid(plan.pipes.size());
+  for (int first = 0; first < W; ++first) {
+    if (!waiting[at(first)]) continue;
+    const Grid& lead = width.grids[at(first)];
+    for (std::size_t i = 0; i < rigid.size(); ++i) rigid[i] = lead.reaches[i] == 0;
+    idle = lead;
+    idle.status = GridStatus::not_finite;  // lanes of another kind rest in this march
+    base::PerLane<bool, W> take{};
+    base::PerLane<const Grid*, W> grids{};
+    for (int lane = 0; lane < W; ++lane) {
+      bool same = waiting[at(lane)];
+      for (std::size_t i = 0; same && i < rigid.size(); ++i) same = (width.grids[at(lane)].reaches[i] == 0) == rigid[i];
+      take[at(lane)] = same;
+      grids[at(lane)] = same ? &width.grids[at(lane)] : &idle;
+      if (same) waiting[at(lane)] = false;
+    }
+    March<W>& m = parts_->template march_for<W>(rigid);
+    BatchRecord<W> record(parts_->watch, parts_->stations);
+    record.start(values, take, out);
+    m.prepare(values, steady, grids, true);
+    m.run(record);
+  }
+}
+
+template void BatchMarcher::march<1>(const network::Values<1>&, const steady::SteadyState<1>&, DrawAnswers<1>&);
+template void BatchMarcher::march<8>(const network::Values<8>&, const steady::SteadyState<8>&, DrawAnswers<8>&);
+
+}  // namespace headband::transient

@@ -1,0 +1,242 @@
+// SPDX-License-Identifier: MIT
+#include "transient/march/surge.hpp"
+
+#include "core/base/error.hpp"
+#include "core/steady/evaluate.hpp"
+#include "transient/march/grid_bound.hpp"
+#include "transient/march/record.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <cstdio>
+#include <optional>
+
+namespace headband::transient {
+namespace {
+
+std::size_t at(int i) { return static_cast<std::size_t>(i); }
+
+/// One grid of the run: its march and what was kept.
+struct GridRun {
+  Grid grid;
+  March<1> march;
+  Record record;
+
+  GridRun(const network::Case& c,
+          const network::Plan& plan,
+          const network::Values<1>& values,
+          const steady::SteadyState<1>& steady,
+          Grid g,
+          const Layout& layout,
+          bool histories)
+      : grid(std::move(g)), march(c, plan, layout), record(values, histories) {
+    march.prepare(values, steady, {&grid}, false);
+    march.run(record);
+  }
+  [[nodiscard]] bool finished() const { return record.finished() && march.status(0) == MarchStatus::completed; }
+};
+
+[[noreturn]] void refuse(const network::Case& c, const network::Plan& plan, const Grid& grid) {
+  const auto& pipe = plan.pipes[at(grid.worst_pipe)];
+  base::Problem p;
+  p.place = c.pipes[at(grid.worst_pipe)].place;
+  p.path = "pipe/" + pipe.name + (grid.status == GridStatus::not_finite ? "/wave_speed" : "/wave_speed_change");
+  p.what = refusal(grid, pipe.name);
+  switch (grid.status) {
+    case GridStatus::not_finite:
+      p.hint = "give wall and material, or wave_speed";
+      break;
+    case GridStatus::rigid_refused:
+      p.hint = "ask for more reaches, give a longer stroke, or join the pipe to its neighbour";
+      break;
+    case GridStatus::good:
+    case GridStatus::change_refused:
+    case GridStatus::uncertain_refused:
+      p.hint = "ask for more reaches, or allow the change with wave_speed_change";
+      break;
+  }
+  throw base::InputError({p});
+}
+
+void tell_grid(const network::Plan& plan, const Grid& grid, SurgeRun& run) {
+  answers::GridAnswer& a = run.grid;
+  a.time_step = grid.time_step;
+  a.worst_wave_speed_change = grid.worst_change;
+  if (grid.worst_pipe >= 0) a.worst_pipe = plan.pipes[at(grid.worst_pipe)].name;
+  a.reaches = grid.reaches;
+  a.marched_wave_speed = grid.marched_speed;
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i)
+    if (grid.reaches[i] == 0) a.rigid_pipes.push_back(plan.pipes[i].name);
+  char text[300];
+  constexpr double told_change = 0.02;
+  if (grid.worst_change > told_change) {
+    std::snprintf(text, sizeof text, "grid: the wave speed of pipe '%s' is changed by %.1f %%", a.worst_pipe.c_str(),
+                  100.0 * grid.worst_change);
+    run.warnings.emplace_back(text);
+  }
+}
+
+void tell_rigid(const network::Plan& plan, const network::Values<1>& values, const Grid& grid, SurgeRun& run) {
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+    if (grid.reaches[i] != 0) continue;
+    char text[300];
+    std::snprintf(text, sizeof text,
+                  "pipe '%s' is too short for a wave on this grid and marches as a rigid column (2L/a = %.3g s, step "
+                  "%.3g s)",
+                  plan.pipes[i].name.c_str(), 2.0 * values.pipes[i].length.number / grid.marched_speed[i],
+                  grid.time_step);
+    run.warnings.emplace_back(text);
+  }
+}
+
+void tell_jumps(const network::Plan& plan, const March<1>& march, SurgeRun& run) {
+  for (const Jump& j : march.jumps()) {
+    if (j.off_grid <= 1e-9 * march.numbers().time_step.number) continue;
+    char text[300];
+    std::snprintf(text, sizeof text, "event '%s' acts at the next row of the grid, %.3g s later than asked",
+                  plan.events[at(j.event)].name.c_str(), j.off_grid);
+    run.warnings.emplace_back(text);
+  }
+}
+
+// Times at which a movement ends or bends; what is instant has no bend.
+std::vector<double> bends(const March<1>& march) {
+  std::vector<double> times;
+  const auto& n = march.numbers();
+  const double dt = n.time_step.number;
+  const auto add = [&](const Movement<1>& m) {
+    const auto& chain = m.chain(0);
+    for (std::size_t k = 1; k < chain.size(); ++k) {
+      const bool instant = std::any_of(march.jumps().begin(), march.jumps().end(), [&](const Jump& j) {
+        return std::fabs((static_cast<double>(j.step) + 0.5) * dt - chain[k].start) < 0.25 * dt;
+      });
+      if (!instant || chain[k].slope != 0.0) times.push_back(chain[k].start);
+    }
+  };
+  for (const auto& m : n.branch_movement) add(m);
+  for (const auto& m : n.draw_movement) add(m);
+  for (const int p : march.layout().basins) add(n.basin_movement[at(p)]);
+  return times;
+}
+
+/// Bounds of the extremes from the runs on 1, 2 or 3 grids.
+class Bounds {
+ public:
+  Bounds(const GridRun& asked, const GridRun* fine, const GridRun* finest)
+      : asked_(&asked), fine_(fine), finest_(finest), bends_(bends(asked.march)) {}
+
+  template <class F>
+  [[nodiscard]] GridBound of(const F& extreme) const {
+    const AnswerPeak a = extreme(*asked_);
+    GridBound b;
+    if (fine_ == nullptr || !fine_->finished()) return {std::numeric_limits<double>::quiet_NaN(), false};
+    if (finest_ == nullptr) {
+      b = bound_from_two(a.value, extreme(*fine_).value);
+    } else if (finest_->finished()) {
+      b = bound_from_three(a.value, extreme(*fine_).value, extreme(*finest_).value);
+    } else {
+      return {std::numeric_limits<double>::quiet_NaN(), false};
+    }
+    const double step = asked_->grid.time_step * (1.0 + 1e-9);
+    for (const double t : bends_)
+      if (std::fabs(t - a.time) <= step) {
+        b.bound += a.beside;
+        break;
+      }
+    return b;
+  }
+
+ private:
+  const GridRun* asked_;
+  const GridRun* fine_;
+  const GridRun* finest_;
+  std::vector<double> bends_;
+};
+
+answers::Extreme as_extreme(const network::Plan& plan, const AnswerPeak& p) {
+  answers::Extreme e;
+  e.pressure = p.value;
+  e.head = p.head;
+  e.chainage = p.chainage;
+  e.time = p.time;
+  if (p.pipe >= 0) e.pipe = plan.pipes[at(p.pipe)].name;
+  return e;
+}
+
+// Value and bound of answers and limits.
+void fill_answers(const network::Plan& plan,
+                  const network::Values<1>& values,
+                  const steady::SteadyState<1>& steady,
+                  const GridRun& asked,
+                  const std::optional<Bounds>& bounds,
+                  SurgeRun& run) {
+  const auto fill = [&](const network::AnswerPlan& what, std::vector<double>& value, std::vector<double>& bound) {
+    if (!what.needs_surge()) {
+      value.push_back(steady::answer<1>(plan, values, steady, what).number);
+      bound.push_back(0.0);
+      return;
+    }
+    const auto extreme = [&](const GridRun& r) { return r.record.extreme_of(r.march, what); };
+    value.push_back(extreme(asked).value);
+    bound.push_back(bounds ? bounds->of(extreme).bound : 0.0);
+    if (std::isnan(bound.back())) run.grid.converging = false;
+  };
+  for (const auto& a : plan.answers) fill(a, run.answer_value, run.answer_grid_bound);
+  for (const auto& l : plan.limits) fill(l.subject, run.limit_value, run.limit_grid_bound);
+}
+
+void fill_extremes(const network::Plan& plan, const GridRun& asked, const std::optional<Bounds>& bounds, SurgeRun& run) {
+  for (const bool highest : {true, false}) {
+    const auto extreme = [&](const GridRun& r) { return r.record.extreme_everywhere(r.march, highest); };
+    answers::Extreme e = as_extreme(plan, extreme(asked));
+    if (bounds) {
+      const GridBound b = bounds->of(extreme);
+      e.grid_bound = b.bound;
+      e.grid_converging = b.converging;
+      if (!b.converging) run.grid.converging = false;
+    }
+    (highest ? run.highest : run.lowest) = e;
+  }
+}
+
+}  // namespace
+
+SurgeRun run_surge(const network::Case& c,
+                   const network::Plan& plan,
+                   const network::Values<1>& values,
+                   const steady::SteadyState<1>& steady) {
+  SurgeRun run;
+  Grid grid;
+  choose_grid(grid_request(c, plan, values, steady, 0), grid);
+  if (grid.status != GridStatus::good) refuse(c, plan, grid);
+  tell_grid(plan, grid, run);
+  tell_rigid(plan, values, grid, run);
+  std::vector<bool> rigid(plan.pipes.size());
+  for (std::size_t i = 0; i < rigid.size(); ++i) rigid[i] = grid.reaches[i] == 0;
+  const Layout layout = make_layout(c, plan, rigid);
+
+  GridRun asked(c, plan, values, steady, grid, layout, true);
+  tell_jumps(plan, asked.march, run);
+  std::optional<GridRun> fine, finest;
+  std::optional<Bounds> bounds;
+  if (c.surge.grid_check && asked.finished()) {
+    fine.emplace(c, plan, values, steady, refined(grid, 2), layout, false);
+    if (asked.march.state().tally.closed[0]) finest.emplace(c, plan, values, steady, refined(grid, 4), layout, false);
+    bounds.emplace(asked, &*fine, finest ? &*finest : nullptr);
+    run.grid.grids = finest ? 3 : 2;
+  } else if (!c.surge.grid_check) {
+    run.warnings.emplace_back("grid_check is off: the extremes carry no grid bound");
+  }
+  fill_extremes(plan, asked, bounds, run);
+  fill_answers(plan, values, steady, asked, bounds, run);
+  asked.record.finish(asked.march, run);
+  if (run.audit.volume_residual_relative > 1e-2) {
+    char text[200];
+    std::snprintf(text, sizeof text, "volume audit: the residual is %.2g of the volume passed",
+                  run.audit.volume_residual_relative);
+    run.warnings.emplace_back(text);
+  }
+  return run;
+}
+
+}  // namespace headband::transient
