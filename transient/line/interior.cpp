@@ -194,7 +194,7 @@ Arriving<W> arriving_at_to(const Resistance<W>& resistance,
                            const PipeRows<W>& rows,
                            const base::PerLane<int, W>& reaches,
                            bool uniform) {
-  Lanes<W> h, q, fitting(0.0), longer(0.0);
+  Lanes<W> h(0.0), q(0.0), fitting(0.0), longer(0.0);
   if (uniform) {
     const int row = reaches[0] - 1;
     h = rows.head[row];

@@ -35,7 +35,7 @@ void fill_friction(const network::Case& c,
                    std::size_t i,
                    PipeNumbers<W>& p) {
   const auto& v = values.pipes[i];
-  Lanes<W> count;
+  Lanes<W> count(1.0);
   for (int lane = 0; lane < W; ++lane) count.set(lane, std::max(1, p.reaches[static_cast<std::size_t>(lane)]));
   const Lanes<W> per_square = 1.0 / (2.0 * values.gravity * v.area * v.area);
   const Lanes<W> whole = (v.length + v.spread_equivalent_length) / v.bore * per_square;
@@ -423,13 +423,13 @@ void fill_numbers(const network::Case& c,
     fill_grid(layout, grids, i, p);
     p.first_row = n.rows;
     n.rows += static_cast<std::size_t>(p.most_reaches + 1);
-    Lanes<W> speed;
+    p.impedance = p.reach = Lanes<W>(0.0);
     for (int lane = 0; lane < W; ++lane) {
       const auto l = static_cast<std::size_t>(lane);
-      speed.set(lane, grids[l]->marched_speed[i]);
+      p.impedance.set(lane, grids[l]->marched_speed[i]);
       p.reach.set(lane, v.length[lane] / std::max(1, p.reaches[l]));
     }
-    p.impedance = speed / (values.gravity * v.area);
+    p.impedance = p.impedance / (values.gravity * v.area);
     p.per_section_volume = 1.0 / (v.area * p.reach);
     p.inertia = v.length / (values.gravity * v.area);
     p.friction = steady::pipe_friction<W>(plan, values, i);
