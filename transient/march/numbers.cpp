@@ -7,6 +7,7 @@
 #include <cmath>
 #include <limits>
 #include <span>
+#include <tuple>
 
 namespace headband::transient {
 namespace {
@@ -238,9 +239,9 @@ void add_events(const network::Case& c,
   for (int lane = 0; lane < W; ++lane) {
     const double dt = n.time_step[lane];
     for (std::size_t k = 0; k < order.size(); ++k) order[k] = k;
-    std::stable_sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
-      return values.events[static_cast<std::size_t>(plan.events[a].index)].at[lane] <
-             values.events[static_cast<std::size_t>(plan.events[b].index)].at[lane];
+    const auto begins = [&](std::size_t k) { return values.events[static_cast<std::size_t>(plan.events[k].index)].at[lane]; };
+    std::sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
+      return begins(a) < begins(b) || (!(begins(b) < begins(a)) && a < b);
     });
     for (const std::size_t k : order) {
       const network::EventPlan& event = plan.events[k];
@@ -278,8 +279,8 @@ void add_events(const network::Case& c,
       for (Movement<W>* m : mover.of(event)) add_stroke(m->chain(lane), s, dt);
     }
   }
-  std::stable_sort(jumps.begin(), jumps.end(), [](const Jump& a, const Jump& b) {
-    return a.step != b.step ? a.step < b.step : a.lane < b.lane;
+  std::sort(jumps.begin(), jumps.end(), [](const Jump& a, const Jump& b) {
+    return std::tie(a.step, a.lane, a.event) < std::tie(b.step, b.lane, b.event);
   });
   for (auto& m : n.branch_movement) m.rewind();
   for (auto& m : n.draw_movement) m.rewind();

@@ -5,6 +5,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <tuple>
 
 namespace headband::transient {
 namespace {
@@ -113,9 +114,12 @@ void Record::finish(March<1>& march, SurgeRun& run) {
   const auto& plan = march.plan();
   const double weight = march.numbers().density.number * march.numbers().gravity.number;
   finish_cavities(march);
-  std::stable_sort(out_.cavities.begin(), out_.cavities.end(),
-                   [](const auto& a, const auto& b) { return a.opens < b.opens; });
-  std::stable_sort(events_.begin(), events_.end(), [](const auto& a, const auto& b) { return a.time < b.time; });
+  std::sort(out_.cavities.begin(), out_.cavities.end(), [](const auto& a, const auto& b) {
+    return std::tie(a.opens, a.pipe, a.chainage) < std::tie(b.opens, b.pipe, b.chainage);
+  });
+  std::sort(events_.begin(), events_.end(), [](const auto& a, const auto& b) {
+    return std::tie(a.time, a.kind, a.subject, a.what) < std::tie(b.time, b.kind, b.subject, b.what);
+  });
   if (std::isnan(out_.last_good_time)) out_.last_good_time = 0.0;
   run.transient = std::move(out_);
   finish_stations(march, run);
