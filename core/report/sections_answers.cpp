@@ -8,6 +8,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 
 namespace headband::report {
 namespace {
@@ -38,10 +39,38 @@ std::string cavity_remark(const std::vector<answers::CavityAnswer>& cavities, do
                      still_open ? std::string("on") : fmt::format("to {} s", figures(closes, 3)));
 }
 
+/// The swing of an extreme from its steady head, beside the one-formula rise a V / g (Joukowsky) of its pipe.
+std::string hand_check(const Study& study, const answers::Extreme& extreme) {
+  const auto pipe = std::find_if(
+      study.pipes.begin(), study.pipes.end(), [&](const answers::PipeAnswer& p) { return p.name == extreme.pipe; });
+  if (pipe == study.pipes.end() || !study.transient) return "–";
+  const auto& t = *study.transient;
+  const auto index = static_cast<std::int32_t>(pipe - study.pipes.begin());
+  double steady = answers::missing, nearest = std::numeric_limits<double>::infinity();
+  for (std::size_t i = 0; i < t.station_pipe.size() && i < t.steady_head.size() && i < t.chainage.size(); ++i) {
+    const double away = std::abs(t.chainage[i] - extreme.chainage);
+    if (t.station_pipe[i] != index || !(away < nearest)) continue;
+    nearest = away;
+    steady = t.steady_head[i];
+  }
+  const double swing = std::abs(extreme.head - steady);
+  if (std::isnan(swing) || !(pipe->joukowsky_head > 0.0)) return "–";
+  return fmt::format("{} times<br><small>swing {} against a\u00a0V\u00a0/\u00a0g = {}</small>",
+                     figures(swing / pipe->joukowsky_head, 2),
+                     both(swing, Shown::head, 3),
+                     both(pipe->joukowsky_head, Shown::head, 3));
+}
+
 std::string extremes(const Study& study) {
   const auto cavities = show::reported_cavities(study);
   Table table{"Highest and lowest pressure of the run",
-              {{"Extreme"}, {"pressure ± grid bound", true}, {"head", true}, {"where"}, {"when", true}, {"remark"}},
+              {{"Extreme"},
+               {"pressure ± grid bound", true},
+               {"head", true},
+               {"where"},
+               {"when", true},
+               {"hand check"},
+               {"remark"}},
               {}};
   for (const auto& [name, extreme] : {std::pair{"Highest", &study.highest}, std::pair{"Lowest", &study.lowest}}) {
     if (!*extreme) continue;
@@ -55,6 +84,7 @@ std::string extremes(const Study& study) {
                           both(e.head, Shown::head),
                           place_of(e),
                           both(e.time, Shown::time),
+                          hand_check(study, e),
                           remark.empty() ? "–" : remark});
   }
   return html(table);

@@ -59,12 +59,12 @@ const answers::BandAnswer* answer_of(const Study& study, const answers::LimitAns
 std::string limits_block(const Study& study) {
   Table table{"Limits: by how much they are kept, and how surely",
               {{"Limit"},
+               {"verdict"},
                {"bound", true},
                {"one run", true},
                {"margin", true},
                {"chance that it is not kept", true},
-               {"picture"},
-               {"verdict"}},
+               {"picture"}},
               {}};
   bool chances = false, pictures = false;
   for (std::size_t i = 0; i < study.limits.size(); ++i) {
@@ -88,6 +88,7 @@ std::string limits_block(const Study& study) {
         strip(limit, answer_of(study, limit), study.bands ? study.bands->coverage : 0.95, bound, std::to_string(i));
     pictures = pictures || !picture.empty();
     table.rows.push_back({escaped(limit.name) + "<br><small>" + about + "</small>",
+                          verdict,
                           (fails_over(limit) ? "not over " : "not under ") + both(limit.limit, shown),
                           both(limit.value, shown),
                           margin_cell(limit, shown, difference),

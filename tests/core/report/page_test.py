@@ -113,6 +113,17 @@ def check_series(browser, expected, family):
     return checked
 
 
+def check_barriers(browser, axe, page):
+    """No finding of axe-core on the page as it stands."""
+    if not axe:
+        return
+    browser.run(axe)
+    violations = browser.driver.execute_async_script(
+        "axe.run(document, {}).then((r) => arguments[0](r.violations.map((v) => "
+        "v.id + ': ' + v.nodes.map((n) => n.html.slice(0, 160) + ' ' + n.failureSummary).join(' | '))))")
+    check(not violations, f"{page}: axe found {len(violations)}:\n" + "\n".join(violations))
+
+
 def main():
     program = pathlib.Path(sys.argv[1]).resolve()
     axe = pathlib.Path(sys.argv[2]).read_text(encoding="utf-8") if len(sys.argv) > 2 else None
@@ -135,12 +146,22 @@ def main():
                 check(not complaints, f"{page}: {complaints}")
                 wide = browser.run("return document.documentElement.scrollWidth - document.documentElement.clientWidth")
                 check(wide <= 0, f"{page} is {wide} px wider than its window")
-                if axe:
-                    browser.run(axe)
-                    violations = browser.driver.execute_async_script(
-                        "axe.run(document, {}).then((r) => arguments[0](r.violations.map((v) => "
-                        "v.id + ': ' + v.nodes.map((n) => n.html.slice(0, 160) + ' ' + n.failureSummary).join(' | '))))")
-                    check(not violations, f"{page}: axe found {len(violations)}:\n" + "\n".join(violations))
+                check_barriers(browser, axe, page)
+
+            # In the dark, and on a narrow screen.
+            browser.driver.execute_cdp_cmd("Emulation.setEmulatedMedia",
+                                           {"features": [{"name": "prefers-color-scheme", "value": "dark"}]})
+            browser.open(folder / "band.html")
+            paper = browser.run("return getComputedStyle(document.body).backgroundColor")
+            check(max(int(part) for part in paper.strip("rgb()").split(",")) < 64, f"the dark page is {paper}")
+            check_barriers(browser, axe, "band.html in the dark")
+            browser.driver.execute_cdp_cmd("Emulation.setEmulatedMedia", {"features": []})
+            browser.driver.execute_cdp_cmd("Emulation.setDeviceMetricsOverride",
+                                           {"width": 390, "height": 800, "deviceScaleFactor": 2, "mobile": False})
+            browser.open(folder / "band.html")
+            wide = browser.run("return document.documentElement.scrollWidth - document.documentElement.clientWidth")
+            check(wide <= 0, f"band.html is {wide} px wider than a narrow screen")
+            browser.driver.execute_cdp_cmd("Emulation.clearDeviceMetricsOverride", {})
 
             browser.open(folder / "band.html")
             points = check_series(browser, expected, "si")

@@ -3,6 +3,7 @@
 
 #include "core/base/hash.hpp"
 #include "core/report/assets.hpp"
+#include "core/report/measure.hpp"
 #include "tests/support/sample_study.hpp"
 
 #include <gtest/gtest.h>
@@ -69,6 +70,17 @@ TEST(Page, never_a_maximum_without_the_minimum_nor_a_chance_without_its_bound) {
   EXPECT_NE(text.find("order of size only"), std::string::npos);
   EXPECT_NE(text.find("calculation aid"), std::string::npos);
   EXPECT_NE(text.find(">2 guesses<"), std::string::npos);
+}
+
+TEST(Page, an_extreme_stands_beside_its_hand_check) {
+  const auto study = support::sample_study();
+  const auto& t = *study.transient;
+  const double swing = study.highest->head - t.steady_head.back();
+  const double ratio = swing / study.pipes[1].joukowsky_head;
+  EXPECT_NE(page(study).find(figures(ratio, 2) + " times"), std::string::npos) << ratio;
+  auto without = study;
+  without.pipes[1].joukowsky_head = without.pipes[0].joukowsky_head = answers::missing;
+  EXPECT_EQ(page(without).find(" times<br>"), std::string::npos);
 }
 
 TEST(Page, holds_identity_and_the_case_verbatim) {
