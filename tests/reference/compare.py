@@ -302,9 +302,27 @@ def T10d():
     steady_network("T10d")
 
 
+def montecarlo():
+    """The reference Monte Carlo case: plain draws within 4 standard errors, structured ones closer; sensitivity to 0.01."""
+    with open(HERE / "data" / "montecarlo_pressure_drop_results.csv", newline="") as file:
+        ref = {row["statistic"]: row for row in csv.DictReader(file) if row["case"] == "A"}
+    for design, draws in (("plain", 65536), ("sobol", 65536), ("latin hypercube", 65536)):
+        text = (CASES / "montecarlo-a.toml").read_text().replace("@DRAWS@", str(draws)).replace("@DESIGN@", design)
+        with tempfile.TemporaryDirectory() as folder:
+            answer = Run(text, folder, verb="band").json["answers"]["drop"]
+        for statistic in ("mean", "sd", "quantile_0.025", "quantile_0.05", "quantile_0.5", "quantile_0.95", "quantile_0.975"):
+            expected = float(ref[statistic]["value"])
+            bound = 4 * float(ref[statistic]["standard_error_times_sqrt_n"]) / math.sqrt(draws)
+            mine = answer["quantiles"][statistic[9:]][0] if statistic.startswith("quantile") else answer[statistic]
+            check(f"{design} {statistic}", mine - expected, bound)
+        for name, key in (("line roughness", "roughness"), ("liquid viscosity", "viscosity"), ("friction scatter", "correlation")):
+            check(f"{design} first order {name}", answer["sensitivity"][name]["first"] - float(ref[f"S_{key}"]["value"]), 0.01)
+            check(f"{design} total {name}", answer["sensitivity"][name]["total"] - float(ref[f"ST_{key}"]["value"]), 0.01)
+
+
 def main():
     wanted = sys.argv[2:] or ["T01a", "T01d", "T01g", "T01i", "T04a", "T04c", "T07a", "T08a", "T08d", "T09a", "T09c", "T09d",
-                              "T09f", "T10a", "T10d"]
+                              "T09f", "T10a", "T10d", "montecarlo"]
     for name in wanted:
         print(name)
         try:
