@@ -45,8 +45,9 @@ struct GradeSpread {
 /// Default spread of a subject at a grade. @param grade "A" … "D"; anything else gives nothing
 [[nodiscard]] std::optional<GradeSpread> default_spread(GradeSubject what, std::string_view grade);
 
-/// The same by the key of a case file (`bore`, `outside`, `wall`, `roughness`, `flow`, `level`, `k`, `over`, `near_seat`,
-/// `inertia_mr2`, `viscosity`, `wave_speed`, `head_scatter` …). Keys for which no default is agreed give nothing.
+/// The same by the key of a case file (`bore`, `outside`, `wall`, `roughness`, `flow`, `level`, `k`, `over`,
+/// `near_seat`, `inertia_mr2`, `viscosity`, `wave_speed`, `head_scatter` …). Keys for which no default is agreed give
+/// nothing.
 [[nodiscard]] std::optional<GradeSpread> default_spread(std::string_view key, std::string_view grade);
 
 /// What a grade means, in words: "measured here", "data sheet", "drawing or handbook", "guess"; empty when unknown.

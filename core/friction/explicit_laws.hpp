@@ -38,8 +38,8 @@ template <int W>
   return {-c * base::log(w), c * (viscous / w)};
 }
 
-/// Swamee & Jain 1976, J. Hydraul. Div. ASCE 102, 657: f = 0.25/log(e/3.7 + 5.74/Re^0.9)^2; stated for Re 5e3 .. 1e8 and
-/// e 1e-6 .. 1e-2. @param a e/3.7
+/// Swamee & Jain 1976, J. Hydraul. Div. ASCE 102, 657: f = 0.25/log(e/3.7 + 5.74/Re^0.9)^2; stated for Re 5e3 .. 1e8
+/// and e 1e-6 .. 1e-2. @param a e/3.7
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Root<W> swamee_jain(const Lanes<W>& a, const Lanes<W>& inverse) {
   const Lanes<W> viscous = 5.74 * base::pow(inverse, 0.9);
@@ -104,8 +104,8 @@ struct Joined {
   Lanes<W> factor, log_slope;
 };
 
-/// Churchill's joint of laminar and turbulent flow, f = 8 ((8/Re)^12 + (A + B)^(-3/2))^(1/12), B = (37530/Re)^16, for any
-/// turbulent factor: A = (8/f_turbulent)^8 (Churchill 1977 with its own turbulent part gives the paper's formula).
+/// Churchill's joint of laminar and turbulent flow, f = 8 ((8/Re)^12 + (A + B)^(-3/2))^(1/12), B = (37530/Re)^16, for
+/// any turbulent factor: A = (8/f_turbulent)^8 (Churchill 1977 with its own turbulent part gives the paper's formula).
 /// @param laminar 64/Re, scatter included @param a (8/f_turbulent)^8 [-] @param turbulent_slope d ln f_t/d ln Re
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Joined<W> churchill_joint(const Lanes<W>& laminar,

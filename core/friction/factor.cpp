@@ -56,11 +56,8 @@ HEADBAND_INLINE Turbulent<W> explicit_side(const Root<W>& r) {
 
 /// One law; Colebrook-White and smooth through the shared solve.
 template <int W, class Kept>
-HEADBAND_INLINE Turbulent<W> side_of(const PreparedRule<W>& rule,
-                                FrictionLaw law,
-                                const Lanes<W>& reynolds,
-                                const Lanes<W>& inverse,
-                                const Kept& kept) {
+HEADBAND_INLINE Turbulent<W> side_of(
+    const PreparedRule<W>& rule, FrictionLaw law, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
   switch (law) {
     case FrictionLaw::colebrook_white:
     case FrictionLaw::smooth: {
@@ -91,11 +88,17 @@ HEADBAND_INLINE Turbulent<W> side_of(const PreparedRule<W>& rule,
 
 /// The turbulent root in lanes of several laws: each law present is evaluated for all lanes and picked where it holds.
 template <int W, class Kept>
-Turbulent<W> mixed_side(const PreparedRule<W>& rule, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
+Turbulent<W> mixed_side(const PreparedRule<W>& rule,
+                        const Lanes<W>& reynolds,
+                        const Lanes<W>& inverse,
+                        const Kept& kept) {
   Turbulent<W> r{Lanes<W>(1.0), Lanes<W>(1.0), Lanes<W>(0.0)};
-  constexpr FrictionLaw one_by_one[] = {FrictionLaw::colebrook_white, FrictionLaw::haaland,
-                                        FrictionLaw::swamee_jain,     FrictionLaw::serghides,
-                                        FrictionLaw::zigrang_sylvester, FrictionLaw::churchill};
+  constexpr FrictionLaw one_by_one[] = {FrictionLaw::colebrook_white,
+                                        FrictionLaw::haaland,
+                                        FrictionLaw::swamee_jain,
+                                        FrictionLaw::serghides,
+                                        FrictionLaw::zigrang_sylvester,
+                                        FrictionLaw::churchill};
   for (const FrictionLaw law : one_by_one) {
     const unsigned family = law == FrictionLaw::colebrook_white ? root_laws : bit(law);
     if ((rule.laws_present & family) == 0) continue;
@@ -163,15 +166,14 @@ HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& 
   const Lanes<W> held = select(low, Lanes<W>(least_turbulent_reynolds), reynolds);
   const Lanes<W> held_inverse = select(low, Lanes<W>(1.0 / least_turbulent_reynolds), inverse);
   const Turbulent<W> side = rule.uniform ? side_of<W>(rule, rule.law, held, held_inverse, kept)
-                                    : mixed_side<W, Kept>(rule, held, held_inverse, kept);
+                                         : mixed_side<W, Kept>(rule, held, held_inverse, kept);
   const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), side.slope);
 
   if (joint_only) return churchill_factor<W>(laminar, inverse, side.x, rule.scatter, plain_slope);
   Factor<W> turbulent{rule.scatter * side.factor, plain_slope};
   if ((rule.laws_present & bit(FrictionLaw::churchill)) != 0) {
     // the paper's formula is the turbulent side here, its own laminar term included
-    const Factor<W> full =
-        churchill_factor<W>(64.0 * held_inverse, held_inverse, side.x, Lanes<W>(1.0), plain_slope);
+    const Factor<W> full = churchill_factor<W>(64.0 * held_inverse, held_inverse, side.x, Lanes<W>(1.0), plain_slope);
     Mask<W> on{};
     for (int i = 0; i < W; ++i) on.set(i, rule.laws[static_cast<std::size_t>(i)] == FrictionLaw::churchill);
     turbulent.factor = select(on, rule.scatter * full.factor, turbulent.factor);
@@ -257,8 +259,7 @@ PreparedRule<W> prepare(const FactorRule<W>& rule) {
   }
   p.root_kept = (p.laws_present & root_laws) != 0;
   p.rough_term = Lanes<W>(0.0);
-  if ((p.laws_present & bit(FrictionLaw::haaland)) != 0)
-    p.rough_term = base::pow(rule.relative_roughness / 3.7, 1.11);
+  if ((p.laws_present & bit(FrictionLaw::haaland)) != 0) p.rough_term = base::pow(rule.relative_roughness / 3.7, 1.11);
   return p;
 }
 

@@ -32,18 +32,18 @@ struct Factor {
 /// A rule made ready for many Reynolds numbers: what does not depend on the flow is computed once.
 template <int W>
 struct PreparedRule {
-  bool uniform = true;                ///< every lane the same law and kind of transition
-  bool root_kept = false;             ///< some lane solves for a root (Colebrook-White, smooth): see darcy_factor_near
-  FrictionLaw law{};                  ///< of lane 0
-  Transition::Kind kind{};            ///< of lane 0
-  unsigned laws_present = 0;          ///< bit per FrictionLaw
+  bool uniform = true;        ///< every lane the same law and kind of transition
+  bool root_kept = false;     ///< some lane solves for a root (Colebrook-White, smooth): see darcy_factor_near
+  FrictionLaw law{};          ///< of lane 0
+  Transition::Kind kind{};    ///< of lane 0
+  unsigned laws_present = 0;  ///< bit per FrictionLaw
   PerLane<FrictionLaw, W> laws{};
   Mask<W> sudden{}, churchill{}, lossless{}, no_factor{};  ///< lanes of that transition or law
-  Lanes<W> from, to, one_over_span;   ///< of the transition; for `sudden` both ends are its Reynolds number
-  Lanes<W> relative_roughness;        ///< e
-  Lanes<W> rough_by_reynolds;         ///< e/(3.7 2.51); 0 in lanes of the smooth law
-  Lanes<W> root_constant;             ///< 2.51; 10^0.4 in lanes of the smooth law
-  Lanes<W> rough_term;                ///< (e/3.7)^1.11 where Haaland is used
+  Lanes<W> from, to, one_over_span;  ///< of the transition; for `sudden` both ends are its Reynolds number
+  Lanes<W> relative_roughness;       ///< e
+  Lanes<W> rough_by_reynolds;        ///< e/(3.7 2.51); 0 in lanes of the smooth law
+  Lanes<W> root_constant;            ///< 2.51; 10^0.4 in lanes of the smooth law
+  Lanes<W> rough_term;               ///< (e/3.7)^1.11 where Haaland is used
   Lanes<W> scatter, laminar_scatter;
 };
 

@@ -21,18 +21,28 @@ constexpr double swamee_low = 5e3, swamee_high = 1e8, swamee_smooth = 1e-6, swam
 
 void remark_water(std::vector<std::string>& remarks, const char* law, double viscosity) {
   if (viscosity < water_least || viscosity > water_most)
-    remarks.push_back(fmt::format("{}: made for water near 15 degC; the liquid here has {:.3g} mm2/s", law, viscosity * 1e6));
+    remarks.push_back(
+        fmt::format("{}: made for water near 15 degC; the liquid here has {:.3g} mm2/s", law, viscosity * 1e6));
 }
 
 void remark_least_reynolds(std::vector<std::string>& remarks, const char* law, double reynolds, double least) {
-  if (reynolds < least) remarks.push_back(fmt::format("{}: Reynolds number {:.3g} is below {:g}", law, reynolds, least));
+  if (reynolds < least)
+    remarks.push_back(fmt::format("{}: Reynolds number {:.3g} is below {:g}", law, reynolds, least));
 }
 
 }  // namespace
 
 const char* name_of(FrictionLaw law) {
-  constexpr std::array names{"colebrook-white", "haaland", "swamee-jain",    "serghides", "zigrang-sylvester",
-                             "churchill",       "smooth",  "hazen-williams", "manning",   "none"};
+  constexpr std::array names{"colebrook-white",
+                             "haaland",
+                             "swamee-jain",
+                             "serghides",
+                             "zigrang-sylvester",
+                             "churchill",
+                             "smooth",
+                             "hazen-williams",
+                             "manning",
+                             "none"};
   return names[static_cast<std::size_t>(law)];
 }
 
@@ -45,10 +55,11 @@ std::vector<std::string> range_remarks(FrictionLaw law, const FlowState& flow) {
       remark_water(remarks, name, flow.kinematic_viscosity);
       remark_least_reynolds(remarks, name, flow.reynolds, hazen_least_reynolds);
       if (flow.bore < hazen_least_bore)
-        remarks.push_back(fmt::format("{}: bore {:.3g} mm is below {:g} mm", name, flow.bore * 1e3, hazen_least_bore * 1e3));
-      if (std::abs(flow.velocity) > hazen_most_velocity)
         remarks.push_back(
-            fmt::format("{}: velocity {:.3g} m/s is over {:g} m/s", name, std::abs(flow.velocity), hazen_most_velocity));
+            fmt::format("{}: bore {:.3g} mm is below {:g} mm", name, flow.bore * 1e3, hazen_least_bore * 1e3));
+      if (std::abs(flow.velocity) > hazen_most_velocity)
+        remarks.push_back(fmt::format(
+            "{}: velocity {:.3g} m/s is over {:g} m/s", name, std::abs(flow.velocity), hazen_most_velocity));
       break;
     case FrictionLaw::manning:
       remark_water(remarks, name, flow.kinematic_viscosity);
@@ -57,11 +68,14 @@ std::vector<std::string> range_remarks(FrictionLaw law, const FlowState& flow) {
     case FrictionLaw::swamee_jain:
       // below 4000 another law holds or blends in
       if (flow.reynolds >= 4000.0 && (flow.reynolds < swamee_low || flow.reynolds > swamee_high))
-        remarks.push_back(fmt::format("{}: Reynolds number {:.3g} is outside {:g} .. {:g}", name, flow.reynolds, swamee_low,
-                                      swamee_high));
+        remarks.push_back(fmt::format(
+            "{}: Reynolds number {:.3g} is outside {:g} .. {:g}", name, flow.reynolds, swamee_low, swamee_high));
       if (flow.relative_roughness < swamee_smooth || flow.relative_roughness > swamee_rough)
-        remarks.push_back(fmt::format("{}: roughness/bore {:.3g} is outside {:g} .. {:g}", name, flow.relative_roughness,
-                                      swamee_smooth, swamee_rough));
+        remarks.push_back(fmt::format("{}: roughness/bore {:.3g} is outside {:g} .. {:g}",
+                                      name,
+                                      flow.relative_roughness,
+                                      swamee_smooth,
+                                      swamee_rough));
       break;
     case FrictionLaw::smooth:
     case FrictionLaw::colebrook_white:

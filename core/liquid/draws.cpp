@@ -94,9 +94,9 @@ WaterAtOneBarOf<W> water_at_one_bar(const Lanes<W>& temperature) {
 // IAPWS R7-97(2012), table 34, eq. 30 (from memory, proved by its check table 35).
 template <int W>
 Lanes<W> vapour_pressure(const Lanes<W>& temperature) {
-  constexpr double n1 = 0.11670521452767e4, n2 = -0.72421316703206e6, n3 = -0.17073846940092e2,
-                   n4 = 0.12020824702470e5, n5 = -0.32325550322333e7, n6 = 0.14915108613530e2,
-                   n7 = -0.48232657361591e4, n8 = 0.40511340542057e6, n9 = -0.23855557567849, n10 = 0.65017534844798e3;
+  constexpr double n1 = 0.11670521452767e4, n2 = -0.72421316703206e6, n3 = -0.17073846940092e2, n4 = 0.12020824702470e5,
+                   n5 = -0.32325550322333e7, n6 = 0.14915108613530e2, n7 = -0.48232657361591e4, n8 = 0.40511340542057e6,
+                   n9 = -0.23855557567849, n10 = 0.65017534844798e3;
   const Lanes<W> theta = temperature + n9 / (temperature - n10);
   const Lanes<W> a = (theta + n1) * theta + n2;
   const Lanes<W> b = (n3 * theta + n4) * theta + n5;

@@ -11,8 +11,8 @@ using base::Lanes;
 
 /// Pressure at which a gas fraction is stated [Pa] (convention 3a i of the case file).
 inline constexpr double gas_reference_pressure = 101325.0;
-/// Specific gas constant of dry air [J/(kg K)] (8.314462618 / 0.0289647; CODATA 2018 and the US Standard Atmosphere 1976
-/// mean molar mass, rounded; from memory).
+/// Specific gas constant of dry air [J/(kg K)] (8.314462618 / 0.0289647; CODATA 2018 and the US Standard Atmosphere
+/// 1976 mean molar mass, rounded; from memory).
 inline constexpr double air_gas_constant = 287.058;
 
 /// Volume fraction of free gas at `pressure` when it is `at_reference` at 101 325 Pa, compressed isothermally; the
@@ -27,15 +27,17 @@ template <int W>
 /// A liquid with free gas in a pipe, at one pressure.
 template <int W>
 struct Mixture {
-  Lanes<W> gas_fraction;    ///< volume fraction at the pressure [-]
-  Lanes<W> density;         ///< (1 - a) rho_l + a rho_g [kg/m3]
-  Lanes<W> compressibility; ///< (1 - a)/K + a/p [1/Pa]
+  Lanes<W> gas_fraction;     ///< volume fraction at the pressure [-]
+  Lanes<W> density;          ///< (1 - a) rho_l + a rho_g [kg/m3]
+  Lanes<W> compressibility;  ///< (1 - a)/K + a/p [1/Pa]
 };
 
 /// Mixture of a liquid and a share `fraction` (at `pressure`) of ideal gas, isothermal.
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Mixture<W> mix(const Lanes<W>& density, const Lanes<W>& bulk_modulus,
-                                             const Lanes<W>& fraction, const Lanes<W>& pressure,
+[[nodiscard]] HEADBAND_INLINE Mixture<W> mix(const Lanes<W>& density,
+                                             const Lanes<W>& bulk_modulus,
+                                             const Lanes<W>& fraction,
+                                             const Lanes<W>& pressure,
                                              const Lanes<W>& temperature) {
   const Lanes<W> gas_density = pressure / (air_gas_constant * temperature);
   const Lanes<W> rest = 1.0 - fraction;

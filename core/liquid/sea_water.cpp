@@ -21,8 +21,8 @@ constexpr double practical_salinity = 35.0, root_of_salinity = 5.916079783099616
 /// The same water in grams of salt per kilogram (reference composition, Millero et al. 2008).
 constexpr double grams_of_salt_per_kilogram = 35.16504;
 
-// One-atmosphere equation of state of sea water, Millero & Poisson 1981, Deep-Sea Res. 28, 625 (from memory; its printed
-// check S = 35, t = 5 and 25 degC is in the tests). t in degC.
+// One-atmosphere equation of state of sea water, Millero & Poisson 1981, Deep-Sea Res. 28, 625 (from memory; its
+// printed check S = 35, t = 5 and 25 degC is in the tests). t in degC.
 template <int W>
 Lanes<W> density_of_sea_water(const Lanes<W>& t) {
   constexpr std::array pure{999.842594, 6.793952e-2, -9.095290e-3, 1.001685e-4, -1.120083e-6, 6.536332e-9};
@@ -30,7 +30,8 @@ Lanes<W> density_of_sea_water(const Lanes<W>& t) {
   constexpr std::array three_halves{-5.72466e-3, 1.0227e-4, -1.6546e-6};
   constexpr double square = 4.8314e-4;
   constexpr double s = practical_salinity;
-  return polynomial(pure, t) + s * (polynomial(linear, t) + root_of_salinity * polynomial(three_halves, t) + s * square);
+  return polynomial(pure, t) +
+         s * (polynomial(linear, t) + root_of_salinity * polynomial(three_halves, t) + s * square);
 }
 
 // Secant bulk modulus at zero gauge pressure = isothermal modulus there. Millero, Chen, Bradshaw & Schleicher 1980,
@@ -52,7 +53,8 @@ Lanes<W> sound_speed_of_sea_water(const Lanes<W>& t) {
   constexpr std::array three_halves{-1.922e-2, -4.42e-5};
   constexpr double square = 1.727e-3;
   constexpr double s = practical_salinity;
-  return polynomial(pure, t) + s * (polynomial(linear, t) + root_of_salinity * polynomial(three_halves, t) + s * square);
+  return polynomial(pure, t) +
+         s * (polynomial(linear, t) + root_of_salinity * polynomial(three_halves, t) + s * square);
 }
 
 // Sharqawy, Lienhard & Zubair 2010, Desalin. Water Treat. 16, 354, eq. 22 (after Isdale et al.; from memory):

@@ -2,8 +2,8 @@
 // SPDX-License-Identifier: MIT
 //
 // Properties of liquids. Water by the releases of the International Association for the Properties of Water and
-// Steam (IAPWS): SR6-08(2011) liquid water at 0.1 MPa, R6-95(2018) "IAPWS-95" above, R12-08 viscosity, R7-97(2012) "IF97"
-// vapour pressure.
+// Steam (IAPWS): SR6-08(2011) liquid water at 0.1 MPa, R6-95(2018) "IAPWS-95" above, R12-08 viscosity, R7-97(2012)
+// "IF97" vapour pressure.
 
 namespace headband::liquid {
 
@@ -91,7 +91,10 @@ struct ViscosityLaw {
   double a, b;
 };
 /// The law through two points. @param temperature_1, temperature_2 [K], different; viscosities [m2/s], > 0.3e-6
-[[nodiscard]] ViscosityLaw viscosity_law(double temperature_1, double viscosity_1, double temperature_2, double viscosity_2);
+[[nodiscard]] ViscosityLaw viscosity_law(double temperature_1,
+                                         double viscosity_1,
+                                         double temperature_2,
+                                         double viscosity_2);
 /// Kinematic viscosity of the law [m2/s]; at both points to rounding (1e-13).
 [[nodiscard]] double viscosity_at(const ViscosityLaw& law, double temperature);
 /// How far the law misses a third point: law / measured - 1 [-]. @param viscosity measured [m2/s]

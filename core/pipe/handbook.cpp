@@ -11,30 +11,90 @@ namespace {
 
 constexpr double gpa = 1e9, mm = 1e-3;
 
-// Ranges of steel, copper, concrete: Gere, Mechanics of Materials (5th ed.); the rest by data sheets and common practice.
-// All from memory except where the tests hold them against printed ranges.
+// Ranges of steel, copper, concrete: Gere, Mechanics of Materials (5th ed.); the rest by data sheets and common
+// practice. All from memory except where the tests hold them against printed ranges.
 constexpr std::array<Material, 12> table{{
-    {"steel", 207 * gpa, 190 * gpa, 210 * gpa, 0.30, "Gere, Mechanics of Materials", "carbon steel, mild steel", 0.27, 0.30},
-    {"stainless steel", 193 * gpa, 186 * gpa, 200 * gpa, 0.30, "data sheets of austenitic steel", "stainless", 0.27, 0.31},
-    {"ductile iron", 170 * gpa, 162 * gpa, 170 * gpa, 0.28, "data sheets of ductile iron pipe", "di, spheroidal iron", 0.27,
+    {"steel",
+     207 * gpa,
+     190 * gpa,
+     210 * gpa,
+     0.30,
+     "Gere, Mechanics of Materials",
+     "carbon steel, mild steel",
+     0.27,
+     0.30},
+    {"stainless steel",
+     193 * gpa,
+     186 * gpa,
+     200 * gpa,
+     0.30,
+     "data sheets of austenitic steel",
+     "stainless",
+     0.27,
+     0.31},
+    {"ductile iron",
+     170 * gpa,
+     162 * gpa,
+     170 * gpa,
+     0.28,
+     "data sheets of ductile iron pipe",
+     "di, spheroidal iron",
+     0.27,
      0.28},
-    {"cast iron", 100 * gpa, 80 * gpa, 170 * gpa, 0.25, "common practice, grey iron", "grey iron, gray iron", 0.20, 0.30},
+    {"cast iron",
+     100 * gpa,
+     80 * gpa,
+     170 * gpa,
+     0.25,
+     "common practice, grey iron",
+     "grey iron, gray iron",
+     0.20,
+     0.30},
     {"copper", 117 * gpa, 110 * gpa, 120 * gpa, 0.34, "Gere, Mechanics of Materials", "", 0.33, 0.36},
-    {"concrete", 30 * gpa, 17 * gpa, 31 * gpa, 0.15, "Gere, Mechanics of Materials (compression)",
-     "concrete (compression), reinforced concrete, prestressed concrete", 0.10, 0.20},
+    {"concrete",
+     30 * gpa,
+     17 * gpa,
+     31 * gpa,
+     0.15,
+     "Gere, Mechanics of Materials (compression)",
+     "concrete (compression), reinforced concrete, prestressed concrete",
+     0.10,
+     0.20},
     {"asbestos cement", 24 * gpa, 23 * gpa, 25 * gpa, 0.20, "common practice", "fibre cement", 0.15, 0.30},
-    {"grp", 20 * gpa, 10 * gpa, 50 * gpa, 0.30, "common practice, hoop direction; ask the maker", "fibreglass, frp, gfk", 0.20,
+    {"grp",
+     20 * gpa,
+     10 * gpa,
+     50 * gpa,
+     0.30,
+     "common practice, hoop direction; ask the maker",
+     "fibreglass, frp, gfk",
+     0.20,
      0.35},
-    {"pvc", 3.0 * gpa, 2.4 * gpa, 3.5 * gpa, 0.45, "common practice, short term; AWWA takes 2.76 GPa (400 000 psi)",
-     "pvc-u, upvc, pvc-u (short term)", 0.38, 0.45},
-    {"hdpe", 0.8 * gpa, 0.6 * gpa, 1.4 * gpa, 0.46, "data sheets of PE 3408 and PE 100, short term",
-     "pe, pe100, polyethylene, hdpe (short term)", 0.40, 0.46},
+    {"pvc",
+     3.0 * gpa,
+     2.4 * gpa,
+     3.5 * gpa,
+     0.45,
+     "common practice, short term; AWWA takes 2.76 GPa (400 000 psi)",
+     "pvc-u, upvc, pvc-u (short term)",
+     0.38,
+     0.45},
+    {"hdpe",
+     0.8 * gpa,
+     0.6 * gpa,
+     1.4 * gpa,
+     0.46,
+     "data sheets of PE 3408 and PE 100, short term",
+     "pe, pe100, polyethylene, hdpe (short term)",
+     0.40,
+     0.46},
     {"mdpe", 0.7 * gpa, 0.5 * gpa, 0.9 * gpa, 0.45, "data sheets of PE 80, short term", "pe80", 0.40, 0.46},
     {"aluminium", 70 * gpa, 69 * gpa, 73 * gpa, 0.33, "Gere, Mechanics of Materials", "aluminum", 0.32, 0.34},
 }};
 
-// "White": Fluid Mechanics, Table 6.1, range = the stated uncertainty. "Binder 1973" and "Hydraulic Institute": as quoted
-// on public reference pages; where they give no range, the x/ 2 of new pipe (common practice). Others: common practice.
+// "White": Fluid Mechanics, Table 6.1, range = the stated uncertainty. "Binder 1973" and "Hydraulic Institute": as
+// quoted on public reference pages; where they give no range, the x/ 2 of new pipe (common practice). Others: common
+// practice.
 constexpr std::array<RoughnessEntry, 19> roughness{{
     {"steel", "commercial, new", 0.046 * mm, 0.0322 * mm, 0.0598 * mm, "White, Fluid Mechanics, Table 6.1"},
     {"steel", "welded and seamless", 0.061 * mm, 0.03 * mm, 0.122 * mm, "Hydraulic Institute Engineering Data Book"},
@@ -60,7 +120,8 @@ constexpr std::array<RoughnessEntry, 19> roughness{{
 /// Lower case, every separator one blank.
 std::string plain(std::string_view text) {
   std::string s;
-  for (const char c : text) s += c == '-' || c == '_' ? ' ' : static_cast<char>(std::tolower(static_cast<unsigned char>(c)));
+  for (const char c : text)
+    s += c == '-' || c == '_' ? ' ' : static_cast<char>(std::tolower(static_cast<unsigned char>(c)));
   return s;
 }
 

@@ -15,7 +15,7 @@ struct Material {
   double modulus, modulus_low, modulus_high;  ///< [Pa]
   double poisson;                             ///< [-]
   std::string_view source;
-  std::string_view other_names = "";  ///< further spellings understood, separated by ", "
+  std::string_view other_names = "";             ///< further spellings understood, separated by ", "
   double poisson_low = 0.0, poisson_high = 0.5;  ///< [-]
 };
 

@@ -12,11 +12,12 @@ namespace headband::pipe {
 
 using base::Lanes;
 
-/// Elevation [m] at `at` [m]: straight line between the profile points; the end values beyond the ends. Two points of one
-/// chainage are a step: the later one counts from there on. Same bits for every W.
+/// Elevation [m] at `at` [m]: straight line between the profile points; the end values beyond the ends. Two points of
+/// one chainage are a step: the later one counts from there on. Same bits for every W.
 /// @param chainage never falling, same length as `elevation`, at least one point
 template <int W>
-[[nodiscard]] Lanes<W> elevation_at(std::span<const Lanes<W>> chainage, std::span<const Lanes<W>> elevation,
+[[nodiscard]] Lanes<W> elevation_at(std::span<const Lanes<W>> chainage,
+                                    std::span<const Lanes<W>> elevation,
                                     const Lanes<W>& at) {
   Lanes<W> z = elevation[0];
   for (std::size_t i = 1; i < chainage.size(); ++i) {
@@ -38,8 +39,10 @@ struct HighPoint {
 /// Highest point of the profile in [from, to] (both inside the pipe): ends of the window and every survey point in it.
 /// On a tie the first one. @param from <= to [m]
 template <int W>
-[[nodiscard]] HighPoint<W> highest_point(std::span<const Lanes<W>> chainage, std::span<const Lanes<W>> elevation,
-                                         const Lanes<W>& from, const Lanes<W>& to) {
+[[nodiscard]] HighPoint<W> highest_point(std::span<const Lanes<W>> chainage,
+                                         std::span<const Lanes<W>> elevation,
+                                         const Lanes<W>& from,
+                                         const Lanes<W>& to) {
   HighPoint<W> top{from, elevation_at<W>(chainage, elevation, from)};
   for (std::size_t i = 0; i < chainage.size(); ++i) {
     const auto better = (chainage[i] >= from) & (chainage[i] <= to) & (elevation[i] > top.elevation);

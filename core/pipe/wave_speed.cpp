@@ -6,11 +6,8 @@
 namespace headband::pipe {
 
 template <int W>
-Lanes<W> restraint_factor(Restraint restraint,
-                          bool thick,
-                          const Lanes<W>& poisson,
-                          const Lanes<W>& inner_diameter,
-                          const Lanes<W>& wall) {
+Lanes<W> restraint_factor(
+    Restraint restraint, bool thick, const Lanes<W>& poisson, const Lanes<W>& inner_diameter, const Lanes<W>& wall) {
   Lanes<W> thin = 1.0;
   switch (restraint) {
     case Restraint::anchored:
@@ -44,9 +41,9 @@ Lanes<W> wave_speed(const Lanes<W>& density,
 
 template Lanes<1> restraint_factor<1>(Restraint, bool, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
 template Lanes<8> restraint_factor<8>(Restraint, bool, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
-template Lanes<1> wave_speed<1>(const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&,
-                                const Lanes<1>&);
-template Lanes<8> wave_speed<8>(const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&,
-                                const Lanes<8>&);
+template Lanes<1> wave_speed<1>(
+    const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
+template Lanes<8> wave_speed<8>(
+    const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
 
 }  // namespace headband::pipe

@@ -1,8 +1,8 @@
 // SPDX-License-Identifier: MIT
 //
 // Colebrook-White solves per second: the array form against plain scalar loops over the same pipes in the same run.
-// Each benchmark carries the check value of its own results: the worst distance from the oracle over all pipes (an error
-// over 1e-12 stops it) and their mean. Judge the ratios of one run, never the absolute figures.
+// Each benchmark carries the check value of its own results: the worst distance from the oracle over all pipes (an
+// error over 1e-12 stops it) and their mean. Judge the ratios of one run, never the absolute figures.
 //   bench_core --benchmark_filter=colebrook --benchmark_repetitions=7 --benchmark_report_aggregates_only=true
 #include "core/friction/colebrook.hpp"
 #include "core/friction/factor.hpp"
@@ -103,7 +103,8 @@ BENCHMARK(colebrook_array);
 void colebrook_one_by_one(benchmark::State& state) {
   Pipes p;
   for (auto _ : state) {
-    for (std::size_t i = 0; i < Pipes::count; ++i) p.factor[i] = friction::colebrook_factor(p.roughness[i], p.reynolds[i]);
+    for (std::size_t i = 0; i < Pipes::count; ++i)
+      p.factor[i] = friction::colebrook_factor(p.roughness[i], p.reynolds[i]);
     benchmark::ClobberMemory();
   }
   report(state, p, 1e-12);

@@ -20,7 +20,8 @@ double relative(double a, double b) { return std::abs(a / b - 1.0); }
 
 /// The exact root in long double: Newton until nothing moves.
 long double exact_factor(double relative_roughness, double reynolds, long double constant = 2.51L) {
-  const long double a = static_cast<long double>(relative_roughness) / 3.7L, b = constant / static_cast<long double>(reynolds);
+  const long double a = static_cast<long double>(relative_roughness) / 3.7L,
+                    b = constant / static_cast<long double>(reynolds);
   long double x = -2.0L * std::log10(a + 8.0L * b);
   if (x < 0.1L) x = 0.1L;
   for (int i = 0; i < 200; ++i) {
@@ -110,9 +111,9 @@ TEST(colebrook, slope_agrees_with_the_difference_quotient) {
       const double f = friction::colebrook_factor(e, re);
       const double slope = friction::colebrook_log_slope<1>(rough, Lanes<1>(1.0 / std::sqrt(f))).number;
       const double h = 1e-4;
-      const double quotient = std::log(friction::colebrook_factor(e, re * std::exp(h)) /
-                                       friction::colebrook_factor(e, re * std::exp(-h))) /
-                              (2.0 * h);
+      const double quotient =
+          std::log(friction::colebrook_factor(e, re * std::exp(h)) / friction::colebrook_factor(e, re * std::exp(-h))) /
+          (2.0 * h);
       EXPECT_NEAR(slope, quotient, 1e-8) << re << ' ' << e;
     }
 }
@@ -135,10 +136,11 @@ TEST(colebrook, one_correction_follows_a_changing_flow) {
 }
 
 TEST(colebrook, any_older_root_is_safe) {
-  for (const double older : {-1.0, 0.0, 1e-300, 1e300, std::numeric_limits<double>::quiet_NaN(),
-                             std::numeric_limits<double>::infinity()}) {
+  for (const double older :
+       {-1.0, 0.0, 1e-300, 1e300, std::numeric_limits<double>::quiet_NaN(), std::numeric_limits<double>::infinity()}) {
     const double re = 1e5, e = 1e-4;
-    const double x = friction::colebrook_correct<1>(e * friction::colebrook_rough * re, Lanes<1>(2.51 / re), Lanes<1>(older)).number;
+    const double x =
+        friction::colebrook_correct<1>(e * friction::colebrook_rough * re, Lanes<1>(2.51 / re), Lanes<1>(older)).number;
     EXPECT_LT(relative(1.0 / (x * x), friction::colebrook_factor(e, re)), 1e-12) << older;
   }
 }

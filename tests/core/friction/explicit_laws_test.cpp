@@ -40,12 +40,16 @@ TEST(explicit_laws, lie_within_their_stated_distance_of_colebrook_white) {
   const struct {
     FrictionLaw law;
     double share;
-  } laws[] = {{FrictionLaw::haaland, 0.02}, {FrictionLaw::swamee_jain, 0.035}, {FrictionLaw::serghides, 5e-5},
-              {FrictionLaw::zigrang_sylvester, 0.0015}, {FrictionLaw::churchill, 0.035}};
+  } laws[] = {{FrictionLaw::haaland, 0.02},
+              {FrictionLaw::swamee_jain, 0.035},
+              {FrictionLaw::serghides, 5e-5},
+              {FrictionLaw::zigrang_sylvester, 0.0015},
+              {FrictionLaw::churchill, 0.035}};
   for (const auto& [law, share] : laws)
     for (double re = 5e3; re < 1e8; re *= 1.9)
       for (const double e : {1e-6, 1e-5, 1e-4, 1e-3, 1e-2})
-        EXPECT_LT(relative(factor(law, e, re), friction::colebrook_factor(e, re)), share) << static_cast<int>(law) << ' ' << re;
+        EXPECT_LT(relative(factor(law, e, re), friction::colebrook_factor(e, re)), share)
+            << static_cast<int>(law) << ' ' << re;
 }
 
 TEST(explicit_laws, join_of_churchill_is_the_papers_formula) {
@@ -55,7 +59,8 @@ TEST(explicit_laws, join_of_churchill_is_the_papers_formula) {
       const double a = std::pow(2.457 * std::log(1.0 / (std::pow(7.0 / re, 0.9) + 0.27 * e)), 16);
       const double b = std::pow(37530.0 / re, 16);
       const double paper = 8.0 * std::pow(std::pow(8.0 / re, 12) + std::pow(a + b, -1.5), 1.0 / 12.0);
-      EXPECT_LT(relative(factor(FrictionLaw::churchill, e, re, {Transition::Kind::churchill, 0, 0}), paper), 1e-13) << re;
+      EXPECT_LT(relative(factor(FrictionLaw::churchill, e, re, {Transition::Kind::churchill, 0, 0}), paper), 1e-13)
+          << re;
     }
 }
 
@@ -121,7 +126,8 @@ TEST(explicit_laws_reference, measured_smooth_pipes) {
 
 TEST(explicit_laws_reference, worked_examples) {
   for (const auto& r : test::reference_rows("pressure_drop_worked_examples.csv")) {
-    const double nu = std::stod(r[3]), d = std::stod(r[4]), length = std::stod(r[5]), v = std::stod(r[6]), k = std::stod(r[7]);
+    const double nu = std::stod(r[3]), d = std::stod(r[4]), length = std::stod(r[5]), v = std::stod(r[6]),
+                 k = std::stod(r[7]);
     const double f = factor(FrictionLaw::colebrook_white, k / d, v * d / nu);
     const double head = f * length / d * v * v / (2.0 * 9.80665), pressure = std::stod(r[2]) * 9.80665 * head;
     const double share = r[0].starts_with("Munson") ? 0.05 : 0.02;

@@ -31,7 +31,8 @@ constexpr std::array<Transition, 5> transitions{{{Transition::Kind::blend, 2100.
                                                  {Transition::Kind::sudden, 3000.0, 5000.0},
                                                  {Transition::Kind::churchill, 2100.0, 4000.0}}};
 
-FactorRule<1> rule_of(FrictionLaw law, Transition transition, double e = 1e-3, double scatter = 1.0, double laminar = 1.0) {
+FactorRule<1> rule_of(
+    FrictionLaw law, Transition transition, double e = 1e-3, double scatter = 1.0, double laminar = 1.0) {
   FactorRule<1> r;
   r.law[0] = law;
   r.transition[0] = transition;
@@ -58,8 +59,10 @@ TEST(darcy_factor, is_laminar_below_the_transition_and_the_law_above) {
         EXPECT_NEAR(factor(rule, re) / (1.07 * factor(rule_of(law, t), re)), 1.0, 1e-14);
     }
   }
-  EXPECT_NEAR(factor(rule_of(FrictionLaw::colebrook_white, transitions[0]), 1e5) / friction::colebrook_plain(1e-3, 1e5).factor, 1.0,
-              1e-14);
+  EXPECT_NEAR(
+      factor(rule_of(FrictionLaw::colebrook_white, transitions[0]), 1e5) / friction::colebrook_plain(1e-3, 1e5).factor,
+      1.0,
+      1e-14);
 }
 
 TEST(darcy_factor, a_blend_is_the_smooth_step_between_both_at_the_same_reynolds_number) {
@@ -221,7 +224,9 @@ TEST(darcy_factor, one_draw_and_eight_give_the_same_bits_in_mixed_laws) {
   expect_same_bits(eight([](std::size_t i) { return std::pair{laws[i], transitions[i % 5]}; }));
   expect_same_bits(eight([](std::size_t i) { return std::pair{laws[(i * 3) % 8], transitions[(i + 2) % 5]}; }));
   expect_same_bits(eight([](std::size_t i) { return std::pair{FrictionLaw::colebrook_white, transitions[i % 5]}; }));
-  expect_same_bits(eight([](std::size_t i) { return std::pair{i % 2 == 0 ? FrictionLaw::smooth : FrictionLaw::colebrook_white, transitions[0]}; }));
+  expect_same_bits(eight([](std::size_t i) {
+    return std::pair{i % 2 == 0 ? FrictionLaw::smooth : FrictionLaw::colebrook_white, transitions[0]};
+  }));
 }
 
 }  // namespace

@@ -53,9 +53,12 @@ TEST(head_loss, is_odd_zero_at_rest_and_has_the_slope_of_its_difference_quotient
     const double h = 1e-6 * q;
     EXPECT_EQ(hazen_williams(110.0, 300.0, 0.25, -q).head.number, -hazen_williams(110.0, 300.0, 0.25, q).head.number);
     EXPECT_EQ(manning(0.013, 300.0, 0.25, -q).head.number, -manning(0.013, 300.0, 0.25, q).head.number);
-    const double hw = (hazen_williams(110.0, 300.0, 0.25, q + h).head.number - hazen_williams(110.0, 300.0, 0.25, q - h).head.number) / (2.0 * h);
+    const double hw = (hazen_williams(110.0, 300.0, 0.25, q + h).head.number -
+                       hazen_williams(110.0, 300.0, 0.25, q - h).head.number) /
+                      (2.0 * h);
     EXPECT_LT(relative(hazen_williams(110.0, 300.0, 0.25, q).slope.number, hw), 1e-8);
-    const double mn = (manning(0.013, 300.0, 0.25, q + h).head.number - manning(0.013, 300.0, 0.25, q - h).head.number) / (2.0 * h);
+    const double mn =
+        (manning(0.013, 300.0, 0.25, q + h).head.number - manning(0.013, 300.0, 0.25, q - h).head.number) / (2.0 * h);
     EXPECT_LT(relative(manning(0.013, 300.0, 0.25, q).slope.number, mn), 1e-8);
   }
   for (const auto& at_rest : {hazen_williams(110.0, 300.0, 0.25, 0.0), manning(0.013, 300.0, 0.25, 0.0)}) {
@@ -80,13 +83,15 @@ TEST(head_loss, darcy_slope_agrees_with_the_difference_quotient_through_the_tran
   }
   // Hagen-Poiseuille: h = 128 nu L Q/(pi g d^4)
   const double q = 1e-5;
-  EXPECT_LT(relative(loss(q).head.number, 128.0 * nu * 700.0 * q / (std::numbers::pi * 9.80665 * std::pow(d, 4))), 1e-13);
+  EXPECT_LT(relative(loss(q).head.number, 128.0 * nu * 700.0 * q / (std::numbers::pi * 9.80665 * std::pow(d, 4))),
+            1e-13);
 }
 
 TEST(head_loss, the_equivalent_factor_loses_the_same_head) {
   const double d = 0.3, area = std::numbers::pi * d * d / 4.0, q = 0.1, g = 9.80665, length = 450.0;
   const double h = hazen_williams(125.0, length, d, q).head.number;
-  const double f = friction::equivalent_factor<1>(Lanes<1>(h / length), Lanes<1>(d), Lanes<1>(g), Lanes<1>(q / area)).number;
+  const double f =
+      friction::equivalent_factor<1>(Lanes<1>(h / length), Lanes<1>(d), Lanes<1>(g), Lanes<1>(q / area)).number;
   EXPECT_LT(relative(friction::darcy_loss<1>({f, 0.0}, length, d, area, g, q).head.number, h), 1e-14);
   EXPECT_GT(f, 0.01);
   EXPECT_LT(f, 0.03);

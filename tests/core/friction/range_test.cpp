@@ -9,7 +9,8 @@ using namespace headband;
 using friction::FlowState;
 using friction::FrictionLaw;
 
-const FlowState water_main{.reynolds = 5e5, .relative_roughness = 2e-4, .bore = 0.4, .velocity = 1.4, .kinematic_viscosity = 1.1e-6};
+const FlowState water_main{
+    .reynolds = 5e5, .relative_roughness = 2e-4, .bore = 0.4, .velocity = 1.4, .kinematic_viscosity = 1.1e-6};
 
 TEST(range_remarks, a_water_main_is_inside_every_range) {
   for (int law = 0; law <= static_cast<int>(FrictionLaw::none); ++law)

@@ -8,9 +8,7 @@ namespace {
 using namespace headband;
 using base::Lanes;
 
-double fraction(double at_reference, double pressure) {
-  return liquid::gas_fraction<1>(at_reference, pressure).number;
-}
+double fraction(double at_reference, double pressure) { return liquid::gas_fraction<1>(at_reference, pressure).number; }
 
 TEST(gas, fraction_is_the_stated_one_at_the_stated_pressure) {
   for (const double a : {0.0, 1e-5, 1e-3, 0.1, 0.5}) EXPECT_NEAR(fraction(a, 101325.0), a, 1e-16);

@@ -23,7 +23,8 @@ TEST(sea_water, viscosity_and_vapour_pressure_are_near_published_tables) {
   EXPECT_NEAR(p.vapour_pressure / liquid::vapour_pressure(288.15), 0.98, 0.002);
 }
 
-// K_s/K_T = 1 + T alpha^2 K_T/(rho cp), cp of sea water 3990 J/(kg K) within 1 % (from memory): two independent fits agree
+// K_s/K_T = 1 + T alpha^2 K_T/(rho cp), cp of sea water 3990 J/(kg K) within 1 % (from memory): two independent fits
+// agree
 TEST(sea_water, sound_speed_and_isothermal_modulus_agree_through_thermodynamics) {
   for (double t = 276.15; t <= 311.0; t += 5.0) {
     const auto p = liquid::sea_water(t);

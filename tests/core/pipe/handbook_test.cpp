@@ -52,7 +52,8 @@ TEST(roughness_reference, defaults_lie_in_the_printed_ranges) {
   const auto ours = [](const std::string& material, const std::string& condition) -> const pipe::RoughnessEntry* {
     for (const auto& e : pipe::roughness_table()) {
       const bool same = e.material == material && e.condition == condition;
-      const bool steel = e.material == "steel" && e.condition == "commercial, new" && material == "commercial steel or wrought iron";
+      const bool steel =
+          e.material == "steel" && e.condition == "commercial, new" && material == "commercial steel or wrought iron";
       const bool copper = e.material == "copper" && material == "drawn brass or copper";
       const bool rusty = e.material == "steel" && material == "uncoated steel" && e.condition == condition;
       const bool plastic = e.material == "plastic" && material == "PVC, PE" && e.condition == condition;
