@@ -3,19 +3,9 @@
 #include "core/steady/pipe_loss.hpp"
 
 #include "core/base/elementary.hpp"
-
-#include <numbers>
+#include "core/friction/head_loss.hpp"
 
 namespace headband::steady {
-namespace {
-
-// Hazen-Williams in SI (common practice; convention p of the case file).
-constexpr double hazen_williams_constant = 10.67;
-constexpr double hazen_williams_flow_power = 1.852;
-constexpr double hazen_williams_bore_power = 4.8704;
-
-}  // namespace
-
 template <int W>
 PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W>& values, std::size_t index) {
   const network::PipeValues<W>& pipe = values.pipes[index];
@@ -37,12 +27,14 @@ PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W
       out.rule.relative_roughness = pipe.roughness / pipe.bore;
       out.rule.scatter = pipe.friction_scatter;
       out.rule.laminar_scatter = pipe.laminar_scatter;
+      out.prepared = friction::prepare(out.rule);
       break;
     case network::LossKind::hazen_williams:
       // f = h 2 g D A^2 / (L Q^2) at Q = 1
-      out.factor_at_unit =
-          pipe.friction_scatter * (2.0 * hazen_williams_constant) * values.gravity * pipe.bore * pipe.area * pipe.area /
-          (base::pow(pipe.loss_number, hazen_williams_flow_power) * base::pow(pipe.bore, hazen_williams_bore_power));
+      out.factor_at_unit = pipe.friction_scatter * (2.0 * friction::hazen_williams_constant) * values.gravity *
+                           pipe.bore * pipe.area * pipe.area /
+                           (base::pow(pipe.loss_number, friction::hazen_williams_flow_power) *
+                            base::pow(pipe.bore, friction::hazen_williams_bore_power));
       break;
     case network::LossKind::manning:
       // f = 8 g n^2 / R^(1/3), R = D/4 hydraulic radius
@@ -62,10 +54,10 @@ template <int W>
 friction::Factor<W> factor_at_flow(const PipeFriction<W>& pipe, const Lanes<W>& flow_size) {
   switch (pipe.kind) {
     case network::LossKind::darcy:
-      return friction::darcy_factor<W>(pipe.rule, pipe.reynolds_per_flow * flow_size);
+      return friction::darcy_factor<W>(pipe.prepared, pipe.reynolds_per_flow * flow_size);
     case network::LossKind::hazen_williams:
-      return {pipe.factor_at_unit * base::pow(flow_size, hazen_williams_flow_power - 2.0),
-              Lanes<W>(hazen_williams_flow_power - 2.0)};
+      return {pipe.factor_at_unit * base::pow(flow_size, friction::hazen_williams_flow_power - 2.0),
+              Lanes<W>(friction::hazen_williams_flow_power - 2.0)};
     case network::LossKind::manning:
     case network::LossKind::fixed_factor:
     case network::LossKind::none:

@@ -12,13 +12,14 @@ using base::Lanes;
 template <int W>
 struct PipeFriction {
   network::LossKind kind = network::LossKind::darcy;
-  friction::FactorRule<W> rule;   ///< Darcy laws
-  Lanes<W> fixed_factor = 0.0;    ///< fixed factor, Manning: Darcy factor, scatter included [-]
-  Lanes<W> factor_at_unit = 0.0;  ///< Hazen-Williams: Darcy factor at 1 m3/s, scatter included [-]
-  Lanes<W> reynolds_per_flow;     ///< Re = this |Q| [s/m3]
-  Lanes<W> diameters;             ///< (length + equivalent lengths of all fittings) / bore [-]
-  Lanes<W> k;                     ///< loss coefficients of all fittings [-]
-  Lanes<W> velocity_head;         ///< V^2/2g at 1 m3/s [m / (m3/s)^2]
+  friction::FactorRule<W> rule;          ///< Darcy laws
+  friction::PreparedRule<W> prepared{};  ///< of `rule`
+  Lanes<W> fixed_factor = 0.0;           ///< fixed factor, Manning: Darcy factor, scatter included [-]
+  Lanes<W> factor_at_unit = 0.0;         ///< Hazen-Williams: Darcy factor at 1 m3/s, scatter included [-]
+  Lanes<W> reynolds_per_flow;            ///< Re = this |Q| [s/m3]
+  Lanes<W> diameters;                    ///< (length + equivalent lengths of all fittings) / bore [-]
+  Lanes<W> k;                            ///< loss coefficients of all fittings [-]
+  Lanes<W> velocity_head;                ///< V^2/2g at 1 m3/s [m / (m3/s)^2]
 };
 
 /// The friction law of pipe `index` of a plan, its numbers taken from `values`.

@@ -8,7 +8,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
 #include <optional>
 #include <tuple>
 
@@ -16,8 +15,6 @@ namespace headband::steady {
 namespace {
 
 using network::DeviceKind;
-
-constexpr double not_a_number = std::numeric_limits<double>::quiet_NaN();
 
 template <int W>
 struct Workspace {

@@ -1,13 +1,10 @@
 #pragma once
 // SPDX-License-Identifier: MIT
 
-#include "core/liquid/water.hpp"
+#include "core/liquid/draws.hpp"
 #include "core/network/detail/draw.hpp"
 
 namespace headband::network::detail {
-
-/// Water's numbers are taken at this pressure: a case has one liquid, not one per place [Pa].
-inline constexpr double liquid_pressure = 0.1e6;
 
 enum class LiquidKind { water, sea_water, own };
 [[nodiscard]] inline LiquidKind kind_of(const Liquid& liquid) {
@@ -17,8 +14,8 @@ enum class LiquidKind { water, sea_water, own };
 
 [[nodiscard]] inline bool has_viscosity_law(const Liquid& liquid) { return liquid.viscosity_points.size() >= 2; }
 
-/// What follows from the temperature: the numbers of water, or the two-point viscosity law. Slow; lanes of one
-/// temperature are computed once.
+/// What follows from the temperature: the numbers of water at 0.1 MPa (a case has one liquid, not one per place), or the
+/// two-point viscosity law.
 template <int W>
 void realise_by_temperature(const Liquid& liquid, const Draw<W>& draw, LiquidValues<W>& values) {
   values.temperature = draw(liquid.temperature);
@@ -27,27 +24,20 @@ void realise_by_temperature(const Liquid& liquid, const Draw<W>& draw, LiquidVal
     values.density = values.bulk_modulus = values.bulk_modulus_isothermal = values.vapour_pressure = not_a_number;
     values.viscosity_by_temperature = not_a_number;
   } else {
-    headband::liquid::Properties water{};
-    for (int lane = 0; lane < W; ++lane) {
-      const double temperature = values.temperature[lane];
-      if (lane == 0 || temperature != values.temperature[lane - 1])
-        water = kind == LiquidKind::water ? headband::liquid::water(temperature, liquid_pressure)
-                                          : headband::liquid::sea_water(temperature);
-      values.density.set(lane, water.density);
-      values.bulk_modulus.set(lane, water.bulk_modulus_isentropic);
-      values.bulk_modulus_isothermal.set(lane, water.bulk_modulus_isothermal);
-      values.vapour_pressure.set(lane, water.vapour_pressure);
-      values.viscosity_by_temperature.set(lane, water.dynamic_viscosity);
-    }
+    const headband::liquid::PropertiesOf<W> water = kind == LiquidKind::water
+                                                        ? headband::liquid::water_of<W>(values.temperature)
+                                                        : headband::liquid::sea_water_of<W>(values.temperature);
+    values.density = water.density;
+    values.bulk_modulus = water.bulk_modulus_isentropic;
+    values.bulk_modulus_isothermal = water.bulk_modulus_isothermal;
+    values.vapour_pressure = water.vapour_pressure;
+    values.viscosity_by_temperature = water.dynamic_viscosity;
   }
   if (!has_viscosity_law(liquid)) return;
   const auto& first = liquid.viscosity_points[0];
   const auto& second = liquid.viscosity_points[1];
-  const Lanes<W> t1 = draw(first.first), nu1 = draw(first.second), t2 = draw(second.first), nu2 = draw(second.second);
-  for (int lane = 0; lane < W; ++lane) {
-    const auto law = headband::liquid::viscosity_law(t1[lane], nu1[lane], t2[lane], nu2[lane]);
-    values.viscosity_by_temperature.set(lane, headband::liquid::viscosity_at(law, values.temperature[lane]));
-  }
+  values.viscosity_by_temperature = headband::liquid::viscosity_between<W>(
+      {draw(first.first), draw(first.second), draw(second.first), draw(second.second)}, values.temperature);
 }
 
 /// Numbers given outright take the place of those that follow from the temperature.

@@ -88,6 +88,7 @@ void LaneLinks::take(const FlowGraph& graph, const LinkNumbers<W>& numbers, int 
             pipe.rule.transition[static_cast<std::size_t>(lane)].kind == friction::Transition::Kind::sudden) {
           PipeFriction<1> one;
           copy_slot(pipe, lane, one, 0);
+          one.prepared = friction::prepare(one.rule);
           find_jump(l, one);
         }
         break;
@@ -107,6 +108,9 @@ void LaneLinks::take(const FlowGraph& graph, const LinkNumbers<W>& numbers, int 
         break;
     }
   }
+  for (std::size_t g = 0; g < used_groups_; ++g)
+    if (groups_[g].friction.kind == network::LossKind::darcy)
+      groups_[g].friction.prepared = friction::prepare(groups_[g].friction.rule);
   held_heads_.clear();
   double known = 0.0;
   for (std::size_t n = 0; n < graph.held.size(); ++n) {
