@@ -379,6 +379,7 @@ void exchange_limits(Archive& a, Rows& rows) {
   a.named_rows(d, rows, &Row::name, "Limit");
   a.index_scale("side", 2, "0 least, 1 most");
   a.column("limit_kind", d, rows, &Row::kind, "What is limited");
+  a.column("limit_where", d, rows, &Row::where, "Where it holds; empty: everywhere");
   a.column("limit_units", d, rows, &Row::unit, "Unit of limit, value and margin");
   a.column("limit", d, rows, &Row::limit, {"see limit_units", "The limit"});
   a.column("value", d, rows, &Row::value, {"see limit_units", "Value of the central run"});
@@ -438,6 +439,7 @@ void exchange_answers(Archive& a, Rows& rows) {
   a.named_rows(d, rows, &Row::name, "Answer");
   a.index_scale("side", 2, "0 lower or least, 1 upper or most");
   a.column("output_kind", d, rows, &Row::kind, "What is asked");
+  a.column("output_where", d, rows, &Row::where, "Where; empty: everywhere");
   a.column("output_units", d, rows, &Row::unit, "Unit of the answer");
   a.column("output_central", d, rows, &Row::central, {"see output_units", "Answer of the central run"});
   a.column("output_mean", d, rows, &Row::mean, {"see output_units", "Mean of the finished draws"});
@@ -510,6 +512,25 @@ void exchange_bands(Archive& a, Bands& b, Pipes& pipe_names) {
           {"run", "output_name"},
           b.output_value,
           {.units = "see output_units", .long_name = "Answer of the draw", .stride = b.stride});
+
+  a.codes("run_cavity", "run", b.run_cavity, yes_codes, "A cavity formed in the draw");
+  a.text_scale("limit_name", b.limit_name, "Limit, as in /limits");
+  a.array("limit_value",
+          {"run", "limit_name"},
+          b.limit_value,
+          {.units = "see /limits/limit_units",
+           .long_name = "Value of the draw the limit is judged by",
+           .stride = b.stride});
+  const std::size_t stations = b.run_status.empty() ? 0 : b.run_head_max.size() / b.run_status.size();
+  a.index_scale("run_station", stations, "Station of a draw's envelope; none unless the band was stopped");
+  a.array("run_head_max",
+          {"run", "run_station"},
+          b.run_head_max,
+          {.units = "m", .long_name = "Highest head of the draw", .cell_methods = "time: maximum"});
+  a.array("run_head_min",
+          {"run", "run_station"},
+          b.run_head_min,
+          {.units = "m", .long_name = "Lowest head of the draw", .cell_methods = "time: minimum"});
 
   a.text_scale("pipe_name", pipe_names, "Pipe");
   a.number_scale("profile_probability", b.profile_probability, {"1", "Probability of a profile"});

@@ -250,7 +250,9 @@ inline void bands(answers::Study& s) {
                           "lognormal, 95 % within x/ 3",
                           "normal, 95 % within ± 3 %",
                           "normal, 95 % within ± 10 %"};
+  b.limit_name = {"surge rating", "no vacuum", "flow lower main"};
   const std::vector<std::string> names = {"drop", "peak", "flow lower main"};
+  const std::vector<std::string> where = {"upper tank, valve chamber", "valve chamber", "lower main"};
   const std::vector<std::string> kinds = {"pressure_drop", "highest_pressure", "flow"};
   const std::vector<std::string> units = {"Pa", "Pa", "m3/s"};
   Uniform u;
@@ -263,6 +265,7 @@ inline void bands(answers::Study& s) {
     b.input_value.insert(b.input_value.end(), {wall, roughness, speed, friction});
     const bool failed = run == 17 || run == 400;
     b.run_status.push_back(failed ? std::int8_t{1} : std::int8_t{0});
+    b.run_cavity.push_back(run % 8 == 0 ? std::int8_t{1} : std::int8_t{0});
     const double drop = -480e3 + 8.0e3 * friction * (1.0 + 0.2 * std::log(roughness / 1e-4));
     const double peak = weight * (59.1 + 62.0 * speed * (0.85 + 18.75 * wall));
     const double flow = 0.1 * (1.0 - 0.01 * (friction - 1.0));
@@ -271,6 +274,7 @@ inline void bands(answers::Study& s) {
       b.output_value.push_back(failed ? answers::missing : out[k]);
       if (!failed) columns[k].push_back(out[k]);
     }
+    for (const double value : {peak, peak - 12e5, flow}) b.limit_value.push_back(failed ? answers::missing : value);
   }
   for (std::size_t k = 0; k < names.size(); ++k) {
     auto& column = columns[k];
@@ -278,6 +282,7 @@ inline void bands(answers::Study& s) {
     answers::BandAnswer a;
     a.name = names[k];
     a.kind = kinds[k];
+    a.where = where[k];
     a.unit = units[k];
     a.central = column[column.size() / 2] * 1.0001;
     double sum = 0.0;
@@ -325,6 +330,7 @@ inline void limits(answers::Study& s) {
   answers::LimitAnswer surge;
   surge.name = "surge rating";
   surge.kind = "highest_pressure";
+  surge.where = "valve chamber";
   surge.unit = "Pa";
   surge.limit = 12e5;
   surge.value = 11.95e5;
@@ -340,6 +346,7 @@ inline void limits(answers::Study& s) {
   answers::LimitAnswer low = surge;
   low.name = "no vacuum";
   low.kind = "lowest_pressure";
+  low.where = "";
   low.limit = 0.0;
   low.value = 1.2e4;
   low.margin = 1.2e4;
@@ -356,6 +363,7 @@ inline void limits(answers::Study& s) {
   answers::LimitAnswer flow;
   flow.name = "flow lower main";
   flow.kind = "flow";
+  flow.where = "lower main";
   flow.unit = "m3/s";
   flow.limit = 0.09;
   flow.value = 0.1;

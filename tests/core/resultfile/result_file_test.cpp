@@ -83,6 +83,8 @@ TEST(ResultFile, EachBlockMayBeThereOrNot) {
       },
       [](Study& s) {
         s.bands->input_value.clear();
+        s.bands->limit_value.clear();
+        s.bands->run_cavity.clear();
         s.bands->output_value.clear();
         s.bands->run_status.clear();
       },
@@ -151,6 +153,8 @@ TEST(ResultFile, LargeDataComeBackBitByBit) {
   b.run_status.assign(runs, 0);
   b.input_value.assign(runs * b.input_name.size(), 0.0);
   b.output_value.assign(runs * b.answers.size(), 0.0);
+  b.limit_value.clear();  // not kept
+  b.run_cavity.clear();
   for (std::size_t i = 0; i < b.input_value.size(); ++i) b.input_value[i] = std::sin(static_cast<double>(i));
   for (std::size_t i = 0; i < b.output_value.size(); ++i) b.output_value[i] = std::cos(static_cast<double>(i));
   b.stride = 7;
@@ -170,6 +174,26 @@ TEST(ResultFile, TheStateOfTheRunIsKept) {
     write(study, folder / "a.h5", {});
     EXPECT_EQ(read(folder / "a.h5").state, state);
   }
+}
+
+TEST(ResultFile, AStoppedBandKeepsWhatResumingNeeds) {
+  Study study = support::sample_study();
+  study.state = answers::RunState::partial;
+  auto& b = *study.bands;
+  const std::size_t stations = b.profile_share.size();
+  for (std::size_t i = 0; i < b.run_status.size() * stations; ++i) {
+    b.run_head_max.push_back(100.0 + static_cast<double>(i));
+    b.run_head_min.push_back(-1.0 * static_cast<double>(i));
+  }
+  expect_round_trip(study, "stopped band");
+  const ScratchFolder folder;
+  write(study, folder / "a.partial.h5", {});
+  const Study back = read(folder / "a.partial.h5");
+  EXPECT_EQ(back.bands->run_head_max, b.run_head_max);
+  EXPECT_EQ(back.bands->run_head_min, b.run_head_min);
+  EXPECT_EQ(back.bands->run_cavity, b.run_cavity);
+  EXPECT_EQ(back.bands->limit_name, b.limit_name);
+  EXPECT_EQ(back.bands->run_status, b.run_status);
 }
 
 TEST(ResultFile, EqualStudiesGiveEqualBytes) {

@@ -34,6 +34,8 @@ int main(int count, char** words) {
     bands.stride = 20;
     bands.input_value.resize(runs * bands.input_name.size());
     for (std::size_t i = 0; i < bands.input_value.size(); ++i) bands.input_value[i] = 0.5 * static_cast<double>(i);
+    bands.run_cavity.clear();
+    bands.limit_value.clear();
     bands.output_value.assign(runs * bands.answers.size(), 1.0);
     resultfile::write(large, folder + "large.h5", {});
   } catch (const std::exception& e) {
