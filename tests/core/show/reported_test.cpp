@@ -1,0 +1,41 @@
+// SPDX-License-Identifier: MIT
+#include "core/show/reported.hpp"
+
+#include "tests/support/sample_study.hpp"
+
+#include <gtest/gtest.h>
+
+namespace headband::show {
+namespace {
+
+TEST(Reported, VerdictsHaveTheirWords) {
+  EXPECT_EQ(words_of(answers::Verdict::ok), "OK");
+  EXPECT_EQ(words_of(answers::Verdict::not_ok), "NOT OK");
+  EXPECT_EQ(words_of(answers::Verdict::cannot_tell), "CANNOT TELL");
+  EXPECT_EQ(words_of(answers::Verdict::none), "");
+}
+
+TEST(Reported, AFileNameLosesItsFolder) {
+  EXPECT_EQ(file_name_of("/a/b/c.toml"), "c.toml");
+  EXPECT_EQ(file_name_of("c.toml"), "c.toml");
+}
+
+TEST(Reported, ACavityIsToldFromAMillionthOfItsReach) {
+  auto study = support::sample_surge();
+  // A reach of 900 m / 20 of bore 0.492 m holds 8.555 m3.
+  study.transient->cavities = {{"upper main", 0.0, 0.0, 1.0, 8.5e-6}, {"upper main", 45.0, 0.0, 1.0, 8.6e-6}};
+  const auto told = reported_cavities(study);
+  ASSERT_EQ(told.size(), 1U);
+  EXPECT_EQ(told[0].chainage, 45.0);
+}
+
+TEST(Reported, ACavityOfUnknownReachIsTold) {
+  auto study = support::sample_surge();
+  study.grid.reset();
+  EXPECT_EQ(reported_cavities(study).size(), 3U);
+  study.transient.reset();
+  EXPECT_TRUE(reported_cavities(study).empty());
+}
+
+}  // namespace
+}  // namespace headband::show
