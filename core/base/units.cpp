@@ -22,10 +22,10 @@ constexpr double cubic_foot = 0.028316846592;
 constexpr double square_foot = 0.09290304;
 constexpr double square_inch = 6.4516e-4;
 constexpr double psi = pound * standard_gravity / square_inch;
-constexpr double metre_of_water = 9806.65;             // conventional: 1000 kg/m3, standard gravity
+constexpr double metre_of_water = 9806.65;  // conventional: 1000 kg/m3, standard gravity
 constexpr double foot_of_water = foot * metre_of_water;
-constexpr double julian_year = 31557600.0;             // 365.25 days
-constexpr double turn = 6.283185307179586476925;       // rad
+constexpr double julian_year = 31557600.0;        // 365.25 days
+constexpr double turn = 6.283185307179586476925;  // rad
 
 using enum UnitKind;
 
@@ -58,7 +58,7 @@ constexpr std::array units{
     Unit{"litre", volume, 1, 1000, 0, "1 dm3"},
     Unit{"cm3", volume, 1, 1e6, 0, "SI"},
     Unit{"ft3", volume, cubic_foot, 1, 0, "0.3048^3 m3"},
-    Unit{"in3", volume, inch * inch * inch, 1, 0, "0.0254^3 m3"},
+    Unit{"in3", volume, inch* inch* inch, 1, 0, "0.0254^3 m3"},
     Unit{"US gal", volume, us_gallon, 1, 0, "231 in3"},
     Unit{"imp gal", volume, imperial_gallon, 1, 0, "4.54609 L"},
     Unit{"bbl", volume, barrel, 1, 0, "42 US gal"},
@@ -162,8 +162,8 @@ constexpr std::array units{
     Unit{"Hz", rotational_speed, turn, 1, 0, "2 pi rad/s"},
     Unit{"kg m2", inertia, 1, 1, 0, "SI"},
     Unit{"t m2", inertia, 1000, 1, 0, "SI"},
-    Unit{"lb ft2", inertia, pound * square_foot, 1, 0, "0.45359237 kg ft2"},
-    Unit{"lbm ft2", inertia, pound * square_foot, 1, 0, "0.45359237 kg ft2"},
+    Unit{"lb ft2", inertia, pound* square_foot, 1, 0, "0.45359237 kg ft2"},
+    Unit{"lbm ft2", inertia, pound* square_foot, 1, 0, "0.45359237 kg ft2"},
     // ageing
     Unit{"mm/year", growth_rate, 1, 1000 * julian_year, 0, "mm in 365.25 d"},
     Unit{"mm/yr", growth_rate, 1, 1000 * julian_year, 0, "mm in 365.25 d"},
@@ -209,12 +209,27 @@ bool ends_with_word(std::string& text, std::string_view word) {
 // One spelling for the many ways to write powers, products and spaces.
 std::string normal_spelling(std::string_view given) {
   std::string text(given);
-  for (const auto& [from, to] : {std::pair{"\u00b2", "2"}, {"\u00b3", "3"}, {"^", ""}, {"\u00b7", " "}, {"*", " "},
-                                 {"\u00a0", " "}, {"\u00b0", "deg"}, {"\u00b5", "u"}, {"\u03bc", "u"}, {"\u2212", "-"}})
+  for (const auto& [from, to] : {std::pair{"\u00b2", "2"},
+                                 {"\u00b3", "3"},
+                                 {"^", ""},
+                                 {"\u00b7", " "},
+                                 {"*", " "},
+                                 {"\u00a0", " "},
+                                 {"\u00b0", "deg"},
+                                 {"\u00b5", "u"},
+                                 {"\u03bc", "u"},
+                                 {"\u2212", "-"}})
     text = replaced(text, from, to);
   while (text.find("  ") != std::string::npos) text = replaced(text, "  ", " ");
-  for (const auto& [from, to] : {std::pair{" /", "/"}, {"/ ", "/"}, {"deg C", "degC"}, {"deg F", "degF"},
-                                 {"Pa.s", "Pa s"}, {"kg.m2", "kg m2"}, {"U.S.", "US"}, {"imperial ", "imp "}, {"UK ", "imp "}})
+  for (const auto& [from, to] : {std::pair{" /", "/"},
+                                 {"/ ", "/"},
+                                 {"deg C", "degC"},
+                                 {"deg F", "degF"},
+                                 {"Pa.s", "Pa s"},
+                                 {"kg.m2", "kg m2"},
+                                 {"U.S.", "US"},
+                                 {"imperial ", "imp "},
+                                 {"UK ", "imp "}})
     text = replaced(text, from, to);
   while (text.starts_with(' ')) text.erase(0, 1);
   while (text.ends_with(' ')) text.pop_back();
@@ -244,15 +259,16 @@ std::span<const Unit> unit_table() { return units; }
 std::optional<FoundUnit> find_unit(std::string_view text) {
   std::string name = normal_spelling(text);
   if (const Unit* unit = named(name)) return FoundUnit{*unit, PressureReference::unnamed};
-  for (const auto& [word, reference] :
-       {std::pair{" gauge", PressureReference::gauge}, {" absolute", PressureReference::absolute},
-        {" abs", PressureReference::absolute}, {" g", PressureReference::gauge}, {" a", PressureReference::absolute}}) {
+  for (const auto& [word, reference] : {std::pair{" gauge", PressureReference::gauge},
+                                        {" absolute", PressureReference::absolute},
+                                        {" abs", PressureReference::absolute},
+                                        {" g", PressureReference::gauge},
+                                        {" a", PressureReference::absolute}}) {
     std::string rest = name;
     if (!ends_with_word(rest, word)) continue;
     if (const Unit* unit = pressure_named(rest)) return FoundUnit{*unit, reference};
   }
-  for (const auto& [word, reference] :
-       {std::pair{"g", PressureReference::gauge}, {"a", PressureReference::absolute}}) {
+  for (const auto& [word, reference] : {std::pair{"g", PressureReference::gauge}, {"a", PressureReference::absolute}}) {
     std::string rest = name;
     if (!ends_with_word(rest, word)) continue;
     if (rest == "bar" || rest == "psi" || rest == "kPa" || rest == "mbar")
@@ -263,90 +279,162 @@ std::optional<FoundUnit> find_unit(std::string_view text) {
 
 std::optional<UnitKind> kind_of(Dimension dimension) {
   switch (dimension) {
-    case Dimension::number: return std::nullopt;
-    case Dimension::share: return share;
-    case Dimension::factor: return std::nullopt;
-    case Dimension::length: return length;
-    case Dimension::area: return area;
-    case Dimension::volume: return volume;
-    case Dimension::time: return time;
-    case Dimension::velocity: return velocity;
-    case Dimension::flow: return flow;
-    case Dimension::pressure: return pressure;
-    case Dimension::pressure_difference: return pressure;
-    case Dimension::modulus: return pressure;
-    case Dimension::compliance: return compliance;
-    case Dimension::temperature: return temperature;
-    case Dimension::density: return density;
-    case Dimension::kinematic_viscosity: return kinematic_viscosity;
-    case Dimension::dynamic_viscosity: return dynamic_viscosity;
-    case Dimension::acceleration: return acceleration;
-    case Dimension::rotational_speed: return rotational_speed;
-    case Dimension::inertia: return inertia;
-    case Dimension::kv: return flow;
-    case Dimension::growth_rate: return growth_rate;
-    case Dimension::energy_price: return energy_price;
-    case Dimension::price_per_length: return price_per_length;
-    case Dimension::hours_per_year: return hours_per_year;
-    case Dimension::year: return std::nullopt;
+    case Dimension::number:
+      return std::nullopt;
+    case Dimension::share:
+      return share;
+    case Dimension::factor:
+      return std::nullopt;
+    case Dimension::length:
+      return length;
+    case Dimension::area:
+      return area;
+    case Dimension::volume:
+      return volume;
+    case Dimension::time:
+      return time;
+    case Dimension::velocity:
+      return velocity;
+    case Dimension::flow:
+      return flow;
+    case Dimension::pressure:
+      return pressure;
+    case Dimension::pressure_difference:
+      return pressure;
+    case Dimension::modulus:
+      return pressure;
+    case Dimension::compliance:
+      return compliance;
+    case Dimension::temperature:
+      return temperature;
+    case Dimension::density:
+      return density;
+    case Dimension::kinematic_viscosity:
+      return kinematic_viscosity;
+    case Dimension::dynamic_viscosity:
+      return dynamic_viscosity;
+    case Dimension::acceleration:
+      return acceleration;
+    case Dimension::rotational_speed:
+      return rotational_speed;
+    case Dimension::inertia:
+      return inertia;
+    case Dimension::kv:
+      return flow;
+    case Dimension::growth_rate:
+      return growth_rate;
+    case Dimension::energy_price:
+      return energy_price;
+    case Dimension::price_per_length:
+      return price_per_length;
+    case Dimension::hours_per_year:
+      return hours_per_year;
+    case Dimension::year:
+      return std::nullopt;
   }
   return std::nullopt;
 }
 
 std::string_view words_of(UnitKind kind) {
   switch (kind) {
-    case share: return "a share";
-    case length: return "a length";
-    case area: return "an area";
-    case volume: return "a volume";
-    case time: return "a time";
-    case velocity: return "a velocity";
-    case flow: return "a flow";
-    case pressure: return "a pressure";
-    case compliance: return "a compliance";
-    case temperature: return "a temperature";
-    case density: return "a density";
-    case kinematic_viscosity: return "a kinematic viscosity";
-    case dynamic_viscosity: return "a dynamic viscosity";
-    case acceleration: return "an acceleration";
-    case rotational_speed: return "a rotational speed";
-    case inertia: return "a moment of inertia";
-    case growth_rate: return "a growth rate";
-    case energy_price: return "a price of energy";
-    case price_per_length: return "a price per length";
-    case hours_per_year: return "running hours per year";
+    case share:
+      return "a share";
+    case length:
+      return "a length";
+    case area:
+      return "an area";
+    case volume:
+      return "a volume";
+    case time:
+      return "a time";
+    case velocity:
+      return "a velocity";
+    case flow:
+      return "a flow";
+    case pressure:
+      return "a pressure";
+    case compliance:
+      return "a compliance";
+    case temperature:
+      return "a temperature";
+    case density:
+      return "a density";
+    case kinematic_viscosity:
+      return "a kinematic viscosity";
+    case dynamic_viscosity:
+      return "a dynamic viscosity";
+    case acceleration:
+      return "an acceleration";
+    case rotational_speed:
+      return "a rotational speed";
+    case inertia:
+      return "a moment of inertia";
+    case growth_rate:
+      return "a growth rate";
+    case energy_price:
+      return "a price of energy";
+    case price_per_length:
+      return "a price per length";
+    case hours_per_year:
+      return "running hours per year";
   }
   return "";
 }
 
 std::string_view example_of(Dimension dimension) {
   switch (dimension) {
-    case Dimension::number: return "0.3";
-    case Dimension::share: return "30 %";
-    case Dimension::factor: return "± 10 %";
-    case Dimension::length: return "300 mm";
-    case Dimension::area: return "4 m2";
-    case Dimension::volume: return "7 m3";
-    case Dimension::time: return "10 s";
-    case Dimension::velocity: return "1150 m/s";
-    case Dimension::flow: return "100 L/s";
-    case Dimension::pressure: return "12 bar g";
-    case Dimension::pressure_difference: return "4.5 bar";
-    case Dimension::modulus: return "207 GPa";
-    case Dimension::compliance: return "1.2e-10 1/Pa";
-    case Dimension::temperature: return "15 degC";
-    case Dimension::density: return "845 kg/m3";
-    case Dimension::kinematic_viscosity: return "3.6 cSt";
-    case Dimension::dynamic_viscosity: return "3.1 cP";
-    case Dimension::acceleration: return "9.80665 m/s2";
-    case Dimension::rotational_speed: return "1480 rpm";
-    case Dimension::inertia: return "4.5 kg m2";
-    case Dimension::kv: return "12000 m3/h";
-    case Dimension::growth_rate: return "0.10 mm/year";
-    case Dimension::energy_price: return "0.14 /kWh";
-    case Dimension::price_per_length: return "260 /m";
-    case Dimension::hours_per_year: return "8000 h/year";
-    case Dimension::year: return "2030";
+    case Dimension::number:
+      return "0.3";
+    case Dimension::share:
+      return "30 %";
+    case Dimension::factor:
+      return "± 10 %";
+    case Dimension::length:
+      return "300 mm";
+    case Dimension::area:
+      return "4 m2";
+    case Dimension::volume:
+      return "7 m3";
+    case Dimension::time:
+      return "10 s";
+    case Dimension::velocity:
+      return "1150 m/s";
+    case Dimension::flow:
+      return "100 L/s";
+    case Dimension::pressure:
+      return "12 bar g";
+    case Dimension::pressure_difference:
+      return "4.5 bar";
+    case Dimension::modulus:
+      return "207 GPa";
+    case Dimension::compliance:
+      return "1.2e-10 1/Pa";
+    case Dimension::temperature:
+      return "15 degC";
+    case Dimension::density:
+      return "845 kg/m3";
+    case Dimension::kinematic_viscosity:
+      return "3.6 cSt";
+    case Dimension::dynamic_viscosity:
+      return "3.1 cP";
+    case Dimension::acceleration:
+      return "9.80665 m/s2";
+    case Dimension::rotational_speed:
+      return "1480 rpm";
+    case Dimension::inertia:
+      return "4.5 kg m2";
+    case Dimension::kv:
+      return "12000 m3/h";
+    case Dimension::growth_rate:
+      return "0.10 mm/year";
+    case Dimension::energy_price:
+      return "0.14 /kWh";
+    case Dimension::price_per_length:
+      return "260 /m";
+    case Dimension::hours_per_year:
+      return "8000 h/year";
+    case Dimension::year:
+      return "2030";
   }
   return "";
 }
@@ -362,28 +450,46 @@ std::string_view si_name(Dimension dimension) {
     case Dimension::share:
     case Dimension::factor:
     case Dimension::year:
-    case Dimension::hours_per_year: return "1";
-    case Dimension::length: return "m";
-    case Dimension::area: return "m2";
-    case Dimension::volume: return "m3";
-    case Dimension::time: return "s";
+    case Dimension::hours_per_year:
+      return "1";
+    case Dimension::length:
+      return "m";
+    case Dimension::area:
+      return "m2";
+    case Dimension::volume:
+      return "m3";
+    case Dimension::time:
+      return "s";
     case Dimension::velocity:
-    case Dimension::growth_rate: return "m s-1";
+    case Dimension::growth_rate:
+      return "m s-1";
     case Dimension::flow:
-    case Dimension::kv: return "m3 s-1";
+    case Dimension::kv:
+      return "m3 s-1";
     case Dimension::pressure:
     case Dimension::pressure_difference:
-    case Dimension::modulus: return "Pa";
-    case Dimension::compliance: return "Pa-1";
-    case Dimension::temperature: return "K";
-    case Dimension::density: return "kg m-3";
-    case Dimension::kinematic_viscosity: return "m2 s-1";
-    case Dimension::dynamic_viscosity: return "Pa s";
-    case Dimension::acceleration: return "m s-2";
-    case Dimension::rotational_speed: return "rad s-1";
-    case Dimension::inertia: return "kg m2";
-    case Dimension::energy_price: return "J-1";
-    case Dimension::price_per_length: return "m-1";
+    case Dimension::modulus:
+      return "Pa";
+    case Dimension::compliance:
+      return "Pa-1";
+    case Dimension::temperature:
+      return "K";
+    case Dimension::density:
+      return "kg m-3";
+    case Dimension::kinematic_viscosity:
+      return "m2 s-1";
+    case Dimension::dynamic_viscosity:
+      return "Pa s";
+    case Dimension::acceleration:
+      return "m s-2";
+    case Dimension::rotational_speed:
+      return "rad s-1";
+    case Dimension::inertia:
+      return "kg m2";
+    case Dimension::energy_price:
+      return "J-1";
+    case Dimension::price_per_length:
+      return "m-1";
   }
   return "1";
 }
@@ -398,8 +504,10 @@ DisplayUnit display_unit(Dimension dimension, UnitFamily family, double magnitud
   switch (dimension) {
     case Dimension::number:
     case Dimension::factor:
-    case Dimension::year: return {};
-    case Dimension::share: return of("%");
+    case Dimension::year:
+      return {};
+    case Dimension::share:
+      return of("%");
     case Dimension::length:
       if (size == 0.0) return of(si ? "m" : "ft");
       if (si) return of(size < 1.0 ? "mm" : size >= 2.0e4 ? "km" : "m");
@@ -410,30 +518,46 @@ DisplayUnit display_unit(Dimension dimension, UnitFamily family, double magnitud
     case Dimension::volume:
       if (si) return of(size < 0.1 ? "L" : "m3");
       return {"gal", us_gallon, 1.0, 0.0};
-    case Dimension::time: return of("s");
-    case Dimension::velocity: return of(si ? "m/s" : "ft/s");
-    case Dimension::flow: return of(!si ? "gpm" : size >= 1.0 ? "m3/s" : "L/s");
+    case Dimension::time:
+      return of("s");
+    case Dimension::velocity:
+      return of(si ? "m/s" : "ft/s");
+    case Dimension::flow:
+      return of(!si ? "gpm" : size >= 1.0 ? "m3/s" : "L/s");
     case Dimension::pressure:
-    case Dimension::pressure_difference: return of(si ? "bar" : "psi");
+    case Dimension::pressure_difference:
+      return of(si ? "bar" : "psi");
     case Dimension::modulus:
       if (si) return of(size < 1e9 ? "MPa" : "GPa");
       return of("ksi");
-    case Dimension::compliance: return of(si ? "1/GPa" : "1/psi");
-    case Dimension::temperature: return of(si ? "degC" : "degF");
-    case Dimension::density: return of(si ? "kg/m3" : "lb/ft3");
-    case Dimension::kinematic_viscosity: return of("cSt");
-    case Dimension::dynamic_viscosity: return of(si ? "mPa s" : "cP");
-    case Dimension::acceleration: return of(si ? "m/s2" : "ft/s2");
-    case Dimension::rotational_speed: return of("rpm");
-    case Dimension::inertia: return of(si ? "kg m2" : "lb ft2");
+    case Dimension::compliance:
+      return of(si ? "1/GPa" : "1/psi");
+    case Dimension::temperature:
+      return of(si ? "degC" : "degF");
+    case Dimension::density:
+      return of(si ? "kg/m3" : "lb/ft3");
+    case Dimension::kinematic_viscosity:
+      return of("cSt");
+    case Dimension::dynamic_viscosity:
+      return of(si ? "mPa s" : "cP");
+    case Dimension::acceleration:
+      return of(si ? "m/s2" : "ft/s2");
+    case Dimension::rotational_speed:
+      return of("rpm");
+    case Dimension::inertia:
+      return of(si ? "kg m2" : "lb ft2");
     case Dimension::kv:
       // Cv counts gpm at 1 psi, Kv m3/h at 1 bar: a Cv of 1 lets through gpm sqrt(bar/psi) at 1 bar.
       if (!si) return {"gpm (Cv)", us_gallon / 60.0 * std::sqrt(1e5 / psi), 1.0, 0.0};
       return {"m3/h (Kv)", 1.0, 3600.0, 0.0};
-    case Dimension::growth_rate: return of(si ? "mm/year" : "in/year");
-    case Dimension::energy_price: return of("/kWh");
-    case Dimension::price_per_length: return of(si ? "/m" : "/ft");
-    case Dimension::hours_per_year: return of("h/year");
+    case Dimension::growth_rate:
+      return of(si ? "mm/year" : "in/year");
+    case Dimension::energy_price:
+      return of("/kWh");
+    case Dimension::price_per_length:
+      return of(si ? "/m" : "/ft");
+    case Dimension::hours_per_year:
+      return of("h/year");
   }
   return {};
 }

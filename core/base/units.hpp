@@ -46,7 +46,7 @@ struct Unit {
   UnitKind kind;
   double times = 1.0;
   double by = 1.0;
-  double offset = 0.0;  ///< only temperatures
+  double offset = 0.0;          ///< only temperatures
   std::string_view definition;  ///< the exact definition the factor comes from
 };
 
@@ -97,6 +97,7 @@ struct DisplayUnit {
 
 /// A value [SI] in words of a family, "11.95 bar g", "173.3 psi g". NaN gives "-".
 /// @param gauge only for Dimension::pressure: g or abs is written after the unit
-[[nodiscard]] std::string shown(double value, Dimension dimension, UnitFamily family, bool gauge = true, int digits = 4);
+[[nodiscard]] std::string shown(
+    double value, Dimension dimension, UnitFamily family, bool gauge = true, int digits = 4);
 
 }  // namespace headband::base

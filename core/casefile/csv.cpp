@@ -97,7 +97,10 @@ void split_header(const std::string& cell, CsvColumn& column) {
 void read_row(const Line& line, const std::vector<std::string>& cells, bool decimal_comma, CsvReading& reading) {
   auto& columns = reading.table.columns;
   if (cells.size() != columns.size()) {
-    reading.problems.push_back({line.number, "", fmt::format("the row has {} cells", cells.size()), std::string(trimmed(line.text)),
+    reading.problems.push_back({line.number,
+                                "",
+                                fmt::format("the row has {} cells", cells.size()),
+                                std::string(trimmed(line.text)),
                                 fmt::format("{} cells, as the header", columns.size()),
                                 "check the separator; a decimal comma is declared by a line \"# decimal comma\""});
     return;
@@ -107,9 +110,13 @@ void read_row(const Line& line, const std::vector<std::string>& cells, bool deci
     const auto number = number_in(cells[i], decimal_comma);
     if (!number) {
       const bool comma = cells[i].find(',') != std::string::npos;
-      reading.problems.push_back({line.number, columns[i].name, cells[i].empty() ? "the cell is empty" : "the cell is not a finite number", cells[i],
+      reading.problems.push_back({line.number,
+                                  columns[i].name,
+                                  cells[i].empty() ? "the cell is empty" : "the cell is not a finite number",
+                                  cells[i],
                                   "a number such as 12.5",
-                                  comma ? "declare a decimal comma by a line \"# decimal comma\"" : "write the number alone; units stand in the header"});
+                                  comma ? "declare a decimal comma by a line \"# decimal comma\""
+                                        : "write the number alone; units stand in the header"});
       return;
     }
     numbers.push_back(*number);
@@ -125,7 +132,12 @@ CsvReading read_csv(std::string_view text) {
   bool decimal_comma = false;
   const std::vector<Line> lines = lines_of(text, decimal_comma);
   if (lines.empty()) {
-    reading.problems.push_back({1, "", "the table is empty", "", "a header line and rows of numbers", "write a header such as \"time [s], level [m]\""});
+    reading.problems.push_back({1,
+                                "",
+                                "the table is empty",
+                                "",
+                                "a header line and rows of numbers",
+                                "write a header such as \"time [s], level [m]\""});
     return reading;
   }
   const char separator = separator_of(lines.front().text, decimal_comma);
@@ -137,8 +149,12 @@ CsvReading read_csv(std::string_view text) {
     reading.table.columns.push_back(std::move(column));
   }
   if (headless) {
-    reading.problems.push_back({lines.front().number, "", "the header is missing", std::string(trimmed(lines.front().text)),
-                                "names with units, \"time [s], level [m]\"", "add a header line above the numbers"});
+    reading.problems.push_back({lines.front().number,
+                                "",
+                                "the header is missing",
+                                std::string(trimmed(lines.front().text)),
+                                "names with units, \"time [s], level [m]\"",
+                                "add a header line above the numbers"});
     return reading;
   }
   std::size_t first = 1;
@@ -156,9 +172,11 @@ CsvReading read_csv(std::string_view text) {
       first = 2;
     }
   }
-  for (std::size_t i = first; i < lines.size(); ++i) read_row(lines[i], cells_of(lines[i].text, separator), decimal_comma, reading);
+  for (std::size_t i = first; i < lines.size(); ++i)
+    read_row(lines[i], cells_of(lines[i].text, separator), decimal_comma, reading);
   if (reading.problems.empty() && reading.table.row_line.empty())
-    reading.problems.push_back({lines.back().number, "", "the table has no rows", "", "at least two rows of numbers", "add the numbers"});
+    reading.problems.push_back(
+        {lines.back().number, "", "the table has no rows", "", "at least two rows of numbers", "add the numbers"});
   return reading;
 }
 

@@ -13,19 +13,19 @@ namespace headband::casefile {
 
 struct CsvColumn {
   std::string name;
-  std::string unit;             ///< empty where none is stated
+  std::string unit;  ///< empty where none is stated
   std::vector<double> numbers;
 };
 
 struct CsvTable {
   std::vector<CsvColumn> columns;
-  std::vector<int> row_line;    ///< line of the file each row stands in
+  std::vector<int> row_line;  ///< line of the file each row stands in
 };
 
 /// What is wrong with a CSV text.
 struct CsvProblem {
-  int line = 0;                 ///< of the CSV file, from 1
-  std::string column;           ///< name, may be empty
+  int line = 0;        ///< of the CSV file, from 1
+  std::string column;  ///< name, may be empty
   std::string what, value, bound, hint;
 };
 

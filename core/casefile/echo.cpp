@@ -39,7 +39,8 @@ class Echoes {
     list_.push_back({q.place, std::move(e)});
   }
 
-  void add_choice(SourcePlace place, const std::string& path, const std::string& name, const std::string& written, bool guess) {
+  void add_choice(
+      SourcePlace place, const std::string& path, const std::string& name, const std::string& written, bool guess) {
     ValueEcho e;
     e.path = path;
     e.name = name;
@@ -49,7 +50,9 @@ class Echoes {
   }
 
   std::vector<ValueEcho> take() {
-    std::sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) { return std::tie(a.place, a.echo.path) < std::tie(b.place, b.echo.path); });
+    std::sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) {
+      return std::tie(a.place, a.echo.path) < std::tie(b.place, b.echo.path);
+    });
     std::vector<ValueEcho> echoes;
     echoes.reserve(list_.size());
     for (Placed& p : list_) echoes.push_back(std::move(p.echo));
@@ -91,12 +94,27 @@ std::vector<ValueEcho> echo(const Case& c) {
       echoes.add(level);
     }
   for (const Pump& p : c.pumps)
-    if (p.check_valve.guess) echoes.add_choice(p.place, "pump/" + p.name + "/check_valve", p.name + " check_valve", "ideal", true);
-  for (const Valve& v : c.valves) echoes.add_choice(v.place, "valve/" + v.name + "/law", v.name + " law", words_of(v.law), false);
+    if (p.check_valve.guess)
+      echoes.add_choice(p.place, "pump/" + p.name + "/check_valve", p.name + " check_valve", "ideal", true);
+  for (const Valve& v : c.valves)
+    echoes.add_choice(v.place, "valve/" + v.name + "/law", v.name + " law", words_of(v.law), false);
   for (const Event& e : c.events)
-    if (e.instant) echoes.add_choice(e.place, "event/" + (e.name.empty() ? e.subject : e.name) + "/over", (e.name.empty() ? e.subject : e.name) + " over", "instant", false);
-  echoes.add_choice(c.friction.law.place, "friction/law", "friction law", weights(c.friction.law, [](FrictionLaw law) { return words_of(law); }), false);
-  echoes.add_choice(c.friction.transition.place, "friction/transition", "friction transition", weights(c.friction.transition, [](const Transition& t) { return words_of(t); }), false);
+    if (e.instant)
+      echoes.add_choice(e.place,
+                        "event/" + (e.name.empty() ? e.subject : e.name) + "/over",
+                        (e.name.empty() ? e.subject : e.name) + " over",
+                        "instant",
+                        false);
+  echoes.add_choice(c.friction.law.place,
+                    "friction/law",
+                    "friction law",
+                    weights(c.friction.law, [](FrictionLaw law) { return words_of(law); }),
+                    false);
+  echoes.add_choice(c.friction.transition.place,
+                    "friction/transition",
+                    "friction transition",
+                    weights(c.friction.transition, [](const Transition& t) { return words_of(t); }),
+                    false);
   echoes.add(c.surge.duration);
   echoes.add(c.surge.time_step);
   for (const Limit& l : c.limits) echoes.add(l.bound);

@@ -10,25 +10,47 @@ namespace {
 
 using base::Dimension;
 
-constexpr KeyRule any(std::string_view section, std::string_view key, Dimension dimension, std::string_view example = {}) {
+constexpr KeyRule any(std::string_view section,
+                      std::string_view key,
+                      Dimension dimension,
+                      std::string_view example = {}) {
   return {.section = section, .key = key, .dimension = dimension, .example = example};
 }
-constexpr KeyRule positive(std::string_view section, std::string_view key, Dimension dimension, std::string_view example = {}) {
+constexpr KeyRule positive(std::string_view section,
+                           std::string_view key,
+                           Dimension dimension,
+                           std::string_view example = {}) {
   return {.section = section, .key = key, .dimension = dimension, .low = 0.0, .low_open = true, .example = example};
 }
-constexpr KeyRule not_negative(std::string_view section, std::string_view key, Dimension dimension,
+constexpr KeyRule not_negative(std::string_view section,
+                               std::string_view key,
+                               Dimension dimension,
                                std::string_view example = {}) {
   return {.section = section, .key = key, .dimension = dimension, .low = 0.0, .example = example};
 }
-constexpr KeyRule between(std::string_view section, std::string_view key, Dimension dimension, double low, double high,
+constexpr KeyRule between(std::string_view section,
+                          std::string_view key,
+                          Dimension dimension,
+                          double low,
+                          double high,
                           std::string_view example = {}) {
   return {.section = section, .key = key, .dimension = dimension, .low = low, .high = high, .example = example};
 }
 constexpr KeyRule scatter(std::string_view section, std::string_view key) {
-  return {.section = section, .key = key, .dimension = Dimension::factor, .low = 0.0, .low_open = true, .form = Form::scatter};
+  return {.section = section,
+          .key = key,
+          .dimension = Dimension::factor,
+          .low = 0.0,
+          .low_open = true,
+          .form = Form::scatter};
 }
 constexpr KeyRule coefficient(std::string_view section, std::string_view key, Form form) {
-  return {.section = section, .key = key, .dimension = Dimension::kv, .low = 0.0, .low_open = true, .form = form,
+  return {.section = section,
+          .key = key,
+          .dimension = Dimension::kv,
+          .low = 0.0,
+          .low_open = true,
+          .form = form,
           .example = form == Form::cv ? "9000 gpm" : "12000 m3/h"};
 }
 // A value that is chosen, not drawn.
@@ -48,8 +70,13 @@ constexpr std::array rules{
     positive("site", "gravity", Dimension::acceleration),
     between("liquid", "temperature", Dimension::temperature, 200.0, 700.0),
     positive("liquid", "density", Dimension::density),
-    KeyRule{.section = "liquid", .key = "viscosity", .dimension = Dimension::kinematic_viscosity, .low = 0.0,
-            .low_open = true, .form = Form::viscosity, .example = "3.6 cSt"},
+    KeyRule{.section = "liquid",
+            .key = "viscosity",
+            .dimension = Dimension::kinematic_viscosity,
+            .low = 0.0,
+            .low_open = true,
+            .form = Form::viscosity,
+            .example = "3.6 cSt"},
     chosen(positive("liquid", "viscosity_points temperature", Dimension::temperature, "25 degC"),
            "the points are exact: state the doubt as viscosity_scatter"),
     chosen(positive("liquid", "viscosity_points viscosity", Dimension::kinematic_viscosity, "180 cSt"),
@@ -61,13 +88,15 @@ constexpr std::array rules{
     // basins, places
     any("basin", "level", Dimension::length, "100 m"),
     chosen(any("basin", "level_table time", Dimension::time), not_here),
-    chosen(any("basin", "level_table level", Dimension::length, "100 m"), "the table is exact: state the doubt at the level"),
+    chosen(any("basin", "level_table level", Dimension::length, "100 m"),
+           "the table is exact: state the doubt at the level"),
     any("basin", "surface_pressure", Dimension::pressure, "0 bar g"),
     any("place", "elevation", Dimension::length, "40 m"),
     any("place", "head", Dimension::length, "60 m"),
     // pipes
     positive("pipe", "length", Dimension::length, "2400 m"),
-    chosen(any("pipe", "profile chainage", Dimension::length, "900 m"), "state the doubt at the elevation or the length"),
+    chosen(any("pipe", "profile chainage", Dimension::length, "900 m"),
+           "state the doubt at the elevation or the length"),
     any("pipe", "profile elevation", Dimension::length, "52 m"),
     positive("pipe", "outside", Dimension::length, "508 mm"),
     positive("pipe", "wall", Dimension::length, "8 mm"),
@@ -101,12 +130,16 @@ constexpr std::array rules{
     positive("valve", "discharge_coefficient", Dimension::number, "0.6"),
     any("valve", "flow", Dimension::flow),
     scatter("valve", "near_seat"),
-    chosen(between("valve", "law travel", Dimension::share, 0.0, 1.0, "50 %"), "the points are exact: state the doubt as near_seat"),
-    chosen(between("valve", "law share", Dimension::share, 0.0, 1.0, "0.28"), "the points are exact: state the doubt as near_seat"),
+    chosen(between("valve", "law travel", Dimension::share, 0.0, 1.0, "50 %"),
+           "the points are exact: state the doubt as near_seat"),
+    chosen(between("valve", "law share", Dimension::share, 0.0, 1.0, "0.28"),
+           "the points are exact: state the doubt as near_seat"),
     between("valve", "opening", Dimension::share, 0.0, 1.0, "100 %"),
     // pumps, check valves
-    chosen(any("pump", "curve flow", Dimension::flow, "175 L/s"), "the points are exact: state the doubt as head_scatter"),
-    chosen(any("pump", "curve head", Dimension::length, "60 m"), "the points are exact: state the doubt as head_scatter"),
+    chosen(any("pump", "curve flow", Dimension::flow, "175 L/s"),
+           "the points are exact: state the doubt as head_scatter"),
+    chosen(any("pump", "curve head", Dimension::length, "60 m"),
+           "the points are exact: state the doubt as head_scatter"),
     scatter("pump", "head_scatter"),
     between("pump", "efficiency", Dimension::share, 0.0, 1.0, "82 %"),
     positive("pump", "speed", Dimension::rotational_speed),
@@ -114,8 +147,10 @@ constexpr std::array rules{
     positive("pump", "inertia_gd2", Dimension::inertia, "18 kg m2"),
     positive("pump", "inertia_wr2", Dimension::inertia, "107 lb ft2"),
     not_negative("pump", "shut_off_torque", Dimension::share, "45 %"),
-    chosen(any("pump", "torque flow", Dimension::flow, "175 L/s"), "the points are exact: state the doubt at shut_off_torque"),
-    chosen(any("pump", "torque share", Dimension::share, "100 %"), "the points are exact: state the doubt at shut_off_torque"),
+    chosen(any("pump", "torque flow", Dimension::flow, "175 L/s"),
+           "the points are exact: state the doubt at shut_off_torque"),
+    chosen(any("pump", "torque share", Dimension::share, "100 %"),
+           "the points are exact: state the doubt at shut_off_torque"),
     positive("pump", "check_valve reverse_velocity", Dimension::velocity, "0.3 m/s"),
     positive("pump", "check_valve bore", Dimension::length),
     not_negative("pump", "check_valve delay", Dimension::time, "0.2 s"),
@@ -161,9 +196,12 @@ constexpr std::array rules{
     any("event", "to flow", Dimension::flow, "0 L/s"),
     any("event", "to level", Dimension::length, "98 m"),
     positive("event", "over", Dimension::time),
-    chosen(not_negative("event", "travel time", Dimension::time, "2.5 s"), "the points are exact: state the doubt at `over`, with shares of it in `travel`"),
-    chosen(not_negative("event", "travel share", Dimension::share, "25 %"), "the points are exact: state the doubt at `over`"),
-    chosen(between("event", "travel opening", Dimension::share, 0.0, 1.0, "20 %"), "the points are exact: state the doubt at `over`"),
+    chosen(not_negative("event", "travel time", Dimension::time, "2.5 s"),
+           "the points are exact: state the doubt at `over`, with shares of it in `travel`"),
+    chosen(not_negative("event", "travel share", Dimension::share, "25 %"),
+           "the points are exact: state the doubt at `over`"),
+    chosen(between("event", "travel opening", Dimension::share, 0.0, 1.0, "20 %"),
+           "the points are exact: state the doubt at `over`"),
     between("event", "swing", Dimension::share, 0.0, 1.0, "5 %"),
     positive("event", "period", Dimension::time, "6.22 s"),
     not_negative("event", "delay", Dimension::time, "0.5 s"),
@@ -203,7 +241,10 @@ constexpr std::array rules{
     chosen(not_negative("ageing.option", "cost", Dimension::price_per_length), not_here),
     positive("ageing.option", "bore", Dimension::length, "586 mm"),
     not_negative("ageing.option", "roughness", Dimension::length, "0.1 mm"),
-    KeyRule{.section = "ageing.option", .key = "growth", .dimension = Dimension::growth_rate, .low = 0.0,
+    KeyRule{.section = "ageing.option",
+            .key = "growth",
+            .dimension = Dimension::growth_rate,
+            .low = 0.0,
             .form = Form::rate_or_relative},
     any("test", "flow", Dimension::flow, "262 L/s"),
     any("test", "head_loss", Dimension::length, "18.9 m"),

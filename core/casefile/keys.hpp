@@ -13,11 +13,11 @@ namespace headband::casefile {
 
 /// How a value is written.
 enum class Form {
-  value,      ///< a number with its unit
-  scatter,    ///< a factor: "± 10 %", "x/ 1.1", "none", 1.0345
-  kv,         ///< metric flow coefficient [m3/h]
-  cv,         ///< US flow coefficient [gpm]
-  viscosity,  ///< kinematic or dynamic: the unit tells
+  value,             ///< a number with its unit
+  scatter,           ///< a factor: "± 10 %", "x/ 1.1", "none", 1.0345
+  kv,                ///< metric flow coefficient [m3/h]
+  cv,                ///< US flow coefficient [gpm]
+  viscosity,         ///< kinematic or dynamic: the unit tells
   rate_or_relative,  ///< ageing growth: a rate, "2 of before" or "none"
 };
 
@@ -30,12 +30,12 @@ struct KeyRule {
   std::string_view key;      ///< `wall`, `lining thickness`
   base::Dimension dimension = base::Dimension::number;
   SpreadUse spread = SpreadUse::sampled;
-  double low = -std::numeric_limits<double>::infinity();   ///< physical limit [SI]
-  double high = std::numeric_limits<double>::infinity();   ///< physical limit [SI]
-  bool low_open = false;      ///< the lower limit itself is not allowed
+  double low = -std::numeric_limits<double>::infinity();  ///< physical limit [SI]
+  double high = std::numeric_limits<double>::infinity();  ///< physical limit [SI]
+  bool low_open = false;                                  ///< the lower limit itself is not allowed
   Form form = Form::value;
-  std::string_view example{};   ///< right form for messages; empty: that of the dimension
-  std::string_view instead{};   ///< what to write in place of a spread, where it is refused
+  std::string_view example{};  ///< right form for messages; empty: that of the dimension
+  std::string_view instead{};  ///< what to write in place of a spread, where it is refused
 };
 
 /// All keys.

@@ -15,7 +15,8 @@ std::size_t alignment_distance(std::string_view a, std::string_view b) {
     next[0] = i;
     for (std::size_t j = 1; j <= b.size(); ++j) {
       next[j] = std::min({row[j] + 1, next[j - 1] + 1, row[j - 1] + (a[i - 1] == b[j - 1] ? 0U : 1U)});
-      if (i > 1 && j > 1 && a[i - 1] == b[j - 2] && a[i - 2] == b[j - 1]) next[j] = std::min(next[j], before[j - 2] + 1);
+      if (i > 1 && j > 1 && a[i - 1] == b[j - 2] && a[i - 2] == b[j - 1])
+        next[j] = std::min(next[j], before[j - 2] + 1);
     }
     before.swap(row);
     row.swap(next);
@@ -30,8 +31,10 @@ struct Question {
 };
 
 constexpr std::string_view inertia =
-    "which inertia is it? inertia_mr2 (I), inertia_gd2 (GD2 = 4 I) or inertia_wr2 (WR2 = I, in lb ft2): a wrong guess is a factor of 4";
-constexpr std::string_view flow_coefficient = "is it a Kv (m3/h at 1 bar) or a Cv (gpm at 1 psi)? Write kv or cv; Cv = 1.156 Kv";
+    "which inertia is it? inertia_mr2 (I), inertia_gd2 (GD2 = 4 I) or inertia_wr2 (WR2 = I, in lb ft2): a wrong guess "
+    "is a factor of 4";
+constexpr std::string_view flow_coefficient =
+    "is it a Kv (m3/h at 1 bar) or a Cv (gpm at 1 psi)? Write kv or cv; Cv = 1.156 Kv";
 constexpr std::string_view diameter = "is it the outside or the inside? Write outside (with wall) or bore";
 constexpr std::string_view stroke = "write `over` for the time a movement takes, `at` for when it begins";
 

@@ -18,7 +18,13 @@ const toml::table* Root::section(std::string_view name) {
   if (const auto* table = node->as_table()) return table;
   const auto* list = node->as_array();
   const bool doubled = list != nullptr && list->is_homogeneous(toml::node_type::table) && !list->empty();
-  context_.report(place(name), std::string(name), doubled ? fmt::format("[[{}]] is written with double brackets", name) : fmt::format("`{}` is a section", name), "", fmt::format("[{}]", name), fmt::format("write [{}] once, its keys below it", name));
+  context_.report(
+      place(name),
+      std::string(name),
+      doubled ? fmt::format("[[{}]] is written with double brackets", name) : fmt::format("`{}` is a section", name),
+      "",
+      fmt::format("[{}]", name),
+      fmt::format("write [{}] once, its keys below it", name));
   return doubled ? (*list)[0].as_table() : nullptr;
 }
 
@@ -32,11 +38,21 @@ std::vector<const toml::table*> Root::list(std::string_view name) {
       if (const auto* table = item.as_table())
         tables.push_back(table);
       else if (first)
-        context_.report(place_of(item), std::string(name), fmt::format("an entry of `{}` is not a section", name), written(item), fmt::format("[[{}]]", name), fmt::format("write [[{}]] above its keys", name));
+        context_.report(place_of(item),
+                        std::string(name),
+                        fmt::format("an entry of `{}` is not a section", name),
+                        written(item),
+                        fmt::format("[[{}]]", name),
+                        fmt::format("write [[{}]] above its keys", name));
     return tables;
   }
   if (first)
-    context_.report(place(name), std::string(name), fmt::format("[{}] is written with single brackets", name), "", fmt::format("[[{}]]", name), "there can be several of them: use double brackets");
+    context_.report(place(name),
+                    std::string(name),
+                    fmt::format("[{}] is written with single brackets", name),
+                    "",
+                    fmt::format("[[{}]]", name),
+                    "there can be several of them: use double brackets");
   if (const auto* table = node->as_table()) tables.push_back(table);
   return tables;
 }
@@ -57,8 +73,12 @@ void Root::finish() {
     if (node.is_array_of_tables() || near == "liquid") context_.names_doubtful = true;
     std::string list;
     for (const std::string& k : known) list += (list.empty() ? "" : ", ") + k;
-    context_.report(place_of(key), name, fmt::format("unknown {} `{}`", section_like ? "section" : "key outside of a section", name), "",
-                    near.empty() ? "a section of a case file" : fmt::format("[{}]", near), near.empty() ? "sections are " + list : fmt::format("did you mean [{}]?", near));
+    context_.report(place_of(key),
+                    name,
+                    fmt::format("unknown {} `{}`", section_like ? "section" : "key outside of a section", name),
+                    "",
+                    near.empty() ? "a section of a case file" : fmt::format("[{}]", near),
+                    near.empty() ? "sections are " + list : fmt::format("did you mean [{}]?", near));
   }
 }
 
@@ -67,14 +87,24 @@ std::string element_name(Context& context, const toml::table& table, std::string
   const toml::node* node = table.get("name");
   if (node == nullptr) {
     context.names_doubtful = true;
-    context.report(place_of(table), fmt::format("{}/{}/name", kind, stand_in), fmt::format("a [[{}]] has no name", kind), "", "name = \"…\"", "give every element a name of its own");
+    context.report(place_of(table),
+                   fmt::format("{}/{}/name", kind, stand_in),
+                   fmt::format("a [[{}]] has no name", kind),
+                   "",
+                   "name = \"…\"",
+                   "give every element a name of its own");
     return stand_in;
   }
   const auto* text = node->as_string();
   const std::string name = text == nullptr ? std::string() : text->get();
   const auto complain = [&](std::string what, std::string bound) {
     context.names_doubtful = true;
-    context.report(place_of(*node), fmt::format("{}/{}/name", kind, name), std::move(what), written(*node), std::move(bound), "give the element another name");
+    context.report(place_of(*node),
+                   fmt::format("{}/{}/name", kind, name),
+                   std::move(what),
+                   written(*node),
+                   std::move(bound),
+                   "give the element another name");
   };
   if (text == nullptr)
     complain("a name is a text", "name = \"…\"");
@@ -86,7 +116,10 @@ std::string element_name(Context& context, const toml::table& table, std::string
     complain("the name `everywhere` is reserved for limits", "any other name");
   else if (name.front() == ' ' || name.back() == ' ')
     complain("the name begins or ends with a space", "a name without them");
-  else if (std::any_of(name.begin(), name.end(), [](char ch) { return ch == ',' || ch == '@' || ch == '"' || ch == '\'' || static_cast<unsigned char>(ch) < 0x20U || ch == 0x7f; }))
+  else if (std::any_of(name.begin(), name.end(), [](char ch) {
+             return ch == ',' || ch == '@' || ch == '"' || ch == '\'' || static_cast<unsigned char>(ch) < 0x20U ||
+                    ch == 0x7f;
+           }))
     complain("the name holds a sign that is used otherwise", "a name without , @ quotes and control characters");
   else
     return name;
@@ -115,7 +148,12 @@ network::Spot read_spot(Context& context, const toml::node& node, const std::str
   context.places.emplace(path + "/" + written(node), spot.place);
   const auto* text = node.as_string();
   if (text == nullptr) {
-    context.report(spot.place, path, "a place or pipe is expected here", written(node), "\"valve chamber\" or \"main @ 900 m\"", "write its name in quotes");
+    context.report(spot.place,
+                   path,
+                   "a place or pipe is expected here",
+                   written(node),
+                   "\"valve chamber\" or \"main @ 900 m\"",
+                   "write its name in quotes");
     return spot;
   }
   spot.written = text->get();
@@ -125,9 +163,15 @@ network::Spot read_spot(Context& context, const toml::node& node, const std::str
   spot.on_pipe = true;
   spot.element = spot.written.substr(0, at);
   while (spot.element.ends_with(' ')) spot.element.pop_back();
-  const ParsedQuantity chainage = parse_quantity(std::string_view(spot.written).substr(at + 1), key_rule("spot", "chainage"));
+  const ParsedQuantity chainage =
+      parse_quantity(std::string_view(spot.written).substr(at + 1), key_rule("spot", "chainage"));
   if (chainage.problem)
-    context.report(spot.place, path, "the chainage after @ is wrong: " + chainage.problem->what, written(node), "\"PIPE @ 900 m\"", chainage.problem->hint);
+    context.report(spot.place,
+                   path,
+                   "the chainage after @ is wrong: " + chainage.problem->what,
+                   written(node),
+                   "\"PIPE @ 900 m\"",
+                   chainage.problem->hint);
   else
     spot.chainage = chainage.quantity.value;
   return spot;

@@ -28,7 +28,10 @@ class Root {
 };
 
 /// The name of an element, checked for its characters; "KIND n" with a problem when it is missing.
-[[nodiscard]] std::string element_name(Context& context, const toml::table& table, std::string_view kind, std::size_t index);
+[[nodiscard]] std::string element_name(Context& context,
+                                       const toml::table& table,
+                                       std::string_view kind,
+                                       std::size_t index);
 
 /// All of a spread times a factor above 0 (cv to kv, GD2 to I).
 void scale(Quantity& quantity, double factor);
@@ -36,16 +39,16 @@ void scale(Quantity& quantity, double factor);
 /// A place, a pipe or "PIPE @ CHAINAGE"; `on_pipe` is settled once all pipes are known.
 [[nodiscard]] network::Spot read_spot(Context& context, const toml::node& node, const std::string& path);
 
-void read_frame(Root& root, Case& c);      // about, show, site
+void read_frame(Root& root, Case& c);  // about, show, site
 void read_liquid(Root& root, Case& c);
-void read_places(Root& root, Case& c);     // basins, places
+void read_places(Root& root, Case& c);  // basins, places
 void read_pipes(Root& root, Case& c);
 void read_valves(Root& root, Case& c);
-void read_pumps(Root& root, Case& c);      // pumps, check valves
-void read_protection(Root& root, Case& c); // vessels, tanks, reliefs, air valves
+void read_pumps(Root& root, Case& c);       // pumps, check valves
+void read_protection(Root& root, Case& c);  // vessels, tanks, reliefs, air valves
 void read_draw_offs(Root& root, Case& c);
 void read_events(Root& root, Case& c);
-void read_friction(Root& root, Case& c);   // friction, together
+void read_friction(Root& root, Case& c);  // friction, together
 void read_surge(Root& root, Case& c);
 void read_band(Root& root, Case& c);
 void read_limits(Root& root, Case& c);

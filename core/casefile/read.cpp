@@ -33,8 +33,14 @@ base::Problem syntax_problem(const toml::parse_error& error) {
   std::string what(error.description());
   if (what.starts_with("Error while parsing ")) what = "while reading the " + what.substr(20);
   std::string hint = "check quotes, brackets and the equals sign on this line";
-  if (what.find("redefine") != std::string::npos) hint = "the same key or section stands twice: leave one out, or use [[double brackets]] for a list";
-  return {{static_cast<int>(error.source().begin.line), static_cast<int>(error.source().begin.column)}, "", "the file is not TOML: " + what, "", "TOML 1.0", hint};
+  if (what.find("redefine") != std::string::npos)
+    hint = "the same key or section stands twice: leave one out, or use [[double brackets]] for a list";
+  return {{static_cast<int>(error.source().begin.line), static_cast<int>(error.source().begin.column)},
+          "",
+          "the file is not TOML: " + what,
+          "",
+          "TOML 1.0",
+          hint};
 }
 
 /// The place of a path, or of the nearest part of it that stands in the file.
@@ -74,8 +80,12 @@ void add_network_problems(Context& context, base::Problems found) {
 }
 
 void sort_and_thin(base::Problems& problems) {
-  std::sort(problems.begin(), problems.end(), [](const base::Problem& a, const base::Problem& b) { return std::tie(a.place, a.path, a.what) < std::tie(b.place, b.path, b.what); });
-  const auto same = [](const base::Problem& a, const base::Problem& b) { return a.place == b.place && a.what == b.what; };
+  std::sort(problems.begin(), problems.end(), [](const base::Problem& a, const base::Problem& b) {
+    return std::tie(a.place, a.path, a.what) < std::tie(b.place, b.path, b.what);
+  });
+  const auto same = [](const base::Problem& a, const base::Problem& b) {
+    return a.place == b.place && a.what == b.what;
+  };
   problems.erase(std::unique(problems.begin(), problems.end(), same), problems.end());
 }
 
@@ -91,7 +101,12 @@ Reading read_text(const std::string& file_name, const std::string& text, const s
   context.folder = folder;
   context.lines = lines_of(text);
   if (text.size() > most_bytes) {
-    reading.problems.push_back({{1, 1}, "", "the case file is too large", fmt::format("{} bytes", text.size()), "at most 16 MB", "put large tables into CSV files"});
+    reading.problems.push_back({{1, 1},
+                                "",
+                                "the case file is too large",
+                                fmt::format("{} bytes", text.size()),
+                                "at most 16 MB",
+                                "put large tables into CSV files"});
     return reading;
   }
   toml::table table;
@@ -133,19 +148,23 @@ Reading read_file(const std::string& path) {
   }
   std::ifstream in(path, std::ios::binary);
   if (!in || in.peek() == std::ifstream::traits_type::eof()) {
-    if (!in || !in.eof()) throw base::IoError(base::IoFailure::missing, fmt::format("the case file '{}' cannot be opened", path));
+    if (!in || !in.eof())
+      throw base::IoError(base::IoFailure::missing, fmt::format("the case file '{}' cannot be opened", path));
     in.clear();
   }
   bytes << in.rdbuf();
   const std::size_t slash = path.rfind('/');
-  return read_text(slash == std::string::npos ? path : path.substr(slash + 1), bytes.str(), slash == std::string::npos ? "" : path.substr(0, slash));
+  return read_text(slash == std::string::npos ? path : path.substr(slash + 1),
+                   bytes.str(),
+                   slash == std::string::npos ? "" : path.substr(0, slash));
 }
 
 std::string problems_text(const std::string& file_name, const std::string& text, const base::Problems& problems) {
   const auto lines = lines_of(text);
   std::string out;
   for (const base::Problem& p : problems) {
-    out += fmt::format("{}:{}:{}: {}{}{}\n", file_name, p.place.line, p.place.column, p.path, p.path.empty() ? "" : ": ", p.what);
+    out += fmt::format(
+        "{}:{}:{}: {}{}{}\n", file_name, p.place.line, p.place.column, p.path, p.path.empty() ? "" : ": ", p.what);
     if (!p.value.empty()) out += fmt::format("  value: {}\n", p.value);
     if (!p.bound.empty()) out += fmt::format("  needs: {}\n", p.bound);
     if (p.place.line >= 1 && static_cast<std::size_t>(p.place.line) <= lines.size()) {

@@ -27,16 +27,20 @@ struct Reading {
 [[nodiscard]] std::vector<answers::ValueEcho> echo(const network::Case& c);
 
 /// Problems as the user reads them: FILE:LINE:COLUMN: what, value, bound, the source line with a caret, hint.
-[[nodiscard]] std::string problems_text(const std::string& file_name, const std::string& text, const base::Problems& problems);
+[[nodiscard]] std::string problems_text(const std::string& file_name,
+                                        const std::string& text,
+                                        const base::Problems& problems);
 
 /// What this version cannot compute for `verb` although the case asks for it ("not computed yet by this version").
 /// @param verb "flow", "surge", "band", "band --surge"
 [[nodiscard]] base::Problems refused_by_verb(const network::Case& c, const std::string& verb);
 
-/// The case as a plain one: each uncertain value is the number it has at `scores` (one per unknown, empty = central run),
-/// each choice settled, SI units, shortest digits that give the same bits when read again. Bands are left out.
+/// The case as a plain one: each uncertain value is the number it has at `scores` (one per unknown, empty = central
+/// run), each choice settled, SI units, shortest digits that give the same bits when read again. Bands are left out.
 /// @param note added to the note of the case ("draw 17 of …")
-[[nodiscard]] std::string write_case(const network::Case& c, const std::vector<double>& scores, const std::string& note);
+[[nodiscard]] std::string write_case(const network::Case& c,
+                                     const std::vector<double>& scores,
+                                     const std::string& note);
 
 /// Starter case of `new KIND` (valve, trip, oil, ageing, ring); empty when the kind is unknown.
 [[nodiscard]] std::string starter(const std::string& kind);

@@ -14,7 +14,7 @@ namespace {
 
 using namespace network;
 
-constexpr double bar_per_psi = 0.45359237 * 9.80665 / 6.4516e-4 / 1.0e5;    // exact definitions of lb, g0, in
+constexpr double bar_per_psi = 0.45359237 * 9.80665 / 6.4516e-4 / 1.0e5;  // exact definitions of lb, g0, in
 
 // Kv and Cv by one key each; both at once is a question.
 Quantity read_flow_coefficient(Section& section) {
@@ -38,23 +38,37 @@ ValveLaw read_law_table(Section& section, const toml::array& rows) {
   for (const auto& item : rows) {
     const auto* row = item.as_array();
     if (row == nullptr || row->size() != 2) {
-      section.context().report(place_of(item), section.path("law"), "a point of the valve's law is not a pair", written(item), "[\"50 %\", 0.28]", "write travel and share");
+      section.context().report(place_of(item),
+                               section.path("law"),
+                               "a point of the valve's law is not a pair",
+                               written(item),
+                               "[\"50 %\", 0.28]",
+                               "write travel and share");
       return {};
     }
     const Quantity position = read_quantity(section.context(), (*row)[0], travel, "", section.path("law"));
     const Quantity share = read_quantity(section.context(), (*row)[1], open_share, "", section.path("law"));
     if (!position.given() || !share.given()) return {};
     if (!law.points.empty() && !(position.value > law.points.back().first)) {
-      section.context().report(place_of((*row)[0]), section.path("law"), "the travel does not rise from row to row", written((*row)[0]), "rising travel", "sort the rows");
+      section.context().report(place_of((*row)[0]),
+                               section.path("law"),
+                               "the travel does not rise from row to row",
+                               written((*row)[0]),
+                               "rising travel",
+                               "sort the rows");
       return {};
     }
     law.points.emplace_back(position.value, share.value);
   }
   if (law.points.size() < 2 || law.points.front().first != 0.0 || law.points.back().first != 1.0) {
-    section.report("law", "the valve's law does not reach from 0 % to 100 % of the travel", "points at 0 % and at 100 %", "add the missing end");
+    section.report("law",
+                   "the valve's law does not reach from 0 % to 100 % of the travel",
+                   "points at 0 % and at 100 %",
+                   "add the missing end");
     return {};
   }
-  if (!(law.points.back().second > 0.0)) section.report("law", "the valve is shut at full travel", "a share above 0 at 100 %", "correct the last point");
+  if (!(law.points.back().second > 0.0))
+    section.report("law", "the valve is shut at full travel", "a share above 0 at 100 %", "correct the last point");
   return law;
 }
 
@@ -72,7 +86,9 @@ ValveLaw read_law_words(Section& section, const std::string& words) {
   if (words == "quick opening") return {ValveLawKind::quick_opening, 1.0, {}};
   if (head == "power" && number && *number > 0.0) return {ValveLawKind::power, *number, {}};
   if (head == "equal percentage" && number && *number > 1.0) return {ValveLawKind::equal_percentage, *number, {}};
-  section.report("law", "the valve's law is not known", "\"linear\", \"power 1.5\", \"equal percentage 50\", \"quick opening\" or a table",
+  section.report("law",
+                 "the valve's law is not known",
+                 "\"linear\", \"power 1.5\", \"equal percentage 50\", \"quick opening\" or a table",
                  "write one of these, with its number where it has one (power above 0, range above 1)");
   return {};
 }
@@ -88,12 +104,19 @@ ValveLaw read_law(Section& section) {
     law.kind = ValveLawKind::table;
     for (const auto& [travel, share] : table.rows) law.points.emplace_back(travel.value, share.value);
     if (law.points.size() < 2 || law.points.front().first != 0.0 || law.points.back().first != 1.0) {
-      if (table.given()) section.report("law", "the valve's law does not reach from 0 % to 100 % of the travel", "points at 0 % and at 100 %", "add the missing end");
+      if (table.given())
+        section.report("law",
+                       "the valve's law does not reach from 0 % to 100 % of the travel",
+                       "points at 0 % and at 100 %",
+                       "add the missing end");
       return {};
     }
     return law;
   }
-  section.report("law", "a valve's law is expected here", "\"linear\" or [[\"0 %\", 0], [\"100 %\", 1]]", "write a word or a table");
+  section.report("law",
+                 "a valve's law is expected here",
+                 "\"linear\" or [[\"0 %\", 0], [\"100 %\", 1]]",
+                 "write a word or a table");
   return {};
 }
 
@@ -104,13 +127,19 @@ Fitting read_fitting(Context& context, const toml::table& table, const std::stri
   fitting.place = place_of(table);
   Section section(context, table, "pipe", pipe, "pipe/" + pipe, "fitting ", "fitting " + fitting.name + " ");
   (void)section.ask("name");
-  if (table.get("name") != nullptr && name == nullptr) section.report("name", "a text is expected here", "name = \"bend 90\"", "put the name in quotes");
+  if (table.get("name") != nullptr && name == nullptr)
+    section.report("name", "a text is expected here", "name = \"bend 90\"", "put the name in quotes");
   fitting.count = section.quantity_or("count", "1");
   fitting.k = section.quantity("k");
   fitting.equivalent_length = section.quantity("equivalent_length");
   fitting.at = section.quantity("at");
   if (!section.has("k") && !section.has("equivalent_length"))
-    context.report(fitting.place, section.path("k"), fmt::format("the fitting \"{}\" has no loss", fitting.name), "", "k = 0.3 or equivalent_length = \"3 m\"", "add one of them");
+    context.report(fitting.place,
+                   section.path("k"),
+                   fmt::format("the fitting \"{}\" has no loss", fitting.name),
+                   "",
+                   "k = 0.3 or equivalent_length = \"3 m\"",
+                   "add one of them");
   section.finish();
   return fitting;
 }
@@ -120,13 +149,21 @@ void read_fittings(Section& section, Pipe& pipe) {
   if (node == nullptr) return;
   const auto* list = node->as_array();
   if (list == nullptr) {
-    section.report("fittings", "a list of fittings is expected here", "[{ name = \"bend 90\", count = 4, k = 0.3 }]", "put the fittings in square brackets");
+    section.report("fittings",
+                   "a list of fittings is expected here",
+                   "[{ name = \"bend 90\", count = 4, k = 0.3 }]",
+                   "put the fittings in square brackets");
     return;
   }
   for (std::size_t i = 0; i < list->size(); ++i) {
     const auto* table = (*list)[i].as_table();
     if (table == nullptr)
-      section.context().report(place_of((*list)[i]), section.path("fittings"), "a fitting is a table", written((*list)[i]), "{ name = \"bend 90\", count = 4, k = 0.3 }", "put its words in curly brackets");
+      section.context().report(place_of((*list)[i]),
+                               section.path("fittings"),
+                               "a fitting is a table",
+                               written((*list)[i]),
+                               "{ name = \"bend 90\", count = 4, k = 0.3 }",
+                               "put its words in curly brackets");
     else
       pipe.fittings.push_back(read_fitting(section.context(), *table, pipe.name, i));
   }
@@ -137,14 +174,28 @@ void read_creep(Section& section, Pipe& pipe) {
   if (node == nullptr) return;
   const auto* list = node->as_array();
   if (list == nullptr || list->empty() || !list->is_homogeneous(toml::node_type::table)) {
-    section.report("creep", "a list of creep elements is expected here", "[{ compliance = \"1.2e-10 1/Pa\", time = \"0.05 s\" }]", "put each element in curly brackets");
+    section.report("creep",
+                   "a list of creep elements is expected here",
+                   "[{ compliance = \"1.2e-10 1/Pa\", time = \"0.05 s\" }]",
+                   "put each element in curly brackets");
     return;
   }
   for (std::size_t i = 0; i < list->size(); ++i) {
-    Section inner(section.context(), *(*list)[i].as_table(), "pipe", pipe.name, section.path(), "creep ", fmt::format("creep {} ", i + 1));
+    Section inner(section.context(),
+                  *(*list)[i].as_table(),
+                  "pipe",
+                  pipe.name,
+                  section.path(),
+                  "creep ",
+                  fmt::format("creep {} ", i + 1));
     CreepElement element{inner.quantity("compliance"), inner.quantity("time")};
     if (!inner.has("compliance") || !inner.has("time"))
-      section.context().report(inner.place(), inner.path("compliance"), "a creep element needs compliance and time", "", "{ compliance = \"1.2e-10 1/Pa\", time = \"0.05 s\" }", "add the missing one");
+      section.context().report(inner.place(),
+                               inner.path("compliance"),
+                               "a creep element needs compliance and time",
+                               "",
+                               "{ compliance = \"1.2e-10 1/Pa\", time = \"0.05 s\" }",
+                               "add the missing one");
     pipe.creep.push_back(std::move(element));
     inner.finish();
   }
@@ -155,14 +206,22 @@ void read_lining(Section& section, Pipe& pipe) {
   if (node == nullptr) return;
   const auto* table = node->as_table();
   if (table == nullptr) {
-    section.report("lining", "a lining is a table", "{ thickness = \"6 mm\", modulus = \"25 GPa\" }", "put its words in curly brackets");
+    section.report("lining",
+                   "a lining is a table",
+                   "{ thickness = \"6 mm\", modulus = \"25 GPa\" }",
+                   "put its words in curly brackets");
     return;
   }
   Section inner(section.context(), *table, "pipe", pipe.name, section.path(), "lining ", "lining ");
   pipe.lining_thickness = inner.quantity("thickness");
   pipe.lining_modulus = inner.quantity("modulus");
   if (!inner.has("thickness"))
-    section.context().report(inner.place(), inner.path("thickness"), "the lining has no thickness", "", "thickness = \"6 mm\"", "add it; a lining narrows the bore");
+    section.context().report(inner.place(),
+                             inner.path("thickness"),
+                             "the lining has no thickness",
+                             "",
+                             "thickness = \"6 mm\"",
+                             "add it; a lining narrows the bore");
   inner.finish();
 }
 
@@ -170,13 +229,21 @@ void read_profile(Section& section, Pipe& pipe) {
   Table table = read_table(section, "profile", "profile chainage", "profile elevation");
   if (!table.given()) return;
   auto& rows = table.rows;
-  const auto complain = [&](std::size_t row, const std::string& what, const std::string& bound, const std::string& hint) {
-    section.context().report(rows[row].first.place, rows[row].first.path, what, rows[row].first.written, bound, hint);
-  };
+  const auto complain =
+      [&](std::size_t row, const std::string& what, const std::string& bound, const std::string& hint) {
+        section.context().report(
+            rows[row].first.place, rows[row].first.path, what, rows[row].first.written, bound, hint);
+      };
   if (rows.size() < 2) return complain(0, "the profile has one point", "at least the two ends", "add the other end");
-  if (rows.front().first.value != 0.0) return complain(0, "the profile does not begin at chainage 0", "\"0 m\" at the pipe's `from` end", "count the chainage from the beginning of this pipe");
+  if (rows.front().first.value != 0.0)
+    return complain(0,
+                    "the profile does not begin at chainage 0",
+                    "\"0 m\" at the pipe's `from` end",
+                    "count the chainage from the beginning of this pipe");
   for (std::size_t i = 1; i < rows.size(); ++i)
-    if (!(rows[i].first.value > rows[i - 1].first.value)) return complain(i, "the chainage does not rise from point to point", "above " + rows[i - 1].first.written, "sort the points");
+    if (!(rows[i].first.value > rows[i - 1].first.value))
+      return complain(
+          i, "the chainage does not rise from point to point", "above " + rows[i - 1].first.written, "sort the points");
   const double end = rows.back().first.value;
   if (!pipe.length.given() && pipe.length.same_as.empty()) {
     pipe.length = rows.back().first;
@@ -184,7 +251,10 @@ void read_profile(Section& section, Pipe& pipe) {
     pipe.length.name = pipe.name + " length";
     pipe.length.path = section.path("length");
   } else if (pipe.length.given() && std::abs(pipe.length.value - end) > 1e-6 * end) {
-    return complain(rows.size() - 1, "the profile does not end at the pipe's length", "\"" + pipe.length.written + "\"", "correct the length or the last point");
+    return complain(rows.size() - 1,
+                    "the profile does not end at the pipe's length",
+                    "\"" + pipe.length.written + "\"",
+                    "correct the length or the last point");
   }
   pipe.profile = rows;
   pipe.profile_table = std::move(table);
@@ -193,11 +263,18 @@ void read_profile(Section& section, Pipe& pipe) {
 
 void warn_of_outside_as_bore(Context& context, const Pipe& pipe) {
   // Outside diameters of steel pipe by ASME B36.10 and EN 10220 [mm]; from memory, used for a remark only.
-  static constexpr double outside_mm[] = {168.3, 219.1, 273.0, 273.1, 323.8, 323.9, 355.6, 406.4, 457.0, 508.0, 559.0, 610.0, 660.0, 711.0, 762.0, 813.0, 864.0, 914.0, 1016.0, 1067.0, 1118.0, 1219.0};
+  static constexpr double outside_mm[] = {168.3, 219.1, 273.0,  273.1,  323.8,  323.9, 355.6, 406.4,
+                                          457.0, 508.0, 559.0,  610.0,  660.0,  711.0, 762.0, 813.0,
+                                          864.0, 914.0, 1016.0, 1067.0, 1118.0, 1219.0};
   if (!pipe.bore.given() || !pipe.wall.given() || pipe.outside.given() || pipe.material != "steel") return;
   for (const double mm : outside_mm)
     if (std::abs(pipe.bore.value * 1000.0 - mm) < 0.06)
-      context.warnings.push_back(fmt::format("pipe {}: the bore {} is also a standard outside diameter of steel pipe; if it is the outside, write outside = \"{} mm\"", pipe.name, pipe.bore.written, base::significant(mm, 5)));
+      context.warnings.push_back(
+          fmt::format("pipe {}: the bore {} is also a standard outside diameter of steel pipe; if it is the outside, "
+                      "write outside = \"{} mm\"",
+                      pipe.name,
+                      pipe.bore.written,
+                      base::significant(mm, 5)));
 }
 
 Pipe read_pipe(Context& context, const toml::table& table, std::size_t index) {
@@ -218,9 +295,14 @@ Pipe read_pipe(Context& context, const toml::table& table, std::size_t index) {
   pipe.modulus = section.quantity("modulus");
   pipe.poisson = section.quantity("poisson");
   pipe.joint_given = section.has("joint");
-  pipe.joint = section.word<Joint>("joint", {{"anchored", Joint::anchored}, {"upstream anchored", Joint::upstream_anchored}, {"expansion joints", Joint::expansion_joints}}, Joint::anchored);
+  pipe.joint = section.word<Joint>("joint",
+                                   {{"anchored", Joint::anchored},
+                                    {"upstream anchored", Joint::upstream_anchored},
+                                    {"expansion joints", Joint::expansion_joints}},
+                                   Joint::anchored);
   pipe.restraint_factor = section.quantity("restraint_factor");
-  pipe.wall_formula = section.word<WallFormula>("wall_formula", {{"thick", WallFormula::thick}, {"thin", WallFormula::thin}}, WallFormula::thick);
+  pipe.wall_formula = section.word<WallFormula>(
+      "wall_formula", {{"thick", WallFormula::thick}, {"thin", WallFormula::thin}}, WallFormula::thick);
   pipe.wave_speed_change = section.quantity("wave_speed_change");
   pipe.wave_speed = section.quantity("wave_speed");
   pipe.wave_speed_scatter = section.quantity_or("wave_speed_scatter", "none");
@@ -246,7 +328,8 @@ CheckValveRule read_check_rule(Section& section) {
   }
   const auto* table = node->as_table();
   if (table == nullptr) {
-    rule.kind = section.word<CheckValveKind>("check_valve", {{"ideal", CheckValveKind::ideal}, {"none", CheckValveKind::none}}, CheckValveKind::ideal);
+    rule.kind = section.word<CheckValveKind>(
+        "check_valve", {{"ideal", CheckValveKind::ideal}, {"none", CheckValveKind::none}}, CheckValveKind::ideal);
     return rule;
   }
   Section inner(section.context(), *table, "pump", section.element(), section.path(), "check_valve ", "check_valve ");
@@ -255,7 +338,10 @@ CheckValveRule read_check_rule(Section& section) {
   rule.delay = inner.quantity("delay");
   rule.kind = inner.has("reverse_velocity") ? CheckValveKind::reverse_velocity : CheckValveKind::delay;
   if (inner.has("reverse_velocity") == inner.has("delay"))
-    section.report("check_valve", "the check valve needs reverse_velocity or delay, not both", "{ reverse_velocity = \"0.3 m/s\", bore = \"300 mm\" } or { delay = \"0.2 s\" }", "write one of the two");
+    section.report("check_valve",
+                   "the check valve needs reverse_velocity or delay, not both",
+                   "{ reverse_velocity = \"0.3 m/s\", bore = \"300 mm\" } or { delay = \"0.2 s\" }",
+                   "write one of the two");
   inner.finish();
   return rule;
 }
@@ -266,7 +352,8 @@ void read_inertia(Section& section, Pump& pump) {
     const std::string key = "inertia_" + label;
     if (!section.has(key)) continue;
     if (++given > 1) {
-      section.report(key, "the inertia is given twice", "one of inertia_mr2, inertia_gd2, inertia_wr2", "leave the others out");
+      section.report(
+          key, "the inertia is given twice", "one of inertia_mr2, inertia_gd2, inertia_wr2", "leave the others out");
       continue;
     }
     pump.inertia = section.quantity(key);
@@ -294,7 +381,10 @@ void read_characteristic(Section& section, Pump& pump) {
     pump.suter_torque = std::move(table.third);
     return;
   }
-  pump.characteristic = section.word<Characteristic>("characteristic", {{"by specific speed", Characteristic::by_specific_speed}, {"none", Characteristic::none}}, Characteristic::by_specific_speed);
+  pump.characteristic = section.word<Characteristic>(
+      "characteristic",
+      {{"by specific speed", Characteristic::by_specific_speed}, {"none", Characteristic::none}},
+      Characteristic::by_specific_speed);
 }
 
 void read_rated(Section& section, Pump& pump) {
@@ -302,13 +392,20 @@ void read_rated(Section& section, Pump& pump) {
   if (node == nullptr) return;
   const auto* table = node->as_table();
   if (table == nullptr) {
-    section.report("rated", "the rated point is a table", "{ flow = \"175 L/s\", head = \"60 m\" }", "put flow and head in curly brackets");
+    section.report("rated",
+                   "the rated point is a table",
+                   "{ flow = \"175 L/s\", head = \"60 m\" }",
+                   "put flow and head in curly brackets");
     return;
   }
   Section inner(section.context(), *table, "pump", pump.name, section.path(), "rated ", "rated ");
   pump.rated_flow = inner.quantity("flow");
   pump.rated_head = inner.quantity("head");
-  if (!inner.has("flow") || !inner.has("head")) section.report("rated", "the rated point needs flow and head", "{ flow = \"175 L/s\", head = \"60 m\" }", "add the missing one");
+  if (!inner.has("flow") || !inner.has("head"))
+    section.report("rated",
+                   "the rated point needs flow and head",
+                   "{ flow = \"175 L/s\", head = \"60 m\" }",
+                   "add the missing one");
   inner.finish();
 }
 
@@ -316,7 +413,12 @@ void check_rising(Section& section, std::string_view key, Table& table) {
   for (std::size_t i = 1; i < table.rows.size(); ++i) {
     const auto& [left, right] = table.rows[i];
     if (left.value > table.rows[i - 1].first.value) continue;
-    section.context().report(left.place, left.path, fmt::format("the first column of `{}` does not rise from row to row", key), left.written, "above " + table.rows[i - 1].first.written, "sort the rows");
+    section.context().report(left.place,
+                             left.path,
+                             fmt::format("the first column of `{}` does not rise from row to row", key),
+                             left.written,
+                             "above " + table.rows[i - 1].first.written,
+                             "sort the rows");
     table.rows.clear();
     return;
   }
@@ -363,7 +465,12 @@ void read_places(Root& root, Case& c) {
     check_rising(section, "level_table", basin.level_table);
     basin.surface_pressure = section.quantity_or("surface_pressure", "0 bar g");
     if (!section.has("level") && !section.has("level_table"))
-      root.context().report(basin.place, section.path("level"), fmt::format("the basin \"{}\" has no level", basin.name), "", "level = \"100 m\" or level_table = \"FILE.csv\"", "add the level above the datum of the case");
+      root.context().report(basin.place,
+                            section.path("level"),
+                            fmt::format("the basin \"{}\" has no level", basin.name),
+                            "",
+                            "level = \"100 m\" or level_table = \"FILE.csv\"",
+                            "add the level above the datum of the case");
     section.finish();
     c.basins.push_back(std::move(basin));
   }
@@ -427,7 +534,8 @@ void read_pumps(Root& root, Case& c) {
     check.bore = section.quantity("bore");
     check.rule.reverse_velocity = section.quantity("reverse_velocity");
     check.rule.delay = section.quantity("delay");
-    if (section.has("reverse_velocity") && section.has("delay")) section.report("delay", "reverse_velocity and delay are both given", "one of them", "leave one out");
+    if (section.has("reverse_velocity") && section.has("delay"))
+      section.report("delay", "reverse_velocity and delay are both given", "one of them", "leave one out");
     if (section.has("reverse_velocity")) check.rule.kind = CheckValveKind::reverse_velocity;
     if (section.has("delay")) check.rule.kind = CheckValveKind::delay;
     section.finish();
@@ -446,7 +554,12 @@ void read_draw_offs(Root& root, Case& c) {
     draw_off.at = section.needed_text("at", "name the place it stands at");
     draw_off.flow = section.quantity("flow");
     if (!section.has("flow"))
-      root.context().report(draw_off.place, section.path("flow"), fmt::format("the draw-off \"{}\" has no flow", draw_off.name), "", "flow = \"1500 gpm\"", "add the flow out of the line; a negative one is an inflow");
+      root.context().report(draw_off.place,
+                            section.path("flow"),
+                            fmt::format("the draw-off \"{}\" has no flow", draw_off.name),
+                            "",
+                            "flow = \"1500 gpm\"",
+                            "add the flow out of the line; a negative one is an inflow");
     draw_off.pressure_dependent = section.flag("pressure_dependent", false);
     section.finish();
     c.draw_offs.push_back(std::move(draw_off));
@@ -490,7 +603,8 @@ void read_protection(Root& root, Case& c) {
         tank.throttle_k = inner.quantity("k");
         inner.finish();
       } else {
-        section.report("throttle", "the throttle is a table", "{ bore = \"400 mm\", k = 1.5 }", "put its words in curly brackets");
+        section.report(
+            "throttle", "the throttle is a table", "{ bore = \"400 mm\", k = 1.5 }", "put its words in curly brackets");
       }
     }
     tank.overflow_level = section.quantity("overflow_level");

@@ -78,9 +78,19 @@ Choice<T> weighted(Section& section, std::string_view key, const Find& find, con
     const auto option = find(name.str());
     const auto weight = node.template value<double>();
     if (!option) {
-      section.context().report(place_of(name), section.path(key), fmt::format("'{}' is not a choice here", std::string(name.str())), "", bound, "write one of the words shown");
+      section.context().report(place_of(name),
+                               section.path(key),
+                               fmt::format("'{}' is not a choice here", std::string(name.str())),
+                               "",
+                               bound,
+                               "write one of the words shown");
     } else if (!weight || node.is_string() || node.is_boolean() || !(*weight > 0.0) || !std::isfinite(*weight)) {
-      section.context().report(place_of(node), section.path(key), fmt::format("the weight of '{}' is not a number above 0", std::string(name.str())), written(node), "a number above 0, such as 0.5", "leave a choice without weight out");
+      section.context().report(place_of(node),
+                               section.path(key),
+                               fmt::format("the weight of '{}' is not a number above 0", std::string(name.str())),
+                               written(node),
+                               "a number above 0, such as 0.5",
+                               "leave a choice without weight out");
     } else {
       options.push_back({place_of(name), {*option, *weight}});
     }
@@ -95,7 +105,8 @@ void read_laws(Section& section, Friction& friction) {
   friction.law.place = section.place("law");
   friction.law.options = {{FrictionLaw::colebrook_white, 1.0}};
   const std::string bound = "{ \"colebrook-white\" = 0.5, \"haaland\" = 0.5 }";
-  if (section.has("law") && section.has("laws")) section.report("laws", "law and laws are both given", "one of them", "leave one out");
+  if (section.has("law") && section.has("laws"))
+    section.report("laws", "law and laws are both given", "one of them", "leave one out");
   if (section.has("laws")) {
     auto choice = weighted<FrictionLaw>(section, "laws", law_named, bound);
     friction.law.place = section.place("laws");
@@ -110,7 +121,8 @@ void read_transitions(Section& section, Friction& friction) {
   friction.transition.place = section.place("transition");
   friction.transition.options = {{Transition{}, 1.0}};
   const std::string bound = "\"blend 2100 4000\", \"switch 2300\" or \"churchill\"";
-  if (section.has("transition") && section.has("transitions")) section.report("transitions", "transition and transitions are both given", "one of them", "leave one out");
+  if (section.has("transition") && section.has("transitions"))
+    section.report("transitions", "transition and transitions are both given", "one of them", "leave one out");
   if (section.has("transitions")) {
     auto choice = weighted<Transition>(section, "transitions", transition_named, bound);
     friction.transition.place = section.place("transitions");
@@ -120,7 +132,10 @@ void read_transitions(Section& section, Friction& friction) {
     if (transition)
       friction.transition.options = {{*transition, 1.0}};
     else
-      section.report("transition", "the rule between laminar and turbulent is not understood", bound, "two rising Reynolds numbers for a blend, one for a switch");
+      section.report("transition",
+                     "the rule between laminar and turbulent is not understood",
+                     bound,
+                     "two rising Reynolds numbers for a blend, one for a switch");
   }
 }
 
@@ -128,7 +143,8 @@ void read_transitions(Section& section, Friction& friction) {
 void read_pipe_scatter(Root& root, Section* friction_section, Case& c) {
   Friction& friction = c.friction;
   const auto pipes = root.list("pipe");
-  const bool any_own = std::any_of(pipes.begin(), pipes.end(), [](const toml::table* table) { return table->get("friction_scatter") != nullptr; });
+  const bool any_own = std::any_of(
+      pipes.begin(), pipes.end(), [](const toml::table* table) { return table->get("friction_scatter") != nullptr; });
   bool per_pipe = false;
   if (friction_section != nullptr && friction_section->has("shared"))
     per_pipe = friction_section->word<bool>("shared", {{"all pipes", false}, {"per pipe", true}}, false);
@@ -156,11 +172,21 @@ void read_together(Root& root, Case& c) {
     const bool number = node.is_integer() || node.is_floating_point();
     const std::string path = "together/" + pair;
     if (comma == std::string::npos || pair.find(',', comma + 1) != std::string::npos) {
-      context.report(place_of(key), path, "a correlation names two unknowns", "\"" + pair + "\"", "\"main wall, upper main wall\" = 0.7", "write both names in quotes, with a comma between");
+      context.report(place_of(key),
+                     path,
+                     "a correlation names two unknowns",
+                     "\"" + pair + "\"",
+                     "\"main wall, upper main wall\" = 0.7",
+                     "write both names in quotes, with a comma between");
       continue;
     }
     if (!number || !r || !(*r >= -1.0 && *r <= 1.0)) {
-      context.report(place_of(node), path, "a rank correlation is a number", written(node), "-1 to 1", "write the number without quotes");
+      context.report(place_of(node),
+                     path,
+                     "a rank correlation is a number",
+                     written(node),
+                     "-1 to 1",
+                     "write the number without quotes");
       continue;
     }
     Correlation correlation;
@@ -175,11 +201,18 @@ void read_together(Root& root, Case& c) {
     correlation.place = place_of(key);
     context.places.emplace(path, correlation.place);
     if (correlation.first == correlation.second)
-      context.report(place_of(key), path, "an unknown is always together with itself", "\"" + pair + "\"", "two different unknowns", "name the other one");
+      context.report(place_of(key),
+                     path,
+                     "an unknown is always together with itself",
+                     "\"" + pair + "\"",
+                     "two different unknowns",
+                     "name the other one");
     else
       c.together.push_back(std::move(correlation));
   }
-  std::sort(c.together.begin(), c.together.end(), [](const Correlation& a, const Correlation& b) { return a.place < b.place; });
+  std::sort(c.together.begin(), c.together.end(), [](const Correlation& a, const Correlation& b) {
+    return a.place < b.place;
+  });
 }
 
 }  // namespace
@@ -194,11 +227,15 @@ void read_frame(Root& root, Case& c) {
   }
   if (const toml::table* table = root.section("show")) {
     Section section(context, *table, "show", "", "show");
-    c.show.units = section.word<base::UnitFamily>("units", {{"si", base::UnitFamily::si}, {"us", base::UnitFamily::us}}, base::UnitFamily::si);
+    c.show.units = section.word<base::UnitFamily>(
+        "units", {{"si", base::UnitFamily::si}, {"us", base::UnitFamily::us}}, base::UnitFamily::si);
     if (const toml::node* node = section.ask("places")) {
       const auto* list = node->as_array();
       if (list == nullptr)
-        section.report("places", "a list of places is expected here", "[\"valve chamber\", \"main @ 900 m\"]", "put the names in square brackets");
+        section.report("places",
+                       "a list of places is expected here",
+                       "[\"valve chamber\", \"main @ 900 m\"]",
+                       "put the names in square brackets");
       else
         for (const auto& item : *list) c.show.places.push_back(read_spot(context, item, "show/places"));
     }
@@ -210,7 +247,10 @@ void read_frame(Root& root, Case& c) {
   c.site.atmosphere = section.quantity_or("atmosphere", "101.325 kPa abs");
   c.site.gravity = section.quantity_or("gravity", "9.80665 m/s2");
   if (c.site.atmosphere.given() && c.site.atmosphere.gauge)
-    section.report("atmosphere", "the atmosphere itself has no gauge pressure", "\"101.325 kPa abs\"", "write it as absolute pressure");
+    section.report("atmosphere",
+                   "the atmosphere itself has no gauge pressure",
+                   "\"101.325 kPa abs\"",
+                   "write it as absolute pressure");
   section.finish();
 }
 
@@ -219,7 +259,12 @@ void read_liquid(Root& root, Case& c) {
   const toml::table* table = root.section("liquid");
   if (table == nullptr) {
     if (root.place("liquid").line == 0)
-      context.report({1, 1}, "liquid", "the section [liquid] is missing", "", "[liquid] with name and temperature", "add [liquid], name = \"water\", temperature = \"15 degC\"");
+      context.report({1, 1},
+                     "liquid",
+                     "the section [liquid] is missing",
+                     "",
+                     "[liquid] with name and temperature",
+                     "add [liquid], name = \"water\", temperature = \"15 degC\"");
     return;
   }
   Section section(context, *table, "liquid", "", "liquid");
@@ -233,21 +278,39 @@ void read_liquid(Root& root, Case& c) {
     const KeyRule& temperature = key_rule("liquid", "viscosity_points temperature");
     const KeyRule& viscosity = key_rule("liquid", "viscosity_points viscosity");
     if (rows == nullptr || rows->size() < 2) {
-      section.report("viscosity_points", "the viscosity law needs two points or more", "[[\"25 degC\", \"180 cSt\"], [\"50 degC\", \"50 cSt\"]]", "add the missing point");
+      section.report("viscosity_points",
+                     "the viscosity law needs two points or more",
+                     "[[\"25 degC\", \"180 cSt\"], [\"50 degC\", \"50 cSt\"]]",
+                     "add the missing point");
     } else {
       std::size_t index = 0;
       for (const auto& item : *rows) {
         const auto* row = item.as_array();
         const std::string path = fmt::format("liquid/viscosity_points {}", ++index);
         if (row == nullptr || row->size() != 2) {
-          context.report(place_of(item), path, "a point of the viscosity law is not a pair", written(item), "[\"25 degC\", \"180 cSt\"]", "write temperature and kinematic viscosity");
+          context.report(place_of(item),
+                         path,
+                         "a point of the viscosity law is not a pair",
+                         written(item),
+                         "[\"25 degC\", \"180 cSt\"]",
+                         "write temperature and kinematic viscosity");
           continue;
         }
-        auto point = std::pair{read_quantity(context, (*row)[0], temperature, fmt::format("liquid viscosity_points {} temperature", index), path + " temperature"),
-                               read_quantity(context, (*row)[1], viscosity, fmt::format("liquid viscosity_points {}", index), path)};
+        auto point = std::pair{
+            read_quantity(context,
+                          (*row)[0],
+                          temperature,
+                          fmt::format("liquid viscosity_points {} temperature", index),
+                          path + " temperature"),
+            read_quantity(context, (*row)[1], viscosity, fmt::format("liquid viscosity_points {}", index), path)};
         for (const auto& other : c.liquid.viscosity_points)
           if (other.first.given() && other.first.value == point.first.value)
-            context.report(place_of((*row)[0]), path, "two points have one temperature", written((*row)[0]), "different temperatures", "leave one out");
+            context.report(place_of((*row)[0]),
+                           path,
+                           "two points have one temperature",
+                           written((*row)[0]),
+                           "different temperatures",
+                           "leave one out");
         c.liquid.viscosity_points.push_back(std::move(point));
       }
     }
@@ -266,7 +329,8 @@ void read_friction(Root& root, Case& c) {
   read_laws(section, c.friction);
   read_transitions(section, c.friction);
   c.friction.scatter_given = section.has("scatter");
-  const bool frictionless = c.friction.law.options.size() == 1 && c.friction.law.options.front().choice == FrictionLaw::none;
+  const bool frictionless =
+      c.friction.law.options.size() == 1 && c.friction.law.options.front().choice == FrictionLaw::none;
   c.friction.scatter = section.quantity_or("scatter", frictionless ? "none" : "± 10 %", !frictionless);
   c.friction.laminar_scatter = section.quantity_or("laminar_scatter", "none");
   c.friction.fixed_factor = section.quantity("fixed_factor");

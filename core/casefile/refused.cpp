@@ -17,15 +17,21 @@ constexpr std::string_view not_yet = "not computed yet by this version";
 class Refusals {
  public:
   void add(SourcePlace place, std::string path, std::string what, std::string hint) {
-    problems_.push_back({place, std::move(path), fmt::format("{}: {}", what, not_yet), "", "a case without it", std::move(hint)});
+    problems_.push_back(
+        {place, std::move(path), fmt::format("{}: {}", what, not_yet), "", "a case without it", std::move(hint)});
   }
   template <class Elements>
   void elements(std::string_view kind, std::string_view words, const Elements& list) {
     for (const auto& e : list)
-      add(e.place, fmt::format("{}/{}", kind, e.name), fmt::format("the {} \"{}\"", words, e.name), "leave it out for this verb, or use `flow`, where it passes nothing");
+      add(e.place,
+          fmt::format("{}/{}", kind, e.name),
+          fmt::format("the {} \"{}\"", words, e.name),
+          "leave it out for this verb, or use `flow`, where it passes nothing");
   }
   base::Problems take() {
-    std::sort(problems_.begin(), problems_.end(), [](const auto& a, const auto& b) { return std::tie(a.place, a.path) < std::tie(b.place, b.path); });
+    std::sort(problems_.begin(), problems_.end(), [](const auto& a, const auto& b) {
+      return std::tie(a.place, a.path) < std::tie(b.place, b.path);
+    });
     return std::move(problems_);
   }
 
@@ -41,23 +47,44 @@ void refuse_protection(const Case& c, Refusals& refusals) {
 }
 
 void refuse_check_rules(const Case& c, Refusals& refusals) {
-  const auto slow = [](const CheckValveRule& rule) { return rule.kind == CheckValveKind::reverse_velocity || rule.kind == CheckValveKind::delay; };
+  const auto slow = [](const CheckValveRule& rule) {
+    return rule.kind == CheckValveKind::reverse_velocity || rule.kind == CheckValveKind::delay;
+  };
   for (const Pump& p : c.pumps)
-    if (slow(p.check_valve)) refusals.add(p.place, "pump/" + p.name + "/check_valve", fmt::format("the slow check valve of pump \"{}\"", p.name), "write check_valve = \"ideal\" or \"none\"");
+    if (slow(p.check_valve))
+      refusals.add(p.place,
+                   "pump/" + p.name + "/check_valve",
+                   fmt::format("the slow check valve of pump \"{}\"", p.name),
+                   "write check_valve = \"ideal\" or \"none\"");
   for (const CheckValve& v : c.check_valves)
-    if (slow(v.rule)) refusals.add(v.place, "check_valve/" + v.name, fmt::format("the slow check valve \"{}\"", v.name), "leave reverse_velocity and delay out: an ideal check valve");
+    if (slow(v.rule))
+      refusals.add(v.place,
+                   "check_valve/" + v.name,
+                   fmt::format("the slow check valve \"{}\"", v.name),
+                   "leave reverse_velocity and delay out: an ideal check valve");
 }
 
 void refuse_of_surge(const Case& c, Refusals& refusals) {
   refuse_protection(c, refusals);
   refuse_check_rules(c, refusals);
   for (const Pipe& p : c.pipes)
-    if (!p.creep.empty()) refusals.add(p.place, "pipe/" + p.name + "/creep", fmt::format("creep of pipe \"{}\"", p.name), "leave creep out");
+    if (!p.creep.empty())
+      refusals.add(
+          p.place, "pipe/" + p.name + "/creep", fmt::format("creep of pipe \"{}\"", p.name), "leave creep out");
   for (const Event& e : c.events) {
-    if (e.when) refusals.add(e.place, "event/" + (e.name.empty() ? e.subject : e.name) + "/when", "an event that waits for a condition", "give the event a time `at`");
-    if (e.kind == EventKind::start_pump) refusals.add(e.place, "event/" + (e.name.empty() ? e.subject : e.name) + "/start", "the start of a pump", "leave the event out");
+    if (e.when)
+      refusals.add(e.place,
+                   "event/" + (e.name.empty() ? e.subject : e.name) + "/when",
+                   "an event that waits for a condition",
+                   "give the event a time `at`");
+    if (e.kind == EventKind::start_pump)
+      refusals.add(e.place,
+                   "event/" + (e.name.empty() ? e.subject : e.name) + "/start",
+                   "the start of a pump",
+                   "leave the event out");
   }
-  if (c.surge.unsteady_friction) refusals.add(c.surge.place, "surge/unsteady_friction", "unsteady friction", "write unsteady_friction = \"off\"");
+  if (c.surge.unsteady_friction)
+    refusals.add(c.surge.place, "surge/unsteady_friction", "unsteady friction", "write unsteady_friction = \"off\"");
   if (c.surge.cavities == Cavities::gas || c.surge.cavities == Cavities::both)
     refusals.add(c.surge.place, "surge/cavities", "gas cavities", "write cavities = \"vapour\" or \"off\"");
 }
@@ -70,14 +97,23 @@ base::Problems refused_by_verb(const Case& c, const std::string& verb) {
   if (marches) {
     if (!c.surge.given) {
       base::Problems missing;
-      missing.push_back({{1, 1}, "surge", fmt::format("`{}` needs the section [surge]", verb), "", "[surge] with duration", "add [surge] and duration = \"60 s\""});
+      missing.push_back({{1, 1},
+                         "surge",
+                         fmt::format("`{}` needs the section [surge]", verb),
+                         "",
+                         "[surge] with duration",
+                         "add [surge] and duration = \"60 s\""});
       return missing;
     }
     refuse_of_surge(c, refusals);
   }
   if (marches || verb == "flow" || verb == "band")
     for (const Limit& l : c.limits)
-      if (!l.rule.empty()) refusals.add(l.place, "limit/" + l.name, fmt::format("the rule \"{}\"", l.rule), "write the limit as highest_pressure with its own bound");
+      if (!l.rule.empty())
+        refusals.add(l.place,
+                     "limit/" + l.name,
+                     fmt::format("the rule \"{}\"", l.rule),
+                     "write the limit as highest_pressure with its own bound");
   return refusals.take();
 }
 

@@ -29,8 +29,10 @@ SourcePlace place_inside(const Context& context, const toml::node& node, const s
   return place;
 }
 
-void report_text(Context& context, const toml::node& node, const std::string& text, const std::string& path, const TextProblem& p) {
-  context.report(place_inside(context, node, text, p.column), path, p.what, fmt::format("\"{}\"", text), p.bound, p.hint);
+void report_text(
+    Context& context, const toml::node& node, const std::string& text, const std::string& path, const TextProblem& p) {
+  context.report(
+      place_inside(context, node, text, p.column), path, p.what, fmt::format("\"{}\"", text), p.bound, p.hint);
 }
 
 Quantity from_text(Context& context, const toml::node& node, const KeyRule& rule, const std::string& path) {
@@ -43,11 +45,17 @@ Quantity from_text(Context& context, const toml::node& node, const KeyRule& rule
   if (number) {
     const double value = node.value<double>().value_or(std::nan(""));
     ParsedQuantity parsed = parse_number(value, written(node), rule);
-    if (parsed.problem) context.report(place_of(node), path, parsed.problem->what, written(node), parsed.problem->bound, parsed.problem->hint);
+    if (parsed.problem)
+      context.report(
+          place_of(node), path, parsed.problem->what, written(node), parsed.problem->bound, parsed.problem->hint);
     return std::move(parsed.quantity);
   }
   const std::string form(rule.example.empty() ? base::example_of(rule.dimension) : rule.example);
-  context.report(place_of(node), path, "a value is expected here", written(node), fmt::format("\"{}\"", form),
+  context.report(place_of(node),
+                 path,
+                 "a value is expected here",
+                 written(node),
+                 fmt::format("\"{}\"", form),
                  fmt::format("write {} = \"{}\"", rule.key, form));
   return {};
 }
@@ -58,7 +66,12 @@ Quantity from_table(Context& context, const toml::table& table, const KeyRule& r
   const toml::node* value = inner.ask("value");
   Quantity q;
   if (value == nullptr)
-    context.report(place_of(table), path, "the table around a value has no `value`", "", "{ value = \"…\", source = \"…\" }", "add value = \"…\"");
+    context.report(place_of(table),
+                   path,
+                   "the table around a value has no `value`",
+                   "",
+                   "{ value = \"…\", source = \"…\" }",
+                   "add value = \"…\"");
   else
     q = from_text(context, *value, rule, path);
   KeyRule exact = rule;
@@ -70,19 +83,27 @@ Quantity from_table(Context& context, const toml::table& table, const KeyRule& r
     const Quantity cut = from_text(context, *node, exact, path + "/" + key);
     if (!cut.given()) continue;
     if (rule.spread == SpreadUse::refused) {
-      inner.report(key, "a cut-off belongs to a spread, and none is taken here", "the value alone", std::string(rule.instead));
-    } else if (q.given() && (below ? !(cut.value < q.value) && !(cut.value == q.value) : !(cut.value > q.value) && !(cut.value == q.value))) {
-      inner.report(key, "the value lies outside its own cut-off", fmt::format("{} the value", below ? "at most" : "at least"),
+      inner.report(
+          key, "a cut-off belongs to a spread, and none is taken here", "the value alone", std::string(rule.instead));
+    } else if (q.given() && (below ? !(cut.value < q.value) && !(cut.value == q.value)
+                                   : !(cut.value > q.value) && !(cut.value == q.value))) {
+      inner.report(key,
+                   "the value lies outside its own cut-off",
+                   fmt::format("{} the value", below ? "at most" : "at least"),
                    "correct the value or the cut-off");
     } else {
       (below ? q.cut.low : q.cut.high) = cut.value;
     }
   }
-  if (q.given() && !(q.cut.low < q.cut.high) ) inner.report("not_above", "the cut-offs leave no room", "not_below under not_above", "correct the cut-offs");
+  if (q.given() && !(q.cut.low < q.cut.high))
+    inner.report("not_above", "the cut-offs leave no room", "not_below under not_above", "correct the cut-offs");
   q.source = inner.text("source");
   q.grade = inner.text("grade");
   if (!q.grade.empty() && q.grade != "A" && q.grade != "B" && q.grade != "C" && q.grade != "D")
-    inner.report("grade", "the grade is not known", "A measured here, B data sheet, C drawing or handbook, D guess", "write one of A, B, C, D");
+    inner.report("grade",
+                 "the grade is not known",
+                 "A measured here, B data sheet, C drawing or handbook, D guess",
+                 "write one of A, B, C, D");
   else if (!q.grade.empty() && q.given() && q.exact() && rule.spread == SpreadUse::sampled)
     apply_default_spread(q, rule);
   inner.finish();
@@ -91,7 +112,8 @@ Quantity from_table(Context& context, const toml::table& table, const KeyRule& r
 
 }  // namespace
 
-void Context::report(SourcePlace place, std::string path, std::string what, std::string value, std::string bound, std::string hint) {
+void Context::report(
+    SourcePlace place, std::string path, std::string what, std::string value, std::string bound, std::string hint) {
   problems.push_back({place, std::move(path), std::move(what), std::move(value), std::move(bound), std::move(hint)});
 }
 
@@ -125,7 +147,12 @@ std::string written(const toml::node& node) {
   return out.str();
 }
 
-Section::Section(Context& context, const toml::table& table, std::string section, std::string element, std::string path, std::string rule_prefix,
+Section::Section(Context& context,
+                 const toml::table& table,
+                 std::string section,
+                 std::string element,
+                 std::string path,
+                 std::string rule_prefix,
                  std::string name_prefix)
     : context_(context),
       table_(table),
@@ -190,11 +217,13 @@ std::string Section::text(std::string_view key) {
 
 std::string Section::needed_text(std::string_view key, std::string_view hint) {
   if (!has(key)) {
-    context_.report(place_, path(key), fmt::format("`{}` is missing", key), "", fmt::format("{} = \"…\"", key), std::string(hint));
+    context_.report(
+        place_, path(key), fmt::format("`{}` is missing", key), "", fmt::format("{} = \"…\"", key), std::string(hint));
     return {};
   }
   std::string given = text(key);
-  if (given.empty() && table_.get(key)->is_string()) report(key, fmt::format("`{}` is empty", key), fmt::format("{} = \"…\"", key), std::string(hint));
+  if (given.empty() && table_.get(key)->is_string())
+    report(key, fmt::format("`{}` is empty", key), fmt::format("{} = \"…\"", key), std::string(hint));
   return given;
 }
 
@@ -211,21 +240,30 @@ long long Section::whole(std::string_view key, long long when_left_out, long lon
   if (node == nullptr) return when_left_out;
   const auto value = node->value_exact<std::int64_t>();
   if (value && *value >= low && *value <= high) return *value;
-  report(key, value ? "the number is out of its range" : "a whole number is expected here", fmt::format("a whole number, {} to {}", low, high),
+  report(key,
+         value ? "the number is out of its range" : "a whole number is expected here",
+         fmt::format("a whole number, {} to {}", low, high),
          value ? "correct the number" : "write it without quotes and without a point");
   return when_left_out;
 }
 
 void Section::report(std::string_view key, std::string what, std::string bound, std::string hint) {
   const toml::node* node = table_.get(key);
-  context_.report(place(key), path(key), std::move(what), node == nullptr ? std::string() : written(*node), std::move(bound), std::move(hint));
+  context_.report(place(key),
+                  path(key),
+                  std::move(what),
+                  node == nullptr ? std::string() : written(*node),
+                  std::move(bound),
+                  std::move(hint));
 }
 
 void Section::report_word(std::string_view key, const toml::node& node, const std::vector<std::string>& known) {
   std::string list;
   for (const std::string& name : known) list += (list.empty() ? "" : ", ") + name;
   const std::string near = node.is_string() ? nearest(node.as_string()->get(), known) : std::string();
-  report(key, fmt::format("`{}` does not know this word", key), list,
+  report(key,
+         fmt::format("`{}` does not know this word", key),
+         list,
          near.empty() ? std::string("write one of these words") : fmt::format("did you mean \"{}\"?", near));
 }
 
@@ -245,12 +283,19 @@ void Section::finish() {
         hint = fmt::format("did you mean `{}`?", near);
       }
     }
-    const std::string where = element_.empty() ? fmt::format("[{}]", section_) : fmt::format("{} \"{}\"", section_, element_);
-    context_.report(place_of(key), path(name), fmt::format("unknown key `{}` in {}", name, where), "", near.empty() ? "a key of this section" : fmt::format("`{}`", near), hint);
+    const std::string where =
+        element_.empty() ? fmt::format("[{}]", section_) : fmt::format("{} \"{}\"", section_, element_);
+    context_.report(place_of(key),
+                    path(name),
+                    fmt::format("unknown key `{}` in {}", name, where),
+                    "",
+                    near.empty() ? "a key of this section" : fmt::format("`{}`", near),
+                    hint);
   }
 }
 
-Quantity read_quantity(Context& context, const toml::node& node, const KeyRule& rule, const std::string& name, const std::string& path) {
+Quantity read_quantity(
+    Context& context, const toml::node& node, const KeyRule& rule, const std::string& name, const std::string& path) {
   context.places.emplace(path, place_of(node));
   Quantity q;
   if (const auto* table = node.as_table())

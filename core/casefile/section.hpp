@@ -25,14 +25,15 @@ using base::SourcePlace;
 /// What all sections of one file share.
 struct Context {
   std::string file_name, folder;
-  std::vector<std::string_view> lines;        ///< of the text, without line ends
+  std::vector<std::string_view> lines;  ///< of the text, without line ends
   base::Problems problems;
   std::map<std::string, SourcePlace> places;  ///< path of a value → where it stands
   std::map<std::string, int> names;           ///< names of unknowns given so far
   std::vector<std::string> guesses, warnings;
   bool names_doubtful = false;  ///< an element is missing or misnamed: what refers to it would be told again
 
-  void report(SourcePlace place, std::string path, std::string what, std::string value, std::string bound, std::string hint);
+  void report(
+      SourcePlace place, std::string path, std::string what, std::string value, std::string bound, std::string hint);
   /// `name`, or `name 2`, `name 3` when it is taken.
   [[nodiscard]] std::string unique_name(const std::string& name);
 };
@@ -49,8 +50,13 @@ class Section {
   /// @param path of its values, `pipe/main`
   /// @param rule_prefix of the keys in the table of rules (`fitting `)
   /// @param name_prefix of the keys in names and paths (`fitting bend 90 `)
-  Section(Context& context, const toml::table& table, std::string section, std::string element, std::string path,
-          std::string rule_prefix = {}, std::string name_prefix = {});
+  Section(Context& context,
+          const toml::table& table,
+          std::string section,
+          std::string element,
+          std::string path,
+          std::string rule_prefix = {},
+          std::string name_prefix = {});
 
   [[nodiscard]] bool has(std::string_view key);
   /// The node of a key, null when it is not there. The key counts as asked for.
@@ -107,7 +113,7 @@ class Section {
 };
 
 /// A node read under a rule; problems are reported, `name` and `path` go into the quantity.
-[[nodiscard]] Quantity read_quantity(Context& context, const toml::node& node, const KeyRule& rule, const std::string& name,
-                                     const std::string& path);
+[[nodiscard]] Quantity read_quantity(
+    Context& context, const toml::node& node, const KeyRule& rule, const std::string& name, const std::string& path);
 
 }  // namespace headband::casefile

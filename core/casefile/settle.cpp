@@ -18,7 +18,12 @@ void refuse_repeated_names(Context& context, const Case& c) {
       const auto [first, fresh] = seen.emplace(e.name, std::pair{std::string(kind), e.place});
       if (fresh) continue;
       context.names_doubtful = true;
-      context.report(e.place, fmt::format("{}/{}/name", kind, e.name), "two elements have one name", fmt::format("\"{}\"", e.name), fmt::format("the other one is the {} in line {}", first->second.first, first->second.second.line), "give one of them another name");
+      context.report(e.place,
+                     fmt::format("{}/{}/name", kind, e.name),
+                     "two elements have one name",
+                     fmt::format("\"{}\"", e.name),
+                     fmt::format("the other one is the {} in line {}", first->second.first, first->second.second.line),
+                     "give one of them another name");
     }
   };
   take("basin", c.basins);
@@ -36,14 +41,20 @@ void refuse_repeated_names(Context& context, const Case& c) {
     const auto other = seen.find(p.name);
     // An entry [[place]] may add the elevation of a basin's place; two entries for one place are a slip.
     if ((other != seen.end() && other->second.first != "basin") || !place_names.insert(p.name).second)
-      context.report(p.place, fmt::format("place/{}/name", p.name), "two elements have one name", fmt::format("\"{}\"", p.name), "a name of its own", "give one of them another name");
+      context.report(p.place,
+                     fmt::format("place/{}/name", p.name),
+                     "two elements have one name",
+                     fmt::format("\"{}\"", p.name),
+                     "a name of its own",
+                     "give one of them another name");
   }
 }
 
 // A name is a pipe's where a pipe has it; places and pipes share no names.
 void settle_spots(Case& c) {
   const auto settle_one = [&](Spot& spot) {
-    spot.on_pipe = spot.on_pipe || std::any_of(c.pipes.begin(), c.pipes.end(), [&](const Pipe& p) { return p.name == spot.element; });
+    spot.on_pipe = spot.on_pipe ||
+                   std::any_of(c.pipes.begin(), c.pipes.end(), [&](const Pipe& p) { return p.name == spot.element; });
   };
   for (Spot& spot : c.show.places) settle_one(spot);
   for (AnswerRequest& answer : c.band.answers)
@@ -52,19 +63,27 @@ void settle_spots(Case& c) {
     for (Spot& spot : limit.subject.where) settle_one(spot);
 }
 
-bool wave_speed_by_formula(const Pipe& p) { return !p.wave_speed.given() && p.wave_speed.same_as.empty() && (p.wall.given() || !p.wall.same_as.empty()); }
+bool wave_speed_by_formula(const Pipe& p) {
+  return !p.wave_speed.given() && p.wave_speed.same_as.empty() && (p.wall.given() || !p.wall.same_as.empty());
+}
 
 void count_guesses(Context& context, const Case& c) {
   auto& guesses = context.guesses;
   for (const Pipe& p : c.pipes)
-    if (!p.joint_given && !p.restraint_factor.given() && wave_speed_by_formula(p)) guesses.push_back(fmt::format("pipe {}: joint anchored, nobody stated it", p.name));
+    if (!p.joint_given && !p.restraint_factor.given() && wave_speed_by_formula(p))
+      guesses.push_back(fmt::format("pipe {}: joint anchored, nobody stated it", p.name));
   for (const Pump& p : c.pumps)
     if (p.check_valve.guess) guesses.push_back(fmt::format("pump {}: ideal check valve, nobody stated it", p.name));
   for (const Pump& p : c.pumps) {
-    const bool trips = std::any_of(c.events.begin(), c.events.end(), [&](const Event& e) { return (e.kind == EventKind::trip_pump || e.kind == EventKind::start_pump) && e.subject == p.name; });
-    if (trips && !p.rated_flow.given()) guesses.push_back(fmt::format("pump {}: rated point taken as the first operating point, nobody stated it", p.name));
+    const bool trips = std::any_of(c.events.begin(), c.events.end(), [&](const Event& e) {
+      return (e.kind == EventKind::trip_pump || e.kind == EventKind::start_pump) && e.subject == p.name;
+    });
+    if (trips && !p.rated_flow.given())
+      guesses.push_back(
+          fmt::format("pump {}: rated point taken as the first operating point, nobody stated it", p.name));
   }
-  if (c.band.given && c.friction.scatter.guess) guesses.push_back("friction scatter ± 10 %, shared by all pipes, nobody stated it");
+  if (c.band.given && c.friction.scatter.guess)
+    guesses.push_back("friction scatter ± 10 %, shared by all pipes, nobody stated it");
   network::for_each_quantity(c, [&](const Quantity& q) {
     if (q.grade == "D") guesses.push_back(fmt::format("{}: {}, stated as a guess (grade D)", q.name, q.written));
   });
@@ -78,7 +97,8 @@ void guess_elevations(Context& context, const Case& c) {
   for (const PlaceEntry& p : c.places)
     if (p.elevation.given() || !p.elevation.same_as.empty()) known.insert(p.name);
   const auto meet = [&](const std::string& name) {
-    if (!name.empty() && name != "air" && std::find(order.begin(), order.end(), name) == order.end()) order.push_back(name);
+    if (!name.empty() && name != "air" && std::find(order.begin(), order.end(), name) == order.end())
+      order.push_back(name);
   };
   for (const Pipe& p : c.pipes) {
     if (!p.profile.empty()) known.insert({p.from, p.to});
@@ -94,7 +114,8 @@ void guess_elevations(Context& context, const Case& c) {
     meet(p.to);
   }
   for (const std::string& name : order)
-    if (!known.contains(name)) context.guesses.push_back(fmt::format("place {}: elevation 0 m, nobody stated it", name));
+    if (!known.contains(name))
+      context.guesses.push_back(fmt::format("place {}: elevation 0 m, nobody stated it", name));
 }
 
 }  // namespace

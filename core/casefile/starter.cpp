@@ -14,7 +14,8 @@ struct Starter {
   std::string_view kind, text;
 };
 
-constexpr std::string_view valve = R"(# Starter: a valve at the end of a gravity main closes. An invented scenario: put your own numbers in.
+constexpr std::string_view valve =
+    R"(# Starter: a valve at the end of a gravity main closes. An invented scenario: put your own numbers in.
 #   headband check valve.toml     every value as understood
 #   headband surge valve.toml     one run
 #   headband band valve.toml --surge
@@ -152,7 +153,8 @@ where = "rising main"
 at_most = "5 %"
 )";
 
-constexpr std::string_view oil = R"(# Starter: pressure drop of an oil line with error bars. An invented scenario: put your own numbers in.
+constexpr std::string_view oil =
+    R"(# Starter: pressure drop of an oil line with error bars. An invented scenario: put your own numbers in.
 
 [about]
 title = "Oil line, is the pump enough?"
@@ -202,7 +204,8 @@ not_over = "320 psi"
 at_most = "5 %"
 )";
 
-constexpr std::string_view ageing = R"(# Starter: an unlined main grows rough. An invented scenario: put your own numbers in.
+constexpr std::string_view ageing =
+    R"(# Starter: an unlined main grows rough. An invented scenario: put your own numbers in.
 
 [about]
 title = "Old main, how long will it do?"
@@ -264,7 +267,8 @@ roughness = "0.1 mm"
 growth = "none"
 )";
 
-constexpr std::string_view ring = R"(# Starter: a ring main with a hydrant. An invented scenario: put your own numbers in.
+constexpr std::string_view ring =
+    R"(# Starter: a ring main with a hydrant. An invented scenario: put your own numbers in.
 
 [about]
 title = "Ring main, hydrant shuts"
@@ -353,7 +357,11 @@ highest_pressure = "200 psi g"
 at_most = "5 %"
 )";
 
-constexpr std::array starters{Starter{"valve", valve}, Starter{"trip", trip}, Starter{"oil", oil}, Starter{"ageing", ageing}, Starter{"ring", ring}};
+constexpr std::array starters{Starter{"valve", valve},
+                              Starter{"trip", trip},
+                              Starter{"oil", oil},
+                              Starter{"ageing", ageing},
+                              Starter{"ring", ring}};
 
 }  // namespace
 

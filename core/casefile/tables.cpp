@@ -19,13 +19,19 @@ constexpr std::size_t most_rows = 1000000;
 /// The bytes of a CSV beside the case; nothing with a problem reported.
 std::optional<std::string> file_beside(Section& section, std::string_view key, const std::string& name) {
   if (name.empty() || name.front() == '/' || name.find("..") != std::string::npos) {
-    section.report(key, "a table file stands beside the case file", "a file name such as \"profile.csv\"", "put the file into the case's folder");
+    section.report(key,
+                   "a table file stands beside the case file",
+                   "a file name such as \"profile.csv\"",
+                   "put the file into the case's folder");
     return std::nullopt;
   }
   const std::string folder = section.context().folder;
   std::ifstream in(folder.empty() ? name : folder + "/" + name, std::ios::binary);
   if (!in) {
-    section.report(key, fmt::format("the table file '{}' cannot be opened", name), "a CSV file beside the case file", "check the name and the folder");
+    section.report(key,
+                   fmt::format("the table file '{}' cannot be opened", name),
+                   "a CSV file beside the case file",
+                   "check the name and the folder");
     return std::nullopt;
   }
   std::ostringstream bytes;
@@ -40,7 +46,8 @@ std::optional<std::string> file_beside(Section& section, std::string_view key, c
 
 void report_csv(Section& section, std::string_view key, const std::string& file, const CsvProblem& p) {
   const std::string where = fmt::format("{}:{}{}{}", file, p.line, p.column.empty() ? "" : ": column ", p.column);
-  section.context().report(section.place(key), section.path(key), fmt::format("{}: {}", where, p.what), p.value, p.bound, p.hint);
+  section.context().report(
+      section.place(key), section.path(key), fmt::format("{}: {}", where, p.what), p.value, p.bound, p.hint);
 }
 
 /// Columns of the file in the order of the rules: as they stand, swapped where the units say so.
@@ -53,7 +60,8 @@ std::vector<const CsvColumn*> columns_in_order(const CsvTable& table, const std:
     const auto kind = base::kind_of(rule.dimension);
     return unit && kind && unit->unit.kind == *kind;
   };
-  if (!fits(*order[0], *rules[0]) && fits(*order[0], *rules[1]) && fits(*order[1], *rules[0])) std::swap(order[0], order[1]);
+  if (!fits(*order[0], *rules[0]) && fits(*order[0], *rules[1]) && fits(*order[1], *rules[0]))
+    std::swap(order[0], order[1]);
   return order;
 }
 
@@ -67,7 +75,12 @@ Quantity cell_quantity(double number, const CsvColumn& column, const KeyRule& ru
   return std::move(parsed.quantity);
 }
 
-void table_from_csv(Section& section, std::string_view key, const std::string& file, const KeyRule& first, const KeyRule& second, network::Table& table) {
+void table_from_csv(Section& section,
+                    std::string_view key,
+                    const std::string& file,
+                    const KeyRule& first,
+                    const KeyRule& second,
+                    network::Table& table) {
   const auto text = file_beside(section, key, file);
   if (!text) return;
   table.file = file;
@@ -87,9 +100,17 @@ void table_from_csv(Section& section, std::string_view key, const std::string& f
     if (problem.empty()) row.second = cell_quantity(columns[1]->numbers[i], *columns[1], second, problem);
     const CsvColumn& column = row.first.given() ? *columns[1] : *columns[0];
     if (!problem.empty()) {
-      report_csv(section, key, file,
-                 {reading.table.row_line[i], column.name, problem, fmt::format("{}{}{}", column.numbers[i], column.unit.empty() ? "" : " ", column.unit),
-                  fmt::format("units in the header, \"{} [{}]\"", column.name, base::si_name(row.first.given() ? second.dimension : first.dimension)), "correct the header or the row"});
+      report_csv(section,
+                 key,
+                 file,
+                 {reading.table.row_line[i],
+                  column.name,
+                  problem,
+                  fmt::format("{}{}{}", column.numbers[i], column.unit.empty() ? "" : " ", column.unit),
+                  fmt::format("units in the header, \"{} [{}]\"",
+                              column.name,
+                              base::si_name(row.first.given() ? second.dimension : first.dimension)),
+                  "correct the header or the row"});
       table.rows.clear();
       return;
     }
@@ -98,7 +119,12 @@ void table_from_csv(Section& section, std::string_view key, const std::string& f
   }
 }
 
-void table_from_rows(Section& section, std::string_view key, const toml::array& rows, const KeyRule& first, const KeyRule& second, network::Table& table) {
+void table_from_rows(Section& section,
+                     std::string_view key,
+                     const toml::array& rows,
+                     const KeyRule& first,
+                     const KeyRule& second,
+                     network::Table& table) {
   if (rows.size() > most_rows) {
     section.report(key, "the table has too many rows", "at most a million", "thin it out");
     return;
@@ -107,16 +133,22 @@ void table_from_rows(Section& section, std::string_view key, const toml::array& 
   for (std::size_t i = 0; i < rows.size(); ++i) {
     const toml::array* row = rows[i].as_array();
     if (row == nullptr || row->size() != 2) {
-      section.context().report(place_of(rows[i]), section.path(key), fmt::format("row {} of `{}` is not a pair", i + 1, key), written(rows[i]),
-                               fmt::format("[\"{}\", \"{}\"]", first.example, second.example), "write two values in square brackets");
+      section.context().report(place_of(rows[i]),
+                               section.path(key),
+                               fmt::format("row {} of `{}` is not a pair", i + 1, key),
+                               written(rows[i]),
+                               fmt::format("[\"{}\", \"{}\"]", first.example, second.example),
+                               "write two values in square brackets");
       sound = false;
       continue;
     }
     const std::string path = fmt::format("{} {}", section.path(key), i + 1);
     std::pair<Quantity, Quantity> values;
-    values.first = read_quantity(section.context(), (*row)[0], first, "", path + " " + std::string(first.key.substr(first.key.find(' ') + 1)));
+    values.first = read_quantity(
+        section.context(), (*row)[0], first, "", path + " " + std::string(first.key.substr(first.key.find(' ') + 1)));
     values.second = read_quantity(section.context(), (*row)[1], second, "", path);
-    sound = sound && (values.first.given() || !values.first.same_as.empty()) && (values.second.given() || !values.second.same_as.empty());
+    sound = sound && (values.first.given() || !values.first.same_as.empty()) &&
+            (values.second.given() || !values.second.same_as.empty());
     table.rows.push_back(std::move(values));
   }
   if (!sound) table.rows.clear();
@@ -125,7 +157,10 @@ void table_from_rows(Section& section, std::string_view key, const toml::array& 
 
 }  // namespace
 
-network::Table read_table(Section& section, std::string_view key, std::string_view first_key, std::string_view second_key) {
+network::Table read_table(Section& section,
+                          std::string_view key,
+                          std::string_view first_key,
+                          std::string_view second_key) {
   network::Table table;
   const toml::node* node = section.ask(key);
   if (node == nullptr) return table;
@@ -138,7 +173,10 @@ network::Table read_table(Section& section, std::string_view key, std::string_vi
   else if (const auto* rows = node->as_array())
     table_from_rows(section, key, *rows, first, second, table);
   else
-    section.report(key, "a table is expected here", fmt::format("[[\"{}\", \"{}\"], …] or \"FILE.csv\"", first.example, second.example), "write rows in square brackets, or a file name");
+    section.report(key,
+                   "a table is expected here",
+                   fmt::format("[[\"{}\", \"{}\"], …] or \"FILE.csv\"", first.example, second.example),
+                   "write rows in square brackets, or a file name");
   int row = 0;
   for (auto& [left, right] : table.rows) {
     ++row;
@@ -164,7 +202,12 @@ ThreeColumns read_three_columns(Section& section, std::string_view key) {
         for (const auto& cell : *row)
           if (const auto number = cell.value<double>(); number && !cell.is_string()) numbers.push_back(*number);
       if (row == nullptr || row->size() != 3 || numbers.size() != 3) {
-        section.context().report(place_of(item), section.path(key), "a row of the table is not three numbers", written(item), "[angle, head, torque]", "write three numbers in square brackets");
+        section.context().report(place_of(item),
+                                 section.path(key),
+                                 "a row of the table is not three numbers",
+                                 written(item),
+                                 "[angle, head, torque]",
+                                 "write three numbers in square brackets");
         return {};
       }
       table.first.push_back(numbers[0]);
@@ -181,7 +224,15 @@ ThreeColumns read_three_columns(Section& section, std::string_view key) {
   if (!reading.problems.empty()) return {};
   const std::size_t columns = reading.table.columns.size();
   if (columns < 3) {
-    report_csv(section, key, file, {1, "", fmt::format("the table has {} columns", columns), "", "three columns: angle, head, torque", "add the missing columns"});
+    report_csv(section,
+               key,
+               file,
+               {1,
+                "",
+                fmt::format("the table has {} columns", columns),
+                "",
+                "three columns: angle, head, torque",
+                "add the missing columns"});
     return {};
   }
   const std::size_t skip = columns - 3;  // a row number may stand in front

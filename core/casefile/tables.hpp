@@ -13,7 +13,10 @@ namespace headband::casefile {
 
 /// A table of two columns under `key`. @param first,second keys of the rules of its columns
 /// Names of the second column's unknowns: `ELEMENT KEY n`. Problems are reported; not given where there are any.
-[[nodiscard]] network::Table read_table(Section& section, std::string_view key, std::string_view first, std::string_view second);
+[[nodiscard]] network::Table read_table(Section& section,
+                                        std::string_view key,
+                                        std::string_view first,
+                                        std::string_view second);
 
 /// Three plain numbers a row (no units), for a four-quadrant table.
 struct ThreeColumns {

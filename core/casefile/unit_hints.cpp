@@ -18,7 +18,8 @@ using base::UnitKind;
 
 std::string lower(std::string_view text) {
   std::string result(text);
-  std::transform(result.begin(), result.end(), result.begin(), [](unsigned char c) { return static_cast<char>(std::tolower(c)); });
+  std::transform(
+      result.begin(), result.end(), result.begin(), [](unsigned char c) { return static_cast<char>(std::tolower(c)); });
   return result;
 }
 
@@ -70,33 +71,41 @@ UnitHint hint_for_unit(std::string_view name, Dimension dimension) {
   for (const Question& q : questions)
     if (q.name == small) return {fmt::format("the unit '{}' is not clear", name), std::string(q.question)};
   for (const base::Unit& unit : base::unit_table())
-    if (lower(unit.name) == small) return {fmt::format("the unit '{}' is not known", name), fmt::format("capitals matter: write \"{}\"", unit.name)};
+    if (lower(unit.name) == small)
+      return {fmt::format("the unit '{}' is not known", name), fmt::format("capitals matter: write \"{}\"", unit.name)};
   std::vector<std::string> names;
   const auto kind = base::kind_of(dimension);
   for (const base::Unit& unit : base::unit_table())
     if (kind && unit.kind == *kind) names.emplace_back(unit.name);
   const std::string nearest = network::nearest_word(std::string(name), names);
-  if (!nearest.empty()) return {fmt::format("the unit '{}' is not known", name), fmt::format("did you mean \"{}\"?", nearest)};
+  if (!nearest.empty())
+    return {fmt::format("the unit '{}' is not known", name), fmt::format("did you mean \"{}\"?", nearest)};
   if (names.empty()) return {fmt::format("'{}' is not understood after the number", name), "write the number alone"};
   std::string list;
   for (std::size_t i = 0; i < std::min<std::size_t>(names.size(), 8); ++i) list += (i == 0 ? "" : ", ") + names[i];
-  return {fmt::format("the unit '{}' is not known", name), fmt::format("units of {} are {}", base::words_of(*kind), list)};
+  return {fmt::format("the unit '{}' is not known", name),
+          fmt::format("units of {} are {}", base::words_of(*kind), list)};
 }
 
 UnitHint hint_for_kind(const base::Unit& unit, const KeyRule& rule) {
   const auto kind = base::kind_of(rule.dimension);
-  std::string what = fmt::format("'{}' is {}, {} is needed", unit.name, base::words_of(unit.kind), base::words_of(*kind));
+  std::string what =
+      fmt::format("'{}' is {}, {} is needed", unit.name, base::words_of(unit.kind), base::words_of(*kind));
   if (*kind == UnitKind::time && unit.name == "m")
     return {std::move(what), "are these minutes? \"m\" is the metre: write \"min\" for minutes"};
   if (*kind == UnitKind::kinematic_viscosity && unit.kind == UnitKind::dynamic_viscosity)
-    return {std::move(what), "is this dynamic (cP)? Divide by the density to get cSt; a law in temperature is kinematic"};
+    return {std::move(what),
+            "is this dynamic (cP)? Divide by the density to get cSt; a law in temperature is kinematic"};
   if (*kind == UnitKind::length && unit.kind == UnitKind::pressure)
     return {std::move(what), "a head is a length of the case's liquid: pressure / (density x gravity)"};
   if (*kind == UnitKind::pressure && unit.kind == UnitKind::length)
     return {std::move(what), "for metres of water write \"mH2O\"; a head of the case's liquid is another key"};
-  if (*kind == UnitKind::growth_rate && unit.kind == UnitKind::length) return {std::move(what), "write it per year, \"mm/year\""};
-  return {std::move(what), fmt::format("write {} such as \"{}\"", base::words_of(*kind),
-                                       rule.example.empty() ? base::example_of(rule.dimension) : rule.example)};
+  if (*kind == UnitKind::growth_rate && unit.kind == UnitKind::length)
+    return {std::move(what), "write it per year, \"mm/year\""};
+  return {std::move(what),
+          fmt::format("write {} such as \"{}\"",
+                      base::words_of(*kind),
+                      rule.example.empty() ? base::example_of(rule.dimension) : rule.example)};
 }
 
 std::optional<UnitHint> hint_for_coefficient(const base::Unit& unit, const KeyRule& rule) {
@@ -114,13 +123,18 @@ std::optional<UnitHint> hint_for_coefficient(const base::Unit& unit, const KeyRu
 std::string missing_unit_hint(double number, const KeyRule& rule) {
   const std::string n = fmt::format("{}", number);
   switch (rule.dimension) {
-    case Dimension::time: return fmt::format("are these seconds or minutes? Write \"{0} s\" or \"{0} min\"", n);
-    case Dimension::pressure: return fmt::format("write the unit and g or abs, as in \"{} bar g\"", n);
-    case Dimension::temperature: return fmt::format("write \"{0} degC\", \"{0} degF\" or \"{0} K\"", n);
+    case Dimension::time:
+      return fmt::format("are these seconds or minutes? Write \"{0} s\" or \"{0} min\"", n);
+    case Dimension::pressure:
+      return fmt::format("write the unit and g or abs, as in \"{} bar g\"", n);
+    case Dimension::temperature:
+      return fmt::format("write \"{0} degC\", \"{0} degF\" or \"{0} K\"", n);
     case Dimension::kv:
       return fmt::format("is this a Kv or a Cv (Cv = 1.156 Kv)? Write kv = \"{0} m3/h\" or cv = \"{0} gpm\"", n);
-    case Dimension::kinematic_viscosity: return fmt::format("kinematic or dynamic? Write \"{0} cSt\" or \"{0} cP\"", n);
-    default: break;
+    case Dimension::kinematic_viscosity:
+      return fmt::format("kinematic or dynamic? Write \"{0} cSt\" or \"{0} cP\"", n);
+    default:
+      break;
   }
   const std::string_view example = rule.example.empty() ? base::example_of(rule.dimension) : rule.example;
   const std::size_t space = example.find(' ');

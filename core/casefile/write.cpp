@@ -18,29 +18,50 @@ std::string_view plain_unit(Dimension dimension, bool gauge) {
     case Dimension::number:
     case Dimension::share:
     case Dimension::factor:
-    case Dimension::year: return "";
-    case Dimension::length: return "m";
-    case Dimension::area: return "m2";
-    case Dimension::volume: return "m3";
-    case Dimension::time: return "s";
-    case Dimension::velocity: return "m/s";
+    case Dimension::year:
+      return "";
+    case Dimension::length:
+      return "m";
+    case Dimension::area:
+      return "m2";
+    case Dimension::volume:
+      return "m3";
+    case Dimension::time:
+      return "s";
+    case Dimension::velocity:
+      return "m/s";
     case Dimension::flow:
-    case Dimension::kv: return "m3/s";
-    case Dimension::pressure: return gauge ? "Pa g" : "Pa abs";
+    case Dimension::kv:
+      return "m3/s";
+    case Dimension::pressure:
+      return gauge ? "Pa g" : "Pa abs";
     case Dimension::pressure_difference:
-    case Dimension::modulus: return "Pa";
-    case Dimension::compliance: return "1/Pa";
-    case Dimension::temperature: return "K";
-    case Dimension::density: return "kg/m3";
-    case Dimension::kinematic_viscosity: return "m2/s";
-    case Dimension::dynamic_viscosity: return "Pa s";
-    case Dimension::acceleration: return "m/s2";
-    case Dimension::rotational_speed: return "rad/s";
-    case Dimension::inertia: return "kg m2";
-    case Dimension::growth_rate: return "m/year";
-    case Dimension::energy_price: return "/J";
-    case Dimension::price_per_length: return "/m";
-    case Dimension::hours_per_year: return "h/year";
+    case Dimension::modulus:
+      return "Pa";
+    case Dimension::compliance:
+      return "1/Pa";
+    case Dimension::temperature:
+      return "K";
+    case Dimension::density:
+      return "kg/m3";
+    case Dimension::kinematic_viscosity:
+      return "m2/s";
+    case Dimension::dynamic_viscosity:
+      return "Pa s";
+    case Dimension::acceleration:
+      return "m/s2";
+    case Dimension::rotational_speed:
+      return "rad/s";
+    case Dimension::inertia:
+      return "kg m2";
+    case Dimension::growth_rate:
+      return "m/year";
+    case Dimension::energy_price:
+      return "/J";
+    case Dimension::price_per_length:
+      return "/m";
+    case Dimension::hours_per_year:
+      return "h/year";
   }
   return "";
 }
@@ -110,7 +131,8 @@ class Writer {
   }
   [[nodiscard]] std::string rows(const std::vector<std::pair<Quantity, Quantity>>& list) const {
     std::string cells;
-    for (const auto& [first, second] : list) cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", written(first), written(second));
+    for (const auto& [first, second] : list)
+      cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", written(first), written(second));
     return "[" + cells + "]";
   }
   void table(std::string_view key, const std::vector<std::pair<Quantity, Quantity>>& list) {
@@ -138,7 +160,8 @@ class Writer {
     raw("units", case_.show.units == base::UnitFamily::us ? "\"us\"" : "\"si\"");
     if (!case_.show.places.empty()) {
       std::string cells;
-      for (const Spot& s : case_.show.places) cells += fmt::format("{}{}", cells.empty() ? "" : ", ", quoted(s.written));
+      for (const Spot& s : case_.show.places)
+        cells += fmt::format("{}{}", cells.empty() ? "" : ", ", quoted(s.written));
       raw("places", "[" + cells + "]");
     }
     head("[site]");
@@ -185,7 +208,8 @@ class Writer {
     table("profile", p.profile);
     number("outside", p.outside);
     number("wall", p.wall);
-    if (p.lining_thickness.given()) raw("lining", inner({{"thickness", &p.lining_thickness}, {"modulus", &p.lining_modulus}}));
+    if (p.lining_thickness.given())
+      raw("lining", inner({{"thickness", &p.lining_thickness}, {"modulus", &p.lining_modulus}}));
     number("bore", p.bore);
     text("material", p.material);
     number("modulus", p.modulus);
@@ -204,11 +228,13 @@ class Writer {
     number("rating", p.rating);
     if (case_.friction.scatter_per_pipe) {
       const auto index = static_cast<std::size_t>(&p - case_.pipes.data());
-      if (index < case_.friction.pipe_scatter.size()) raw("friction_scatter", written(case_.friction.pipe_scatter[index]));
+      if (index < case_.friction.pipe_scatter.size())
+        raw("friction_scatter", written(case_.friction.pipe_scatter[index]));
     }
     if (p.creep.empty()) return;
     std::string cells;
-    for (const CreepElement& e : p.creep) cells += (cells.empty() ? "" : ", ") + inner({{"compliance", &e.compliance}, {"time", &e.time}});
+    for (const CreepElement& e : p.creep)
+      cells += (cells.empty() ? "" : ", ") + inner({{"compliance", &e.compliance}, {"time", &e.time}});
     raw("creep", "[" + cells + "]");
   }
 
@@ -216,7 +242,8 @@ class Writer {
     if (p.fittings.empty()) return;
     std::string cells;
     for (const Fitting& f : p.fittings) {
-      const std::string numbers = inner({{"count", &f.count}, {"k", &f.k}, {"equivalent_length", &f.equivalent_length}, {"at", &f.at}});
+      const std::string numbers =
+          inner({{"count", &f.count}, {"k", &f.k}, {"equivalent_length", &f.equivalent_length}, {"at", &f.at}});
       cells += fmt::format("{}{{ name = {}, {}", cells.empty() ? "" : ", ", quoted(f.name), numbers.substr(2));
     }
     raw("fittings", "[" + cells + "]");
@@ -235,7 +262,8 @@ class Writer {
     number("flow", v.flow);
     if (v.law.kind == ValveLawKind::table) {
       std::string cells;
-      for (const auto& [travel, share] : v.law.points) cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", travel, share);
+      for (const auto& [travel, share] : v.law.points)
+        cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", travel, share);
       raw("law", "[" + cells + "]");
     } else {
       text("law", words_of(v.law));
@@ -246,10 +274,14 @@ class Writer {
 
   [[nodiscard]] std::string check_rule(const CheckValveRule& rule) const {
     switch (rule.kind) {
-      case CheckValveKind::ideal: return "\"ideal\"";
-      case CheckValveKind::none: return "\"none\"";
-      case CheckValveKind::reverse_velocity: return inner({{"reverse_velocity", &rule.reverse_velocity}, {"bore", &rule.bore}});
-      case CheckValveKind::delay: return inner({{"delay", &rule.delay}, {"bore", &rule.bore}});
+      case CheckValveKind::ideal:
+        return "\"ideal\"";
+      case CheckValveKind::none:
+        return "\"none\"";
+      case CheckValveKind::reverse_velocity:
+        return inner({{"reverse_velocity", &rule.reverse_velocity}, {"bore", &rule.bore}});
+      case CheckValveKind::delay:
+        return inner({{"delay", &rule.delay}, {"bore", &rule.bore}});
     }
     return "\"ideal\"";
   }
@@ -273,7 +305,11 @@ class Writer {
     if (p.characteristic != Characteristic::table) return;
     std::string cells;
     for (std::size_t i = 0; i < p.suter.rows.size() && i < p.suter_torque.size(); ++i)
-      cells += fmt::format("{}[{}, {}, {}]", cells.empty() ? "" : ", ", p.suter.rows[i].first.value, p.suter.rows[i].second.value, p.suter_torque[i]);
+      cells += fmt::format("{}[{}, {}, {}]",
+                           cells.empty() ? "" : ", ",
+                           p.suter.rows[i].first.value,
+                           p.suter.rows[i].second.value,
+                           p.suter_torque[i]);
     raw("characteristic", "[" + cells + "]");
   }
 
@@ -309,7 +345,8 @@ class Writer {
       text("name", t.name);
       text("at", t.at);
       number("area", t.area);
-      if (t.throttle_bore.given() || t.throttle_k.given()) raw("throttle", inner({{"bore", &t.throttle_bore}, {"k", &t.throttle_k}}));
+      if (t.throttle_bore.given() || t.throttle_k.given())
+        raw("throttle", inner({{"bore", &t.throttle_bore}, {"k", &t.throttle_k}}));
       number("overflow_level", t.overflow_level);
       number("level", t.level);
       if (t.one_way) raw("one_way", "true");
@@ -346,18 +383,29 @@ class Writer {
     number("delay", e.delay);
     switch (e.kind) {
       case EventKind::move_valve:
-      case EventKind::swing_valve: text("valve", e.subject); break;
-      case EventKind::trip_pump: text("trip", e.subject); break;
-      case EventKind::start_pump: text("start", e.subject); break;
-      case EventKind::move_draw_off: text("draw_off", e.subject); break;
-      case EventKind::move_basin: text("basin", e.subject); break;
+      case EventKind::swing_valve:
+        text("valve", e.subject);
+        break;
+      case EventKind::trip_pump:
+        text("trip", e.subject);
+        break;
+      case EventKind::start_pump:
+        text("start", e.subject);
+        break;
+      case EventKind::move_draw_off:
+        text("draw_off", e.subject);
+        break;
+      case EventKind::move_basin:
+        text("basin", e.subject);
+        break;
     }
     number("to", e.to);
     if (e.instant) text("over", "instant");
     number("over", e.over);
     if (e.travel.given()) {
       std::string cells;
-      for (const auto& [time, opening] : e.travel.rows) cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", written(time), written(opening));
+      for (const auto& [time, opening] : e.travel.rows)
+        cells += fmt::format("{}[{}, {}]", cells.empty() ? "" : ", ", written(time), written(opening));
       raw("travel", "[" + cells + "]");
     }
     number("swing", e.swing);
@@ -368,7 +416,8 @@ class Writer {
   void friction() {
     const Friction& f = case_.friction;
     const auto settled = [&](const auto& choice) {
-      return scores_.empty() || choice.unknown < 0 ? choice.central() : choice.at(scores_[static_cast<std::size_t>(choice.unknown)]);
+      return scores_.empty() || choice.unknown < 0 ? choice.central()
+                                                   : choice.at(scores_[static_cast<std::size_t>(choice.unknown)]);
     };
     head("[friction]");
     text("law", words_of(settled(f.law)));
@@ -400,7 +449,8 @@ class Writer {
     head("[[limit]]");
     text("name", l.name);
     const std::string kind = words_of(l.subject.kind);
-    if (l.subject.kind == AnswerKind::pressure_drop || l.subject.kind == AnswerKind::flow || l.subject.kind == AnswerKind::head) {
+    if (l.subject.kind == AnswerKind::pressure_drop || l.subject.kind == AnswerKind::flow ||
+        l.subject.kind == AnswerKind::head) {
       raw(kind, spots(l.subject.where));
       number(l.not_over ? "not_over" : "not_under", l.bound);
     } else {
@@ -416,6 +466,8 @@ class Writer {
 
 }  // namespace
 
-std::string write_case(const Case& c, const std::vector<double>& scores, const std::string& note) { return Writer(c, scores).write(note); }
+std::string write_case(const Case& c, const std::vector<double>& scores, const std::string& note) {
+  return Writer(c, scores).write(note);
+}
 
 }  // namespace headband::casefile

@@ -64,7 +64,9 @@ TEST(Gallery, EachMessageSaysWhatWhereAndWhatToDo) {
       EXPECT_GE(p.place.column, 1) << name;
     }
     const std::string told = problems_text(name, text, {reading.problems.front()});
-    const std::regex pattern("^" + name + R"(:\d+:\d+: [^\n]+\n(  value: [^\n]+\n)?(  needs: [^\n]+\n)? *\d+ \| [^\n]*\n +\| [ \t]*\^\n  hint: [^\n]+\n$)");
+    const std::regex pattern(
+        "^" + name +
+        R"(:\d+:\d+: [^\n]+\n(  value: [^\n]+\n)?(  needs: [^\n]+\n)? *\d+ \| [^\n]*\n +\| [ \t]*\^\n  hint: [^\n]+\n$)");
     EXPECT_TRUE(std::regex_match(told, pattern)) << told;
   }
 }
@@ -96,7 +98,8 @@ TEST(Gallery, CaretsStandUnderTheMistake) {
   const std::string text = contents(folder() / "tab_and_umlaut.toml");
   const std::string told = problems_text("t", text, read_text("t", text, "").problems);
   const auto lines = lines_of(told);
-  const auto shown = std::find_if(lines.begin(), lines.end(), [](const std::string& l) { return l.find("roughness =") != std::string::npos; });
+  const auto shown = std::find_if(
+      lines.begin(), lines.end(), [](const std::string& l) { return l.find("roughness =") != std::string::npos; });
   ASSERT_NE(shown, lines.end());
   // Count code points up to the caret: it points at the unit that is not understood.
   const std::string& caret = *(shown + 1);

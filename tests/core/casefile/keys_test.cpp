@@ -22,7 +22,8 @@ TEST(Keys, EachKeyOnceAndEachExampleIsUnderstood) {
     EXPECT_TRUE(seen.insert({rule.section, rule.key}).second) << rule.section << "/" << rule.key;
     EXPECT_LT(rule.low, rule.high);
     const ParsedQuantity parsed = parse_quantity(example(rule), rule);
-    EXPECT_FALSE(parsed.problem.has_value()) << rule.section << "/" << rule.key << " " << example(rule) << ": " << (parsed.problem ? parsed.problem->what : "");
+    EXPECT_FALSE(parsed.problem.has_value()) << rule.section << "/" << rule.key << " " << example(rule) << ": "
+                                             << (parsed.problem ? parsed.problem->what : "");
   }
 }
 
@@ -42,7 +43,8 @@ TEST(Keys, EveryKeyTakesASpreadOrRefusesItInWords) {
     if (rule.dimension == base::Dimension::share && rule.example == "0.01 %") text = "0.01 % ± 0.001 %";
     const ParsedQuantity parsed = parse_quantity(text, rule);
     if (rule.spread == SpreadUse::sampled) {
-      ASSERT_FALSE(parsed.problem.has_value()) << rule.section << "/" << rule.key << " " << text << ": " << parsed.problem->what;
+      ASSERT_FALSE(parsed.problem.has_value())
+          << rule.section << "/" << rule.key << " " << text << ": " << parsed.problem->what;
       EXPECT_FALSE(parsed.quantity.exact()) << rule.section << "/" << rule.key;
     } else {
       ASSERT_TRUE(parsed.problem.has_value()) << rule.section << "/" << rule.key << " " << text;

@@ -55,7 +55,8 @@ TEST(QuantityText, CoverageIsStatedInBrackets) {
 TEST(QuantityText, FactorIsLogNormal) {
   const Quantity q = read("pipe", "roughness", "0.05 mm x/ 2");
   EXPECT_NEAR(std::get<base::LogNormal>(q.spread).log_standard_deviation, std::log(2.0) / z95, 1e-16);
-  EXPECT_EQ(std::get<base::LogNormal>(read("pipe", "roughness", "0.05 mm x/2").spread).log_standard_deviation, std::log(2.0) / z95);
+  EXPECT_EQ(std::get<base::LogNormal>(read("pipe", "roughness", "0.05 mm x/2").spread).log_standard_deviation,
+            std::log(2.0) / z95);
 }
 
 TEST(QuantityText, BoundsEvenAndTriangle) {
@@ -91,7 +92,9 @@ TEST(QuantityText, ScatterIsAFactor) {
   const Quantity ten = read("friction", "scatter", "± 10 %");
   EXPECT_EQ(ten.value, 1.0);
   EXPECT_NEAR(std::get<base::Normal>(ten.spread).standard_deviation, 0.1 / z95, 1e-16);
-  EXPECT_NEAR(std::get<base::LogNormal>(read("friction", "scatter", "x/ 1.1").spread).log_standard_deviation, std::log(1.1) / z95, 1e-16);
+  EXPECT_NEAR(std::get<base::LogNormal>(read("friction", "scatter", "x/ 1.1").spread).log_standard_deviation,
+              std::log(1.1) / z95,
+              1e-16);
   const Quantity limits = read("friction", "scatter", "between -10 % and 10 %");
   EXPECT_EQ(std::get<base::Even>(limits.spread).low, 0.9);
   EXPECT_EQ(std::get<base::Even>(limits.spread).high, 1.1);
@@ -137,9 +140,32 @@ TEST(QuantityText, SiSpellingsKeepTheirBits) {
 }
 
 TEST(QuantityText, NothingOddIsAccepted) {
-  for (const char* text : {"", " ", "m", "8", "8 mm 9 mm", "8 mm ±", "8 mm ± %", "8 mm x/", "8 mm between", "8 mm .. 9 mm", "inf mm", "nan mm",
-                           "1e999 mm", "0x10 mm", "8,5 mm", "8 mm ± -1 mm", "8 mm (95 %)", "as", "8 mm ± 1 % (0 %)", "8mm3", "8 mm, not random",
-                           "8 mm likely", "8 mm likely, between 1 mm and", "8 mm between 9 mm and 7 mm", "-8 mm", "8 mm ± 1 %%"})
+  for (const char* text : {"",
+                           " ",
+                           "m",
+                           "8",
+                           "8 mm 9 mm",
+                           "8 mm ±",
+                           "8 mm ± %",
+                           "8 mm x/",
+                           "8 mm between",
+                           "8 mm .. 9 mm",
+                           "inf mm",
+                           "nan mm",
+                           "1e999 mm",
+                           "0x10 mm",
+                           "8,5 mm",
+                           "8 mm ± -1 mm",
+                           "8 mm (95 %)",
+                           "as",
+                           "8 mm ± 1 % (0 %)",
+                           "8mm3",
+                           "8 mm, not random",
+                           "8 mm likely",
+                           "8 mm likely, between 1 mm and",
+                           "8 mm between 9 mm and 7 mm",
+                           "-8 mm",
+                           "8 mm ± 1 %%"})
     EXPECT_TRUE(parse_quantity(text, key_rule("pipe", "wall")).problem.has_value()) << text;
 }
 

@@ -76,22 +76,30 @@ TEST(Read, DefaultsNobodyStatedAreCounted) {
   EXPECT_TRUE(holds(c.guesses, "joint anchored"));
   EXPECT_TRUE(holds(c.guesses, "friction scatter"));
   EXPECT_FALSE(holds(c.guesses, "elevation"));
-  EXPECT_FALSE(holds(sound(frame + valve + "[friction]\nscatter = \"± 10 %\"\n[band]\nanswers = [{ flow = \"main\" }]\n").guesses, "scatter"));
+  EXPECT_FALSE(holds(
+      sound(frame + valve + "[friction]\nscatter = \"± 10 %\"\n[band]\nanswers = [{ flow = \"main\" }]\n").guesses,
+      "scatter"));
   EXPECT_EQ(c.band.answers[0].name, "flow main");
   EXPECT_TRUE(c.band.answers[0].where[0].on_pipe);
 }
 
 TEST(Read, FlowCoefficientsOfBothFamiliesAgree) {
   // Cv = 1.156 Kv: a Cv of 1 is a Kv of 0.8650 m3/h (gpm, psi and bar by their definitions).
-  const Case kv = sound(frame + "[[valve]]\nname = \"v\"\nfrom = \"chamber\"\nto = \"air\"\nkv = \"864.97772 m3/h ± 10 %\"\n");
-  const Case cv = sound(frame + "[[valve]]\nname = \"v\"\nfrom = \"chamber\"\nto = \"air\"\ncv = \"1000 gpm ± 10 %\"\n");
+  const Case kv =
+      sound(frame + "[[valve]]\nname = \"v\"\nfrom = \"chamber\"\nto = \"air\"\nkv = \"864.97772 m3/h ± 10 %\"\n");
+  const Case cv =
+      sound(frame + "[[valve]]\nname = \"v\"\nfrom = \"chamber\"\nto = \"air\"\ncv = \"1000 gpm ± 10 %\"\n");
   EXPECT_NEAR(cv.valves[0].kv.value, kv.valves[0].kv.value, 1e-6 * kv.valves[0].kv.value);
-  EXPECT_NEAR(std::get<base::Normal>(cv.valves[0].kv.spread).standard_deviation, std::get<base::Normal>(kv.valves[0].kv.spread).standard_deviation, 1e-8);
+  EXPECT_NEAR(std::get<base::Normal>(cv.valves[0].kv.spread).standard_deviation,
+              std::get<base::Normal>(kv.valves[0].kv.spread).standard_deviation,
+              1e-8);
   EXPECT_EQ(cv.valves[0].kv.name, "v cv");
 }
 
 TEST(Read, InertiaByItsLabel) {
-  const std::string pump = "[[pump]]\nname = \"p\"\nfrom = \"tank\"\nto = \"tank 2\"\ncurve = [[\"0 L/s\", \"40 m\"], [\"60 L/s\", \"30 m\"]]\n[[basin]]\nname = \"tank 2\"\nlevel = \"70 m\"\n";
+  const std::string pump =
+      "[[pump]]\nname = \"p\"\nfrom = \"tank\"\nto = \"tank 2\"\ncurve = [[\"0 L/s\", \"40 m\"], [\"60 L/s\", \"30 "
+      "m\"]]\n[[basin]]\nname = \"tank 2\"\nlevel = \"70 m\"\n";
   const auto with = [&](const std::string& inertia) {
     std::string text = frame + valve + pump;
     text.insert(text.find("curve"), inertia + "\n");
@@ -99,7 +107,9 @@ TEST(Read, InertiaByItsLabel) {
   };
   EXPECT_EQ(with("inertia_mr2 = \"60 kg m2\"").inertia.value, 60.0);
   EXPECT_EQ(with("inertia_gd2 = \"240 kg m2 ± 40 kg m2\"").inertia.value, 60.0);
-  EXPECT_NEAR(std::get<base::Normal>(with("inertia_gd2 = \"240 kg m2 ± 40 kg m2\"").inertia.spread).standard_deviation, 10.0 / 1.959963984540054, 1e-14);
+  EXPECT_NEAR(std::get<base::Normal>(with("inertia_gd2 = \"240 kg m2 ± 40 kg m2\"").inertia.spread).standard_deviation,
+              10.0 / 1.959963984540054,
+              1e-14);
   EXPECT_NEAR(with("inertia_wr2 = \"100 lb ft2\"").inertia.value, 4.21401100938048, 1e-13);
 }
 
@@ -163,7 +173,9 @@ where = "main @ 400 m"
 }
 
 TEST(Read, WeightedChoicesKeepFileOrder) {
-  const Case c = sound(frame + valve + "[friction]\nlaws = { \"smooth\" = 0.2, \"haaland\" = 0.5, \"churchill\" = 0.3 }\ntransitions = { \"switch 2300\" = 1, \"blend 2000 4000\" = 2 }\n");
+  const Case c = sound(frame + valve +
+                       "[friction]\nlaws = { \"smooth\" = 0.2, \"haaland\" = 0.5, \"churchill\" = 0.3 }\ntransitions = "
+                       "{ \"switch 2300\" = 1, \"blend 2000 4000\" = 2 }\n");
   ASSERT_EQ(c.friction.law.options.size(), 3U);
   EXPECT_EQ(c.friction.law.options[0].choice, network::FrictionLaw::smooth);
   EXPECT_EQ(c.friction.law.central(), network::FrictionLaw::haaland);
@@ -177,7 +189,8 @@ TEST(Read, TablesFromFilesBesideTheCase) {
   std::ofstream(folder / "profile.csv") << "\xEF\xBB\xBF# survey\nchainage [km];level [m]\n0;20\n0.4;35.5\n0.8;10\n";
   std::ofstream(folder / "tide.csv") << "level [ft],time [h]\n100,0\n110,6\n";  // swapped: the units tell
   std::string text = frame + valve;
-  text.replace(text.find("[[\"0 m\""), std::string(R"([["0 m", "20 m"], ["800 m", "10 m ± 1 m"]])").size(), "\"profile.csv\"");
+  text.replace(
+      text.find("[[\"0 m\""), std::string(R"([["0 m", "20 m"], ["800 m", "10 m ± 1 m"]])").size(), "\"profile.csv\"");
   text.replace(text.find("level = \"60 m\""), 14, "level_table = \"tide.csv\"");
   const Reading r = read_text("c", text, folder.string());
   ASSERT_TRUE(r.problems.empty()) << problems_text("c", text, r.problems);
@@ -193,7 +206,8 @@ TEST(Read, GradesGiveDefaultSpreads) {
   std::string text = frame + valve;
   text.replace(text.find("\"6.3 mm\""), 8, "{ value = \"6.3 mm\", grade = \"C\" }");
   const Case c = sound(text);
-  EXPECT_NEAR(std::get<base::Normal>(c.pipes[0].wall.spread).standard_deviation, 0.12 * 0.0063 / 1.959963984540054, 1e-12);
+  EXPECT_NEAR(
+      std::get<base::Normal>(c.pipes[0].wall.spread).standard_deviation, 0.12 * 0.0063 / 1.959963984540054, 1e-12);
   EXPECT_NE(c.pipes[0].wall.source.find("default for grade C"), std::string::npos);
   EXPECT_EQ(c.pipes[0].roughness.source, "survey");  // a spread of its own keeps it
 }
@@ -241,7 +255,9 @@ TEST(Read, StartersAreSound) {
 }
 
 TEST(Read, RefusedByVerbNamesWhatIsMissing) {
-  const std::string vessel = "[[air_vessel]]\nname = \"vessel\"\nat = \"chamber\"\ngas_volume = \"2 m3\"\nexponent = 1.2\n[surge]\nduration = \"20 s\"\n";
+  const std::string vessel =
+      "[[air_vessel]]\nname = \"vessel\"\nat = \"chamber\"\ngas_volume = \"2 m3\"\nexponent = 1.2\n[surge]\nduration = "
+      "\"20 s\"\n";
   const Case c = sound(frame + valve + vessel);
   EXPECT_TRUE(refused_by_verb(c, "flow").empty());
   const base::Problems refused = refused_by_verb(c, "surge");
@@ -260,7 +276,8 @@ TEST(Read, EchoShowsEveryValueInBothFamilies) {
     EXPECT_FALSE(v.shown_si.empty()) << v.path;
     EXPECT_FALSE(v.shown_us.empty()) << v.path;
   }
-  const auto wall = std::find_if(values.begin(), values.end(), [](const auto& v) { return v.path == "pipe/main/wall"; });
+  const auto wall =
+      std::find_if(values.begin(), values.end(), [](const auto& v) { return v.path == "pipe/main/wall"; });
   ASSERT_NE(wall, values.end());
   EXPECT_EQ(wall->written, "6.3 mm");
   EXPECT_EQ(wall->shown_si, "6.3 mm");
@@ -289,17 +306,21 @@ highest_pressure = "12 bar g"
   const Case c = sound(text);
   ASSERT_GE(c.unknowns.size(), 4U);
   std::vector<double> scores;
-  for (std::size_t i = 0; i < c.unknowns.size(); ++i) scores.push_back(std::fmod(0.137 + 0.618033988749895 * static_cast<double>(i), 1.0));
+  for (std::size_t i = 0; i < c.unknowns.size(); ++i)
+    scores.push_back(std::fmod(0.137 + 0.618033988749895 * static_cast<double>(i), 1.0));
   const std::string written = write_case(c, scores, "draw 1");
   const Reading again = read_text("draw.toml", written, "");
   ASSERT_TRUE(again.problems.empty()) << problems_text("draw.toml", written, again.problems) << written;
   EXPECT_TRUE(again.value.unknowns.empty());
-  const auto drawn = [&](const base::Quantity& q) { return base::value<1>(q, base::Lanes<1>(scores[static_cast<std::size_t>(q.unknown)]))[0]; };
+  const auto drawn = [&](const base::Quantity& q) {
+    return base::value<1>(q, base::Lanes<1>(scores[static_cast<std::size_t>(q.unknown)]))[0];
+  };
   EXPECT_EQ(again.value.pipes[0].roughness.value, drawn(c.pipes[0].roughness));
   EXPECT_EQ(again.value.pipes[0].profile[1].second.value, drawn(c.pipes[0].profile[1].second));
   EXPECT_EQ(again.value.events[0].over.value, drawn(c.events[0].over));
   EXPECT_EQ(again.value.friction.scatter.value, drawn(c.friction.scatter));
-  EXPECT_EQ(again.value.friction.law.central(), c.friction.law.at(scores[static_cast<std::size_t>(c.friction.law.unknown)]));
+  EXPECT_EQ(again.value.friction.law.central(),
+            c.friction.law.at(scores[static_cast<std::size_t>(c.friction.law.unknown)]));
   // Written again, the plain case is the same text but for the note.
   EXPECT_EQ(write_case(again.value, {}, ""), written);
 }
@@ -314,9 +335,15 @@ TEST(Read, MissingFileIsAnIoError) {
 }
 
 TEST(Read, OddTextsNeverThrow) {
-  for (const std::string& text : {std::string(), std::string("\0\0", 2), std::string("\xff\xfe"), std::string("[liquid]\nname = 3"), std::string("pipe = 3\nvalve = [1, 2]\nevent = \"x\""),
-                                 std::string("[[pipe]]\n[[pipe]]\n[[valve]]\n[[event]]\n[[limit]]\n[[basin]]\n[[pump]]\n[[relief]]"), std::string("[band]\nanswers = 3\n[together]\nx = []"),
-                                 std::string("[show]\nplaces = [[1], {}, \"@\", \"a @\"]\n[friction]\nlaws = {}\ntransitions = 4")}) {
+  for (const std::string& text :
+       {std::string(),
+        std::string("\0\0", 2),
+        std::string("\xff\xfe"),
+        std::string("[liquid]\nname = 3"),
+        std::string("pipe = 3\nvalve = [1, 2]\nevent = \"x\""),
+        std::string("[[pipe]]\n[[pipe]]\n[[valve]]\n[[event]]\n[[limit]]\n[[basin]]\n[[pump]]\n[[relief]]"),
+        std::string("[band]\nanswers = 3\n[together]\nx = []"),
+        std::string("[show]\nplaces = [[1], {}, \"@\", \"a @\"]\n[friction]\nlaws = {}\ntransitions = 4")}) {
     const Reading r = read_text("odd.toml", text, "");
     EXPECT_FALSE(r.problems.empty());
     (void)problems_text("odd.toml", text, r.problems);
