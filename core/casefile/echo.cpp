@@ -1,8 +1,8 @@
 // SPDX-License-Identifier: MIT
 #include "core/base/units.hpp"
 #include "core/casefile/choice_words.hpp"
-#include "core/casefile/quantity_text.hpp"
 #include "core/casefile/read.hpp"
+#include "core/casefile/spread_words.hpp"
 
 #include <fmt/format.h>
 
@@ -62,6 +62,7 @@ class Echoes {
  private:
   static std::string words(const Quantity& q, base::UnitFamily family) {
     std::string text = base::shown(q.value, q.dimension, family, q.gauge);
+    if (family == base::UnitFamily::si) return text;  // `spread` holds the rest
     const std::string spread = words_of_spread(q, family);
     if (!spread.empty()) text.append(", ").append(spread);
     return text;

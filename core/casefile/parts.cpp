@@ -177,4 +177,23 @@ network::Spot read_spot(Context& context, const toml::node& node, const std::str
   return spot;
 }
 
+namespace {
+// By the exact definitions of the pound, standard gravity and the inch.
+constexpr double bar_per_psi = 0.45359237 * 9.80665 / 6.4516e-4 / 1.0e5;
+}  // namespace
+
+// Kv and Cv by one key each; both at once is a question.
+Quantity read_flow_coefficient(Section& section) {
+  Quantity kv = section.quantity("kv");
+  if (!section.has("cv")) return kv;
+  if (section.has("kv")) {
+    section.report("cv", "kv and cv are both given", "one of them", "leave one out; Cv = 1.156 Kv");
+    return kv;
+  }
+  Quantity cv = section.quantity("cv");
+  // Q = Cv sqrt(dp/psi) gpm = Kv sqrt(dp/bar) m3/h: both are held as the flow in m3/s at 1 bar.
+  if (cv.given()) scale(cv, 1.0 / std::sqrt(bar_per_psi));
+  return cv;
+}
+
 }  // namespace headband::casefile

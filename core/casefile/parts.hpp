@@ -36,6 +36,9 @@ class Root {
 /// All of a spread times a factor above 0 (cv to kv, GD2 to I).
 void scale(Quantity& quantity, double factor);
 
+/// Kv by `kv` or `cv`, held as the flow in m3/s at 1 bar; both at once is a problem.
+[[nodiscard]] Quantity read_flow_coefficient(Section& section);
+
 /// A place, a pipe or "PIPE @ CHAINAGE"; `on_pipe` is settled once all pipes are known.
 [[nodiscard]] network::Spot read_spot(Context& context, const toml::node& node, const std::string& path);
 

@@ -34,7 +34,4 @@ struct ParsedQuantity {
 /// What is wrong with a value [SI] that is outside the physical limits of `rule`; nothing when it is inside.
 [[nodiscard]] std::optional<TextProblem> outside_limits(double value, const KeyRule& rule);
 
-/// A spread in words, "95 % within ± 3 mm".
-[[nodiscard]] std::string words_of_spread(const base::Quantity& quantity, base::UnitFamily family);
-
 }  // namespace headband::casefile

@@ -173,6 +173,7 @@ vapour_pressure = "1 psi abs"
 [[basin]]
 name = "depot"
 level = "0 ft"
+surface_pressure = "420 psi g"     # what the pump holds at the line's beginning
 
 [[pipe]]
 name = "line"

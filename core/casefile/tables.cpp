@@ -190,6 +190,22 @@ network::Table read_table(Section& section,
   return table;
 }
 
+void check_rising(Section& section, std::string_view key, network::Table& table) {
+  for (std::size_t i = 1; i < table.rows.size(); ++i) {
+    const auto& [left, right] = table.rows[i];
+    if (left.value > table.rows[i - 1].first.value) continue;
+    section.context().report(left.place,
+                             left.path,
+                             fmt::format("the first column of `{}` does not rise from row to row", key),
+                             left.written,
+                             "above " + table.rows[i - 1].first.written,
+                             "sort the rows");
+    table.rows.clear();
+    return;
+  }
+  if (table.rows.size() == 1) section.report(key, "the table has one row", "at least two points", "add the others");
+}
+
 ThreeColumns read_three_columns(Section& section, std::string_view key) {
   ThreeColumns table;
   const toml::node* node = section.ask(key);

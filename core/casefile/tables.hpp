@@ -18,6 +18,9 @@ namespace headband::casefile {
                                         std::string_view first,
                                         std::string_view second);
 
+/// Reports a table of one row, or whose first column does not rise, and empties it.
+void check_rising(Section& section, std::string_view key, network::Table& table);
+
 /// Three plain numbers a row (no units), for a four-quadrant table.
 struct ThreeColumns {
   std::vector<double> first, second, third;
