@@ -64,20 +64,22 @@ template <int W>
 HEADBAND_INLINE Lanes<W> quantile_of_tails(const Lanes<W>& below, const Lanes<W>& above, const Lanes<W>& middle) {
   const Lanes<W> r = 0.180625 - middle * middle;
   const Mask<W> central = abs(middle) <= 0.425;
-  Lanes<W> z = middle * polynomial(central_over, r) / polynomial(central_under, r);
+  Lanes<W> over = middle * polynomial(central_over, r), under = polynomial(central_under, r);
   if (!all(central)) {
     const Lanes<W> tail = min(below, above);
     const Lanes<W> root = sqrt(-log(tail));
     const Lanes<W> t = root - 1.6;
-    Lanes<W> size = polynomial(tail_over, t) / polynomial(tail_under, t);
+    Lanes<W> size_over = polynomial(tail_over, t), size_under = polynomial(tail_under, t);
     const Mask<W> far = root > 5.0;
     if (any(far)) {
       const Lanes<W> u = root - 5.0;
-      size = select(far, polynomial(far_over, u) / polynomial(far_under, u), size);
+      size_over = select(far, polynomial(far_over, u), size_over);
+      size_under = select(far, polynomial(far_under, u), size_under);
     }
-    z = select(central, z, select(middle < Lanes<W>(0.0), -size, size));
+    over = select(central, over, select(middle < Lanes<W>(0.0), -size_over, size_over));
+    under = select(central, under, size_under);
   }
-  return z;
+  return over / under;
 }
 
 /// 1e-33 is under the last place of every score: a cut further out than this changes nothing.

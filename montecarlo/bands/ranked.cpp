@@ -3,54 +3,86 @@
 
 #include <algorithm>
 #include <cmath>
-#include <cstdint>
 #include <limits>
 #include <utility>
 
 namespace headband::montecarlo {
 
 namespace {
-constexpr std::size_t worth_dealing = 2048;   ///< fewer numbers are sorted at once
-constexpr std::size_t numbers_a_bucket = 256;
+constexpr std::size_t worth_binning = 2048;  ///< fewer numbers are sorted at once
+constexpr std::size_t numbers_a_bin = 128;
+constexpr std::size_t most_bins = 8192;
 }  // namespace
 
 Ranked::Ranked(std::vector<double> numbers) : numbers_(std::move(numbers)) {
-  if (numbers_.size() < worth_dealing) {
-    std::sort(numbers_.begin(), numbers_.end());
+  const auto sort_all = [this] { std::sort(numbers_.begin(), numbers_.end()); };
+  if (numbers_.size() < worth_binning) {
+    sort_all();
     return;
   }
-  const auto [least, most] = std::minmax_element(numbers_.begin(), numbers_.end());
-  const double low = *least, width = *most - low;
-  const std::size_t buckets = std::min<std::size_t>(numbers_.size() / numbers_a_bucket, 16384);
-  const double scale = width > 0.0 ? static_cast<double>(buckets) / width : 0.0;
+  double low = numbers_.front(), high = low;
+  for (const double x : numbers_) {
+    low = x < low ? x : low;
+    high = x > high ? x : high;
+  }
+  const std::size_t bins = std::min(numbers_.size() / numbers_a_bin, most_bins);
+  const double scale = static_cast<double>(bins) / (high - low);
   if (!std::isfinite(scale) || scale == 0.0) {
-    std::sort(numbers_.begin(), numbers_.end());
+    sort_all();
     return;
   }
-  const auto bucket_of = [&](double x) {
-    return std::min(static_cast<std::size_t>(static_cast<std::int64_t>((x - low) * scale)), buckets - 1);
-  };
-  first_.assign(buckets + 1, 0);
-  for (const double x : numbers_) ++first_[bucket_of(x) + 1];
-  for (std::size_t b = 0; b < buckets; ++b) first_[b + 1] += first_[b];
-  std::vector<std::size_t> next(first_.begin(), first_.end() - 1);
-  std::vector<double> dealt(numbers_.size());
-  for (const double x : numbers_) dealt[next[bucket_of(x)]++] = x;
-  numbers_ = std::move(dealt);
-  sorted_.assign(buckets, false);
+  low_ = low;
+  scale_ = scale;
+  first_.assign(bins + 1, 0);
+  sorted_.resize(bins);
+  for (const double x : numbers_) ++first_[bin_of(x) + 1];
+  for (std::size_t b = 0; b < bins; ++b) first_[b + 1] += first_[b];
+}
+
+std::size_t Ranked::bin_of(double x) const {
+  return std::min(static_cast<std::size_t>(static_cast<std::int64_t>((x - low_) * scale_)), sorted_.size() - 1);
+}
+
+std::size_t Ranked::bin_of_rank(std::size_t rank) const {
+  return static_cast<std::size_t>(std::upper_bound(first_.begin(), first_.end(), rank) - first_.begin()) - 1;
+}
+
+void Ranked::gather(const std::vector<std::size_t>& bins) const {
+  std::vector<char> wanted(sorted_.size(), 0);
+  bool any = false;
+  for (const std::size_t bin : bins) {
+    if (!sorted_[bin].empty()) continue;
+    sorted_[bin].reserve(first_[bin + 1] - first_[bin]);
+    wanted[bin] = 1;
+    any = true;
+  }
+  if (!any) return;
+  for (const double x : numbers_) {
+    const std::size_t bin = bin_of(x);
+    if (wanted[bin] != 0) sorted_[bin].push_back(x);
+  }
+  for (const std::size_t bin : bins) std::sort(sorted_[bin].begin(), sorted_[bin].end());
+}
+
+void Ranked::announce(std::span<const double> places) const {
+  if (first_.empty()) return;
+  std::vector<std::size_t> bins;
+  for (const double place : places) {
+    if (!(place >= 0.0)) continue;
+    const std::size_t below = std::min(static_cast<std::size_t>(place), size() - 1);
+    bins.push_back(bin_of_rank(below));
+    bins.push_back(bin_of_rank(std::min(below + 1, size() - 1)));
+  }
+  std::sort(bins.begin(), bins.end());
+  bins.erase(std::unique(bins.begin(), bins.end()), bins.end());
+  gather(bins);
 }
 
 double Ranked::at(std::size_t rank) const {
-  if (!first_.empty()) {
-    const auto behind = std::upper_bound(first_.begin(), first_.end(), rank);
-    const auto bucket = static_cast<std::size_t>(behind - first_.begin()) - 1;
-    if (!sorted_[bucket]) {
-      std::sort(numbers_.begin() + static_cast<std::ptrdiff_t>(first_[bucket]),
-                numbers_.begin() + static_cast<std::ptrdiff_t>(first_[bucket + 1]));
-      sorted_[bucket] = true;
-    }
-  }
-  return numbers_[rank];
+  if (first_.empty()) return numbers_[rank];
+  const std::size_t bin = bin_of_rank(rank);
+  gather({bin});
+  return sorted_[bin][rank - first_[bin]];
 }
 
 double Ranked::at_place(double place) const {
@@ -60,9 +92,12 @@ double Ranked::at_place(double place) const {
   return number + share * (at(above) - number);
 }
 
+double Ranked::place_of(double probability) const {
+  return std::clamp(probability, 0.0, 1.0) * static_cast<double>(std::max<std::size_t>(size(), 1) - 1);
+}
+
 double Ranked::quantile(double probability) const {
-  if (empty()) return std::numeric_limits<double>::quiet_NaN();
-  return at_place(std::clamp(probability, 0.0, 1.0) * static_cast<double>(size() - 1));
+  return empty() ? std::numeric_limits<double>::quiet_NaN() : at_place(place_of(probability));
 }
 
 }  // namespace headband::montecarlo

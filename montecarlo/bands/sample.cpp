@@ -2,6 +2,7 @@
 #include "montecarlo/bands/sample.hpp"
 
 #include <algorithm>
+#include <array>
 #include <boost/math/distributions/students_t.hpp>
 #include <cmath>
 #include <numbers>
@@ -13,11 +14,11 @@ namespace {
 
 /// Gaussian kernel estimate of the density on an even grid: counts in fine bins, then a convolution.
 std::vector<double> density(const std::vector<double>& numbers, double low, double high, double width, int bins) {
-  const double step = (high - low) / bins;
+  const double step = (high - low) / bins, per_step = 1.0 / step;
   std::vector<double> count(static_cast<std::size_t>(bins), 0.0);
   for (const double x : numbers) {
     if (x < low || x > high) continue;
-    const int bin = std::clamp(static_cast<int>((x - low) / step), 0, bins - 1);
+    const int bin = std::min(static_cast<int>((x - low) * per_step), bins - 1);
     count[static_cast<std::size_t>(bin)] += 1.0;
   }
   const int reach = std::min(bins, static_cast<int>(std::ceil(5.0 * width / step)));
@@ -57,9 +58,12 @@ Sample::Sample(std::span<const double> values, std::span<const std::int8_t> stat
   std::vector<std::vector<double>> parts(replicates > 1 ? replicates : 0);
   for (auto& part : parts) part.reserve(values.size() / replicates + 1);
   for (std::size_t i = 0; i < values.size(); ++i) {
-    if (status[i] != 0 || std::isnan(values[i])) continue;
-    finished.push_back(values[i]);
-    if (replicates > 1) parts[i % replicates].push_back(values[i]);
+    if (status[i] == 0 && !std::isnan(values[i])) finished.push_back(values[i]);
+  }
+  for (std::size_t r = 0; r < parts.size(); ++r) {
+    for (std::size_t i = r; i < values.size(); i += replicates) {
+      if (status[i] == 0 && !std::isnan(values[i])) parts[r].push_back(values[i]);
+    }
   }
   if (finished.empty()) return;
   // in draw order and about a pivot: no digits lost, the same bits for any threads
@@ -83,35 +87,68 @@ Sample::Sample(std::span<const double> values, std::span<const std::int8_t> stat
   for (auto& part : parts) replicate_.emplace_back(std::move(part));
 }
 
+bool Sample::replicated() const {
+  return !replicate_.empty() && std::ranges::all_of(replicate_, [](const auto& r) { return r.size() >= 2; });
+}
+
+Sample::Places Sample::places_of(double probability) const {
+  Places places{ranked_.place_of(probability), -1.0, -1.0};
+  const auto all = static_cast<double>(draws_), good = static_cast<double>(finished());
+  if (replicated()) {
+    // a stratified sample puts the quantile at place n p - 1/2 (from 0); half a draw each way is its own coarseness
+    places.lower = std::min(places.value, probability * all - (all - good) - 1.0);
+    const double upper = std::max(places.value, probability * all);
+    if (upper <= good - 1.0) places.upper = upper;
+  } else {
+    const Ranks ranks = quantile_ranks(draws_, probability, shape_.confidence);
+    places.lower = static_cast<double>(ranks.lower - failed() - 1);
+    if (ranks.upper <= finished()) places.upper = static_cast<double>(ranks.upper - 1);
+  }
+  return places;
+}
+
 answers::QuantileAnswer Sample::quantile(double probability) const {
   answers::QuantileAnswer q;
   q.probability = probability;
   if (ranked_.empty()) return q;
-  q.value = ranked_.quantile(probability);
-  const bool usable = std::ranges::all_of(replicate_, [](const auto& r) { return r.size() >= 2; });
-  if (replicate_.empty() || !usable) {
-    const Ranks ranks = quantile_ranks(draws_, probability, shape_.confidence);
-    const long long lower = ranks.lower - failed();
-    if (lower >= 1) q.lower = ranked_.at(static_cast<std::size_t>(lower - 1));
-    if (ranks.upper <= finished()) q.upper = ranked_.at(static_cast<std::size_t>(ranks.upper - 1));
-    return q;
+  const Places places = places_of(probability);
+  ranked_.announce(std::array{places.value, places.lower, places.upper});
+  q.value = ranked_.at_place(places.value);
+  double half = 0.0;
+  if (replicated()) {
+    const auto replicates = static_cast<double>(replicate_.size());
+    double sum = 0.0, squares = 0.0;
+    for (const auto& r : replicate_) sum += r.quantile(probability) - q.value;
+    for (const auto& r : replicate_) {
+      const double off = r.quantile(probability) - q.value - sum / replicates;
+      squares += off * off;
+    }
+    const boost::math::students_t student(replicates - 1.0);
+    half = boost::math::quantile(student, 0.5 * (1.0 + shape_.confidence)) *
+           std::sqrt(squares / (replicates - 1.0) / replicates);
   }
-  const auto replicates = static_cast<double>(replicate_.size());
-  double sum = 0.0, squares = 0.0;
-  for (const auto& r : replicate_) sum += r.quantile(probability) - q.value;
-  for (const auto& r : replicate_) {
-    const double off = r.quantile(probability) - q.value - sum / replicates;
-    squares += off * off;
-  }
-  const boost::math::students_t student(replicates - 1.0);
-  const double half = boost::math::quantile(student, 0.5 * (1.0 + shape_.confidence)) *
-                      std::sqrt(squares / (replicates - 1.0) / replicates);
-  const auto all = static_cast<double>(draws_), good = static_cast<double>(finished());
-  // a stratified sample puts the quantile at place n p - 1/2 (from 0); half a draw each way is its own coarseness
-  const double lowest = probability * all - (all - good) - 1.0, highest = probability * all;
-  if (lowest >= 0.0) q.lower = std::min(q.value, ranked_.at_place(lowest)) - half;
-  if (highest <= good - 1.0) q.upper = std::max(q.value, ranked_.at_place(highest)) + half;
+  if (places.lower >= 0.0) q.lower = ranked_.at_place(places.lower) - half;
+  if (places.upper >= 0.0) q.upper = ranked_.at_place(places.upper) + half;
   return q;
+}
+
+std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> probabilities) const {
+  std::vector<double> wanted;
+  for (const double p : probabilities) {
+    if (ranked_.empty()) break;
+    const Places places = places_of(p);
+    wanted.insert(wanted.end(), {places.value, places.lower, places.upper});
+  }
+  ranked_.announce(wanted);
+  for (const auto& r : replicate_) {
+    if (!replicated()) break;
+    wanted.clear();
+    for (const double p : probabilities) wanted.push_back(r.place_of(p));
+    r.announce(wanted);
+  }
+  std::vector<answers::QuantileAnswer> answers;
+  for (const double p : probabilities) answers.push_back(quantile(p));
+  return answers;
 }
 
 int Sample::modes() const {

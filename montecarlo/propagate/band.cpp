@@ -215,7 +215,7 @@ class BandRun {
       if (computed_[i] < central_.answer_value.size()) answer.central = central_.answer_value[computed_[i]];
       answer.mean = sample.mean();
       answer.standard_deviation = sample.standard_deviation();
-      for (const double p : asked_probabilities(case_.band.coverage)) answer.quantiles.push_back(sample.quantile(p));
+      answer.quantiles = sample.quantiles(asked_probabilities(case_.band.coverage));
       answer.modes = sample.modes();
       answer.draws = sample.draws();
       answer.failed = sample.failed();
@@ -258,7 +258,8 @@ class BandRun {
         const auto& column = highest ? table_.head_max[s] : table_.head_min[s];
         const std::span<const std::int8_t> status(table_.status.data(), column.size());
         const Sample sample(column, status, {});
-        for (std::size_t p = 0; p < 3; ++p) out[p * stations_.size() + s] = sample.quantile(bands.profile_probability[p]).value;
+        const auto quantiles = sample.quantiles(bands.profile_probability);
+        for (std::size_t p = 0; p < 3; ++p) out[p * stations_.size() + s] = quantiles[p].value;
       }
     }
     if (static_cast<long long>(table_.head_max.front().size()) < draws_) {
