@@ -1,0 +1,289 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/propagate/band.hpp"
+
+#include "core/base/error.hpp"
+#include "core/casefile/read.hpp"
+#include "core/steady/evaluate.hpp"
+#include "montecarlo/bands/counts.hpp"
+
+#include <gtest/gtest.h>
+
+#include <algorithm>
+#include <atomic>
+#include <chrono>
+#include <cmath>
+#include <string>
+#include <thread>
+
+namespace headband::montecarlo {
+namespace {
+
+/// A main whose flow is known; invented. Words replace the lines marked so.
+std::string words(const std::string& band, const std::string& more = "") {
+  return R"(
+[liquid]
+name = "test oil"
+density = "850 kg/m3"
+viscosity = "10 cSt ± 20 %"
+[[basin]]
+name = "source"
+level = "400 m"
+[[place]]
+name = "end"
+elevation = "0 m"
+[[pipe]]
+name = "main"
+from = "source"
+to = "end"
+length = "10000 m"
+bore = "500 mm ± 1 %"
+roughness = "0.05 mm x/ 1.2"
+[[draw_off]]
+name = "use"
+at = "end"
+flow = "250 L/s"
+[friction]
+scatter = "± 10 %"
+[surge]
+duration = "1 s"
+cavities = "off"
+[band]
+answers = [{ pressure_drop = ["end", "source"], name = "rise" }, { head = "end", name = "head at the end" }]
+)" + band + "\n" + more;
+}
+
+struct Ready {
+  network::Case c;
+  network::Plan plan;
+  CentralRun central;
+};
+
+Ready ready(const std::string& text) {
+  auto reading = casefile::read_text("case.toml", text, ".");
+  for (const auto& p : reading.problems) ADD_FAILURE() << p.path << ": " << p.what << " " << p.hint;
+  Ready r{.c = std::move(reading.value), .plan = {}, .central = {}};
+  r.plan = network::make_plan(r.c);
+  const auto values = network::realise(r.c, r.plan);
+  steady::SteadySolver solver(r.c, r.plan);
+  steady::SteadyState<1> state;
+  solver.solve<1>(values, state);
+  for (const auto& a : r.plan.answers) r.central.answer_value.push_back(steady::answer<1>(r.plan, values, state, a).number);
+  for (const auto& l : r.plan.limits) r.central.limit_value.push_back(steady::answer<1>(r.plan, values, state, l.subject).number);
+  r.central.answer_grid_bound.assign(r.plan.answers.size(), 0.0);
+  r.central.limit_grid_bound.assign(r.plan.limits.size(), 0.0);
+  return r;
+}
+
+BandOutcome band(const Ready& r, BandOptions options = {}) { return run_band(r.c, r.plan, r.central, options); }
+
+bool says(const std::vector<std::string>& list, const std::string& part) {
+  return std::ranges::any_of(list, [&](const std::string& s) { return s.find(part) != std::string::npos; });
+}
+
+const char* const head_limit = "[[limit]]\nname = \"head\"\nhead = \"end\"\nnot_under = \"365 m\"\n";
+
+TEST(Band, AnswersHoldTogether) {
+  const Ready r = ready(words("draws = 4096\nseed = 5", std::string(head_limit) + "at_most = \"30 %\"\n"));
+  const BandOutcome out = band(r);
+  ASSERT_EQ(out.bands.answers.size(), 2U);
+  EXPECT_EQ(out.bands.draws, 4096);
+  EXPECT_EQ(out.bands.failed, 0);
+  EXPECT_TRUE(out.warnings.empty());
+  const auto& rise = out.bands.answers[0];
+  EXPECT_EQ(rise.kind, "pressure_drop");
+  EXPECT_EQ(rise.unit, "Pa");
+  ASSERT_EQ(rise.quantiles.size(), 5U);
+  for (const auto& q : rise.quantiles) {
+    EXPECT_LE(q.lower, q.value);
+    EXPECT_GE(q.upper, q.value);
+  }
+  EXPECT_EQ(rise.modes, 1);
+  // input and output rows agree with the draw alone: head at the end by the same physics
+  ASSERT_EQ(out.bands.input_name, (std::vector<std::string>{"liquid viscosity", "main bore", "main roughness", "friction scatter"}));
+  ASSERT_EQ(out.bands.output_value.size(), 2U * 4096U);
+  ASSERT_EQ(out.bands.input_value.size(), 4U * 4096U);
+  for (const long long draw : {0LL, 17LL, 4095LL}) {
+    const auto scores = scores_of_draw(r.c, 5, 4096, draw);
+    network::Scores<1> lanes;
+    for (const double s : scores) lanes.emplace_back(s);
+    network::Values<1> values;
+    network::realise<1>(r.c, r.plan, lanes, values);
+    steady::SteadySolver solver(r.c, r.plan);
+    steady::SteadyState<1> state;
+    solver.solve<1>(values, state);
+    const auto i = static_cast<std::size_t>(draw);
+    EXPECT_EQ(out.bands.output_value[2 * i + 1], steady::answer<1>(r.plan, values, state, r.plan.answers[1]).number);
+    EXPECT_EQ(out.bands.input_value[4 * i + 1], values.pipes[0].bore.number);
+    EXPECT_EQ(out.bands.input_value[4 * i + 3], values.pipes[0].friction_scatter.number);
+  }
+  // the limit's numbers are the counts of those rows
+  long long broken = 0;
+  for (std::size_t i = 0; i < 4096; ++i) broken += out.bands.output_value[2 * i + 1] < 365.0 ? 1 : 0;
+  ASSERT_EQ(out.limits.size(), 1U);
+  EXPECT_DOUBLE_EQ(out.limits[0].probability, static_cast<double>(broken) / 4096.0);
+  EXPECT_DOUBLE_EQ(out.limits[0].probability_upper, probability_at_most(broken, 4096, 0.95));
+  EXPECT_DOUBLE_EQ(out.limits[0].probability_lower, probability_at_least(broken, 4096, 0.95));
+}
+
+TEST(Band, BudgetAndSharesAddUp) {
+  const Ready r = ready(words("draws = 4096\nseed = 5"));
+  const auto out = band(r);
+  const auto& a = out.bands.answers[0];
+  // nearly a product of independent factors: the groups' variances add up, and so do the first-order shares
+  EXPECT_NEAR(std::hypot(a.budget_inputs, a.budget_friction_law) / a.standard_deviation, 1.0, 0.02);
+  double first = 0.0;
+  for (const auto& s : a.sensitivity) first += s.first;
+  EXPECT_NEAR(first, 1.0, 0.03);
+  EXPECT_EQ(a.budget_draws, 4096);
+  EXPECT_EQ(a.budget_grid, 0.0);
+  EXPECT_GT(a.budget_sampling, 0.0);
+  const auto scatter = std::ranges::find(a.sensitivity, "friction scatter", &answers::SensitivityAnswer::input);
+  EXPECT_NEAR(scatter->first, std::pow(a.budget_friction_law / a.standard_deviation, 2.0), 0.02);
+}
+
+TEST(Band, BitsDoNotDependOnThreads) {
+  for (const auto* design : {"plain", "latin hypercube", "sobol"}) {
+    const Ready r = ready(words("draws = 512\nseed = 5\ndesign = \"" + std::string(design) + "\""));
+    const auto one = band(r, {.threads = 1});
+    for (const int threads : {2, 3}) {
+      const auto more = band(r, {.threads = threads});
+      EXPECT_EQ(one.bands.output_value, more.bands.output_value);
+      EXPECT_EQ(one.bands.input_value, more.bands.input_value);
+      EXPECT_EQ(one.bands.answers[0].standard_deviation, more.bands.answers[0].standard_deviation);
+      EXPECT_EQ(one.bands.answers[0].quantiles[0].lower, more.bands.answers[0].quantiles[0].lower);
+      EXPECT_EQ(one.bands.answers[0].sensitivity[2].total, more.bands.answers[0].sensitivity[2].total);
+    }
+  }
+}
+
+TEST(Band, StoppedRunIsTakenUpToTheSameBits) {
+  const Ready r = ready(words("draws = 65536\nseed = 9", head_limit));
+  const auto whole = band(r);
+  std::atomic<bool> stop{true};
+  const auto none = band(r, {.stop = &stop});
+  EXPECT_TRUE(none.stopped);
+  EXPECT_EQ(none.bands.draws, 0);
+  // a stop that comes in the middle, wherever it falls
+  BandOptions stopping{.threads = 2, .stop = &stop};
+  stop = false;
+  stopping.checkpoint = {};
+  std::jthread later([&] {
+    std::this_thread::sleep_for(std::chrono::milliseconds(3));
+    stop = true;
+  });
+  auto half = band(r, stopping);
+  later.join();
+  BandOptions resuming{.threads = 2};
+  if (half.stopped) {
+    EXPECT_EQ(half.bands.stride, 1);
+    EXPECT_EQ(half.bands.run_status.size(), static_cast<std::size_t>(half.bands.draws));
+    resuming.resumed = half.bands;
+  } else {  // the machine was faster than the stop: take up a part of the whole all the same
+    resuming.resumed = whole.bands;
+  }
+  // cut to an odd number of draws, as if the file held them
+  auto& part = *resuming.resumed;
+  const std::size_t kept = std::min<std::size_t>(part.run_status.size(), 10011);
+  part.run_status.resize(kept);
+  part.output_value.resize(2 * kept);
+  part.limit_value.resize(kept);
+  const auto resumed = band(r, resuming);
+  EXPECT_FALSE(resumed.stopped);
+  EXPECT_EQ(resumed.bands.output_value, whole.bands.output_value);
+  EXPECT_EQ(resumed.bands.answers[1].quantiles[4].value, whole.bands.answers[1].quantiles[4].value);
+  EXPECT_EQ(resumed.limits[0].probability, whole.limits[0].probability);
+}
+
+TEST(Band, DrawsAreRoundedUpAloud) {
+  const auto out = band(ready(words("draws = 2000")));
+  EXPECT_EQ(out.bands.draws, 2048);
+  EXPECT_EQ(out.bands.draws_asked, 2000);
+  EXPECT_TRUE(says(out.warnings, "2000 rounded up to 2048"));
+  EXPECT_EQ(band(ready(words("draws = 100\ndesign = \"plain\""))).bands.draws, 100);
+}
+
+TEST(Band, UntilStopsWhereTheBandIsKnown) {
+  const Ready r = ready(words("until = \"2 % of the band\"\nseed = 3"));
+  const auto out = band(r);
+  EXPECT_GE(out.bands.draws, 256);
+  EXPECT_LT(out.bands.draws, 1 << 20);
+  for (const auto& a : out.bands.answers) {
+    const double width = a.quantiles.back().value - a.quantiles.front().value;
+    EXPECT_LE(0.5 * (a.quantiles.back().upper - a.quantiles.back().lower), 0.02 * width);
+    EXPECT_LE(0.5 * (a.quantiles.front().upper - a.quantiles.front().lower), 0.02 * width);
+  }
+  // the draws are those of a band that asked for as many
+  const auto fixed = band(ready(words("draws = " + std::to_string(out.bands.draws) + "\nseed = 3")));
+  EXPECT_EQ(fixed.bands.output_value, out.bands.output_value);
+}
+
+TEST(Band, LatinHypercubeTakesNoUntil) {
+  auto r = ready(words("draws = 100"));
+  r.c.band.design = network::Design::latin_hypercube;
+  r.c.band.until_share = 0.01;
+  EXPECT_THROW(static_cast<void>(band(r)), base::InputError);
+}
+
+TEST(Band, RangesGiveLeastAndMost) {
+  auto text = words("draws = 1024\nseed = 5", std::string(head_limit) + "at_most = \"30 %\"\n");
+  const std::string level = "level = \"400 m\"";
+  text.replace(text.find(level), level.size(), "level = \"398 m .. 404 m, not random\"");
+  const Ready r = ready(text);
+  const auto out = band(r);
+  const auto& head = out.bands.answers[1];
+  ASSERT_TRUE(head.range.has_value());
+  const double median = std::ranges::find(head.quantiles, 0.5, &answers::QuantileAnswer::probability)->value;
+  EXPECT_NEAR((*head.range)[0], median - 3.0, 1e-9);  // the middle is 401 m
+  EXPECT_NEAR((*head.range)[1], median + 3.0, 1e-9);
+  const auto& limit = out.limits[0];
+  ASSERT_TRUE(limit.probability_range.has_value());
+  EXPECT_LT((*limit.probability_range)[0], limit.probability);
+  EXPECT_GT((*limit.probability_range)[1], limit.probability);
+  EXPECT_EQ(limit.worst_corner, "source level = 398 m");
+  EXPECT_EQ(limit.verdict, answers::Verdict::cannot_tell);  // kept at 404 m, broken at 398 m
+  EXPECT_NE(limit.reason.find("source level"), std::string::npos) << limit.reason;
+}
+
+TEST(Band, SurgeLimitsCannotBeToldFromTheSteadyState) {
+  const std::string event = "[[event]]\nat = \"0 s\"\ndraw_off = \"use\"\nto = \"0 L/s\"\nover = \"10 s\"\n";
+  auto limit = [](const std::string& bound) {
+    return "[[limit]]\nname = \"peak\"\nhighest_pressure = \"" + bound + "\"\nwhere = \"end\"\nat_most = \"5 %\"\n";
+  };
+  const auto kept = band(ready(words("draws = 256", event + limit("60 bar g"))));
+  EXPECT_EQ(kept.limits[0].verdict, answers::Verdict::cannot_tell);
+  EXPECT_EQ(kept.limits[0].reason, "needs surge");
+  const auto broken = band(ready(words("draws = 256", event + limit("10 bar g"))));
+  EXPECT_EQ(broken.limits[0].verdict, answers::Verdict::not_ok);
+  const auto no_event = band(ready(words("draws = 256", limit("60 bar g"))));
+  EXPECT_EQ(no_event.limits[0].verdict, answers::Verdict::ok);
+}
+
+TEST(Band, GridBoundOfTheCentralRunMovesTheCounts) {
+  Ready r = ready(words("draws = 1024\nseed = 5", std::string(head_limit) + "at_most = \"30 %\"\n"));
+  const auto exact = band(r);
+  r.central.limit_grid_bound = {0.5};
+  const auto bounded = band(r);
+  EXPECT_EQ(bounded.limits[0].probability, exact.limits[0].probability);
+  EXPECT_GT(bounded.limits[0].probability_upper, exact.limits[0].probability_upper);
+  EXPECT_LT(bounded.limits[0].probability_lower, exact.limits[0].probability_lower);
+  r.central.limit_grid_bound = {answers::missing};
+  EXPECT_EQ(band(r).limits[0].verdict, answers::Verdict::cannot_tell);
+}
+
+TEST(Band, ImpossibleCorrelationsAreRefused) {
+  const std::string together =
+      "[together]\n\"main bore, main roughness\" = 0.9\n\"main roughness, friction scatter\" = 0.9\n\"main bore, friction scatter\" = -0.9\n";
+  const Ready r = ready(words("draws = 64", together));
+  EXPECT_THROW(static_cast<void>(band(r)), base::InputError);
+}
+
+TEST(Band, MoreThanAHundredThousandRunsAreThinned) {
+  const auto out = band(ready(words("draws = 250000\ndesign = \"plain\"")));
+  EXPECT_EQ(out.bands.draws, 250000);
+  EXPECT_EQ(out.bands.stride, 3);
+  EXPECT_EQ(out.bands.run_status.size(), 83334U);
+  EXPECT_EQ(out.bands.output_value.size(), 2U * 83334U);
+}
+
+}  // namespace
+}  // namespace headband::montecarlo
