@@ -232,7 +232,7 @@ class BandRun {
   }
 
   bool form_budget() {
-    BudgetRequest request{.inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .surge = options_.surge, .draw_options = {}};
+    BudgetRequest request{.inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .surge = options_.surge};
     request.draw_options = draw_options(static_cast<long long>(ranges_.points.size()) * draws_);
     Budget budget = find_budget(request, table_, models_);
     for (const auto& words : budget.warnings) warn(words);

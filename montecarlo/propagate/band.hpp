@@ -16,13 +16,13 @@ namespace headband::montecarlo {
 struct BandOptions {
   bool surge = false;                      ///< march every draw
   int threads = 1;                         ///< >= 1
-  std::optional<unsigned long long> seed;  ///< overrides the case's
+  std::optional<unsigned long long> seed = {};  ///< overrides the case's
   const std::atomic<bool>* stop = nullptr; ///< set by Ctrl-C: finish the block, keep what is done
-  std::function<void(long long done, long long all)> progress;  ///< called from the calling thread
+  std::function<void(long long done, long long all)> progress = {};  ///< called from the calling thread
   /// Draws of a stopped band of the same case, seed and verb, as `checkpoint` or a stopped BandOutcome gave them.
-  std::optional<answers::Bands> resumed;
+  std::optional<answers::Bands> resumed = {};
   /// Called from the calling thread about once a minute with all draws done so far (stride 1).
-  std::function<void(const answers::Bands&)> checkpoint;
+  std::function<void(const answers::Bands&)> checkpoint = {};
 };
 
 /// What the band of a case says: blocks of a Study.

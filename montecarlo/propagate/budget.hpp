@@ -33,7 +33,7 @@ struct BudgetRequest {
   const Ranges* ranges = nullptr;
   const Sampler* sampler = nullptr;
   bool surge = false;
-  DrawOptions draw_options;
+  DrawOptions draw_options = {};
 };
 
 /// Draws that `find_budget` will compute, for the progress line.

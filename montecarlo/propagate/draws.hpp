@@ -40,8 +40,8 @@ struct DrawTable {
 struct DrawOptions {
   int blocks_at_once = 1;                   ///< how many blocks a thread takes at a time, >= 1
   const std::atomic<bool>* stop = nullptr;  ///< set: threads finish the blocks they hold
-  std::function<void(long long done)> progress;  ///< calling thread, about five times a second
-  std::function<void(long long done)> checkpoint;  ///< calling thread: draws `first` … `done - 1` are stored
+  std::function<void(long long done)> progress = {};  ///< calling thread, about five times a second
+  std::function<void(long long done)> checkpoint = {};  ///< calling thread: draws `first` … `done - 1` are stored
   double checkpoint_seconds = 60.0;
 };
 

@@ -50,7 +50,9 @@ TEST(Draws, BitsDoNotDependOnThreadsOrBlocks) {
         const auto summary = run_draws(0, 1003, source_of(sampler), models, table, {.blocks_at_once = blocks});
         EXPECT_EQ(summary.done, 1003);
         EXPECT_FALSE(summary.stopped);
-        if (before) EXPECT_EQ(table.answer, before->answer);
+        if (before) {
+          EXPECT_EQ(table.answer, before->answer);
+        }
         before.emplace(table);
       }
     }

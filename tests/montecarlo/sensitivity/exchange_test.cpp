@@ -8,6 +8,7 @@
 #include <gtest/gtest.h>
 
 #include <cmath>
+#include <fmt/format.h>
 #include <functional>
 #include <map>
 #include <numbers>
@@ -22,7 +23,7 @@ using Function = std::function<double(const std::vector<double>&)>;
 network::Case case_of(std::size_t unknowns) {
   network::Case c;
   for (std::size_t i = 0; i < unknowns; ++i) {
-    c.unknowns.push_back({.name = "x" + std::to_string(i + 1), .path = {}, .place = {}, .random = true});
+    c.unknowns.push_back({.name = fmt::format("x{}", i + 1), .path = {}, .place = {}, .random = true});
   }
   return c;
 }
@@ -169,8 +170,8 @@ TEST(Sensitivity, SharesOfTheReferencePressureDrop) {
   for (const auto& row : test::reference_rows("montecarlo_pressure_drop_results.csv")) expected[row[1]] = std::stod(row[3]);
   const char* names[] = {"roughness", "viscosity", "correlation"};
   for (std::size_t i = 0; i < 3; ++i) {
-    EXPECT_NEAR(s.first[i], expected.at(std::string("S_") + names[i]), 0.01);
-    EXPECT_NEAR(s.total[i], expected.at(std::string("ST_") + names[i]), 0.01);
+    EXPECT_NEAR(s.first[i], expected.at(fmt::format("S_{}", names[i])), 0.01);
+    EXPECT_NEAR(s.total[i], expected.at(fmt::format("ST_{}", names[i])), 0.01);
   }
   EXPECT_NEAR(s.mean, expected.at("mean"), 4.0 * 6512.24 / 64.0);
   EXPECT_NEAR(std::sqrt(s.variance), expected.at("sd"), 4.0 * 4608.55 / 64.0);
