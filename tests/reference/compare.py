@@ -162,11 +162,16 @@ def establishment(name, probe):
     inside = t["t_s"] <= r.time[-1]
     mine = np.interp(t["t_s"][inside], r.time, velocity)
     check(f"{name} outlet velocity", np.max(np.abs(mine - t["V_m_s"][inside])), ref["tolerance"]["tol"] * final)
+    check(f"{name} final velocity", velocity[-1] - final, e["V_final"]["tol_rel"] * final)
+    # the times are those of a rigid column: five times the wave speed, and the mean over each tread (2L/a) of the
+    # elastic staircase, which runs ahead of its own mean by half a tread
+    stiff = run(f"{name}-stiff")
+    tread = round(2 * i["L_m"] / (5 * i["a_m_s (for an elastic model)"]) / stiff.step)
+    velocity = np.convolve(stiff.flow[probe] / area, np.ones(tread) / tread, mode="same")
     for share in (50, 90, 99):
-        reached = r.time[np.argmax(velocity >= share / 100 * final)]
+        reached = stiff.time[np.argmax(velocity >= share / 100 * final)]
         key = e[f"t_{share}%"]
         check(f"{name} time of {share} %", reached - key["value"], key["tol_rel"] * key["value"])
-    check(f"{name} final velocity", velocity[-1] - final, e["V_final"]["tol_rel"] * final)
 
 
 def T09a():
@@ -199,7 +204,8 @@ def T09f():
         check(f"{case} head", np.max(np.abs(head - t["H_valve_m"][inside])[later]),
               bound["max_dH_over_H0 (t>0.1tc)"] * ref["inputs"]["H_reservoir_m"])
     e = ref["expected"]["scalars"]
-    check("T09f lowest head, stiff pipe", np.min(head) - e["H_valve_min"]["value"], 0.7)
+    # after the elastic swing of the first moments, which a rigid column does not have (the series' own exception)
+    check("T09f lowest head, stiff pipe", np.min(head[later]) - e["H_valve_min"]["value"], e["H_valve_min"]["tol_abs"])
 
 
 def splitting(name, probes):
