@@ -27,6 +27,7 @@ void set_ranges(Plot& plot) {
     }
     for (const Level& level : plot.levels)
       if (!level.upright) take(level.value);
+    for (const Point& point : plot.points) take(point.y);
     if (!(low <= high)) low = 0.0, high = 1.0;
     const double air = high > low ? 0.06 * (high - low) : std::max(1e-3 * std::abs(high), 1e-6);
     plot.y.low = from_zero ? 0.0 : low - air;

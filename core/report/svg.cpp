@@ -343,8 +343,26 @@ std::string stretches(const Plot& plot, const Frame& frame, const std::string& i
   return out;
 }
 
+/// Where a name stands: middle and half its width.
+struct Named {
+  double x, y, half;
+};
+
+/// Height of a name near a point: above it, else below it, else further away, where no other name stands.
+double height_near(double y, const Named& name, const Frame& frame, const std::vector<Named>& taken) {
+  for (const double away : {-9.0, 20.0, -24.0, 35.0, -39.0, 50.0}) {
+    const double here = y + away;
+    const auto meets = [&](const Named& t) {
+      return std::abs(t.y - here) < 14.0 && std::abs(t.x - name.x) < t.half + name.half + 8.0;
+    };
+    if (here > frame.top + 10.0 && here < frame.bottom && std::none_of(taken.begin(), taken.end(), meets)) return here;
+  }
+  return y - 9.0;
+}
+
 std::string points(const Plot& plot, const Frame& frame) {
   std::string out;
+  std::vector<Named> taken;
   for (const Point& point : plot.points) {
     if (!std::isfinite(point.x) || !std::isfinite(point.y)) continue;
     const double x = frame.x(point.x), y = frame.y(point.y);
@@ -352,7 +370,8 @@ std::string points(const Plot& plot, const Frame& frame) {
     const std::string name = shortened(point.name);
     const double half = 0.5 * text_width(name);
     const double text_x = std::clamp(x, left + half + 4.0, std::max(left + half + 4.0, frame.right - half - 4.0));
-    const double text_y = y - 9.0 < frame.top + 10.0 ? y + 20.0 : y - 9.0;
+    const double text_y = height_near(y, {text_x, y, half}, frame, taken);
+    taken.push_back({text_x, text_y, half});
     out += fmt::format(
         "<circle class=\"point {}\" cx=\"{}\" cy=\"{}\" r=\"4\" fill=\"#ffffff\" stroke=\"{}\" stroke-width=\"2\"/>\n",
         ink.name,

@@ -140,6 +140,8 @@
     };
 
     const drawPoints = (u, ctx) => {
+      const taken = [];
+      ctx.setLineDash([]);
       ctx.textAlign = 'center';
       for (const p of data.points) {
         if (p.x == null || p.y == null) continue;
@@ -154,7 +156,11 @@
         ctx.stroke();
         const half = ctx.measureText(p.name).width / 2 + 4 * pixels;
         const tx = Math.max(u.bbox.left + half, Math.min(u.bbox.left + u.bbox.width - half, px));
-        const ty = py - 10 * pixels < u.bbox.top + 12 * pixels ? py + 20 * pixels : py - 10 * pixels;
+        // Above the point, else below it, else further away: where no other name stands.
+        const free = (y) => y > u.bbox.top + 10 * pixels && y < u.bbox.top + u.bbox.height &&
+          taken.every((t) => Math.abs(t.y - y) >= 14 * pixels || Math.abs(t.x - tx) >= t.half + half);
+        const ty = [-10, 20, -25, 35, -40, 50].map((d) => py + d * pixels).find(free) ?? py - 10 * pixels;
+        taken.push({ x: tx, y: ty, half });
         haloed(ctx, p.name, tx, ty);
       }
     };

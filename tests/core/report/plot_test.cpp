@@ -168,6 +168,22 @@ TEST(Svg, labels_at_one_height_are_pushed_apart) {
   EXPECT_GE(heights[2] - heights[1], 14.0);
 }
 
+TEST(Svg, names_of_points_at_one_spot_do_not_overlap) {
+  Plot plot = wave();
+  for (const char* name : {"highest pressure", "pump discharge", "third"}) plot.points.push_back({name, 5.0, 6e5});
+  const std::string picture = svg(plot, Family::si);
+  std::vector<double> heights;
+  std::size_t at = 0;
+  while ((at = picture.find("<text class=\"halo", at)) != std::string::npos) {
+    heights.push_back(std::stod(picture.substr(picture.find(" y=\"", at) + 4)));
+    at += 10;
+  }
+  ASSERT_EQ(heights.size(), 3u);
+  std::sort(heights.begin(), heights.end());
+  EXPECT_GE(heights[1] - heights[0], 14.0);
+  EXPECT_GE(heights[2] - heights[1], 14.0);
+}
+
 TEST(Svg, survives_a_plot_with_nothing_in_it) {
   Plot plot;
   plot.id = "empty";
