@@ -142,6 +142,7 @@ void March<W>::set_initial_branches(const steady::SteadyState<W>& steady) {
       BranchMemory& m = state_.memory[j * W + at(lane)];
       m.flow = flow[lane];
       m.shut = !(flow[lane] > 0.0);
+      m.may_reverse = numbers_.check[j * W + at(lane)].lets_turn && !m.shut;
       if (b.kind == BranchKind::pump) {
         m.speed = steady.pump_speed[at(b.index)][lane];
         m.torque = numbers_.pump[j * W + at(lane)].at(m.flow / b.count, m.speed).torque;
@@ -341,9 +342,7 @@ void March<W>::load_branch(const Branch& b,
                            std::size_t j,
                            int lane,
                            double time_step,
-                           const Cluster& cluster,
                            ClusterBranch& out) {
-  (void)cluster;
   const BranchMemory& m = state_.memory[j * W + at(lane)];
   out = ClusterBranch{};
   out.kind = b.kind;
@@ -375,27 +374,33 @@ void March<W>::load_branch(const Branch& b,
       out.shut = m.shut;
       break;
     }
-    case BranchKind::pump: {
-      const std::size_t k = j * W + at(lane);
-      out.pump = &numbers_.pump[k];
-      out.count = b.count;
-      out.one_way = case_->pumps[at(b.index)].check_valve.kind != network::CheckValveKind::none && !m.may_reverse;
-      out.shut = out.one_way && m.shut;
-      out.speed = out.speed_before = m.speed;
-      out.torque_before = m.torque;
-      const double now = time_[lane];
-      if (now > numbers_.trip_time[k] && time_step > 0.0) {
-        out.free_speed = true;
-        const PumpModel& pump = numbers_.pump[k];
-        // the first part of a step may still be powered
-        const double down = std::min(time_step, now - numbers_.trip_time[k]);
-        out.run_down = 0.5 * pump.rated_torque * down / (pump.inertia * pump.rated_speed);
-      } else if (now >= numbers_.start_time[k]) {
-        const double since = now - numbers_.start_time[k];
-        out.speed = numbers_.start_over[k] > 0.0 ? std::min(1.0, since / numbers_.start_over[k]) : 1.0;
-      }
+    case BranchKind::pump:
+      load_pump(b, j * W + at(lane), lane, time_step, out);
       break;
-    }
+  }
+}
+
+template <int W>
+void March<W>::load_pump(const Branch& b, std::size_t k, int lane, double time_step, ClusterBranch& out) {
+  const BranchMemory& m = state_.memory[k];
+  const PumpModel& pump = numbers_.pump[k];
+  out.pump = &pump;
+  out.count = b.count;
+  const bool checked = case_->pumps[at(b.index)].check_valve.kind != network::CheckValveKind::none;
+  out.one_way = checked && !m.may_reverse;
+  out.shut = checked && m.shut;
+  out.speed = out.speed_before = m.speed;
+  out.torque_before = m.torque;
+  if (time_step <= 0.0) return;
+  const double now = time_[lane];
+  if (now > numbers_.trip_time[k]) {
+    out.free_speed = true;
+    // the first part of a step may still be powered
+    const double down = std::min(time_step, now - numbers_.trip_time[k]);
+    out.run_down = 0.5 * pump.rated_torque * down / (pump.inertia * pump.rated_speed);
+  } else if (now >= numbers_.start_time[k]) {
+    const double since = now - numbers_.start_time[k];
+    out.speed = numbers_.start_over[k] > 0.0 ? std::min(1.0, since / numbers_.start_over[k]) : 1.0;
   }
 }
 
@@ -422,7 +427,7 @@ void March<W>::solve_lane(const Cluster& cluster, int lane, double time_step) {
   }
   for (std::size_t k = 0; k < cluster.branches.size(); ++k) {
     const std::size_t j = at(cluster.branches[k]);
-    load_branch(layout_.branches[j], j, lane, time_step, cluster, solver_.branches[k]);
+    load_branch(layout_.branches[j], j, lane, time_step, solver_.branches[k]);
   }
   if (!solver_.solve(time_step) && status_[at(lane)] == MarchStatus::completed)
     status_[at(lane)] = MarchStatus::boundary_not_converged;
@@ -462,10 +467,19 @@ void March<W>::remember(std::size_t j, int lane, const ClusterBranch& b, double 
   BranchMemory& m = state_.memory[j * W + at(lane)];
   m.flow = b.flow;
   m.shut = b.shut;
-  if (time_step > 0.0) {
-    m.speed = b.speed;
-    m.torque = b.torque;
+  if (time_step <= 0.0) return;
+  m.speed = b.speed;
+  m.torque = b.torque;
+  const CheckRule& rule = numbers_.check[j * W + at(lane)];
+  if (!rule.lets_turn) return;
+  if (b.shut || b.flow > 0.0) {  // once open again it lets the flow turn again
+    m.may_reverse = !b.shut;
+    m.reversed_at = -1.0;
+    return;
   }
+  const double now = time_[lane];
+  if (m.reversed_at < 0.0) m.reversed_at = now;
+  if (-b.flow >= rule.reverse_flow || now + 0.5 * time_step >= m.reversed_at + rule.delay) m.may_reverse = false;
 }
 
 template <int W>

@@ -17,7 +17,6 @@ struct BranchMemory {
   bool shut = false;
   bool may_reverse = false;   ///< a check valve that has not shut yet
   double reversed_at = -1.0;  ///< time the flow turned [s]; < 0: forward
-  bool shuts_next = false;    ///< reached its reverse velocity in the last row
   double speed = 1.0;         ///< share of rated
   double torque = 0.0;        ///< share of rated
   double flow = 0.0;          ///< of the set [m3/s]
@@ -84,7 +83,8 @@ class March {
   void solve_place(int place);
   void solve_valve(const Cluster& cluster);
   void solve_lane(const Cluster& cluster, int lane, double time_step);
-  void load_branch(const Branch& b, std::size_t j, int lane, double time_step, const Cluster& cluster, ClusterBranch& out);
+  void load_branch(const Branch& b, std::size_t j, int lane, double time_step, ClusterBranch& out);
+  void load_pump(const Branch& b, std::size_t k, int lane, double time_step, ClusterBranch& out);
   void store_lane(const Cluster& cluster, int lane, double time_step);
   void remember(std::size_t j, int lane, const ClusterBranch& b, double time_step);
   void give_head(int place, const Lanes<W>& head);

@@ -6,6 +6,7 @@
 #include <algorithm>
 #include <cmath>
 #include <limits>
+#include <numbers>
 #include <span>
 #include <tuple>
 
@@ -330,6 +331,41 @@ void fill_pump(const network::Pump& given,
   }
 }
 
+// Bore of the first pipe that ends at a place [m].
+template <int W>
+double bore_beside(const network::Plan& plan, const network::Values<W>& values, int place, int lane) {
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i)
+    if (plan.pipes[i].from.index == place || plan.pipes[i].to.index == place) return values.pipes[i].bore[lane];
+  return 1.0;
+}
+
+template <int W>
+void fill_checks(const network::Case& c,
+                 const network::Plan& plan,
+                 const Layout& layout,
+                 const network::Values<W>& values,
+                 Numbers<W>& n) {
+  n.check.assign(layout.branches.size() * W, CheckRule{});
+  for (std::size_t j = 0; j < layout.branches.size(); ++j) {
+    const Branch& b = layout.branches[j];
+    const auto index = static_cast<std::size_t>(b.index);
+    const bool pump = b.kind == BranchKind::pump;
+    if (!pump && b.kind != BranchKind::check_valve) continue;
+    const network::CheckValveRule& rule = pump ? c.pumps[index].check_valve : c.check_valves[index].rule;
+    for (int lane = 0; lane < W; ++lane) {
+      CheckRule& out = n.check[j * W + static_cast<std::size_t>(lane)];
+      if (rule.kind == network::CheckValveKind::reverse_velocity) {
+        double bore = pump ? values.pumps[index].check_bore[lane] : values.check_valves[index].bore[lane];
+        if (!(bore > 0.0)) bore = bore_beside(plan, values, b.to, lane);
+        const double velocity = pump ? values.pumps[index].reverse_velocity[lane] : values.check_valves[index].reverse_velocity[lane];
+        out = {true, velocity * 0.25 * std::numbers::pi * bore * bore * b.count, never};
+      } else if (rule.kind == network::CheckValveKind::delay) {
+        out = {true, never, pump ? values.pumps[index].check_delay[lane] : values.check_valves[index].delay[lane]};
+      }
+    }
+  }
+}
+
 template <int W>
 void fill_pumps(const network::Case& c,
                 const Layout& layout,
@@ -445,6 +481,7 @@ void fill_numbers(const network::Case& c,
   for (std::size_t k = 0; k < plan.places.size(); ++k) n.place_elevation[k] = values.places[k].elevation;
   fill_branches(layout, values, steady, n);
   fill_pumps(c, layout, values, steady, n);
+  fill_checks(c, plan, layout, values, n);
   jumps.clear();
   start_movements(c, plan, layout, values, n);
   add_events(c, plan, layout, values, n, jumps);

@@ -36,6 +36,13 @@ struct PipeNumbers {
   Lanes<W> fitting_number;          ///< loss of all fittings = this Q|Q| [s2/m5]
 };
 
+/// When a check valve that lets the flow turn shuts, one draw.
+struct CheckRule {
+  bool lets_turn = false;       ///< false: shuts at zero flow, or there is none
+  double reverse_flow = 0.0;    ///< shuts in the row after one with this flow backwards [m3/s]; infinity = by delay
+  double delay = 0.0;           ///< shuts this long after the flow turned [s]; infinity = by flow
+};
+
 /// Numbers of W draws; storage is kept between draws.
 template <int W>
 struct Numbers {
@@ -56,6 +63,7 @@ struct Numbers {
   std::vector<FourQuadrants> quadrants;   ///< the user's own tables, per pump of the case
   std::vector<PumpModel> pump;            ///< per branch and lane, [branch * W + lane]
   std::vector<double> trip_time, start_time, start_over;  ///< per branch and lane; infinity = never
+  std::vector<CheckRule> check;           ///< per branch and lane
 };
 
 /// Something that happens at once: the place is solved again at the row's own time.

@@ -1,0 +1,197 @@
+// SPDX-License-Identifier: MIT
+//
+// Lanes: a draw gives the same bits alone, in any lane of a batch, and in a run with everything kept; and the kernels
+// agree with the plain oracle over random networks.
+#include "tests/transient/march/run_case.hpp"
+#include "transient/line/plain_march.hpp"
+
+#include <gtest/gtest.h>
+
+#include <bit>
+#include <random>
+
+namespace headband::test {
+namespace {
+
+using base::Lanes;
+
+/// A random valid network: a chain or tree of pipes from a basin, a valve at its end, dead ends, off-takes, perhaps a
+/// second basin.
+class RandomCase {
+ public:
+  explicit RandomCase(unsigned seed, bool spreads) : random_(seed), spreads_(spreads) {
+    b.basin("B0", uniform(40.0, 120.0));
+    const int pipes = 1 + static_cast<int>(random_() % 5);
+    for (int i = 0; i < pipes; ++i) {
+      const int from = i == 0 ? -1 : static_cast<int>(random_() % static_cast<unsigned>(i));
+      auto& p = b.pipe("p" + std::to_string(i), from < 0 ? "B0" : "n" + std::to_string(from), "n" + std::to_string(i),
+                       uniform(200.0, 900.0), uniform(0.2, 0.6));
+      const double length = p.length.value;
+      CaseBuilder::profile_point(p, 0.0, 0.0);
+      CaseBuilder::profile_point(p, 0.37 * length, 0.0);
+      CaseBuilder::profile_point(p, length, 0.0);
+      p.wave_speed = exact(uniform(700.0, 1300.0), Dimension::velocity);
+      p.wave_speed_change = exact(0.5, Dimension::share);
+      if (spreads_) {
+        p.wave_speed.spread = base::Normal{30.0};
+        p.bore.spread = base::Normal{0.002};
+        p.roughness.spread = base::LogNormal{0.3};
+      }
+      if (random_() % 3 == 0) CaseBuilder::fitting(p, "bend", 0.5, 3.0);
+    }
+    auto& valve = b.valve_by_flow("valve", "n" + std::to_string(pipes - 1), "air", uniform(0.02, 0.1));
+    valve.near_seat = exact(1.0);
+    if (spreads_) valve.near_seat.spread = base::Normal{0.04};
+    if (random_() % 2 == 0) b.draw_off("take", "n0", uniform(0.005, 0.02));
+    auto& e = b.move_valve("valve", 0.0, random_() % 2 == 0 ? 0.0 : 0.2, uniform(0.3, 4.0));
+    if (spreads_) e.over.spread = base::Normal{0.1 * e.over.value};
+    auto& surge = b.surge(8.0, 12);
+    surge.cavities = random_() % 2 == 0 ? network::Cavities::vapour : network::Cavities::off;
+    surge.friction_in_time = static_cast<network::FrictionInTime>(random_() % 3);
+    surge.grid_check = false;
+    b.answer(network::AnswerKind::highest_pressure, "high", {});
+    b.answer(network::AnswerKind::lowest_pressure, "low", {CaseBuilder::along_pipe("p0")});
+    b.answer(network::AnswerKind::velocity, "speed", {CaseBuilder::along_pipe("p0")});
+    b.answer(network::AnswerKind::highest_pressure, "spot", {CaseBuilder::on_pipe("p0", 111.0)});
+    b.answer(network::AnswerKind::highest_pressure, "end", {CaseBuilder::at_place("n" + std::to_string(pipes - 1))});
+  }
+  double uniform(double low, double high) { return std::uniform_real_distribution<double>(low, high)(random_); }
+  std::mt19937& random() { return random_; }
+
+  CaseBuilder b;
+
+ private:
+  std::mt19937 random_;
+  bool spreads_;
+};
+
+std::uint64_t bits(double x) { return std::bit_cast<std::uint64_t>(x); }
+
+TEST(Batch, SameBitsAloneInAnyLaneAndInAFullRun) {
+  int cavities = 0, compared = 0;
+  for (unsigned seed = 1; seed <= 40; ++seed) {
+    RandomCase made(seed, true);
+    const network::Case c = made.b.finish();
+    const network::Plan plan = network::make_plan(c);
+    network::Scores<8> scores(c.unknowns.size());
+    for (auto& s : scores)
+      for (int lane = 0; lane < 8; ++lane) s.set(lane, made.uniform(0.02, 0.98));
+    network::Values<8> values;
+    network::realise<8>(c, plan, scores, values);
+    steady::SteadySolver solver(c, plan);
+    steady::SteadyState<8> state;
+    solver.solve<8>(values, state);
+    transient::BatchMarcher marcher(c, plan);
+    transient::DrawAnswers<8> batch;
+    marcher.march<8>(values, state, batch);
+    for (int lane = 0; lane < 8; ++lane) {
+      const auto l = static_cast<std::size_t>(lane);
+      network::Scores<1> own(scores.size());
+      for (std::size_t i = 0; i < own.size(); ++i) own[i] = Lanes<1>(scores[i][lane]);
+      network::Values<1> value;
+      network::realise<1>(c, plan, own, value);
+      steady::SteadySolver alone(c, plan);
+      steady::SteadyState<1> one;
+      alone.solve<1>(value, one);
+      transient::DrawAnswers<1> answer;
+      transient::BatchMarcher(c, plan).march<1>(value, one, answer);
+      ASSERT_EQ(answer.status[0], batch.status[l]) << seed << " " << lane;
+      if (batch.status[l] == 4) continue;
+      ASSERT_EQ(batch.status[l], 0) << seed << " " << lane;
+      const transient::SurgeRun run = transient::run_surge(c, plan, value, one);
+      ASSERT_TRUE(run.completed) << seed;
+      cavities += batch.cavity[l] ? 1 : 0;
+      ASSERT_EQ(run.cavity, batch.cavity[l]);
+      for (std::size_t k = 0; k < plan.answers.size(); ++k) {
+        ASSERT_EQ(bits(answer.answer[k].number), bits(batch.answer[k][lane])) << seed << " " << plan.answers[k].name;
+        ASSERT_EQ(bits(run.answer_value[k]), bits(batch.answer[k][lane])) << seed << " " << plan.answers[k].name;
+        ++compared;
+      }
+      for (std::size_t k = 0; k < marcher.stations().size(); ++k) {
+        ASSERT_EQ(bits(answer.head_max[k].number), bits(batch.head_max[k][lane])) << seed;
+        ASSERT_EQ(bits(answer.head_min[k].number), bits(batch.head_min[k][lane])) << seed;
+      }
+    }
+  }
+  EXPECT_GT(compared, 1000);
+  EXPECT_GT(cavities, 20);
+}
+
+/// The oracle's network of a case on the grid of a run.
+transient::PlainNetwork plain_of(const network::Case& c,
+                                 const network::Plan& plan,
+                                 const network::Values<1>& values,
+                                 const steady::SteadyState<1>& state,
+                                 const transient::SurgeRun& run) {
+  transient::PlainNetwork net;
+  const double gravity = values.gravity.number;
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+    const auto& v = values.pipes[i];
+    const double a = v.area.number, n = run.grid.reaches[i];
+    transient::PlainPipe p;
+    p.from = plan.pipes[i].from.index;
+    p.to = plan.pipes[i].to.index;
+    p.reaches = run.grid.reaches[i];
+    p.impedance = run.grid.marched_wave_speed[i] / (gravity * a);
+    const double per_square = 1.0 / (2.0 * gravity * a * a);
+    const double friction = state.friction_factor[i].number * v.length.number / v.bore.number * per_square / n;
+    p.first_flow = state.pipe_flow[i].number;
+    p.resistance = v.spread_k.number * per_square / n;
+    if (c.surge.friction_in_time == network::FrictionInTime::linear) {
+      p.linear = friction * std::fabs(p.first_flow);
+    } else {
+      p.resistance += friction;
+    }
+    net.pipes.push_back(p);
+  }
+  for (std::size_t k = 0; k < plan.places.size(); ++k) {
+    transient::PlainPlace p;
+    p.first_head = state.place_head[k].number;
+    if (plan.places[k].basin >= 0) p.held = values.places[k].held_head.number;
+    net.places.push_back(p);
+  }
+  for (std::size_t d = 0; d < plan.devices.size(); ++d) {
+    const auto& device = plan.devices[d];
+    if (device.kind == network::DeviceKind::draw_off) {
+      net.places[device.from.at()].draw += state.device_flow[d].number;
+      continue;
+    }
+    transient::PlainValve v;
+    v.from = device.from.index;
+    v.air_head = values.places[device.from.at()].elevation.number;
+    const double full = state.valve_coefficient[0].number, to = values.events[0].to.number, over = values.events[0].over.number;
+    v.coefficient = [=](double t) { return full * (t < over ? 1.0 + (to - 1.0) * t / over : to); };
+    net.valves.push_back(v);
+  }
+  net.time_step = run.grid.time_step;
+  net.steps = static_cast<int>(run.transient.time.size()) - 1;
+  return net;
+}
+
+TEST(Batch, KernelsMeetThePlainOracle) {
+  int compared = 0;
+  for (unsigned seed = 1; seed <= 60; ++seed) {
+    RandomCase made(seed, false);
+    made.b.c.surge.cavities = network::Cavities::off;
+    if (made.b.c.surge.friction_in_time == network::FrictionInTime::reynolds)
+      made.b.c.surge.friction_in_time = network::FrictionInTime::fixed;
+    const Marched m(made.b);
+    // a pipe at rest follows f(Re), which the oracle does not know
+    bool still = false;
+    for (const auto& re : m.steady.reynolds) still = still || re.number < 1.0;
+    if (still) continue;
+    const transient::PlainResult oracle =
+        transient::plain_march(plain_of(m.c, m.plan, m.values, m.steady, m.run));
+    std::size_t station = 0;
+    for (const auto& pipe : oracle.head_max)
+      for (const double h : pipe) {
+        // 4000 ulps of the head: the same sums in another order over some hundred steps
+        ASSERT_NEAR(m.run.transient.head_max[station++], h, 1e-12 * (1.0 + std::fabs(h))) << seed;
+        ++compared;
+      }
+  }
+  EXPECT_GT(compared, 1000);
+}
+
+}  // namespace
+}  // namespace headband::test
