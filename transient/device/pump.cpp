@@ -8,7 +8,7 @@
 namespace headband::transient {
 namespace {
 
-/// Speeds below this share use the curve at this share: q/speed stays finite, the value meets that of no speed.
+/// Below this ratio of speed to flow (both as shares) the curve is followed as that of no speed: q/speed stays finite.
 constexpr double least_speed = 1e-4;
 /// The jump between curve and table is faded out over this angle of the (flow, speed) plane: own choice.
 constexpr double fade = 0.25 * std::numbers::pi;
@@ -17,13 +17,17 @@ struct Value {
   double value = 0.0, by_flow = 0.0, by_speed = 0.0;  // by flow as a share of the rated one
 };
 
-// value(q, alpha) = alpha^2 curve(q / alpha), by the affinity laws.
-Value by_affinity(const network::PumpCurve<1>& curve, double flow, double speed, double rated_flow) {
-  const double a = std::max(speed, least_speed);
-  const auto p = curve.at(base::Lanes<1>(flow / a));
+// value(v, alpha) = alpha^2 curve(q / alpha), by the affinity laws; v = q / rated flow.
+Value by_affinity(const network::PumpCurve<1>& curve, double v, double speed, double rated_flow) {
+  const double least = least_speed * std::fabs(v);
+  if (speed <= least) {  // no speed to speak of: the square of the flow alone
+    const double value = least * least * curve.at(base::Lanes<1>(std::copysign(rated_flow / least_speed, v))).value.number;
+    return {value, v == 0.0 ? 0.0 : 2.0 * value / v, 0.0};
+  }
+  const double flow = v * rated_flow;
+  const auto p = curve.at(base::Lanes<1>(flow / speed));
   const double value = p.value.number, slope = p.slope.number;
-  const double by_speed = speed > least_speed ? 2.0 * a * value - flow * slope : 0.0;
-  return {a * a * value, a * slope * rated_flow, by_speed};
+  return {speed * speed * value, speed * slope * rated_flow, 2.0 * speed * value - flow * slope};
 }
 
 // What the laws of forward running say at (v, alpha), v a share of the rated flow.
@@ -35,8 +39,8 @@ struct Forward {
     return torque ? pump.has_torque_table || !std::isnan(pump.shut_off_torque) : pump.has_curve;
   }
   [[nodiscard]] Value at(double v, double alpha) const {
-    if (!torque) return by_affinity(pump.curve, v * pump.rated_flow, alpha, pump.rated_flow);
-    if (pump.has_torque_table) return by_affinity(pump.torque_curve, v * pump.rated_flow, alpha, pump.rated_flow);
+    if (!torque) return by_affinity(pump.curve, v, alpha, pump.rated_flow);
+    if (pump.has_torque_table) return by_affinity(pump.torque_curve, v, alpha, pump.rated_flow);
     const double s = pump.shut_off_torque;
     return {s * alpha * alpha + (1.0 - s) * alpha * v, (1.0 - s) * alpha, 2.0 * s * alpha + (1.0 - s) * v};
   }

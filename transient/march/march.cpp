@@ -88,12 +88,13 @@ void March<W>::set_initial_pipes(const network::Values<W>& values, const steady:
     const PipeNumbers<W>& p = numbers_.pipes[i];
     if (p.most_reaches == 0) continue;
     const Lanes<W>& flow = steady.pipe_flow[i];
+    const Lanes<W>& last = steady.place_head[plan_->pipes[i].to.at()];
     Lanes<W> head = steady.place_head[plan_->pipes[i].from.at()];
     for (int row = 0; row <= p.most_reaches; ++row) {
       const std::size_t r = p.first_row + at(row);
       for (int lane = 0; lane < W; ++lane) {
         if (row > p.reaches[at(lane)]) continue;  // nothing stands behind the far end
-        state_.head[r].set(lane, head[lane]);
+        state_.head[r].set(lane, row == p.reaches[at(lane)] ? last[lane] : head[lane]);
         state_.flow[r].set(lane, flow[lane]);
       }
       if (row < p.most_reaches) head = head - first_loss(p, numbers_, r, flow);

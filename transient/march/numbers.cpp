@@ -124,7 +124,7 @@ void fill_vapour(const network::Plan& plan, const Layout& layout, const network:
       const Lanes<W> top = pipe::highest_point<W>(x, z, max(at - p.reach, Lanes<W>(0.0)), min(at + p.reach, v.length)).elevation;
       Lanes<W> limit = top + below;
       for (int lane = 0; lane < W; ++lane)
-        if (row > p.reaches[static_cast<std::size_t>(lane)]) limit.set(lane, -never);
+        if (row >= p.reaches[static_cast<std::size_t>(lane)]) limit.set(lane, -never);  // the end is its place's
       n.vapour[p.first_row + static_cast<std::size_t>(row)] = limit;
     }
     n.place_vapour[from] = max(n.place_vapour[from], n.vapour[p.first_row]);

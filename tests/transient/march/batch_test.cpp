@@ -20,7 +20,7 @@ using base::Lanes;
 class RandomCase {
  public:
   explicit RandomCase(unsigned seed, bool spreads) : random_(seed), spreads_(spreads) {
-    b.basin("B0", uniform(40.0, 120.0));
+    b.basin("B0", uniform(25.0, 100.0));
     const int pipes = 1 + static_cast<int>(random_() % 5);
     for (int i = 0; i < pipes; ++i) {
       const int from = i == 0 ? -1 : static_cast<int>(random_() % static_cast<unsigned>(i));

@@ -28,6 +28,13 @@ struct Marched {
     if (!steady::is_usable(steady.status[0])) throw std::runtime_error("no steady state");
     run = transient::run_surge(c, plan, values, steady);
   }
+  /// The same from a steady state found elsewhere.
+  template <class FindSteady>
+  Marched(CaseBuilder& builder, const FindSteady& find) : c(builder.finish()), plan(network::make_plan(c)) {
+    values = network::realise(c, plan);
+    steady = find(c, plan, values);
+    run = transient::run_surge(c, plan, values, steady);
+  }
   [[nodiscard]] std::size_t rows() const { return run.transient.time.size(); }
   [[nodiscard]] double time(std::size_t row) const { return run.transient.time[row]; }
   [[nodiscard]] std::size_t row_at(double time) const {

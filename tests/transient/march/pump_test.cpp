@@ -1,0 +1,324 @@
+// SPDX-License-Identifier: MIT
+//
+// Pump trips, check valves, slow openings against rigid-column answers (T07, T09a, T09f, T09h).
+#include "tests/core/base/csv.hpp"
+#include "tests/transient/march/run_case.hpp"
+#include "transient/device/pump.hpp"
+
+#include <gtest/gtest.h>
+
+#include <numbers>
+
+namespace headband::test {
+namespace {
+
+constexpr double g = 9.80665;
+
+double area(double bore) { return 0.25 * std::numbers::pi * bore * bore; }
+
+network::Pipe& rising_main(CaseBuilder& b, double length, double bore, double factor, double wave_speed) {
+  auto& p = b.pipe("main", "delivery", "upper", length, bore);
+  CaseBuilder::profile_point(p, 0.0, 0.0);
+  CaseBuilder::profile_point(p, length, 0.0);
+  p.wave_speed = exact(wave_speed, Dimension::velocity);
+  p.roughness = {};
+  p.friction_factor = exact(factor);
+  return p;
+}
+
+/// T07a: parabolas of head and torque, ideal check valve.
+CaseBuilder tripping_plant(double wave_speed, double duration) {
+  CaseBuilder b(998.0);
+  b.basin("sump", 0.0);
+  b.basin("upper", 38.0);
+  rising_main(b, 180.0, 0.5, 0.018, wave_speed);
+  std::vector<std::pair<double, double>> curve;
+  const auto head = [](double v) { return 45.0 * (1.28 + 0.06 * v - 0.34 * v * v); };
+  const auto torque = [](double v) { return 0.45 + 0.65 * v - 0.10 * v * v; };
+  for (const double v : {0.0, 0.7, 1.3}) curve.emplace_back(0.28 * v, head(v));
+  auto& pump = b.pump("pump", "sump", "delivery", curve);
+  for (const double v : {0.0, 0.7, 1.3})
+    pump.torque.rows.emplace_back(exact(0.28 * v, Dimension::flow), exact(torque(v), Dimension::share));
+  pump.speed = exact(980.0 * 2.0 * std::numbers::pi / 60.0, Dimension::rotational_speed);
+  pump.efficiency = exact(0.82, Dimension::share);
+  pump.inertia = exact(60.0, Dimension::inertia);
+  pump.rated_flow = exact(0.28, Dimension::flow);
+  pump.rated_head = exact(45.0, Dimension::length);
+  b.trip_pump("pump", 0.0);
+  auto& surge = b.surge(duration, 40);
+  surge.cavities = network::Cavities::off;
+  surge.friction_in_time = network::FrictionInTime::fixed;
+  return b;
+}
+
+TEST(Pump, TripWithAnIdealCheckValve) {  // T07a
+  for (const bool stiff : {false, true}) {
+    CaseBuilder b = tripping_plant(stiff ? 5000.0 : 1000.0, 3.0);
+    const Marched m(b);
+    ASSERT_TRUE(m.run.completed) << m.run.transient.status;
+    EXPECT_NEAR(m.flow(0, "delivery") / 0.28, 1.1955152, 1e-6 * 1.2);
+    const double of_flow = stiff ? 0.002 : 0.018549008168289527, of_speed = stiff ? 0.001 : 0.003;
+    const double rated = 980.0 * 2.0 * std::numbers::pi / 60.0;
+    int compared = 0;
+    for (const Row& r : reference_rows("transient/T07a_series.csv")) {
+      const double t = std::stod(r[0]);
+      const std::size_t row = m.row_at(t);
+      if (row >= m.rows() || std::stod(r[1]) <= 0.0) continue;
+      // between rows: the reference falls by less than its tolerance in one step
+      const double late = m.time(row) - t;
+      ASSERT_NEAR(m.series(row, "pump flow") / 0.28 + 0.5 * late, std::stod(r[1]), of_flow) << t;
+      ASSERT_NEAR(m.series(row, "pump speed") / rated + 0.14 * late, std::stod(r[2]), of_speed) << t;
+      if (!stiff) {
+        ASSERT_NEAR(m.series(row, "pump head") / 45.0, std::stod(r[3]) / 45.0, 0.014224145707282313) << t;
+      }
+      ++compared;
+    }
+    EXPECT_GT(compared, 500);
+    double zero = -1.0;
+    for (const auto& e : m.run.events)
+      if (e.kind == "zero_flow" && zero < 0.0) zero = e.time;
+    EXPECT_NEAR(zero, 2.7150919, 0.02 * 2.7150919 + m.run.grid.time_step);
+    EXPECT_GE(m.events_of("check_shut"), 1);
+    EXPECT_EQ(m.events_of("tripped"), 1);
+  }
+}
+
+TEST(Pump, RunDownAtAShutCheckValveMeetsTheClosedForm) {
+  // torque = shut_off speed^2: speed = 1 / (1 + shut_off t / Tm)
+  CaseBuilder b = tripping_plant(1000.0, 60.0);
+  const Marched m(b);
+  const double rated = 980.0 * 2.0 * std::numbers::pi / 60.0, machine_time = 4.2019679;
+  const std::size_t from = m.row_at(20.0), to = m.row_at(60.0);
+  ASSERT_EQ(m.series(from, "pump flow"), 0.0);
+  const double a = m.series(from, "pump speed") / rated, z = m.series(to, "pump speed") / rated;
+  const double expected = a / (1.0 + a * 0.45 * (m.time(to) - m.time(from)) / machine_time);
+  EXPECT_NEAR(z, expected, 1e-4 * expected);
+}
+
+// Steady flow of T07c by bisection: pump by the four-quadrant table at rated speed against static lift and friction.
+steady::SteadyState<1> table_steady(const network::Case&, const network::Plan& plan, const network::Values<1>& values) {
+  const auto& table = transient::quadrants_ns25();
+  const double loss = 0.016 * 200.0 / 0.6 / (2.0 * g * area(0.6) * area(0.6));
+  const auto lift = [&](double q) {
+    return 55.0 * transient::read_quadrants(table, table.head, q / 0.4, 1.0).value - 50.0 - loss * q * q;
+  };
+  double low = 0.3, high = 0.6;
+  for (int i = 0; i < 200; ++i) (lift(0.5 * (low + high)) > 0.0 ? low : high) = 0.5 * (low + high);
+  steady::SteadyState<1> s;
+  s.pipe_flow = {low};
+  s.device_flow = {low};
+  s.place_head.resize(plan.places.size());
+  for (std::size_t k = 0; k < plan.places.size(); ++k)
+    s.place_head[k] = plan.places[k].basin >= 0 ? values.places[k].held_head : base::Lanes<1>(50.0 + loss * low * low);
+  s.friction_factor = {0.016};
+  s.reynolds = {low * 0.6 / (area(0.6) * 1e-6)};
+  s.wave_speed = {values.pipes[0].wave_speed_given};
+  s.pump_speed = {1.0};
+  return s;
+}
+
+TEST(Pump, TripThroughReverseFlowToRunaway) {  // T07c
+  for (const bool stiff : {false, true}) {
+    CaseBuilder b(998.0);
+    b.basin("sump", 0.0);
+    b.basin("upper", 50.0);
+    rising_main(b, 200.0, 0.6, 0.016, stiff ? 5000.0 : 1000.0);
+    auto& pump = b.pump("pump", "sump", "delivery", {});
+    pump.characteristic = network::Characteristic::table;
+    const auto& table = transient::quadrants_ns25();
+    for (std::size_t k = 0; k < table.angle.size(); ++k)
+      pump.suter.rows.emplace_back(exact(table.angle[k]), exact(table.head[k]));
+    pump.suter_torque = table.torque;
+    pump.speed = exact(980.0 * 2.0 * std::numbers::pi / 60.0, Dimension::rotational_speed);
+    pump.efficiency = exact(0.84, Dimension::share);
+    pump.inertia = exact(120.0, Dimension::inertia);
+    pump.rated_flow = exact(0.4, Dimension::flow);
+    pump.rated_head = exact(55.0, Dimension::length);
+    pump.check_valve.kind = network::CheckValveKind::none;
+    b.trip_pump("pump", 0.0);
+    auto& surge = b.surge(40.0, 40);
+    surge.cavities = network::Cavities::off;
+    surge.friction_in_time = network::FrictionInTime::fixed;
+    surge.grid_check = false;
+    const Marched m(b, table_steady);
+    ASSERT_TRUE(m.run.completed) << m.run.transient.status;
+    EXPECT_NEAR(m.flow(0, "delivery") / 0.4, 1.08907, 1e-6 * 1.1);
+    const double of_flow = stiff ? 0.002 : 0.01875311666614643, of_speed = stiff ? 0.001 : 0.003;
+    const double rated = 980.0 * 2.0 * std::numbers::pi / 60.0;
+    int compared = 0;
+    for (const Row& r : reference_rows("transient/T07c_series.csv")) {
+      const double t = std::stod(r[0]);
+      const double at_row = t / m.run.grid.time_step;
+      const auto row = static_cast<std::size_t>(at_row + 1e-9);
+      if (row + 1 >= m.rows()) continue;
+      const double share = std::max(0.0, at_row - static_cast<double>(row));
+      const auto between = [&](const char* name) {
+        return m.series(row, name) + share * (m.series(row + 1, name) - m.series(row, name));
+      };
+      ASSERT_NEAR(between("pump flow") / 0.4, std::stod(r[1]), of_flow) << t;
+      ASSERT_NEAR(between("pump speed") / rated, std::stod(r[2]), of_speed) << t;
+      ++compared;
+    }
+    EXPECT_GT(compared, 500);
+  }
+}
+
+TEST(Pump, FourQuadrantTableGivesItsKnots) {
+  const auto& table = transient::quadrants_ns25();
+  const auto rows = reference_rows("transient/T07c_suter_Ns25.csv");
+  ASSERT_EQ(rows.size(), table.angle.size());
+  for (std::size_t k = 0; k < rows.size(); ++k) {
+    EXPECT_NEAR(table.angle[k], std::stod(rows[k][1]), 1e-11);
+    EXPECT_EQ(table.head[k], std::stod(rows[k][2]));
+    EXPECT_EQ(table.torque[k], std::stod(rows[k][3]));
+    if (k == 0 || k + 1 == rows.size()) continue;
+    const double v = -std::sin(table.angle[k]), alpha = -std::cos(table.angle[k]);  // atan2(v, alpha) = x - pi
+    EXPECT_NEAR(transient::read_quadrants(table, table.head, v, alpha).value, table.head[k], 1e-12);
+  }
+}
+
+TEST(Pump, SlopesAreThoseOfTheValues) {
+  CaseBuilder b = tripping_plant(1000.0, 1.0);
+  const network::Case c = b.finish();
+  transient::PumpModel pump;
+  pump.curve.fit({0.0, 0.2, 0.36}, {57.0, 45.0, 30.0});
+  pump.shut_off_torque = 0.45;
+  pump.rated_flow = 0.28;
+  pump.rated_head = 40.0;
+  pump.quadrants = &transient::quadrants_ns25();
+  for (const auto& [q, a] : {std::pair{0.2, 0.8}, {-0.05, 0.7}, {-0.2, 0.1}, {0.1, -0.03}, {0.1, -0.4}, {-0.2, -0.6}}) {
+    const double dq = 1e-7, da = 1e-7;
+    const auto p = pump.at(q, a);
+    EXPECT_NEAR(p.head_by_flow, (pump.at(q + dq, a).head - pump.at(q - dq, a).head) / (2 * dq), 1e-3) << q << " " << a;
+    EXPECT_NEAR(p.head_by_speed, (pump.at(q, a + da).head - pump.at(q, a - da).head) / (2 * da), 1e-3) << q << " " << a;
+    EXPECT_NEAR(p.torque_by_flow, (pump.at(q + dq, a).torque - pump.at(q - dq, a).torque) / (2 * dq), 1e-4);
+    EXPECT_NEAR(p.torque_by_speed, (pump.at(q, a + da).torque - pump.at(q, a - da).torque) / (2 * da), 1e-4);
+  }
+  // joined without a jump where flow and speed turn
+  for (const double a : {0.2, 0.6, 1.0}) {
+    EXPECT_NEAR(pump.at(1e-12, a).head, pump.at(-1e-12, a).head, 1e-8);
+    EXPECT_NEAR(pump.at(1e-12, a).torque, pump.at(-1e-12, a).torque, 1e-8);
+  }
+  for (const double q : {0.05, 0.2}) {
+    EXPECT_NEAR(pump.at(q, 1e-12).head, pump.at(q, -1e-12).head, 1e-8);
+    EXPECT_NEAR(pump.at(q, 1e-12).torque, pump.at(q, -1e-12).torque, 1e-8);
+  }
+}
+
+TEST(Pump, OneOfTwoTripsBehindItsCheckValve) {
+  CaseBuilder b(998.0);
+  b.basin("sump", 0.0);
+  b.basin("upper", 38.0);
+  rising_main(b, 900.0, 0.6, 0.018, 1000.0);
+  auto& pump = b.pump("pair", "sump", "delivery", {{0.0, 57.6}, {0.28, 45.0}, {0.4, 30.0}});
+  pump.count = 2;
+  pump.shut_off_torque = exact(0.45, Dimension::share);
+  pump.speed = exact(100.0, Dimension::rotational_speed);
+  pump.efficiency = exact(0.82, Dimension::share);
+  pump.inertia = exact(20.0, Dimension::inertia);
+  pump.rated_flow = exact(0.28, Dimension::flow);
+  pump.rated_head = exact(45.0, Dimension::length);
+  b.trip_pump("pair", 1.0).tripping = 1;
+  b.surge(120.0, 40).cavities = network::Cavities::off;
+  b.c.surge.grid_check = false;
+  const Marched m(b);
+  ASSERT_TRUE(m.run.completed);
+  const std::size_t end = m.rows() - 1;
+  EXPECT_EQ(m.events_of("check_shut"), 1);
+  EXPECT_LT(m.series(end, "pair speed"), 30.0);
+  // the other one carries on alone: its flow is the steady flow of a single pump
+  CaseBuilder alone(998.0);
+  alone.basin("sump", 0.0);
+  alone.basin("upper", 38.0);
+  rising_main(alone, 900.0, 0.6, 0.018, 1000.0);
+  alone.pump("one", "sump", "delivery", {{0.0, 57.6}, {0.28, 45.0}, {0.4, 30.0}});
+  alone.surge(1.0);
+  const Marched one(alone);
+  EXPECT_NEAR(m.series(end, "pair flow"), one.series(0, "one flow"), 1e-3 * one.series(0, "one flow"));
+}
+
+TEST(CheckValve, ShutsAtTheReverseVelocityOneRowLater) {  // T09h with a = 5000 m/s
+  for (const double reverse : {0.0, 0.15}) {
+    CaseBuilder b;
+    b.basin("lower", 0.0);
+    b.basin("upper", 25.0);
+    auto& p = rising_main(b, 400.0, 0.3, 0.02, 5000.0);
+    (void)p;
+    auto& check = b.check_valve("check", "lower", "delivery");
+    check.k = exact(1e-6);
+    check.bore = exact(0.3, Dimension::length);
+    if (reverse > 0.0) {
+      check.rule.kind = network::CheckValveKind::reverse_velocity;
+      check.rule.reverse_velocity = exact(reverse, Dimension::velocity);
+      check.rule.bore = exact(0.3, Dimension::length);
+    }
+    const double speed = 1.6, driving = 25.0 + 0.02 * 400.0 / 0.3 * speed * speed / (2.0 * g);
+    b.c.basins[0].level = exact(driving, Dimension::length);
+    b.move_basin("lower", 0.0, 0.0, 0.0);
+    auto& surge = b.surge(6.0, 40);
+    surge.cavities = network::Cavities::off;
+    surge.friction_in_time = network::FrictionInTime::fixed;
+    surge.grid_check = false;
+    const Marched m(b);
+    ASSERT_TRUE(m.run.completed) << m.run.transient.status;
+    double shut = -1.0;
+    for (const auto& e : m.run.events)
+      if (e.kind == "check_shut" && shut < 0.0) shut = e.time;
+    if (reverse > 0.0) {
+      EXPECT_NEAR(shut, 2.7433689, 0.02 * 2.7433689);
+      const std::size_t row = m.row_at(shut);
+      const double stopped = -m.flow(row - 1, "delivery") / area(0.3);
+      EXPECT_NEAR(m.head(row, "delivery") - m.head(row - 1, "delivery"), 5000.0 * stopped / g, 0.02 * 5000.0 * stopped / g);
+    } else {
+      EXPECT_NEAR(shut, 2.4985371, 0.0555 * 2.4985371);
+    }
+    const double tolerance = 0.04846907560517566 * 1.6;
+    for (const Row& r : reference_rows("transient/T09h_series.csv")) {
+      const double t = std::stod(r[0]);
+      if (t > shut - 2.0 * m.run.grid.time_step || m.row_at(t) >= m.rows()) break;
+      ASSERT_NEAR(m.flow(m.row_at(t), "delivery") / area(0.3), std::stod(r[1]), tolerance) << t;
+    }
+  }
+}
+
+TEST(Opening, AtOnceAndSlowlyFollowTheRigidColumn) {  // T09a, T09f
+  {
+    ValveLine line({.length = 900.0, .wave_speed = 1000.0, .bore = 0.5, .level = 18.0, .flow = 0.0, .factor = 0.02});
+    line.valve->k = exact(4.0);
+    line.valve->bore = exact(0.5, Dimension::length);
+    line.valve->opening = exact(0.0, Dimension::share);
+    line.b.move_valve("valve", 0.0, 1.0, 0.0);
+    auto& surge = line.b.surge(60.0, 40);
+    surge.cavities = network::Cavities::off;
+    surge.friction_in_time = network::FrictionInTime::fixed;
+    surge.grid_check = false;
+    const Marched m(line.b);
+    for (const Row& r : reference_rows("transient/T09a_series.csv")) {
+      const double t = std::stod(r[0]);
+      if (m.row_at(t) >= m.rows()) break;
+      ASSERT_NEAR(m.flow(m.row_at(t), "end") / area(0.5), std::stod(r[1]), 0.08269235222740562 * 2.9708559) << t;
+    }
+    EXPECT_NEAR(m.flow(m.rows() - 1, "end"), 0.5833262, 3e-3 * 0.5833262);
+  }
+  ValveLine line({.length = 700.0, .wave_speed = 5000.0, .bore = 0.4, .level = 35.0, .flow = 0.0, .factor = 0.018});
+  line.valve->area = exact(0.0093567542, Dimension::area);
+  line.valve->discharge_coefficient = exact(1.0);
+  line.valve->opening = exact(0.0, Dimension::share);
+  line.b.move_valve("valve", 0.0, 1.0, 20.0);
+  auto& surge = line.b.surge(60.0, 40);
+  surge.cavities = network::Cavities::off;
+  surge.friction_in_time = network::FrictionInTime::fixed;
+  surge.grid_check = false;
+  const Marched m(line.b);
+  for (const Row& r : reference_rows("transient/T09f_series.csv")) {
+    const double t = std::stod(r[0]);
+    if (m.row_at(t) >= m.rows()) break;
+    ASSERT_NEAR(m.flow(m.row_at(t), "end") / area(0.4), std::stod(r[1]), 0.0018060725540362886 * 1.8) << t;
+    if (t > 2.0) {
+      ASSERT_NEAR(m.head(m.row_at(t), "end"), std::stod(r[2]), 0.0003542785736063081 * 35.0) << t;
+    }
+  }
+}
+
+}  // namespace
+}  // namespace headband::test
