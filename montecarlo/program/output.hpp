@@ -32,7 +32,7 @@ struct Replace {
 };
 
 /// How headband knows a page or a result file of its own.
-inline constexpr std::string_view page_mark = "<meta name=\"generator\" content=\"headband";
+inline constexpr std::string_view page_mark = " headband</title>";
 inline constexpr std::string_view result_mark = "headband-results";
 
 /// Looks whether `path` could be written later, before anything is computed.

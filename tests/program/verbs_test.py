@@ -120,6 +120,90 @@ class Verbs(Outside):
         self.assertEqual(one, self.json("band", "case.toml", "--seed", "1")["answers"]["drop"])
 
 
+class Asking(Outside):
+    """The verbs that read results."""
+
+    def setUp(self):
+        super().setUp()
+        self.write("case.toml", valve_case(limit=12))
+
+    def test_one_draw_replayed_gives_the_bits_of_the_batch(self):
+        import h5py
+
+        self.call("band", "case.toml", "--surge", expect=0)
+        with h5py.File(self.folder / "case-band.h5") as file:
+            bands = file["bands"]
+            names = [n.decode() if isinstance(n, bytes) else n for n in bands["output_name"][()]]
+            values = bands["output_value"][()]
+        peak, drop = names.index("peak"), names.index("drop")
+        self.assertEqual(len(set(values[:, peak])), 64)  # every draw its own
+        for draw in (0, 5, 37, 63):
+            self.call("replay", "case-band.h5", draw, "--out", f"draw-{draw}.toml", expect=0)
+            run = self.json("surge", f"draw-{draw}.toml")
+            self.assertEqual(run["places"]["chamber"]["max_pressure_Pa"], values[draw, peak], draw)
+            chamber, tank = run["places"]["chamber"]["pressure_Pa"], run["places"]["tank"]["pressure_Pa"]
+            self.assertAlmostEqual((tank - chamber) / values[draw, drop], 1.0, places=9)
+
+    def test_worst_draws_come_in_order(self):
+        import h5py
+
+        self.call("band", "case.toml", "--surge", expect=0)
+        with h5py.File(self.folder / "case-band.h5") as file:
+            names = [n.decode() if isinstance(n, bytes) else n for n in file["bands/output_name"][()]]
+            peaks = sorted(file["bands/output_value"][()][:, names.index("peak")], reverse=True)
+        for rank in (1, 2, 7):
+            case = self.call("replay", "case-band.h5", "worst", rank, expect=0).stdout
+            run = json.loads(self.call("surge", "-", "--json", "-f", stdin=case, expect=0).stdout)
+            self.assertEqual(run["places"]["chamber"]["max_pressure_Pa"], peaks[rank - 1])
+        self.call("replay", "case-band.h5", "worst", 65, expect=64)
+        self.call("replay", "case-band.h5", 64, expect=64)
+        self.call("replay", "case-band.h5", "-1", expect=64)
+
+    def test_replay_of_a_single_run_is_refused(self):
+        self.call("surge", "case.toml", expect=0)
+        self.assertIn("no draws", self.call("replay", "case-surge.h5", 0, expect=64).stderr)
+
+    def test_at_a_place_and_along_a_pipe(self):
+        run = self.json("surge", "case.toml")
+        spot = self.json("at", "case-surge.h5", "chamber")
+        for key in ["head_m", "pressure_Pa", "max_pressure_Pa", "min_pressure_Pa", "time_of_max_s"]:
+            self.assertEqual(spot[key], run["places"]["chamber"][key])
+        end = self.json("at", "case-surge.h5", "main @ 1800 m")
+        self.assertAlmostEqual(end["max_head_m"], run["places"]["chamber"]["max_head_m"], places=9)
+        middle, feet = self.json("at", "case-surge.h5", "main @ 900 m"), self.json("at", "case-surge.h5", "main @ 2952.7559055118 ft")
+        self.assertAlmostEqual(middle["max_head_m"], feet["max_head_m"], places=6)
+        tank = self.json("at", "case-surge.h5", "tank")
+        self.assertAlmostEqual(middle["head_m"], 0.5 * (tank["head_m"] + spot["head_m"]), places=9)
+        whole = self.json("at", "case-surge.h5", "main")
+        self.assertEqual(whole["max_pressure_Pa"], run["extremes"]["max_pressure_Pa"])
+        text = self.call("at", "case-surge.h5", "chamber", expect=0).stdout
+        self.assertIn("highest", text)
+        self.assertIn("lowest", text)
+        self.assertIn("surge limit", text)
+        self.assertIn("did you mean chamber", self.call("at", "case-surge.h5", "chambr", expect=64).stderr)
+        self.call("at", "case-surge.h5", "main @ 1801 m", expect=64)
+        self.call("at", "case-surge.h5", "main @ 900", expect=64)
+
+    def test_compare_subtracts_the_same_draws_only(self):
+        self.write("slow.toml", valve_case(limit=12, replace=[('over = "1 s"', 'over = "6 s"')]))
+        self.call("band", "case.toml", "--surge", expect=0)
+        self.call("band", "slow.toml", "--surge", expect=0)
+        both = self.json("compare", "case-band.h5", "slow-band.h5")
+        self.assertTrue(both["paired"])
+        peak = both["numbers"]["peak"]
+        self.assertLess(peak["difference"], -2e5)
+        low, median, high = peak["difference_band"]
+        self.assertTrue(low <= median <= high < 0)
+        self.assertEqual(peak["pairs"], 64)
+        self.call("band", "slow.toml", "--surge", "--seed", 21, expect=0)
+        apart = self.json("compare", "case-band.h5", "slow-band.h5")
+        self.assertFalse(apart["paired"])
+        self.assertEqual(apart["numbers"]["peak"]["difference_band"], [None, None, None])
+        self.assertIn("seeds differ", self.call("compare", "case-band.h5", "slow-band.h5", expect=0).stdout)
+        same = self.json("compare", "case-band.h5", "case-band.h5")
+        self.assertEqual(same["numbers"]["peak"]["difference_band"], [0, 0, 0])
+
+
 class Unfinished(Outside):
     def test_no_steady_state_is_three_with_a_file(self):
         # the crest lies far over the tank: below the vapour limit before anything moves
@@ -308,7 +392,7 @@ class Bits(Outside):
         for words in [["band"], ["band", "--surge"], ["surge"]]:
             files = {}
             for threads in (1, 2, 3):
-                name = f"{words[-1].strip('-')}-{threads}.h5"
+                name = f"{''.join(words)}-{threads}.h5"
                 self.call(words[0], "case.toml", *words[1:], "--threads", threads, "--out", name, expect=0)
                 files[threads] = contents(self.folder / name)
             self.assertGreater(len(files[1]), 20)
