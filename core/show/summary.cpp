@@ -104,18 +104,41 @@ void liquid(Frame& f) {
   if (!l.source.empty()) f.line(l.source);
 }
 
+/// One value as understood: its name, what it was read as in both families, and below where it came from.
+void value_echo(Frame& f, const answers::ValueEcho& v) {
+  constexpr std::size_t name_width = 30;
+  constexpr std::size_t room = terminal_width - name_width - 2;
+  const std::string indent(name_width + 2, ' ');
+  const auto beside = [&](const std::string& text) {  // wrapped in the right-hand column
+    std::string out;
+    for (const char c : wrapped(f.plain(text), room, "")) out.append(c == '\n' ? "\n" + indent : std::string(1, c));
+    return out + '\n';
+  };
+  std::string first = v.shown_si.empty() ? v.written : v.shown_si;
+  std::string second = v.shown_us;
+  if ((f.options.units.empty() ? f.study.units_shown : f.options.units) == "us" && !second.empty()) std::swap(first, second);
+  if (second.starts_with(first)) first = second;  // a bare number is the same in both families
+  if (first.starts_with(second)) second.clear();
+  if (v.guess) first += " *";
+  std::string name = f.plain(v.name.empty() ? v.path : v.name);
+  const std::size_t width = width_of(name);
+  if (width < name_width) name.append(name_width - width, ' ');
+  f.out.append("  ").append(name);
+  if (width >= name_width) f.out.append("\n").append(indent);
+  std::string origin = v.source;
+  if (!v.grade.empty()) origin.append(origin.empty() ? "" : ", ").append("grade ").append(v.grade);
+  const bool together = !second.empty() && width_of(first) + width_of(second) + 5 <= room;
+  if (together) first.append("  =  ").append(second);
+  if (origin == "default" && width_of(first) + 11 <= room) first.append("  (").append(std::exchange(origin, {})).append(")");
+  f.out += beside(first);
+  if (!second.empty() && !together) f.out += indent + beside("= " + second);
+  if (!origin.empty()) f.out += indent + beside("from: " + origin);
+}
+
 void values(Frame& f) {
   if (!f.study.values_shown || f.study.values.empty()) return;
-  f.heading("Values as understood (* nobody stated it)");
-  const bool us = (f.options.units.empty() ? f.study.units_shown : f.options.units) == "us";
-  TextTable table = f.table({"value", "read as", "spread", "grade", "source"});
-  for (std::size_t column = 1; column <= 4; ++column) table.left(column);
-  for (const auto& v : f.study.values) {
-    std::string read = us ? v.shown_us : v.shown_si;
-    if (read.empty()) read = v.written;
-    table.add({v.name.empty() ? v.path : v.name, v.guess ? read + " *" : read, v.spread, v.grade, v.source});
-  }
-  f.out += table.text(2);
+  f.heading("Values as understood, in both unit families (* nobody stated it)");
+  for (const auto& v : f.study.values) value_echo(f, v);
 }
 
 void pipes(Frame& f) {
