@@ -63,6 +63,11 @@ class Grammar {
     if (rule_.form == Form::scatter && !number_ahead()) {
       quantity_.value = 1.0;
     } else {
+      for (const std::string_view word : {"±", "+/-", "x/", "between", "likely"})
+        if (text_.substr(at_).starts_with(word))
+          fail("the value before the spread is missing",
+               right_form_with_spread(),
+               "write the value a single run uses, then its spread");
       central_ = amount();
       if (take_word("..")) return read_range(central_);
       quantity_.value = central_value(central_);

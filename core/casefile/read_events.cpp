@@ -132,6 +132,21 @@ void read_stroke(Section& section, Event& event, const Subject& subject) {
                              "say where the movement ends");
 }
 
+void read_start(Section& section, Event& event) {
+  const toml::node* over = section.ask("over");
+  if (over == nullptr)
+    section.context().report(section.place(),
+                             section.path("over"),
+                             "the start of the pump has no time",
+                             "",
+                             "over = \"8 s\" or over = \"instant\"",
+                             "say how long the pump runs up");
+  else if (over->is_string() && over->as_string()->get() == "instant")
+    event.instant = true;
+  else
+    event.over = section.quantity("over");
+}
+
 Event read_event(Context& context, const toml::table& table, std::size_t index) {
   Event event;
   const Subject* subject = nullptr;
@@ -170,6 +185,11 @@ Event read_event(Context& context, const toml::table& table, std::size_t index) 
                    "at = \"0 s\", or when = \"pressure at PLACE above 12 bar g\"",
                    "write one of the two");
   event.delay = section.quantity("delay");
+  if (section.has("delay") && !section.has("when"))
+    section.report("delay",
+                   "a delay belongs to a condition",
+                   "when = \"pressure at PLACE above 12 bar g\"",
+                   "add the delay to `at`, or write the condition");
   const bool swings = section.has("swing");
   if (event.kind == EventKind::move_valve && swings) {
     event.kind = EventKind::swing_valve;
@@ -179,7 +199,7 @@ Event read_event(Context& context, const toml::table& table, std::size_t index) 
       section.report("swing", "the swing has no period", "period = \"6.22 s\"", "add the period");
   } else if (event.kind == EventKind::trip_pump || event.kind == EventKind::start_pump) {
     event.tripping = static_cast<int>(section.whole("tripping", 0, 1, 1000));
-    if (event.kind == EventKind::start_pump) event.over = section.quantity("over");
+    if (event.kind == EventKind::start_pump) read_start(section, event);
   } else {
     read_stroke(section, event, *subject);
   }

@@ -77,11 +77,6 @@ void refuse_of_surge(const Case& c, Refusals& refusals) {
                    "event/" + (e.name.empty() ? e.subject : e.name) + "/when",
                    "an event that waits for a condition",
                    "give the event a time `at`");
-    if (e.kind == EventKind::start_pump)
-      refusals.add(e.place,
-                   "event/" + (e.name.empty() ? e.subject : e.name) + "/start",
-                   "the start of a pump",
-                   "leave the event out");
   }
   if (c.surge.unsteady_friction)
     refusals.add(c.surge.place, "surge/unsteady_friction", "unsteady friction", "write unsteady_friction = \"off\"");
