@@ -232,7 +232,8 @@ class BandRun {
   }
 
   bool form_budget() {
-    BudgetRequest request{.inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .surge = options_.surge};
+    BudgetRequest request{.inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .names = {}, .surge = options_.surge};
+    for (const auto& answer : outcome_.bands.answers) request.names.push_back(answer.name);
     request.draw_options = draw_options(static_cast<long long>(ranges_.points.size()) * draws_);
     Budget budget = find_budget(request, table_, models_);
     for (const auto& words : budget.warnings) warn(words);

@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/propagate/budget.hpp"
 
+#include "montecarlo/propagate/fitted_shares.hpp"
 #include "montecarlo/sensitivity/exchange.hpp"
 #include "montecarlo/sensitivity/shares.hpp"
 
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
 #include <optional>
 #include <span>
 
@@ -14,7 +14,7 @@ namespace headband::montecarlo {
 
 namespace {
 
-/// Inputs beyond this many are not exchanged one by one: their shares are left out, and that is said.
+/// With more inputs than this, or with a march in each draw, shares come from a fit in place of exchanged inputs.
 constexpr std::size_t most_exchanged = 64;
 
 /// Runs extra passes over the budget's draws.
@@ -134,9 +134,9 @@ Budget find_budget(const BudgetRequest& request, const DrawTable& table, std::ve
   const auto random = random_unknowns(*request.inputs, *request.ranges);
   freeze_groups(passes, *request.inputs, random, table, budget);
   if (!passes.stopped() && !random.empty()) {
-    if (random.size() > most_exchanged) {
-      budget.warnings.push_back(fmt::format("{} unknowns: variance shares are found for at most {}", random.size(), most_exchanged));
-    } else if (!request.surge) {
+    if (request.surge || random.size() > most_exchanged) {
+      fit_inputs(request, table, budget);
+    } else {
       exchange_inputs(passes, request, random, table, budget);
     }
   }

@@ -32,6 +32,7 @@ struct BudgetRequest {
   const std::vector<Input>* inputs = nullptr;
   const Ranges* ranges = nullptr;
   const Sampler* sampler = nullptr;
+  std::vector<std::string> names;  ///< of the answers, for remarks
   bool surge = false;
   DrawOptions draw_options = {};
 };

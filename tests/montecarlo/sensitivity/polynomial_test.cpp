@@ -1,0 +1,93 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/sensitivity/polynomial.hpp"
+
+#include "core/base/spread.hpp"
+#include "montecarlo/sampling/philox.hpp"
+
+#include <gtest/gtest.h>
+
+#include <cmath>
+#include <numbers>
+
+namespace headband::montecarlo {
+namespace {
+
+double normal(double u) { return base::normal_quantile(base::Lanes<1>(u)).number; }
+
+std::vector<FitInput> inputs_of(std::size_t count, std::size_t draws, bool normal_ones) {
+  std::vector<FitInput> inputs(count);
+  for (std::size_t u = 0; u < count; ++u) {
+    inputs[u].normal = normal_ones;
+    for (std::uint64_t i = 0; i < draws; ++i) inputs[u].score.push_back(score_of_bits(philox_bits(4, i, u)));
+  }
+  return inputs;
+}
+
+TEST(Polynomial, LinearAndProductInNormals) {
+  const auto inputs = inputs_of(3, 2048, true);
+  std::vector<double> linear, product;
+  for (std::size_t i = 0; i < 2048; ++i) {
+    const double a = normal(inputs[0].score[i]), b = normal(inputs[1].score[i]), c = normal(inputs[2].score[i]);
+    linear.push_back(a + 2.0 * 0.5 * b + 3.0 * 0.2 * c);
+    product.push_back((1.0 + 0.5 * a) * (1.0 + 0.5 * b) * (1.0 + 0.5 * c));
+  }
+  // variances 1, 1, 0.36 of 2.36, as in the reference file; sampling noise of the variance 4 sqrt(2/2048) = 0.125
+  const auto l = fit_shares(inputs, linear);
+  EXPECT_NEAR(l.explained, 1.0, 1e-6);
+  EXPECT_NEAR(l.first[0] / l.first[1], 1.0, 1e-6);
+  EXPECT_NEAR(l.first[2] / l.first[1], 0.36, 1e-6);
+  EXPECT_NEAR(l.first[0], 1.0 / 2.36, 0.125 * 0.42);
+  // product: V = 1.25^3 - 1; S = 0.25 / V; ST = 0.25 * 1.25^2 / V
+  const auto p = fit_shares(inputs, product);
+  EXPECT_NEAR(p.explained, 1.0, 1e-6);
+  const double v = std::pow(1.25, 3.0) - 1.0;
+  for (std::size_t u = 0; u < 3; ++u) {
+    EXPECT_NEAR(p.first[u], 0.25 / v, 0.04);
+    EXPECT_NEAR(p.total[u], 0.25 * 1.5625 / v, 0.06);
+    EXPECT_NEAR(p.total[u] / p.first[u], 1.5625, 1e-6);
+  }
+}
+
+TEST(Polynomial, IshigamiInEvenInputs) {
+  const auto inputs = inputs_of(3, 4096, false);
+  std::vector<double> y;
+  for (std::size_t i = 0; i < 4096; ++i) {
+    const auto x = [&](std::size_t u) { return std::numbers::pi * (2.0 * inputs[u].score[i] - 1.0); };
+    y.push_back(std::sin(x(0)) + 7.0 * std::pow(std::sin(x(1)), 2.0) + 0.1 * std::pow(x(2), 4.0) * std::sin(x(0)));
+  }
+  const auto s = fit_shares(inputs, y);
+  EXPECT_GT(s.explained, 0.95);
+  EXPECT_NEAR(s.first[0], 0.3139, 0.03);  // reference values, plain draws: noise about 1 / sqrt(4096) of the whole
+  EXPECT_NEAR(s.first[1], 0.4424, 0.03);
+  EXPECT_NEAR(s.first[2], 0.0, 0.01);
+  EXPECT_NEAR(s.total[2], 0.2437, 0.03);
+}
+
+TEST(Polynomial, ChoicesAndManyInputs) {
+  auto inputs = inputs_of(30, 2048, true);
+  inputs[29].option_ends = {0.3, 0.8, 1.0};
+  std::vector<double> y;
+  for (std::size_t i = 0; i < 2048; ++i) {
+    const double option = inputs[29].score[i] < 0.3 ? 0.0 : (inputs[29].score[i] < 0.8 ? 1.0 : 3.0);
+    y.push_back(normal(inputs[3].score[i]) + option);
+  }
+  const auto s = fit_shares(inputs, y);
+  // Var(option) = 0.5 + 0.2 * 9 - 1.1^2 = 1.09, of 2.09
+  EXPECT_GT(s.explained, 0.99);
+  EXPECT_NEAR(s.first[29], 1.09 / 2.09, 0.05);
+  EXPECT_NEAR(s.first[3], 1.0 / 2.09, 0.05);
+  EXPECT_NEAR(s.total[7], 0.0, 1e-3);
+}
+
+TEST(Polynomial, SaysWhenItDoesNotFit) {
+  const auto inputs = inputs_of(2, 1024, false);
+  std::vector<double> noise;
+  for (std::uint64_t i = 0; i < 1024; ++i) noise.push_back(score_of_bits(philox_bits(9, i, 1)));
+  EXPECT_LT(fit_shares(inputs, noise).explained, 0.05);
+  const auto constant = fit_shares(inputs, std::vector<double>(1024, 2.0));
+  EXPECT_EQ(constant.first[0], 0.0);
+  EXPECT_TRUE(std::isnan(fit_shares(inputs, std::vector<double>(1024, std::nan(""))).first[0]));
+}
+
+}  // namespace
+}  // namespace headband::montecarlo
