@@ -135,9 +135,16 @@ double read_until(Section& section) {
   return 0.0;
 }
 
-void bound_to_gauge(Quantity& bound, const Case& c) {
+void bound_to_gauge(Section& section, std::string_view key, Quantity& bound, const Case& c) {
   if (!bound.given() || bound.dimension != base::Dimension::pressure || bound.gauge || !c.site.atmosphere.given())
     return;
+  if (!c.site.atmosphere.exact()) {
+    section.report(key,
+                   "an absolute limit has no fixed gauge pressure where the atmosphere is uncertain",
+                   "a gauge pressure, \"12 bar g\", or an exact atmosphere",
+                   "write the limit as gauge pressure, or the atmosphere without a spread");
+    return;
+  }
   bound.value -= c.site.atmosphere.value;
   bound.gauge = true;
 }
@@ -198,7 +205,7 @@ void read_plain_limit(Section& section, const Case& c, Limit& limit) {
     if (carries_bound(k.kind)) {
       limit.bound = section.quantity(k.word);
       limit.not_over = k.kind != AnswerKind::lowest_pressure;
-      bound_to_gauge(limit.bound, c);
+      bound_to_gauge(section, k.word, limit.bound, c);
       continue;
     }
     limit.subject.where = read_spots(section.context(), *node, section.path(k.word), k.kind);

@@ -242,7 +242,9 @@ class PlanMaker {
     entry.subject.kind = AnswerKind::highest_pressure;
     entry.subject.where.name = case_.pipes[pipe].name;
     entry.subject.where.pipe = PipeId{static_cast<int>(pipe)};
-    entry.bound = case_.pipes[pipe].rating.value;
+    const Quantity& rating = case_.pipes[pipe].rating;
+    const Quantity& atmosphere = case_.site.atmosphere;
+    entry.bound = rating.gauge ? rating.value : rating.value - (atmosphere.given() ? atmosphere.value : 101325.0);
     entry.rating_of_pipe = static_cast<int>(pipe);
     return entry;
   }

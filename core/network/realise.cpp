@@ -33,6 +33,12 @@ Lanes<W> gauge_pressure(const Quantity& pressure, const Draw<W>& draw, const Val
   return pressure.gauge ? draw(pressure) : draw(pressure) - values.atmosphere;
 }
 
+/// Gauge pressure a pipe is rated for; not a number where it has none [Pa].
+template <int W>
+void realise_rating(const Pipe& pipe, const Draw<W>& draw, const Values<W>& values, PipeValues<W>& out) {
+  out.rating = pipe.rating.given() ? gauge_pressure(pipe.rating, draw, values) : Lanes<W>(not_a_number);
+}
+
 template <int W>
 void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values<W>& values) {
   for (std::size_t i = 0; i < plan.places.size(); ++i) {
@@ -199,6 +205,7 @@ void realise_all(const Case& c, const Plan& plan, const Draw<W>& draw, Values<W>
   realise_places(c, plan, draw, values);
   for (std::size_t i = 0; i < c.pipes.size(); ++i) {
     detail::realise_geometry(c.pipes[i], draw, values.pipes[i]);
+    realise_rating(c.pipes[i], draw, values, values.pipes[i]);
     detail::realise_wave(c.pipes[i], plan.pipes[i], draw, values.liquid, values.pipes[i]);
     detail::realise_friction(c, i, plan.pipes[i].loss, draw, values.pipes[i]);
     detail::realise_fittings(c.pipes[i], draw, values.pipes[i]);
@@ -234,7 +241,8 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan) {
     const bool lining = varies(p.lining_thickness);
     const bool profile = varies_in_rows(p.profile);
     any_profile = any_profile || profile;
-    changes.geometry = varies(p.length, p.outside, p.wall, p.bore, p.rating) || lining || profile;
+    changes.geometry = varies(p.length, p.outside, p.wall, p.bore) || lining || profile;
+    changes.rating = varies(p.rating) || (site_ && p.rating.given() && !p.rating.gauge);
     changes.wave =
         changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
         varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed, p.wave_speed_scatter);
@@ -305,6 +313,7 @@ void Realiser::draw(const Scores<W>& scores, Values<W>& values) const {
   for (std::size_t i = 0; i < pipes_.size(); ++i) {
     PipeValues<W>& pipe = values.pipes[i];
     if (pipes_[i].geometry) detail::realise_geometry(c.pipes[i], drawn, pipe);
+    if (pipes_[i].rating) realise_rating(c.pipes[i], drawn, values, pipe);
     if (pipes_[i].wave) detail::realise_wave(c.pipes[i], plan_->pipes[i], drawn, values.liquid, pipe);
     if (pipes_[i].friction) detail::realise_friction(c, i, plan_->pipes[i].loss, drawn, pipe);
     if (pipes_[i].fittings) detail::realise_fittings(c.pipes[i], drawn, pipe);

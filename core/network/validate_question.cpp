@@ -298,7 +298,7 @@ void need_for_surge(const Case& c, detail::ProblemList& problems) {
                      "the vapour pressure is missing",
                      "vapour_pressure = \"0.3 bar abs\"",
                      "give it, or [surge] cavities = \"off\"");
-  if (own && !c.liquid.bulk_modulus.given() && c.liquid.free_gas.given())
+  if (own && !c.liquid.bulk_modulus.given() && (c.liquid.free_gas.value > 0.0 || !c.liquid.free_gas.exact()))
     problems.missing(c.liquid.place,
                      "liquid/bulk_modulus",
                      "free gas needs the liquid's bulk modulus",

@@ -30,6 +30,7 @@ class PipelineModel {
     }
     if (!marcher_) {
       evaluate(out);
+      count_ratings(out);
       out.status = status;
       return;
     }
@@ -47,6 +48,7 @@ class PipelineModel {
       solve(spare_);
     }
     marcher_->march<8>(values_, state_, out);
+    count_ratings(out);
     for (std::size_t lane = 0; lane < 8; ++lane)
       if (status[lane] != 0) out.status[lane] = status[lane];
   }
@@ -67,6 +69,16 @@ class PipelineModel {
       status[lane] = usable ? 0 : (state_.status[lane] == steady::SteadyStatus::not_finite ? 2 : 1);
     }
     return status;
+  }
+
+  /// Limits are judged against one number each. What a drawn rating is over its central value is therefore taken off
+  /// the pressure: the distance between the two is that of the draw.
+  void count_ratings(BlockAnswers& out) const {
+    for (std::size_t i = 0; i < plan_->limits.size(); ++i) {
+      const network::LimitPlan& limit = plan_->limits[i];
+      if (limit.rating_of_pipe < 0) continue;
+      out.limit[i] -= values_.pipes[static_cast<std::size_t>(limit.rating_of_pipe)].rating - limit.bound;
+    }
   }
 
   void evaluate(BlockAnswers& out) {

@@ -25,7 +25,6 @@ void realise_geometry(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& valu
     values.wall = pipe.outside.given() ? 0.5 * (draw(pipe.outside) - values.metal_inner_diameter) : draw(pipe.wall);
   }
   values.area = (0.25 * std::numbers::pi) * (values.bore * values.bore);
-  values.rating = draw(pipe.rating);
 }
 
 [[nodiscard]] inline headband::pipe::Restraint restraint_of(Joint joint) {

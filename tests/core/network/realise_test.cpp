@@ -302,5 +302,20 @@ TEST(Realiser, UpdatesAllThatDrawsChangeAndNothingElse) {
   }
 }
 
+// The rating is a gauge pressure for limits and pages, however it is written.
+TEST(Realise, ARatingWrittenAbsoluteIsCountedFromTheAtmosphere) {
+  CaseBuilder build;
+  build.basin("tank", 60.0);
+  build.pipe("main", "tank", "end", 900.0, 0.3).rating = exact(17e5, Dimension::pressure);
+  build.draw_off("out", "end", 0.08);
+  build.c.site.atmosphere = exact(1e5, Dimension::pressure);
+  const auto c = build.finish();
+  ASSERT_FALSE(c.pipes[0].rating.gauge);
+  const auto plan = network::make_plan(c);
+  ASSERT_EQ(plan.limits.size(), 1U);
+  EXPECT_EQ(plan.limits[0].bound, 16e5);
+  EXPECT_EQ(network::realise(c, plan).pipes[0].rating[0], 16e5);
+}
+
 }  // namespace
 }  // namespace headband
