@@ -34,6 +34,13 @@ class Ranked {
   /// The numbers, in the order given where there are many of them.
   [[nodiscard]] const std::vector<double>& numbers() const { return numbers_; }
 
+  /// Even bins and how many numbers each holds; none where the numbers are few.
+  struct Bins {
+    double low = 0.0, width = 0.0;
+    std::vector<std::size_t> count;
+  };
+  [[nodiscard]] Bins bins() const;
+
  private:
   [[nodiscard]] std::size_t bin_of(double x) const;
   [[nodiscard]] std::size_t bin_of_rank(std::size_t rank) const;

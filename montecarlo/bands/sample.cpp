@@ -13,13 +13,20 @@ namespace headband::montecarlo {
 namespace {
 
 /// Gaussian kernel estimate of the density on an even grid: counts in fine bins, then a convolution.
-std::vector<double> density(const std::vector<double>& numbers, double low, double high, double width, int bins) {
+std::vector<double> density(const Ranked& ranked, double low, double high, double width, int bins) {
   const double step = (high - low) / bins, per_step = 1.0 / step;
   std::vector<double> count(static_cast<std::size_t>(bins), 0.0);
-  for (const double x : numbers) {
-    if (x < low || x > high) continue;
-    const int bin = std::min(static_cast<int>((x - low) * per_step), bins - 1);
-    count[static_cast<std::size_t>(bin)] += 1.0;
+  const auto add = [&](double x, double many) {
+    if (x < low || x > high) return;
+    count[static_cast<std::size_t>(std::min(static_cast<int>((x - low) * per_step), bins - 1))] += many;
+  };
+  const Ranked::Bins counted = ranked.bins();
+  if (!counted.count.empty() && counted.width < 0.1 * width) {  // what is counted already is fine enough
+    for (std::size_t b = 0; b < counted.count.size(); ++b) {
+      add(counted.low + (static_cast<double>(b) + 0.5) * counted.width, static_cast<double>(counted.count[b]));
+    }
+  } else {
+    for (const double x : ranked.numbers()) add(x, 1.0);
   }
   const int reach = std::min(bins, static_cast<int>(std::ceil(5.0 * width / step)));
   std::vector<double> kernel(static_cast<std::size_t>(reach) + 1);
@@ -27,7 +34,7 @@ std::vector<double> density(const std::vector<double>& numbers, double low, doub
     const double z = static_cast<double>(k) * step / width;
     kernel[k] = std::exp(-0.5 * z * z);
   }
-  const double scale = 1.0 / (static_cast<double>(numbers.size()) * width * std::sqrt(2.0 * std::numbers::pi));
+  const double scale = 1.0 / (static_cast<double>(ranked.size()) * width * std::sqrt(2.0 * std::numbers::pi));
   std::vector<double> result(count.size());
   for (int i = 0; i < bins; ++i) {
     double sum = 0.0;
@@ -57,12 +64,18 @@ Sample::Sample(std::span<const double> values, std::span<const std::int8_t> stat
   finished.reserve(values.size());
   std::vector<std::vector<double>> parts(replicates > 1 ? replicates : 0);
   for (auto& part : parts) part.reserve(values.size() / replicates + 1);
-  for (std::size_t i = 0; i < values.size(); ++i) {
-    if (status[i] == 0 && !std::isnan(values[i])) finished.push_back(values[i]);
+  const auto good = [&](std::size_t i) { return status[i] == 0 && !std::isnan(values[i]); };
+  bool all_good = true;
+  for (std::size_t i = 0; i < values.size(); ++i) all_good &= good(i);
+  if (all_good) {
+    finished.assign(values.begin(), values.end());
+  } else {
+    for (std::size_t i = 0; i < values.size(); ++i)
+      if (good(i)) finished.push_back(values[i]);
   }
   for (std::size_t r = 0; r < parts.size(); ++r) {
     for (std::size_t i = r; i < values.size(); i += replicates) {
-      if (status[i] == 0 && !std::isnan(values[i])) parts[r].push_back(values[i]);
+      if (good(i)) parts[r].push_back(values[i]);
     }
   }
   if (finished.empty()) return;
@@ -154,6 +167,7 @@ std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> p
 int Sample::modes() const {
   if (ranked_.empty()) return 0;
   const auto n = static_cast<double>(ranked_.size());
+  ranked_.announce(std::array{ranked_.place_of(0.001), ranked_.place_of(0.25), ranked_.place_of(0.75), ranked_.place_of(0.999)});
   const double quartiles = ranked_.quantile(0.75) - ranked_.quantile(0.25);
   const double spread = quartiles > 0.0 ? std::min(standard_deviation_, quartiles / 1.34) : standard_deviation_;
   if (!(spread > 1e-12 * std::fabs(mean_)) || ranked_.size() < 50) return 1;
@@ -161,7 +175,7 @@ int Sample::modes() const {
   const double width = 0.45 * spread * std::pow(n, -0.2);
   const double low = ranked_.quantile(0.001) - 3.0 * width, high = ranked_.quantile(0.999) + 3.0 * width;
   const int bins = std::clamp(static_cast<int>(4.0 * (high - low) / width), 64, 4000);
-  const std::vector<double> f = density(ranked_.numbers(), low, high, width, bins);
+  const std::vector<double> f = density(ranked_, low, high, width, bins);
   // standard error of a kernel estimate: sqrt(f R(K) / (n h)), R = 1 / (2 sqrt(pi))
   const double noise = 1.0 / (2.0 * std::sqrt(std::numbers::pi) * n * width);
   int humps = 0;

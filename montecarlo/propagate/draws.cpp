@@ -85,7 +85,7 @@ void work(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockMo
         block.status.fill(not_finite);
       }
       const int lanes = static_cast<int>(std::min(8LL, to - first));
-      for (int lane = 0; lane < lanes; ++lane) table.store(static_cast<std::size_t>(first + lane), lane, block);
+      table.store(static_cast<std::size_t>(first), lanes, block);
     }
   }
 }
@@ -104,7 +104,33 @@ void DrawTable::resize(long long draws) {
   cavity.resize(n, 0);
 }
 
-void DrawTable::store(std::size_t draw, int lane, const BlockAnswers& block) {
+bool DrawTable::all_finished(const BlockAnswers& block) {
+  if (std::ranges::any_of(block.status, [](std::int8_t s) { return s != 0; })) return false;
+  Lanes<8> sum = 0.0;  // stays zero only where each number is finite
+  for (const auto* numbers : {&block.answer, &block.limit})
+    for (const auto& number : *numbers) sum += 0.0 * number;
+  return base::all(sum == Lanes<8>(0.0));
+}
+
+void DrawTable::store(std::size_t first, int lanes, const BlockAnswers& block) {
+  // the usual block: eight finished draws, whole columns at once
+  if (lanes == 8 && head_max.empty() && all_finished(block)) {
+    const auto put = [first](const std::vector<Lanes<8>>& from, std::vector<std::vector<double>>& to) {
+      for (std::size_t i = 0; i < to.size(); ++i) {
+        double* const column = to[i].data() + first;
+        for (int lane = 0; lane < 8; ++lane) column[lane] = from[i][lane];
+      }
+    };
+    put(block.answer, answer);
+    put(block.limit, limit);
+    std::fill_n(status.begin() + static_cast<std::ptrdiff_t>(first), 8, std::int8_t{0});
+    for (std::size_t lane = 0; lane < 8; ++lane) cavity[first + lane] = block.cavity[lane] ? 1 : 0;
+    return;
+  }
+  for (int lane = 0; lane < lanes; ++lane) store_lane(first + static_cast<std::size_t>(lane), lane, block);
+}
+
+void DrawTable::store_lane(std::size_t draw, int lane, const BlockAnswers& block) {
   std::int8_t outcome = block.status[static_cast<std::size_t>(lane)];
   double sum = 0.0;  // stays finite only where each number is
   for (const auto* numbers : {&block.answer, &block.limit})

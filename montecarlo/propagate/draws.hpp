@@ -33,8 +33,13 @@ struct DrawTable {
       : answer(answers), limit(limits), head_max(stations), head_min(stations) {}
   [[nodiscard]] long long draws() const { return static_cast<long long>(status.size()); }
   void resize(long long draws);
-  /// Stores one lane; an answer or limit that is not finite makes the draw a failed one (status 2).
-  void store(std::size_t draw, int lane, const BlockAnswers& block);
+  /// Stores the first `lanes` lanes of a block as the draws from `first` on; an answer or limit that is not finite makes
+  /// its draw a failed one (status 2).
+  void store(std::size_t first, int lanes, const BlockAnswers& block);
+
+ private:
+  void store_lane(std::size_t draw, int lane, const BlockAnswers& block);
+  [[nodiscard]] static bool all_finished(const BlockAnswers& block);
 };
 
 struct DrawOptions {

@@ -17,29 +17,20 @@ struct FourCounters {
   __m256i word0, word1, word2, word3;
 };
 
-HEADBAND_INLINE void rounds(const PhiloxKey& key, FourCounters& c) {
+HEADBAND_INLINE void one_round(__m256i k0, __m256i k1, FourCounters& c) {
   const __m256i m0 = _mm256_set1_epi64x(static_cast<long long>(multiplier_0));
   const __m256i m1 = _mm256_set1_epi64x(static_cast<long long>(multiplier_1));
-  for (const auto& k : key.round) {
-    const __m256i p0 = _mm256_mul_epu32(c.word0, m0);
-    const __m256i p1 = _mm256_mul_epu32(c.word2, m1);
-    const __m256i k0 = _mm256_set1_epi64x(static_cast<long long>(k[0]));
-    const __m256i k1 = _mm256_set1_epi64x(static_cast<long long>(k[1]));
-    c.word0 = _mm256_xor_si256(_mm256_xor_si256(_mm256_srli_epi64(p1, 32), c.word1), k0);
-    c.word2 = _mm256_xor_si256(_mm256_xor_si256(_mm256_srli_epi64(p0, 32), c.word3), k1);
-    c.word1 = p1;
-    c.word3 = p0;
-  }
+  const __m256i p0 = _mm256_mul_epu32(c.word0, m0);
+  const __m256i p1 = _mm256_mul_epu32(c.word2, m1);
+  c.word0 = _mm256_xor_si256(_mm256_srli_epi64(p1, 32), _mm256_xor_si256(c.word1, k0));
+  c.word2 = _mm256_xor_si256(_mm256_srli_epi64(p0, 32), _mm256_xor_si256(c.word3, k1));
+  c.word1 = p1;
+  c.word3 = p0;
 }
 
-/// Scores of four draws.
-HEADBAND_INLINE base::Quad four_scores(const PhiloxKey& key, __m256i low, __m256i high, std::uint64_t name) {
-  FourCounters c{low, high, _mm256_set1_epi64x(static_cast<long long>(name & 0xffffffffU)),
-                 _mm256_set1_epi64x(static_cast<long long>(name >> 32))};
-  rounds(key, c);
-  // top 52 bits of out1 2^32 + out0, laid into the mantissa of 2^52
-  const __m256i low_word = _mm256_and_si256(c.word0, _mm256_set1_epi64x(0xffffffffLL));
-  const __m256i bits = _mm256_or_si256(_mm256_slli_epi64(c.word1, 32), low_word);
+/// Scores from the first two words: top 52 bits of out1 2^32 + out0, laid into the mantissa of 2^52.
+HEADBAND_INLINE base::Quad four_scores(const FourCounters& c) {
+  const __m256i bits = _mm256_blend_epi32(c.word0, _mm256_slli_epi64(c.word1, 32), 0xAA);
   const __m256i mantissa = _mm256_or_si256(_mm256_srli_epi64(bits, 12), _mm256_set1_epi64x(0x4330000000000000LL));
   const __m256d number = _mm256_sub_pd(_mm256_castsi256_pd(mantissa), _mm256_set1_pd(0x1p52));
   return _mm256_mul_pd(_mm256_add_pd(number, _mm256_set1_pd(0.5)), _mm256_set1_pd(0x1p-52));
@@ -74,12 +65,21 @@ PhiloxKey::PhiloxKey(std::uint64_t seed) {
 
 void philox_scores(const PhiloxKey& key, std::uint64_t first, std::uint64_t name, base::Lanes<8>& scores) {
 #if defined(__AVX2__)
-  const __m256i steps = _mm256_set_epi64x(3, 2, 1, 0);
-  for (int part = 0; part < 2; ++part) {
-    const auto start = static_cast<long long>(first + 4 * static_cast<std::uint64_t>(part));
-    const __m256i draws = _mm256_add_epi64(_mm256_set1_epi64x(start), steps);
-    scores.part[part] = four_scores(key, draws, _mm256_srli_epi64(draws, 32), name);
+  const __m256i start = _mm256_set1_epi64x(static_cast<long long>(first));
+  const __m256i name_low = _mm256_set1_epi64x(static_cast<long long>(name & 0xffffffffU));
+  const __m256i name_high = _mm256_set1_epi64x(static_cast<long long>(name >> 32));
+  const __m256i draws_a = _mm256_add_epi64(start, _mm256_set_epi64x(3, 2, 1, 0));
+  const __m256i draws_b = _mm256_add_epi64(start, _mm256_set_epi64x(7, 6, 5, 4));
+  FourCounters a{draws_a, _mm256_srli_epi64(draws_a, 32), name_low, name_high};
+  FourCounters b{draws_b, _mm256_srli_epi64(draws_b, 32), name_low, name_high};
+  for (const auto& k : key.round) {  // two chains side by side hide the multiplier's latency
+    const __m256i k0 = _mm256_set1_epi64x(static_cast<long long>(k[0]));
+    const __m256i k1 = _mm256_set1_epi64x(static_cast<long long>(k[1]));
+    one_round(k0, k1, a);
+    one_round(k0, k1, b);
   }
+  scores.part[0] = four_scores(a);
+  scores.part[1] = four_scores(b);
 #else
   const std::uint64_t seed = static_cast<std::uint64_t>(key.round[0][1]) << 32 | key.round[0][0];
   for (int lane = 0; lane < 8; ++lane) {
