@@ -106,6 +106,10 @@ answers::Study begin_study(const network::Case& c, const Options& options, const
   study.values = casefile::echo(c);
   study.guesses = c.guesses;
   study.warnings = c.warnings;
+  if (verb == "flow" || verb == "surge") {  // a band takes the whole range
+    for (const auto& unknown : c.unknowns)
+      if (!unknown.random) study.guesses.push_back(fmt::format("{}: the middle of a range that is not random", unknown.name));
+  }
   return study;
 }
 
