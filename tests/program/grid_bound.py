@@ -16,6 +16,7 @@ from networks import Network
 
 PROGRAM = sys.argv[1]
 STEP = 0.02
+FINER = int(sys.argv[2]) if len(sys.argv) > 2 else 8
 
 
 def surge(text):
@@ -41,7 +42,7 @@ def main():
                 continue  # this one stayed above vapour pressure: not of the kind asked for
             found += 1
             networks += 1
-            fine = surge(network.case(time_step=STEP / 4, grid_check=False))["extremes"]
+            fine = surge(network.case(time_step=STEP / FINER, grid_check=False))["extremes"]
             extremes = coarse["extremes"]
             bounds = {end: extremes[f"{end}_grid_bound_Pa"] for end in ("max", "min")}
             if None in bounds.values():
