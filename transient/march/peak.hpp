@@ -2,49 +2,80 @@
 // SPDX-License-Identifier: MIT
 
 #include <cmath>
+#include <limits>
 
 namespace headband::transient {
 
-/// Largest or smallest value of one history, when it came, and how much the history changes beside it.
+/// Largest or smallest value of one history, when it came, and how the history runs beside it.
 struct Peak {
+  static constexpr double none = std::numeric_limits<double>::quiet_NaN();
   double value = 0.0;
   double time = 0.0;        ///< [s]
   long long step = 0;       ///< row; an instant's state counts to its own row
   double beside = 0.0;      ///< largest change between the row of the extreme and the rows beside it
+  double before_last = none, before = none, after = none, after_next = none;  ///< the two rows on either side
 
-  void begin(double first) { *this = Peak{first, 0.0, 0, 0.0}; }
+  void begin(double first) {
+    *this = Peak{};
+    value = first;
+  }
 
-  /// The next row. @param sign +1 for the largest, -1 for the smallest @param before the value of the row before
-  void take(double sign, double now, double before, double at, long long row) {
-    if (row == step + 1) beside = std::fmax(beside, std::fabs(now - value));
-    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, std::fabs(now - before)};
+  /// The next row. @param sign +1 for the largest, -1 for the smallest
+  /// @param last the value of the row before @param earlier of the row before that
+  void take(double sign, double now, double last, double earlier, double at, long long row) {
+    if (row == step + 1) {
+      beside = std::fmax(beside, std::fabs(now - value));
+      after = now;
+    } else if (row == step + 2) {
+      after_next = now;
+    }
+    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, std::fabs(now - last), earlier, last, none, none};
   }
   /// The state at 0+ of an instant at a row: its own jump is no change between rows.
   void take_instant(double sign, double now, double at, long long row) {
-    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, 0.0};
+    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, 0.0, none, none, none, none};
+  }
+
+  /// How much higher (lower) the history may have stood between the rows, where it bends there: the straight lines
+  /// through the two rows before and the two rows behind meet above it. Exact for a bend between straight parts, of
+  /// second order in the step for a smooth top, zero for a bend on a row. >= 0
+  [[nodiscard]] double missed(double sign) const {
+    const double behind = meeting(value - before, value, after, after_next - after);
+    const double ahead = meeting(before - before_last, before, value, after - value);
+    return std::fmax(0.0, std::fmax(sign * (behind - value), sign * (ahead - value)));
+  }
+
+ private:
+  /// Where the line of slope `rise` through (0, left) meets the line of slope `fall` through (1, right); NaN when not
+  /// between 0 and 1.
+  [[nodiscard]] static double meeting(double rise, double left, double right, double fall) {
+    const double x = (right - fall - left) / (rise - fall);
+    return x > 0.0 && x < 1.0 ? left + rise * x : none;
   }
 };
 
 /// Both ends of one history.
 struct Extremes {
   Peak high, low;
-  double first = 0.0;  ///< of the first steady state
-  double last = 0.0;   ///< value of the row before
+  double first = 0.0;    ///< of the first steady state
+  double last = 0.0;     ///< value of the row before
+  double earlier = 0.0;  ///< of the row before that
 
   void begin(double value) {
     high.begin(value);
     low.begin(value);
-    first = last = value;
+    first = last = earlier = value;
   }
   void take(double now, double at, long long row) {
-    high.take(1.0, now, last, at, row);
-    low.take(-1.0, now, last, at, row);
+    high.take(1.0, now, last, earlier, at, row);
+    low.take(-1.0, now, last, earlier, at, row);
+    earlier = last;
     last = now;
   }
   void take_instant(double now, double at, long long row) {
     high.take_instant(1.0, now, at, row);
     low.take_instant(-1.0, now, at, row);
-    last = now;
+    earlier = last = now;
   }
 };
 

@@ -30,6 +30,7 @@ struct AnswerPeak {
   double head = answers::missing;
   int pipe = -1;
   double chainage = answers::missing;
+  double missed = 0.0;  ///< how much more it may be between the rows, see Peak::missed
 };
 
 /// Observer that keeps a whole run.

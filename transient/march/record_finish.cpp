@@ -19,7 +19,8 @@ void Record::take_extreme(const March<1>& march, const Station& s, bool highest,
   const Peak& peak = highest ? s.head.high : s.head.low;
   const double pressure = weight * (peak.value - s.spot.elevation);
   if (best.pipe >= 0 && !(highest ? pressure > best.value : pressure < best.value)) return;
-  best = {pressure, peak.time, weight * peak.beside, peak.value, s.spot.pipe, s.spot.chainage};
+  best = {pressure, peak.time, weight * peak.beside, peak.value, s.spot.pipe, s.spot.chainage,
+          weight * peak.missed(highest ? 1.0 : -1.0)};
 }
 
 AnswerPeak Record::extreme_everywhere(const March<1>& march, bool highest) const {
@@ -37,7 +38,8 @@ AnswerPeak Record::extreme_of(const March<1>& march, const network::AnswerPlan& 
     const Extremes& e = place_head_[where.place.at()];
     const Peak& peak = highest ? e.high : e.low;
     const double z = march.numbers().place_elevation[where.place.at()].number;
-    return {weight * (peak.value - z), peak.time, weight * peak.beside, peak.value, -1, answers::missing};
+    return {weight * (peak.value - z), peak.time, weight * peak.beside, peak.value, -1, answers::missing,
+            weight * peak.missed(highest ? 1.0 : -1.0)};
   }
   for (const Station& s : stations_) {
     if (where.pipe.exists() && s.spot.pipe != where.pipe.index) continue;
@@ -52,7 +54,7 @@ AnswerPeak Record::extreme_of(const March<1>& march, const network::AnswerPlan& 
     }
     if (what.kind == network::AnswerKind::velocity) {
       if (s.section && (best.pipe < 0 || s.top_speed > best.value))
-        best = {s.top_speed, s.top_speed_time, 0.0, answers::missing, s.spot.pipe, s.spot.chainage};
+        best = {s.top_speed, s.top_speed_time, 0.0, answers::missing, s.spot.pipe, s.spot.chainage, 0.0};
     } else {
       take_extreme(march, s, highest, best);
     }

@@ -136,9 +136,13 @@ class Bounds {
     GridBound b;
     if (fine_ == nullptr || !fine_->finished()) return {std::numeric_limits<double>::quiet_NaN(), false};
     if (finest_ == nullptr) {
-      b = bound_from_two(a.value, extreme(*fine_).value);
+      const AnswerPeak fine = extreme(*fine_);
+      b = bound_from_two(a.value, fine.value);
+      b.bound += fine.missed;
     } else if (finest_->finished()) {
-      b = bound_from_three(a.value, extreme(*fine_).value, extreme(*finest_).value, swing_);
+      const AnswerPeak finest = extreme(*finest_);
+      b = bound_from_three(a.value, extreme(*fine_).value, finest.value, swing_);
+      b.bound += finest.missed;
     } else {
       return {std::numeric_limits<double>::quiet_NaN(), false};
     }
