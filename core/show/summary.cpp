@@ -115,6 +115,7 @@ void value_echo(Frame& f, const answers::ValueEcho& v) {
     return out + '\n';
   };
   std::string first = v.shown_si.empty() ? v.written : v.shown_si;
+  if (!v.shown_si.empty() && !v.spread.empty() && first.find(v.spread) == std::string::npos) first.append(", ").append(v.spread);
   std::string second = v.shown_us;
   if ((f.options.units.empty() ? f.study.units_shown : f.options.units) == "us" && !second.empty()) std::swap(first, second);
   if (second.starts_with(first)) first = second;  // a bare number is the same in both families

@@ -38,14 +38,21 @@ struct Peak {
 
   /// How much higher (lower) the history may have stood between the rows, where it bends there: the straight lines
   /// through the two rows before and the two rows behind meet above it. Exact for a bend between straight parts, of
-  /// second order in the step for a smooth top, zero for a bend on a row. >= 0
+  /// second order in the step for a smooth top, zero for a bend on a row and for fronts (a side counts as straight when
+  /// it rises alike over two rows). >= 0
   [[nodiscard]] double missed(double sign) const {
-    const double behind = meeting(value - before, value, after, after_next - after);
-    const double ahead = meeting(before - before_last, before, value, after - value);
-    return std::fmax(0.0, std::fmax(sign * (behind - value), sign * (ahead - value)));
+    double most = 0.0;
+    const double rise = value - before, rise_before = before - before_last;
+    const double fall = after - value, fall_next = after_next - after;
+    if (alike(rise, rise_before)) most = std::fmax(most, sign * (meeting(rise, value, after, fall_next) - value));
+    if (alike(fall, fall_next)) most = std::fmax(most, sign * (meeting(rise_before, before, value, fall) - value));
+    return most;
   }
 
  private:
+  [[nodiscard]] static bool alike(double change, double beside_it) {
+    return change * beside_it > 0.0 && std::fabs(beside_it) >= 0.5 * std::fabs(change);
+  }
   /// Where the line of slope `rise` through (0, left) meets the line of slope `fall` through (1, right); NaN when not
   /// between 0 and 1.
   [[nodiscard]] static double meeting(double rise, double left, double right, double fall) {

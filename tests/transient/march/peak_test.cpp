@@ -1,0 +1,51 @@
+// SPDX-License-Identifier: MIT
+#include "transient/march/peak.hpp"
+
+#include <gtest/gtest.h>
+
+#include <cmath>
+
+namespace headband::transient {
+namespace {
+
+/// Extremes of a history sampled at step 1 from 0 to 20.
+template <class F>
+Extremes sampled(const F& history) {
+  Extremes e;
+  e.begin(history(0.0));
+  for (int k = 1; k <= 20; ++k) e.take(history(k), k, k);
+  return e;
+}
+
+TEST(Peak, a_bend_between_two_rows_is_found_where_the_lines_meet) {
+  for (const double bend : {7.1, 7.5, 7.9}) {
+    const auto roof = [&](double t) { return t < bend ? 3.0 * t : 3.0 * bend - 5.0 * (t - bend); };
+    const Extremes e = sampled(roof);
+    EXPECT_NEAR(e.high.value + e.high.missed(1.0), 3.0 * bend, 1e-12) << bend;
+    const Extremes valley = sampled([&](double t) { return -roof(t); });
+    EXPECT_NEAR(valley.low.value - valley.low.missed(-1.0), -3.0 * bend, 1e-12) << bend;
+  }
+}
+
+TEST(Peak, a_bend_on_a_row_and_a_plateau_hide_nothing) {
+  EXPECT_NEAR(sampled([](double t) { return t < 7.0 ? 3.0 * t : 21.0 - 5.0 * (t - 7.0); }).high.missed(1.0), 0.0, 1e-12);
+  EXPECT_EQ(sampled([](double t) { return t < 7.5 ? 0.0 : 10.0; }).high.missed(1.0), 0.0);
+  EXPECT_NEAR(sampled([](double t) { return std::fmin(3.0 * t, 22.0); }).high.missed(1.0), 0.0, 1e-12);
+}
+
+TEST(Peak, a_smooth_top_hides_a_second_order_amount) {
+  const auto top = [](double scale) {
+    return sampled([scale](double t) { return -std::pow(scale * (t - 10.3), 2); }).high.missed(1.0);
+  };
+  EXPECT_NEAR(top(1.0) / top(0.5), 4.0, 1e-9);
+}
+
+TEST(Peak, times_and_changes_beside_the_extreme_are_kept) {
+  const Extremes e = sampled([](double t) { return t == 5.0 ? 4.0 : t == 6.0 ? 1.0 : 0.0; });
+  EXPECT_EQ(e.high.time, 5.0);
+  EXPECT_EQ(e.high.beside, 4.0);
+  EXPECT_EQ(e.low.value, 0.0);
+}
+
+}  // namespace
+}  // namespace headband::transient
