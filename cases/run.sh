@@ -16,7 +16,10 @@ if [[ ! -f $build/build.ninja ]]; then
   [[ -f /usr/include/gtest/gtest.h && -f /usr/include/benchmark/benchmark.h ]] && mode=ON
   cmake -S "$root" -B "$build" -G Ninja -C "$root/tests/kinds/release.cmake" -DHEADBAND_DEVELOPER_MODE=$mode >/dev/null
 fi
-ninja -C "$build" headband | tail -n 1
+if [[ -t 1 ]]; then ninja -C "$build" headband; else
+  echo "building headband in $build (minutes the first time, seconds afterwards)"
+  ninja -C "$build" --quiet headband
+fi
 headband=$build/montecarlo/program/headband
 
 # Results go to build/cases/NAME; a step is repeated only where the program or the case is newer than its result.
