@@ -3,10 +3,12 @@
 
 #include "core/base/error.hpp"
 #include "core/base/units.hpp"
+#include "montecarlo/program/remarks.hpp"
 
 #include <fmt/format.h>
 
 #include <cmath>
+#include <utility>
 
 namespace headband::program {
 namespace {
@@ -193,6 +195,7 @@ void add_steady(answers::Study& study, const network::Case& c, const Central& ce
                         : central.is_explicit    ? "explicit: flows follow from continuity"
                                                  : "converged";
   if (!central.warning.empty()) study.warnings.push_back(central.warning);
+  for (auto& remark : remarks(c, central)) study.warnings.push_back(std::move(remark));
   if (!central.failure.empty()) {
     study.warnings.push_back(central.failure);
     study.state = answers::RunState::incomplete;
