@@ -66,7 +66,8 @@ std::string written(const Marker& m, Doubt doubt) {
   if (doubt == Doubt::chance || bare_words) return m.value + " " + (m.spread.empty() ? "± 5 %" : m.spread);
   const bool factor = m.spread.starts_with("x/");
   const std::size_t number = m.spread.find(' ');
-  const double half = m.spread.empty() || factor ? 0.05 * std::abs(value) : std::strtod(m.spread.c_str() + number, nullptr);
+  const double half =
+      m.spread.empty() || factor ? 0.05 * std::abs(value) : std::strtod(m.spread.c_str() + number, nullptr);
   return number_text(value - half) + unit + " .. " + number_text(value + half) + unit + ", not random";
 }
 
