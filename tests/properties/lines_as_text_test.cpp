@@ -3,7 +3,7 @@
 // One generated line at a time, as a case file: what the loss does when one number grows, and what the laws become at
 // their limits and joins.
 
-#include "tests/core/properties/solved_text.hpp"
+#include "tests/properties/solved_text.hpp"
 #include "tests/support/generated_text.hpp"
 
 #include <gtest/gtest.h>

@@ -2,7 +2,7 @@
 //
 // Ten thousand generated networks, each written twice as a case file, in SI and in US units, read and solved.
 
-#include "tests/core/properties/solved_text.hpp"
+#include "tests/properties/solved_text.hpp"
 #include "tests/support/generated_text.hpp"
 
 #include <gtest/gtest.h>
