@@ -4,6 +4,8 @@
 
 #include <fmt/format.h>
 
+#include <cmath>
+
 namespace headband::casefile {
 
 using namespace network;
@@ -19,6 +21,12 @@ void read_places(Root& root, Case& c) {
     basin.level = section.quantity("level");
     basin.level_table = read_table(section, "level_table", "level_table time", "level_table level");
     check_rising(section, "level_table", basin.level_table);
+    if (basin.level.given() && basin.level_table.given() &&
+        std::abs(basin.level_table.rows.front().second.value - basin.level.value) > 1e-9 * (1.0 + std::abs(basin.level.value)))
+      section.report("level",
+                     "the level is not that of the table's first row",
+                     fmt::format("\"{} m\"", basin.level_table.rows.front().second.value),
+                     "write the table's first level, with a spread where the whole table may be off by it");
     basin.surface_pressure = section.quantity_or("surface_pressure", "0 bar g");
     if (!section.has("level") && !section.has("level_table"))
       root.context().report(basin.place,

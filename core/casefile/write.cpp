@@ -183,12 +183,20 @@ class Writer {
     number("free_gas", l.free_gas);
   }
 
+  /// A drawn level shifts the whole table, as in the march of the draw.
+  void level_table(const Basin& b) {
+    auto rows = b.level_table.rows;
+    const double shift = b.level.given() ? drawn(b.level) - b.level.value : 0.0;
+    for (auto& [time, level] : rows) level.value += shift;
+    table("level_table", rows);
+  }
+
   void places() {
     for (const Basin& b : case_.basins) {
       head("[[basin]]");
       text("name", b.name);
       number("level", b.level);
-      table("level_table", b.level_table.rows);
+      level_table(b);
       number("surface_pressure", b.surface_pressure);
     }
     for (const PlaceEntry& p : case_.places) {

@@ -46,6 +46,8 @@ void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values
     const auto source = static_cast<std::size_t>(place.elevation_index);
     PlaceValues<W>& out = values.places[i];
     out.held_head = not_a_number;
+    out.surface_head = 0.0;
+    out.level_shift = 0.0;
     switch (place.elevation) {
       case ElevationSource::entry:
         out.elevation = draw(c.places[source].elevation);
@@ -68,8 +70,10 @@ void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values
       const Lanes<W> level = basin.level.given() || !basin.level_table.given()
                                  ? draw(basin.level)
                                  : Lanes<W>(basin.level_table.rows.front().second.value);
-      out.held_head =
-          level + gauge_pressure(basin.surface_pressure, draw, values) / (values.liquid.density * values.gravity);
+      out.surface_head =
+          gauge_pressure(basin.surface_pressure, draw, values) / (values.liquid.density * values.gravity);
+      out.held_head = level + out.surface_head;
+      if (basin.level.given()) out.level_shift = level - basin.level.value;
     } else if (place.head_given) {
       for (const auto& entry : c.places)
         if (entry.name == place.name) out.held_head = draw(entry.head);

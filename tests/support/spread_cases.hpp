@@ -380,8 +380,8 @@ atmosphere = <<site atmosphere|101.325 kPa abs>>
 gravity = <<site gravity|9.80665 m/s2>>
 [[basin]]
 name = "tank"
-level = "20 m"
-level_table = [[<<basin level_table time|0 s|± 1 s>>, <<basin level_table level|20 m>>], ["100 s", "20 m"]]
+level = <<basin level|20 m|± 0.5 m>>
+level_table = [[<<basin level_table time|0 s|± 1 s>>, <<basin level_table level|20 m>>], ["100 s", "15 m"]]
 [[pipe]]
 name = "main"
 from = "tank"

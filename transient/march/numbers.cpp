@@ -160,15 +160,6 @@ Stroke stroke_of(const network::Case& c, const network::EventPlan& event, const 
   return s;
 }
 
-// Head that lies above a basin's level by its surface pressure [m].
-template <int W>
-double surface_head(const network::Case& c, const network::Values<W>& values, int basin, int lane) {
-  const auto& q = c.basins[static_cast<std::size_t>(basin)].surface_pressure;
-  if (!q.given()) return 0.0;
-  const double gauge = q.gauge ? q.value : q.value - values.atmosphere[lane];
-  return gauge / (values.liquid.density[lane] * values.gravity[lane]);
-}
-
 // The movement an event acts on, and its subject's own start; null where the event moves nothing of this kind.
 template <int W>
 struct Mover {
@@ -216,9 +207,9 @@ void start_movements(const network::Case& c,
       begin(m, lane, values.places[place].held_head[lane]);
       const int basin = plan.places[place].basin;
       const auto& rows = c.basins[static_cast<std::size_t>(basin)].level_table.rows;
-      const double above = surface_head(c, values, basin, lane);
+      const double above = values.places[place].surface_head[lane], shift = values.places[place].level_shift[lane];
       for (std::size_t k = 0; k < rows.size(); ++k) {
-        const double t = rows[k].first.value, x = rows[k].second.value + above;
+        const double t = rows[k].first.value, x = (rows[k].second.value + shift) + above;
         const double slope = k + 1 < rows.size() && rows[k + 1].first.value > t
                                  ? (rows[k + 1].second.value - rows[k].second.value) / (rows[k + 1].first.value - t)
                                  : 0.0;
@@ -264,7 +255,9 @@ void add_events(const network::Case& c,
         continue;
       }
       Stroke s = stroke_of(c, event, v, lane);
-      if (event.kind == network::EventKind::move_basin) s.to += surface_head(c, values, event.basin, lane);
+      if (event.kind == network::EventKind::move_basin)
+        for (std::size_t p = 0; p < plan.places.size(); ++p)
+          if (plan.places[p].basin == event.basin) s.to += values.places[p].surface_head[lane];
       const bool instant = e.instant && s.travel_time.empty() && s.swing == 0.0;
       if (instant) {
         const long long step = step_of(s.at, dt);

@@ -5,9 +5,11 @@
 
 #include "core/casefile/keys.hpp"
 #include "core/casefile/read.hpp"
+#include "core/steady/evaluate.hpp"
 #include "montecarlo/program/arguments.hpp"
 #include "montecarlo/propagate/band.hpp"
 #include "tests/support/spread_cases.hpp"
+#include "transient/march/surge.hpp"
 
 #include <gtest/gtest.h>
 
@@ -166,6 +168,52 @@ TEST(SpreadOfEachKey, CountsOrIsRefusedInWords) {
                                    << "\": " << words;
       }
     }
+}
+
+/// Answers of the central run of a case, as the verbs `flow` and `surge` find them.
+std::vector<double> answers_of_run(const network::Case& c, bool surge) {
+  const network::Plan plan = network::make_plan(c);
+  const network::Values<1> values = network::realise(c, plan);
+  steady::SteadySolver solver(c, plan);
+  steady::SteadyState<1> state;
+  solver.solve(values, state);
+  if (surge) return transient::run_surge(c, plan, values, state).answer_value;
+  std::vector<double> answers;
+  for (const auto& answer : plan.answers)
+    answers.push_back(steady::answer<1>(plan, values, state, answer).number);
+  return answers;
+}
+
+// A draw written back as a plain case, read again and run alone gives the bits it had among its seven neighbours.
+TEST(SpreadOfEachKey, ADrawWrittenAsACaseGivesTheBitsOfTheBatch) {
+  int tried = 0;
+  for (const Doubt doubt : {Doubt::chance, Doubt::range})
+    for (const SpreadCase& each : test::spread_cases()) {
+      const auto markers = markers_of(each.text);
+      const bool surge = each.verb == "band --surge";
+      for (std::size_t i = 0; i < markers.size(); ++i) {
+        const auto reading = casefile::read_text("spread.toml", text_with(each, markers, i, doubt), "");
+        const network::Case& c = reading.value;
+        if (!each.verb.starts_with("band") || !reading.problems.empty()) continue;
+        if (!problems_of(c, std::string(each.verb)).empty()) continue;
+        const BandOutcome outcome = band_of(c, surge);
+        const long long draw = 5;
+        const auto scores = scores_of_draw(c, c.band.seed, outcome.bands.draws, draw);
+        const std::string plain = casefile::write_case(c, scores, "draw");
+        auto again = casefile::read_text("draw.toml", plain, "");
+        ASSERT_TRUE(again.problems.empty()) << markers[i].key << ": " << words_of(again.problems) << plain;
+        EXPECT_TRUE(again.value.unknowns.empty()) << markers[i].key << plain;
+        again.value.band = c.band;
+        const auto answers = answers_of_run(again.value, surge);
+        ASSERT_EQ(answers.size(), outcome.bands.answers.size());
+        for (std::size_t a = 0; a < answers.size(); ++a) {
+          const double batch = outcome.bands.output_value[static_cast<std::size_t>(draw) * answers.size() + a];
+          EXPECT_EQ(answers[a], batch) << markers[i].key << " = \"" << written(markers[i], doubt) << "\"\n" << plain;
+        }
+        ++tried;
+      }
+    }
+  EXPECT_GT(tried, 150);
 }
 
 TEST(SpreadOfEachKey, EveryKeyOfTheTableIsTried) {
