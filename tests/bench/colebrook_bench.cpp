@@ -120,8 +120,8 @@ void colebrook_rule(benchmark::State& state) {
   std::vector<base::Lanes<8>> reynolds(groups), roots(groups, base::Lanes<8>(0.0));
   for (std::size_t g = 0; g < groups; ++g) {
     friction::FactorRule<8> rule;
-    std::memcpy(&rule.relative_roughness, &p.roughness[g * lanes], sizeof rule.relative_roughness);
-    std::memcpy(&reynolds[g], &p.reynolds[g * lanes], sizeof reynolds[g]);
+    std::memcpy(static_cast<void*>(&rule.relative_roughness), &p.roughness[g * lanes], sizeof rule.relative_roughness);
+    std::memcpy(static_cast<void*>(&reynolds[g]), &p.reynolds[g * lanes], sizeof reynolds[g]);
     rules.push_back(friction::prepare<8>(rule));
   }
   for (auto _ : state) {

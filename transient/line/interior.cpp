@@ -26,27 +26,46 @@ HEADBAND_INLINE void keep_extremes(const PipeRows<W>& rows, int i, const Lanes<W
 // Rows without cavities from 1 on. Returns the first row that fell below its limit (nothing stored there), or the last
 // row's index when all are done; `wave` is then the one on its way to that row.
 template <int W, Form form, bool placed, bool limited, bool envelope>
-int march_plain(const Resistance<W>& r, const PipeRows<W>& rows, Wave<W>& wave) {
+int march_plain(const Resistance<W>& r, const PipeRows<W>& rows, Wave<W>& wave_out) {
   const int last = rows.rows - 1;
-  Sent<W> s = sent_over<W, form, placed>(r, rows, 0, rows.flow[0]);
-  wave = {rows.head[0] + s.carry * rows.flow[0], s.damp};
+  // local names: the compiler must not fear that a stored row changes them
+  Lanes<W>* const heads = rows.head;
+  Lanes<W>* const flows = rows.flow;
+  const Lanes<W>* const limits = rows.vapour;
+  Lanes<W>* const highs = rows.head_max;
+  Lanes<W>* const lows = rows.head_min;
+  Sent<W> s = sent_over<W, form, placed>(r, rows, 0, flows[0]);
+  Wave<W> wave{heads[0] + s.carry * flows[0], s.damp};
+  wave_out = wave;
   if (last < 2) return last;
-  Lanes<W> head = rows.head[1], flow = rows.flow[1];
+  Lanes<W> head = heads[1], flow = flows[1];
   s = sent_over<W, form, placed>(r, rows, placed ? 1 : 0, flow);
   Wave<W> next{head + s.carry * flow, s.damp};
+  const Lanes<W> carry = r.carry, damp = r.damp, quadratic = r.quadratic;
   for (int i = 1; i < last; ++i) {
-    head = rows.head[i + 1];
-    flow = rows.flow[i + 1];
-    const Sent<W> back = sent_over<W, form, placed>(r, rows, placed ? i : 0, flow);
+    head = heads[i + 1];
+    flow = flows[i + 1];
+    Sent<W> back{carry, damp};
+    if constexpr (form == Form::quadratic && !placed) {
+      back.damp = damp + quadratic * abs(flow);
+    } else {
+      back = sent_over<W, form, placed>(r, rows, placed ? i : 0, flow);
+    }
     const Lanes<W> carried = back.carry * flow;
     const Lanes<W> q = (wave.head - (head - carried)) / (wave.damp + back.damp);
     const Lanes<W> h = wave.head - wave.damp * q;
     if constexpr (limited) {
-      if (any(h < rows.vapour[i])) return i;
+      if (any(h < limits[i])) {
+        wave_out = wave;
+        return i;
+      }
     }
-    rows.head[i] = h;
-    rows.flow[i] = q;
-    if constexpr (envelope) keep_extremes(rows, i, h);
+    heads[i] = h;
+    flows[i] = q;
+    if constexpr (envelope) {
+      highs[i] = max(highs[i], h);
+      lows[i] = min(lows[i], h);
+    }
     wave = next;
     if constexpr (placed) {
       // the reach after row i+1 is another one than the reach before it

@@ -35,24 +35,25 @@ March<W>::March(const network::Case& c, const network::Plan& plan, Layout layout
     : case_(&c), plan_(&plan), layout_(std::move(layout)), solver_(layout_), local_place_(plan.places.size(), -1) {}
 
 template <int W>
-PipeRows<W> March<W>::rows_of(std::size_t pipe) {
-  const PipeNumbers<W>& p = numbers_.pipes[pipe];
-  PipeRows<W> r;
-  r.rows = p.most_reaches + 1;
-  r.head = &state_.head[p.first_row];
-  r.flow = &state_.flow[p.first_row];
-  r.flow_before = &state_.flow_before[p.first_row];
-  r.volume = &state_.volume[p.first_row];
-  r.vapour = &numbers_.vapour[p.first_row];
-  if (p.placed) {
-    r.fitting = &numbers_.fitting[p.first_row];
-    r.longer = &numbers_.longer[p.first_row];
-  }
-  if (!state_.head_max.empty()) {
+void March<W>::point_rows() {
+  rows_.assign(plan_->pipes.size(), PipeRows<W>{});
+  for (std::size_t i = 0; i < rows_.size(); ++i) {
+    const PipeNumbers<W>& p = numbers_.pipes[i];
+    PipeRows<W>& r = rows_[i];
+    r.rows = p.most_reaches + 1;
+    r.head = &state_.head[p.first_row];
+    r.flow = &state_.flow[p.first_row];
+    r.flow_before = &state_.flow_before[p.first_row];
+    r.volume = &state_.volume[p.first_row];
+    r.vapour = &numbers_.vapour[p.first_row];
+    if (p.placed) {
+      r.fitting = &numbers_.fitting[p.first_row];
+      r.longer = &numbers_.longer[p.first_row];
+    }
+    if (state_.head_max.empty()) continue;
     r.head_max = &state_.head_max[p.first_row];
     r.head_min = &state_.head_min[p.first_row];
   }
-  return r;
 }
 
 template <int W>
@@ -73,6 +74,7 @@ void March<W>::prepare(const network::Values<W>& values,
     state_.head_max = state_.head;
     state_.head_min = state_.head;
   }
+  point_rows();
 }
 
 template <int W>
@@ -183,7 +185,7 @@ void March<W>::receive_waves() {
     const Side& side = layout_.sides[s];
     const std::size_t i = at(side.pipe);
     const PipeNumbers<W>& p = numbers_.pipes[i];
-    const PipeRows<W> rows = rows_of(i);
+    const PipeRows<W>& rows = rows_of(i);
     state_.wave[s] = side.far ? arriving_at_to(p.resistance, rows, p.reaches, p.uniform)
                               : arriving_at_from(p.resistance, rows, state_.cavities[i] != 0);
     state_.per_impedance[s] = 1.0 / state_.wave[s].impedance;

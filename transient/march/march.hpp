@@ -65,7 +65,7 @@ class March {
   [[nodiscard]] const Lanes<W>& time() const { return time_; }
   [[nodiscard]] MarchStatus status(int lane) const { return status_[static_cast<std::size_t>(lane)]; }
   void set_status(int lane, MarchStatus s) { status_[static_cast<std::size_t>(lane)] = s; }
-  [[nodiscard]] PipeRows<W> rows_of(std::size_t pipe);
+  [[nodiscard]] const PipeRows<W>& rows_of(std::size_t pipe) const { return rows_[pipe]; }
   /// Sum of the outflows of a place's branches now [m3/s].
   [[nodiscard]] Lanes<W> branch_outflow(int place) const;
   [[nodiscard]] Lanes<W> draw_outflow(int place) const;
@@ -76,6 +76,7 @@ class March {
   void set_initial_pipes(const network::Values<W>& values, const steady::SteadyState<W>& steady);
   void set_initial_places(const steady::SteadyState<W>& steady);
   void set_initial_branches(const steady::SteadyState<W>& steady);
+  void point_rows();
   void move_devices();
   void receive_waves();
   void march_pipes();
@@ -103,6 +104,7 @@ class March {
   Lanes<W> time_;
   base::PerLane<MarchStatus, W> status_{};
   ClusterSolver solver_;
+  std::vector<PipeRows<W>> rows_;                      ///< per pipe, into the state
   std::vector<int> local_place_;                       ///< place -> index in the cluster being solved
   std::vector<Lanes<W>> rigid_offset_, rigid_slope_;   ///< per branch
   std::vector<Lanes<W>> place_head_free_, place_gives_;  ///< Thevenin: head without outflow, impedance
