@@ -27,12 +27,34 @@ class Stopped(Outside):
         self.assertEqual(out, "")
         self.assertIn("--resume", err)
         self.assertEqual(self.names(), ["case-band.partial.h5", "case.toml"])
+        kept = self.draws_kept()
+        self.assertTrue(0 < kept < 8192, kept)  # in the middle: some draws are taken up, some are still to be done
         self.call("band", "--surge", "case.toml", "--resume", "--threads", "1", expect=0)
         self.assertEqual(self.names(), ["case-band.h5", "case.toml"])
         self.call("band", "--surge", "case.toml", "--out", "straight.h5", expect=0)
         straight, resumed = contents(self.folder / "straight.h5"), contents(self.folder / "case-band.h5")
         self.assertEqual(straight.keys(), resumed.keys())
         self.assertEqual([k for k in straight if straight[k] != resumed[k]], [])
+
+    def draws_kept(self):
+        import h5py
+
+        with h5py.File(self.folder / "case-band.partial.h5") as file:
+            return len(file["bands/run_status"])
+
+    def test_draws_kept_are_taken_up_and_not_drawn_again(self):
+        import h5py
+
+        self.write("case.toml", LONG)
+        code, _, err = self.stop(self.start("band", "--surge", "case.toml"), signal.SIGINT, 2.0)
+        self.assertEqual(code, 130, err)
+        # a mark on a kept draw comes back in the finished file
+        with h5py.File(self.folder / "case-band.partial.h5", "r+") as file:
+            stored = file["bands/output_value"]
+            marked = stored[3, -1] = stored[3, -1] * 1.25
+        self.call("band", "--surge", "case.toml", "--resume", expect=0)
+        with h5py.File(self.folder / "case-band.h5") as file:
+            self.assertEqual(file["bands/output_value"][3, -1], marked)
 
     def test_terminated(self):
         self.write("case.toml", LONG)
