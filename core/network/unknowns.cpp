@@ -88,6 +88,7 @@ void share_number(const Quantity& from, Quantity& to) {
   to.value = from.value;
   to.spread = from.spread;
   to.cut = from.cut;
+  to.gauge = from.gauge;
   to.unknown = from.unknown;
 }
 

@@ -2,6 +2,7 @@
 
 #include "core/network/case.hpp"
 #include "core/network/nearest_word.hpp"
+#include "core/network/values.hpp"
 #include "tests/support/case_builder.hpp"
 
 #include <gtest/gtest.h>
@@ -127,6 +128,21 @@ TEST(Unknowns, NotRandomRangesAreMarked) {
 TEST(NearestWord, FindsATypoAndNothingFarAway) {
   EXPECT_EQ(network::nearest_word("vlave chamber", {"upper tank", "valve chamber"}), "valve chamber");
   EXPECT_EQ(network::nearest_word("xyz", {"upper tank", "valve chamber"}), "");
+}
+
+// "2 bar g" shared is 2 bar g, not 2 bar absolute.
+TEST(Unknowns, ASharedPressureKeepsItsReference) {
+  CaseBuilder build;
+  build.basin("a", 10.0).surface_pressure = test::normal(2e5, 1e4, Dimension::pressure);
+  build.c.basins[0].surface_pressure.gauge = true;
+  build.basin("b", 10.0).surface_pressure = test::same_as("a surface_pressure", Dimension::pressure);
+  build.pipe("main", "a", "b", 900.0, 0.3);
+  const auto c = build.finish();
+  EXPECT_TRUE(c.basins[1].surface_pressure.gauge);
+  const auto plan = network::make_plan(c);
+  const auto values = network::realise(c, plan);
+  EXPECT_EQ(values.places[static_cast<std::size_t>(plan.place_named("a"))].held_head[0],
+            values.places[static_cast<std::size_t>(plan.place_named("b"))].held_head[0]);
 }
 
 }  // namespace

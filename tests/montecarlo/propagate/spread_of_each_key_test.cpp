@@ -18,6 +18,7 @@
 #include <cstdlib>
 #include <sstream>
 #include <string>
+#include <utility>
 #include <vector>
 
 namespace headband::montecarlo {
@@ -214,6 +215,24 @@ TEST(SpreadOfEachKey, ADrawWrittenAsACaseGivesTheBitsOfTheBatch) {
       }
     }
   EXPECT_GT(tried, 150);
+}
+
+// "as NAME" is looked up wherever it can be written, and refused where a value is chosen and not drawn.
+TEST(SpreadOfEachKey, SharingAValueThatIsNotThereIsToldForEveryKey) {
+  for (const SpreadCase& each : test::spread_cases()) {
+    if (!each.verb.starts_with("band")) continue;
+    auto markers = markers_of(each.text);
+    for (Marker& m : markers) {
+      if (m.key.starts_with("event when") || m.key.starts_with("spot ")) continue;  // numbers inside a sentence
+      const std::string value = std::exchange(m.value, "as the other one");
+      const auto reading = casefile::read_text("shared.toml", text_with(each, markers, 0, Doubt::none), "");
+      const std::string words = words_of(reading.problems);
+      EXPECT_TRUE(words.find("no value is called 'the other one'") != std::string::npos ||
+                  words.find("a spread is not taken here") != std::string::npos)
+          << m.key << ": " << words;
+      m.value = value;
+    }
+  }
 }
 
 TEST(SpreadOfEachKey, EveryKeyOfTheTableIsTried) {
