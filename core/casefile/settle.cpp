@@ -82,8 +82,6 @@ void count_guesses(Context& context, const Case& c) {
       guesses.push_back(
           fmt::format("pump {}: rated point taken as the first operating point, nobody stated it", p.name));
   }
-  if (c.band.given && c.friction.scatter.guess)
-    guesses.push_back("friction scatter ± 10 %, shared by all pipes, nobody stated it");
   network::for_each_quantity(c, [&](const Quantity& q) {
     if (q.grade == "D") guesses.push_back(fmt::format("{}: {}, stated as a guess (grade D)", q.name, q.written));
   });

@@ -20,6 +20,8 @@ using Json = nlohmann::ordered_json;
 
 Json number(double value) { return std::isfinite(value) ? Json(value) : Json(nullptr); }
 
+Json text_or_null(const std::string& text) { return text.empty() ? Json(nullptr) : Json(text); }
+
 Json pair(const std::array<double, 2>& range) { return Json::array({number(range[0]), number(range[1])}); }
 
 /// A probability, or [least, most] where a range from lack of knowledge is in the case.
@@ -214,7 +216,7 @@ Json bands(const answers::Bands& b) {
 std::string json(const answers::Study& study) {
   Json object = {{"headband", study.provenance.version},
                  {"verb", study.verb},
-                 {"case", file_name_of(study.provenance.case_file)},
+                 {"case", text_or_null(file_name_of(study.provenance.case_file))},
                  {"verdict", verdict(study.verdict)},
                  {"warnings", study.warnings},
                  {"guesses", study.guesses}};

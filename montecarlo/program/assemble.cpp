@@ -96,6 +96,13 @@ void end_provenance(answers::Provenance& p) {
   p.finished = timestamp(std::chrono::system_clock::now());
 }
 
+namespace {
+
+// Counts only where draws are made: a single run has no scatter.
+constexpr const char* guessed_scatter = "friction scatter ± 10 %, shared by all pipes, nobody stated it";
+
+}  // namespace
+
 answers::Study begin_study(const network::Case& c, const Options& options, const std::string& verb) {
   answers::Study study;
   study.verb = verb;
@@ -106,6 +113,7 @@ answers::Study begin_study(const network::Case& c, const Options& options, const
   study.values = casefile::echo(c);
   study.guesses = c.guesses;
   study.warnings = c.warnings;
+  if (verb == "check" && c.band.given && c.friction.scatter.guess) study.guesses.emplace_back(guessed_scatter);
   if (verb == "flow" || verb == "surge") {  // a band takes the whole range
     for (const auto& unknown : c.unknowns)
       if (!unknown.random) study.guesses.push_back(fmt::format("{}: the middle of a range that is not random", unknown.name));
@@ -150,9 +158,7 @@ void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOut
   for (const auto& limit : c.limits) {
     if (limit.at_most < 0.0) add_once(study.guesses, fmt::format("limit {}: at_most 5 % (default)", limit.name));
   }
-  if (c.friction.scatter.guess) {
-    add_once(study.guesses, "friction scatter ± 10 %, shared by all pipes, nobody stated it");
-  }
+  if (c.friction.scatter.guess) add_once(study.guesses, guessed_scatter);
   for (const auto& warning : outcome.warnings) add_once(study.warnings, warning);
   study.limits = std::move(outcome.limits);
   study.bands = std::move(outcome.bands);

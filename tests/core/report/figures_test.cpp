@@ -211,9 +211,9 @@ TEST(LimitOf, goes_by_name_then_by_kind_and_place) {
   auto study = support::sample_study();
   EXPECT_EQ(limit_of(study, study.bands->answers[2]), &study.limits[2]);
   EXPECT_EQ(limit_of(study, study.bands->answers[1]), &study.limits[0]);
-  study.limits[0].where = "valve chamber";
+  study.limits[0].where = "another chamber";
   EXPECT_EQ(limit_of(study, study.bands->answers[1]), nullptr);
-  study.bands->answers[1].where = "valve chamber";
+  study.bands->answers[1].where = "another chamber";
   EXPECT_EQ(limit_of(study, study.bands->answers[1]), &study.limits[0]);
   EXPECT_EQ(limit_of(study, study.bands->answers[0]), nullptr);
 }
