@@ -1,0 +1,233 @@
+#!/usr/bin/python3
+# SPDX-License-Identifier: MIT
+"""Details of the march through the program: what stands still stays, short pipes, refusals, pumps, check valves, audit.
+
+Every case is written here, with invented numbers; expected numbers come from balances and closed forms written beside
+them. Usage: march_details.py PROGRAM [NAME ...]
+"""
+import csv
+import json
+import math
+import pathlib
+import subprocess
+import sys
+import tempfile
+
+import h5py
+import numpy as np
+
+PROGRAM = str(pathlib.Path(sys.argv[1]).resolve())
+DATA = pathlib.Path(__file__).resolve().parent.parent / "reference" / "data" / "transient"
+GRAVITY = 9.80665
+failures = []
+checks = 0
+
+
+def check(name, good, shown=""):
+    global checks
+    checks += 1
+    print(f"  {'ok  ' if good else 'FAIL'} {name} {shown}")
+    if not good:
+        failures.append(name)
+
+
+class Run:
+    """A verb on a case: exit code, JSON, and for `surge` the histories."""
+
+    def __init__(self, text, verb="surge", files=None):
+        with tempfile.TemporaryDirectory() as folder:
+            for name, content in (files or {}).items():
+                (pathlib.Path(folder) / name).write_text(content)
+            (pathlib.Path(folder) / "case.toml").write_text(text)
+            done = subprocess.run([PROGRAM, verb, "case.toml", "--json", "--quiet", "--out", "run.h5"], cwd=folder,
+                                  capture_output=True, text=True, timeout=120)
+            self.code = done.returncode
+            self.json = json.loads(done.stdout) if done.stdout.strip() else {}
+            self.words = done.stderr + done.stdout
+            if verb == "surge" and self.code == 0:
+                with h5py.File(pathlib.Path(folder) / "run.h5") as file:
+                    group = file["transient"]
+                    self.time = group["time"][:]
+                    self.head = dict(zip(texts(group["probe_name"]), group["probe_head"][:].T))
+                    self.flow = dict(zip(texts(group["probe_name"]), group["probe_flow"][:].T))
+                    self.series = {}
+                    if "device_series" in group:
+                        self.series = dict(zip(texts(group["device_series_name"]), group["device_series"][:].T))
+
+    def warned(self, *words):
+        return any(all(w in warning for w in words) for warning in self.json.get("warnings", []))
+
+
+def texts(dataset):
+    return [n.decode() if isinstance(n, bytes) else n for n in dataset[:]]
+
+
+def basin(name, level, more=""):
+    return f'[[basin]]\nname = "{name}"\nlevel = "{level} m"\n{more}\n'
+
+
+def pipe(name, start, end, length=1000, bore=0.4, speed=1000, more='roughness = "0.1 mm"', low=0.0, high=0.0):
+    given = f'wave_speed = "{speed} m/s"' if not isinstance(speed, str) else speed
+    return (f'[[pipe]]\nname = "{name}"\nfrom = "{start}"\nto = "{end}"\nlength = "{length} m"\n'
+            f'profile = [["0 m", "{low} m"], ["{length} m", "{high} m"]]\nbore = "{bore} m"\n{given}\n{more}\n')
+
+
+def valve(name, start, end, more):
+    return f'[[valve]]\nname = "{name}"\nfrom = "{start}"\nto = "{end}"\n{more}\n'
+
+
+def closing(name, over, at="0 s", to="0 %"):
+    stroke = '"instant"' if over == "instant" else f'"{over}"'
+    return f'[[event]]\nat = "{at}"\nvalve = "{name}"\nto = "{to}"\nover = {stroke}\n'
+
+
+def whole(*parts, duration=20, surge="reaches = 20", friction='scatter = "none"', cavities="off"):
+    return ('[about]\ntitle = "invented"\n[liquid]\nname = "water"\ntemperature = "15 degC"\n' + "".join(parts)
+            + f'[friction]\n{friction}\n[surge]\nduration = "{duration} s"\ncavities = "{cavities}"\n{surge}\n')
+
+
+PUMP = '''curve = [["0 m3/s", "60 m"], ["0.15 m3/s", "45 m"], ["0.22 m3/s", "27 m"]]
+speed = "1480 rpm"
+efficiency = "82 %"
+inertia_mr2 = "4 kg m2"
+shut_off_torque = "45 %"
+rated = { flow = "0.15 m3/s", head = "45 m" }
+'''
+
+
+def pump(name, start, end, more="", curve=PUMP):
+    return f'[[pump]]\nname = "{name}"\nfrom = "{start}"\nto = "{end}"\n{curve}{more}\n'
+
+
+END = valve("end", "out", "air", 'kv = "900 m3/h"')
+MAIN = basin("tank", 60) + pipe("main", "tank", "out") + END
+
+
+def stays():
+    """Without an event every head stays at its steady value."""
+    header = basin("tank", 60) + pipe("first", "tank", "joint")
+    cases = {
+        "plain": MAIN,
+        "hazen-williams": basin("tank", 60) + pipe("main", "tank", "out", more="hazen_williams = 120") + END,
+        "manning": basin("tank", 60) + pipe("main", "tank", "out", more="manning = 0.012") + END,
+        "fixed factor": basin("tank", 60) + pipe("main", "tank", "out", more="friction_factor = 0.02") + END,
+        "placed fittings": basin("tank", 60) + pipe("main", "tank", "out", more='roughness = "0.1 mm"\nfittings = [{ name = '
+                                                    '"gauze", k = 4.0, at = "320 m" }, { name = "bend", equivalent_length = '
+                                                    '"30 m", at = "700 m" }]') + END,
+        "spread fittings": basin("tank", 60) + pipe("main", "tank", "out", more='roughness = "0.1 mm"\nfittings = [{ name = '
+                                                    '"bend 90", count = 4, k = 0.3 }, { name = "tee", equivalent_length = '
+                                                    '"12 m" }]') + END,
+        "placed fittings, hazen-williams": basin("tank", 60) + pipe("main", "tank", "out", more='hazen_williams = 120\n'
+                                                 'fittings = [{ name = "gauze", k = 4.0, at = "320 m" }]') + END,
+        "equivalent length, hazen-williams": basin("tank", 60) + pipe("main", "tank", "out", more='hazen_williams = 120\n'
+                                                 'fittings = [{ name = "tee", equivalent_length = "12 m" }, { name = "far '
+                                                 'tee", equivalent_length = "20 m", at = "600 m" }]') + END,
+        "equivalent length, manning": basin("tank", 60) + pipe("main", "tank", "out", more='manning = 0.012\n'
+                                                 'fittings = [{ name = "tee", equivalent_length = "12 m" }, { name = "far '
+                                                 'tee", equivalent_length = "20 m", at = "600 m" }]') + END,
+        "in-line valve": header + valve("mid", "joint", "other", 'kv = "1500 m3/h"') + pipe("second", "other", "out") + END,
+        "draw-off": header + pipe("second", "joint", "out") + END + '[[draw_off]]\nname = "town"\nat = "joint"\nflow = "40 L/s"\n',
+        "inflow": header + pipe("second", "joint", "out") + END + '[[draw_off]]\nname = "well"\nat = "joint"\nflow = "-20 L/s"\n',
+        "pressure-dependent draw-off": header + pipe("second", "joint", "out") + END + '[[draw_off]]\nname = "town"\nat = '
+                                       '"joint"\nflow = "40 L/s"\npressure_dependent = true\n',
+        "pressure-dependent draw-off at the end": header + pipe("second", "joint", "out") + '[[draw_off]]\nname = "town"\nat = '
+                                       '"out"\nflow = "40 L/s"\npressure_dependent = true\n',
+        "ring": header + pipe("left", "joint", "far") + pipe("right", "joint", "far", length=1300, bore=0.3)
+                + pipe("last", "far", "out") + END,
+        "pump": basin("sump", 2) + basin("high", 40) + pump("set", "sump", "header") + pipe("rising", "header", "high"),
+        "pump between pipes": basin("sump", 2) + basin("high", 40) + pipe("suction", "sump", "inlet", length=500)
+                              + pump("set", "inlet", "header", "count = 2") + pipe("rising", "header", "high"),
+        "pump at rest": basin("sump", 2) + basin("high", 30) + pump("set", "sump", "header") + pipe("rising", "header", "high")
+                        + '[[event]]\nat = "1000 s"\nstart = "set"\nover = "5 s"\n',
+        "check valve": header + '[[check_valve]]\nname = "flap"\nfrom = "joint"\nto = "other"\nkv = "2500 m3/h"\n'
+                       + pipe("second", "other", "out") + END,
+        "check valve without loss": header + '[[check_valve]]\nname = "flap"\nfrom = "joint"\nto = "other"\n'
+                                    + pipe("second", "other", "out") + END,
+        "shut check valve": basin("tank", 60) + pipe("first", "tank", "joint") + '[[check_valve]]\nname = "flap"\nfrom = '
+                            '"other"\nto = "joint"\nkv = "2500 m3/h"\n' + pipe("second", "other", "low")
+                            + basin("low", 30),
+        "two basins": header + pipe("second", "joint", "low") + basin("low", 30) + pipe("third", "joint", "out") + END,
+        "valve between basins": basin("tank", 60) + pipe("first", "tank", "joint") + valve("mid", "joint", "low", 'k = 6.0\nbore = "400 mm"')
+                                + basin("low", 30),
+        "flow sized valve": basin("tank", 60) + pipe("main", "tank", "out") + valve("end", "out", "air", 'flow = "100 L/s"'),
+        "flow sized valve, part open": basin("tank", 60) + pipe("main", "tank", "out")
+                                       + valve("end", "out", "air", 'flow = "100 L/s"\nopening = "40 %"\nlaw = "power 1.5"'),
+        "flow sized valve in line": header + valve("mid", "joint", "other", 'flow = "90 L/s"') + pipe("second", "other", "low")
+                                    + basin("low", 30),
+        "area sized valve": basin("tank", 60) + pipe("main", "tank", "out")
+                            + valve("end", "out", "air", 'area = "0.005 m2"\ndischarge_coefficient = 0.7'),
+        "surface pressure": basin("tank", 20, 'surface_pressure = "3 bar g"') + pipe("main", "tank", "out") + END,
+        "dead end": header + pipe("second", "joint", "out") + pipe("leg", "joint", "cap", length=300) + END,
+        "laminar": basin("tank", 0.2) + pipe("main", "tank", "out", bore=0.02) + valve("end", "out", "air", 'kv = "1 m3/h"'),
+        "rigid pipe": header + pipe("short", "joint", "other", length=4) + pipe("second", "other", "out") + END,
+        "rigid pipe, hazen-williams": header + pipe("short", "joint", "other", length=4, more="hazen_williams = 110")
+                                      + pipe("second", "other", "out") + END,
+        "rigid pipe, fittings": header + pipe("short", "joint", "other", length=4, more='roughness = "1 mm"\nfittings = [{ name '
+                                '= "gauze", k = 4.0, at = "2 m" }, { name = "bend", k = 0.3, count = 3 }, { name = "tee", '
+                                'equivalent_length = "12 m" }]') + pipe("second", "other", "out") + END,
+    }
+    for name, body in cases.items():
+        for mode in ("reynolds", "fixed", "linear"):
+            run = Run(whole(body, surge=f'reaches = 20\ngrid_check = false\nfriction_in_time = "{mode}"'))
+            if run.code != 0:
+                check(f"{name}, {mode}", False, f"exit {run.code}: {run.words[:400]}")
+                continue
+            worst = max(float(np.max(np.abs(head - run.json["places"][place]["head_m"]))) for place, head in run.head.items())
+            check(f"{name}, {mode}", worst <= 1e-6, f"heads move by {worst:.2e} m")
+    flat = Run(whole(MAIN.replace('level = "60 m"', 'level_table = "tide.csv"')), files={"tide.csv": "time [h],level [m]\n0,60\n10,60\n"})
+    check("level table, flat", flat.code == 0 and max(float(np.ptp(h)) for h in flat.head.values()) <= 1e-6)
+    tide = Run(whole(MAIN.replace('level = "60 m"', 'level_table = "tide.csv"'), duration=60),
+               files={"tide.csv": "time [s],level [m]\n0,60\n30,63\n100,63\n"})
+    check("level table, followed", tide.code == 0 and abs(np.interp(15, tide.time, tide.head["tank"]) - 61.5) < 1e-9
+          and abs(tide.head["tank"][-1] - 63) < 1e-9)
+    # slowly followed, the line stays close to the steady states of the levels it passes
+    later = Run(whole(MAIN.replace('level = "60 m"', 'level = "63 m"')), verb="flow").json["places"]["out"]["head_m"]
+    check("level table, new steady state", abs(tide.head["out"][-1] - later) < 1e-2, f"{tide.head['out'][-1] - later:.2e} m")
+
+
+def in_line():
+    """A valve between two pipes shuts at once: both sides move by a V/g of their own pipe, up and down."""
+    body = (basin("tank", 60) + pipe("first", "tank", "joint", length=1000, bore=0.4, speed=1000, more="friction_factor = 1e-9")
+            + valve("mid", "joint", "other", 'flow = "60 L/s"')
+            + pipe("second", "other", "low", length=1500, bore=0.3, speed=1200, more="friction_factor = 1e-9") + basin("low", 30))
+    run = Run(whole(body, closing("mid", "instant", at="1 s"), duration=2.5, friction='law = "colebrook-white"\nscatter = "none"'))
+    check("runs", run.code == 0, run.words[:300] if run.code else "")
+    if run.code:
+        return
+    flow = run.series["mid flow"][0]
+    inside = (run.time > 1.2) & (run.time < 2.4)
+    for place, bore, speed, sign in (("joint", 0.4, 1000, 1), ("other", 0.3, 1200, -1)):
+        rise = speed * flow / (math.pi * bore**2 / 4) / GRAVITY
+        moved = (run.head[place] - run.head[place][0])[inside]
+        check(f"{place}: a V/g", np.max(np.abs(moved - sign * rise)) < 1e-6 * rise, f"{moved[0]:.4f} m, {sign * rise:.4f} m")
+    check("no flow through a shut valve", np.max(np.abs(run.series["mid flow"][inside])) == 0.0)
+    slow = Run(whole(body, closing("mid", "5 s", at="1 s"), duration=40, friction='law = "colebrook-white"\nscatter = "none"'))
+    drop = slow.head["joint"] - slow.head["other"]
+    share = np.interp(slow.time, [1, 6], [1, 0])
+    moving = (slow.time > 1.0) & (slow.time < 5.9)
+    law = slow.series["mid flow"][moving] - flow * share[moving] * np.sqrt(np.maximum(drop[moving], 0) / drop[0])
+    check("in-line valve keeps its law while it moves", np.max(np.abs(law)) < 1e-9 * flow, f"{np.max(np.abs(law)):.1e} m3/s")
+    # part shut: the line comes to the steady state of that opening
+    part = Run(whole(basin("tank", 60), pipe("first", "tank", "joint"), valve("mid", "joint", "other", 'kv = "900 m3/h"'),
+                     pipe("second", "other", "low"), basin("low", 40), closing("mid", "5 s", to="30 %"), duration=300,
+                     surge="reaches = 10\ngrid_check = false"))
+    held = Run(whole(basin("tank", 60), pipe("first", "tank", "joint"), valve("mid", "joint", "other", 'kv = "900 m3/h"\nopening = "30 %"'),
+                     pipe("second", "other", "low"), basin("low", 40)), verb="flow")
+    found, wanted = part.series["mid flow"][-1], held.json["devices"]["mid"]["flow_m3_per_s"]
+    check("part shut: steady flow of that opening", abs(found - wanted) < 1e-4 * wanted, f"{found:.6f}, {wanted:.6f}")
+
+
+def main():
+    names = {"stays": stays, "in_line": in_line}
+    for name in sys.argv[2:] or names:
+        print(name)
+        try:
+            names[name]()
+        except (KeyError, IndexError, AttributeError, subprocess.TimeoutExpired) as error:
+            check(f"{name}: {error!r}", False)
+    print(f"{checks} checks, {len(failures)} failed")
+    return 1 if failures or not checks else 0
+
+
+if __name__ == "__main__":
+    sys.exit(main())
