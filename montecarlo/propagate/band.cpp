@@ -103,6 +103,16 @@ class BandRun {
     bands.draws_asked = case_.band.draws;
     bands.surged = options_.surge;
     name_runs(bands, inputs_, plan_, computed_);
+    if (options_.surge && case_.surge.time_step.given()) {
+      for (const auto& pipe : case_.pipes) {
+        if (!transient::wave_speed_is_uncertain(case_, pipe)) continue;
+        warn(fmt::format("time_step is given: the wave speed of {} is rounded to that grid in every draw (by 1 % at most, "
+                         "unless wave_speed_change allows more), and a spread smaller than that may not show; reaches in "
+                         "its place follow each draw",
+                         pipe.name));
+        break;
+      }
+    }
     for (const auto& station : stations_) {
       bands.profile_station_pipe.push_back(station.pipe);
       bands.profile_share.push_back(station.share);

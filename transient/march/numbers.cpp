@@ -480,9 +480,7 @@ void fill_numbers(const network::Case& c,
   add_events(c, plan, layout, values, n, jumps);
 }
 
-namespace {
-
-bool uncertain(const network::Case& c, const network::Pipe& p) {
+bool wave_speed_is_uncertain(const network::Case& c, const network::Pipe& p) {
   const auto sampled = [](const base::Quantity& q) { return q.given() && !q.exact(); };
   if (sampled(p.wave_speed_scatter)) return true;
   if (p.wave_speed.given()) return sampled(p.wave_speed);
@@ -492,6 +490,8 @@ bool uncertain(const network::Case& c, const network::Pipe& p) {
     if (sampled(*q)) return true;
   return false;
 }
+
+namespace {
 
 // Shortest movement of an event on something at `place` [s].
 template <int W>
@@ -534,7 +534,7 @@ GridRequest grid_request(const network::Case& c,
     p.wave_speed = steady.wave_speed[i][lane];
     const auto& allowed = c.pipes[i].wave_speed_change;
     if (allowed.given()) p.allowed_change = allowed.value;
-    p.uncertain = uncertain(c, c.pipes[i]);
+    p.uncertain = wave_speed_is_uncertain(c, c.pipes[i]);
     p.fastest_movement = std::min(fastest_at(c, plan, values, plan.pipes[i].from.index, lane),
                                   fastest_at(c, plan, values, plan.pipes[i].to.index, lane));
   }

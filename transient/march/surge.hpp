@@ -39,6 +39,9 @@ struct SurgeRun {
 [[nodiscard]] SurgeRun run_surge(const network::Case& c, const network::Plan& plan, const network::Values<1>& values,
                                  const steady::SteadyState<1>& steady);
 
+/// True where something that feeds the wave speed of the pipe is sampled.
+[[nodiscard]] bool wave_speed_is_uncertain(const network::Case& c, const network::Pipe& pipe);
+
 /// Answers of W marched draws.
 template <int W>
 struct DrawAnswers {

@@ -235,6 +235,26 @@ TEST(SpreadOfEachKey, SharingAValueThatIsNotThereIsToldForEveryKey) {
   }
 }
 
+// The one place where a spread can be lost in rounding says so.
+TEST(SpreadOfEachKey, AFixedTimeStepWarnsThatItRoundsAnUncertainWaveSpeed) {
+  for (const SpreadCase& each : test::spread_cases()) {
+    const std::size_t reaches = each.text.find("\nreaches = 8\n");
+    if (each.text.find("wave_speed_scatter") == std::string_view::npos || reaches == std::string_view::npos) continue;
+    const auto markers = markers_of(each.text);
+    for (std::size_t i = 0; i < markers.size(); ++i) {
+      const bool speed = markers[i].key == "pipe modulus";
+      if (!speed && markers[i].key != "event over") continue;
+      std::string text = text_with(each, markers, i, Doubt::chance);
+      text.replace(text.find("\nreaches = 8\n"), 13, "\ntime_step = \"0.1 s\"\n");
+      const auto reading = casefile::read_text("spread.toml", text, "");
+      ASSERT_TRUE(reading.problems.empty()) << words_of(reading.problems);
+      const auto warnings = band_of(reading.value, true).warnings;
+      const bool told = std::ranges::any_of(warnings, [](const std::string& w) { return w.starts_with("time_step is given: the wave speed of main"); });
+      EXPECT_EQ(told, speed) << markers[i].key;
+    }
+  }
+}
+
 TEST(SpreadOfEachKey, EveryKeyOfTheTableIsTried) {
   std::vector<std::string> tried;
   for (const SpreadCase& each : test::spread_cases())
