@@ -7,6 +7,7 @@
 #include "core/steady/steady.hpp"
 
 #include <string>
+#include <vector>
 
 namespace headband::program {
 
@@ -22,6 +23,10 @@ struct Central {
 };
 
 [[nodiscard]] Central central_run(const network::Case& c);
+
+/// What the user should know about the laws the central run leans on: friction laws outside the range they were made
+/// for, and how far a viscosity law through two points misses the others.
+[[nodiscard]] std::vector<std::string> remarks(const network::Case& c, const Central& central);
 
 /// Fills liquid, pipes, places, devices and the steady status of `study`.
 void add_steady(answers::Study& study, const network::Case& c, const Central& central);

@@ -1,5 +1,5 @@
 // SPDX-License-Identifier: MIT
-#include "montecarlo/program/remarks.hpp"
+#include "montecarlo/program/central.hpp"
 
 #include "core/casefile/read.hpp"
 
