@@ -8,7 +8,9 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <span>
+#include <utility>
 
 namespace headband::transient {
 namespace {
@@ -58,17 +60,99 @@ Watch make_watch(const network::Plan& plan) {
   return w;
 }
 
+/// Heads of the probes at times that all lanes share, each lane on rows of its own.
+template <int W>
+class HistoryTrack {
+ public:
+  HistoryTrack(const std::vector<double>& times, const base::PerLane<bool, W>& take, std::vector<Lanes<W>>& out)
+      : times_(&times), take_(take), out_(&out) {}
+
+  void begin(const March<W>& march, const network::Values<W>& values) {
+    if (times_->empty()) return;
+    const auto& probes = march.plan().probes;
+    spots_.resize(probes.size());
+    now_.resize(probes.size());
+    last_.resize(probes.size());
+    for (std::size_t k = 0; k < probes.size(); ++k) {
+      if (!probes[k].pipe.exists()) continue;
+      for (int lane = 0; lane < W; ++lane)
+        spots_[k][at(lane)] = make_spot<W>(march, values, probes[k].pipe.index, std::max(0.0, probes[k].chainage), lane);
+    }
+    for (int lane = 0; lane < W; ++lane) await(march, lane);
+    step(march, 0);
+  }
+
+  void step(const March<W>& march, long long row) {
+    if (row + 1 < soonest_) return;  // neither this row nor the next one ends a line that holds an asked time
+    look(march);
+    if (row >= soonest_) {
+      for (int lane = 0; lane < W; ++lane) {
+        while (due_[at(lane)] == row) {
+          keep(march, row, lane);
+          ++next_[at(lane)];
+          await(march, lane);
+        }
+      }
+      soonest_ = *std::min_element(due_.begin(), due_.end());
+    }
+    std::swap(now_, last_);
+  }
+
+ private:
+  static constexpr long long never = std::numeric_limits<long long>::max();
+
+  /// Row that ends the line on which the lane's next time lies.
+  void await(const March<W>& march, int lane) {
+    const auto l = at(lane);
+    due_[l] = never;
+    if (!take_[l] || next_[l] >= times_->size()) return;
+    const double time = (*times_)[next_[l]], dt = march.numbers().time_step[lane];
+    long long row = static_cast<long long>(time / dt);
+    while (dt * static_cast<double>(row) < time) ++row;
+    due_[l] = std::min(row, march.numbers().last_step[l]);
+    soonest_ = std::min(soonest_, due_[l]);
+  }
+
+  void look(const March<W>& march) {
+    const auto& probes = march.plan().probes;
+    for (std::size_t k = 0; k < probes.size(); ++k) {
+      if (probes[k].pipe.exists()) {
+        for (int lane = 0; lane < W; ++lane) now_[k].set(lane, head_at<W>(march, spots_[k][at(lane)], lane));
+      } else {
+        now_[k] = march.state().place_head[probes[k].place.at()];
+      }
+    }
+  }
+
+  void keep(const March<W>& march, long long row, int lane) {
+    const std::size_t first = next_[at(lane)] * now_.size();
+    const double dt = march.numbers().time_step[lane];
+    // a time on a row takes the row's own bits
+    const double after = dt * static_cast<double>(row) - (*times_)[next_[at(lane)]];
+    const double back = row == 0 || after <= 0.0 ? 0.0 : after / dt;
+    for (std::size_t k = 0; k < now_.size(); ++k) {
+      const double b = now_[k][lane];
+      (*out_)[first + k].set(lane, back == 0.0 ? b : b + back * (last_[k][lane] - b));
+    }
+  }
+
+  const std::vector<double>* times_;
+  base::PerLane<bool, W> take_;
+  std::vector<Lanes<W>>* out_;
+  std::vector<base::PerLane<Spot, W>> spots_;
+  std::vector<Lanes<W>> now_, last_;  ///< heads of the probes in this row and the one before
+  base::PerLane<std::size_t, W> next_{};
+  base::PerLane<long long, W> due_{};
+  long long soonest_ = never;
+};
+
 /// Observer of a batch: extremes beside those the rows keep, answers of each lane when its time is over.
 template <int W>
 class BatchRecord {
  public:
-  BatchRecord(const Watch& watch, const std::vector<BatchStation>& stations) : watch_(&watch), stations_(&stations) {}
-
-  void start(const network::Values<W>& values, const base::PerLane<bool, W>& take, DrawAnswers<W>& out) {
-    values_ = &values;
-    take_ = take;
-    out_ = &out;
-  }
+  BatchRecord(const Watch& watch, const std::vector<BatchStation>& stations, const std::vector<double>& times,
+              const network::Values<W>& values, const base::PerLane<bool, W>& take, DrawAnswers<W>& out)
+      : watch_(&watch), stations_(&stations), values_(&values), take_(take), out_(&out), history_(times, take, out.history) {}
 
   void begin(March<W>& march) {
     const auto& plan = march.plan();
@@ -99,6 +183,7 @@ class BatchRecord {
       }
     }
     watch_velocity(march);
+    history_.begin(march, *values_);
   }
 
   bool step(March<W>& march, long long row) {
@@ -110,6 +195,7 @@ class BatchRecord {
       }
     }
     watch_velocity(march);
+    history_.step(march, row);
     for (int lane = 0; lane < W; ++lane)
       if (march.numbers().last_step[at(lane)] == row && take_[at(lane)]) collect(march, lane);
     return true;
@@ -236,9 +322,10 @@ class BatchRecord {
 
   const Watch* watch_;
   const std::vector<BatchStation>* stations_;
-  const network::Values<W>* values_ = nullptr;
-  base::PerLane<bool, W> take_{};
-  DrawAnswers<W>* out_ = nullptr;
+  const network::Values<W>* values_;
+  base::PerLane<bool, W> take_;
+  DrawAnswers<W>* out_;
+  HistoryTrack<W> history_;
   std::vector<SpotTrack> spots_;
   std::vector<Lanes<W>> top_flow_, place_flow_, row_elevation_;
 };
@@ -258,6 +345,7 @@ struct BatchMarcher::Parts {
   const network::Plan* plan;
   Watch watch;
   std::vector<BatchStation> stations;
+  std::vector<double> history_times;
   Width<1> one;
   Width<8> eight;
 
@@ -280,8 +368,8 @@ struct BatchMarcher::Parts {
   }
 };
 
-BatchMarcher::BatchMarcher(const network::Case& c, const network::Plan& plan)
-    : parts_(std::make_unique<Parts>(Parts{&c, &plan, make_watch(plan), {}, {}, {}})) {
+BatchMarcher::BatchMarcher(const network::Case& c, const network::Plan& plan, std::vector<double> history_times)
+    : parts_(std::make_unique<Parts>(Parts{&c, &plan, make_watch(plan), {}, std::move(history_times), {}, {}})) {
   for (std::size_t i = 0; i < plan.pipes.size(); ++i)
     for (int k = 0; k <= station_intervals; ++k)
       parts_->stations.push_back({static_cast<int>(i), static_cast<double>(k) / station_intervals});
@@ -300,6 +388,7 @@ void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyS
   out.limit.assign(plan.limits.size(), none);
   out.head_max.assign(parts_->stations.size(), none);
   out.head_min.assign(parts_->stations.size(), none);
+  out.history.assign(parts_->history_times.size() * plan.probes.size(), none);
   out.cavity = {};
   for (std::size_t k = 0; k < plan.answers.size(); ++k)
     if (!plan.answers[k].needs_surge()) out.answer[k] = steady::answer<W>(plan, values, steady, plan.answers[k]);
@@ -337,8 +426,7 @@ void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyS
       if (same) waiting[at(lane)] = false;
     }
     March<W>& m = parts_->template march_for<W>(rigid);
-    BatchRecord<W> record(parts_->watch, parts_->stations);
-    record.start(values, take, out);
+    BatchRecord<W> record(parts_->watch, parts_->stations, parts_->history_times, values, take, out);
     m.prepare(values, steady, grids, true);
     m.run(record);
   }

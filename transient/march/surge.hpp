@@ -48,6 +48,7 @@ struct DrawAnswers {
   std::vector<Lanes<W>> answer;        ///< as Plan::answers
   std::vector<Lanes<W>> limit;         ///< as Plan::limits
   std::vector<Lanes<W>> head_max, head_min;  ///< envelopes at `profile stations` (see BatchMarcher::stations)
+  std::vector<Lanes<W>> history;       ///< heads, row-major (time, probe): BatchMarcher's times, Plan::probes [m]
   base::PerLane<std::int8_t, W> status{};  ///< 0 finished, 2 not finite, 3 boundary not converged, 4 grid refused
   base::PerLane<bool, W> cavity{};
 };
@@ -61,7 +62,9 @@ struct BatchStation {
 /// Marches batches of draws of one plan; one per thread. Storage is kept between batches.
 class BatchMarcher {
  public:
-  BatchMarcher(const network::Case& c, const network::Plan& plan);
+  /// @param history_times at which the heads of Plan::probes are kept [s], rising from 0; none: no histories, no cost.
+  ///        Between two rows of a draw they lie on a straight line, past its last row they stay.
+  BatchMarcher(const network::Case& c, const network::Plan& plan, std::vector<double> history_times = {});
   ~BatchMarcher();
   BatchMarcher(BatchMarcher&&) noexcept;
   BatchMarcher& operator=(BatchMarcher&&) noexcept;

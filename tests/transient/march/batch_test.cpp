@@ -117,6 +117,92 @@ TEST(Batch, SameBitsAloneInAnyLaneAndInAFullRun) {
   EXPECT_GT(cavities, 20);
 }
 
+/// Head of probe `k` in a run at a time between its rows.
+double on_the_line(const answers::Transient& t, std::size_t k, double time) {
+  const std::size_t probes = t.probe_name.size(), last = t.time.size() - 1;
+  if (time >= t.time[last]) return t.probe_head[last * probes + k];
+  std::size_t row = 0;
+  while (t.time[row + 1] <= time) ++row;
+  const double share = (time - t.time[row]) / (t.time[row + 1] - t.time[row]);
+  const double before = t.probe_head[row * probes + k], after = t.probe_head[(row + 1) * probes + k];
+  return before + share * (after - before);
+}
+
+TEST(Batch, HistoriesAtSharedTimesAreThoseOfFullRuns) {
+  int compared = 0, exact = 0;
+  for (unsigned seed = 1; seed <= 12; ++seed) {
+    RandomCase made(seed, true);
+    made.b.c.show.places.push_back(CaseBuilder::at_place("n0"));
+    made.b.c.show.places.push_back(CaseBuilder::on_pipe("p0", 111.0));
+    made.b.c.show.places.push_back(CaseBuilder::along_pipe("p0"));
+    const network::Case c = made.b.finish();
+    const network::Plan plan = network::make_plan(c);
+    ASSERT_EQ(plan.probes.size(), 3U);
+    network::Scores<8> scores(c.unknowns.size());
+    for (auto& s : scores)
+      for (int lane = 0; lane < 8; ++lane) s.set(lane, made.uniform(0.02, 0.98));
+    network::Values<8> values;
+    network::realise<8>(c, plan, scores, values);
+    steady::SteadySolver solver(c, plan);
+    steady::SteadyState<8> state;
+    solver.solve<8>(values, state);
+    // the rows of the first lane's own run, some of them: exact there, on lines between rows elsewhere
+    std::vector<double> times;
+    for (int lane = 0; lane < 8; ++lane) {
+      const auto l = static_cast<std::size_t>(lane);
+      network::Scores<1> own(scores.size());
+      for (std::size_t i = 0; i < own.size(); ++i) own[i] = Lanes<1>(scores[i][lane]);
+      network::Values<1> value;
+      network::realise<1>(c, plan, own, value);
+      steady::SteadySolver alone(c, plan);
+      steady::SteadyState<1> one;
+      alone.solve<1>(value, one);
+      const transient::SurgeRun run = transient::run_surge(c, plan, value, one);
+      ASSERT_TRUE(run.completed) << seed;
+      if (lane == 0)
+        for (std::size_t row = 0; row < run.transient.time.size() && run.transient.time[row] <= 8.0; row += 1 + seed % 4)
+          times.push_back(run.transient.time[row]);
+      transient::DrawAnswers<8> batch;
+      transient::BatchMarcher(c, plan, times).march<8>(values, state, batch);
+      transient::DrawAnswers<1> answer;
+      transient::BatchMarcher(c, plan, times).march<1>(value, one, answer);
+      ASSERT_EQ(batch.history.size(), 3 * times.size());
+      ASSERT_EQ(answer.history.size(), 3 * times.size());
+      ASSERT_EQ(batch.status[l], 0);
+      for (std::size_t i = 0; i < times.size(); ++i) {
+        for (std::size_t k = 0; k < 3; ++k) {
+          const double h = batch.history[3 * i + k][lane], of_run = on_the_line(run.transient, k, times[i]);
+          ASSERT_EQ(bits(answer.history[3 * i + k].number), bits(h)) << seed << " " << lane;
+          ASSERT_NEAR(h, of_run, 1e-9 * (1.0 + std::fabs(of_run))) << seed << " " << lane << " at " << times[i];
+          if (lane == 0) {
+            ASSERT_EQ(bits(h), bits(of_run)) << seed << " row at " << times[i];
+            ++exact;
+          }
+          ++compared;
+        }
+      }
+    }
+  }
+  EXPECT_GT(compared, 5000);
+  EXPECT_GT(exact, 500);
+}
+
+TEST(Batch, KeepsNoHistoriesUnlessAsked) {
+  RandomCase made(3, false);
+  const Marched m(made.b);
+  transient::DrawAnswers<1> out;
+  transient::BatchMarcher(m.c, m.plan).march<1>(m.values, m.steady, out);
+  EXPECT_TRUE(out.history.empty());
+  const double past = m.run.transient.time.back() + 5.0;
+  transient::BatchMarcher(m.c, m.plan, {0.0, past}).march<1>(m.values, m.steady, out);
+  const std::size_t probes = m.plan.probes.size();
+  ASSERT_EQ(out.history.size(), 2 * probes);
+  for (std::size_t k = 0; k < probes; ++k) {
+    EXPECT_EQ(out.history[k].number, m.run.transient.probe_head[k]);  // the first steady state
+    EXPECT_EQ(out.history[probes + k].number, m.run.transient.probe_head[m.run.transient.probe_head.size() - probes + k]);
+  }
+}
+
 /// The oracle's network of a case on the grid of a run.
 transient::PlainNetwork plain_of(const network::Case& c,
                                  const network::Plan& plan,
