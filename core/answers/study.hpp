@@ -182,6 +182,15 @@ struct Bands {
   std::vector<std::int32_t> profile_station_pipe;
   std::vector<double> profile_share;            ///< station's share of its pipe's length
   std::vector<double> profile_head_max, profile_head_min;  ///< row-major (probability, station)
+  // bands over time (sampled surge): quantiles of the head at each kept place
+  std::vector<double> history_probability;      ///< as profile_probability
+  std::vector<double> history_time;             ///< [s], rows of the central run, at most 241
+  std::vector<std::string> history_probe_name;  ///< as Transient::probe_name
+  std::vector<double> history_head;             ///< row-major (probability, time, probe) [m]
+  std::vector<double> run_history_head;         ///< as run_head_max: row-major (run, time, probe), perhaps the first runs alone [m]
+  /// What holds for the line as a whole: statements, not limits, without a verdict. "any rated pipe": the chance that
+  /// some pipe exceeds its own rating; `margin` is the least one of the central run.
+  std::vector<LimitAnswer> whole_line;
   bool surged = false;
 };
 

@@ -48,10 +48,30 @@ std::vector<double> density(const Ranked& ranked, double low, double high, doubl
 
 }  // namespace
 
-std::vector<double> asked_probabilities(double coverage) {
+std::vector<double> plain_quantiles(std::span<const double> values, std::span<const std::int8_t> status,
+                                    std::span<const double> probabilities) {
+  std::vector<double> finished;
+  finished.reserve(values.size());
+  for (std::size_t i = 0; i < values.size(); ++i)
+    if (status[i] == 0 && !std::isnan(values[i])) finished.push_back(values[i]);
+  if (finished.empty()) return std::vector<double>(probabilities.size(), answers::missing);
+  const Ranked ranked(std::move(finished));
+  std::vector<double> result;
+  for (const double p : probabilities) result.push_back(ranked.place_of(p));
+  ranked.announce(result);
+  for (double& place : result) place = ranked.at_place(place);
+  return result;
+}
+
+std::vector<double> band_probabilities(double coverage) {
   // the ends to 15 digits, so that (1 - 0.95)/2 is written 0.025
   const auto rounded = [](double p) { return std::round(p * 1e15) / 1e15; };
-  std::vector<double> all{0.05, 0.5, 0.95, rounded(0.5 * (1.0 - coverage)), rounded(0.5 * (1.0 + coverage))};
+  return {rounded(0.5 * (1.0 - coverage)), 0.5, rounded(0.5 * (1.0 + coverage))};
+}
+
+std::vector<double> asked_probabilities(double coverage) {
+  const auto ends = band_probabilities(coverage);
+  std::vector<double> all{0.05, 0.5, 0.95, ends.front(), ends.back()};
   std::sort(all.begin(), all.end());
   all.erase(std::unique(all.begin(), all.end()), all.end());
   return all;

@@ -62,4 +62,12 @@ class Sample {
 /// The probabilities every answer is asked at: 0.05, 0.5, 0.95 and the ends of `coverage`, rising, each once.
 [[nodiscard]] std::vector<double> asked_probabilities(double coverage);
 
+/// The quantiles alone of one column of finished draws, without their intervals: for many columns of few draws.
+/// @return as `probabilities`, the same bits as Sample's; missing where nothing finished
+[[nodiscard]] std::vector<double> plain_quantiles(std::span<const double> values, std::span<const std::int8_t> status,
+                                                  std::span<const double> probabilities);
+
+/// The ends of `coverage` and the middle, rising: of the bands along the line and over time.
+[[nodiscard]] std::vector<double> band_probabilities(double coverage);
+
 }  // namespace headband::montecarlo

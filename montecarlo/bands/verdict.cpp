@@ -42,6 +42,17 @@ Verdict over_outer_points(std::span<const Verdict> verdicts) {
   return Verdict::cannot_tell;
 }
 
+namespace {
+
+/// Probability and its bounds from the counts.
+void count_up(Judged& j, double confidence) {
+  if (j.draws > j.failed) j.probability = static_cast<double>(j.broken) / static_cast<double>(j.draws - j.failed);
+  j.lower = probability_at_least(j.broken_away, j.draws, confidence);
+  j.upper = probability_at_most(j.broken_towards + j.failed, j.draws, confidence);
+}
+
+}  // namespace
+
 Judged judge(const Bound& bound, std::span<const double> values, std::span<const std::int8_t> status, double grid_bound,
              double at_most, double confidence) {
   Judged j;
@@ -58,10 +69,34 @@ Judged judge(const Bound& bound, std::span<const double> values, std::span<const
     j.broken_away += !bound_known || kept(bound, moved_away(bound, value, grid_bound)) ? 0 : 1;
   }
   if (j.draws == 0) return j;
-  if (j.draws > j.failed) j.probability = static_cast<double>(j.broken) / static_cast<double>(j.draws - j.failed);
-  j.lower = probability_at_least(j.broken_away, j.draws, confidence);
-  j.upper = probability_at_most(j.broken_towards + j.failed, j.draws, confidence);
+  count_up(j, confidence);
   j.verdict = verdict_of_probability(j.lower, j.upper, at_most);
+  return j;
+}
+
+Judged judge_any(std::span<const Part> parts, std::span<const std::int8_t> status, double confidence) {
+  Judged j;
+  j.verdict = Verdict::none;
+  j.draws = static_cast<long long>(status.size());
+  for (std::size_t i = 0; i < status.size(); ++i) {
+    bool failed = status[i] != 0, broken = false, towards = false, away = false;
+    for (const Part& p : parts) {
+      const double value = p.values[i];
+      const bool bound_known = std::isfinite(p.grid_bound);
+      failed = failed || std::isnan(value);
+      broken = broken || !kept(p.bound, value);
+      towards = towards || !bound_known || !kept(p.bound, moved_towards(p.bound, value, p.grid_bound));
+      away = away || (bound_known && !kept(p.bound, moved_away(p.bound, value, p.grid_bound)));
+    }
+    if (failed) {
+      ++j.failed;
+      continue;
+    }
+    j.broken += broken ? 1 : 0;
+    j.broken_towards += towards ? 1 : 0;
+    j.broken_away += away ? 1 : 0;
+  }
+  if (j.draws > 0) count_up(j, confidence);
   return j;
 }
 

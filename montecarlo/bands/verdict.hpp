@@ -57,4 +57,15 @@ struct Judged {
 [[nodiscard]] Judged judge(const Bound& bound, std::span<const double> values, std::span<const std::int8_t> status,
                            double grid_bound, double at_most, double confidence);
 
+/// One of several bounds of which none may be broken.
+struct Part {
+  Bound bound;
+  std::span<const double> values;  ///< one per draw
+  double grid_bound = 0.0;         ///< as in `judge`
+};
+
+/// The same for "any of these is broken": a draw breaks the whole when it breaks a part, each part moved by its own
+/// grid bound. Not under the largest of its parts, not over their sum. No verdict: nothing is allowed or not.
+[[nodiscard]] Judged judge_any(std::span<const Part> parts, std::span<const std::int8_t> status, double confidence);
+
 }  // namespace headband::montecarlo

@@ -6,6 +6,7 @@
 #include "montecarlo/bands/verdict.hpp"
 #include "montecarlo/propagate/budget.hpp"
 #include "montecarlo/propagate/draws.hpp"
+#include "montecarlo/propagate/histories.hpp"
 #include "montecarlo/propagate/inputs.hpp"
 #include "montecarlo/propagate/judge_limits.hpp"
 #include "montecarlo/propagate/model.hpp"
@@ -47,10 +48,11 @@ class BandRun {
         inputs_(inputs_of(c)),
         ranges_(ranges_of(c)),
         stations_(model_stations(c, plan, options.surge)),
-        table_(computed_.size(), plan.limits.size(), stations_.size()) {
-    for (int t = 0; t < std::max(1, options.threads); ++t) models_.push_back(make_model(c, plan, options.surge));
+        wish_(c.band.until_share > 0.0 ? most_draws : c.band.draws),
+        history_times_(times_of_histories()),
+        table_(computed_.size(), plan.limits.size(), stations_.size(), history_times_.size() * plan.probes.size()) {
+    make_models(history_times_);
     const bool until = c.band.until_share > 0.0;
-    wish_ = until ? most_draws : c.band.draws;
     draws_ = draws_of_design(c.band.design, until ? first_look : wish_);
     if (until && c.band.design == Design::latin_hypercube) {
       throw base::InputError({{c.band.place, "band/until", "a Latin hypercube needs its number of draws beforehand", "until", "",
@@ -64,15 +66,30 @@ class BandRun {
   BandOutcome run() {
     start();
     if (!draw_all()) return stopped();
+    if (!history_times_.empty()) make_models({});  // the band's own draws alone keep histories
     if (!outer_points()) return stopped();
     form_answers();
     if (!form_budget()) return stopped();
     form_profile();
+    form_history();
     finish();
     return std::move(outcome_);
   }
 
  private:
+  [[nodiscard]] std::vector<double> times_of_histories() {
+    if (!options_.surge) return {};
+    std::string warning;
+    auto times = history_times(central_.time, case_.surge.duration.value, plan_.probes.size(), wish_, warning);
+    if (!warning.empty()) warn(warning);
+    return times;
+  }
+
+  void make_models(const std::vector<double>& times) {
+    models_.clear();
+    for (int t = 0; t < std::max(1, options_.threads); ++t) models_.push_back(make_model(case_, plan_, options_.surge, times));
+  }
+
   void warn(const std::string& words) { outcome_.warnings.push_back(words); }
   [[nodiscard]] bool asked_to_stop() const { return options_.stop != nullptr && options_.stop->load(); }
 
@@ -117,6 +134,9 @@ class BandRun {
       bands.profile_station_pipe.push_back(station.pipe);
       bands.profile_share.push_back(station.share);
     }
+    bands.history_time = history_times_;
+    if (!history_times_.empty())
+      for (const auto& probe : plan_.probes) bands.history_probe_name.push_back(probe.name);
     for (const auto& answer : plan_.answers) {
       if (!options_.surge && !case_.events.empty() && answer.needs_surge()) {
         outcome_.left_out.push_back(fmt::format("{}: needs band --surge", answer.name));
@@ -239,6 +259,11 @@ class BandRun {
       outcome_.bands.answers.push_back(std::move(answer));
     }
     outcome_.limits = over_ranges(ranges_, case_, judged_);
+    outcome_.bands.whole_line.clear();
+    if (outcome_.limits.size() > plan_.limits.size()) {
+      outcome_.bands.whole_line.push_back(std::move(outcome_.limits.back()));
+      outcome_.limits.pop_back();
+    }
   }
 
   bool form_budget() {
@@ -261,21 +286,26 @@ class BandRun {
   void form_profile() {
     if (stations_.empty()) return;
     answers::Bands& bands = outcome_.bands;
-    bands.profile_probability = {0.5 * (1.0 - case_.band.coverage), 0.5, 0.5 * (1.0 + case_.band.coverage)};
+    bands.profile_probability = band_probabilities(case_.band.coverage);
     for (const bool highest : {true, false}) {
       std::vector<double>& out = highest ? bands.profile_head_max : bands.profile_head_min;
       out.assign(3 * stations_.size(), answers::missing);
       for (std::size_t s = 0; s < stations_.size(); ++s) {
         const auto& column = highest ? table_.head_max[s] : table_.head_min[s];
         const std::span<const std::int8_t> status(table_.status.data(), column.size());
-        const Sample sample(column, status, {});
-        const auto quantiles = sample.quantiles(bands.profile_probability);
-        for (std::size_t p = 0; p < 3; ++p) out[p * stations_.size() + s] = quantiles[p].value;
+        const auto quantiles = plain_quantiles(column, status, bands.profile_probability);
+        for (std::size_t p = 0; p < 3; ++p) out[p * stations_.size() + s] = quantiles[p];
       }
     }
     if (static_cast<long long>(table_.head_max.front().size()) < draws_) {
       warn(fmt::format("whole-line bands are those of the first {} draws", table_.head_max.front().size()));
     }
+  }
+
+  /// Quantiles of the head at each kept place over time.
+  void form_history() {
+    const auto kept = static_cast<long long>(form_histories(table_, outcome_.bands));
+    if (kept > 0 && kept < table_.draws()) warn(fmt::format("bands of histories are those of the first {} draws", kept));
   }
 
   void count_runs() {
@@ -316,6 +346,7 @@ class BandRun {
       for (auto& m : medians_) m.clear();
       form_answers();
       form_profile();
+      form_history();
     }
     count_runs();
     outcome_.all_failed = false;
@@ -327,18 +358,20 @@ class BandRun {
   const network::Plan& plan_;
   const CentralRun& central_;
   const BandOptions& options_;
+  BandOutcome outcome_;
   std::uint64_t seed_;
   std::vector<std::size_t> computed_;
   std::vector<Input> inputs_;
   Ranges ranges_;
   std::vector<transient::BatchStation> stations_;
+  long long wish_ = 0;
+  std::vector<double> history_times_;
   DrawTable table_;
   std::vector<BlockModel> models_;
   std::optional<Sampler> sampler_;
-  long long wish_ = 0, draws_ = 0, taken_up_ = 0, all_work_ = 0;
+  long long draws_ = 0, taken_up_ = 0, all_work_ = 0;
   std::vector<PointJudgement> judged_;
   std::vector<std::vector<double>> medians_;
-  BandOutcome outcome_;
 };
 
 }  // namespace

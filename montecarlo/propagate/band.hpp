@@ -40,6 +40,7 @@ struct CentralRun {
   std::vector<double> answer_value, limit_value;            ///< as Plan::answers, Plan::limits
   std::vector<double> answer_grid_bound, limit_grid_bound;  ///< zero for steady answers; NaN = not converging
   bool cavity = false;
+  std::vector<double> time = {};  ///< its rows [s]; none: the bands of histories stand at even times
 };
 
 /// Samples the case: draws, propagates, forms quantiles, probabilities, verdicts, budget.

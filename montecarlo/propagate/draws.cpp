@@ -82,6 +82,7 @@ void work(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockMo
         block.limit.assign(table.limit.size(), Lanes<8>(nothing));
         block.head_max.clear();
         block.head_min.clear();
+        block.history.clear();
         block.status.fill(not_finite);
       }
       const int lanes = static_cast<int>(std::min(8LL, to - first));
@@ -100,8 +101,13 @@ void DrawTable::resize(long long draws) {
   const std::size_t envelopes = head_max.empty() ? 0 : std::min(n, most_envelope_numbers / (2 * head_max.size()));
   for (auto* columns : {&head_max, &head_min})
     for (auto& column : *columns) column.resize(envelopes, nothing);
+  for (auto& column : history) column.resize(histories_kept(n), nothing);
   status.resize(n, not_finite);
   cavity.resize(n, 0);
+}
+
+std::size_t DrawTable::histories_kept(std::size_t draws) const {
+  return history.empty() ? 0 : std::min(draws, most_history_numbers / history.size());
 }
 
 bool DrawTable::all_finished(const BlockAnswers& block) {
@@ -114,7 +120,7 @@ bool DrawTable::all_finished(const BlockAnswers& block) {
 
 void DrawTable::store(std::size_t first, int lanes, const BlockAnswers& block) {
   // the usual block: eight finished draws, whole columns at once
-  if (lanes == 8 && head_max.empty() && all_finished(block)) {
+  if (lanes == 8 && head_max.empty() && history.empty() && all_finished(block)) {
     const auto put = [first](const std::vector<Lanes<8>>& from, std::vector<std::vector<double>>& to) {
       for (std::size_t i = 0; i < to.size(); ++i) {
         double* const column = to[i].data() + first;
@@ -146,6 +152,9 @@ void DrawTable::store_lane(std::size_t draw, int lane, const BlockAnswers& block
     head_max[i][draw] = envelopes ? block.head_max[i][lane] : nothing;
     head_min[i][draw] = envelopes ? block.head_min[i][lane] : nothing;
   }
+  const bool histories = good && block.history.size() >= history.size();
+  for (std::size_t i = 0; i < history.size() && draw < history[i].size(); ++i)
+    history[i][draw] = histories ? block.history[i][lane] : nothing;
 }
 
 DrawSummary run_draws(long long first, long long last, const ScoreSource& scores, std::vector<BlockModel>& models,

@@ -23,16 +23,22 @@ using BlockModel = std::function<void(const network::Scores<8>&, BlockAnswers&)>
 /// Fills the scores of the draws `first` … `first + 7`. Used by all threads at once.
 using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;
 
+/// Histories kept: 256 MB, draws times times times probes.
+inline constexpr std::size_t most_history_numbers = std::size_t{32} << 20;
+
 /// Every number of every draw; failed draws hold not-a-number.
 struct DrawTable {
   std::vector<std::vector<double>> answer, limit;        ///< [which][draw]
   std::vector<std::vector<double>> head_max, head_min;   ///< [station][draw], at most 512 MB of them
+  std::vector<std::vector<double>> history;              ///< [(time, probe)][draw], see `histories_kept`
   std::vector<std::int8_t> status, cavity;               ///< [draw]
 
-  DrawTable(std::size_t answers, std::size_t limits, std::size_t stations)
-      : answer(answers), limit(limits), head_max(stations), head_min(stations) {}
+  DrawTable(std::size_t answers, std::size_t limits, std::size_t stations, std::size_t histories = 0)
+      : answer(answers), limit(limits), head_max(stations), head_min(stations), history(histories) {}
   [[nodiscard]] long long draws() const { return static_cast<long long>(status.size()); }
   void resize(long long draws);
+  /// Of so many draws, the first ones whose histories are kept: `most_history_numbers` of them in all.
+  [[nodiscard]] std::size_t histories_kept(std::size_t draws) const;
   /// Stores the first `lanes` lanes of a block as the draws from `first` on; an answer or limit that is not finite makes
   /// its draw a failed one (status 2).
   void store(std::size_t first, int lanes, const BlockAnswers& block);

@@ -17,6 +17,7 @@ namespace {
 
 /// Allowed probability of a limit that names none (a guess, told to the user).
 constexpr double usual_at_most = 0.05;
+constexpr const char* rating_kind = "rating";
 
 std::string reason_of(const Judged& j, double grid_bound) {
   if (!std::isfinite(grid_bound)) return "the grid is not converging";
@@ -91,6 +92,40 @@ std::string where_words(const network::AnswerPlan& answer) {
   return two ? answer.where.name + ", " + answer.other.name : answer.where.name;
 }
 
+namespace {
+
+/// The chance that any pipe exceeds its own rating, from the judged ratings of the pipes.
+void judge_whole_line(const network::Case& c, const network::Plan& plan, const CentralRun& central, const DrawTable& table,
+                      bool surge, PointJudgement& point) {
+  std::vector<Part> parts;
+  LimitAnswer answer;
+  answer.name = any_rated_pipe;
+  answer.kind = rating_kind;
+  answer.unit = "Pa";
+  double worse_by = 0.0;
+  for (std::size_t i = 0; i < plan.limits.size(); ++i) {
+    const network::LimitPlan& limit = plan.limits[i];
+    if (limit.rating_of_pipe < 0) continue;
+    parts.push_back({{limit.bound, limit.not_over}, table.limit[i], i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0});
+    answer.margin = std::fmin(answer.margin, point.limits[i].margin);
+    answer.confidence = std::fmax(answer.confidence, limit.confidence);
+    worse_by = parts.size() == 1 ? point.worse_by[i] : std::fmax(worse_by, point.worse_by[i]);
+  }
+  if (parts.empty()) return;
+  const Judged j = judge_any(parts, table.status, answer.confidence);
+  answer.probability_lower = j.lower;
+  if (surge || c.events.empty()) {
+    answer.probability = j.probability;
+    answer.probability_upper = j.upper;
+  } else {
+    answer.reason = "needs surge";
+  }
+  point.limits.push_back(std::move(answer));
+  point.worse_by.push_back(worse_by);
+}
+
+}  // namespace
+
 PointJudgement judge_limits(const network::Case& c, const network::Plan& plan, const CentralRun& central,
                             const DrawTable& table, bool surge) {
   PointJudgement point;
@@ -124,6 +159,7 @@ PointJudgement judge_limits(const network::Case& c, const network::Plan& plan, c
     point.limits.push_back(std::move(answer));
     point.worse_by.push_back(mean_excess(bound, table.limit[i]));
   }
+  judge_whole_line(c, plan, central, table, surge, point);
   return point;
 }
 
@@ -155,6 +191,7 @@ std::vector<LimitAnswer> over_ranges(const Ranges& ranges, const network::Case& 
     answer.probability_lower_range = span_of(&LimitAnswer::probability_lower);
     answer.probability_upper_range = span_of(&LimitAnswer::probability_upper);
     answer.worst_corner = ranges.points[worst_point].name;
+    if (answer.name == any_rated_pipe && answer.kind == rating_kind) continue;
     const bool needs_surge = answer.reason == "needs surge";
     answer.verdict = over_outer_points(verdicts);
     if (answer.verdict != Verdict::cannot_tell) {

@@ -13,9 +13,9 @@ namespace {
 /// Solvers and storage of one thread.
 class PipelineModel {
  public:
-  PipelineModel(const network::Case& c, const network::Plan& plan, bool surge)
+  PipelineModel(const network::Case& c, const network::Plan& plan, bool surge, const std::vector<double>& history_times)
       : case_(&c), plan_(&plan), answers_(answers_computed(c, plan, surge)), solver_(c, plan) {
-    if (surge) marcher_.emplace(c, plan);
+    if (surge) marcher_.emplace(c, plan, history_times);
   }
 
   void answer(const network::Scores<8>& scores, BlockAnswers& out) {
@@ -113,8 +113,9 @@ std::vector<std::size_t> answers_computed(const network::Case& c, const network:
   return computed;
 }
 
-BlockModel make_model(const network::Case& c, const network::Plan& plan, bool surge) {
-  const auto model = std::make_shared<PipelineModel>(c, plan, surge);
+BlockModel make_model(const network::Case& c, const network::Plan& plan, bool surge,
+                      const std::vector<double>& history_times) {
+  const auto model = std::make_shared<PipelineModel>(c, plan, surge, history_times);
   return [model](const network::Scores<8>& scores, BlockAnswers& out) { model->answer(scores, out); };
 }
 

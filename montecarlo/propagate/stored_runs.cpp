@@ -57,9 +57,11 @@ void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, c
   }
   bands.run_head_max.clear();
   bands.run_head_min.clear();
+  bands.run_history_head.clear();
   if (with_envelopes) {
     bands.run_head_max = rows_of(table.head_max, n, 1);
     bands.run_head_min = rows_of(table.head_min, n, 1);
+    bands.run_history_head = rows_of(table.history, table.histories_kept(n), 1);
   }
 }
 
@@ -69,7 +71,8 @@ long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
     return rows.size() == runs * columns.size();
   };
   if (bands.stride != 1 || !fits(bands.output_value, table.answer) || !fits(bands.limit_value, table.limit) ||
-      !fits(bands.run_head_max, table.head_max) || !fits(bands.run_head_min, table.head_min)) {
+      !fits(bands.run_head_max, table.head_max) || !fits(bands.run_head_min, table.head_min) ||
+      bands.run_history_head.size() != table.histories_kept(runs) * table.history.size()) {
     return 0;
   }
   const std::size_t whole = runs / 8 * 8;  // an odd end is computed again
@@ -78,6 +81,7 @@ long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
   columns_of(bands.limit_value, table.limit, whole);
   columns_of(bands.run_head_max, table.head_max, whole);
   columns_of(bands.run_head_min, table.head_min, whole);
+  columns_of(bands.run_history_head, table.history, table.histories_kept(whole));
   std::copy_n(bands.run_status.begin(), whole, table.status.begin());
   if (bands.run_cavity.size() == runs) std::copy_n(bands.run_cavity.begin(), whole, table.cavity.begin());
   return static_cast<long long>(whole);

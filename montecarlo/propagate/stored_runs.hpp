@@ -20,7 +20,7 @@ void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const ne
                const std::vector<std::size_t>& answers);
 
 /// Fills the runs of the first `draws` draws, every `stride`-th of them.
-/// @param with_envelopes each draw's envelopes too, so that the band can be taken up again (needs stride 1)
+/// @param with_envelopes each draw's envelopes and histories too, so that the band can be taken up again (needs stride 1)
 void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, const std::vector<Input>& inputs,
                const Sampler& sampler, const Ranges& ranges, long long stride, bool with_envelopes);
 

@@ -100,5 +100,26 @@ TEST(Sample, ProbabilitiesAreWrittenShort) {
   EXPECT_EQ(asked_probabilities(0.9), (std::vector<double>{0.05, 0.5, 0.95}));
 }
 
+TEST(Sample, PlainQuantilesAreTheSameBits) {
+  std::vector<double> values;
+  std::vector<std::int8_t> status;
+  unsigned x = 7;
+  for (int i = 0; i < 40000; ++i) {
+    x = 1664525U * x + 1013904223U;
+    values.push_back(static_cast<double>(x >> 8));
+    status.push_back(i % 91 == 0 ? std::int8_t{3} : std::int8_t{0});
+  }
+  const auto probabilities = band_probabilities(0.95);
+  ASSERT_EQ(probabilities.size(), 3U);
+  for (const std::size_t n : {std::size_t{2}, std::size_t{300}, values.size()}) {
+    const std::span<const double> v(values.data(), n);
+    const std::span<const std::int8_t> s(status.data(), n);
+    const auto plain = plain_quantiles(v, s, probabilities);
+    const auto full = Sample(v, s, {}).quantiles(probabilities);
+    for (std::size_t p = 0; p < 3; ++p) EXPECT_EQ(plain[p], full[p].value) << n;
+  }
+  EXPECT_TRUE(std::isnan(plain_quantiles(std::span(values).first(1), std::span(status).first(1), probabilities)[1]));
+}
+
 }  // namespace
 }  // namespace headband::montecarlo

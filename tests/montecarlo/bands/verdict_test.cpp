@@ -95,5 +95,30 @@ TEST(Verdict, UnknownGridBoundTellsNothing) {
   EXPECT_EQ(none.verdict, Verdict::cannot_tell);
 }
 
+TEST(Verdict, AnyOfSeveralBoundsIsCountedByDraw) {
+  // two bounds, one each way, with grid bounds of their own; draw 7 failed, draw 8 without a number
+  const std::vector<double> high{1, 3, 1, 3, 1.9, 1, 1, 9, 1}, low{5, 5, 1, 1, 5, 2.05, 5, 0, answers::missing};
+  const std::vector<std::int8_t> status{0, 0, 0, 0, 0, 0, 0, 1, 0};
+  const std::vector<Part> parts{{{2.0, true}, high, 0.2}, {{2.0, false}, low, 0.1}};
+  const Judged j = judge_any(parts, status, 0.9);
+  EXPECT_EQ(j.draws, 9);
+  EXPECT_EQ(j.failed, 2);
+  EXPECT_EQ(j.broken, 3);
+  EXPECT_EQ(j.broken_towards, 5);
+  EXPECT_EQ(j.broken_away, 3);
+  EXPECT_DOUBLE_EQ(j.probability, 3.0 / 7.0);
+  EXPECT_DOUBLE_EQ(j.upper, probability_at_most(7, 9, 0.9));
+  EXPECT_DOUBLE_EQ(j.lower, probability_at_least(3, 9, 0.9));
+  EXPECT_EQ(j.verdict, Verdict::none);
+  // one part alone says what `judge` says
+  const Judged one = judge_any(std::span(parts).first(1), status, 0.9), same = judge(parts[0].bound, high, status, 0.2, 0.5, 0.9);
+  EXPECT_EQ(one.broken, same.broken);
+  EXPECT_EQ(one.lower, same.lower);
+  EXPECT_EQ(one.upper, same.upper);
+  // a part whose grid bound is not known can only widen
+  const std::vector<Part> unknown{parts[0], {{2.0, false}, low, answers::missing}};
+  EXPECT_EQ(judge_any(unknown, status, 0.9).upper, 1.0);
+}
+
 }  // namespace
 }  // namespace headband::montecarlo

@@ -326,6 +326,8 @@ TEST(Band, MarchedDrawsAreTheSameForAnyThreadsAndResume) {
   const auto three = band(r, {.surge = true, .threads = 3});
   EXPECT_EQ(one.bands.output_value, three.bands.output_value);
   EXPECT_EQ(one.bands.profile_head_max, three.bands.profile_head_max);
+  ASSERT_FALSE(one.bands.history_head.empty());
+  EXPECT_EQ(one.bands.history_head, three.bands.history_head);
   EXPECT_EQ(one.bands.answers[0].sensitivity[0].total, three.bands.answers[0].sensitivity[0].total);
   // stopped after a while, taken up
   std::atomic<bool> stop{false};
@@ -340,14 +342,23 @@ TEST(Band, MarchedDrawsAreTheSameForAnyThreadsAndResume) {
   const std::size_t stations = one.bands.profile_share.size();
   if (half.stopped) {
     EXPECT_EQ(half.bands.run_head_max.size(), stations * half.bands.run_status.size());
+    EXPECT_EQ(half.bands.run_history_head.size(),
+              half.bands.run_status.size() * half.bands.history_time.size() * half.bands.history_probe_name.size());
     BandOptions resuming{.surge = true, .threads = 2};
     resuming.resumed = half.bands;
     const auto resumed = band(r, resuming);
     EXPECT_EQ(resumed.bands.output_value, one.bands.output_value);
     EXPECT_EQ(resumed.bands.profile_head_max, one.bands.profile_head_max);
+    EXPECT_EQ(resumed.bands.history_head, one.bands.history_head);
+    // a file without the histories of its draws does not fit: anew, and said so
+    resuming.resumed->run_history_head.clear();
+    const auto anew = band(r, resuming);
+    EXPECT_EQ(anew.bands.history_head, one.bands.history_head);
+    EXPECT_EQ(says(anew.warnings, "started anew"), half.bands.run_status.size() > 0);
     EXPECT_EQ(resumed.limits[0].probability_upper, one.limits[0].probability_upper);
   }
   EXPECT_TRUE(one.bands.run_head_max.empty());  // a finished band does not keep each draw's envelope
+  EXPECT_TRUE(one.bands.run_history_head.empty());
 }
 
 TEST(Band, ProfileOfMarchedDrawsIsOrdered) {
@@ -366,6 +377,80 @@ TEST(Band, ProfileOfMarchedDrawsIsOrdered) {
   // the valve's end of the profile and the answer there are the same draws: head = pressure / (density gravity)
   const double median = std::ranges::find(b.answers[0].quantiles, 0.5, &answers::QuantileAnswer::probability)->value;
   EXPECT_NEAR(b.profile_head_max[2 * n - 1], median / (1000.0 * 9.80665), 1e-6);
+}
+
+TEST(Band, HistoriesOfMarchedDrawsLieWithinTheirEnvelopes) {
+  Ready r = ready(surge_words("draws = 256"));
+  const auto b = band(r, {.surge = true}).bands;
+  const std::size_t times = b.history_time.size(), probes = b.history_probe_name.size(), cells = times * probes;
+  ASSERT_EQ(probes, 2U);
+  ASSERT_EQ(b.history_head.size(), 3 * cells);
+  EXPECT_EQ(b.history_probability, b.profile_probability);
+  EXPECT_EQ(b.history_time.front(), 0.0);
+  EXPECT_EQ(b.history_time.back(), 6.0);
+  const std::size_t n = b.profile_share.size();
+  const auto end = static_cast<std::size_t>(std::ranges::find(b.history_probe_name, "end") - b.history_probe_name.begin());
+  ASSERT_LT(end, probes);
+  double highest = -1e9;
+  for (std::size_t i = 0; i < cells; ++i) {
+    EXPECT_LE(b.history_head[i], b.history_head[cells + i]);
+    EXPECT_LE(b.history_head[cells + i], b.history_head[2 * cells + i]);
+    if (i % probes != end) continue;
+    highest = std::max(highest, b.history_head[2 * cells + i]);
+    EXPECT_LE(b.history_head[2 * cells + i], b.profile_head_max[3 * n - 1] + 1e-9);
+    EXPECT_GE(b.history_head[i], b.profile_head_min[n - 1] - 1e-9);
+  }
+  EXPECT_GT(highest, b.profile_head_max[n - 1]);  // the peak of a history is the envelope's, nearly
+  // on rows of the central run where there are some
+  r.central.time.clear();
+  for (int row = 0; row <= 600; ++row) r.central.time.push_back(0.01 * row);
+  const auto on_rows = band(r, {.surge = true}).bands;
+  EXPECT_EQ(on_rows.history_time.size(), 201U);
+  EXPECT_EQ(on_rows.history_time[7], r.central.time[21]);
+  EXPECT_EQ(on_rows.profile_head_max, b.profile_head_max);
+  EXPECT_EQ(on_rows.history_head[on_rows.history_head.size() - 1], b.history_head[b.history_head.size() - 1]);
+  EXPECT_TRUE(band(ready(words("draws = 64"))).bands.history_time.empty());  // no march, no histories
+}
+
+TEST(Band, WholeLineStatementCountsDrawsThatBreakAnyRating) {
+  std::string text = surge_words("draws = 512");
+  const std::string one = "roughness = \"0.1 mm x/ 1.5\"\n";
+  text.replace(text.find(one), one.size(), one + "rating = \"7.2 bar g\"\n");
+  text += R"(
+[[pipe]]
+name = "branch"
+from = "end"
+to = "stub"
+length = "300 m"
+bore = "200 mm"
+wave_speed = "1100 m/s"
+roughness = "0.1 mm"
+rating = "7.35 bar g ± 5 %"
+)";
+  const Ready r = ready(text);
+  ASSERT_EQ(r.plan.limits.size(), 2U);
+  const auto out = band(r, {.surge = true});
+  ASSERT_EQ(out.limits.size(), 2U);
+  ASSERT_EQ(out.bands.whole_line.size(), 1U);
+  const auto& any = out.bands.whole_line[0];
+  EXPECT_EQ(any.name, "any rated pipe");
+  EXPECT_EQ(any.verdict, answers::Verdict::none);
+  const double first = out.limits[0].probability, second = out.limits[1].probability;
+  EXPECT_GT(first, 0.0);
+  EXPECT_GT(second, 0.0);
+  // counted from the draws stored, not from the two probabilities
+  double broken = 0.0, draws = 0.0;
+  for (std::size_t run = 0; run < out.bands.run_status.size(); ++run) {
+    if (out.bands.run_status[run] != 0) continue;
+    draws += 1.0;
+    broken += out.bands.limit_value[2 * run] > r.plan.limits[0].bound || out.bands.limit_value[2 * run + 1] > r.plan.limits[1].bound ? 1.0 : 0.0;
+  }
+  EXPECT_EQ(any.probability, broken / draws);
+  EXPECT_GT(any.probability, std::max(first, second));
+  EXPECT_LE(any.probability, first + second);
+  EXPECT_GE(any.probability_upper, std::max(out.limits[0].probability_upper, out.limits[1].probability_upper));
+  EXPECT_LT(any.probability_lower, any.probability);
+  EXPECT_TRUE(band(ready(words("draws = 64"))).bands.whole_line.empty());  // nothing rated
 }
 
 /// Fitted shares of a march against exchanged inputs of the same steady answer: `flow` of the valve is the flow.

@@ -1,0 +1,59 @@
+// SPDX-License-Identifier: MIT
+#include "montecarlo/propagate/histories.hpp"
+
+#include "montecarlo/bands/sample.hpp"
+
+#include <algorithm>
+#include <fmt/format.h>
+
+namespace headband::montecarlo {
+
+namespace {
+
+constexpr std::size_t worth_a_band = 64;     ///< draws under which a band of histories says nothing
+constexpr std::size_t enough_draws = 4096;   ///< for the ends of a band; fewer times come before fewer draws than these
+
+}  // namespace
+
+std::vector<double> history_times(const std::vector<double>& rows, double duration, std::size_t probes, long long draws,
+                                  std::string& warning) {
+  warning.clear();
+  if (probes == 0 || draws <= 0) return {};
+  const auto all = static_cast<std::size_t>(draws);
+  const std::size_t fit = most_history_numbers / probes;
+  if (fit / least_history_times < std::min(all, worth_a_band)) {
+    warning = fmt::format("histories carry no bands: {} places times the draws are too many; name fewer with show places", probes);
+    return {};
+  }
+  const std::size_t most = std::clamp(fit / std::min(all, enough_draws), least_history_times, most_history_times);
+  std::vector<double> times;
+  if (rows.size() < 2) {
+    for (std::size_t i = 0; i < most; ++i) times.push_back(duration * static_cast<double>(i) / static_cast<double>(most - 1));
+  } else {
+    // draws march to the duration; the last row of the central run may lie a little behind it
+    std::size_t count = rows.size();
+    while (count > 2 && rows[count - 1] > duration * (1.0 + 1e-9)) --count;
+    const std::size_t stride = (count - 1 + most - 2) / (most - 1);
+    for (std::size_t row = 0; row + 1 < count; row += stride) times.push_back(rows[row]);
+    times.push_back(rows[count - 1]);
+  }
+  if (most < most_history_times && times.size() < rows.size()) {
+    warning = fmt::format("bands of histories stand at {} times: {} places times the draws leave no room for more", times.size(), probes);
+  }
+  return times;
+}
+
+std::size_t form_histories(const DrawTable& table, answers::Bands& bands) {
+  if (table.history.empty()) return 0;
+  const std::size_t cells = table.history.size();
+  bands.history_probability = band_probabilities(bands.coverage);
+  bands.history_head.assign(3 * cells, answers::missing);
+  for (std::size_t i = 0; i < cells; ++i) {
+    const auto& column = table.history[i];
+    const auto quantiles = plain_quantiles(column, {table.status.data(), column.size()}, bands.history_probability);
+    for (std::size_t p = 0; p < 3; ++p) bands.history_head[p * cells + i] = quantiles[p];
+  }
+  return table.history.front().size();
+}
+
+}  // namespace headband::montecarlo
