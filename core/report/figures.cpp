@@ -201,11 +201,11 @@ std::vector<double> column_of(const std::vector<double>& table,
   return values;
 }
 
-/// Deals curves out to plots of six.
-std::vector<Plot> dealt(const Plot& pattern, std::vector<Curve> curves) {
+/// Deals curves out to plots of `most` (six at most).
+std::vector<Plot> dealt(const Plot& pattern, std::vector<Curve> curves, std::size_t most = inks.size()) {
   std::vector<Plot> plots;
   for (std::size_t i = 0; i < curves.size(); ++i) {
-    if (i % inks.size() == 0) {
+    if (i % most == 0) {
       plots.push_back(pattern);
       if (i > 0) {
         const std::string part = std::to_string(plots.size());
@@ -213,11 +213,67 @@ std::vector<Plot> dealt(const Plot& pattern, std::vector<Curve> curves) {
         plots.back().title += ", part " + part;
       }
     }
-    dress(curves[i], i % inks.size());
+    dress(curves[i], i % most);
     plots.back().curves.push_back(std::move(curves[i]));
   }
   return plots;
 }
+
+/// Bands over time of one study, by the name of a place.
+class HistoryBands {
+ public:
+  /// Shaded bands hide each other: no more curves than these share a plot.
+  static constexpr std::size_t most_curves = 3;
+
+  explicit HistoryBands(const Study& study) {
+    if (!study.bands || study.bands->history_probability.size() < 2) return;
+    const auto& b = *study.bands;
+    if (b.history_head.size() != b.history_probability.size() * b.history_time.size() * b.history_probe_name.size()) return;
+    bands_ = &b;
+  }
+  [[nodiscard]] bool any() const { return bands_ != nullptr; }
+  [[nodiscard]] std::string words() const {
+    return fmt::format(" Shaded: {} to {} of the draws, at each of {} times by itself.",
+                       percent(bands_->history_probability.front()),
+                       percent(bands_->history_probability.back()),
+                       bands_->history_time.size());
+  }
+
+  /// Puts the bands of the plot's curves behind them. Their times are some of the plot's.
+  void shade(Plot& plot) const {
+    std::vector<Curve> lines;
+    lines.swap(plot.curves);
+    for (const Curve& line : lines) {
+      const auto found = std::find(bands_->history_probe_name.begin(), bands_->history_probe_name.end(), line.name);
+      if (found == bands_->history_probe_name.end()) continue;
+      const auto probe = static_cast<std::size_t>(found - bands_->history_probe_name.begin());
+      const std::size_t lower = plot.curves.size();
+      for (const std::size_t rank : {std::size_t{0}, bands_->history_probability.size() - 1})
+        plot.curves.push_back({line.name + ", " + percent(bands_->history_probability[rank]),
+                               edge(plot.abscissa, rank, probe), line.ink, Dash::dotted, Shape::line, 0.8});
+      if (any_finite(plot.curves[lower].y))
+        plot.fills.push_back({"band of " + line.name, lower, lower + 1, line.ink});
+      else
+        plot.curves.resize(lower);
+    }
+    plot.curves.insert(plot.curves.end(), lines.begin(), lines.end());
+  }
+
+ private:
+  /// One quantile of a place at the times of the plot, missing at the times between.
+  [[nodiscard]] std::vector<double> edge(const std::vector<double>& abscissa, std::size_t rank, std::size_t probe) const {
+    const auto& times = bands_->history_time;
+    std::vector<double> y(abscissa.size(), answers::missing);
+    for (std::size_t row = 0, i = 0; row < abscissa.size() && i < times.size(); ++row) {
+      while (i < times.size() && times[i] < abscissa[row]) ++i;
+      if (i < times.size() && times[i] == abscissa[row])
+        y[row] = bands_->history_head[(rank * times.size() + i) * bands_->history_probe_name.size() + probe];
+    }
+    return y;
+  }
+
+  const answers::Bands* bands_ = nullptr;
+};
 
 void add_limit_levels(const Study& study, Plot& plot) {
   for (const auto& limit : study.limits) {
@@ -256,6 +312,7 @@ std::vector<Plot> histories(const Study& study) {
   std::vector<Plot> plots;
   if (!study.transient || study.transient->time.size() < 2) return plots;
   const auto& t = *study.transient;
+  const HistoryBands bands(study);
   const auto kind = [&](const char* id, const char* title, PlotAxis axis, const std::vector<double>& table) {
     Plot pattern;
     pattern.id = id;
@@ -269,8 +326,11 @@ std::vector<Plot> histories(const Study& study) {
       std::vector<double> y = column_of(table, t.time.size(), t.probe_name.size(), i);
       if (any_finite(y)) curves.push_back({t.probe_name[i], std::move(y)});
     }
-    for (Plot& plot : dealt(pattern, std::move(curves))) {
+    const bool shaded = bands.any() && pattern.y.shown == Shown::head;
+    if (shaded) pattern.message += bands.words();
+    for (Plot& plot : dealt(pattern, std::move(curves), shaded ? HistoryBands::most_curves : inks.size())) {
       if (plot.y.shown == Shown::pressure) add_limit_levels(study, plot);
+      if (shaded) bands.shade(plot);
       set_ranges(plot);
       plots.push_back(std::move(plot));
     }

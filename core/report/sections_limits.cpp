@@ -56,6 +56,25 @@ const answers::BandAnswer* answer_of(const Study& study, const answers::LimitAns
 
 }  // namespace
 
+namespace {
+
+/// A statement on the whole line stands under the limits, without a verdict of its own.
+std::vector<std::string> whole_line_row(const answers::LimitAnswer& any) {
+  std::string chance = probability_cell(any);
+  if (std::isnan(any.probability) && !any.probability_range)
+    chance = "at least " + percent(any.probability_lower) + "<br><small>" + escaped(any.reason) + "</small>";
+  std::string about = "chance that some pipe exceeds its own rating";
+  if (!any.worst_corner.empty()) about += "; worst corner: " + escaped(any.worst_corner);
+  return {escaped(any.name) + "<br><small>" + about + "</small>",
+          "statement",
+          "each pipe its own",
+          "–",
+          both(any.margin, Shown::pressure_difference, 3),
+          chance};
+}
+
+}  // namespace
+
 std::string limits_block(const Study& study) {
   Table table{"Limits: by how much they are kept, and how surely",
               {{"Limit"},
@@ -63,8 +82,7 @@ std::string limits_block(const Study& study) {
                {"bound", true},
                {"one run", true},
                {"margin", true},
-               {"chance that it is not kept", true},
-               {"picture"}},
+               {"chance that it is not kept", true}},
               {}};
   bool chances = false, pictures = false;
   for (std::size_t i = 0; i < study.limits.size(); ++i) {
@@ -87,15 +105,15 @@ std::string limits_block(const Study& study) {
     const std::string picture =
         strip(limit, answer_of(study, limit), study.bands ? study.bands->coverage : 0.95, bound, std::to_string(i));
     pictures = pictures || !picture.empty();
-    table.rows.push_back({escaped(limit.name) + "<br><small>" + about + "</small>",
+    table.rows.push_back({escaped(limit.name) + "<br><small>" + about + "</small>" + picture,
                           verdict,
                           (fails_over(limit) ? "not over " : "not under ") + both(limit.limit, shown),
                           both(limit.value, shown),
                           margin_cell(limit, shown, difference),
-                          chance,
-                          picture,
-                          verdict});
+                          chance});
   }
+  if (study.bands)
+    for (const auto& any : study.bands->whole_line) table.rows.push_back(whole_line_row(any));
   std::string out = html(table);
   if (out.empty()) return out;
   if (pictures)

@@ -484,6 +484,60 @@ void exchange_answers(Archive& a, Rows& rows) {
   }
 }
 
+/// Bands of the heads over time, and what a stopped band keeps of each draw for them.
+template <class Archive, class Bands>
+void exchange_band_histories(Archive& a, Bands& b) {
+  a.number_scale("history_probability", b.history_probability, {"1", "Probability of a history"});
+  a.number_scale("history_time", b.history_time, {"s", "Time of a history"});
+  a.text_scale("history_probe_name", b.history_probe_name, "Place whose history is kept");
+  a.array("history_head",
+          {"history_probability", "history_time", "history_probe_name"},
+          b.history_head,
+          {"m", "Quantile of the head over the draws at this time"});
+  const std::size_t cells = b.history_time.size() * b.history_probe_name.size();
+  const std::size_t runs = cells == 0 ? 0 : b.run_history_head.size() / cells;
+  a.index_scale("history_run", runs, "Draw whose histories are kept, the first ones; none unless the band was stopped");
+  a.array("run_history_head",
+          {"history_run", "history_time", "history_probe_name"},
+          b.run_history_head,
+          {"m", "Head of the draw"});
+}
+
+/// Statements on the line as a whole.
+template <class Archive, class Rows>
+void exchange_whole_line(Archive& a, Rows& rows) {
+  using Row = answers::LimitAnswer;
+  const char* d = "whole_line_name";
+  a.named_rows(d, rows, &Row::name, "Statement on the line as a whole, no limit of its own");
+  a.column("whole_line_kind", d, rows, &Row::kind, "What must not be exceeded anywhere");
+  a.column("whole_line_units", d, rows, &Row::unit, "Unit of the margin");
+  a.column("whole_line_margin", d, rows, &Row::margin, {"see whole_line_units", "Least margin of the central run"});
+  a.column("whole_line_probability", d, rows, &Row::probability, {"1", "Share of finished draws that exceed it anywhere"});
+  a.column("whole_line_probability_lower", d, rows, &Row::probability_lower, {"1", "Lower bound of the probability"});
+  a.column("whole_line_probability_upper", d, rows, &Row::probability_upper, {"1", "Upper bound of the probability"});
+  exchange_pairs(a,
+                 "whole_line_probability_range",
+                 d,
+                 rows,
+                 &Row::probability_range,
+                 {"1", "Probability, least and most over the not-random ranges"});
+  exchange_pairs(a,
+                 "whole_line_probability_lower_range",
+                 d,
+                 rows,
+                 &Row::probability_lower_range,
+                 {"1", "Lower bound, least and most over the not-random ranges"});
+  exchange_pairs(a,
+                 "whole_line_probability_upper_range",
+                 d,
+                 rows,
+                 &Row::probability_upper_range,
+                 {"1", "Upper bound, least and most over the not-random ranges"});
+  a.column("whole_line_worst_corner", d, rows, &Row::worst_corner, "Not-random ranges at their worst");
+  a.column("whole_line_confidence", d, rows, &Row::confidence, {"1", "Confidence of each bound"});
+  a.column("whole_line_reason", d, rows, &Row::reason, "What is missing");
+}
+
 template <class Archive, class Bands, class Pipes>
 void exchange_bands(Archive& a, Bands& b, Pipes& pipe_names) {
   a.number("coverage", b.coverage, {"1", "Share covered by a band"});
@@ -549,6 +603,8 @@ void exchange_bands(Archive& a, Bands& b, Pipes& pipe_names) {
           {"profile_probability", d},
           b.profile_head_min,
           {.units = "m", .long_name = "Quantile of the lowest head", .cell_methods = "time: minimum"});
+  exchange_band_histories(a, b);
+  exchange_whole_line(a, b.whole_line);
   if constexpr (!Archive::writing) {
     for (const std::int32_t pipe : b.profile_station_pipe) {
       if (pipe < 0 || static_cast<std::size_t>(pipe) >= pipe_names.size()) {

@@ -3,6 +3,8 @@
 #include "core/show/reported.hpp"
 #include "core/show/show.hpp"
 
+#include <fmt/format.h>
+
 #include <cmath>
 #include <cstddef>
 #include <initializer_list>
@@ -235,7 +237,9 @@ std::string limits(const Study& study) {
                 "confidence",
                 "verdict",
                 "reason"});
-  for (const auto& l : study.limits) {
+  std::vector<answers::LimitAnswer> rows = study.limits;
+  if (study.bands) rows.insert(rows.end(), study.bands->whole_line.begin(), study.bands->whole_line.end());
+  for (const auto& l : rows) {
     using Range = std::optional<std::array<double, 2>>;
     const auto side = [](double value, const Range& range, std::size_t i) { return range ? (*range)[i] : value; };
     sheet.text(l.name).text(l.kind).text(l.unit);
@@ -248,7 +252,7 @@ std::string limits(const Study& study) {
                    side(l.probability_upper, l.probability_upper_range, 1),
                    l.at_most,
                    l.confidence});
-    sheet.text(words_of(l.verdict)).text(l.reason);
+    sheet.text(l.verdict == answers::Verdict::none ? "" : words_of(l.verdict)).text(l.reason);
     sheet.end();
   }
   return sheet.take();
@@ -273,6 +277,24 @@ std::string bands(const answers::Bands& b) {
       sheet.text(a.name).text(a.kind).text(a.unit);
       sheet.numbers({q.probability, q.value, q.lower, q.upper, a.central, a.mean, a.standard_deviation});
       sheet.whole(a.draws).whole(a.failed);
+      sheet.end();
+    }
+  }
+  return sheet.take();
+}
+
+std::string history_bands(const answers::Bands& b) {
+  Sheet sheet;
+  sheet.text("place").text("time [s]");
+  for (const double p : b.history_probability) sheet.text(fmt::format("head, quantile {} [m]", p));
+  sheet.end();
+  const std::size_t probes = b.history_probe_name.size(), times = b.history_time.size();
+  for (std::size_t k = 0; k < probes; ++k) {
+    for (std::size_t i = 0; i < times; ++i) {
+      sheet.text(b.history_probe_name[k]).number(b.history_time[i]);
+      for (std::size_t p = 0; p < b.history_probability.size(); ++p) {
+        sheet.number(at_or_missing(b.history_head, (p * times + i) * probes + k));
+      }
       sheet.end();
     }
   }
@@ -315,6 +337,7 @@ std::map<std::string, std::string> csv(const Study& study) {
   if (study.limits_shown) files["limits.csv"] = limits(study);
   if (study.bands) {
     files["bands.csv"] = bands(*study.bands);
+    if (!study.bands->history_head.empty()) files["history-bands.csv"] = history_bands(*study.bands);
     files["draws.csv"] = draws(*study.bands);
   }
   return files;

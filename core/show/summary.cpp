@@ -313,6 +313,17 @@ void events(Frame& f) {
   f.more(all.size());
 }
 
+/// Chance of not keeping a limit, with its bounds.
+std::string chance_of(const answers::LimitAnswer& l) {
+  if (l.probability_range) {
+    std::string chance = fmt::format("{} .. {}", percent((*l.probability_range)[0]), percent((*l.probability_range)[1]));
+    if (l.probability_upper_range) chance += fmt::format(" (<= {})", percent((*l.probability_upper_range)[1]));
+    return chance;
+  }
+  if (std::isnan(l.probability)) return "-";
+  return fmt::format("{} ({} .. {})", percent(l.probability), percent(l.probability_lower), percent(l.probability_upper));
+}
+
 void limits(Frame& f) {
   const auto& all = f.study.limits;
   if (all.empty()) return;
@@ -321,20 +332,12 @@ void limits(Frame& f) {
   table.left(1);
   for (const auto& l : all) {
     const Dimension dimension = dimension_of_kind(l.kind);
-    std::string chance = "-";
-    if (l.probability_range) {
-      chance = fmt::format("{} .. {}", percent((*l.probability_range)[0]), percent((*l.probability_range)[1]));
-      if (l.probability_upper_range) chance += fmt::format(" (<= {})", percent((*l.probability_upper_range)[1]));
-    } else if (!std::isnan(l.probability)) {
-      chance = fmt::format(
-          "{} ({} .. {})", percent(l.probability), percent(l.probability_lower), percent(l.probability_upper));
-    }
     table.add({words_of(l.verdict),
                l.name,
                f.amounts.of(l.limit, dimension),
                f.amounts.of(l.value, dimension),
                f.amounts.width(l.margin, dimension, 3),
-               chance,
+               chance_of(l),
                std::isnan(l.at_most) ? "-" : percent(l.at_most)});
   }
   f.out += table.text(2);
@@ -342,6 +345,13 @@ void limits(Frame& f) {
     std::string reason = l.reason;
     if (!l.worst_corner.empty()) reason += (reason.empty() ? "worst at " : "; worst at ") + l.worst_corner;
     if (!reason.empty()) f.item(l.name + ": " + reason);
+  }
+  if (!f.study.bands) return;
+  for (const auto& l : f.study.bands->whole_line) {
+    std::string words = fmt::format("{} over its own rating: {}", l.name, chance_of(l));
+    if (std::isnan(l.probability)) words = fmt::format("{} over its own rating: at least {}", l.name, percent(l.probability_lower));
+    if (!l.reason.empty()) words += "; " + l.reason;
+    f.item(words);
   }
 }
 

@@ -306,7 +306,11 @@
     };
     live.append(element('div', { class: 'reading' }, where, slider, button('Closer', () => zoom(0.5)), button('Wider', () => zoom(2)), button('Whole', () => zoom(Infinity))));
     const list = element('ul', { class: 'curves' });
-    data.curves.forEach((c, i) => {
+    // Lines first, the edges of their bands behind them.
+    const edge = (c) => (c.shape === 'line' && c.width < 1 ? 1 : 0);
+    const order = data.curves.map((c, i) => i).sort((a, b) => edge(data.curves[a]) - edge(data.curves[b]));
+    order.forEach((i) => {
+      const c = data.curves[i];
       const box = element('input', { type: 'checkbox' });
       box.checked = true;
       box.addEventListener('change', () => {

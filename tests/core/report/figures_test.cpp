@@ -114,6 +114,59 @@ TEST(Histories, hold_every_step_and_leave_out_what_is_missing) {
   EXPECT_EQ(plots[2].curves.size(), 2u);  // the third probe has no flow of its own
 }
 
+TEST(Histories, heads_carry_the_bands_of_their_draws_behind_them) {
+  const auto study = support::sample_study();
+  const auto& b = *study.bands;
+  const auto plots = histories(study);
+  const Plot& heads = plots[1];
+  ASSERT_EQ(heads.y.shown, Shown::head);
+  ASSERT_EQ(heads.curves.size(), 9u);
+  ASSERT_EQ(heads.fills.size(), 3u);
+  EXPECT_NE(heads.message.find("Shaded: 2.5\u00a0% to 97.5\u00a0% of the draws, at each of "), std::string::npos) << heads.message;
+  for (std::size_t k = 0; k < 3; ++k) {
+    const Fill& fill = heads.fills[k];
+    const Curve& low = heads.curves[fill.lower];
+    const Curve& high = heads.curves[fill.upper];
+    const Curve& line = heads.curves[6 + k];
+    EXPECT_EQ(line.name, b.history_probe_name[k]);
+    EXPECT_EQ(low.name, line.name + ", 2.5\u00a0%");
+    EXPECT_EQ(fill.ink, line.ink);
+    std::size_t there = 0;
+    for (std::size_t row = 0; row < heads.abscissa.size(); ++row) {
+      if (row % 4 != 0) {
+        EXPECT_TRUE(std::isnan(low.y[row]));
+        continue;
+      }
+      EXPECT_EQ(low.y[row], b.history_head[(row / 4) * 3 + k]);
+      EXPECT_EQ(high.y[row], b.history_head[(2 * b.history_time.size() + row / 4) * 3 + k]);
+      EXPECT_LT(low.y[row], line.y[row]);
+      EXPECT_GT(high.y[row], line.y[row]);
+      ++there;
+    }
+    EXPECT_EQ(there, b.history_time.size());
+  }
+  EXPECT_TRUE(plots[0].fills.empty());  // pressures and flows of the one run alone
+  EXPECT_TRUE(histories(support::sample_surge())[1].fills.empty());
+}
+
+TEST(Histories, shaded_plots_hold_few_curves) {
+  auto study = support::sample_study();
+  auto& t = *study.transient;
+  const std::size_t rows = t.time.size();
+  t.probe_name.clear();
+  for (int i = 0; i < 7; ++i) t.probe_name.push_back("probe " + std::to_string(i));
+  t.probe_head.assign(rows * 7, 1.0);
+  t.probe_pressure.clear();
+  t.probe_flow.clear();
+  auto& b = *study.bands;
+  b.history_probe_name = t.probe_name;
+  b.history_head.assign(3 * b.history_time.size() * 7, 1.0);
+  const auto plots = histories(study);
+  ASSERT_EQ(plots.size(), 3u);
+  EXPECT_EQ(plots[0].curves.size(), 9u);
+  EXPECT_EQ(plots[2].curves.size(), 3u);
+}
+
 TEST(Histories, no_two_curves_of_a_plot_look_alike) {
   auto study = support::sample_surge();
   auto& t = *study.transient;

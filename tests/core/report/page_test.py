@@ -188,6 +188,16 @@ def main():
             whole = browser.run(f"const s = {figure}.uplot.scales.x; return s.max - s.min")
             check(same(whole, 400 * 0.0194287, 1e-9), f"whole shows {whole} s")
 
+            # Bands over time stand behind the lines; the limits fit a window of 1100 px.
+            heads = "document.getElementById('history-head')"
+            names = browser.run(f"return [...{heads}.querySelectorAll('.curves label')].map((l) => l.firstChild.nextSibling.nextSibling.data)")
+            check(names[0] == "valve chamber" and names[3] == "valve chamber, 2.5\u00a0%", f"the curves are called {names}")
+            check(browser.run(f"return {heads}.uplot.bands.length") == 3, "three places, three bands over time")
+            browser.driver.set_window_size(1100, 1400)
+            wide = browser.run("const t = document.querySelector('#limits .scroll'); return [t.scrollWidth, t.clientWidth]")
+            check(wide[0] <= wide[1] + 1, f"the table of limits is {wide[0]} px wide in a room of {wide[1]} px")
+            browser.driver.set_window_size(1250, 1400)
+
             # A hostile title stays text.
             browser.open(folder / "hostile.html")
             hostile = "</script><script>alert(1)</script>"

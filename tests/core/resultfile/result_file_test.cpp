@@ -95,6 +95,17 @@ TEST(ResultFile, EachBlockMayBeThereOrNot) {
         s.bands->profile_head_min.clear();
         s.bands->profile_probability.clear();
       },
+      [](Study& s) {
+        s.bands->history_head.clear();
+        s.bands->history_probability.clear();
+      },
+      [](Study& s) {
+        s.bands->history_head.clear();
+        s.bands->history_probability.clear();
+        s.bands->history_time.clear();
+        s.bands->history_probe_name.clear();
+        s.bands->whole_line.clear();
+      },
   };
   for (std::size_t i = 0; i < removals.size(); ++i) {
     Study study = support::sample_study();
@@ -185,12 +196,26 @@ TEST(ResultFile, AStoppedBandKeepsWhatResumingNeeds) {
     b.run_head_max.push_back(100.0 + static_cast<double>(i));
     b.run_head_min.push_back(-1.0 * static_cast<double>(i));
   }
+  const std::size_t cells = b.history_time.size() * b.history_probe_name.size();
+  ASSERT_GT(cells, 0U);
+  for (std::size_t i = 0; i < 40 * cells; ++i) b.run_history_head.push_back(0.25 * static_cast<double>(i));
   expect_round_trip(study, "stopped band");
   const ScratchFolder folder;
   write(study, folder / "a.partial.h5", {});
   const Study back = read(folder / "a.partial.h5");
   EXPECT_EQ(back.bands->run_head_max, b.run_head_max);
   EXPECT_EQ(back.bands->run_head_min, b.run_head_min);
+  EXPECT_EQ(back.bands->run_history_head, b.run_history_head);
+  EXPECT_EQ(back.bands->history_head, b.history_head);
+  EXPECT_EQ(back.bands->history_time, b.history_time);
+  EXPECT_EQ(back.bands->history_probability, b.history_probability);
+  EXPECT_EQ(back.bands->history_probe_name, b.history_probe_name);
+  ASSERT_EQ(back.bands->whole_line.size(), 1U);
+  EXPECT_EQ(back.bands->whole_line[0].name, b.whole_line[0].name);
+  EXPECT_EQ(back.bands->whole_line[0].probability_upper, b.whole_line[0].probability_upper);
+  EXPECT_EQ(back.bands->whole_line[0].probability_range, b.whole_line[0].probability_range);
+  EXPECT_EQ(back.bands->whole_line[0].verdict, answers::Verdict::none);
+  EXPECT_TRUE(std::isnan(back.bands->whole_line[0].limit));
   EXPECT_EQ(back.bands->run_cavity, b.run_cavity);
   EXPECT_EQ(back.bands->limit_name, b.limit_name);
   EXPECT_EQ(back.bands->run_status, b.run_status);

@@ -58,6 +58,7 @@ TEST(Csv, TablesFollowWhatTheStudyHolds) {
                                       "envelope.csv",
                                       "events.csv",
                                       "histories.csv",
+                                      "history-bands.csv",
                                       "limits.csv",
                                       "pipes.csv",
                                       "places.csv"}));
@@ -87,6 +88,25 @@ TEST(Csv, HistoriesHoldEveryStepWithAllDigits) {
     EXPECT_EQ(std::strtod(rows[row + 1][4].c_str(), nullptr), t.probe_head[3 * row + 1]);
     EXPECT_EQ(rows[row + 1][9], "") << "a missing flow is an empty cell";
   }
+}
+
+TEST(Csv, BandsOverTimeAndTheWholeLineStatement) {
+  const auto study = support::sample_study();
+  const auto& b = *study.bands;
+  const auto rows = rows_of(csv(study).at("history-bands.csv"));
+  const std::size_t times = b.history_time.size();
+  ASSERT_EQ(rows.size(), 3 * times + 1);
+  EXPECT_EQ(rows[0], (std::vector<std::string>{"place", "time [s]", "head, quantile 0.025 [m]", "head, quantile 0.5 [m]",
+                                               "head, quantile 0.975 [m]"}));
+  const auto& row = rows[1 + times + 5];  // second place, sixth time
+  EXPECT_EQ(row[0], b.history_probe_name[1]);
+  EXPECT_EQ(std::strtod(row[1].c_str(), nullptr), b.history_time[5]);
+  EXPECT_EQ(std::strtod(row[4].c_str(), nullptr), b.history_head[(2 * times + 5) * 3 + 1]);
+  const auto limits = rows_of(csv(study).at("limits.csv"));
+  ASSERT_EQ(limits.size(), study.limits.size() + 2);
+  EXPECT_EQ(limits.back()[0], "any rated pipe");
+  EXPECT_EQ(limits.back()[3], "") << "each pipe has its own bound";
+  EXPECT_EQ(limits.back()[12], "") << "a statement has no verdict";
 }
 
 TEST(Csv, TextIsQuotedAndHarmlessToSpreadsheets) {
