@@ -217,8 +217,120 @@ def in_line():
     check("part shut: steady flow of that opening", abs(found - wanted) < 1e-4 * wanted, f"{found:.6f}, {wanted:.6f}")
 
 
+def short_pipes():
+    """A pipe too short for the grid marches as a rigid column: close to the network without it, and to a finer grid."""
+    def line(middle, first=1000, surge="reaches = 20"):
+        return whole(basin("tank", 60) + pipe("first", "tank", "joint", length=first) + middle
+                     + pipe("second", "other" if middle else "joint", "out") + END + closing("end", "6 s"), duration=30, surge=surge)
+    with_it = Run(line(pipe("short", "joint", "other", length=8)))
+    check("named", with_it.code == 0 and with_it.json["grid"]["rigid_pipes"] == ["short"], with_it.words[:300] if with_it.code else "")
+    check("told with its 2L/a", with_it.warned("short", "rigid column", "0.016 s"))
+    rise = with_it.json["places"]["out"]["max_head_m"] - with_it.head["out"][0]
+    without = Run(line("", first=1008))
+    finer = Run(line(pipe("short", "joint", "other", length=8), surge='time_step = "0.008 s"'))
+    check("marched as a wave on the finer grid", finer.code == 0 and finer.json["grid"]["rigid_pipes"] == [],
+          finer.words[:300] if finer.code else "")
+    for name, other, bound in (("without it", without, 0.03), ("on a finer grid", finer, 0.05)):
+        at = np.interp(with_it.time, other.time, other.head["out"])
+        check(f"heads as {name}", np.max(np.abs(with_it.head["out"] - at)) < bound * rise,
+              f"{np.max(np.abs(with_it.head['out'] - at)):.3f} of {rise:.2f} m")
+        peak = other.json["places"]["out"]["max_head_m"]
+        check(f"peak as {name}", abs(with_it.json["places"]["out"]["max_head_m"] - peak) < 0.01 * rise)
+    difference = with_it.head["joint"] - with_it.head["other"]
+    check("heads of both its ends stay close", np.max(np.abs(difference)) < 0.05 * rise, f"{np.max(np.abs(difference)):.3f} m")
+    # at the end that moves: refined where that helps, refused in words where it does not
+    def at_end(length, over, surge="reaches = 20", more=""):
+        return whole(basin("tank", 60) + pipe("main", "tank", "joint") + pipe("stub", "joint", "out", length=length,
+                     more='roughness = "0.1 mm"\n' + more) + END + closing("end", over), duration=10, surge=surge)
+    slow = Run(at_end(10, "6 s"))
+    check("slow movement: rigid", slow.code == 0 and slow.json["grid"]["rigid_pipes"] == ["stub"])
+    check("slow movement: step kept", slow.code == 0 and slow.json["grid"]["time_step_s"] > 0.039)
+    quick = Run(at_end(10, "0.05 s"))
+    check("quick movement: refined to two steps in it", quick.code == 0 and quick.json["grid"]["time_step_s"] <= 0.025 * (1 + 1e-9),
+          quick.words[:300] if quick.code else str(quick.json["grid"]))
+    wave = Run(at_end(25, "0.01 s", surge="reaches = 10"))
+    check("quicker: refined until the stub carries waves", wave.code == 0 and wave.json["grid"]["rigid_pipes"] == [],
+          wave.words[:300] if wave.code else str(wave.json["grid"]))
+    tiny = Run(at_end(0.5, "0.01 s"))
+    check("too short for any grid: refused", tiny.code == 65 and "'stub' is too short for a wave" in tiny.words, tiny.words[:300])
+    sudden = Run(at_end(0.5, "instant"))
+    check("instant at its end: refused", sudden.code == 65 and "'stub' is too short for a wave" in sudden.words, sudden.words[:300])
+    slowly = Run(at_end(0.5, "6 s"))
+    check("tiny and slow: marches", slowly.code == 0 and slowly.json["grid"]["rigid_pipes"] == ["stub"])
+    two = Run(whole(basin("tank", 60) + pipe("main", "tank", "joint") + pipe("stub", "joint", "mid", length=3)
+                    + pipe("stub 2", "mid", "out", length=4) + END + closing("end", "6 s"), duration=20))
+    check("two in a row", two.code == 0 and two.json["grid"]["rigid_pipes"] == ["stub", "stub 2"], two.words[:300] if two.code else "")
+    if two.code == 0:
+        check("two in a row: peak", abs(two.json["places"]["out"]["max_head_m"] - slow.json["places"]["out"]["max_head_m"]) < 0.02 * rise)
+    # every pipe short but one, with a surge through a short pipe into a dead end
+    cap = Run(whole(basin("tank", 60) + pipe("main", "tank", "joint") + pipe("stub", "joint", "cap", length=3) + pipe("last", "joint", "out")
+                    + END + closing("end", "6 s"), duration=20))
+    check("short dead end: follows its place", cap.code == 0 and np.max(np.abs(cap.head["cap"] - cap.head["joint"])) < 1e-6,
+          cap.words[:300] if cap.code else "")
+
+
+def grid_refusals():
+    """The wave speed is changed by no more than told."""
+    # travel times 0.5 s and 0.525 s at 10 reaches: n = 10 .. 12 change the second by 4.8 % at least
+    def two(length, surge, more="", speed=1000):
+        return whole(basin("tank", 60) + pipe("first", "tank", "joint", length=500) + pipe("second", "joint", "out", length=length,
+                     more='roughness = "0.1 mm"\n' + more, speed=speed) + END + closing("end", "4 s"), duration=10, surge=surge)
+    kept = Run(two(500, 'time_step = "0.1 s"'))
+    check("no change", kept.code == 0 and kept.json["grid"]["worst_wave_speed_change"] < 1e-9 and not kept.warned("wave speed"))
+    small = Run(two(506, 'time_step = "0.1 s"'))
+    check("1.2 %: no warning", small.code == 0 and not small.warned("wave speed"), str(small.json.get("warnings")))
+    warned = Run(two(515, 'time_step = "0.1 s"'))
+    check("3 %: warned", warned.code == 0 and warned.warned("wave speed", "second", "3.0 %"), str(warned.json.get("warnings")))
+    refused = Run(two(540, 'time_step = "0.1 s"'))
+    check("8 %: refused in words", refused.code == 65 and "'second' by 8.0 %, more than 5.0 %" in refused.words, refused.words[:300])
+    check("8 %: problem has place and hint", refused.code == 65 and refused.json["problems"][0]["line"] > 0
+          and "wave_speed_change" in refused.json["problems"][0]["hint"])
+    allowed = Run(two(540, 'time_step = "0.1 s"', 'wave_speed_change = "9 %"'))
+    check("8 % allowed: marches and warns", allowed.code == 0 and allowed.warned("wave speed", "second", "8.0 %"))
+    tighter = Run(two(515, 'time_step = "0.1 s"', 'wave_speed_change = "1 %"'))
+    check("3 %, only 1 % allowed: refused", tighter.code == 65 and "more than 1.0 %" in tighter.words, tighter.words[:300])
+    # an uncertain wave speed: at most 1 %, the step is halved until it fits
+    uncertain = Run(two(515, 'time_step = "0.1 s"', speed='wave_speed = "1000 m/s ± 2 %"'))
+    check("uncertain: reaches doubled", uncertain.code == 0 and abs(uncertain.json["grid"]["time_step_s"] - 0.0125) < 1e-12
+          and uncertain.json["grid"]["worst_wave_speed_change"] <= 0.01, str(uncertain.json.get("grid")) + uncertain.words[:200])
+    no_way = Run(two(503.1, 'time_step = "0.5 s"', speed='wave_speed = "1000 m/s ± 2 %"'))
+    check("uncertain, 0.6 %: kept", no_way.code == 0 and no_way.json["grid"]["time_step_s"] == 0.5)
+    hopeless = Run(two(530, 'time_step = "0.5 s"', speed='wave_speed = "1000 m/s ± 2 %"'))
+    check("uncertain, eight times is not enough: refused", hopeless.code == 65 and "8 times the reaches" in hopeless.words
+          and "'second'" in hopeless.words, str(hopeless.json.get("grid")) + hopeless.words[:200])
+    lenient = Run(two(530, 'time_step = "0.5 s"', 'wave_speed_change = "7 %"', speed='wave_speed = "1000 m/s ± 2 %"'))
+    check("uncertain, allowed by hand: kept", lenient.code == 0 and lenient.json["grid"]["time_step_s"] == 0.5)
+    for what, text in (("temperature", 'temperature = "15 degC ± 3 K"'),):
+        run = Run(two(515, 'time_step = "0.1 s"', speed='wall = "8 mm"\nmaterial = "steel"').replace('temperature = "15 degC"', text))
+        check(f"uncertain by its {what}", run.code == 0 and run.json["grid"]["worst_wave_speed_change"] <= 0.01, run.words[:200] if run.code else "")
+    ring()
+
+
+def ring():
+    """The fire ring of the worked scenario on a coarse grid: 11 % change of wave speed reads tens of psi wrong at E and is refused."""
+    feet = 0.3048
+    main = [("feed", "supply", "A", 1500, 12), ("ring A-B", "A", "B", 800, 8), ("ring B-C", "B", "C", 800, 8),
+            ("ring A-D", "A", "D", 800, 8), ("ring D-C", "D", "C", 800, 8), ("dead leg", "D", "E", 450, 6)]
+    def case(more, surge):
+        return whole(basin("supply", 231 * feet), *[pipe(n, a, b, length=length * feet, bore=bore * 0.0254, speed=4000 * feet,
+                     more=f'roughness = "0.0008 ft"\n{more}') for n, a, b, length, bore in main],
+                     '[[draw_off]]\nname = "hydrant"\nat = "C"\nflow = "1500 gpm"\npressure_dependent = true\n'
+                     '[[event]]\nat = "0 s"\ndraw_off = "hydrant"\nto = "0 gpm"\nover = "0.5 s"\n', duration=1.5, surge=surge)
+    psi = 6894.757293168
+    fine = Run(case("", "reaches = 45"))
+    check("fine: 423 psi at E", fine.code == 0 and abs(fine.json["places"]["E"]["max_pressure_Pa"] / psi - 423) < 3,
+          f"{fine.json['places']['E']['max_pressure_Pa'] / psi:.1f}" if fine.code == 0 else fine.words[:300])
+    coarse = 'reaches = 1\nfriction_in_time = "fixed"'  # 0.1125 s: 2 reaches for the 0.2 s of the ring, 3 for the feed
+    refused = Run(case("", coarse))
+    check("coarse: refused", refused.code == 65 and "by 11.1 %, more than 5.0 %" in refused.words, refused.words[:300])
+    marched = Run(case('wave_speed_change = "12 %"', coarse))
+    check("coarse, allowed: warns", marched.code == 0 and marched.warned("wave speed", "11.1 %"), marched.words[:300])
+    peak = marched.json["places"]["E"]["max_pressure_Pa"] / psi
+    check("coarse, allowed: far from 423 psi at E, hence the refusal", abs(peak - 423) > 20, f"{peak:.1f}")
+
+
 def main():
-    names = {"stays": stays, "in_line": in_line}
+    names = {"stays": stays, "in_line": in_line, "short_pipes": short_pipes, "grid_refusals": grid_refusals}
     for name in sys.argv[2:] or names:
         print(name)
         try:
