@@ -46,27 +46,8 @@ void refuse_protection(const Case& c, Refusals& refusals) {
   refusals.elements("air_valve", "air valve", c.air_valves);
 }
 
-void refuse_check_rules(const Case& c, Refusals& refusals) {
-  const auto slow = [](const CheckValveRule& rule) {
-    return rule.kind == CheckValveKind::reverse_velocity || rule.kind == CheckValveKind::delay;
-  };
-  for (const Pump& p : c.pumps)
-    if (slow(p.check_valve))
-      refusals.add(p.place,
-                   "pump/" + p.name + "/check_valve",
-                   fmt::format("the slow check valve of pump \"{}\"", p.name),
-                   "write check_valve = \"ideal\" or \"none\"");
-  for (const CheckValve& v : c.check_valves)
-    if (slow(v.rule))
-      refusals.add(v.place,
-                   "check_valve/" + v.name,
-                   fmt::format("the slow check valve \"{}\"", v.name),
-                   "leave reverse_velocity and delay out: an ideal check valve");
-}
-
 void refuse_of_surge(const Case& c, Refusals& refusals) {
   refuse_protection(c, refusals);
-  refuse_check_rules(c, refusals);
   for (const Pipe& p : c.pipes)
     if (!p.creep.empty())
       refusals.add(

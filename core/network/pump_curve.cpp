@@ -2,6 +2,10 @@
 
 #include "core/network/pump_curve.hpp"
 
+#include <algorithm>
+#include <cmath>
+#include <numbers>
+
 namespace headband::network {
 namespace {
 
@@ -88,6 +92,7 @@ void PumpCurve<W>::fit_monotone_cubic(const std::vector<Lanes<W>>& flow, const s
 
 template <int W>
 void PumpCurve<W>::fit(const std::vector<Lanes<W>>& flow, const std::vector<Lanes<W>>& value) {
+  angle_.clear();
   if (flow.size() == 2) {
     fit_square_law(flow, value);
   } else if (flow.size() == 3) {
@@ -95,6 +100,36 @@ void PumpCurve<W>::fit(const std::vector<Lanes<W>>& flow, const std::vector<Lane
   } else {
     fit_monotone_cubic(flow, value);
   }
+}
+
+template <int W>
+void PumpCurve<W>::fit_quadrants(const std::vector<double>& angle,
+                                 const std::vector<double>& head,
+                                 const Lanes<W>& rated_flow,
+                                 const Lanes<W>& rated_head) {
+  pieces_.clear();
+  angle_ = angle;
+  head_ = head;
+  rated_flow_ = rated_flow;
+  rated_head_ = rated_head;
+}
+
+// Lane by lane with the library's atan: the same bits for any W.
+template <int W>
+CurvePoint<W> PumpCurve<W>::at_quadrants(const Lanes<W>& flow) const {
+  CurvePoint<W> point{Lanes<W>(0.0), Lanes<W>(0.0)};
+  for (int lane = 0; lane < W; ++lane) {
+    const double v = flow[lane] / rated_flow_[lane];
+    const double x = std::numbers::pi + std::atan(v);
+    const auto above = std::upper_bound(angle_.begin() + 1, angle_.end() - 1, x);
+    const auto k = static_cast<std::size_t>(above - angle_.begin());
+    const double slope = (head_[k] - head_[k - 1]) / (angle_[k] - angle_[k - 1]);
+    const double share = head_[k - 1] + slope * (x - angle_[k - 1]);
+    // d/dv of (1 + v^2) W(x), dx/dv = 1 / (1 + v^2)
+    point.value.set(lane, rated_head_[lane] * (1.0 + v * v) * share);
+    point.slope.set(lane, rated_head_[lane] / rated_flow_[lane] * (slope + 2.0 * v * share));
+  }
+  return point;
 }
 
 template class PumpCurve<1>;

@@ -27,8 +27,17 @@ class PumpCurve {
   /// @param flow [m3/s], ascending, at least 2 points; @param value one per flow
   void fit(const std::vector<Lanes<W>>& flow, const std::vector<Lanes<W>>& value);
 
+  /// Takes the forward quadrant of a four-quadrant table at rated speed in place of points: with v = flow / rated flow
+  /// and x = pi + atan v, head = rated head (1 + v^2) WH(x), WH by straight lines.
+  /// @param angle x [rad], rising from 0 to 2 pi, at least 2; @param head WH, one per angle
+  void fit_quadrants(const std::vector<double>& angle,
+                     const std::vector<double>& head,
+                     const Lanes<W>& rated_flow,
+                     const Lanes<W>& rated_head);
+
   /// Value and slope at `flow`. Fit first.
   [[nodiscard]] CurvePoint<W> at(const Lanes<W>& flow) const {
+    if (!angle_.empty()) return at_quadrants(flow);
     const Lanes<W> t0 = flow - pieces_.front().from;
     CurvePoint<W> point{pieces_.front().c0 + pieces_.front().c1 * t0, pieces_.front().c1};
     for (std::size_t i = 1; i < pieces_.size(); ++i) {
@@ -47,8 +56,12 @@ class PumpCurve {
     for (std::size_t i = 0; i < pieces_.size(); ++i)
       out.pieces_[i] = {
           pieces_[i].from[lane], pieces_[i].c0[lane], pieces_[i].c1[lane], pieces_[i].c2[lane], pieces_[i].c3[lane]};
+    out.angle_ = angle_;
+    out.head_ = head_;
+    out.rated_flow_ = rated_flow_[lane];
+    out.rated_head_ = rated_head_[lane];
   }
-  [[nodiscard]] bool fitted() const { return !pieces_.empty(); }
+  [[nodiscard]] bool fitted() const { return !pieces_.empty() || !angle_.empty(); }
 
  private:
   template <int>
@@ -61,7 +74,11 @@ class PumpCurve {
   void fit_parabola(const std::vector<Lanes<W>>& flow, const std::vector<Lanes<W>>& value);
   void fit_monotone_cubic(const std::vector<Lanes<W>>& flow, const std::vector<Lanes<W>>& value);
 
+  [[nodiscard]] CurvePoint<W> at_quadrants(const Lanes<W>& flow) const;
+
   std::vector<Piece> pieces_;
+  std::vector<double> angle_, head_;  ///< of a four-quadrant table; empty: points were given
+  Lanes<W> rated_flow_ = 1.0, rated_head_ = 1.0;
   std::vector<Lanes<W>> slopes_;
 };
 

@@ -162,6 +162,7 @@ void realise_pump(
   out.shut_off_torque = draw(pump.shut_off_torque);
   out.rated_flow = draw(pump.rated_flow);
   out.rated_head = draw(pump.rated_head);
+  if (!pump.curve.given()) out.rated_head = out.rated_head * draw(pump.head_scatter, 1.0);  // scales the table's heads
   out.reverse_velocity = draw(pump.check_valve.reverse_velocity);
   out.check_bore = bore_of(pump.check_valve.bore, plan, pump.name, draw, values);
   out.check_delay = draw(pump.check_valve.delay);

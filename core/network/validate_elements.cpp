@@ -297,7 +297,15 @@ void check_valve_law(const Valve& valve, const std::string& path, ProblemList& p
 void check_curve(const Pump& pump, const std::string& path, ProblemList& problems) {
   const auto& rows = pump.curve.rows;
   if (rows.size() < 2) {
-    if (pump.characteristic == Characteristic::table && rows.empty()) return;
+    if (pump.characteristic == Characteristic::table && rows.empty()) {
+      if (!pump.rated_flow.given() || !pump.rated_head.given())
+        problems.missing(pump.place,
+                         path + "/rated",
+                         "a pump known by its four-quadrant table alone needs its rated point",
+                         "rated = { flow = \"175 L/s\", head = \"60 m\" }",
+                         "give it, or a curve");
+      return;
+    }
     problems.missing(pump.place,
                      path + "/curve",
                      "the pump curve needs at least two points",
@@ -317,6 +325,25 @@ void check_curve(const Pump& pump, const std::string& path, ProblemList& problem
                    "over " + ProblemList::shown(rows[i - 1].first),
                    "put the points in order");
   }
+}
+
+// Angles rising from 0 to 2 pi (to a hundredth), a turn ending as it begins.
+void check_quadrants(const Pump& pump, const std::string& path, ProblemList& problems) {
+  const auto& rows = pump.suter.rows;
+  if (pump.characteristic != Characteristic::table || rows.empty()) return;  // nothing read: told by the reader
+  constexpr double turn = 6.283185307179586, close = 0.01;
+  const auto add = [&](const char* what, double value, const char* bound) {
+    problems.add(pump.place, path + "/characteristic", what, fmt::format("{:g}", value), bound, "correct the table");
+  };
+  if (std::abs(rows.front().first.value) > close)
+    add("the four-quadrant table does not begin at angle 0", rows.front().first.value, "0 rad");
+  if (std::abs(rows.back().first.value - turn) > close)
+    add("the four-quadrant table does not end at a full turn", rows.back().first.value, "6.2832 rad");
+  for (std::size_t i = 1; i < rows.size(); ++i)
+    if (!(rows[i].first.value > rows[i - 1].first.value)) {
+      add("the angles of the four-quadrant table must rise", rows[i].first.value, "rising angles");
+      break;
+    }
 }
 
 bool pipe_at(const Case& c, const std::string& from, const std::string& to) {
@@ -365,6 +392,7 @@ void check_devices(const Case& c, ProblemList& problems) {
   for (const auto& pump : c.pumps) {
     const std::string path = "pump/" + pump.name;
     check_curve(pump, path, problems);
+    check_quadrants(pump, path, problems);
     if (pump.count < 1)
       problems.add(
           pump.place, path + "/count", "a set needs at least one pump", fmt::format("{}", pump.count), "1 or more", "");

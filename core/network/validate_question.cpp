@@ -319,7 +319,8 @@ void need_for_surge(const Case& c, detail::ProblemList& problems) {
       need_number(pump.speed, "speed", "speed = \"1480 rpm\"");
       need_number(pump.inertia, "inertia", "inertia_mr2, inertia_gd2 or inertia_wr2");
       need_number(pump.efficiency, "efficiency", "efficiency = \"82 %\"");
-      if (!pump.torque.given()) need_number(pump.shut_off_torque, "shut_off_torque", "shut_off_torque = \"45 %\"");
+      const bool by_table = pump.characteristic == Characteristic::table && !pump.curve.given();
+      if (!pump.torque.given() && !by_table) need_number(pump.shut_off_torque, "shut_off_torque", "shut_off_torque = \"45 %\"");
     }
   }
 }

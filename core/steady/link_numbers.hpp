@@ -68,10 +68,19 @@ void LinkNumbers<W>::fill(const network::Case& c,
   last_curve_flow.resize(values.pumps.size());
   for (std::size_t i = 0; i < curves.size(); ++i) {
     const network::PumpValues<W>& pump = values.pumps[i];
-    if (pump.curve_flow.size() < 2) continue;  // a pump known by its characteristic alone
+    pump_count[i] = static_cast<double>(c.pumps[i].count);
+    if (pump.curve_flow.size() < 2) {  // a pump known by its four-quadrant table alone
+      std::vector<double> angle, head;
+      for (const auto& [x, share] : c.pumps[i].suter.rows) {
+        angle.push_back(x.value);
+        head.push_back(share.value);
+      }
+      curves[i].fit_quadrants(angle, head, pump.rated_flow, pump.rated_head);
+      last_curve_flow[i] = 2.0 * pump.rated_flow;
+      continue;
+    }
     curves[i].fit(pump.curve_flow, pump.curve_head);
     last_curve_flow[i] = pump.curve_flow.back();
-    pump_count[i] = static_cast<double>(c.pumps[i].count);
   }
 
   node_head.resize(static_cast<std::size_t>(graph.nodes()));

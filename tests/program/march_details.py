@@ -329,8 +329,186 @@ def ring():
     check("coarse, allowed: far from 423 psi at E, hence the refusal", abs(peak - 423) > 20, f"{peak:.1f}")
 
 
+def suter():
+    with open(DATA / "T07c_suter_Ns25.csv", newline="") as file:
+        rows = [(float(r["x_rad"]), float(r["WH"]), float(r["WB"])) for r in csv.DictReader(file)]
+    return rows, (DATA / "T07c_suter_Ns25.csv").read_text()
+
+
+TABLE_ONLY = '''speed = "980 rpm"
+efficiency = "84 %"
+inertia_mr2 = "120 kg m2"
+rated = { flow = "0.4 m3/s", head = "55 m" }
+characteristic = "suter.csv"
+check_valve = "none"
+'''
+
+
+def table_pump():
+    """A pump known by its four-quadrant table alone: its steady point, its rest, what is refused."""
+    rows, file = suter()
+    angle, share, _ = (np.array(c) for c in zip(*rows))
+
+    def head(flow, rated=55.0):
+        v = flow / 0.4
+        return rated * (1 + v * v) * np.interp(math.pi + math.atan(v), angle, share)
+
+    def steady(count, lift, rated=55.0):
+        low, high = 0.0, 1.0
+        loss = lambda q: 0.016 * 200 / 0.6 * q * q / (2 * GRAVITY * (math.pi * 0.09) ** 2)
+        for _ in range(100):
+            mid = (low + high) / 2
+            low, high = (mid, high) if head(mid / count, rated) > lift + loss(mid) else (low, mid)
+        return low
+
+    def plant(more="", end="", **key):
+        return whole(basin("sump", 0), basin("high", 50), pump("set", "sump", "header", more, TABLE_ONLY),
+                     pipe("rising", "header", "high", length=200, bore=0.6, more="friction_factor = 0.016"), end, **key)
+    for count in (1, 2):
+        run = Run(plant(f"count = {count}"), verb="flow", files={"suter.csv": file})
+        found = run.json["pipes"]["rising"]["flow_m3_per_s"] if run.code == 0 else math.nan
+        check(f"{count} pump(s), flow of the table", abs(found - steady(count, 50)) < 1e-8, f"{found} {run.words[:200] if run.code else ''}")
+    # the flow known, the head from the table
+    known = Run(whole(basin("sump", 0), pump("set", "sump", "header", "", TABLE_ONLY), '[[draw_off]]\nname = "works"\nat = "header"\n'
+                      'flow = "350 L/s"\n', pipe("leg", "header", "cap", length=200)), verb="flow", files={"suter.csv": file})
+    check("known flow, head of the table", known.code == 0 and abs(known.json["places"]["header"]["head_m"] - head(0.35)) < 1e-8,
+          known.words[:300] if known.code else "")
+    for count in (1, 2):
+        still = Run(plant(f"count = {count}", surge="reaches = 20\ngrid_check = false"), files={"suter.csv": file})
+        worst = max(float(np.ptp(h)) for h in still.head.values()) if still.code == 0 else math.nan
+        check(f"{count} pump(s), no event: heads stay", worst < 1e-6, f"{worst:.1e} m {still.words[:200] if still.code else ''}")
+    scattered = Run(plant('head_scatter = "± 3 %"') + '[band]\ndraws = 256\nanswers = [{ flow = "rising", name = "q" }]\n', verb="band",
+                    files={"suter.csv": file})
+    sd = scattered.json["answers"]["q"]["sd"] if scattered.code == 0 else math.nan
+    expected = (steady(1, 50, 55 * 1.015) - steady(1, 50, 55 * 0.985)) / 2 * (2 / 1.959964)
+    check("head_scatter moves the table", abs(sd - expected) < 0.1 * expected, f"{sd:.5f}, {expected:.5f} {scattered.words[:200] if scattered.code else ''}")
+    no_rated = Run(plant().replace('rated = { flow = "0.4 m3/s", head = "55 m" }\n', ""), verb="flow", files={"suter.csv": file})
+    check("no rated point: refused in words", no_rated.code == 65 and "rated point" in no_rated.words, no_rated.words[:300])
+    half = "\n".join(file.splitlines()[:50]) + "\n"
+    short = Run(plant(), verb="flow", files={"suter.csv": half})
+    check("half a table: refused in words", short.code == 65 and "full turn" in short.words, short.words[:300])
+    trip = Run(plant(end='[[event]]\nat = "1 s"\ntrip = "set"\n', duration=40), files={"suter.csv": file})
+    check("trips without a torque of its own, runs away backwards", trip.code == 0 and abs(trip.series["set speed"][-1]
+          / (980 * 2 * math.pi / 60) + 1.0965) < 0.003, trip.words[:300] if trip.code else "")
+
+
+def pumps():
+    """Starts, partial trips, trips followed by a start."""
+    def plant(more="", events="", lift=40, **key):
+        return whole(basin("sump", 2), basin("high", lift), pump("set", "sump", "header", more), pipe("rising", "header", "high",
+                     length=800), events, **key)
+    rated = 1480 * 2 * math.pi / 60
+    running = Run(plant(), verb="flow").json["pipes"]["rising"]["flow_m3_per_s"]
+    ramp = Run(plant(events='[[event]]\nat = "2 s"\nstart = "set"\nover = "8 s"\n', duration=90))
+    check("start: runs", ramp.code == 0, ramp.words[:300] if ramp.code else "")
+    if ramp.code == 0:
+        speed = ramp.series["set speed"] / rated
+        check("start: speed is the ramp", np.max(np.abs(speed - np.clip((ramp.time - 2) / 8, 0, 1))) < 1e-9)
+        opens = math.sqrt(38 / 60)  # speed at which the shut-off head meets the lift
+        first = ramp.time[np.argmax(ramp.series["set flow"] > 0)]
+        check("start: flow begins when the head meets the lift", abs(first - (2 + 8 * opens)) < 2 * (ramp.time[1] - ramp.time[0]),
+              f"{first:.3f} s, {2 + 8 * opens:.3f} s")
+        check("start: no flow before", np.max(np.abs(ramp.series["set flow"][ramp.time < first])) == 0.0)
+        check("start: reaches the running flow", abs(ramp.series["set flow"][-1] - running) < 1e-3 * running, f"{ramp.series['set flow'][-1]}, {running}")
+    sudden = Run(plant(events='[[event]]\nat = "2 s"\nstart = "set"\nover = "instant"\n', duration=90))
+    check("instant start: full speed at its row", sudden.code == 0 and sudden.series["set speed"][sudden.time < 2 - 1e-9].max() == 0.0
+          and abs(sudden.series["set speed"][sudden.time > 2 - 1e-9].min() - rated) < 1e-9, sudden.words[:300] if sudden.code else "")
+    if sudden.code == 0:
+        check("instant start: reaches the running flow", abs(sudden.series["set flow"][-1] - running) < 1e-3 * running)
+        row = int(np.argmax(sudden.series["set flow"] > 0))
+        flow, rise = sudden.series["set flow"][row], sudden.head["header"][row] - sudden.head["header"][row - 1]
+        surge = 1000 / GRAVITY * flow / (math.pi * 0.04)
+        check("instant start: a V/g", abs(rise - surge) < 2e-3 * surge, f"{rise:.3f}, {surge:.3f} m")
+    pair = Run(plant("count = 2", '[[event]]\nat = "1 s"\ntrip = "set"\ntripping = 1\n', duration=120, surge="reaches = 10"))
+    check("one of two trips: runs", pair.code == 0, pair.words[:300] if pair.code else "")
+    if pair.code == 0:
+        check("one of two trips: the other carries on", abs(pair.series["set flow"][-1] - running) < 1e-3 * running,
+              f"{pair.series['set flow'][-1]:.5f}, {running:.5f}")
+    both = Run(plant("count = 2", '[[event]]\nat = "1 s"\ntrip = "set"\ntripping = 2\n', duration=30))
+    every = Run(plant("count = 2", '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=30))
+    check("tripping = count is the whole set", both.code == 0 and np.array_equal(both.head["header"], every.head["header"]))
+    many = Run(plant("count = 2", '[[event]]\nat = "1 s"\ntrip = "set"\ntripping = 3\n'))
+    check("more than the set holds: refused", many.code == 65 and "more pumps trip than the set holds" in many.words)
+    turns = Run(plant("count = 2", '[[event]]\nat = "1 s"\ntrip = "set"\ntripping = 1\n[[event]]\nat = "20 s"\ntrip = "set"\ntripping = 1\n',
+                      duration=60))
+    check("one after the other: both stand", turns.code == 65 or (turns.code == 0 and turns.series["set flow"][-1] == 0.0
+          and turns.series["set flow"][np.searchsorted(turns.time, 19)] > 0.5 * running), turns.words[:300])
+    again = Run(plant(events='[[event]]\nat = "1 s"\ntrip = "set"\n[[event]]\nat = "40 s"\nstart = "set"\nover = "10 s"\n', duration=140))
+    check("tripped and started again", again.code == 0 and abs(again.series["set flow"][-1] - running) < 1e-3 * running
+          and again.series["set flow"][np.searchsorted(again.time, 39)] == 0.0, again.words[:300] if again.code else
+          f"{again.series['set flow'][-1]:.5f}, {running:.5f}")
+
+
+def check_valves():
+    """Check valves that let the flow turn: by reverse velocity and by delay, in a pump and in the line."""
+    def line(rule):
+        return whole(basin("low", 30), '[[check_valve]]\nname = "flap"\nfrom = "low"\nto = "inlet"\nkv = "9000 m3/h"\n' + rule,
+                     pipe("main", "inlet", "high", length=800, bore=0.4), basin("high", 24),
+                     '[[event]]\nat = "1 s"\nbasin = "low"\nto = "16 m"\nover = "2 s"\n', duration=30, surge="reaches = 40\ngrid_check = false")
+    area = math.pi * 0.04
+    ideal = Run(line(""))
+    check("ideal: never backwards", ideal.code == 0 and ideal.series["flap flow"].min() >= 0.0, ideal.words[:300] if ideal.code else "")
+
+    def turned_and_shut(run):
+        flow = run.series["flap flow"]
+        k = int(np.argmax(flow < 0))
+        turned = run.time[k - 1] + (run.time[k] - run.time[k - 1]) * flow[k - 1] / (flow[k - 1] - flow[k])
+        last = k + int(np.argmax(flow[k:] >= 0))
+        return turned, run.time[last], flow[last - 1]
+    for delay in (0.2, 0.5, 1.0):
+        run = Run(line(f'delay = "{delay} s"\n'))
+        check(f"delay {delay} s: runs", run.code == 0, run.words[:300] if run.code else "")
+        if run.code:
+            continue
+        step = run.time[1] - run.time[0]
+        turned, shut, flow = turned_and_shut(run)
+        check(f"delay {delay} s: shuts then", abs(shut - turned - delay) <= 0.51 * step, f"{shut - turned:.4f} s, step {step:.3f} s")
+        told = [e["time_s"] for e in run.json["events"] if e["kind"] == "check_shut"]
+        check(f"delay {delay} s: told", bool(told) and abs(told[0] - shut) < 1e-9, str(told[:3]))
+        row = int(np.rint(shut / step))
+        rise = run.head["inlet"][row] - run.head["inlet"][row - 1]
+        check(f"delay {delay} s: a V/g of what it stops", abs(rise - 1000 * -flow / area / GRAVITY) < 0.05 * rise + 0.2,
+              f"{rise:.2f}, {1000 * -flow / area / GRAVITY:.2f} m")
+    for reverse in (0.05, 0.2):
+        run = Run(line(f'reverse_velocity = "{reverse} m/s"\nbore = "0.4 m"\n'))
+        check(f"reverse velocity {reverse} m/s: runs", run.code == 0, run.words[:300] if run.code else "")
+        if run.code:
+            continue
+        flow = run.series["flap flow"]
+        _, shut, last = turned_and_shut(run)
+        row = int(np.rint(shut / (run.time[1] - run.time[0])))
+        check(f"reverse velocity {reverse} m/s: reached, then shut", -last / area >= reverse and -flow[row - 2] / area < reverse,
+              f"{-last / area:.3f} m/s")
+    slow = Run(line('reverse_velocity = "0.05 m/s"\n').replace('kv = "9000 m3/h"\n', 'kv = "9000 m3/h"\n'))
+    check("bore left out: that of the pipe", slow.code == 0 and np.array_equal(slow.series["flap flow"],
+          Run(line('reverse_velocity = "0.05 m/s"\nbore = "0.4 m"\n')).series["flap flow"]), slow.words[:300] if slow.code else "")
+
+    def plant(rule):
+        return whole(basin("sump", 2), basin("high", 40), pump("set", "sump", "header", f"check_valve = {rule}"), pipe("rising", "header",
+                     "high", length=800), '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=25, surge="reaches = 40\ngrid_check = false")
+    ideal = Run(plant('"ideal"'))
+    peaks = []
+    for rule in ('{ delay = "0.1 s" }', '{ delay = "0.4 s" }', '{ reverse_velocity = "0.3 m/s", bore = "400 mm" }'):
+        run = Run(plant(rule))
+        check(f"pump, {rule}: turns, then shuts for good", run.code == 0 and run.series["set flow"].min() < 0.0
+              and run.series["set flow"][-1] >= 0.0, run.words[:300] if run.code else "")
+        if run.code == 0:
+            peaks.append(run.json["places"]["header"]["max_head_m"])
+            flow = run.series["set flow"]
+            k = int(np.argmax(flow < 0))
+            shut = k + int(np.argmax(flow[k:] >= 0))
+            turned = run.time[k - 1] + (run.time[k] - run.time[k - 1]) * flow[k - 1] / (flow[k - 1] - flow[k])
+            step = run.time[1] - run.time[0]
+            if "delay" in rule:
+                check(f"pump, {rule}: after its delay", abs(run.time[shut] - turned - float(rule.split('"')[1][:-2])) <= 0.51 * step)
+            else:
+                check(f"pump, {rule}: at its velocity", -flow[shut - 1] / area >= 0.3 > -flow[shut - 2] / area)
+    check("the later it shuts the harder", len(peaks) == 3 and ideal.json["places"]["header"]["max_head_m"] < peaks[0] < peaks[1], str(peaks))
+
+
 def main():
-    names = {"stays": stays, "in_line": in_line, "short_pipes": short_pipes, "grid_refusals": grid_refusals}
+    names = {"stays": stays, "in_line": in_line, "short_pipes": short_pipes, "grid_refusals": grid_refusals,
+             "table_pump": table_pump, "pumps": pumps, "check_valves": check_valves}
     for name in sys.argv[2:] or names:
         print(name)
         try:

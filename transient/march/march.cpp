@@ -396,14 +396,17 @@ void March<W>::load_pump(const Branch& b, std::size_t k, int lane, double time_s
   out.torque_before = m.torque;
   if (time_step <= 0.0) return;
   const double now = time_[lane];
-  if (now > numbers_.trip_time[k]) {
+  const bool started = now >= numbers_.start_time[k];
+  const bool again = started && numbers_.start_time[k] > numbers_.trip_time[k];
+  if (now > numbers_.trip_time[k] && !again) {
     out.free_speed = true;
     // the first part of a step may still be powered
     const double down = std::min(time_step, now - numbers_.trip_time[k]);
     out.run_down = 0.5 * pump.rated_torque * down / (pump.inertia * pump.rated_speed);
-  } else if (now >= numbers_.start_time[k]) {
+  } else if (started) {
     const double since = now - numbers_.start_time[k];
-    out.speed = numbers_.start_over[k] > 0.0 ? std::min(1.0, since / numbers_.start_over[k]) : 1.0;
+    const double ramp = numbers_.start_over[k] > 0.0 ? std::min(1.0, since / numbers_.start_over[k]) : 1.0;
+    out.speed = std::max(ramp, std::min(1.0, m.speed));  // one that still turns is taken up where the ramp meets it
   }
 }
 
@@ -468,6 +471,7 @@ void March<W>::store_lane(const Cluster& cluster, int lane, double time_step) {
 template <int W>
 void March<W>::remember(std::size_t j, int lane, const ClusterBranch& b, double time_step) {
   BranchMemory& m = state_.memory[j * W + at(lane)];
+  const double before = m.flow;
   m.flow = b.flow;
   m.shut = b.shut;
   if (time_step <= 0.0) return;
@@ -481,8 +485,10 @@ void March<W>::remember(std::size_t j, int lane, const ClusterBranch& b, double 
     return;
   }
   const double now = time_[lane];
-  if (m.reversed_at < 0.0) m.reversed_at = now;
-  if (-b.flow >= rule.reverse_flow || now + 0.5 * time_step >= m.reversed_at + rule.delay) m.may_reverse = false;
+  if (m.reversed_at < 0.0)  // between two rows by a straight line
+    m.reversed_at = now - (before > 0.0 ? b.flow / (b.flow - before) * time_step : 0.0);
+  // shut from the next row on; of the two rows beside the end of the delay the nearer one
+  if (-b.flow >= rule.reverse_flow || now + 1.5 * time_step >= m.reversed_at + rule.delay) m.may_reverse = false;
 }
 
 template <int W>
