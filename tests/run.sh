@@ -77,12 +77,6 @@ memory() {  # valgrind on the tests that read what users write
     --gtest_filter='*asefile*:*uantity*:*esult*' --gtest_brief=1
 }
 dev_build() { configure dev && ninja -C "$root/build/dev" -j "$jobs" test_core >/dev/null; }
-fuzz() {
-  if [[ -x $tests/fuzz/smoke.sh ]]; then "$tests/fuzz/smoke.sh"; else
-    echo "no fuzz targets in this version"
-    return 0
-  fi
-}
 
 step "release, everything" test_kind release
 step "clang 19, everyday set" clang
@@ -94,6 +88,6 @@ step "clang-format 19" format
 step "coverage" coverage
 step "debug build" dev_build
 step "valgrind" memory
-step "fuzz smoke" fuzz
+step "fuzz smoke" "$tests/fuzz/smoke.sh"
 printf '\n%s\n' "${table[@]}"
 exit $failed
