@@ -196,7 +196,8 @@ template <int W>
     return Lanes<W>(detail::log_core<double>(x.number));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::log_core<Quad>(x.part[i]);
+    r.part[0] = detail::log_core<Quad>(x.part[0]);
+    r.part[1] = detail::log_core<Quad>(x.part[1]);
     return r;
   }
 }
@@ -218,7 +219,8 @@ template <int W>
     return Lanes<W>(detail::log_of_parts<double>(detail::part_normal(x.number)));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::log_of_parts<Quad>(detail::part_normal(x.part[i]));
+    r.part[0] = detail::log_of_parts<Quad>(detail::part_normal(x.part[0]));
+    r.part[1] = detail::log_of_parts<Quad>(detail::part_normal(x.part[1]));
     return r;
   }
 }
@@ -230,7 +232,8 @@ template <int W>
     return Lanes<W>(detail::quick_log_core<double>(x.number));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::quick_log_core<Quad>(x.part[i]);
+    r.part[0] = detail::quick_log_core<Quad>(x.part[0]);
+    r.part[1] = detail::quick_log_core<Quad>(x.part[1]);
     return r;
   }
 }
@@ -248,7 +251,8 @@ template <int W>
     return Lanes<W>(detail::exp_core<double>(x.number, 0.0));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::exp_core<Quad>(x.part[i], Quad{0.0, 0.0, 0.0, 0.0});
+    r.part[0] = detail::exp_core<Quad>(x.part[0], Quad{0.0, 0.0, 0.0, 0.0});
+    r.part[1] = detail::exp_core<Quad>(x.part[1], Quad{0.0, 0.0, 0.0, 0.0});
     return r;
   }
 }
@@ -273,7 +277,8 @@ template <int W>
     return Lanes<W>(detail::pow_core<double>(x.number, y.number));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = detail::pow_core<Quad>(x.part[i], y.part[i]);
+    r.part[0] = detail::pow_core<Quad>(x.part[0], y.part[0]);
+    r.part[1] = detail::pow_core<Quad>(x.part[1], y.part[1]);
     return r;
   }
 }

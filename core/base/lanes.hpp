@@ -23,13 +23,15 @@ namespace headband::base {
 template <class T, int W>
 using PerLane = std::array<T, static_cast<std::size_t>(W)>;
 
-/// Four doubles in one register. Lanes are built from these: g++ 12 takes wider vectors apart at every comparison.
+/// Four doubles in one register. Lanes are built from two of these: g++ 12 takes wider vectors apart at every comparison,
+/// and keeps an array in registers only where its indices are constants (a loop over the parts sends each through memory).
 typedef double Quad [[gnu::vector_size(32)]];
 typedef std::int64_t QuadBits [[gnu::vector_size(32)]];
 
-/// Outcome of a comparison, all ones = true. W is 1 or a multiple of 4.
+/// Outcome of a comparison, all ones = true. W is 1 or 8.
 template <int W>
 struct Mask {
+  static_assert(W == 8, "one draw or eight");
   static constexpr int parts = W / 4;
   QuadBits part[static_cast<std::size_t>(parts)];
   [[nodiscard]] HEADBAND_INLINE bool operator[](int lane) const { return part[lane / 4][lane % 4] != 0; }
@@ -43,9 +45,10 @@ struct Mask<1> {
   HEADBAND_INLINE void set(int, bool on) { bit = on; }
 };
 
-/// W doubles, one per draw. Implicit from double (the same number in each lane).
+/// W doubles, one per draw, in one cache line. Implicit from double (the same number in each lane).
 template <int W>
-struct Lanes {
+struct alignas(64) Lanes {
+  static_assert(W == 8, "one draw or eight");
   static constexpr int parts = W / 4;
   Quad part[static_cast<std::size_t>(parts)];
   Lanes() = default;
@@ -59,7 +62,8 @@ struct Lanes {
   }
   ~Lanes() = default;
   HEADBAND_INLINE Lanes(double x) {  // NOLINT(google-explicit-constructor)
-    for (auto& p : part) p = Quad{x, x, x, x};
+    part[0] = Quad{x, x, x, x};
+    part[1] = part[0];
   }
   [[nodiscard]] HEADBAND_INLINE double operator[](int lane) const { return part[lane / 4][lane % 4]; }
   HEADBAND_INLINE void set(int lane, double x) { part[lane / 4][lane % 4] = x; }
@@ -74,29 +78,30 @@ struct Lanes<1> {
   HEADBAND_INLINE void set(int, double x) { number = x; }
 };
 
-#define HEADBAND_LANES_OPERATOR(op)                                                              \
-  template <int W>                                                                               \
-  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, const Lanes<W>& b) {     \
-    if constexpr (W == 1) {                                                                      \
-      return Lanes<W>(a.number op b.number);                                                     \
-    } else {                                                                                     \
-      Lanes<W> r;                                                                                \
-      for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];              \
-      return r;                                                                                  \
-    }                                                                                            \
-  }                                                                                              \
-  template <int W>                                                                               \
-  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, double b) {              \
-    return a op Lanes<W>(b);                                                                     \
-  }                                                                                              \
-  template <int W>                                                                               \
-  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(double a, const Lanes<W>& b) {              \
-    return Lanes<W>(a) op b;                                                                     \
-  }                                                                                              \
-  template <int W>                                                                               \
-  HEADBAND_INLINE Lanes<W>& operator op##=(Lanes<W>& a, const Lanes<W>& b) {                     \
-    a = a op b;                                                                                  \
-    return a;                                                                                    \
+#define HEADBAND_LANES_OPERATOR(op)                                                          \
+  template <int W>                                                                           \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, const Lanes<W>& b) { \
+    if constexpr (W == 1) {                                                                  \
+      return Lanes<W>(a.number op b.number);                                                 \
+    } else {                                                                                 \
+      Lanes<W> r;                                                                            \
+      r.part[0] = a.part[0] op b.part[0];                                                    \
+      r.part[1] = a.part[1] op b.part[1];                                                    \
+      return r;                                                                              \
+    }                                                                                        \
+  }                                                                                          \
+  template <int W>                                                                           \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, double b) {          \
+    return a op Lanes<W>(b);                                                                 \
+  }                                                                                          \
+  template <int W>                                                                           \
+  [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(double a, const Lanes<W>& b) {          \
+    return Lanes<W>(a) op b;                                                                 \
+  }                                                                                          \
+  template <int W>                                                                           \
+  HEADBAND_INLINE Lanes<W>& operator op##=(Lanes<W>& a, const Lanes<W>& b) {                 \
+    a = a op b;                                                                              \
+    return a;                                                                                \
   }
 HEADBAND_LANES_OPERATOR(+)
 HEADBAND_LANES_OPERATOR(-)
@@ -110,25 +115,27 @@ template <int W>
     return Lanes<W>(-a.number);
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = -a.part[i];
+    r.part[0] = -a.part[0];
+    r.part[1] = -a.part[1];
     return r;
   }
 }
 
-#define HEADBAND_LANES_COMPARE(op)                                                              \
-  template <int W>                                                                              \
-  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, const Lanes<W>& b) {     \
-    if constexpr (W == 1) {                                                                     \
-      return Mask<W>{a.number op b.number};                                                     \
-    } else {                                                                                    \
-      Mask<W> r;                                                                                \
-      for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];             \
-      return r;                                                                                 \
-    }                                                                                           \
-  }                                                                                             \
-  template <int W>                                                                              \
-  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, double b) {              \
-    return a op Lanes<W>(b);                                                                    \
+#define HEADBAND_LANES_COMPARE(op)                                                          \
+  template <int W>                                                                          \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, const Lanes<W>& b) { \
+    if constexpr (W == 1) {                                                                 \
+      return Mask<W>{a.number op b.number};                                                 \
+    } else {                                                                                \
+      Mask<W> r;                                                                            \
+      r.part[0] = a.part[0] op b.part[0];                                                   \
+      r.part[1] = a.part[1] op b.part[1];                                                   \
+      return r;                                                                             \
+    }                                                                                       \
+  }                                                                                         \
+  template <int W>                                                                          \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Lanes<W>& a, double b) {          \
+    return a op Lanes<W>(b);                                                                \
   }
 HEADBAND_LANES_COMPARE(<)
 HEADBAND_LANES_COMPARE(<=)
@@ -137,16 +144,17 @@ HEADBAND_LANES_COMPARE(>=)
 HEADBAND_LANES_COMPARE(==)
 #undef HEADBAND_LANES_COMPARE
 
-#define HEADBAND_MASK_OPERATOR(op, logical)                                                  \
-  template <int W>                                                                           \
-  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Mask<W>& a, const Mask<W>& b) {    \
-    if constexpr (W == 1) {                                                                  \
-      return Mask<W>{a.bit logical b.bit};                                                   \
-    } else {                                                                                 \
-      Mask<W> r;                                                                             \
-      for (int i = 0; i < Mask<W>::parts; ++i) r.part[i] = a.part[i] op b.part[i];           \
-      return r;                                                                              \
-    }                                                                                        \
+#define HEADBAND_MASK_OPERATOR(op, logical)                                               \
+  template <int W>                                                                        \
+  [[nodiscard]] HEADBAND_INLINE Mask<W> operator op(const Mask<W>& a, const Mask<W>& b) { \
+    if constexpr (W == 1) {                                                               \
+      return Mask<W>{a.bit logical b.bit};                                                \
+    } else {                                                                              \
+      Mask<W> r;                                                                          \
+      r.part[0] = a.part[0] op b.part[0];                                                 \
+      r.part[1] = a.part[1] op b.part[1];                                                 \
+      return r;                                                                           \
+    }                                                                                     \
   }
 HEADBAND_MASK_OPERATOR(&, &&)
 HEADBAND_MASK_OPERATOR(|, ||)
@@ -158,7 +166,8 @@ template <int W>
     return Mask<W>{!a.bit};
   } else {
     Mask<W> r;
-    for (int i = 0; i < Mask<W>::parts; ++i) r.part[i] = ~a.part[i];
+    r.part[0] = ~a.part[0];
+    r.part[1] = ~a.part[1];
     return r;
   }
 }
@@ -170,7 +179,8 @@ template <int W>
     return Lanes<W>(where.bit ? yes.number : no.number);
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = where.part[i] ? yes.part[i] : no.part[i];
+    r.part[0] = where.part[0] ? yes.part[0] : no.part[0];
+    r.part[1] = where.part[1] ? yes.part[1] : no.part[1];
     return r;
   }
 }
@@ -180,8 +190,7 @@ template <int W>
   if constexpr (W == 1) {
     return m.bit;
   } else {
-    QuadBits some = m.part[0];
-    for (int i = 1; i < Mask<W>::parts; ++i) some |= m.part[i];
+    const QuadBits some = m.part[0] | m.part[1];
 #if defined(__AVX__)
     return _mm256_movemask_pd(reinterpret_cast<__m256d>(some)) != 0;
 #else
@@ -200,7 +209,8 @@ template <int W>
 #if defined(__AVX__)
   if constexpr (W > 1) {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = _mm256_min_pd(b.part[i], a.part[i]);
+    r.part[0] = _mm256_min_pd(b.part[0], a.part[0]);
+    r.part[1] = _mm256_min_pd(b.part[1], a.part[1]);
     return r;
   }
 #endif
@@ -212,7 +222,8 @@ template <int W>
 #if defined(__AVX__)
   if constexpr (W > 1) {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) r.part[i] = _mm256_max_pd(b.part[i], a.part[i]);
+    r.part[0] = _mm256_max_pd(b.part[0], a.part[0]);
+    r.part[1] = _mm256_max_pd(b.part[1], a.part[1]);
     return r;
   }
 #endif
@@ -224,8 +235,8 @@ template <int W>
     return Lanes<W>(std::fabs(a.number));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i)
-      r.part[i] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[i]) & INT64_MAX);
+    r.part[0] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[0]) & INT64_MAX);
+    r.part[1] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[1]) & INT64_MAX);
     return r;
   }
 }
@@ -237,13 +248,15 @@ template <int W>
     return Lanes<W>(std::sqrt(a.number));
   } else {
     Lanes<W> r;
-    for (int i = 0; i < Lanes<W>::parts; ++i) {
 #if defined(__AVX__)
-      r.part[i] = _mm256_sqrt_pd(a.part[i]);
+    r.part[0] = _mm256_sqrt_pd(a.part[0]);
+    r.part[1] = _mm256_sqrt_pd(a.part[1]);
 #else
-      for (int j = 0; j < 4; ++j) r.part[i][j] = std::sqrt(a.part[i][j]);
-#endif
+    for (int j = 0; j < 4; ++j) {
+      r.part[0][j] = std::sqrt(a.part[0][j]);
+      r.part[1][j] = std::sqrt(a.part[1][j]);
     }
+#endif
     return r;
   }
 }
