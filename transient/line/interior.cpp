@@ -1,20 +1,111 @@
 // SPDX-License-Identifier: MIT
 #include "transient/line/interior.hpp"
 
+#include "transient/line/interior_512.hpp"
+
+#include <array>
+
 namespace headband::transient {
 namespace {
 
-// What is under way at a row: the wave from the row before, and its damping.
+// What leaves a row: towards `to` (on) and towards `from` (back).
 template <int W>
 struct Wave {
   Lanes<W> head, damp;
 };
+template <int W>
+struct Leaving {
+  Wave<W> on, back;
+};
 
-// What a node with flow `q` sends over the reach.
 template <int W, Form form, bool placed>
-HEADBAND_INLINE Sent<W> sent_over(const Resistance<W>& r, const PipeRows<W>& rows, int reach, const Lanes<W>& q) {
-  if constexpr (placed) return sent_by<W, form>(r, q, rows.fitting[reach], rows.longer[reach]);
-  return sent_by<W, form>(r, q, Lanes<W>(0.0), Lanes<W>(0.0));
+HEADBAND_INLINE Wave<W> on_over(const Resistance<W>& r,
+                                const PipeRows<W>& rows,
+                                int reach,
+                                const Lanes<W>& head,
+                                const Lanes<W>& flow,
+                                const Cost<W>& cost) {
+  const Sent<W> s = sent_over<W, form, placed>(r, cost, rows.fitting + reach, rows.longer + reach);
+  return {head + s.carry * flow, s.damp};
+}
+
+template <int W, Form form, bool placed>
+HEADBAND_INLINE Wave<W> back_over(const Resistance<W>& r,
+                                  const PipeRows<W>& rows,
+                                  int reach,
+                                  const Lanes<W>& head,
+                                  const Lanes<W>& flow,
+                                  const Cost<W>& cost) {
+  const Sent<W> s = sent_over<W, form, placed>(r, cost, rows.fitting + reach, rows.longer + reach);
+  return {head - s.carry * flow, s.damp};
+}
+
+template <int W>
+HEADBAND_INLINE Lanes<W>* root_at(Lanes<W>* roots, int row) {
+  return roots != nullptr ? roots + row : nullptr;
+}
+
+// What leaves a row without cavity; nothing goes on from the last row, nothing comes back from row 0.
+template <int W, Form form, bool placed>
+HEADBAND_INLINE Leaving<W> leaving(const Resistance<W>& r, const PipeRows<W>& rows, int i) {
+  const Lanes<W> head = rows.head[i], flow = rows.flow[i];
+  const Cost<W> cost = cost_of<W, form>(r, flow, root_at(rows.root, i));
+  if constexpr (placed) {
+    return {on_over<W, form, placed>(r, rows, i + 1 < rows.rows ? i : i - 1, head, flow, cost),
+            back_over<W, form, placed>(r, rows, i > 0 ? i - 1 : 0, head, flow, cost)};
+  } else {
+    const Sent<W> s = sent_over<W, form, placed>(r, cost, nullptr, nullptr);
+    const Lanes<W> carried = s.carry * flow;
+    return {{head + carried, s.damp}, {head - carried, s.damp}};
+  }
+}
+
+// The same where the row may hold a cavity: a flow on either side of it.
+template <int W, Form form, bool placed>
+HEADBAND_INLINE Leaving<W> leaving_cavity(const Resistance<W>& r, const PipeRows<W>& rows, int i) {
+  const Lanes<W> head = rows.head[i], flow = rows.flow[i], before = rows.flow_before[i];
+  const Cost<W> cost = cost_of<W, form>(r, before, root_at(rows.root, i));
+  const int reach_on = i + 1 < rows.rows ? i : i - 1;
+  const Wave<W> back = back_over<W, form, placed>(r, rows, i > 0 ? i - 1 : 0, head, before, cost);
+  Wave<W> on = on_over<W, form, placed>(r, rows, reach_on, head, flow, cost);
+  const auto same = flow == before;
+  if (!all(same)) {  // else the wave is the one of a row without cavity, to the last bit
+    Lanes<W>* kept = root_at(rows.root_on, i);
+    Lanes<W> root = kept != nullptr ? *kept : Lanes<W>(0.0);
+    const Cost<W> cost_on = cost_of<W, form>(r, flow, kept != nullptr ? &root : nullptr);
+    const Wave<W> apart = on_over<W, form, placed>(r, rows, reach_on, head, flow, cost_on);
+    on.head = select(same, on.head, apart.head);
+    on.damp = select(same, on.damp, apart.damp);
+    if (kept != nullptr) *kept = select(same, *kept, root);
+  }
+  return {on, back};
+}
+
+// Flows of two neighbouring rows where the waves meet, by one quotient for both.
+template <int W>
+struct Met {
+  Lanes<W> first, second;
+};
+template <int W>
+HEADBAND_INLINE Met<W> meet(const Wave<W>& on1, const Wave<W>& back1, const Wave<W>& on2, const Wave<W>& back2) {
+  const Lanes<W> sum1 = on1.damp + back1.damp, sum2 = on2.damp + back2.damp;
+  const Lanes<W> inverse = 1.0 / (sum1 * sum2);
+  return {(on1.head - back1.head) * (sum2 * inverse), (on2.head - back2.head) * (sum1 * inverse)};
+}
+
+// A row without a neighbour, the last one before the far end: the same with a sum of 1 beside it.
+template <int W>
+HEADBAND_INLINE Lanes<W> meet(const Wave<W>& on, const Wave<W>& back) {
+  return (on.head - back.head) * (1.0 / (on.damp + back.damp));
+}
+
+// Where lanes end at different rows, the first row of a pair may be the last of its lane.
+template <int W>
+HEADBAND_INLINE void meet_alone(
+    const PipeRows<W>& rows, int i, const Wave<W>& on, const Wave<W>& back, Met<W>& met) {
+  if (rows.reaches == nullptr) return;
+  const auto ends = *rows.reaches == Lanes<W>(i + 1.0);
+  if (any(ends)) met.first = select(ends, meet(on, back), met.first);
 }
 
 template <int W>
@@ -23,107 +114,158 @@ HEADBAND_INLINE void keep_extremes(const PipeRows<W>& rows, int i, const Lanes<W
   rows.head_min[i] = min(rows.head_min[i], h);
 }
 
-// Rows without cavities from 1 on. Returns the first row that fell below its limit (nothing stored there), or the last
-// row's index when all are done; `wave` is then the one on its way to that row.
+// The roots of three rows from `first` on, as they were: what is computed twice in a step starts from the same.
+template <int W, Form form>
+struct OldRoots {
+  std::array<Lanes<W>, 3> root;
+  HEADBAND_INLINE void keep(const PipeRows<W>& rows, int first, int count) {
+    if constexpr (form == Form::darcy)
+      for (int k = 0; k < count && rows.root != nullptr; ++k) root[static_cast<std::size_t>(k)] = rows.root[first + k];
+  }
+  HEADBAND_INLINE void put_back(const PipeRows<W>& rows, int first, int count) const {
+    if constexpr (form == Form::darcy)
+      for (int k = 0; k < count && rows.root != nullptr; ++k) rows.root[first + k] = root[static_cast<std::size_t>(k)];
+  }
+};
+
+template <int W, bool envelope>
+HEADBAND_INLINE void keep_row(const PipeRows<W>& rows, int i, const Lanes<W>& h, const Lanes<W>& q) {
+  rows.head[i] = h;
+  rows.flow[i] = q;
+  if constexpr (envelope) keep_extremes(rows, i, h);
+}
+
+// Rows without cavities from 1 on, two by two. Returns the first row of a pair in which a row fell below its limit
+// (nothing stored there), or the last row's index when all are done; `wave` is then the one on its way to that row.
 template <int W, Form form, bool placed, bool limited, bool envelope>
-int march_plain(const Resistance<W>& r, const PipeRows<W>& rows, Wave<W>& wave_out) {
+int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<W>& wave) {
+  const Resistance<W> r = given;  // copies of our own, which no row can alias
+  const PipeRows<W> rows = given_rows;
   const int last = rows.rows - 1;
-  // local names: the compiler must not fear that a stored row changes them
-  Lanes<W>* const heads = rows.head;
-  Lanes<W>* const flows = rows.flow;
-  const Lanes<W>* const limits = rows.vapour;
-  Lanes<W>* const highs = rows.head_max;
-  Lanes<W>* const lows = rows.head_min;
-  Sent<W> s = sent_over<W, form, placed>(r, rows, 0, flows[0]);
-  Wave<W> wave{heads[0] + s.carry * flows[0], s.damp};
-  wave_out = wave;
+  Wave<W> on1 = leaving<W, form, placed>(r, rows, 0).on;
   if (last < 2) return last;
-  Lanes<W> head = heads[1], flow = flows[1];
-  s = sent_over<W, form, placed>(r, rows, placed ? 1 : 0, flow);
-  Wave<W> next{head + s.carry * flow, s.damp};
-  const Lanes<W> carry = r.carry, damp = r.damp, quadratic = r.quadratic;
-  for (int i = 1; i < last; ++i) {
-    head = heads[i + 1];
-    flow = flows[i + 1];
-    Sent<W> back{carry, damp};
-    if constexpr (form == Form::quadratic && !placed) {
-      back.damp = damp + quadratic * abs(flow);
-    } else {
-      back = sent_over<W, form, placed>(r, rows, placed ? i : 0, flow);
+  OldRoots<W, form> old;
+  if constexpr (limited) old.keep(rows, 1, 1);
+  Wave<W> on2 = leaving<W, form, placed>(r, rows, 1).on;
+  int i = 1;
+  if constexpr (W == 8 && form == Form::quadratic && !placed && envelope) {
+    if (rows.reaches == nullptr && has_512()) {
+      Arriving<8> row_before, row;
+      i = march_pairs_512(r, rows, limited, row_before, row);
+      on1 = {row_before.head, row_before.impedance};
+      on2 = {row.head, row.impedance};
     }
-    const Lanes<W> carried = back.carry * flow;
-    const Lanes<W> q = (wave.head - (head - carried)) / (wave.damp + back.damp);
-    const Lanes<W> h = wave.head - wave.damp * q;
+  }
+  for (; i + 1 < last; i += 2) {
+    OldRoots<W, form> ahead;
+    if constexpr (limited) ahead.keep(rows, i + 1, 2);
+    const Leaving<W> a = leaving<W, form, placed>(r, rows, i + 1);
+    const Leaving<W> b = leaving<W, form, placed>(r, rows, i + 2);
+    Met<W> q = meet(on1, a.back, on2, b.back);
+    meet_alone(rows, i, on1, a.back, q);
+    const Lanes<W> h1 = on1.head - on1.damp * q.first;
+    const Lanes<W> h2 = on2.head - on2.damp * q.second;
     if constexpr (limited) {
-      if (any(h < limits[i])) {
-        wave_out = wave;
+      if (any((h1 < rows.vapour[i]) | (h2 < rows.vapour[i + 1]))) {
+        old.put_back(rows, i, 1);
+        ahead.put_back(rows, i + 1, 2);
+        wave = on1;
         return i;
       }
     }
-    heads[i] = h;
-    flows[i] = q;
-    if constexpr (envelope) {
-      highs[i] = max(highs[i], h);
-      lows[i] = min(lows[i], h);
+    if constexpr (limited && form == Form::darcy) old.root[0] = ahead.root[1];
+    keep_row<W, envelope>(rows, i, h1, q.first);
+    keep_row<W, envelope>(rows, i + 1, h2, q.second);
+    on1 = a.on;
+    on2 = b.on;
+  }
+  if (i < last) {
+    OldRoots<W, form> ahead;
+    if constexpr (limited) ahead.keep(rows, last, 1);
+    const Wave<W> back = leaving<W, form, placed>(r, rows, last).back;
+    const Lanes<W> q = meet(on1, back);
+    const Lanes<W> h = on1.head - on1.damp * q;
+    if constexpr (limited) {
+      if (any(h < rows.vapour[i])) {
+        old.put_back(rows, i, 1);
+        ahead.put_back(rows, last, 1);
+        wave = on1;
+        return i;
+      }
     }
-    wave = next;
-    if constexpr (placed) {
-      // the reach after row i+1 is another one than the reach before it
-      const Sent<W> on = sent_over<W, form, placed>(r, rows, i + 1 < last ? i + 1 : i, flow);
-      next = {head + on.carry * flow, on.damp};
-    } else {
-      next = {head + carried, back.damp};
-    }
+    keep_row<W, envelope>(rows, i, h, q);
   }
   return last;
 }
 
-// Rows with cavities from `first` on: two flows a row. Returns whether the pipe still holds a cavity.
+// One row that may hold a cavity, after the flow `q` it has without one. Returns whether it holds one in some lane.
+template <int W, bool envelope>
+HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
+                            int i,
+                            const Wave<W>& on,
+                            const Wave<W>& back,
+                            Lanes<W> q,
+                            const Lanes<W>& dt,
+                            const Lanes<W>& per_volume,
+                            CavityTally<W>& tally) {
+  const Lanes<W> zero(0.0), limit = rows.vapour[i];
+  Lanes<W> h = on.head - on.damp * q;
+  Lanes<W> before = q;
+  const auto low = h < limit;
+  const auto held = rows.volume[i] > zero;
+  bool some = false;
+  if (any(low | held)) {
+    const Lanes<W> to_row = (on.head - limit) / on.damp;
+    const Lanes<W> from_row = (limit - back.head) / back.damp;
+    const Lanes<W> was = rows.flow[i] - rows.flow_before[i];
+    const Lanes<W> grows = from_row - to_row;
+    const Lanes<W> volume = rows.volume[i] + 0.5 * dt * (grows + was);
+    const auto shut = held & (volume <= zero);
+    const auto pinned = low | (held & !shut);
+    tally.reset = select(shut, tally.reset - volume, tally.reset);
+    tally.allowance = select(shut, tally.allowance + max(abs(was), abs(grows)) * dt, tally.allowance);
+    tally.closed = tally.closed | shut;
+    h = select(pinned, limit, h);
+    before = select(pinned, to_row, q);
+    q = select(pinned, from_row, q);
+    rows.volume[i] = select(pinned, max(volume, zero), zero);
+    tally.share = max(tally.share, rows.volume[i] * per_volume);
+    some = any(pinned);
+  }
+  rows.flow_before[i] = before;
+  keep_row<W, envelope>(rows, i, h, q);
+  return some;
+}
+
+// Rows with cavities from `first` on (odd), in the pairs of the rows without. Returns whether the pipe still holds one.
 template <int W, Form form, bool placed, bool envelope>
 bool march_cavities(const Resistance<W>& r,
                     const PipeRows<W>& rows,
                     int first,
-                    Wave<W> wave,
+                    const Wave<W>& wave,
                     const Lanes<W>& dt,
                     const Lanes<W>& per_volume,
                     CavityTally<W>& tally) {
   const int last = rows.rows - 1;
-  const Lanes<W> zero(0.0);
   bool left = false;
-  for (int i = first; i < last; ++i) {
-    const Sent<W> back = sent_over<W, form, placed>(r, rows, i, rows.flow_before[i + 1]);
-    const Lanes<W> returned = rows.head[i + 1] - back.carry * rows.flow_before[i + 1];
-    const Sent<W> on = sent_over<W, form, placed>(r, rows, i, rows.flow[i]);
-    const Wave<W> next{rows.head[i] + on.carry * rows.flow[i], on.damp};
-    Lanes<W> q = (wave.head - returned) / (wave.damp + back.damp);
-    Lanes<W> h = wave.head - wave.damp * q;
-    const Lanes<W> limit = rows.vapour[i];
-    const auto low = h < limit;
-    const auto held = rows.volume[i] > zero;
-    Lanes<W> before = q;
-    if (any(low | held)) {
-      const Lanes<W> to_row = (wave.head - limit) / wave.damp;
-      const Lanes<W> from_row = (limit - returned) / back.damp;
-      const Lanes<W> was = rows.flow[i] - rows.flow_before[i];
-      const Lanes<W> grows = from_row - to_row;
-      const Lanes<W> volume = rows.volume[i] + 0.5 * dt * (grows + was);
-      const auto shut = held & (volume <= zero);
-      const auto pinned = low | (held & !shut);
-      tally.reset = select(shut, tally.reset - volume, tally.reset);
-      tally.allowance = select(shut, tally.allowance + max(abs(was), abs(grows)) * dt, tally.allowance);
-      tally.closed = tally.closed | shut;
-      h = select(pinned, limit, h);
-      before = select(pinned, to_row, q);
-      q = select(pinned, from_row, q);
-      rows.volume[i] = select(pinned, max(volume, zero), zero);
-      tally.share = max(tally.share, rows.volume[i] * per_volume);
-      left = left || any(pinned);
-    }
-    rows.head[i] = h;
-    rows.flow[i] = q;
-    rows.flow_before[i] = before;
-    if constexpr (envelope) keep_extremes(rows, i, h);
-    wave = next;
+  if (first >= last) return left;
+  Wave<W> on1 = wave, on2 = leaving_cavity<W, form, placed>(r, rows, first).on;
+  int i = first;
+  for (; i + 1 < last; i += 2) {
+    const Leaving<W> a = leaving_cavity<W, form, placed>(r, rows, i + 1);
+    const Leaving<W> b = leaving_cavity<W, form, placed>(r, rows, i + 2);
+    Met<W> q = meet(on1, a.back, on2, b.back);
+    meet_alone(rows, i, on1, a.back, q);
+    const bool one = settle<W, envelope>(rows, i, on1, a.back, q.first, dt, per_volume, tally);
+    const bool two = settle<W, envelope>(rows, i + 1, on2, b.back, q.second, dt, per_volume, tally);
+    left = left || one || two;
+    on1 = a.on;
+    on2 = b.on;
+  }
+  if (i < last) {
+    const Wave<W> back = leaving_cavity<W, form, placed>(r, rows, last).back;
+    const bool one = settle<W, envelope>(rows, i, on1, back, meet(on1, back), dt, per_volume, tally);
+    left = left || one;
   }
   return left;
 }
@@ -152,8 +294,7 @@ void march_form(const Resistance<W>& r,
     cavities = march_cavities<W, form, placed, envelope>(r, rows, stop, wave, dt, per_volume, tally);
     return;
   }
-  const Sent<W> s = sent_over<W, form, placed>(r, rows, 0, rows.flow[0]);
-  wave = {rows.head[0] + s.carry * rows.flow[0], s.damp};
+  wave = leaving_cavity<W, form, placed>(r, rows, 0).on;
   cavities = march_cavities<W, form, placed, envelope>(r, rows, 1, wave, dt, per_volume, tally);
 }
 

@@ -19,6 +19,9 @@ struct PipeRows {
   const Lanes<W>* vapour = nullptr;   ///< lowest head the row can have [m]; -infinity: no limit
   const Lanes<W>* fitting = nullptr;  ///< extra loss of the reach after the row [s2/m5]; null = none in the pipe
   const Lanes<W>* longer = nullptr;   ///< extra equivalent length of that reach [-]; null with `fitting`
+  Lanes<W>* root = nullptr;           ///< last roots of the friction law at the rows, see friction::darcy_factor_near;
+  Lanes<W>* root_on = nullptr;        ///< on the `to` side of cavities; both null = solved anew each time
+  const Lanes<W>* reaches = nullptr;  ///< of each lane, where lanes differ; null = all `rows - 1`
   Lanes<W>* head_max = nullptr;       ///< envelopes; null = not kept
   Lanes<W>* head_min = nullptr;
 };

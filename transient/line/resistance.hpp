@@ -47,32 +47,58 @@ inline constexpr double hazen_williams_slope = 0.852;
 /// Below this Reynolds number the laminar factor is followed to zero flow without dividing by it.
 inline constexpr double still = 1e-9;
 
-/// Carry and damp of a node with flow `q`.
+/// What the flow at a node costs, whichever reach it is sent over.
+template <int W>
+struct Cost {
+  Lanes<W> size;  ///< |Q| [m3/s]
+  Lanes<W> loss;  ///< loss of a reach by the law, per unit of flow [s/m2]; unused for quadratic friction
+  Lanes<W> half;  ///< half the law's slope s of that loss against flow
+};
+
+/// @param root last root of the implicit laws at this node, see friction::darcy_factor_near; null: solved anew
+template <int W, Form form>
+[[nodiscard]] HEADBAND_INLINE Cost<W> cost_of(const Resistance<W>& r, const Lanes<W>& q, Lanes<W>* root) {
+  Cost<W> c;
+  c.size = abs(q);
+  if constexpr (form == Form::darcy) {
+    const Lanes<W> re = max(c.size * r.reynolds, Lanes<W>(still));
+    const friction::Factor<W> f = root != nullptr ? friction::darcy_factor_near<W>(r.rule, re, *root)
+                                                  : friction::darcy_factor<W>(r.rule, re);
+    c.loss = r.darcy * f.factor * max(c.size, still / r.reynolds);
+    c.half = 0.5 * f.log_slope;
+  } else if constexpr (form == Form::power) {
+    // the loss per unit of flow: loss = g Q, g ~ |Q|^0.852
+    c.loss = r.power * exp(hazen_williams_slope * log(max(c.size, Lanes<W>(1e-15))));
+    c.half = Lanes<W>(0.5 * (hazen_williams_slope - 1.0));
+  }
+  return c;
+}
+
+/// Carry and damp of a node over one reach.
 /// @param fitting  extra quadratic loss of this reach (fittings with a place) [s2/m5]
 /// @param longer   extra equivalent length of this reach as a share of its own loss [-]
+template <int W, Form form, bool placed>
+[[nodiscard]] HEADBAND_INLINE Sent<W> sent_over(
+    const Resistance<W>& r, const Cost<W>& c, const Lanes<W>* fitting, const Lanes<W>* longer) {
+  Sent<W> s;
+  if constexpr (placed) {
+    s = {r.carry, r.damp + (r.quadratic + *fitting) * c.size};
+  } else {
+    s = {r.carry, r.damp + r.quadratic * c.size};
+  }
+  if constexpr (form != Form::quadratic) {
+    const Lanes<W> g = placed ? c.loss * (Lanes<W>(1.0) + *longer) : c.loss;
+    s.carry += g * c.half;
+    s.damp += g * (Lanes<W>(1.0) + c.half);
+  }
+  return s;
+}
+
+/// Carry and damp of a node with flow `q`.
 template <int W, Form form>
 [[nodiscard]] HEADBAND_INLINE Sent<W> sent_by(
     const Resistance<W>& r, const Lanes<W>& q, const Lanes<W>& fitting, const Lanes<W>& longer) {
-  const Lanes<W> size = abs(q);
-  Sent<W> s{r.carry, r.damp + (r.quadratic + fitting) * size};
-  if constexpr (form == Form::darcy) {
-    const Lanes<W> re = max(size * r.reynolds, Lanes<W>(still));
-    const friction::Factor<W> f = friction::darcy_factor<W>(r.rule, re);
-    const Lanes<W> g = r.darcy * (Lanes<W>(1.0) + longer) * f.factor * (re / r.reynolds);
-    const Lanes<W> half = 0.5 * f.log_slope;
-    s.carry += g * half;
-    s.damp += g * (Lanes<W>(1.0) + half);
-  } else if constexpr (form == Form::power) {
-    const Lanes<W> floor = max(size, Lanes<W>(1e-15));
-    const Lanes<W> g = r.power * (Lanes<W>(1.0) + longer) * exp(hazen_williams_slope * log(floor));
-    const Lanes<W> half = 0.5 * (hazen_williams_slope - 1.0);
-    // g is the loss per unit of flow here: loss = g Q, g ~ |Q|^0.852, so that F' = g (1 + 0.852)
-    s.carry += g * half;
-    s.damp += g * (Lanes<W>(1.0) + half);
-  } else {
-    (void)longer;
-  }
-  return s;
+  return sent_over<W, form, true>(r, cost_of<W, form>(r, q, nullptr), &fitting, &longer);
 }
 
 /// Loss of one reach at a steady flow [m], signed with the flow: what the march itself takes from a still wave.

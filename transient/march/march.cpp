@@ -50,6 +50,11 @@ void March<W>::point_rows() {
       r.fitting = &numbers_.fitting[p.first_row];
       r.longer = &numbers_.longer[p.first_row];
     }
+    if (!state_.root.empty()) {
+      r.root = &state_.root[p.first_row];
+      r.root_on = &state_.root_on[p.first_row];
+    }
+    if (!p.uniform) r.reaches = &p.reach_count;
     if (state_.head_max.empty()) continue;
     r.head_max = &state_.head_max[p.first_row];
     r.head_min = &state_.head_min[p.first_row];
@@ -86,6 +91,11 @@ void March<W>::set_initial_pipes(const network::Values<W>& values, const steady:
   state_.flow_before.assign(numbers_.rows, zero);
   state_.volume.assign(numbers_.rows, zero);
   state_.cavities.assign(plan_->pipes.size(), 0);
+  const bool roots = std::any_of(numbers_.pipes.begin(), numbers_.pipes.end(), [](const PipeNumbers<W>& p) {
+    return p.resistance.form == Form::darcy && p.resistance.rule.root_kept;
+  });
+  state_.root.assign(roots ? numbers_.rows : 0, zero);
+  state_.root_on.assign(roots ? numbers_.rows : 0, zero);
   for (std::size_t i = 0; i < plan_->pipes.size(); ++i) {
     const PipeNumbers<W>& p = numbers_.pipes[i];
     if (p.most_reaches == 0) continue;

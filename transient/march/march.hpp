@@ -27,6 +27,7 @@ template <int W>
 struct State {
   std::vector<Lanes<W>> head, flow, flow_before, volume;   ///< per row
   std::vector<Lanes<W>> head_max, head_min;                ///< per row; empty = no envelopes
+  std::vector<Lanes<W>> root, root_on;                     ///< per row: friction::darcy_factor_near; empty = not needed
   std::vector<char> cavities;                              ///< per pipe: its rows hold cavities
   std::vector<Arriving<W>> wave;                           ///< per side
   std::vector<Lanes<W>> per_impedance;                     ///< per side: 1 / wave.impedance

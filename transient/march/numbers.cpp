@@ -25,6 +25,7 @@ void fill_grid(const Layout& layout, const base::PerLane<const Grid*, W>& grids,
     const auto l = static_cast<std::size_t>(lane);
     p.reaches[l] = layout.rigid[i] ? 0 : std::max(1, grids[l]->reaches[i]);
     p.uniform = p.uniform && p.reaches[l] == p.reaches[0];
+    p.reach_count.set(lane, p.reaches[l]);
     p.most_reaches = std::max(p.most_reaches, p.reaches[l]);
   }
 }

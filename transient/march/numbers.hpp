@@ -21,6 +21,7 @@ template <int W>
 struct PipeNumbers {
   base::PerLane<int, W> reaches{};  ///< 0 in a rigid pipe
   bool uniform = true;              ///< all lanes the same count
+  Lanes<W> reach_count;             ///< `reaches` as numbers
   int most_reaches = 0;
   std::size_t first_row = 0;        ///< into the state
   bool placed = false;              ///< has fittings with a place
