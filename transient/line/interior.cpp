@@ -117,7 +117,7 @@ HEADBAND_INLINE void keep_extremes(const PipeRows<W>& rows, int i, const Lanes<W
 // The roots of three rows from `first` on, as they were: what is computed twice in a step starts from the same.
 template <int W, Form form>
 struct OldRoots {
-  std::array<Lanes<W>, 3> root;
+  std::array<Lanes<W>, 3> root{Lanes<W>(0.0), Lanes<W>(0.0), Lanes<W>(0.0)};
   HEADBAND_INLINE void keep(const PipeRows<W>& rows, int first, int count) {
     if constexpr (form == Form::darcy)
       for (int k = 0; k < count && rows.root != nullptr; ++k) root[static_cast<std::size_t>(k)] = rows.root[first + k];
@@ -139,22 +139,33 @@ HEADBAND_INLINE void keep_row(const PipeRows<W>& rows, int i, const Lanes<W>& h,
 // (nothing stored there), or the last row's index when all are done; `wave` is then the one on its way to that row.
 template <int W, Form form, bool placed, bool limited, bool envelope>
 int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<W>& wave) {
-  const Resistance<W> r = given;  // copies of our own, which no row can alias
-  const PipeRows<W> rows = given_rows;
+  const PipeRows<W> rows = given_rows;  // copies of our own, which no row can alias
+  Resistance<W> own;
+  if constexpr (form == Form::quadratic) {
+    own.carry = given.carry;
+    own.damp = given.damp;
+    own.quadratic = given.quadratic;
+  }
+  const Resistance<W>& r = form == Form::quadratic ? own : given;
   const int last = rows.rows - 1;
-  Wave<W> on1 = leaving<W, form, placed>(r, rows, 0).on;
   if (last < 2) return last;
+  Wave<W> on1{0.0, 0.0}, on2{0.0, 0.0};
   OldRoots<W, form> old;
-  if constexpr (limited) old.keep(rows, 1, 1);
-  Wave<W> on2 = leaving<W, form, placed>(r, rows, 1).on;
-  int i = 1;
+  int i = 0;
   if constexpr (W == 8 && form == Form::quadratic && !placed && envelope) {
     if (rows.reaches == nullptr && has_512()) {
       Arriving<8> row_before, row;
       i = march_pairs_512(r, rows, limited, row_before, row);
+      if (i == last) return last;
       on1 = {row_before.head, row_before.impedance};
       on2 = {row.head, row.impedance};
     }
+  }
+  if (i == 0) {
+    on1 = leaving<W, form, placed>(r, rows, 0).on;
+    if constexpr (limited) old.keep(rows, 1, 1);
+    on2 = leaving<W, form, placed>(r, rows, 1).on;
+    i = 1;
   }
   for (; i + 1 < last; i += 2) {
     OldRoots<W, form> ahead;

@@ -36,6 +36,7 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
   __m512d on2_head = _mm512_add_pd(h, _mm512_mul_pd(carry, q));
   __m512d on2_damp = _mm512_add_pd(damp, _mm512_mul_pd(quadratic, _mm512_abs_pd(q)));
   int i = 1;
+  bool stopped = false;
   for (; i + 1 < last; i += 2) {
     const __m512d a_head = load(head[i + 1]), a_flow = load(flow[i + 1]);
     const __m512d b_head = load(head[i + 2]), b_flow = load(flow[i + 2]);
@@ -51,7 +52,8 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
     if constexpr (limited) {
       const __mmask8 low = _mm512_cmp_pd_mask(h1, load(rows.vapour[i]), _CMP_LT_OQ);
       const __mmask8 next_low = _mm512_cmp_pd_mask(h2, load(rows.vapour[i + 1]), _CMP_LT_OQ);
-      if ((low | next_low) != 0) break;
+      stopped = (low | next_low) != 0;
+      if (stopped) break;
     }
     store(head[i], h1);
     store(flow[i], q1);
@@ -67,6 +69,23 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
     on2_head = _mm512_add_pd(b_head, b_carried);
     on2_damp = b_damp;
   }
+  if (!stopped && i < last) {  // a row without a neighbour
+    const __m512d a_head = load(head[last]), a_flow = load(flow[last]);
+    const __m512d a_damp = _mm512_add_pd(damp, _mm512_mul_pd(quadratic, _mm512_abs_pd(a_flow)));
+    const __m512d inverse = _mm512_div_pd(one, _mm512_add_pd(on1_damp, a_damp));
+    const __m512d back = _mm512_sub_pd(a_head, _mm512_mul_pd(carry, a_flow));
+    const __m512d q1 = _mm512_mul_pd(_mm512_sub_pd(on1_head, back), inverse);
+    const __m512d h1 = _mm512_sub_pd(on1_head, _mm512_mul_pd(on1_damp, q1));
+    if constexpr (limited) stopped = _mm512_cmp_pd_mask(h1, load(rows.vapour[i]), _CMP_LT_OQ) != 0;
+    if (!stopped) {
+      store(head[i], h1);
+      store(flow[i], q1);
+      store(head_max[i], _mm512_maskz_max_pd(all, h1, load(head_max[i])));
+      store(head_min[i], _mm512_maskz_min_pd(all, h1, load(head_min[i])));
+      ++i;
+    }
+  }
+  if (!stopped) return last;
   store(on1.head, on1_head);
   store(on1.impedance, on1_damp);
   store(on2.head, on2_head);

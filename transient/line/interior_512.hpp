@@ -12,8 +12,8 @@ namespace headband::transient {
 [[nodiscard]] bool has_512();
 
 /// Rows without cavities from 1 on, two by two, with envelopes; quadratic friction, no fittings with a place, all lanes
-/// of the same reach count. Returns the first row of a pair in which a row fell below its limit (nothing stored there),
-/// or the last pair's end.
+/// of the same reach count. Returns the last row's index when all are done, else the first row of a pair in which a row
+/// fell below its limit (nothing stored there).
 /// @param limited   whether the limits are looked at
 /// @param on1, on2  out: heads and damps of the waves that leave the row before the returned one, and that row itself
 [[nodiscard]] int march_pairs_512(const Resistance<8>& r, const PipeRows<8>& rows, bool limited, Arriving<8>& on1,
