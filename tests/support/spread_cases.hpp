@@ -584,25 +584,186 @@ name = "pump"
 from = "sump"
 to = "header"
 curve = [["0 L/s", "70 m"], ["150 L/s", "60 m"], ["250 L/s", "40 m"]]
+efficiency = "82 %"
+speed = "1480 rpm"
+inertia_mr2 = "2 kg m2"
+shut_off_torque = "45 %"
 check_valve = { reverse_velocity = <<pump check_valve reverse_velocity|0.3 m/s>>, bore = <<pump check_valve bore|300 mm>> }
+[[pipe]]
+name = "main"
+from = "header"
+to = "upper"
+length = "400 m"
+bore = "400 mm"
+wave_speed = "1000 m/s"
+friction_factor = 0.02
+[[basin]]
+name = "upper"
+level = "45 m"
+[[event]]
+at = "0 s"
+trip = "pump"
+[friction]
+scatter = "none"
+[surge]
+duration = "10 s"
+reaches = 80
+cavities = "off"
+grid_check = false
+[band]
+draws = 16
+answers = [{ highest_pressure = "header" }]
+)"},
+      {"band --surge", R"(
+[liquid]
+name = "water"
+temperature = "15 degC"
+[[basin]]
+name = "sump"
+level = "0 m"
+[[pump]]
+name = "pump"
+from = "sump"
+to = "header"
+curve = [["0 L/s", "70 m"], ["150 L/s", "60 m"], ["250 L/s", "40 m"]]
+efficiency = "82 %"
+speed = "1480 rpm"
+inertia_mr2 = "2 kg m2"
+shut_off_torque = "45 %"
+check_valve = { delay = <<pump check_valve delay|0.2 s>> }
+[[pipe]]
+name = "main"
+from = "header"
+to = "upper"
+length = "400 m"
+bore = "400 mm"
+wave_speed = "1000 m/s"
+friction_factor = 0.02
+[[basin]]
+name = "upper"
+level = "45 m"
+[[event]]
+at = "0 s"
+trip = "pump"
+[friction]
+scatter = "none"
+[surge]
+duration = "10 s"
+reaches = 80
+cavities = "off"
+grid_check = false
+[band]
+draws = 16
+answers = [{ highest_pressure = "header" }]
+)"},
+      {"band --surge", R"(
+[liquid]
+name = "water"
+temperature = "15 degC"
+[[basin]]
+name = "sump"
+level = "50 m"
+[[check_valve]]
+name = "flap"
+from = "sump"
+to = "header"
+k = 1.2
+bore = "400 mm"
+reverse_velocity = <<check_valve reverse_velocity|0.3 m/s>>
+[[pipe]]
+name = "main"
+from = "header"
+to = "upper"
+length = "400 m"
+bore = "400 mm"
+wave_speed = "1000 m/s"
+friction_factor = 0.02
+[[basin]]
+name = "upper"
+level = "45 m"
+[[event]]
+at = "0 s"
+basin = "sump"
+to = "30 m"
+over = "1 s"
+[friction]
+scatter = "none"
+[surge]
+duration = "10 s"
+reaches = 80
+cavities = "off"
+grid_check = false
+[band]
+draws = 16
+answers = [{ highest_pressure = "header" }]
+)"},
+      {"band --surge", R"(
+[liquid]
+name = "water"
+temperature = "15 degC"
+[[basin]]
+name = "sump"
+level = "50 m"
+[[check_valve]]
+name = "flap"
+from = "sump"
+to = "header"
+kv = "3000 m3/h"
+delay = <<check_valve delay|0.2 s>>
+[[pipe]]
+name = "main"
+from = "header"
+to = "upper"
+length = "400 m"
+bore = "400 mm"
+wave_speed = "1000 m/s"
+friction_factor = 0.02
+[[basin]]
+name = "upper"
+level = "45 m"
+[[event]]
+at = "0 s"
+basin = "sump"
+to = "30 m"
+over = "1 s"
+[friction]
+scatter = "none"
+[surge]
+duration = "10 s"
+reaches = 80
+cavities = "off"
+grid_check = false
+[band]
+draws = 16
+answers = [{ highest_pressure = "header" }]
+)"},
+      {"band --surge", R"(
+[liquid]
+name = "water"
+temperature = "15 degC"
+[[basin]]
+name = "sump"
+level = "0 m"
+[[pump]]
+name = "pump"
+from = "sump"
+to = "header"
+curve = [["0 L/s", "70 m"], ["150 L/s", "60 m"], ["250 L/s", "40 m"]]
 [[pump]]
 name = "second pump"
 from = "sump"
 to = "header"
 curve = [["0 L/s", "70 m"], ["150 L/s", "60 m"], ["250 L/s", "40 m"]]
-check_valve = { delay = <<pump check_valve delay|0.2 s>> }
 [[check_valve]]
 name = "slow"
 from = "header"
 to = "a"
 kv = "3000 m3/h"
-reverse_velocity = <<check_valve reverse_velocity|0.3 m/s>>
 [[check_valve]]
 name = "late"
 from = "a"
 to = "b"
 kv = "3000 m3/h"
-delay = <<check_valve delay|0.2 s>>
 [[pipe]]
 name = "main"
 from = "b"
