@@ -288,6 +288,10 @@ def grid_refusals():
           and "wave_speed_change" in refused.json["problems"][0]["hint"])
     allowed = Run(two(540, 'time_step = "0.1 s"', 'wave_speed_change = "9 %"'))
     check("8 % allowed: marches and warns", allowed.code == 0 and allowed.warned("wave speed", "second", "8.0 %"))
+    third = pipe("third", "out", "end", length=545) + valve("last", "end", "air", 'kv = "900 m3/h"')
+    worst = Run(two(530, 'time_step = "0.1 s"').replace("[friction]", third + "[friction]"))
+    check("6 % and 9 %: the further one is named", worst.code == 65 and "'third' by 9.0 %" in worst.words and "'second'" not in worst.words,
+          worst.words[:300])
     tighter = Run(two(515, 'time_step = "0.1 s"', 'wave_speed_change = "1 %"'))
     check("3 %, only 1 % allowed: refused", tighter.code == 65 and "more than 1.0 %" in tighter.words, tighter.words[:300])
     # an uncertain wave speed: at most 1 %, the step is halved until it fits
@@ -558,9 +562,48 @@ def audit():
           str(many.json.get("audit")))
 
 
+def lanes():
+    """Draws marched eight at a time give what each of them gives alone, to the bits: by replay."""
+    rows, file = suter()
+    table = whole(basin("sump", 0), basin("high", 50), pump("set", "sump", "header", 'head_scatter = "± 3 %"', TABLE_ONLY),
+                  pipe("rising", "header", "high", length=200, bore=0.6, more="friction_factor = 0.016"),
+                  '[[event]]\nat = "0.5 s"\ntrip = "set"\n', duration=8)
+    late = whole(basin("sump", 2), basin("high", 40, ""), pump("set", "sump", "header", 'check_valve = { delay = "0.3 s ± 50 %" }'),
+                 pipe("rising", "header", "high", length=400), '[[event]]\nat = "0.5 s"\ntrip = "set"\n', duration=10)
+    turning = late.replace('delay = "0.3 s ± 50 %"', 'reverse_velocity = "0.3 m/s ± 50 %", bore = "400 mm"')
+    flap = whole(basin("low", "50 m ± 0.5"), '[[check_valve]]\nname = "flap"\nfrom = "low"\nto = "inlet"\nkv = "9000 m3/h ± 5 %"\n'
+                 'delay = "0.5 s ± 50 %"\n', pipe("main", "inlet", "high", length=800), basin("high", 42),
+                 '[[event]]\nat = "0 s"\nbasin = "low"\nto = "34 m"\nover = "1 s ± 20 %"\n', duration=10)
+    short = whole(basin("tank", 60), pipe("main", "tank", "joint"), pipe("stub", "joint", "out", length=8, more='roughness = "0.1 mm x/ 2"'),
+                  END, '[[event]]\nat = "0 s"\nvalve = "end"\nto = "0 %"\nover = "5 s ± 20 %"\n', duration=10)
+    for name, text, place in (("table pump", table, "header"), ("delay", late, "header"), ("reverse velocity", turning, "header"),
+                              ("check valve in line", flap, "inlet"), ("rigid pipe", short, "out")):
+        text = text.replace("[surge]", "[surge]\ngrid_check = false") + (f'[band]\ndraws = 16\nanswers = [{{ highest_pressure = "{place}", name = "top" }}, '
+                                                                        f'{{ lowest_pressure = "{place}", name = "low" }}]\n')
+        with tempfile.TemporaryDirectory() as folder:
+            (pathlib.Path(folder) / "case.toml").write_text(text)
+            (pathlib.Path(folder) / "suter.csv").write_text(file)
+
+            def call(*words):
+                return subprocess.run([PROGRAM, *words, "--quiet"], cwd=folder, capture_output=True, text=True, timeout=300)
+            done = call("band", "--surge", "case.toml", "--out", "band.h5")
+            check(f"{name}: band", done.returncode == 0, done.stderr[:300])
+            if done.returncode:
+                continue
+            with h5py.File(pathlib.Path(folder) / "band.h5") as result:
+                values = result["bands/output_value"][:]
+            check(f"{name}: spreads", np.ptp(values[:, 0]) > 0 or np.ptp(values[:, 1]) > 0)
+            for draw in (0, 3, 13):
+                (pathlib.Path(folder) / "one.toml").write_text(call("replay", "band.h5", str(draw)).stdout)
+                one = call("surge", "one.toml", "--json", "--out", "one.h5", "-f")
+                alone = json.loads(one.stdout)["places"][place] if one.returncode == 0 else {}
+                check(f"{name}: draw {draw} alone", (alone.get("max_pressure_Pa"), alone.get("min_pressure_Pa")) == tuple(values[draw]),
+                      f"{alone.get('max_pressure_Pa')} {alone.get('min_pressure_Pa')} {values[draw]} {one.stderr[:200]}")
+
+
 def main():
     names = {"stays": stays, "in_line": in_line, "short_pipes": short_pipes, "grid_refusals": grid_refusals,
-             "table_pump": table_pump, "pumps": pumps, "check_valves": check_valves, "audit": audit}
+             "table_pump": table_pump, "pumps": pumps, "check_valves": check_valves, "audit": audit, "lanes": lanes}
     for name in sys.argv[2:] or names:
         print(name)
         try:

@@ -66,21 +66,29 @@ void fill(const GridRequest& r, double dt, Grid& g) {
   g.worst_change = std::max(0.0, worst_at(r, g, dt, g.worst_pipe));
 }
 
-// The first thing this grid may not do; `good` when it may march.
+// What this grid may not do, the wave speed furthest over its bound first; `good` when it may march.
 GridStatus judge(const GridRequest& r, Grid& g) {
+  GridStatus status = GridStatus::good;
+  double furthest = tie;
   for (std::size_t i = 0; i < r.pipes.size(); ++i) {
     const GridPipe& p = r.pipes[i];
-    if (g.long_pipe[i] && change_at(travel_time(p), g.time_step) > allowed_change(p) + tie) {
-      g.worst_pipe = static_cast<int>(i);
-      g.worst_change = change_at(travel_time(p), g.time_step);
-      g.allowed = allowed_change(p);
-      return p.uncertain ? GridStatus::uncertain_refused : GridStatus::change_refused;
-    }
-    if (g.reaches[i] == 0 && p.fastest_movement < 2.0 * g.time_step) {
+    if (!g.long_pipe[i]) continue;
+    const double change = change_at(travel_time(p), g.time_step), over = change - allowed_change(p);
+    // a certain wave speed is told before an uncertain one: a finer step is not tried for it
+    const bool before = status == GridStatus::uncertain_refused && !p.uncertain && over > tie;
+    if (!before && (over <= furthest || (status == GridStatus::change_refused && p.uncertain))) continue;
+    furthest = over;
+    g.worst_pipe = static_cast<int>(i);
+    g.worst_change = change;
+    g.allowed = allowed_change(p);
+    status = p.uncertain ? GridStatus::uncertain_refused : GridStatus::change_refused;
+  }
+  if (status != GridStatus::good) return status;
+  for (std::size_t i = 0; i < r.pipes.size(); ++i)
+    if (g.reaches[i] == 0 && r.pipes[i].fastest_movement < 2.0 * g.time_step) {
       g.worst_pipe = static_cast<int>(i);
       return GridStatus::rigid_refused;
     }
-  }
   return GridStatus::good;
 }
 

@@ -22,7 +22,7 @@ struct Meddler {
     if (row == at) {  // (g A / a^2) dH per reach, at the sections between both ends
       const auto& p = march.numbers().pipes[0];
       const double each = added / (p.most_reaches - 1) * p.impedance.number / march.numbers().time_step.number;
-      for (int k = 1; k < p.most_reaches; ++k) march.state().head[p.first_row + static_cast<std::size_t>(k)] += each;
+      for (int k = 1; k < p.most_reaches; ++k) march.state().head[p.first_row + static_cast<std::size_t>(k)] += base::Lanes<1>(each);
     }
     return true;
   }
