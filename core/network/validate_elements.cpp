@@ -393,6 +393,13 @@ void check_devices(const Case& c, ProblemList& problems) {
     const std::string path = "pump/" + pump.name;
     check_curve(pump, path, problems);
     check_quadrants(pump, path, problems);
+    if (pump.check_valve.kind == CheckValveKind::none && starts_at_rest(c, pump))
+      problems.add(pump.place,
+                   path + "/check_valve",
+                   "a pump that stands still at the start would let the line run back without a check valve",
+                   "none",
+                   "a check valve, or a pump that runs at the start",
+                   "write check_valve = \"ideal\"");
     if (pump.count < 1)
       problems.add(
           pump.place, path + "/count", "a set needs at least one pump", fmt::format("{}", pump.count), "1 or more", "");

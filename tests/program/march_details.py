@@ -438,6 +438,13 @@ def pumps():
                       duration=60))
     check("one after the other: both stand", turns.code == 65 or (turns.code == 0 and turns.series["set flow"][-1] == 0.0
           and turns.series["set flow"][np.searchsorted(turns.time, 19)] > 0.5 * running), turns.words[:300])
+    bare = Run(plant('check_valve = "none"', '[[event]]\nat = "2 s"\nstart = "set"\nover = "8 s"\n'))
+    check("at rest without a check valve: refused in words", bare.code == 65 and "would let the line run back" in bare.words, bare.words[:300])
+    blind = Run(plant('check_valve = "none"\ncharacteristic = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=30))
+    check("runs back by its forward curve: told", blind.code == 0 and blind.series["set flow"].min() < 0
+          and blind.warned("'set'", "forward curve"), str(blind.json.get("warnings")))
+    kept = Run(plant('characteristic = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=30))
+    check("never runs back: not told", kept.code == 0 and not kept.warned("forward curve"), str(kept.json.get("warnings")))
     again = Run(plant(events='[[event]]\nat = "1 s"\ntrip = "set"\n[[event]]\nat = "40 s"\nstart = "set"\nover = "10 s"\n', duration=140))
     check("tripped and started again", again.code == 0 and abs(again.series["set flow"][-1] - running) < 1e-3 * running
           and again.series["set flow"][np.searchsorted(again.time, 39)] == 0.0, again.words[:300] if again.code else

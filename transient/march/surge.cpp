@@ -217,6 +217,24 @@ void fill_extremes(const network::Plan& plan, const GridRun& asked, const std::o
   }
 }
 
+// Flow back through a pump whose forward curve is all that is known of it.
+void tell_pumps_beyond_their_curve(const network::Case& c, SurgeRun& run) {
+  const auto& t = run.transient;
+  for (const network::Pump& pump : c.pumps) {
+    if (pump.characteristic != network::Characteristic::none) continue;
+    const auto found = std::find(t.series_name.begin(), t.series_name.end(), pump.name + " flow");
+    if (found == t.series_name.end()) continue;
+    const std::size_t width = t.series_name.size();
+    for (std::size_t k = static_cast<std::size_t>(found - t.series_name.begin()); k < t.series.size(); k += width)
+      if (t.series[k] < 0.0) {
+        run.warnings.push_back("pump '" + pump.name +
+                               "': flow runs back through it, and without a four-quadrant characteristic its forward curve "
+                               "is followed there: not to be trusted");
+        break;
+      }
+  }
+}
+
 }  // namespace
 
 SurgeRun run_surge(const network::Case& c,
@@ -248,6 +266,7 @@ SurgeRun run_surge(const network::Case& c,
   fill_extremes(plan, asked, bounds, run);
   fill_answers(plan, values, steady, asked, bounds, run);
   asked.record.finish(asked.march, run);
+  tell_pumps_beyond_their_curve(c, run);
   if (run.audit.volume_residual_relative > 1e-2) {
     char text[200];
     std::snprintf(text, sizeof text, "volume audit: the residual is %.2g of the volume passed",
