@@ -14,6 +14,7 @@ namespace {
 
 #define HEADBAND_RUN_OPTIONS "--out --report --threads --units --quiet --json --no-color -f --gate"
 
+// clang-format off: a table, read row by row
 constexpr std::array verb_table{
     VerbWords{"new", "KIND [FILE]", 0, 2, "write a starter case; alone: list the kinds", "-f --quiet", "headband new valve"},
     VerbWords{"check", "CASE", 1, 1, "read a case and echo every value as understood",
@@ -40,6 +41,7 @@ constexpr std::array verb_table{
     VerbWords{"match", "CASE", 1, 1, "unknowns from a field log", "", "", false},
     VerbWords{"doubt", "CASE", 1, 1, "what to measure to settle a verdict", "", "", false},
 };
+// clang-format on
 
 constexpr std::array option_table{
     OptionWords{"--out", "FILE", "the file to write (default CASE-VERB.h5 here)"},

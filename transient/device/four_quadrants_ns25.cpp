@@ -14,6 +14,7 @@
 namespace headband::transient {
 namespace {
 
+// clang-format off: ten numbers a row, as in the source
 constexpr std::array<double, 89> head_curve = {
     0.634, 0.643, 0.646, 0.64, 0.629, 0.613, 0.595, 0.575, 0.552, 0.533,
     0.516, 0.505, 0.504, 0.51, 0.512, 0.522, 0.539, 0.559, 0.58, 0.601,
@@ -37,6 +38,7 @@ constexpr std::array<double, 89> torque_curve = {
     -1, -1.12, -1.25, -1.37, -1.49, -1.59, -1.66, -1.69, -1.77, -1.65,
     -1.59, -1.52, -1.42, -1.32, -1.23, -1.1, -0.98, -0.82, -0.684,
 };
+// clang-format on
 
 }  // namespace
 
