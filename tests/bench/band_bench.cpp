@@ -36,7 +36,8 @@ network::Case line_case(long long draws) {
   build.c.friction.scatter = test::exact(1.0, Dimension::factor);
   build.c.friction.scatter.spread = base::Normal{0.05};
   build.draw_off("out", "end", flow);
-  build.answer(network::AnswerKind::pressure_drop, "drop", {CaseBuilder::at_place("source"), CaseBuilder::at_place("end")});
+  build.answer(
+      network::AnswerKind::pressure_drop, "drop", {CaseBuilder::at_place("source"), CaseBuilder::at_place("end")});
   build.c.band.draws = draws;
   build.c.band.design = network::Design::plain;
   build.c.band.seed = 42;
@@ -115,7 +116,12 @@ void line_product(benchmark::State& state) {
   state.counters["check_worst"] = worst;
   state.SetItemsProcessed(state.iterations() * state.range(0));
 }
-BENCHMARK(line_product)->Arg(1000000)->Arg(2000000)->Arg(4000000)->MeasureProcessCPUTime()->Unit(benchmark::kMillisecond);
+BENCHMARK(line_product)
+    ->Arg(1000000)
+    ->Arg(2000000)
+    ->Arg(4000000)
+    ->MeasureProcessCPUTime()
+    ->Unit(benchmark::kMillisecond);
 
 /// The sampled closing valve of the surge benchmarks on 16 reaches.
 network::Case peak_case(network::Design design, std::uint64_t seed) {
@@ -153,7 +159,8 @@ void design_worth(benchmark::State& state) {
     options.surge = true;
     const auto outcome = montecarlo::run_band(c, plan, central, options);
     const auto& a = outcome.bands.answers[0];
-    const auto high = std::ranges::find_if(a.quantiles, [](const auto& q) { return q.probability > 0.974 && q.probability < 0.976; });
+    const auto high =
+        std::ranges::find_if(a.quantiles, [](const auto& q) { return q.probability > 0.974 && q.probability < 0.976; });
     return std::array{a.mean, high->value};
   };
   constexpr std::uint64_t repeats = 24;

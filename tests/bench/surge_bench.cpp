@@ -3,7 +3,8 @@
 // Sampled surge: one pipe, a closing valve, other friction, wave speed and stroke in each draw; product and plain loop
 // in one run. Every figure comes with the distance of its own peaks from the plain loop's peaks of the same draws (over
 // 1e-9 relative the figure is refused).
-//   bench_surge --benchmark_repetitions=7 --benchmark_report_aggregates_only=true --benchmark_enable_random_interleaving=true
+//   bench_surge --benchmark_repetitions=7 --benchmark_report_aggregates_only=true
+//   --benchmark_enable_random_interleaving=true
 #include "core/steady/steady.hpp"
 #include "montecarlo/propagate/draws.hpp"
 #include "montecarlo/propagate/model.hpp"
@@ -47,7 +48,8 @@ network::Case valve_case(int reaches, Friction friction) {
   auto& surge = build.surge(8.0, reaches);
   surge.cavities = network::Cavities::off;
   surge.grid_check = false;
-  surge.friction_in_time = friction == Friction::fixed ? network::FrictionInTime::fixed : network::FrictionInTime::reynolds;
+  surge.friction_in_time =
+      friction == Friction::fixed ? network::FrictionInTime::fixed : network::FrictionInTime::reynolds;
   build.answer(network::AnswerKind::highest_pressure, "peak", {CaseBuilder::at_place("end")});
   return build.finish();
 }
@@ -72,8 +74,16 @@ struct Draws {
       network::realise<8>(c, plan, block, values);
       for (int lane = 0; lane < 8; ++lane) {
         const auto& pipe = values.pipes[0];
-        runs.push_back({reaches, pipe.length[lane], pipe.area[lane], pipe.bore[lane], values.gravity[lane],
-                        pipe.wave_speed_given[lane], 50.0, c.valves[0].flow.value, values.events[0].over[lane], 8.0,
+        runs.push_back({reaches,
+                        pipe.length[lane],
+                        pipe.area[lane],
+                        pipe.bore[lane],
+                        values.gravity[lane],
+                        pipe.wave_speed_given[lane],
+                        50.0,
+                        c.valves[0].flow.value,
+                        values.events[0].over[lane],
+                        8.0,
                         kinematic_viscosity});
         scatter.push_back(pipe.friction_scatter[lane]);
       }
@@ -88,11 +98,14 @@ struct Draws {
       const double rough = roughness / runs[i].bore;
       if (friction == Friction::fixed) {
         const double factor = scatter_median * s;
-        peaks.push_back(bench::plain_peak(runs[i], [factor](double) { return bench::PlainFriction{factor, 0.0}; }, sections));
+        peaks.push_back(
+            bench::plain_peak(runs[i], [factor](double) { return bench::PlainFriction{factor, 0.0}; }, sections));
       } else if (friction == Friction::haaland) {
-        peaks.push_back(bench::plain_peak(runs[i], [&](double q) { return haaland(reynolds * std::fabs(q), rough, s); }, sections));
+        peaks.push_back(
+            bench::plain_peak(runs[i], [&](double q) { return haaland(reynolds * std::fabs(q), rough, s); }, sections));
       } else {
-        peaks.push_back(bench::plain_peak(runs[i], [&](double q) { return colebrook(reynolds * std::fabs(q), rough, s); }, sections));
+        peaks.push_back(bench::plain_peak(
+            runs[i], [&](double q) { return colebrook(reynolds * std::fabs(q), rough, s); }, sections));
       }
     }
     return peaks;
@@ -110,7 +123,8 @@ struct Draws {
     if (re >= 4000.0) return f;
     const double t = (re - 2100.0) / 1900.0, w = t * t * (3.0 - 2.0 * t), dw = 6.0 * t * (1.0 - t) * re / 1900.0;
     const double factor = (1.0 - w) * laminar + w * f.factor;
-    return {factor, 0.5 * (w * f.factor * 2.0 * f.half_slope - (1.0 - w) * laminar + dw * (f.factor - laminar)) / factor};
+    return {factor,
+            0.5 * (w * f.factor * 2.0 * f.half_slope - (1.0 - w) * laminar + dw * (f.factor - laminar)) / factor};
   }
   static bench::PlainFriction haaland(double re, double rough, double s) {
     return joined(re, s, [rough](double r) {
@@ -132,7 +146,10 @@ struct Draws {
   }
 };
 
-void report(benchmark::State& state, const std::vector<double>& peaks, const std::vector<double>& plain, long long sections) {
+void report(benchmark::State& state,
+            const std::vector<double>& peaks,
+            const std::vector<double>& plain,
+            long long sections) {
   double worst = 0.0, mean = 0.0;
   for (std::size_t i = 0; i < peaks.size(); ++i) {
     worst = std::max(worst, std::fabs(peaks[i] / plain[i] - 1.0));
@@ -141,7 +158,8 @@ void report(benchmark::State& state, const std::vector<double>& peaks, const std
   if (!(worst <= 1e-9)) state.SkipWithError("the peaks are not those of the plain loop");
   state.counters["check_mean_peak_m"] = mean;
   state.counters["check_worst"] = worst;
-  state.counters["draws_per_s"] = benchmark::Counter(static_cast<double>(peaks.size()), benchmark::Counter::kIsIterationInvariantRate);
+  state.counters["draws_per_s"] =
+      benchmark::Counter(static_cast<double>(peaks.size()), benchmark::Counter::kIsIterationInvariantRate);
   state.SetItemsProcessed(state.iterations() * sections);
 }
 
@@ -191,7 +209,8 @@ void surge_threads(benchmark::State& state) {
     block.resize(c.unknowns.size());
     for (std::size_t u = 0; u < block.size(); ++u)
       for (int lane = 0; lane < 8; ++lane) {
-        const double x = (static_cast<double>(first + lane) + 0.5) * (u % 2 == 0 ? 0.6180339887498949 : 0.7548776662466927);
+        const double x =
+            (static_cast<double>(first + lane) + 0.5) * (u % 2 == 0 ? 0.6180339887498949 : 0.7548776662466927);
         block[u].set(lane, x - std::floor(x));
       }
   };

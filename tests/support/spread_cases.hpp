@@ -198,7 +198,8 @@ scatter = "none"
 draws = 16
 answers = [{ head = "end" }]
 )"},
-      // ---------------------------------------------------------------------------------- steady: valves, pumps, checks
+      // ---------------------------------------------------------------------------------- steady: valves, pumps,
+      // checks
       {"band", R"(
 [liquid]
 name = "water"
@@ -286,7 +287,8 @@ scatter = "none"
 draws = 16
 answers = [{ flow = "main" }, { head = "d" }]
 )"},
-      // ------------------------------------------------------------------------------------- march: wave speed, strokes
+      // ------------------------------------------------------------------------------------- march: wave speed,
+      // strokes
       {"band --surge", R"(
 [liquid]
 name = "oil"
@@ -858,7 +860,8 @@ cavities = "off"
 draws = 16
 answers = [{ lowest_pressure = "header" }]
 )"},
-      // ------------------------------------------------------------------- sections of verbs that are refused as a whole
+      // ------------------------------------------------------------------- sections of verbs that are refused as a
+      // whole
       {"fastest", R"(
 [liquid]
 name = "water"

@@ -22,7 +22,8 @@ double positive(std::mt19937_64& bits, int i) {
 /// |a - b| in units of the last place of b, where b is the better (long double) value.
 double ulps(double a, long double b) {
   const auto scale = std::fabs(b) * static_cast<long double>(ulp);
-  return scale == 0.0L ? (a == 0.0 ? 0.0 : 1e300) : static_cast<double>(std::fabs(static_cast<long double>(a) - b) / scale);
+  return scale == 0.0L ? (a == 0.0 ? 0.0 : 1e300)
+                       : static_cast<double>(std::fabs(static_cast<long double>(a) - b) / scale);
 }
 
 bool same_bits(double a, double b) { return std::bit_cast<std::uint64_t>(a) == std::bit_cast<std::uint64_t>(b); }
@@ -59,7 +60,8 @@ TEST(Elementary, PowMatchesLongDouble) {
     const double reach = std::fabs(std::log(x));
     const double y = i % 2 == 0 ? power(bits) : small(bits) * 690.0 / std::max(reach, 1e-3);
     if (std::fabs(y) * reach > 690.0) continue;
-    const double off = ulps(pow(Lanes<1>(x), y).number, std::pow(static_cast<long double>(x), static_cast<long double>(y)));
+    const double off =
+        ulps(pow(Lanes<1>(x), y).number, std::pow(static_cast<long double>(x), static_cast<long double>(y)));
     worst = std::max(worst, off);
     if (std::fabs(y) * reach < 20.0) worst_usual = std::max(worst_usual, off);
   }

@@ -3,8 +3,8 @@
 
 #include "tests/core/base/csv.hpp"
 
-#include <boost/math/distributions/normal.hpp>
 #include <gtest/gtest.h>
+#include <boost/math/distributions/normal.hpp>
 
 #include <bit>
 #include <cmath>
@@ -79,17 +79,17 @@ TEST(Spread, NormalProbabilityUndoesQuantile) {
 
 TEST(Spread, CutNormalMatchesBoostOnBothSides) {
   const boost::math::normal parent(10.0, 2.0);
-  for (const Cut cut : {Cut{7.0, 12.0}, Cut{13.0, 20.0}, Cut{-5.0, 3.0}, Cut{11.0, std::numeric_limits<double>::infinity()}}) {
+  for (const Cut cut :
+       {Cut{7.0, 12.0}, Cut{13.0, 20.0}, Cut{-5.0, 3.0}, Cut{11.0, std::numeric_limits<double>::infinity()}}) {
     const double low_below = boost::math::cdf(parent, cut.low);
     const double low_above = boost::math::cdf(boost::math::complement(parent, cut.low));
     const bool endless = std::isinf(cut.high);
     const double high_above = endless ? 0.0 : boost::math::cdf(boost::math::complement(parent, cut.high));
     const double high_below = endless ? 1.0 : boost::math::cdf(parent, cut.high);
     for (double s = 0.001; s < 1.0; s += 0.0173) {
-      const double expected = cut.low > 10.0
-                                  ? boost::math::quantile(boost::math::complement(
-                                        parent, high_above + (1.0 - s) * (low_above - high_above)))
-                                  : boost::math::quantile(parent, low_below + s * (high_below - low_below));
+      const double expected = cut.low > 10.0 ? boost::math::quantile(boost::math::complement(
+                                                   parent, high_above + (1.0 - s) * (low_above - high_above)))
+                                             : boost::math::quantile(parent, low_below + s * (high_below - low_below));
       EXPECT_NEAR(at(Normal{2.0}, cut, 10.0, s), expected, 1e-12 * std::fabs(expected));
     }
   }
@@ -131,7 +131,8 @@ TEST(Spread, QuantilesRiseAndStayInsideTheCut) {
                                    {"e", Even{1.0, 3.0}, {1.5, 2.9}, 2.0}};
   for (const Sample& s : all) {
     double before = -infinite;
-    for (const double score : {1e-16, 1e-9, 0.001, 0.1, 0.4999, 0.5, 0.5001, 0.9, 0.99999, 1.0 - 1e-12, 1.0 - 1.2e-16}) {
+    for (const double score :
+         {1e-16, 1e-9, 0.001, 0.1, 0.4999, 0.5, 0.5001, 0.9, 0.99999, 1.0 - 1e-12, 1.0 - 1.2e-16}) {
       const double x = at(s.spread, s.cut, s.central, score);
       EXPECT_GE(x, s.cut.low) << s.name;
       EXPECT_LE(x, s.cut.high) << s.name;
@@ -150,10 +151,12 @@ TEST(Spread, EightLanesGiveTheBitsOfOne) {
   for (const Sample& s : all) {
     for (int i = 0; i < 2000; ++i) {
       Lanes<8> score;
-      for (int lane = 0; lane < 8; ++lane) score.set(lane, lane == 0 ? std::pow(even(bits), 30.0) + 1e-300 : even(bits));
+      for (int lane = 0; lane < 8; ++lane)
+        score.set(lane, lane == 0 ? std::pow(even(bits), 30.0) + 1e-300 : even(bits));
       const Lanes<8> x = quantile<8>(s.spread, s.cut, s.central, score);
       for (int lane = 0; lane < 8; ++lane) {
-        ASSERT_EQ(std::bit_cast<std::uint64_t>(x[lane]), std::bit_cast<std::uint64_t>(at(s.spread, s.cut, s.central, score[lane])));
+        ASSERT_EQ(std::bit_cast<std::uint64_t>(x[lane]),
+                  std::bit_cast<std::uint64_t>(at(s.spread, s.cut, s.central, score[lane])));
       }
     }
   }

@@ -122,7 +122,8 @@ TEST(Histories, heads_carry_the_bands_of_their_draws_behind_them) {
   ASSERT_EQ(heads.y.shown, Shown::head);
   ASSERT_EQ(heads.curves.size(), 9u);
   ASSERT_EQ(heads.fills.size(), 3u);
-  EXPECT_NE(heads.message.find("Shaded: 2.5\u00a0% to 97.5\u00a0% of the draws, at each of "), std::string::npos) << heads.message;
+  EXPECT_NE(heads.message.find("Shaded: 2.5\u00a0% to 97.5\u00a0% of the draws, at each of "), std::string::npos)
+      << heads.message;
   for (std::size_t k = 0; k < 3; ++k) {
     const Fill& fill = heads.fills[k];
     const Curve& low = heads.curves[fill.lower];

@@ -96,8 +96,10 @@ TEST(Csv, BandsOverTimeAndTheWholeLineStatement) {
   const auto rows = rows_of(csv(study).at("history-bands.csv"));
   const std::size_t times = b.history_time.size();
   ASSERT_EQ(rows.size(), 3 * times + 1);
-  EXPECT_EQ(rows[0], (std::vector<std::string>{"place", "time [s]", "head, quantile 0.025 [m]", "head, quantile 0.5 [m]",
-                                               "head, quantile 0.975 [m]"}));
+  EXPECT_EQ(
+      rows[0],
+      (std::vector<std::string>{
+          "place", "time [s]", "head, quantile 0.025 [m]", "head, quantile 0.5 [m]", "head, quantile 0.975 [m]"}));
   const auto& row = rows[1 + times + 5];  // second place, sixth time
   EXPECT_EQ(row[0], b.history_probe_name[1]);
   EXPECT_EQ(std::strtod(row[1].c_str(), nullptr), b.history_time[5]);

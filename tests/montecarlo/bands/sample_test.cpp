@@ -15,7 +15,9 @@ namespace {
 std::vector<double> normals(int n, std::uint64_t seed) {
   std::vector<double> x;
   for (int i = 0; i < n; ++i) {
-    x.push_back(base::normal_quantile(base::Lanes<1>(score_of_bits(philox_bits(seed, static_cast<std::uint64_t>(i), 1)))).number);
+    x.push_back(
+        base::normal_quantile(base::Lanes<1>(score_of_bits(philox_bits(seed, static_cast<std::uint64_t>(i), 1))))
+            .number);
   }
   return x;
 }

@@ -111,7 +111,8 @@ TEST(Verdict, AnyOfSeveralBoundsIsCountedByDraw) {
   EXPECT_DOUBLE_EQ(j.lower, probability_at_least(3, 9, 0.9));
   EXPECT_EQ(j.verdict, Verdict::none);
   // one part alone says what `judge` says
-  const Judged one = judge_any(std::span(parts).first(1), status, 0.9), same = judge(parts[0].bound, high, status, 0.2, 0.5, 0.9);
+  const Judged one = judge_any(std::span(parts).first(1), status, 0.9),
+               same = judge(parts[0].bound, high, status, 0.2, 0.5, 0.9);
   EXPECT_EQ(one.broken, same.broken);
   EXPECT_EQ(one.lower, same.lower);
   EXPECT_EQ(one.upper, same.upper);

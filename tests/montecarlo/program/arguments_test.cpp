@@ -13,7 +13,8 @@ namespace {
 TEST(WholeNumber, TakesPlainDigitsInRangeAlone) {
   EXPECT_EQ(whole_number("--n", "0", 0, 9), 0U);
   EXPECT_EQ(whole_number("--n", "18446744073709551615", 0, 18446744073709551615ULL), 18446744073709551615ULL);
-  for (const char* text : {"", " 1", "1 ", "+1", "-1", "01", "1.0", "1e3", "0x1", "18446744073709551616", "nan", "１"}) {
+  for (const char* text :
+       {"", " 1", "1 ", "+1", "-1", "01", "1.0", "1e3", "0x1", "18446744073709551616", "nan", "１"}) {
     EXPECT_THROW(static_cast<void>(whole_number("--n", text, 0, 18446744073709551615ULL)), UsageError) << text;
   }
   EXPECT_THROW(static_cast<void>(whole_number("--n", "10", 0, 9)), UsageError);

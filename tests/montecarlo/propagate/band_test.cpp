@@ -49,7 +49,8 @@ duration = "1 s"
 cavities = "off"
 [band]
 answers = [{ pressure_drop = ["end", "source"], name = "rise" }, { head = "end", name = "head at the end" }]
-)" + band + "\n" + more;
+)" + band +
+         "\n" + more;
 }
 
 struct Ready {
@@ -67,8 +68,10 @@ Ready ready(const std::string& text) {
   steady::SteadySolver solver(r.c, r.plan);
   steady::SteadyState<1> state;
   solver.solve<1>(values, state);
-  for (const auto& a : r.plan.answers) r.central.answer_value.push_back(steady::answer<1>(r.plan, values, state, a).number);
-  for (const auto& l : r.plan.limits) r.central.limit_value.push_back(steady::answer<1>(r.plan, values, state, l.subject).number);
+  for (const auto& a : r.plan.answers)
+    r.central.answer_value.push_back(steady::answer<1>(r.plan, values, state, a).number);
+  for (const auto& l : r.plan.limits)
+    r.central.limit_value.push_back(steady::answer<1>(r.plan, values, state, l.subject).number);
   r.central.answer_grid_bound.assign(r.plan.answers.size(), 0.0);
   r.central.limit_grid_bound.assign(r.plan.limits.size(), 0.0);
   return r;
@@ -99,7 +102,8 @@ TEST(Band, AnswersHoldTogether) {
   }
   EXPECT_EQ(rise.modes, 1);
   // input and output rows agree with the draw alone: head at the end by the same physics
-  ASSERT_EQ(out.bands.input_name, (std::vector<std::string>{"liquid viscosity", "main bore", "main roughness", "friction scatter"}));
+  ASSERT_EQ(out.bands.input_name,
+            (std::vector<std::string>{"liquid viscosity", "main bore", "main roughness", "friction scatter"}));
   ASSERT_EQ(out.bands.output_value.size(), 2U * 4096U);
   ASSERT_EQ(out.bands.input_value.size(), 4U * 4096U);
   for (const long long draw : {0LL, 17LL, 4095LL}) {
@@ -272,7 +276,8 @@ TEST(Band, GridBoundOfTheCentralRunMovesTheCounts) {
 
 TEST(Band, ImpossibleCorrelationsAreRefused) {
   const std::string together =
-      "[together]\n\"main bore, main roughness\" = 0.9\n\"main roughness, friction scatter\" = 0.9\n\"main bore, friction scatter\" = -0.9\n";
+      "[together]\n\"main bore, main roughness\" = 0.9\n\"main roughness, friction scatter\" = 0.9\n\"main bore, "
+      "friction scatter\" = -0.9\n";
   const Ready r = ready(words("draws = 64", together));
   EXPECT_THROW(static_cast<void>(band(r)), base::InputError);
 }
@@ -315,11 +320,13 @@ reaches = 16
 [band]
 seed = 3
 answers = [{ highest_pressure = "end", name = "peak" }, { flow = "main", name = "flow" }]
-)" + band + "\n" + more;
+)" + band +
+         "\n" + more;
 }
 
 TEST(Band, MarchedDrawsAreTheSameForAnyThreadsAndResume) {
-  const Ready r = ready(surge_words("draws = 256", "[[limit]]\nname = \"peak\"\nhighest_pressure = \"9 bar g\"\nwhere = \"end\"\n"));
+  const Ready r = ready(
+      surge_words("draws = 256", "[[limit]]\nname = \"peak\"\nhighest_pressure = \"9 bar g\"\nwhere = \"end\"\n"));
   const auto one = band(r, {.surge = true, .threads = 1});
   EXPECT_EQ(one.bands.failed, 0);
   EXPECT_TRUE(one.bands.surged);
@@ -389,7 +396,8 @@ TEST(Band, HistoriesOfMarchedDrawsLieWithinTheirEnvelopes) {
   EXPECT_EQ(b.history_time.front(), 0.0);
   EXPECT_EQ(b.history_time.back(), 6.0);
   const std::size_t n = b.profile_share.size();
-  const auto end = static_cast<std::size_t>(std::ranges::find(b.history_probe_name, "end") - b.history_probe_name.begin());
+  const auto end =
+      static_cast<std::size_t>(std::ranges::find(b.history_probe_name, "end") - b.history_probe_name.begin());
   ASSERT_LT(end, probes);
   double highest = -1e9;
   for (std::size_t i = 0; i < cells; ++i) {
@@ -443,7 +451,10 @@ rating = "7.35 bar g ± 5 %"
   for (std::size_t run = 0; run < out.bands.run_status.size(); ++run) {
     if (out.bands.run_status[run] != 0) continue;
     draws += 1.0;
-    broken += out.bands.limit_value[2 * run] > r.plan.limits[0].bound || out.bands.limit_value[2 * run + 1] > r.plan.limits[1].bound ? 1.0 : 0.0;
+    broken += out.bands.limit_value[2 * run] > r.plan.limits[0].bound ||
+                      out.bands.limit_value[2 * run + 1] > r.plan.limits[1].bound
+                  ? 1.0
+                  : 0.0;
   }
   EXPECT_EQ(any.probability, broken / draws);
   EXPECT_GT(any.probability, std::max(first, second));
@@ -468,7 +479,9 @@ TEST(Band, FittedSharesOfCorrelatedInputs) {
   const Ready r = ready(surge_words("draws = 2048", "[together]\n\"tank level, gate flow\" = 0.8\n"));
   const auto out = band(r, {.surge = true});
   const auto& shares = out.bands.answers[1].sensitivity;  // flow = gate flow
-  const auto of = [&](const std::string& name) { return *std::ranges::find(shares, name, &answers::SensitivityAnswer::input); };
+  const auto of = [&](const std::string& name) {
+    return *std::ranges::find(shares, name, &answers::SensitivityAnswer::input);
+  };
   const double rho = 2.0 * std::sin(M_PI * 0.8 / 6.0);
   EXPECT_NEAR(of("gate flow").first, 1.0, 0.01);
   EXPECT_NEAR(of("gate flow").total, 1.0 - rho * rho, 0.03);  // the level tells the rest

@@ -107,7 +107,8 @@ TEST(Draws, ExceptionsEndInFailedDrawsAndAComplaint) {
   EXPECT_EQ(summary.done, 160);
   for (long long first = 0; first < 160; first += 8) {
     const bool broke = sampler.draw(first)[0].number > 0.5;
-    for (long long lane = 0; lane < 8; ++lane) EXPECT_EQ(table.status[static_cast<std::size_t>(first + lane)], broke ? 2 : 0);
+    for (long long lane = 0; lane < 8; ++lane)
+      EXPECT_EQ(table.status[static_cast<std::size_t>(first + lane)], broke ? 2 : 0);
   }
 }
 

@@ -180,8 +180,7 @@ std::vector<double> answers_of_run(const network::Case& c, bool surge) {
   solver.solve(values, state);
   if (surge) return transient::run_surge(c, plan, values, state).answer_value;
   std::vector<double> answers;
-  for (const auto& answer : plan.answers)
-    answers.push_back(steady::answer<1>(plan, values, state, answer).number);
+  for (const auto& answer : plan.answers) answers.push_back(steady::answer<1>(plan, values, state, answer).number);
   return answers;
 }
 
@@ -249,7 +248,8 @@ TEST(SpreadOfEachKey, AFixedTimeStepWarnsThatItRoundsAnUncertainWaveSpeed) {
       const auto reading = casefile::read_text("spread.toml", text, "");
       ASSERT_TRUE(reading.problems.empty()) << words_of(reading.problems);
       const auto warnings = band_of(reading.value, true).warnings;
-      const bool told = std::ranges::any_of(warnings, [](const std::string& w) { return w.starts_with("time_step is given: the wave speed of main"); });
+      const bool told = std::ranges::any_of(
+          warnings, [](const std::string& w) { return w.starts_with("time_step is given: the wave speed of main"); });
       EXPECT_EQ(told, speed) << markers[i].key;
     }
   }

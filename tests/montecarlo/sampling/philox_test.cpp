@@ -18,10 +18,13 @@ TEST(Philox, MatchesKnownAnswers) {
   int checked = 0;
   for (const auto& row : test::reference_rows("uq_philox4x32_vectors.csv")) {
     ASSERT_EQ(row[0], "10");
-    const PhiloxWords out = philox({word(row[1]), word(row[2]), word(row[3]), word(row[4])}, {word(row[5]), word(row[6])});
+    const PhiloxWords out =
+        philox({word(row[1]), word(row[2]), word(row[3]), word(row[4])}, {word(row[5]), word(row[6])});
     for (std::size_t i = 0; i < 4; ++i) EXPECT_EQ(out[i], word(row[7 + i])) << row[11];
     // the same answer through (seed, draw, name)
-    const auto join = [&](std::size_t low) { return static_cast<std::uint64_t>(word(row[low + 1])) << 32 | word(row[low]); };
+    const auto join = [&](std::size_t low) {
+      return static_cast<std::uint64_t>(word(row[low + 1])) << 32 | word(row[low]);
+    };
     EXPECT_EQ(philox_bits(join(5), join(1), join(3)), join(7));
     ++checked;
   }

@@ -20,7 +20,8 @@ network::Case case_of(const std::vector<std::string>& names) {
   return c;
 }
 
-constexpr network::Design designs[] = {network::Design::plain, network::Design::latin_hypercube, network::Design::sobol};
+constexpr network::Design designs[] = {
+    network::Design::plain, network::Design::latin_hypercube, network::Design::sobol};
 
 /// All scores, [unknown][draw].
 std::vector<std::vector<double>> all_scores(const Sampler& s) {
@@ -121,7 +122,8 @@ TEST(Sampler, RankCorrelationsAreThoseAsked) {
       EXPECT_NEAR(spearman(all[0], all[2]), rank, 4.0 / std::sqrt(static_cast<double>(n)));
       EXPECT_NEAR(spearman(all[0], all[1]), 0.0, 4.0 / std::sqrt(static_cast<double>(n)));
       // the margins stay even
-      EXPECT_NEAR(std::accumulate(all[2].begin(), all[2].end(), 0.0) / static_cast<double>(n), 0.5,
+      EXPECT_NEAR(std::accumulate(all[2].begin(), all[2].end(), 0.0) / static_cast<double>(n),
+                  0.5,
                   4.0 / std::sqrt(12.0 * static_cast<double>(n)));
     }
   }
@@ -139,7 +141,8 @@ TEST(Sampler, TwinIsIndependent) {
 
 TEST(Sampler, RefusesMoreUnknownsThanDimensions) {
   network::Case c;
-  for (int i = 0; i < 1834; ++i) c.unknowns.push_back({.name = std::to_string(i), .path = {}, .place = {}, .random = true});
+  for (int i = 0; i < 1834; ++i)
+    c.unknowns.push_back({.name = std::to_string(i), .path = {}, .place = {}, .random = true});
   EXPECT_THROW(Sampler(c, network::Design::sobol, 1, 16), base::InputError);
   EXPECT_NO_THROW(Sampler(c, network::Design::plain, 1, 16));
 }

@@ -7,8 +7,8 @@
 
 #include <gtest/gtest.h>
 
-#include <cmath>
 #include <fmt/format.h>
+#include <cmath>
 #include <functional>
 #include <map>
 #include <numbers>
@@ -59,8 +59,10 @@ Shares shares_of(const network::Case& c, const Function& f, long long n) {
   for (const double y : one) shares.mean += y / static_cast<double>(n);
   shares.variance = variance_of(one);
   for (std::size_t u = 0; u < d; ++u) {
-    const auto company = evaluate(f, n, d, [&](long long i, network::Scores<8>& s) { exchanger.block(i, u, Exchange::with_its_company, s); });
-    const auto alone = evaluate(f, n, d, [&](long long i, network::Scores<8>& s) { exchanger.block(i, u, Exchange::alone, s); });
+    const auto company = evaluate(
+        f, n, d, [&](long long i, network::Scores<8>& s) { exchanger.block(i, u, Exchange::with_its_company, s); });
+    const auto alone =
+        evaluate(f, n, d, [&](long long i, network::Scores<8>& s) { exchanger.block(i, u, Exchange::alone, s); });
     shares.first.push_back(first_share(other, company));
     shares.total.push_back(total_share(one, alone));
   }
@@ -167,7 +169,8 @@ TEST(Sensitivity, SharesOfTheReferencePressureDrop) {
   };
   const Shares s = shares_of(case_of(3), drop, 4096);
   std::map<std::string, double> expected;
-  for (const auto& row : test::reference_rows("montecarlo_pressure_drop_results.csv")) expected[row[1]] = std::stod(row[3]);
+  for (const auto& row : test::reference_rows("montecarlo_pressure_drop_results.csv"))
+    expected[row[1]] = std::stod(row[3]);
   const char* names[] = {"roughness", "viscosity", "correlation"};
   for (std::size_t i = 0; i < 3; ++i) {
     EXPECT_NEAR(s.first[i], expected.at(fmt::format("S_{}", names[i])), 0.01);

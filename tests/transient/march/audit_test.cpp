@@ -13,8 +13,8 @@ namespace {
 /// Keeps the sums of a march; at one row a volume is put into the first pipe by hand.
 struct Meddler {
   transient::AuditSums sums;
-  long long at = -1;    ///< row, -1: never
-  double added = 0.0;   ///< [m3]
+  long long at = -1;   ///< row, -1: never
+  double added = 0.0;  ///< [m3]
 
   void begin(transient::March<1>& march) { sums.begin(march); }
   bool step(transient::March<1>& march, long long row) {
@@ -22,7 +22,8 @@ struct Meddler {
     if (row == at) {  // (g A / a^2) dH per reach, at the sections between both ends
       const auto& p = march.numbers().pipes[0];
       const double each = added / (p.most_reaches - 1) * p.impedance.number / march.numbers().time_step.number;
-      for (int k = 1; k < p.most_reaches; ++k) march.state().head[p.first_row + static_cast<std::size_t>(k)] += base::Lanes<1>(each);
+      for (int k = 1; k < p.most_reaches; ++k)
+        march.state().head[p.first_row + static_cast<std::size_t>(k)] += base::Lanes<1>(each);
     }
     return true;
   }

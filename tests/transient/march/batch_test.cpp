@@ -24,8 +24,11 @@ class RandomCase {
     const int pipes = 1 + static_cast<int>(random_() % 5);
     for (int i = 0; i < pipes; ++i) {
       const int from = i == 0 ? -1 : static_cast<int>(random_() % static_cast<unsigned>(i));
-      auto& p = b.pipe("p" + std::to_string(i), from < 0 ? "B0" : "n" + std::to_string(from), "n" + std::to_string(i),
-                       uniform(200.0, 900.0), uniform(0.2, 0.6));
+      auto& p = b.pipe("p" + std::to_string(i),
+                       from < 0 ? "B0" : "n" + std::to_string(from),
+                       "n" + std::to_string(i),
+                       uniform(200.0, 900.0),
+                       uniform(0.2, 0.6));
       const double length = p.length.value;
       CaseBuilder::profile_point(p, 0.0, 0.0);
       CaseBuilder::profile_point(p, 0.37 * length, 0.0);
@@ -160,7 +163,8 @@ TEST(Batch, HistoriesAtSharedTimesAreThoseOfFullRuns) {
       const transient::SurgeRun run = transient::run_surge(c, plan, value, one);
       ASSERT_TRUE(run.completed) << seed;
       if (lane == 0)
-        for (std::size_t row = 0; row < run.transient.time.size() && run.transient.time[row] <= 8.0; row += 1 + seed % 4)
+        for (std::size_t row = 0; row < run.transient.time.size() && run.transient.time[row] <= 8.0;
+             row += 1 + seed % 4)
           times.push_back(run.transient.time[row]);
       transient::DrawAnswers<8> batch;
       transient::BatchMarcher(c, plan, times).march<8>(values, state, batch);
@@ -199,7 +203,8 @@ TEST(Batch, KeepsNoHistoriesUnlessAsked) {
   ASSERT_EQ(out.history.size(), 2 * probes);
   for (std::size_t k = 0; k < probes; ++k) {
     EXPECT_EQ(out.history[k].number, m.run.transient.probe_head[k]);  // the first steady state
-    EXPECT_EQ(out.history[probes + k].number, m.run.transient.probe_head[m.run.transient.probe_head.size() - probes + k]);
+    EXPECT_EQ(out.history[probes + k].number,
+              m.run.transient.probe_head[m.run.transient.probe_head.size() - probes + k]);
   }
 }
 
@@ -245,7 +250,8 @@ transient::PlainNetwork plain_of(const network::Case& c,
     transient::PlainValve v;
     v.from = device.from.index;
     v.air_head = values.places[device.from.at()].elevation.number;
-    const double full = state.valve_coefficient[0].number, to = values.events[0].to.number, over = values.events[0].over.number;
+    const double full = state.valve_coefficient[0].number, to = values.events[0].to.number,
+                 over = values.events[0].over.number;
     v.coefficient = [=](double t) { return full * (t < over ? 1.0 + (to - 1.0) * t / over : to); };
     net.valves.push_back(v);
   }
@@ -266,8 +272,7 @@ TEST(Batch, KernelsMeetThePlainOracle) {
     bool still = false;
     for (const auto& re : m.steady.reynolds) still = still || re.number < 1.0;
     if (still) continue;
-    const transient::PlainResult oracle =
-        transient::plain_march(plain_of(m.c, m.plan, m.values, m.steady, m.run));
+    const transient::PlainResult oracle = transient::plain_march(plain_of(m.c, m.plan, m.values, m.steady, m.run));
     std::size_t station = 0;
     for (const auto& pipe : oracle.head_max)
       for (const double h : pipe) {

@@ -14,8 +14,8 @@ namespace {
 
 constexpr double g = 9.80665;
 
-network::Pipe& level_pipe(CaseBuilder& b, const char* name, const char* from, const char* to, double length,
-                          double wave_speed, double area) {
+network::Pipe& level_pipe(
+    CaseBuilder& b, const char* name, const char* from, const char* to, double length, double wave_speed, double area) {
   auto& p = b.pipe(name, from, to, length, std::sqrt(4.0 * area / std::numbers::pi));
   CaseBuilder::profile_point(p, 0.0, 0.0);
   CaseBuilder::profile_point(p, length, 0.0);
@@ -85,7 +85,8 @@ TEST_P(Tracing, LinearStopMeetsEveryRow) {
   CaseBuilder b = stopping_network(tee, tee ? 1.0 : 1.5);
   const Marched m(b);
   int compared = 0;
-  for (const Row& r : reference_rows(tee ? "transient/T04c_linear_stoppage.csv" : "transient/T04a_linear_stoppage.csv")) {
+  for (const Row& r :
+       reference_rows(tee ? "transient/T04c_linear_stoppage.csv" : "transient/T04a_linear_stoppage.csv")) {
     const double t = std::stod(r[0]);
     const std::size_t row = m.row_at(t);
     if (row >= m.rows() || std::fabs(m.time(row) - t) > 1e-9) continue;
@@ -97,8 +98,9 @@ TEST_P(Tracing, LinearStopMeetsEveryRow) {
   }
   EXPECT_GT(compared, 200);
 }
-INSTANTIATE_TEST_SUITE_P(Reference, Tracing, ::testing::Bool(),
-                         [](const auto& kind) { return kind.param ? "T04c" : "T04a"; });
+INSTANTIATE_TEST_SUITE_P(Reference, Tracing, ::testing::Bool(), [](const auto& kind) {
+  return kind.param ? "T04c" : "T04a";
+});
 
 TEST(Network, OpeningAnOrificeAtOnce) {  // T09d: constant over each 2L/a
   ValveLine line({.length = 800.0, .wave_speed = 1000.0, .bore = 0.4, .level = 40.0, .flow = 0.0});
@@ -114,7 +116,8 @@ TEST(Network, OpeningAnOrificeAtOnce) {  // T09d: constant over each 2L/a
     if (middle > 32.0) continue;
     // the area is printed with 8 digits
     EXPECT_NEAR(m.head(m.row_at(middle), "end"), std::stod(r[3]), 1e-6 * std::stod(r[3])) << middle;
-    EXPECT_NEAR(m.flow(m.row_at(middle), "end") / (0.25 * std::numbers::pi * 0.16), std::stod(r[4]), 1e-6 * std::stod(r[4]));
+    EXPECT_NEAR(
+        m.flow(m.row_at(middle), "end") / (0.25 * std::numbers::pi * 0.16), std::stod(r[4]), 1e-6 * std::stod(r[4]));
     ++compared;
   }
   EXPECT_GT(compared, 15);
@@ -130,7 +133,8 @@ class Parting : public ::testing::TestWithParam<Column> {};
 TEST_P(Parting, CavityAtAClosedValve) {
   const Column p = GetParam();
   const double area = 0.25 * std::numbers::pi * p.bore * p.bore;
-  ValveLine line({.length = p.length, .wave_speed = p.wave_speed, .bore = p.bore, .level = p.level, .flow = p.speed * area});
+  ValveLine line(
+      {.length = p.length, .wave_speed = p.wave_speed, .bore = p.bore, .level = p.level, .flow = p.speed * area});
   line.b.c.liquid.vapour_pressure = exact(101325.0 + p.vapour * 1000.0 * g, Dimension::pressure);
   line.b.move_valve("valve", 0.0, 0.0, 0.0);
   line.b.surge(p.until, 128);
@@ -173,10 +177,10 @@ TEST_P(Parting, CavityAtAClosedValve) {
 INSTANTIATE_TEST_SUITE_P(
     Reference,
     Parting,
-    ::testing::Values(Column{"T08a", 1000.0, 1000.0, 0.4, 0.6, 30.0, -10.0, 7.3603007, 4.7203007, 2.0, 0.052209249,
-                             128.81703, 0.01},
-                      Column{"T08d", 60.0, 1250.0, 0.08, 0.9, 18.0, -9.8, 0.62904, 0.48997137, 0.096, 0.00044761231,
-                             181.28193, 0.01}),
+    ::testing::Values(
+        Column{"T08a", 1000.0, 1000.0, 0.4, 0.6, 30.0, -10.0, 7.3603007, 4.7203007, 2.0, 0.052209249, 128.81703, 0.01},
+        Column{
+            "T08d", 60.0, 1250.0, 0.08, 0.9, 18.0, -9.8, 0.62904, 0.48997137, 0.096, 0.00044761231, 181.28193, 0.01}),
     [](const auto& column) { return column.param.name; });
 
 }  // namespace

@@ -28,7 +28,8 @@ TEST(Peak, a_bend_between_two_rows_is_found_where_the_lines_meet) {
 }
 
 TEST(Peak, a_bend_on_a_row_and_a_plateau_hide_nothing) {
-  EXPECT_NEAR(sampled([](double t) { return t < 7.0 ? 3.0 * t : 21.0 - 5.0 * (t - 7.0); }).high.missed(1.0), 0.0, 1e-12);
+  EXPECT_NEAR(
+      sampled([](double t) { return t < 7.0 ? 3.0 * t : 21.0 - 5.0 * (t - 7.0); }).high.missed(1.0), 0.0, 1e-12);
   EXPECT_EQ(sampled([](double t) { return t < 7.5 ? 0.0 : 10.0; }).high.missed(1.0), 0.0);
   EXPECT_NEAR(sampled([](double t) { return std::fmin(3.0 * t, 22.0); }).high.missed(1.0), 0.0, 1e-12);
 }

@@ -1,9 +1,9 @@
 // SPDX-License-Identifier: MIT
 //
 // Pump trips, check valves, slow openings against rigid-column answers (T07, T09a, T09f, T09h).
+#include "transient/device/pump.hpp"
 #include "tests/core/base/csv.hpp"
 #include "tests/transient/march/run_case.hpp"
-#include "transient/device/pump.hpp"
 
 #include <gtest/gtest.h>
 
@@ -268,7 +268,8 @@ TEST(CheckValve, ShutsAtTheReverseVelocityOneRowLater) {  // T09h with a = 5000 
       EXPECT_NEAR(shut, 2.7433689, 0.02 * 2.7433689);
       const std::size_t row = m.row_at(shut);
       const double stopped = -m.flow(row - 1, "delivery") / area(0.3);
-      EXPECT_NEAR(m.head(row, "delivery") - m.head(row - 1, "delivery"), 5000.0 * stopped / g, 0.02 * 5000.0 * stopped / g);
+      EXPECT_NEAR(
+          m.head(row, "delivery") - m.head(row - 1, "delivery"), 5000.0 * stopped / g, 0.02 * 5000.0 * stopped / g);
     } else {
       EXPECT_NEAR(shut, 2.4985371, 0.0555 * 2.4985371);
     }

@@ -33,8 +33,10 @@ TEST(Surge, InstantStopIsTheSquareWave) {  // T01a
   ValveLine line({.length = 600.0, .wave_speed = 1200.0, .bore = 0.5, .level = 80.0, .flow = 1.5 * area(0.5)});
   line.b.move_valve("valve", 0.0, 0.0, 0.0);
   line.b.surge(6.0).cavities = network::Cavities::off;
-  line.b.c.show.places = {CaseBuilder::at_place("end"), CaseBuilder::on_pipe("line", 450.0),
-                          CaseBuilder::on_pipe("line", 300.0), CaseBuilder::on_pipe("line", 150.0)};
+  line.b.c.show.places = {CaseBuilder::at_place("end"),
+                          CaseBuilder::on_pipe("line", 450.0),
+                          CaseBuilder::on_pipe("line", 300.0),
+                          CaseBuilder::on_pipe("line", 150.0)};
   const Marched m(line.b);
   const double rise = 1200.0 * 1.5 / g, tolerance = 1e-6 * rise, dt = m.run.grid.time_step;
   EXPECT_NEAR(m.place("end").max_head, 80.0 + rise, tolerance);
@@ -70,7 +72,10 @@ class GateMovement : public ::testing::TestWithParam<Gate> {};
 
 TEST_P(GateMovement, FollowsTheChainEquations) {
   const Gate p = GetParam();
-  ValveLine line({.length = p.length, .wave_speed = 1200.0, .bore = p.bore, .level = p.level,
+  ValveLine line({.length = p.length,
+                  .wave_speed = 1200.0,
+                  .bore = p.bore,
+                  .level = p.level,
                   .flow = p.start * p.speed_at_full * area(p.bore)});
   line.valve->opening = exact(p.start, Dimension::share);
   line.b.move_valve("valve", 0.0, p.end, p.over);
@@ -110,8 +115,8 @@ TEST(Surge, ClosingTimesOfT01i) {
 
 // S1 of the practitioner's brief: invented gravity main, hand numbers 122.0 m = 11.95 bar at 3.11 s.
 ValveLine hollowmere(double over) {
-  ValveLine line({.length = 1800.0, .bore = 0.492, .level = 100.0, .flow = 0.1, .factor = -1.0,
-                  .kinematic_viscosity = 1.139e-6});
+  ValveLine line(
+      {.length = 1800.0, .bore = 0.492, .level = 100.0, .flow = 0.1, .factor = -1.0, .kinematic_viscosity = 1.139e-6});
   line.b.c.liquid.density = exact(999.1, Dimension::density);
   line.pipe->profile[0].second = exact(40.0, Dimension::length);
   line.pipe->profile[1].second = exact(40.0, Dimension::length);
@@ -164,10 +169,12 @@ TEST(Surge, EstablishmentOfFlow) {  // T09c: valve with one velocity head opened
 
 TEST(Surge, SecondOrderWhenTheStepIsHalved) {
   // a smooth movement: a swing of the valve; friction in every mode
-  for (const auto mode : {network::FrictionInTime::reynolds, network::FrictionInTime::fixed, network::FrictionInTime::linear}) {
+  for (const auto mode :
+       {network::FrictionInTime::reynolds, network::FrictionInTime::fixed, network::FrictionInTime::linear}) {
     std::vector<double> history[3];  // at the rows of the coarsest grid
     for (int k = 0; k < 3; ++k) {
-      ValveLine line({.length = 1000.0, .wave_speed = 1000.0, .bore = 0.2, .level = 60.0, .flow = 0.06, .factor = -1.0});
+      ValveLine line(
+          {.length = 1000.0, .wave_speed = 1000.0, .bore = 0.2, .level = 60.0, .flow = 0.06, .factor = -1.0});
       auto& e = line.b.move_valve("valve", 0.0, 1.0, 1.0);
       e.kind = network::EventKind::swing_valve;
       e.instant = false;
