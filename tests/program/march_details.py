@@ -443,6 +443,11 @@ def pumps():
     blind = Run(plant('check_valve = "none"\ncharacteristic = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=30))
     check("runs back by its forward curve: told", blind.code == 0 and blind.series["set flow"].min() < 0
           and blind.warned("'set'", "forward curve"), str(blind.json.get("warnings")))
+    # 1480 rev/min, 0.15 m3/s, 45 m: specific speed 33, a third from the table's 25; at 1110 rev/min 24.7
+    far = Run(plant('check_valve = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n'))
+    check("far from the table's specific speed: told", far.code == 0 and far.warned("'set'", "specific speed 33"), str(far.json.get("warnings")))
+    near = Run(plant('check_valve = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n').replace("1480 rpm", "1110 rpm"))
+    check("near it: not told", near.code == 0 and not near.warned("specific speed"), str(near.json.get("warnings")))
     kept = Run(plant('characteristic = "none"', '[[event]]\nat = "1 s"\ntrip = "set"\n', duration=30))
     check("never runs back: not told", kept.code == 0 and not kept.warned("forward curve"), str(kept.json.get("warnings")))
     again = Run(plant(events='[[event]]\nat = "1 s"\ntrip = "set"\n[[event]]\nat = "40 s"\nstart = "set"\nover = "10 s"\n', duration=140))

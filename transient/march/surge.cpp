@@ -9,6 +9,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstdio>
+#include <numbers>
 #include <optional>
 
 namespace headband::transient {
@@ -217,6 +218,30 @@ void fill_extremes(const network::Plan& plan, const GridRun& asked, const std::o
   }
 }
 
+// The built-in four-quadrant table is that of specific speed 25: told where a moving pump is further than a fifth from it.
+void tell_foreign_quadrants(const network::Plan& plan, const March<1>& march, SurgeRun& run) {
+  constexpr double table_speed = 25.0, told = 0.2;
+  const auto& n = march.numbers();
+  const auto& branches = march.layout().branches;
+  for (std::size_t j = 0; j < branches.size(); ++j) {
+    const bool first = j == 0 || branches[j - 1].device != branches[j].device;
+    if (branches[j].kind != BranchKind::pump || n.pump[j].quadrants != &quadrants_ns25() || !first) continue;
+    const bool moves = std::any_of(plan.events.begin(), plan.events.end(), [&](const network::EventPlan& e) {
+      return e.device == branches[j].device;
+    });
+    const PumpModel& pump = n.pump[j];
+    const double rev_per_min = pump.rated_speed * 30.0 / std::numbers::pi;
+    const double specific = rev_per_min * std::sqrt(pump.rated_flow) / std::pow(pump.rated_head, 0.75);
+    if (!moves || !(std::fabs(specific / table_speed - 1.0) > told)) continue;
+    char text[300];
+    std::snprintf(text, sizeof text,
+                  "pump '%s' has specific speed %.3g (rev/min, m3/s, m); its reverse flow is taken from the table of %.3g, "
+                  "the only one there is",
+                  plan.devices[at(branches[j].device)].name.c_str(), specific, table_speed);
+    run.warnings.emplace_back(text);
+  }
+}
+
 // Flow back through a pump whose forward curve is all that is known of it.
 void tell_pumps_beyond_their_curve(const network::Case& c, SurgeRun& run) {
   const auto& t = run.transient;
@@ -253,6 +278,7 @@ SurgeRun run_surge(const network::Case& c,
 
   GridRun asked(c, plan, values, steady, grid, layout, true);
   tell_jumps(plan, asked.march, run);
+  tell_foreign_quadrants(plan, asked.march, run);
   std::optional<GridRun> fine, finest;
   std::optional<Bounds> bounds;
   if (c.surge.grid_check && asked.finished()) {
