@@ -186,6 +186,7 @@ struct Bands {
   std::vector<double> history_probability;      ///< as profile_probability
   std::vector<double> history_time;             ///< [s], rows of the central run, at most 241
   std::vector<std::string> history_probe_name;  ///< as Transient::probe_name
+  long long history_draws = 0;                  ///< the bands over time rest on so many first draws, at most 4 096
   std::vector<double> history_head;             ///< row-major (probability, time, probe) [m]
   std::vector<double> run_history_head;         ///< as run_head_max: row-major (run, time, probe), perhaps the first runs alone [m]
   /// What holds for the line as a whole: statements, not limits, without a verdict. "any rated pipe": the chance that

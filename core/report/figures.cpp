@@ -233,9 +233,10 @@ class HistoryBands {
   }
   [[nodiscard]] bool any() const { return bands_ != nullptr; }
   [[nodiscard]] std::string words() const {
-    return fmt::format(" Shaded: {} to {} of the draws, at each of {} times by itself.",
+    return fmt::format(" Shaded: {} to {} of the {}, at each of {} times by itself.",
                        percent(bands_->history_probability.front()),
                        percent(bands_->history_probability.back()),
+                       bands_->history_draws < bands_->draws ? fmt::format("first {} draws", bands_->history_draws) : "draws",
                        bands_->history_time.size());
   }
 

@@ -487,6 +487,7 @@ void exchange_answers(Archive& a, Rows& rows) {
 /// Bands of the heads over time, and what a stopped band keeps of each draw for them.
 template <class Archive, class Bands>
 void exchange_band_histories(Archive& a, Bands& b) {
+  a.whole("history_draws", b.history_draws, {.long_name = "First draws that the bands over time rest on"});
   a.number_scale("history_probability", b.history_probability, {"1", "Probability of a history"});
   a.number_scale("history_time", b.history_time, {"s", "Time of a history"});
   a.text_scale("history_probe_name", b.history_probe_name, "Place whose history is kept");

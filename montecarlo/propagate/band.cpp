@@ -304,8 +304,9 @@ class BandRun {
 
   /// Quantiles of the head at each kept place over time.
   void form_history() {
-    const auto kept = static_cast<long long>(form_histories(table_, outcome_.bands));
-    if (kept > 0 && kept < table_.draws()) warn(fmt::format("bands of histories are those of the first {} draws", kept));
+    form_histories(table_, outcome_.bands);
+    const long long kept = outcome_.bands.history_draws, wanted = std::min<long long>(table_.draws(), most_history_draws);
+    if (kept > 0 && kept < wanted) warn(fmt::format("bands of histories are those of the first {} draws", kept));
   }
 
   void count_runs() {

@@ -101,13 +101,14 @@ void DrawTable::resize(long long draws) {
   const std::size_t envelopes = head_max.empty() ? 0 : std::min(n, most_envelope_numbers / (2 * head_max.size()));
   for (auto* columns : {&head_max, &head_min})
     for (auto& column : *columns) column.resize(envelopes, nothing);
-  for (auto& column : history) column.resize(histories_kept(n), nothing);
+  history.resize((histories_kept(n) + 7) / 8 * 8 * history_cells, nothing);
   status.resize(n, not_finite);
   cavity.resize(n, 0);
 }
 
 std::size_t DrawTable::histories_kept(std::size_t draws) const {
-  return history.empty() ? 0 : std::min(draws, most_history_numbers / history.size());
+  if (history_cells == 0) return 0;
+  return std::min({draws, most_history_draws, most_history_numbers / history_cells / 8 * 8});
 }
 
 bool DrawTable::all_finished(const BlockAnswers& block) {
@@ -120,7 +121,7 @@ bool DrawTable::all_finished(const BlockAnswers& block) {
 
 void DrawTable::store(std::size_t first, int lanes, const BlockAnswers& block) {
   // the usual block: eight finished draws, whole columns at once
-  if (lanes == 8 && head_max.empty() && history.empty() && all_finished(block)) {
+  if (lanes == 8 && head_max.empty() && history_cells == 0 && all_finished(block)) {
     const auto put = [first](const std::vector<Lanes<8>>& from, std::vector<std::vector<double>>& to) {
       for (std::size_t i = 0; i < to.size(); ++i) {
         double* const column = to[i].data() + first;
@@ -134,6 +135,20 @@ void DrawTable::store(std::size_t first, int lanes, const BlockAnswers& block) {
     return;
   }
   for (int lane = 0; lane < lanes; ++lane) store_lane(first + static_cast<std::size_t>(lane), lane, block);
+  store_histories(first, static_cast<std::size_t>(lanes), block);
+}
+
+void DrawTable::store_histories(std::size_t first, std::size_t lanes, const BlockAnswers& block) {
+  if (first >= histories_kept(status.size())) return;
+  double* to = history.data() + history_place(0, first);
+  const bool there = block.history.size() >= history_cells;
+  const auto good = [&](std::size_t lane) { return there && status[first + lane] == 0; };
+  bool all_good = lanes == 8;
+  for (std::size_t lane = 0; lane < lanes; ++lane) all_good = all_good && good(lane);
+  for (std::size_t cell = 0; cell < history_cells; ++cell, to += 8) {
+    for (std::size_t lane = 0; lane < lanes; ++lane)
+      to[lane] = all_good || good(lane) ? block.history[cell][static_cast<int>(lane)] : nothing;
+  }
 }
 
 void DrawTable::store_lane(std::size_t draw, int lane, const BlockAnswers& block) {
@@ -152,9 +167,6 @@ void DrawTable::store_lane(std::size_t draw, int lane, const BlockAnswers& block
     head_max[i][draw] = envelopes ? block.head_max[i][lane] : nothing;
     head_min[i][draw] = envelopes ? block.head_min[i][lane] : nothing;
   }
-  const bool histories = good && block.history.size() >= history.size();
-  for (std::size_t i = 0; i < history.size() && draw < history[i].size(); ++i)
-    history[i][draw] = histories ? block.history[i][lane] : nothing;
 }
 
 DrawSummary run_draws(long long first, long long last, const ScoreSource& scores, std::vector<BlockModel>& models,

@@ -23,27 +23,34 @@ using BlockModel = std::function<void(const network::Scores<8>&, BlockAnswers&)>
 /// Fills the scores of the draws `first` … `first + 7`. Used by all threads at once.
 using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;
 
-/// Histories kept: 256 MB, draws times times times probes.
-inline constexpr std::size_t most_history_numbers = std::size_t{32} << 20;
+/// Histories are kept of the first draws, and of so many that draws times times times probes fit 256 MB.
+inline constexpr std::size_t most_history_draws = 4096, most_history_numbers = std::size_t{32} << 20;
 
 /// Every number of every draw; failed draws hold not-a-number.
 struct DrawTable {
   std::vector<std::vector<double>> answer, limit;        ///< [which][draw]
   std::vector<std::vector<double>> head_max, head_min;   ///< [station][draw], at most 512 MB of them
-  std::vector<std::vector<double>> history;              ///< [(time, probe)][draw], see `histories_kept`
+  std::size_t history_cells = 0;                         ///< times times probes
+  std::vector<double> history;                           ///< of the draws kept, see `history_place`
   std::vector<std::int8_t> status, cavity;               ///< [draw]
 
   DrawTable(std::size_t answers, std::size_t limits, std::size_t stations, std::size_t histories = 0)
-      : answer(answers), limit(limits), head_max(stations), head_min(stations), history(histories) {}
+      : answer(answers), limit(limits), head_max(stations), head_min(stations), history_cells(histories) {}
   [[nodiscard]] long long draws() const { return static_cast<long long>(status.size()); }
   void resize(long long draws);
-  /// Of so many draws, the first ones whose histories are kept: `most_history_numbers` of them in all.
+  /// Of so many draws, how many first ones keep their histories.
   [[nodiscard]] std::size_t histories_kept(std::size_t draws) const;
+  /// Where `history` holds a cell (time times probes + probe) of a draw: blocks of eight draws, so that a block is
+  /// stored in one go.
+  [[nodiscard]] std::size_t history_place(std::size_t cell, std::size_t draw) const {
+    return (draw / 8 * history_cells + cell) * 8 + draw % 8;
+  }
   /// Stores the first `lanes` lanes of a block as the draws from `first` on; an answer or limit that is not finite makes
   /// its draw a failed one (status 2).
   void store(std::size_t first, int lanes, const BlockAnswers& block);
 
  private:
+  void store_histories(std::size_t first, std::size_t lanes, const BlockAnswers& block);
   void store_lane(std::size_t draw, int lane, const BlockAnswers& block);
   [[nodiscard]] static bool all_finished(const BlockAnswers& block);
 };

@@ -11,7 +11,6 @@ namespace headband::montecarlo {
 namespace {
 
 constexpr std::size_t worth_a_band = 64;     ///< draws under which a band of histories says nothing
-constexpr std::size_t enough_draws = 4096;   ///< for the ends of a band; fewer times come before fewer draws than these
 
 }  // namespace
 
@@ -25,7 +24,7 @@ std::vector<double> history_times(const std::vector<double>& rows, double durati
     warning = fmt::format("histories carry no bands: {} places times the draws are too many; name fewer with show places", probes);
     return {};
   }
-  const std::size_t most = std::clamp(fit / std::min(all, enough_draws), least_history_times, most_history_times);
+  const std::size_t most = std::clamp(fit / std::min(all, most_history_draws), least_history_times, most_history_times);
   std::vector<double> times;
   if (rows.size() < 2) {
     for (std::size_t i = 0; i < most; ++i) times.push_back(duration * static_cast<double>(i) / static_cast<double>(most - 1));
@@ -43,17 +42,18 @@ std::vector<double> history_times(const std::vector<double>& rows, double durati
   return times;
 }
 
-std::size_t form_histories(const DrawTable& table, answers::Bands& bands) {
-  if (table.history.empty()) return 0;
-  const std::size_t cells = table.history.size();
+void form_histories(const DrawTable& table, answers::Bands& bands) {
+  const std::size_t cells = table.history_cells, draws = table.histories_kept(table.status.size());
+  if (draws == 0) return;
+  bands.history_draws = static_cast<long long>(draws);
   bands.history_probability = band_probabilities(bands.coverage);
   bands.history_head.assign(3 * cells, answers::missing);
+  std::vector<double> column(draws);
   for (std::size_t i = 0; i < cells; ++i) {
-    const auto& column = table.history[i];
-    const auto quantiles = plain_quantiles(column, {table.status.data(), column.size()}, bands.history_probability);
+    for (std::size_t draw = 0; draw < draws; ++draw) column[draw] = table.history[table.history_place(i, draw)];
+    const auto quantiles = plain_quantiles(column, {table.status.data(), draws}, bands.history_probability);
     for (std::size_t p = 0; p < 3; ++p) bands.history_head[p * cells + i] = quantiles[p];
   }
-  return table.history.front().size();
 }
 
 }  // namespace headband::montecarlo

@@ -25,6 +25,19 @@ void columns_of(const std::vector<double>& rows, std::vector<std::vector<double>
 
 }  // namespace
 
+namespace {
+
+/// Histories by draw, (draw, time, probe).
+std::vector<double> history_rows(const DrawTable& table, std::size_t kept) {
+  std::vector<double> rows;
+  rows.reserve(kept * table.history_cells);
+  for (std::size_t draw = 0; draw < kept; ++draw)
+    for (std::size_t cell = 0; cell < table.history_cells; ++cell) rows.push_back(table.history[table.history_place(cell, draw)]);
+  return rows;
+}
+
+}  // namespace
+
 long long stride_of(long long draws) { return std::max(1LL, (draws + most_stored_runs - 1) / most_stored_runs); }
 
 void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const network::Plan& plan,
@@ -61,7 +74,7 @@ void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, c
   if (with_envelopes) {
     bands.run_head_max = rows_of(table.head_max, n, 1);
     bands.run_head_min = rows_of(table.head_min, n, 1);
-    bands.run_history_head = rows_of(table.history, table.histories_kept(n), 1);
+    bands.run_history_head = history_rows(table, table.histories_kept(n));
   }
 }
 
@@ -72,7 +85,7 @@ long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
   };
   if (bands.stride != 1 || !fits(bands.output_value, table.answer) || !fits(bands.limit_value, table.limit) ||
       !fits(bands.run_head_max, table.head_max) || !fits(bands.run_head_min, table.head_min) ||
-      bands.run_history_head.size() != table.histories_kept(runs) * table.history.size()) {
+      bands.run_history_head.size() != table.histories_kept(runs) * table.history_cells) {
     return 0;
   }
   const std::size_t whole = runs / 8 * 8;  // an odd end is computed again
@@ -81,7 +94,9 @@ long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
   columns_of(bands.limit_value, table.limit, whole);
   columns_of(bands.run_head_max, table.head_max, whole);
   columns_of(bands.run_head_min, table.head_min, whole);
-  columns_of(bands.run_history_head, table.history, table.histories_kept(whole));
+  for (std::size_t draw = 0; draw < table.histories_kept(whole); ++draw)
+    for (std::size_t cell = 0; cell < table.history_cells; ++cell)
+      table.history[table.history_place(cell, draw)] = bands.run_history_head[draw * table.history_cells + cell];
   std::copy_n(bands.run_status.begin(), whole, table.status.begin());
   if (bands.run_cavity.size() == runs) std::copy_n(bands.run_cavity.begin(), whole, table.cavity.begin());
   return static_cast<long long>(whole);

@@ -326,6 +326,7 @@ inline void bands(answers::Study& s) {
   if (s.transient) {
     const auto& t = *s.transient;
     b.history_probability = b.profile_probability;
+    b.history_draws = b.draws;
     b.history_probe_name = t.probe_name;
     for (std::size_t row = 0; row < t.time.size(); row += 4) b.history_time.push_back(t.time[row]);
     for (const double shift : {-3.0, 0.2, 3.5})

@@ -208,6 +208,7 @@ TEST(ResultFile, AStoppedBandKeepsWhatResumingNeeds) {
   EXPECT_EQ(back.bands->run_history_head, b.run_history_head);
   EXPECT_EQ(back.bands->history_head, b.history_head);
   EXPECT_EQ(back.bands->history_time, b.history_time);
+  EXPECT_EQ(back.bands->history_draws, b.history_draws);
   EXPECT_EQ(back.bands->history_probability, b.history_probability);
   EXPECT_EQ(back.bands->history_probe_name, b.history_probe_name);
   ASSERT_EQ(back.bands->whole_line.size(), 1U);

@@ -62,12 +62,13 @@ TEST(Histories, QuantilesAreThoseOfTheFinishedDraws) {
   table.resize(201);
   for (std::size_t draw = 0; draw < 201; ++draw) {
     table.status[draw] = draw == 200 ? std::int8_t{2} : std::int8_t{0};
-    table.history[0][draw] = static_cast<double>(draw);
-    table.history[1][draw] = -2.0 * static_cast<double>(draw);
+    table.history[table.history_place(0, draw)] = static_cast<double>(draw);
+    table.history[table.history_place(1, draw)] = -2.0 * static_cast<double>(draw);
   }
   answers::Bands bands;
   bands.coverage = 0.9;
-  EXPECT_EQ(form_histories(table, bands), 201U);
+  form_histories(table, bands);
+  EXPECT_EQ(bands.history_draws, 201);
   ASSERT_EQ(bands.history_head.size(), 6U);
   EXPECT_NEAR(bands.history_head[0], 0.05 * 200.0, 0.6);
   EXPECT_NEAR(bands.history_head[2], 99.5, 1e-12);
@@ -75,10 +76,35 @@ TEST(Histories, QuantilesAreThoseOfTheFinishedDraws) {
   EXPECT_NEAR(bands.history_head[4], 0.95 * 200.0, 1.1);
 }
 
+TEST(Histories, BlocksAreStoredByDrawAndFailedOnesMarked) {
+  DrawTable table(0, 0, 0, 3);
+  table.resize(13);
+  BlockAnswers block;
+  block.status.fill(0);
+  block.cavity.fill(false);
+  for (int cell = 0; cell < 3; ++cell) {
+    block.history.emplace_back(0.0);
+    for (int lane = 0; lane < 8; ++lane) block.history.back().set(lane, 100.0 * cell + lane);
+  }
+  table.store(0, 8, block);
+  block.status[2] = 3;
+  table.store(8, 5, block);
+  for (std::size_t draw = 0; draw < 13; ++draw) {
+    for (std::size_t cell = 0; cell < 3; ++cell) {
+      const double x = table.history[table.history_place(cell, draw)];
+      if (draw == 10)
+        EXPECT_TRUE(std::isnan(x));
+      else
+        EXPECT_EQ(x, 100.0 * static_cast<double>(cell) + static_cast<double>(draw % 8));
+    }
+  }
+}
+
 TEST(Histories, OnlyTheFirstDrawsAreKeptWhereMemoryEnds) {
   DrawTable table(0, 0, 0, most_history_numbers / 100);
   EXPECT_EQ(table.histories_kept(50), 50U);
-  EXPECT_EQ(table.histories_kept(100000), 100U);
+  EXPECT_EQ(table.histories_kept(100000), 96U);  // whole blocks of eight
+  EXPECT_EQ(DrawTable(0, 0, 0, 10).histories_kept(100000), most_history_draws);
   EXPECT_EQ(DrawTable(1, 1, 1).histories_kept(50), 0U);
 }
 
