@@ -14,7 +14,8 @@ namespace {
 class PipelineModel {
  public:
   PipelineModel(const network::Case& c, const network::Plan& plan, bool surge, const std::vector<double>& history_times)
-      : case_(&c), plan_(&plan), answers_(answers_computed(c, plan, surge)), solver_(c, plan) {
+      : case_(&c), plan_(&plan), answers_(answers_computed(c, plan, surge)), realiser_(c, plan), solver_(c, plan),
+        values_(realiser_.prepare<8>()) {
     if (surge) marcher_.emplace(c, plan, history_times);
   }
 
@@ -55,7 +56,7 @@ class PipelineModel {
 
  private:
   void solve(const network::Scores<8>& scores) {
-    network::realise<8>(*case_, *plan_, scores, values_);
+    realiser_.draw<8>(scores, values_);
     solver_.solve<8>(values_, state_);
   }
 
@@ -96,6 +97,7 @@ class PipelineModel {
   const network::Case* case_;
   const network::Plan* plan_;
   std::vector<std::size_t> answers_;
+  network::Realiser realiser_;  // what no draw changes is realised once
   steady::SteadySolver solver_;
   std::optional<transient::BatchMarcher> marcher_;
   network::Values<8> values_;
