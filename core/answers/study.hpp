@@ -55,7 +55,7 @@ struct PipeAnswer {
   double length = missing, bore = missing, roughness = missing, restraint_factor = missing;
   double flow = missing, velocity = missing, reynolds = missing, friction_factor = missing;
   double head_loss = missing, pressure_drop = missing, wave_speed = missing, rating = missing;
-  double joukowsky_head = missing;     ///< a |V| / g, hand check [m]
+  double joukowsky_head = missing;                       ///< a |V| / g, hand check [m]
   std::vector<double> chainage, elevation, steady_head;  ///< profile points
 };
 
@@ -101,35 +101,36 @@ struct GridAnswer {
   double time_step = missing, worst_wave_speed_change = missing;
   std::string worst_pipe;
   std::vector<std::string> rigid_pipes;
-  std::vector<int> reaches;                  ///< per pipe, 0 = rigid
-  std::vector<double> marched_wave_speed;    ///< per pipe [m/s]
-  int grids = 1;                             ///< grids marched for the bound
+  std::vector<int> reaches;                ///< per pipe, 0 = rigid
+  std::vector<double> marched_wave_speed;  ///< per pipe [m/s]
+  int grids = 1;                           ///< grids marched for the bound
   bool converging = true;
 };
 
 /// Histories, envelopes and series of the one run (verb surge).
 struct Transient {
-  std::vector<double> time;                          ///< [s], row 0 = first steady state
+  std::vector<double> time;  ///< [s], row 0 = first steady state
   std::vector<std::string> probe_name;
   std::vector<double> probe_head, probe_pressure, probe_flow;  ///< row-major (time, probe)
-  std::vector<double> probe_elevation;               ///< [m]
+  std::vector<double> probe_elevation;                         ///< [m]
   std::vector<std::string> series_name, series_units;
-  std::vector<double> series;                        ///< row-major (time, series)
+  std::vector<double> series;  ///< row-major (time, series)
   // station = every computed section, pipes one after another
   std::vector<std::int32_t> station_pipe;
   std::vector<double> chainage, elevation, steady_head, head_max, head_min, time_of_max, time_of_min;
-  std::vector<double> pressure_max, pressure_min;    ///< at the section's own elevation, gauge [Pa]
+  std::vector<double> pressure_max, pressure_min;  ///< at the section's own elevation, gauge [Pa]
   std::vector<double> cavity_volume_max, time_with_cavity, vapour_head;
-  std::vector<CavityAnswer> cavities;                ///< all of them
+  std::vector<CavityAnswer> cavities;  ///< all of them
   double last_good_time = missing;
-  std::string status;                                ///< "completed", "boundary not converged", …
+  std::string status;  ///< "completed", "boundary not converged", …
 };
 
 struct LimitAnswer {
   std::string name, kind, unit;  ///< unit of limit, value, margin: "Pa", "m", "m3/s", "m/s"
   double limit = missing, value = missing, margin = missing;
   double probability = missing, probability_lower = missing, probability_upper = missing;
-  std::optional<std::array<double, 2>> probability_range, probability_lower_range, probability_upper_range;  ///< not-random ranges
+  std::optional<std::array<double, 2>> probability_range, probability_lower_range,
+      probability_upper_range;  ///< not-random ranges
   std::string worst_corner;
   double at_most = missing, confidence = missing;
   Verdict verdict = Verdict::none;
@@ -150,7 +151,7 @@ struct SensitivityAnswer {
 struct BandAnswer {
   std::string name, kind, unit;
   double central = missing, mean = missing, standard_deviation = missing;
-  std::vector<QuantileAnswer> quantiles;  ///< ascending probability
+  std::vector<QuantileAnswer> quantiles;       ///< ascending probability
   std::optional<std::array<double, 2>> range;  ///< not-random: [least, most] of the median
   int modes = 1;
   long long draws = 0, failed = 0;
@@ -167,20 +168,20 @@ struct Bands {
   std::string design;
   std::uint64_t seed = 1;
   long long draws_asked = 0, draws = 0, failed = 0, with_cavity = 0;
-  long long stride = 1;                         ///< every k-th run is stored
+  long long stride = 1;  ///< every k-th run is stored
   std::vector<std::string> input_name, input_units, input_distribution;
-  std::vector<double> input_value;              ///< row-major (run, input)
-  std::vector<double> output_value;             ///< row-major (run, answer)
-  std::vector<std::int8_t> run_status;          ///< 0 finished, 1 no steady state, 2 not finite, 3 boundary, 4 grid refused
-  std::vector<std::int8_t> run_cavity;          ///< 1: a cavity formed; empty without surge
-  std::vector<std::string> limit_name;          ///< as Study::limits
-  std::vector<double> limit_value;              ///< row-major (run, limit): the numbers the limits are judged by
+  std::vector<double> input_value;      ///< row-major (run, input)
+  std::vector<double> output_value;     ///< row-major (run, answer)
+  std::vector<std::int8_t> run_status;  ///< 0 finished, 1 no steady state, 2 not finite, 3 boundary, 4 grid refused
+  std::vector<std::int8_t> run_cavity;  ///< 1: a cavity formed; empty without surge
+  std::vector<std::string> limit_name;  ///< as Study::limits
+  std::vector<double> limit_value;      ///< row-major (run, limit): the numbers the limits are judged by
   // only in the file of a stopped band (stride 1), for taking it up: the envelopes of each draw
   std::vector<double> run_head_max, run_head_min;  ///< row-major (run, station) [m]
   // bands over the profile (sampled surge): per station quantiles of the envelope
-  std::vector<double> profile_probability;      ///< e.g. 0.025, 0.5, 0.975
+  std::vector<double> profile_probability;  ///< e.g. 0.025, 0.5, 0.975
   std::vector<std::int32_t> profile_station_pipe;
-  std::vector<double> profile_share;            ///< station's share of its pipe's length
+  std::vector<double> profile_share;                       ///< station's share of its pipe's length
   std::vector<double> profile_head_max, profile_head_min;  ///< row-major (probability, station)
   // bands over time (sampled surge): quantiles of the head at each kept place
   std::vector<double> history_probability;      ///< as profile_probability
@@ -188,7 +189,8 @@ struct Bands {
   std::vector<std::string> history_probe_name;  ///< as Transient::probe_name
   long long history_draws = 0;                  ///< the bands over time rest on so many first draws, at most 4 096
   std::vector<double> history_head;             ///< row-major (probability, time, probe) [m]
-  std::vector<double> run_history_head;         ///< as run_head_max: row-major (run, time, probe), perhaps the first runs alone [m]
+  std::vector<double>
+      run_history_head;  ///< as run_head_max: row-major (run, time, probe), perhaps the first runs alone [m]
   /// What holds for the line as a whole: statements, not limits, without a verdict. "any rated pipe": the chance that
   /// some pipe exceeds its own rating; `margin` is the least one of the central run.
   std::vector<LimitAnswer> whole_line;
@@ -202,7 +204,7 @@ struct Study {
   Verdict verdict = Verdict::none;
   RunState state = RunState::complete;
   std::vector<std::string> warnings, guesses, cautions;
-  std::string decision;  ///< the sentence on top of the page
+  std::string decision;                                               ///< the sentence on top of the page
   double density = missing, gravity = missing, atmosphere = missing;  ///< of the central run
   std::optional<LiquidAnswer> liquid;
   std::vector<ValueEcho> values;

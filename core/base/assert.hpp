@@ -8,10 +8,10 @@
 #include <cstdlib>
 
 #if !defined(NDEBUG) || defined(HEADBAND_CHECKED)
-#define HEADBAND_ASSERT(condition)                                                                           \
-  ((condition) ? static_cast<void>(0)                                                                        \
-               : (std::fprintf(stderr, "%s:%d: assertion failed: %s\n", __FILE__, __LINE__, #condition), \
-                  std::abort()))
+#define HEADBAND_ASSERT(condition) \
+  ((condition)                     \
+       ? static_cast<void>(0)      \
+       : (std::fprintf(stderr, "%s:%d: assertion failed: %s\n", __FILE__, __LINE__, #condition), std::abort()))
 #else
 #define HEADBAND_ASSERT(condition) static_cast<void>(0)
 #endif

@@ -26,8 +26,7 @@ constexpr std::uint32_t root_fraction(std::uint32_t n, int power) {
     const std::uint64_t trial = root | (std::uint64_t{1} << bit);
     const Wide square = static_cast<Wide>(trial) * trial;
     // (trial / 2^32)^power <= n, written without loss
-    const bool fits = power == 2 ? square <= static_cast<Wide>(n) << 64
-                                 : square * trial <= static_cast<Wide>(n) << 96;
+    const bool fits = power == 2 ? square <= static_cast<Wide>(n) << 64 : square * trial <= static_cast<Wide>(n) << 96;
     if (fits) root = trial;
   }
   return static_cast<std::uint32_t>(root);

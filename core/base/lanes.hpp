@@ -23,8 +23,9 @@ namespace headband::base {
 template <class T, int W>
 using PerLane = std::array<T, static_cast<std::size_t>(W)>;
 
-/// Four doubles in one register. Lanes are built from two of these: g++ 12 takes wider vectors apart at every comparison,
-/// and keeps an array in registers only where its indices are constants (a loop over the parts sends each through memory).
+/// Four doubles in one register. Lanes are built from two of these: g++ 12 takes wider vectors apart at every
+/// comparison, and keeps an array in registers only where its indices are constants (a loop over the parts sends each
+/// through memory).
 typedef double Quad [[gnu::vector_size(32)]];
 typedef std::int64_t QuadBits [[gnu::vector_size(32)]];
 

@@ -65,13 +65,16 @@ template <class Function>
   }
   const double relative = std::max(options.relative_tolerance, 2.0 * std::numeric_limits<double>::epsilon());
   const auto narrow = [&](double a, double b) {
-    return !finite ||
-           std::fabs(b - a) <= options.absolute_tolerance + relative * std::min(std::fabs(a), std::fabs(b));
+    return !finite || std::fabs(b - a) <= options.absolute_tolerance + relative * std::min(std::fabs(a), std::fabs(b));
   };
   auto left = static_cast<std::uintmax_t>(std::max(1, options.most_evaluations - 2));
-  const auto interval = boost::math::tools::toms748_solve(counted, std::min(low, high), std::max(low, high),
-                                                          low < high ? at_low : at_high, low < high ? at_high : at_low,
-                                                          narrow, left);
+  const auto interval = boost::math::tools::toms748_solve(counted,
+                                                          std::min(low, high),
+                                                          std::max(low, high),
+                                                          low < high ? at_low : at_high,
+                                                          low < high ? at_high : at_low,
+                                                          narrow,
+                                                          left);
   if (!finite) {
     root.status = RootStatus::not_finite;
   } else {
@@ -85,8 +88,8 @@ template <class Function>
 /// it, or does not halve the last but one, is replaced by a bisection.
 /// @param low,high values of opposite signs; `start` between them
 template <class Function>
-[[nodiscard]] Root find_root_newton(const Function& function, double low, double high, double start,
-                                    const RootOptions& options = {}) {
+[[nodiscard]] Root find_root_newton(
+    const Function& function, double low, double high, double start, const RootOptions& options = {}) {
   Root root;
   const auto look = [&](double x) {
     ++root.evaluations;
@@ -122,8 +125,9 @@ template <class Function>
     if (!inside || std::fabs(next - x) > 0.5 * step_before) next = 0.5 * (negative + positive);
     step_before = step;
     step = std::fabs(next - x);
-    const double tolerance = options.absolute_tolerance +
-                             std::max(options.relative_tolerance, 2.0 * std::numeric_limits<double>::epsilon()) * std::fabs(x);
+    const double tolerance =
+        options.absolute_tolerance +
+        std::max(options.relative_tolerance, 2.0 * std::numeric_limits<double>::epsilon()) * std::fabs(x);
     if (step <= tolerance) {
       root.value = next;
       root.status = RootStatus::found;
@@ -138,8 +142,8 @@ template <class Function>
 /// Widens [low, high] by doubling its width on the side that is nearer to zero until the ends have opposite signs.
 /// @return true when they have; the interval never leaves [least, most]
 template <class Function>
-[[nodiscard]] bool bracket_root(const Function& function, double& low, double& high, double least, double most,
-                                int most_evaluations = 60) {
+[[nodiscard]] bool bracket_root(
+    const Function& function, double& low, double& high, double least, double most, int most_evaluations = 60) {
   double at_low = function(low), at_high = function(high);
   for (int used = 2; used < most_evaluations; ++used) {
     if (!std::isfinite(at_low) || !std::isfinite(at_high)) return false;

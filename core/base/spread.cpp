@@ -27,9 +27,14 @@ HEADBAND_INLINE Lanes<W> polynomial(const std::array<double, 8>& c, const Lanes<
 
 // AS 241 (Wichura 1988, Applied Statistics 37, 477-484), routine PPND16: coefficients from memory, checked in the
 // test against the inverse error function of Boost.Math to 1e-15.
-constexpr std::array<double, 8> central_over{3.3871328727963666080e0, 1.3314166789178437745e2, 1.9715909503065514427e3,
-                                             1.3731693765509461125e4, 4.5921953931549871457e4, 6.7265770927008700853e4,
-                                             3.3430575583588128105e4, 2.5090809287301226727e3};
+constexpr std::array<double, 8> central_over{3.3871328727963666080e0,
+                                             1.3314166789178437745e2,
+                                             1.9715909503065514427e3,
+                                             1.3731693765509461125e4,
+                                             4.5921953931549871457e4,
+                                             6.7265770927008700853e4,
+                                             3.3430575583588128105e4,
+                                             2.5090809287301226727e3};
 constexpr std::array<double, 8> central_under{1.0,
                                               4.2313330701600911252e1,
                                               6.8718700749205790830e2,
@@ -38,9 +43,14 @@ constexpr std::array<double, 8> central_under{1.0,
                                               3.9307895800092710610e4,
                                               2.8729085735721942674e4,
                                               5.2264952788528545610e3};
-constexpr std::array<double, 8> tail_over{1.42343711074968357734e0, 4.63033784615654529590e0,  5.76949722146069140550e0,
-                                          3.64784832476320460504e0, 1.27045825245236838258e0,  2.41780725177450611770e-1,
-                                          2.27238449892691845833e-2, 7.74545014278341407640e-4};
+constexpr std::array<double, 8> tail_over{1.42343711074968357734e0,
+                                          4.63033784615654529590e0,
+                                          5.76949722146069140550e0,
+                                          3.64784832476320460504e0,
+                                          1.27045825245236838258e0,
+                                          2.41780725177450611770e-1,
+                                          2.27238449892691845833e-2,
+                                          7.74545014278341407640e-4};
 constexpr std::array<double, 8> tail_under{1.0,
                                            2.05319162663775882187e0,
                                            1.67638483018380384940e0,
@@ -49,9 +59,14 @@ constexpr std::array<double, 8> tail_under{1.0,
                                            1.51986665636164571966e-2,
                                            5.47593808499534494600e-4,
                                            1.05075007164441684324e-9};
-constexpr std::array<double, 8> far_over{6.65790464350110377720e0,  5.46378491116411436990e0,  1.78482653991729133580e0,
-                                         2.96560571828504891230e-1, 2.65321895265761230930e-2, 1.24266094738807843860e-3,
-                                         2.71155556874348757815e-5, 2.01033439929228813265e-7};
+constexpr std::array<double, 8> far_over{6.65790464350110377720e0,
+                                         5.46378491116411436990e0,
+                                         1.78482653991729133580e0,
+                                         2.96560571828504891230e-1,
+                                         2.65321895265761230930e-2,
+                                         1.24266094738807843860e-3,
+                                         2.71155556874348757815e-5,
+                                         2.01033439929228813265e-7};
 constexpr std::array<double, 8> far_under{1.0,
                                           5.99832206555887937690e-1,
                                           1.36929880922735805310e-1,
@@ -158,8 +173,7 @@ Lanes<W> triangle_quantile(double low, double mode, double high, const Cut& cut,
   if (cut.active()) {
     const TriangleTails at_low = triangle_tails(low, mode, high, cut.low);
     const TriangleTails at_high = triangle_tails(low, mode, high, cut.high);
-    const double inside =
-        at_low.below > 0.5 ? at_low.above - at_high.above : at_high.below - at_low.below;
+    const double inside = at_low.below > 0.5 ? at_low.above - at_high.above : at_high.below - at_low.below;
     below = at_low.below + score * inside;
     above = at_high.above + (1.0 - score) * inside;
   }
@@ -321,29 +335,28 @@ double probability(const Spread& spread, const Cut& cut, double central, double 
     const double a = std::max(low, cut.low), b = std::min(high, cut.high);
     return std::clamp((x - a) / (b - a), 0.0, 1.0);
   };
-  return std::visit(
-      Overloaded{
-          [&](const Exact&) { return 0.5; },
-          [&](const Normal& n) {
-            const double s = n.standard_deviation;
-            return share(tails_of((cut.low - central) / s, (cut.high - central) / s), (x - central) / s);
-          },
-          [&](const LogNormal& n) {
-            const double s = n.log_standard_deviation;
-            if (!(x / central > 0.0)) return 0.0;
-            const auto [low, high] = log_cut(cut, central, s);
-            return share(tails_of(low, high), std::log(x / central) / s);
-          },
-          [&](const Even& e) { return even(e.low, e.high); },
-          [&](const Triangle& t) {
-            const double low = triangle_tails(t.low, central, t.high, cut.low).below;
-            const double high = triangle_tails(t.low, central, t.high, cut.high).below;
-            const double at = triangle_tails(t.low, central, t.high, x).below;
-            return std::clamp((at - low) / (high - low), 0.0, 1.0);
-          },
-          [&](const NotRandom& r) { return even(r.low, r.high); },
-      },
-      spread);
+  return std::visit(Overloaded{
+                        [&](const Exact&) { return 0.5; },
+                        [&](const Normal& n) {
+                          const double s = n.standard_deviation;
+                          return share(tails_of((cut.low - central) / s, (cut.high - central) / s), (x - central) / s);
+                        },
+                        [&](const LogNormal& n) {
+                          const double s = n.log_standard_deviation;
+                          if (!(x / central > 0.0)) return 0.0;
+                          const auto [low, high] = log_cut(cut, central, s);
+                          return share(tails_of(low, high), std::log(x / central) / s);
+                        },
+                        [&](const Even& e) { return even(e.low, e.high); },
+                        [&](const Triangle& t) {
+                          const double low = triangle_tails(t.low, central, t.high, cut.low).below;
+                          const double high = triangle_tails(t.low, central, t.high, cut.high).below;
+                          const double at = triangle_tails(t.low, central, t.high, x).below;
+                          return std::clamp((at - low) / (high - low), 0.0, 1.0);
+                        },
+                        [&](const NotRandom& r) { return even(r.low, r.high); },
+                    },
+                    spread);
 }
 
 double mean(const Spread& spread, const Cut& cut, double central) { return moments(spread, cut, central).mean; }

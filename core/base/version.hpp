@@ -7,8 +7,8 @@
 
 namespace headband::base {
 
-[[nodiscard]] std::string version();     ///< "0.1.0"
-[[nodiscard]] std::string commit();      ///< abbreviated git commit, "+changes" where files differ; "unknown" outside git
+[[nodiscard]] std::string version();  ///< "0.1.0"
+[[nodiscard]] std::string commit();   ///< abbreviated git commit, "+changes" where files differ; "unknown" outside git
 [[nodiscard]] std::string build_kind();  ///< "Release", "Debug", …
 [[nodiscard]] std::string compiler();    ///< "GNU 12.2.0"
 [[nodiscard]] std::string flags();       ///< those that decide the numbers, without paths

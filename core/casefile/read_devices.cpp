@@ -22,7 +22,8 @@ void read_places(Root& root, Case& c) {
     basin.level_table = read_table(section, "level_table", "level_table time", "level_table level");
     check_rising(section, "level_table", basin.level_table);
     if (basin.level.given() && basin.level_table.given() &&
-        std::abs(basin.level_table.rows.front().second.value - basin.level.value) > 1e-9 * (1.0 + std::abs(basin.level.value)))
+        std::abs(basin.level_table.rows.front().second.value - basin.level.value) >
+            1e-9 * (1.0 + std::abs(basin.level.value)))
       section.report("level",
                      "the level is not that of the table's first row",
                      fmt::format("\"{} m\"", basin.level_table.rows.front().second.value),

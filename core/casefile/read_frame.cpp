@@ -319,7 +319,10 @@ void read_liquid(Root& root, Case& c) {
   c.liquid.bulk_modulus = section.quantity("bulk_modulus");
   c.liquid.vapour_pressure = section.quantity("vapour_pressure");
   if (c.liquid.vapour_pressure.given() && c.liquid.vapour_pressure.gauge)
-    section.report("vapour_pressure", "a vapour pressure does not depend on the atmosphere", "\"1.7 kPa abs\"", "write it as absolute pressure");
+    section.report("vapour_pressure",
+                   "a vapour pressure does not depend on the atmosphere",
+                   "\"1.7 kPa abs\"",
+                   "write it as absolute pressure");
   c.liquid.free_gas = section.quantity_or("free_gas", "0 %");
   section.finish();
 }

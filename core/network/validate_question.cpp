@@ -320,7 +320,8 @@ void need_for_surge(const Case& c, detail::ProblemList& problems) {
       need_number(pump.inertia, "inertia", "inertia_mr2, inertia_gd2 or inertia_wr2");
       need_number(pump.efficiency, "efficiency", "efficiency = \"82 %\"");
       const bool by_table = pump.characteristic == Characteristic::table && !pump.curve.given();
-      if (!pump.torque.given() && !by_table) need_number(pump.shut_off_torque, "shut_off_torque", "shut_off_torque = \"45 %\"");
+      if (!pump.torque.given() && !by_table)
+        need_number(pump.shut_off_torque, "shut_off_torque", "shut_off_torque = \"45 %\"");
     }
   }
 }

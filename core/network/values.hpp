@@ -57,8 +57,8 @@ struct PipeValues {
 
 template <int W>
 struct PlaceValues {
-  Lanes<W> elevation;  ///< [m]
-  Lanes<W> held_head;  ///< basins and `head`: [m]; NaN = free
+  Lanes<W> elevation;     ///< [m]
+  Lanes<W> held_head;     ///< basins and `head`: [m]; NaN = free
   Lanes<W> surface_head;  ///< basins: head of the surface pressure, over the level [m]; 0 elsewhere
   Lanes<W> level_shift;   ///< basins: drawn level over the written one, which shifts a level table too [m]; 0 elsewhere
 };

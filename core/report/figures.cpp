@@ -228,16 +228,18 @@ class HistoryBands {
   explicit HistoryBands(const Study& study) {
     if (!study.bands || study.bands->history_probability.size() < 2) return;
     const auto& b = *study.bands;
-    if (b.history_head.size() != b.history_probability.size() * b.history_time.size() * b.history_probe_name.size()) return;
+    if (b.history_head.size() != b.history_probability.size() * b.history_time.size() * b.history_probe_name.size())
+      return;
     bands_ = &b;
   }
   [[nodiscard]] bool any() const { return bands_ != nullptr; }
   [[nodiscard]] std::string words() const {
-    return fmt::format(" Shaded: {} to {} of the {}, at each of {} times by itself.",
-                       percent(bands_->history_probability.front()),
-                       percent(bands_->history_probability.back()),
-                       bands_->history_draws < bands_->draws ? fmt::format("first {} draws", bands_->history_draws) : "draws",
-                       bands_->history_time.size());
+    return fmt::format(
+        " Shaded: {} to {} of the {}, at each of {} times by itself.",
+        percent(bands_->history_probability.front()),
+        percent(bands_->history_probability.back()),
+        bands_->history_draws < bands_->draws ? fmt::format("first {} draws", bands_->history_draws) : "draws",
+        bands_->history_time.size());
   }
 
   /// Puts the bands of the plot's curves behind them. Their times are some of the plot's.
@@ -251,7 +253,11 @@ class HistoryBands {
       const std::size_t lower = plot.curves.size();
       for (const std::size_t rank : {std::size_t{0}, bands_->history_probability.size() - 1})
         plot.curves.push_back({line.name + ", " + percent(bands_->history_probability[rank]),
-                               edge(plot.abscissa, rank, probe), line.ink, Dash::dotted, Shape::line, 0.8});
+                               edge(plot.abscissa, rank, probe),
+                               line.ink,
+                               Dash::dotted,
+                               Shape::line,
+                               0.8});
       if (any_finite(plot.curves[lower].y))
         plot.fills.push_back({"band of " + line.name, lower, lower + 1, line.ink});
       else
@@ -262,7 +268,9 @@ class HistoryBands {
 
  private:
   /// One quantile of a place at the times of the plot, missing at the times between.
-  [[nodiscard]] std::vector<double> edge(const std::vector<double>& abscissa, std::size_t rank, std::size_t probe) const {
+  [[nodiscard]] std::vector<double> edge(const std::vector<double>& abscissa,
+                                         std::size_t rank,
+                                         std::size_t probe) const {
     const auto& times = bands_->history_time;
     std::vector<double> y(abscissa.size(), answers::missing);
     for (std::size_t row = 0, i = 0; row < abscissa.size() && i < times.size(); ++row) {

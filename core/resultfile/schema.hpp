@@ -513,7 +513,8 @@ void exchange_whole_line(Archive& a, Rows& rows) {
   a.column("whole_line_kind", d, rows, &Row::kind, "What must not be exceeded anywhere");
   a.column("whole_line_units", d, rows, &Row::unit, "Unit of the margin");
   a.column("whole_line_margin", d, rows, &Row::margin, {"see whole_line_units", "Least margin of the central run"});
-  a.column("whole_line_probability", d, rows, &Row::probability, {"1", "Share of finished draws that exceed it anywhere"});
+  a.column(
+      "whole_line_probability", d, rows, &Row::probability, {"1", "Share of finished draws that exceed it anywhere"});
   a.column("whole_line_probability_lower", d, rows, &Row::probability_lower, {"1", "Lower bound of the probability"});
   a.column("whole_line_probability_upper", d, rows, &Row::probability_upper, {"1", "Upper bound of the probability"});
   exchange_pairs(a,

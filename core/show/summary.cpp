@@ -115,9 +115,11 @@ void value_echo(Frame& f, const answers::ValueEcho& v) {
     return out + '\n';
   };
   std::string first = v.shown_si.empty() ? v.written : v.shown_si;
-  if (!v.shown_si.empty() && !v.spread.empty() && first.find(v.spread) == std::string::npos) first.append(", ").append(v.spread);
+  if (!v.shown_si.empty() && !v.spread.empty() && first.find(v.spread) == std::string::npos)
+    first.append(", ").append(v.spread);
   std::string second = v.shown_us;
-  if ((f.options.units.empty() ? f.study.units_shown : f.options.units) == "us" && !second.empty()) std::swap(first, second);
+  if ((f.options.units.empty() ? f.study.units_shown : f.options.units) == "us" && !second.empty())
+    std::swap(first, second);
   if (second.starts_with(first)) first = second;  // a bare number is the same in both families
   if (first.starts_with(second)) second.clear();
   if (v.guess) first += " *";
@@ -130,7 +132,8 @@ void value_echo(Frame& f, const answers::ValueEcho& v) {
   if (!v.grade.empty()) origin.append(origin.empty() ? "" : ", ").append("grade ").append(v.grade);
   const bool together = !second.empty() && width_of(first) + width_of(second) + 5 <= room;
   if (together) first.append("  =  ").append(second);
-  if (origin == "default" && width_of(first) + 11 <= room) first.append("  (").append(std::exchange(origin, {})).append(")");
+  if (origin == "default" && width_of(first) + 11 <= room)
+    first.append("  (").append(std::exchange(origin, {})).append(")");
   f.out += beside(first);
   if (!second.empty() && !together) f.out += indent + beside("= " + second);
   if (!origin.empty()) f.out += indent + beside("from: " + origin);
@@ -316,12 +319,14 @@ void events(Frame& f) {
 /// Chance of not keeping a limit, with its bounds.
 std::string chance_of(const answers::LimitAnswer& l) {
   if (l.probability_range) {
-    std::string chance = fmt::format("{} .. {}", percent((*l.probability_range)[0]), percent((*l.probability_range)[1]));
+    std::string chance =
+        fmt::format("{} .. {}", percent((*l.probability_range)[0]), percent((*l.probability_range)[1]));
     if (l.probability_upper_range) chance += fmt::format(" (<= {})", percent((*l.probability_upper_range)[1]));
     return chance;
   }
   if (std::isnan(l.probability)) return "-";
-  return fmt::format("{} ({} .. {})", percent(l.probability), percent(l.probability_lower), percent(l.probability_upper));
+  return fmt::format(
+      "{} ({} .. {})", percent(l.probability), percent(l.probability_lower), percent(l.probability_upper));
 }
 
 void limits(Frame& f) {
@@ -349,7 +354,8 @@ void limits(Frame& f) {
   if (!f.study.bands) return;
   for (const auto& l : f.study.bands->whole_line) {
     std::string words = fmt::format("{} over its own rating: {}", l.name, chance_of(l));
-    if (std::isnan(l.probability)) words = fmt::format("{} over its own rating: at least {}", l.name, percent(l.probability_lower));
+    if (std::isnan(l.probability))
+      words = fmt::format("{} over its own rating: at least {}", l.name, percent(l.probability_lower));
     if (!l.reason.empty()) words += "; " + l.reason;
     f.item(words);
   }

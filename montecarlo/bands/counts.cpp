@@ -43,12 +43,14 @@ long long least_number(long long first, const Holds& holds) {
 
 double probability_at_most(long long successes, long long trials, double confidence) {
   if (successes >= trials) return 1.0;
-  return boost::math::ibeta_inv(static_cast<double>(successes + 1), static_cast<double>(trials - successes), confidence);
+  return boost::math::ibeta_inv(
+      static_cast<double>(successes + 1), static_cast<double>(trials - successes), confidence);
 }
 
 double probability_at_least(long long successes, long long trials, double confidence) {
   if (successes <= 0) return 0.0;
-  return boost::math::ibeta_inv(static_cast<double>(successes), static_cast<double>(trials - successes + 1), 1.0 - confidence);
+  return boost::math::ibeta_inv(
+      static_cast<double>(successes), static_cast<double>(trials - successes + 1), 1.0 - confidence);
 }
 
 Interval clopper_pearson(long long successes, long long trials, double confidence) {
@@ -59,9 +61,8 @@ Interval clopper_pearson(long long successes, long long trials, double confidenc
 Ranks quantile_ranks(long long draws, double probability, double confidence) {
   const double tail = 0.5 * (1.0 - confidence);
   // P(Bin <= l - 1) rises with l: the last l that keeps it under the tail is one before the first that does not
-  const long long over = least_where(0, draws + 1, [&](long long l) {
-    return binomial_at_most(l - 1, draws, probability) > tail;
-  });
+  const long long over =
+      least_where(0, draws + 1, [&](long long l) { return binomial_at_most(l - 1, draws, probability) > tail; });
   const long long upper = least_where(1, draws + 1, [&](long long u) {
     return u > draws || binomial_at_most(u - 1, draws, probability) >= 1.0 - tail;
   });

@@ -25,7 +25,8 @@ struct Ranks {
 /// a = 1 - confidence (Conover, Practical Nonparametric Statistics, 3.2).
 [[nodiscard]] Ranks quantile_ranks(long long draws, double probability, double confidence);
 
-/// Least number of draws whose `rank`-th largest is an upper limit for `coverage` (Wilks 1941, Ann. Math. Stat. 12, 91).
+/// Least number of draws whose `rank`-th largest is an upper limit for `coverage` (Wilks 1941, Ann. Math. Stat. 12,
+/// 91).
 [[nodiscard]] long long draws_for_upper_limit(double coverage, double confidence, int rank);
 /// … whose `rank`-th smallest and largest hold `coverage` between them.
 [[nodiscard]] long long draws_for_two_sided_content(double coverage, double confidence, int rank);

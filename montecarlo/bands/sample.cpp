@@ -48,7 +48,8 @@ std::vector<double> density(const Ranked& ranked, double low, double high, doubl
 
 }  // namespace
 
-std::vector<double> plain_quantiles(std::span<const double> values, std::span<const std::int8_t> status,
+std::vector<double> plain_quantiles(std::span<const double> values,
+                                    std::span<const std::int8_t> status,
                                     std::span<const double> probabilities) {
   std::vector<double> finished;
   finished.reserve(values.size());
@@ -187,7 +188,8 @@ std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> p
 int Sample::modes() const {
   if (ranked_.empty()) return 0;
   const auto n = static_cast<double>(ranked_.size());
-  ranked_.announce(std::array{ranked_.place_of(0.001), ranked_.place_of(0.25), ranked_.place_of(0.75), ranked_.place_of(0.999)});
+  ranked_.announce(
+      std::array{ranked_.place_of(0.001), ranked_.place_of(0.25), ranked_.place_of(0.75), ranked_.place_of(0.999)});
   const double quartiles = ranked_.quantile(0.75) - ranked_.quantile(0.25);
   const double spread = quartiles > 0.0 ? std::min(standard_deviation_, quartiles / 1.34) : standard_deviation_;
   if (!(spread > 1e-12 * std::fabs(mean_)) || ranked_.size() < 50) return 1;

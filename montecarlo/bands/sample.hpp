@@ -14,7 +14,7 @@ namespace headband::montecarlo {
 
 /// How the draws of an answer hang together.
 struct SampleShape {
-  int replicates = 1;         ///< > 1: draw i belongs to replicate i mod replicates, replicates are independent
+  int replicates = 1;  ///< > 1: draw i belongs to replicate i mod replicates, replicates are independent
   double confidence = 0.95;
 };
 
@@ -33,8 +33,8 @@ class Sample {
   /// Quantile of the finished draws (straight line between order statistics) with its confidence interval.
   ///
   /// Independent draws: the order statistics of `quantile_ranks`. Replicated designs: the spread of the replicates'
-  /// own quantiles, Student's t, and half a draw. Failed draws may lie anywhere: they stand below all others for the lower end and above
-  /// all others for the upper end. An end that no draw can hold is missing.
+  /// own quantiles, Student's t, and half a draw. Failed draws may lie anywhere: they stand below all others for the
+  /// lower end and above all others for the upper end. An end that no draw can hold is missing.
   [[nodiscard]] answers::QuantileAnswer quantile(double probability) const;
 
   /// The same at several probabilities; of many draws much cheaper than one after another.
@@ -64,7 +64,8 @@ class Sample {
 
 /// The quantiles alone of one column of finished draws, without their intervals: for many columns of few draws.
 /// @return as `probabilities`, the same bits as Sample's; missing where nothing finished
-[[nodiscard]] std::vector<double> plain_quantiles(std::span<const double> values, std::span<const std::int8_t> status,
+[[nodiscard]] std::vector<double> plain_quantiles(std::span<const double> values,
+                                                  std::span<const std::int8_t> status,
                                                   std::span<const double> probabilities);
 
 /// The ends of `coverage` and the middle, rising: of the bands along the line and over time.

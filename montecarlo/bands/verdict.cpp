@@ -53,8 +53,12 @@ void count_up(Judged& j, double confidence) {
 
 }  // namespace
 
-Judged judge(const Bound& bound, std::span<const double> values, std::span<const std::int8_t> status, double grid_bound,
-             double at_most, double confidence) {
+Judged judge(const Bound& bound,
+             std::span<const double> values,
+             std::span<const std::int8_t> status,
+             double grid_bound,
+             double at_most,
+             double confidence) {
   Judged j;
   j.draws = static_cast<long long>(values.size());
   const bool bound_known = std::isfinite(grid_bound);

@@ -43,9 +43,9 @@ struct Bound {
 
 /// Counts of draws against one bound, and what they say.
 struct Judged {
-  long long draws = 0;    ///< all, failed ones included
+  long long draws = 0;  ///< all, failed ones included
   long long failed = 0;
-  long long broken = 0;   ///< as computed
+  long long broken = 0;                           ///< as computed
   long long broken_towards = 0, broken_away = 0;  ///< with values moved by the grid bound
   double probability = answers::missing;  ///< share of the finished draws that break the bound; NaN: none finished
   double lower = 0.0, upper = 1.0;        ///< one-sided, each at `confidence`
@@ -54,8 +54,12 @@ struct Judged {
 
 /// Judges draws: failed ones (NaN, or status not 0) count against in the upper bound and not at all in the lower one.
 /// @param grid_bound >= 0; not a number: the bound of the grid is not known, nothing can be told
-[[nodiscard]] Judged judge(const Bound& bound, std::span<const double> values, std::span<const std::int8_t> status,
-                           double grid_bound, double at_most, double confidence);
+[[nodiscard]] Judged judge(const Bound& bound,
+                           std::span<const double> values,
+                           std::span<const std::int8_t> status,
+                           double grid_bound,
+                           double at_most,
+                           double confidence);
 
 /// One of several bounds of which none may be broken.
 struct Part {

@@ -98,14 +98,17 @@ bool takes(const VerbWords& verb, std::string_view option) {
   return false;
 }
 
-unsigned long long whole_number(std::string_view option, const std::string& text, unsigned long long low,
+unsigned long long whole_number(std::string_view option,
+                                const std::string& text,
+                                unsigned long long low,
                                 unsigned long long high) {
   const bool digits = !text.empty() && std::ranges::all_of(text, [](char c) { return c >= '0' && c <= '9'; });
   const bool plain = digits && (text.size() == 1 || text.front() != '0');
   unsigned long long number = 0;
   const auto [end, error] = std::from_chars(text.data(), text.data() + text.size(), number);
   if (!plain || error != std::errc() || end != text.data() + text.size() || number < low || number > high) {
-    throw UsageError(fmt::format("{} takes a whole number from {} to {} in plain digits, not '{}'", option, low, high, text));
+    throw UsageError(
+        fmt::format("{} takes a whole number from {} to {} in plain digits, not '{}'", option, low, high, text));
   }
   return number;
 }
@@ -149,7 +152,8 @@ std::string help() {
 }
 
 std::string help(const VerbWords& verb) {
-  if (!verb.ready) return fmt::format("headband {} {}: {}\nNot computed yet by this version.\n", verb.name, verb.words, verb.what);
+  if (!verb.ready)
+    return fmt::format("headband {} {}: {}\nNot computed yet by this version.\n", verb.name, verb.words, verb.what);
   std::string text = fmt::format("headband {} {}: {}\n\n  {}\n\n", verb.name, verb.words, verb.what, verb.example);
   text += caution_text;
   text += "\nOptions:\n";

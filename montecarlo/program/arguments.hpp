@@ -33,7 +33,7 @@ struct VerbWords {
   std::string_view what;     ///< one line
   std::string_view options;  ///< names, separated by spaces
   std::string_view example;
-  bool ready = true;         ///< false: a known word this version does not compute yet
+  bool ready = true;  ///< false: a known word this version does not compute yet
 };
 
 [[nodiscard]] std::span<const VerbWords> verbs();
@@ -43,7 +43,9 @@ struct VerbWords {
 
 /// Whole number in digits alone: no sign, no leading zeros, no exponent, within [low, high].
 /// @throws UsageError that names the option, the text seen and the range
-[[nodiscard]] unsigned long long whole_number(std::string_view option, const std::string& text, unsigned long long low,
+[[nodiscard]] unsigned long long whole_number(std::string_view option,
+                                              const std::string& text,
+                                              unsigned long long low,
                                               unsigned long long high);
 
 /// "; did you mean WORD?" with the nearest known word, or nothing where none is near.

@@ -92,7 +92,8 @@ answers::Provenance begin_provenance(const network::Case& c, const Options& opti
 
 void end_provenance(answers::Provenance& p) {
   // `wall_time` held the steady clock at the start.
-  p.wall_time = std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count() - p.wall_time;
+  p.wall_time =
+      std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count() - p.wall_time;
   p.finished = timestamp(std::chrono::system_clock::now());
 }
 
@@ -116,7 +117,8 @@ answers::Study begin_study(const network::Case& c, const Options& options, const
   if (verb == "check" && c.band.given && c.friction.scatter.guess) study.guesses.emplace_back(guessed_scatter);
   if (verb == "flow" || verb == "surge") {  // a band takes the whole range
     for (const auto& unknown : c.unknowns)
-      if (!unknown.random) study.guesses.push_back(fmt::format("{}: the middle of a range that is not random", unknown.name));
+      if (!unknown.random)
+        study.guesses.push_back(fmt::format("{}: the middle of a range that is not random", unknown.name));
   }
   return study;
 }
@@ -148,8 +150,10 @@ void add_run(answers::Study& study, transient::SurgeRun run) {
   for (const auto& warning : run.warnings) add_once(study.warnings, warning);
   if (!run.completed) {
     study.state = answers::RunState::incomplete;
-    add_once(study.warnings, fmt::format("the run did not finish: {}; last good time {} s", run.transient.status,
-                                         run.transient.last_good_time));
+    add_once(
+        study.warnings,
+        fmt::format(
+            "the run did not finish: {}; last good time {} s", run.transient.status, run.transient.last_good_time));
   }
   study.transient = std::move(run.transient);
 }

@@ -83,14 +83,22 @@ answers::PlaceAnswer place_answer(const Central& central, std::size_t i) {
 std::string kind_words(network::DeviceKind kind) {
   using enum network::DeviceKind;
   switch (kind) {
-    case valve: return "valve";
-    case pump: return "pump";
-    case check_valve: return "check valve";
-    case draw_off: return "draw-off";
-    case air_vessel: return "air vessel";
-    case surge_tank: return "surge tank";
-    case relief: return "relief";
-    case air_valve: return "air valve";
+    case valve:
+      return "valve";
+    case pump:
+      return "pump";
+    case check_valve:
+      return "check valve";
+    case draw_off:
+      return "draw-off";
+    case air_vessel:
+      return "air vessel";
+    case surge_tank:
+      return "surge tank";
+    case relief:
+      return "relief";
+    case air_valve:
+      return "air valve";
   }
   return "device";
 }
@@ -104,11 +112,11 @@ answers::DeviceAnswer device_answer(const Central& central, std::size_t i) {
   answer.numbers.emplace_back("flow_m3_per_s", central.state.device_flow[i].number);
   const double before = head_of(central, device.from);
   // A valve to air discharges at the elevation of its `from` place (convention f).
-  const double after = device.to.exists() ? head_of(central, device.to)
-                                          : central.values.places[device.from.at()].elevation.number;
-  const double head = device.kind == pump                                      ? after - before
+  const double after =
+      device.to.exists() ? head_of(central, device.to) : central.values.places[device.from.at()].elevation.number;
+  const double head = device.kind == pump                                  ? after - before
                       : device.kind == valve || device.kind == check_valve ? before - after
-                                                                               : before;
+                                                                           : before;
   answer.numbers.emplace_back("head_m", head);
   const auto at = static_cast<std::size_t>(device.index);
   if (device.kind == valve) answer.numbers.emplace_back("opening", central.values.valves[at].starting_opening.number);
@@ -124,7 +132,8 @@ void judge_vapour(const network::Case& c, Central& central) {
   if (found.pipe[0] < 0) return;
   const auto& pipe = central.plan.pipes[static_cast<std::size_t>(found.pipe[0])].name;
   const auto units = c.show.units;
-  const std::string words = fmt::format("the steady state is below the vapour limit in {} at {}, by {} of head", pipe,
+  const std::string words = fmt::format("the steady state is below the vapour limit in {} at {}, by {} of head",
+                                        pipe,
                                         base::shown(found.chainage.number, base::Dimension::length, units),
                                         base::shown(found.shortfall.number, base::Dimension::length, units));
   if (c.surge.cavities == network::Cavities::off) {
@@ -145,30 +154,38 @@ void judge_vapour(const network::Case& c, Central& central) {
     const double flow = central.values.valves[at].sizing_flow.number;
     if (!valve.flow.given() || std::isnan(flow)) continue;
     const double before = head_of(central, device.from);
-    const double after = device.to.exists() ? head_of(central, device.to) : central.values.places[device.from.at()].elevation.number;
+    const double after =
+        device.to.exists() ? head_of(central, device.to) : central.values.places[device.from.at()].elevation.number;
     if (flow * (before - after) > 0.0) continue;
     const auto words = [&](double head) { return base::shown(head, base::Dimension::length, c.show.units); };
     problems.push_back({.place = valve.flow.place,
                         .path = "valve/" + valve.name + "/flow",
-                        .what = fmt::format("no head drives this flow through valve {}: {} before it, {} behind it", valve.name,
-                                            words(before), words(after)),
+                        .what = fmt::format("no head drives this flow through valve {}: {} before it, {} behind it",
+                                            valve.name,
+                                            words(before),
+                                            words(after)),
                         .value = valve.flow.written,
                         .bound = "a flow that the heads of the basins allow",
                         .hint = "state a smaller flow, or check levels and elevations"});
   }
-  if (problems.empty()) problems.push_back({{}, "valve", "no head drives the flow a valve is sized by", "", "", "check levels and elevations"});
+  if (problems.empty())
+    problems.push_back(
+        {{}, "valve", "no head drives the flow a valve is sized by", "", "", "check levels and elevations"});
   throw base::InputError(problems);
 }
-
 
 /// The law a pipe's loss follows; none where no law is asked (friction off, a factor given outright).
 std::optional<friction::FrictionLaw> law_of(const network::PipePlan& pipe, friction::FrictionLaw law) {
   switch (pipe.loss) {
-    case network::LossKind::darcy: return law;
-    case network::LossKind::hazen_williams: return friction::FrictionLaw::hazen_williams;
-    case network::LossKind::manning: return friction::FrictionLaw::manning;
+    case network::LossKind::darcy:
+      return law;
+    case network::LossKind::hazen_williams:
+      return friction::FrictionLaw::hazen_williams;
+    case network::LossKind::manning:
+      return friction::FrictionLaw::manning;
     case network::LossKind::fixed_factor:
-    case network::LossKind::none: break;
+    case network::LossKind::none:
+      break;
   }
   return std::nullopt;
 }
@@ -184,7 +201,8 @@ void add_range_remarks(const Central& central, std::vector<std::string>& out) {
                                    .bore = pipe.bore.number,
                                    .velocity = central.state.pipe_flow[i].number / pipe.area.number,
                                    .kinematic_viscosity = central.values.liquid.kinematic_viscosity.number};
-    for (const auto& remark : friction::range_remarks(*law, flow)) pipes_by_remark[remark].push_back(central.plan.pipes[i].name);
+    for (const auto& remark : friction::range_remarks(*law, flow))
+      pipes_by_remark[remark].push_back(central.plan.pipes[i].name);
   }
   for (const auto& [remark, pipes] : pipes_by_remark) {
     const std::string others = pipes.size() > 1 ? fmt::format(" and {} more", pipes.size() - 1) : "";
@@ -195,12 +213,14 @@ void add_range_remarks(const Central& central, std::vector<std::string>& out) {
 void add_misfits(const network::Liquid& liquid, std::vector<std::string>& out) {
   const auto& points = liquid.viscosity_points;
   if (points.size() < 3) return;
-  const auto law = liquid::viscosity_law(points[0].first.value, points[0].second.value, points[1].first.value,
-                                         points[1].second.value);
+  const auto law = liquid::viscosity_law(
+      points[0].first.value, points[0].second.value, points[1].first.value, points[1].second.value);
   for (std::size_t i = 2; i < points.size(); ++i) {
     const double miss = liquid::misfit(law, points[i].first.value, points[i].second.value);
-    out.push_back(fmt::format("viscosity law through the first two points: {:+.1f} % at the point {}, {}", 100.0 * miss,
-                              points[i].first.written, points[i].second.written));
+    out.push_back(fmt::format("viscosity law through the first two points: {:+.1f} % at the point {}, {}",
+                              100.0 * miss,
+                              points[i].first.written,
+                              points[i].second.written));
   }
 }
 
@@ -213,7 +233,9 @@ Central central_run(const network::Case& c) {
   central.is_explicit = solver.is_explicit();
   solver.solve<1>(central.values, central.state);
   switch (central.state.status[0]) {
-    case steady::SteadyStatus::converged: central.solved = true; break;
+    case steady::SteadyStatus::converged:
+      central.solved = true;
+      break;
     case steady::SteadyStatus::on_jump:
       central.solved = true;
       central.warning = "the steady flow stands on the jump between laminar and turbulent friction";
@@ -221,8 +243,11 @@ Central central_run(const network::Case& c) {
     case steady::SteadyStatus::not_converged:
       central.failure = fmt::format("no steady state: not converged after {} steps", central.state.iterations);
       break;
-    case steady::SteadyStatus::valve_without_head: refuse_valve(c, central);
-    case steady::SteadyStatus::not_finite: central.failure = "no steady state: the numbers became not finite"; break;
+    case steady::SteadyStatus::valve_without_head:
+      refuse_valve(c, central);
+    case steady::SteadyStatus::not_finite:
+      central.failure = "no steady state: the numbers became not finite";
+      break;
   }
   if (central.solved) judge_vapour(c, central);
   return central;

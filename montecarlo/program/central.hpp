@@ -17,9 +17,9 @@ struct Central {
   network::Values<1> values;
   steady::SteadyState<1> state;
   bool is_explicit = false;
-  bool solved = false;        ///< usable: converged, finite and, where vapour counts, nowhere below its limit
-  std::string failure;        ///< why not, in words
-  std::string warning;        ///< below the vapour limit with cavities off; solution on a jump
+  bool solved = false;  ///< usable: converged, finite and, where vapour counts, nowhere below its limit
+  std::string failure;  ///< why not, in words
+  std::string warning;  ///< below the vapour limit with cavities off; solution on a jump
 };
 
 [[nodiscard]] Central central_run(const network::Case& c);

@@ -19,10 +19,14 @@ namespace {
 
 ExitCode code_of(base::IoFailure failure) {
   switch (failure) {
-    case base::IoFailure::missing: return ExitCode::input_missing;
-    case base::IoFailure::cannot_create: return ExitCode::cannot_create;
-    case base::IoFailure::cannot_write: return ExitCode::cannot_write;
-    case base::IoFailure::damaged: return ExitCode::wrong_case;
+    case base::IoFailure::missing:
+      return ExitCode::input_missing;
+    case base::IoFailure::cannot_create:
+      return ExitCode::cannot_create;
+    case base::IoFailure::cannot_write:
+      return ExitCode::cannot_write;
+    case base::IoFailure::damaged:
+      return ExitCode::wrong_case;
   }
   return ExitCode::internal_error;
 }
@@ -45,8 +49,9 @@ ExitCode translated(const Options& options, const std::function<ExitCode()>& wor
     say("headband: this needs more memory than allowed; ask for fewer reaches, places or draws\n");
     return ExitCode::wrong_case;
   } catch (const std::exception& error) {
-    say(fmt::format("headband: internal error: {}\nThis is a fault of the program; please tell its authors, with the case.\n",
-                    error.what()));
+    say(fmt::format(
+        "headband: internal error: {}\nThis is a fault of the program; please tell its authors, with the case.\n",
+        error.what()));
     return ExitCode::internal_error;
   }
 }
@@ -64,10 +69,16 @@ ExitCode told(const Options& options, const std::function<ExitCode()>& work) noe
 
 ExitCode run(const Options& options) noexcept {
   using Verb = ExitCode (*)(const Options&);
-  static constexpr std::pair<std::string_view, Verb> table[] = {
-      {"new", verb_new},   {"check", verb_check},   {"flow", verb_flow},    {"surge", verb_surge},
-      {"band", verb_band}, {"report", verb_report}, {"liquid", verb_liquid},
-      {"at", verb_at},     {"compare", verb_compare}, {"replay", verb_replay}};
+  static constexpr std::pair<std::string_view, Verb> table[] = {{"new", verb_new},
+                                                                {"check", verb_check},
+                                                                {"flow", verb_flow},
+                                                                {"surge", verb_surge},
+                                                                {"band", verb_band},
+                                                                {"report", verb_report},
+                                                                {"liquid", verb_liquid},
+                                                                {"at", verb_at},
+                                                                {"compare", verb_compare},
+                                                                {"replay", verb_replay}};
   for (const auto& [name, verb] : table) {
     if (name == options.verb) return told(options, [&, go = verb] { return go(options); });
   }

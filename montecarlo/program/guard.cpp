@@ -5,15 +5,15 @@
 
 #include <fmt/format.h>
 
-#include <algorithm>
-#include <cerrno>
-#include <cstdint>
-#include <cstring>
 #include <sys/prctl.h>
 #include <sys/resource.h>
 #include <sys/stat.h>
 #include <sys/wait.h>
 #include <unistd.h>
+#include <algorithm>
+#include <cerrno>
+#include <cstdint>
+#include <cstring>
 
 // The checkers of addresses and threads reserve terabytes of address space for themselves.
 #if defined(__SANITIZE_ADDRESS__) || defined(__SANITIZE_THREAD__)
@@ -31,7 +31,7 @@ namespace headband::program {
 namespace {
 
 void limit(__rlimit_resource_t what, std::uint64_t most) {
-  struct rlimit bound {};
+  struct rlimit bound{};
   ::getrlimit(what, &bound);
   bound.rlim_cur = std::min<rlim_t>(most, bound.rlim_max);
   ::setrlimit(what, &bound);
@@ -40,7 +40,7 @@ void limit(__rlimit_resource_t what, std::uint64_t most) {
 }  // namespace
 
 ExitCode guarded(const std::string& file, const std::function<ExitCode()>& work) {
-  struct stat status {};
+  struct stat status{};
   const std::uint64_t size = ::stat(file.c_str(), &status) == 0 ? static_cast<std::uint64_t>(status.st_size) : 0;
   const pid_t parent = ::getpid();
   const pid_t child = ::fork();
@@ -63,15 +63,18 @@ ExitCode guarded(const std::string& file, const std::function<ExitCode()>& work)
   if (WIFEXITED(ended)) return static_cast<ExitCode>(WEXITSTATUS(ended));
   if (WTERMSIG(ended) == SIGINT) return ExitCode::interrupted;
   if (WTERMSIG(ended) == SIGTERM) return ExitCode::terminated;
-  say(fmt::format("headband: {} is damaged: reading it {}\n", file,
-                  WTERMSIG(ended) == SIGXCPU || WTERMSIG(ended) == SIGKILL ? "took more time than allowed" : "broke off"));
+  say(fmt::format(
+      "headband: {} is damaged: reading it {}\n",
+      file,
+      WTERMSIG(ended) == SIGXCPU || WTERMSIG(ended) == SIGKILL ? "took more time than allowed" : "broke off"));
   return ExitCode::wrong_case;
 }
 
 void limit_memory() {
   if (HEADBAND_SANITIZED != 0) return;
   const long pages = ::sysconf(_SC_PHYS_PAGES), page = ::sysconf(_SC_PAGESIZE);
-  if (pages > 0 && page > 0) limit(RLIMIT_AS, static_cast<std::uint64_t>(pages) * static_cast<std::uint64_t>(page) / 10 * 9);
+  if (pages > 0 && page > 0)
+    limit(RLIMIT_AS, static_cast<std::uint64_t>(pages) * static_cast<std::uint64_t>(page) / 10 * 9);
 }
 
 }  // namespace headband::program

@@ -13,12 +13,18 @@ using network::AnswerKind;
 
 std::string kind_name(AnswerKind kind) {
   switch (kind) {
-    case AnswerKind::pressure_drop: return "pressure_drop";
-    case AnswerKind::flow: return "flow";
-    case AnswerKind::head: return "head";
-    case AnswerKind::highest_pressure: return "highest_pressure";
-    case AnswerKind::lowest_pressure: return "lowest_pressure";
-    case AnswerKind::velocity: return "velocity";
+    case AnswerKind::pressure_drop:
+      return "pressure_drop";
+    case AnswerKind::flow:
+      return "flow";
+    case AnswerKind::head:
+      return "head";
+    case AnswerKind::highest_pressure:
+      return "highest_pressure";
+    case AnswerKind::lowest_pressure:
+      return "lowest_pressure";
+    case AnswerKind::velocity:
+      return "velocity";
   }
   return "";
 }
@@ -27,22 +33,31 @@ std::string unit_name(AnswerKind kind) {
   switch (kind) {
     case AnswerKind::pressure_drop:
     case AnswerKind::highest_pressure:
-    case AnswerKind::lowest_pressure: return "Pa";
-    case AnswerKind::flow: return "m3/s";
-    case AnswerKind::head: return "m";
-    case AnswerKind::velocity: return "m/s";
+    case AnswerKind::lowest_pressure:
+      return "Pa";
+    case AnswerKind::flow:
+      return "m3/s";
+    case AnswerKind::head:
+      return "m";
+    case AnswerKind::velocity:
+      return "m/s";
   }
   return "";
 }
 
 base::Dimension dimension_of(AnswerKind kind) {
   switch (kind) {
-    case AnswerKind::pressure_drop: return base::Dimension::pressure_difference;
+    case AnswerKind::pressure_drop:
+      return base::Dimension::pressure_difference;
     case AnswerKind::highest_pressure:
-    case AnswerKind::lowest_pressure: return base::Dimension::pressure;
-    case AnswerKind::flow: return base::Dimension::flow;
-    case AnswerKind::head: return base::Dimension::length;
-    case AnswerKind::velocity: return base::Dimension::velocity;
+    case AnswerKind::lowest_pressure:
+      return base::Dimension::pressure;
+    case AnswerKind::flow:
+      return base::Dimension::flow;
+    case AnswerKind::head:
+      return base::Dimension::length;
+    case AnswerKind::velocity:
+      return base::Dimension::velocity;
   }
   return base::Dimension::number;
 }
@@ -88,7 +103,8 @@ std::vector<LimitAnswer> judge_steady(const network::Case& c, const Central& cen
   return answers;
 }
 
-std::vector<LimitAnswer> judge_run(const network::Plan& plan, const std::vector<double>& value,
+std::vector<LimitAnswer> judge_run(const network::Plan& plan,
+                                   const std::vector<double>& value,
                                    const std::vector<double>& grid_bound) {
   std::vector<LimitAnswer> answers;
   for (std::size_t i = 0; i < plan.limits.size(); ++i) {

@@ -18,7 +18,8 @@ namespace headband::program {
 [[nodiscard]] std::vector<answers::LimitAnswer> judge_steady(const network::Case& c, const Central& central);
 
 /// The limits by one run: its value and grid bound per limit, as Plan::limits.
-[[nodiscard]] std::vector<answers::LimitAnswer> judge_run(const network::Plan& plan, const std::vector<double>& value,
+[[nodiscard]] std::vector<answers::LimitAnswer> judge_run(const network::Plan& plan,
+                                                          const std::vector<double>& value,
                                                           const std::vector<double>& grid_bound);
 
 /// All limits CANNOT TELL, because of `reason`.

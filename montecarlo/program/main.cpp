@@ -1,7 +1,7 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/program/arguments.hpp"
-#include "montecarlo/program/parse.hpp"
 #include "montecarlo/program/output.hpp"
+#include "montecarlo/program/parse.hpp"
 #include "montecarlo/program/signals.hpp"
 #include "montecarlo/program/verbs.hpp"
 

@@ -6,15 +6,15 @@
 
 #include <fmt/format.h>
 
+#include <fcntl.h>
+#include <sys/stat.h>
+#include <unistd.h>
 #include <array>
 #include <cerrno>
 #include <cstdlib>
 #include <cstring>
-#include <fcntl.h>
 #include <filesystem>
 #include <fstream>
-#include <sys/stat.h>
-#include <unistd.h>
 
 namespace headband::program {
 namespace {
@@ -71,7 +71,8 @@ void remark(const Options& options, std::string_view text) {
 }
 
 bool colour_wanted(const Options& options) {
-  return !options.no_colour && ::isatty(STDOUT_FILENO) != 0 && variable("NO_COLOR").empty() && variable("TERM") != "dumb";
+  return !options.no_colour && ::isatty(STDOUT_FILENO) != 0 && variable("NO_COLOR").empty() &&
+         variable("TERM") != "dumb";
 }
 
 bool unicode_wanted() {
@@ -86,7 +87,7 @@ bool unicode_wanted() {
 }
 
 void check_can_create(const std::string& path, const Replace& replace) {
-  struct stat status {};
+  struct stat status{};
   if (::stat(path.c_str(), &status) == 0) {
     if (S_ISDIR(status.st_mode)) cannot_create(path, "it is a folder");
     if (!S_ISREG(status.st_mode) && !replace.force) cannot_create(path, "it is not an ordinary file");
@@ -100,9 +101,11 @@ void check_can_create(const std::string& path, const Replace& replace) {
     cannot_create(path, std::strerror(errno));
   }
   const std::string folder = folder_of(path);
-  if (::stat(folder.c_str(), &status) != 0) cannot_create(path, fmt::format("folder {}: {}", folder, std::strerror(errno)));
+  if (::stat(folder.c_str(), &status) != 0)
+    cannot_create(path, fmt::format("folder {}: {}", folder, std::strerror(errno)));
   if (!S_ISDIR(status.st_mode)) cannot_create(path, fmt::format("{} is not a folder", folder));
-  if (::access(folder.c_str(), W_OK | X_OK) != 0) cannot_create(path, fmt::format("folder {}: {}", folder, std::strerror(errno)));
+  if (::access(folder.c_str(), W_OK | X_OK) != 0)
+    cannot_create(path, fmt::format("folder {}: {}", folder, std::strerror(errno)));
 }
 
 void write_text(const std::string& path, std::string_view text, const Replace& replace) {

@@ -4,8 +4,8 @@
 #include "montecarlo/program/arguments.hpp"
 #include "montecarlo/program/output.hpp"
 
-#include <CLI/CLI.hpp>
 #include <fmt/format.h>
+#include <CLI/CLI.hpp>
 
 #include <algorithm>
 #include <limits>
@@ -55,7 +55,8 @@ void collect(const VerbWords& verb, std::vector<std::string> rest, Collected& in
     throw UsageError(fmt::format("{} ({}); headband {} --help shows the options", error.what(), verb.name, verb.name));
   }
   for (const auto& [name, text] : into.texts) {
-    if (text.empty() && app.get_option(name)->count() > 0) throw UsageError(fmt::format("{} is given without a value", name));
+    if (text.empty() && app.get_option(name)->count() > 0)
+      throw UsageError(fmt::format("{} is given without a value", name));
   }
   for (const auto& extra : app.remaining()) {
     if (!extra.starts_with('-') || extra == "-") continue;
@@ -94,16 +95,20 @@ Options parse(const std::vector<std::string>& arguments) {
   options.help = help;
   if (help) return options;
   if (!verb.ready) {
-    throw UsageError(fmt::format("{} ({}) is not computed yet by this version; headband --help lists what is", verb.name, verb.what));
+    throw UsageError(fmt::format(
+        "{} ({}) is not computed yet by this version; headband --help lists what is", verb.name, verb.what));
   }
   Collected collected;
   collect(verb, rest, collected);
   options.command = without_folders(arguments);
   options.words = collected.words;
   const int words = static_cast<int>(options.words.size());
-  if (words < verb.fewest) throw UsageError(fmt::format("{} needs {}; headband {} --help shows more", verb.name, verb.words, verb.name));
+  if (words < verb.fewest)
+    throw UsageError(fmt::format("{} needs {}; headband {} --help shows more", verb.name, verb.words, verb.name));
   if (words > verb.most) {
-    throw UsageError(fmt::format("{} takes {}; '{}' is one word too many", verb.name, verb.words,
+    throw UsageError(fmt::format("{} takes {}; '{}' is one word too many",
+                                 verb.name,
+                                 verb.words,
                                  options.words[static_cast<std::size_t>(verb.most)]));
   }
   if (std::ranges::any_of(options.words, [](const auto& w) { return w.empty(); })) throw UsageError("a word is empty");
@@ -118,7 +123,8 @@ Options parse(const std::vector<std::string>& arguments) {
   if (!options.units.empty() && options.units != "si" && options.units != "us") {
     throw UsageError(fmt::format("--units takes si or us, not '{}'", options.units));
   }
-  if (!text("--threads").empty()) options.threads = static_cast<int>(whole_number("--threads", text("--threads"), 1, 1024));
+  if (!text("--threads").empty())
+    options.threads = static_cast<int>(whole_number("--threads", text("--threads"), 1, 1024));
   if (!text("--seed").empty()) {
     options.seed = whole_number("--seed", text("--seed"), 0, std::numeric_limits<unsigned long long>::max());
   }

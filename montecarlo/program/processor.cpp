@@ -3,8 +3,8 @@
 // The release is built for x86-64-v3. On an older processor the first such instruction would end the program without a
 // word, so this file is built for plain x86-64 and looks before any other code of ours runs, constructors included.
 
-#include <cstring>
 #include <unistd.h>
+#include <cstring>
 
 #if !defined(HEADBAND_PORTABLE) && (defined(__x86_64__) || defined(_M_X64))
 

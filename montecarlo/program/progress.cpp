@@ -5,9 +5,9 @@
 
 #include <fmt/format.h>
 
+#include <unistd.h>
 #include <algorithm>
 #include <cstdlib>
-#include <unistd.h>
 
 namespace headband::program {
 

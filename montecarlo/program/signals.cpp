@@ -23,7 +23,7 @@ void on_signal(int signal) {
 }
 
 void handle(int signal, void (*handler)(int)) {
-  struct sigaction action {};
+  struct sigaction action{};
   action.sa_handler = handler;
   sigemptyset(&action.sa_mask);
   ::sigaction(signal, &action, nullptr);

@@ -14,14 +14,18 @@
 
 namespace headband::program {
 
-ExitCode tell_problems(const Options& options, const std::string& file_name, const std::string& text,
+ExitCode tell_problems(const Options& options,
+                       const std::string& file_name,
+                       const std::string& text,
                        const base::Problems& problems) {
   say(casefile::problems_text(file_name, text, problems));
   if (options.json) print(show::problems_json(problems));
   return ExitCode::wrong_case;
 }
 
-ExitCode with_case(const Options& options, const std::string& verb, const std::function<ExitCode(network::Case&)>& work) {
+ExitCode with_case(const Options& options,
+                   const std::string& verb,
+                   const std::function<ExitCode(network::Case&)>& work) {
   limit_memory();
   auto reading = casefile::read_file(options.words.front());
   auto& c = reading.value;
@@ -54,7 +58,8 @@ void print_study(const Options& options, const answers::Study& study) {
   if (options.json) {
     print(show::json(study));
   } else {
-    print(show::summary(study, {.colour = colour_wanted(options), .unicode = unicode_wanted(), .units = options.units}));
+    print(
+        show::summary(study, {.colour = colour_wanted(options), .unicode = unicode_wanted(), .units = options.units}));
   }
 }
 

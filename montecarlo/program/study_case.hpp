@@ -14,20 +14,23 @@ namespace headband::program {
 
 /// Tells what is wrong with a case: words on standard error, with --json the problems object on standard output.
 /// @return wrong_case
-ExitCode tell_problems(const Options& options, const std::string& file_name, const std::string& text,
+ExitCode tell_problems(const Options& options,
+                       const std::string& file_name,
+                       const std::string& text,
                        const base::Problems& problems);
 
 /// Reads the case named by the first word and hands it to `work`. Problems of the case, and those `work` throws, are
 /// told with their place in the file; nothing is written then.
 /// @param verb as `casefile::refused_by_verb` knows it; empty: nothing is refused
-[[nodiscard]] ExitCode with_case(const Options& options, const std::string& verb,
+[[nodiscard]] ExitCode with_case(const Options& options,
+                                 const std::string& verb,
                                  const std::function<ExitCode(network::Case&)>& work);
 
 /// Files a verb writes, looked at before anything is computed.
 struct Outputs {
-  std::string result;      ///< path of the result file
-  bool own_name = true;    ///< the name is headband's
-  std::string page;        ///< empty: none
+  std::string result;    ///< path of the result file
+  bool own_name = true;  ///< the name is headband's
+  std::string page;      ///< empty: none
 };
 
 /// @param verb "flow", "surge", "band". @throws base::IoError (cannot_create)

@@ -85,7 +85,8 @@ void fill_point(const answers::Study& study, std::size_t pipe, double at, SpotAn
   spot.min_head = between(s.chainage, s.head_min, at);
   spot.max_pressure = weight * (spot.max_head - spot.elevation);
   spot.min_pressure = weight * (spot.min_head - spot.elevation);
-  const auto nearest = std::ranges::min_element(s.chainage, {}, [at](double x) { return std::abs(x - at); }) - s.chainage.begin();
+  const auto nearest =
+      std::ranges::min_element(s.chainage, {}, [at](double x) { return std::abs(x - at); }) - s.chainage.begin();
   spot.time_of_max = s.time_of_max[static_cast<std::size_t>(nearest)];
   spot.time_of_min = s.time_of_min[static_cast<std::size_t>(nearest)];
 }
@@ -116,8 +117,10 @@ double chainage_of(const std::string& text, const answers::PipeAnswer& pipe) {
   }
   const double at = base::to_si(unit->unit, number);
   if (!(at >= 0.0 && at <= pipe.length)) {
-    throw UsageError(fmt::format("{} ends at {}; {} is not on it", pipe.name,
-                                 base::shown(pipe.length, Dimension::length, base::UnitFamily::si), text));
+    throw UsageError(fmt::format("{} ends at {}; {} is not on it",
+                                 pipe.name,
+                                 base::shown(pipe.length, Dimension::length, base::UnitFamily::si),
+                                 text));
   }
   return at;
 }
@@ -154,7 +157,8 @@ void fill(const answers::Study& study, const std::string& place, SpotAnswer& spo
     return;
   }
   const std::string hint = did_you_mean(name, known);
-  throw UsageError(fmt::format("the result knows no place or pipe '{}'{}", name,
+  throw UsageError(fmt::format("the result knows no place or pipe '{}'{}",
+                               name,
                                hint.empty() ? fmt::format("; there are: {}", fmt::join(known, ", ")) : hint));
 }
 
@@ -166,9 +170,14 @@ std::string band_line(const answers::Study& study, const answers::BandAnswer& an
         answer.quantiles, {}, [&](const answers::QuantileAnswer& q) { return std::abs(q.probability - probability); });
     return near == answer.quantiles.end() ? answers::missing : near->value;
   };
-  return fmt::format("  {}: median {}, {} band {} to {} ({} draws, {} failed)\n", answer.name, amounts.of(at(0.5), dimension),
-                     show::percent(study.bands->coverage), amounts.of(at(tail), dimension), amounts.of(at(1.0 - tail), dimension),
-                     answer.draws, answer.failed);
+  return fmt::format("  {}: median {}, {} band {} to {} ({} draws, {} failed)\n",
+                     answer.name,
+                     amounts.of(at(0.5), dimension),
+                     show::percent(study.bands->coverage),
+                     amounts.of(at(tail), dimension),
+                     amounts.of(at(1.0 - tail), dimension),
+                     answer.draws,
+                     answer.failed);
 }
 
 SpotAnswer spot_answer(const answers::Study& study, const std::string& place) {
@@ -190,15 +199,21 @@ std::string spot_text(const answers::Study& study, const SpotAnswer& spot, const
   const show::Amounts amounts(study, units);
   std::string text = spot.name + "\n";
   if (std::isfinite(spot.head)) {
-    text += fmt::format("  steady: {} (head {}, elevation {})\n", amounts.of(spot.pressure, Dimension::pressure),
-                        amounts.of(spot.head, Dimension::length), amounts.of(spot.elevation, Dimension::length));
+    text += fmt::format("  steady: {} (head {}, elevation {})\n",
+                        amounts.of(spot.pressure, Dimension::pressure),
+                        amounts.of(spot.head, Dimension::length),
+                        amounts.of(spot.elevation, Dimension::length));
   }
   if (std::isfinite(spot.flow)) {
-    text += fmt::format("  steady flow: {}, {}\n", amounts.of(spot.flow, Dimension::flow), amounts.of(spot.velocity, Dimension::velocity));
+    text += fmt::format("  steady flow: {}, {}\n",
+                        amounts.of(spot.flow, Dimension::flow),
+                        amounts.of(spot.velocity, Dimension::velocity));
   }
   if (std::isfinite(spot.max_pressure)) {
-    text += fmt::format("  highest: {} at {}\n  lowest:  {} at {}\n", amounts.of(spot.max_pressure, Dimension::pressure),
-                        amounts.of(spot.time_of_max, Dimension::time), amounts.of(spot.min_pressure, Dimension::pressure),
+    text += fmt::format("  highest: {} at {}\n  lowest:  {} at {}\n",
+                        amounts.of(spot.max_pressure, Dimension::pressure),
+                        amounts.of(spot.time_of_max, Dimension::time),
+                        amounts.of(spot.min_pressure, Dimension::pressure),
                         amounts.of(spot.time_of_min, Dimension::time));
     const std::string vapour = show::vapour_remark(study);
     if (!vapour.empty()) text += fmt::format("  {}\n", vapour);
@@ -207,8 +222,11 @@ std::string spot_text(const answers::Study& study, const SpotAnswer& spot, const
   for (const auto* limit : spot.limits) {
     const Dimension dimension = show::dimension_of_kind(limit->kind);
     const std::string chance = show::chance_words(*limit);
-    text += fmt::format("  limit {} ({}): margin {}{}: {}\n", limit->name, amounts.of(limit->limit, dimension),
-                        amounts.width(limit->margin, dimension, 3), chance.empty() ? "" : ", not kept in " + chance,
+    text += fmt::format("  limit {} ({}): margin {}{}: {}\n",
+                        limit->name,
+                        amounts.of(limit->limit, dimension),
+                        amounts.width(limit->margin, dimension, 3),
+                        chance.empty() ? "" : ", not kept in " + chance,
                         show::words_of(limit->verdict));
   }
   return text;
@@ -217,10 +235,14 @@ std::string spot_text(const answers::Study& study, const SpotAnswer& spot, const
 std::string spot_json(const answers::Study& study, const SpotAnswer& spot) {
   using Json = nlohmann::ordered_json;
   const auto number = [](double value) { return std::isfinite(value) ? Json(value) : Json(nullptr); };
-  Json object = {{"headband", study.provenance.version}, {"verb", "at"},
-                 {"case", show::file_name_of(study.provenance.case_file)}, {"place", spot.name},
-                 {"elevation_m", number(spot.elevation)}, {"head_m", number(spot.head)},
-                 {"pressure_Pa", number(spot.pressure)}, {"flow_m3_per_s", number(spot.flow)},
+  Json object = {{"headband", study.provenance.version},
+                 {"verb", "at"},
+                 {"case", show::file_name_of(study.provenance.case_file)},
+                 {"place", spot.name},
+                 {"elevation_m", number(spot.elevation)},
+                 {"head_m", number(spot.head)},
+                 {"pressure_Pa", number(spot.pressure)},
+                 {"flow_m3_per_s", number(spot.flow)},
                  {"velocity_m_per_s", number(spot.velocity)}};
   if (study.transient) {
     object["max_head_m"] = number(spot.max_head);
@@ -232,21 +254,31 @@ std::string spot_json(const answers::Study& study, const SpotAnswer& spot) {
   }
   Json limits = Json::array();
   for (const auto* limit : spot.limits) {
-    limits.push_back({{"name", limit->name}, {"kind", limit->kind}, {"unit", limit->unit}, {"limit", number(limit->limit)},
-                      {"value", number(limit->value)}, {"margin", number(limit->margin)},
-                      {"probability", number(limit->probability)}, {"probability_lower", number(limit->probability_lower)},
-                      {"probability_upper", number(limit->probability_upper)},
-                      {"verdict", limit->verdict == answers::Verdict::none ? Json(nullptr) : Json(show::words_of(limit->verdict))}});
+    limits.push_back(
+        {{"name", limit->name},
+         {"kind", limit->kind},
+         {"unit", limit->unit},
+         {"limit", number(limit->limit)},
+         {"value", number(limit->value)},
+         {"margin", number(limit->margin)},
+         {"probability", number(limit->probability)},
+         {"probability_lower", number(limit->probability_lower)},
+         {"probability_upper", number(limit->probability_upper)},
+         {"verdict", limit->verdict == answers::Verdict::none ? Json(nullptr) : Json(show::words_of(limit->verdict))}});
   }
   object["limits"] = std::move(limits);
   Json answers = Json::object();
   for (const auto* answer : spot.bands) {
     Json quantiles = Json::object();
     for (const auto& q : answer->quantiles) {
-      quantiles[show::shortest_decimal(q.probability)] = Json::array({number(q.value), number(q.lower), number(q.upper)});
+      quantiles[show::shortest_decimal(q.probability)] =
+          Json::array({number(q.value), number(q.lower), number(q.upper)});
     }
-    answers[answer->name] = {{"unit", answer->unit}, {"central", number(answer->central)}, {"mean", number(answer->mean)},
-                             {"sd", number(answer->standard_deviation)}, {"quantiles", std::move(quantiles)}};
+    answers[answer->name] = {{"unit", answer->unit},
+                             {"central", number(answer->central)},
+                             {"mean", number(answer->mean)},
+                             {"sd", number(answer->standard_deviation)},
+                             {"quantiles", std::move(quantiles)}};
   }
   object["answers"] = std::move(answers);
   return show::json_text(object);

@@ -13,8 +13,8 @@
 
 #include <fmt/format.h>
 
-#include <optional>
 #include <unistd.h>
+#include <optional>
 #include <utility>
 
 namespace headband::program {
@@ -43,7 +43,9 @@ montecarlo::CentralRun steady_central(const Central& central) {
 /// The draws of an interrupted band: read in a child first, for the file may be damaged; then it must be of this case.
 /// @return the code to end with, or nothing where `draws` can be taken up
 /// @throws base::InputError, base::IoError
-std::optional<ExitCode> take_up(const Options& options, const std::string& partial, const answers::Study& study,
+std::optional<ExitCode> take_up(const Options& options,
+                                const std::string& partial,
+                                const answers::Study& study,
                                 std::optional<answers::Bands>& draws) {
   if (::access(partial.c_str(), F_OK) != 0) {
     throw base::IoError(base::IoFailure::missing, fmt::format("nothing to resume: no {}", partial));
@@ -61,7 +63,11 @@ std::optional<ExitCode> take_up(const Options& options, const std::string& parti
   const bool same = was.case_sha256 == is.case_sha256 && was.side_files == is.side_files && was.seed == is.seed &&
                     was.version == is.version;
   if (!same || !before.bands || before.bands->surged != options.surge) {
-    throw base::InputError({{{}, "", fmt::format("{} was begun with another case, seed, version or --surge", partial), "", "",
+    throw base::InputError({{{},
+                             "",
+                             fmt::format("{} was begun with another case, seed, version or --surge", partial),
+                             "",
+                             "",
                              "start anew without --resume, or give back the case it was begun with"}});
   }
   draws = std::move(before.bands);
@@ -74,15 +80,18 @@ montecarlo::CentralRun run_central(const network::Case& c, const Central& centra
   if (!central.solved) return {};
   if (!surge) return steady_central(central);
   transient::SurgeRun run = transient::run_surge(c, central.plan, central.values, central.state);
-  montecarlo::CentralRun numbers{run.answer_value, run.limit_value, run.answer_grid_bound, run.limit_grid_bound, run.cavity,
-                                 run.transient.time};
+  montecarlo::CentralRun numbers{
+      run.answer_value, run.limit_value, run.answer_grid_bound, run.limit_grid_bound, run.cavity, run.transient.time};
   add_run(study, std::move(run));
   return numbers;
 }
 
 /// Draws, with progress on the terminal, a checkpoint each minute and a gentle stop.
-montecarlo::BandOutcome sample(const network::Case& c, const network::Plan& plan, const montecarlo::CentralRun& numbers,
-                               const Options& options, montecarlo::BandOptions band,
+montecarlo::BandOutcome sample(const network::Case& c,
+                               const network::Plan& plan,
+                               const montecarlo::CentralRun& numbers,
+                               const Options& options,
+                               montecarlo::BandOptions band,
                                const std::function<void(const answers::Bands&)>& keep) {
   Progress progress(options);
   band.progress = [&](long long done, long long all) { progress.show(done, all); };

@@ -34,8 +34,8 @@ struct Compared {
 
 struct Comparison {
   std::vector<Compared> numbers;
-  bool paired = false;      ///< draws of both belong together
-  std::string not_paired;   ///< why not, in words
+  bool paired = false;     ///< draws of both belong together
+  std::string not_paired;  ///< why not, in words
 };
 
 using answers::Bands;
@@ -122,7 +122,10 @@ Comparison compare(const Study& before, const Study& after) {
   return result;
 }
 
-std::string comparison_text(const Study& before, const Study& after, const Comparison& comparison, const std::string& units) {
+std::string comparison_text(const Study& before,
+                            const Study& after,
+                            const Comparison& comparison,
+                            const std::string& units) {
   const show::Amounts amounts(before, units);
   const auto title = [](const Study& s) {
     return fmt::format("{} ({}, {})", s.title, show::file_name_of(s.provenance.case_file), s.verb);
@@ -130,17 +133,24 @@ std::string comparison_text(const Study& before, const Study& after, const Compa
   std::string text = fmt::format("before: {}\nafter:  {}\n\n", title(before), title(after));
   for (const auto& n : comparison.numbers) {
     const auto dimension = show::dimension_of_kind(n.kind);
-    text += fmt::format("  {}: {} -> {}, change {}", n.name, amounts.of(n.before, dimension), amounts.of(n.after, dimension),
+    text += fmt::format("  {}: {} -> {}, change {}",
+                        n.name,
+                        amounts.of(n.before, dimension),
+                        amounts.of(n.after, dimension),
                         amounts.width(n.difference, dimension, 3));
     if (n.pairs > 0) {
-      text += fmt::format("; by the same draws {} ({} to {}, {} pairs)", amounts.width(n.difference_median, dimension, 3),
-                          amounts.width(n.difference_low, dimension, 3), amounts.width(n.difference_high, dimension, 3), n.pairs);
+      text += fmt::format("; by the same draws {} ({} to {}, {} pairs)",
+                          amounts.width(n.difference_median, dimension, 3),
+                          amounts.width(n.difference_low, dimension, 3),
+                          amounts.width(n.difference_high, dimension, 3),
+                          n.pairs);
     }
     text += "\n";
   }
   for (const auto& limit : before.limits) {
     if (const auto* other = named(after.limits, limit.name)) {
-      text += fmt::format("  limit {}: {} -> {}\n", limit.name, show::words_of(limit.verdict), show::words_of(other->verdict));
+      text += fmt::format(
+          "  limit {}: {} -> {}\n", limit.name, show::words_of(limit.verdict), show::words_of(other->verdict));
     }
   }
   if (!comparison.paired && (before.bands || after.bands)) {
@@ -151,14 +161,20 @@ std::string comparison_text(const Study& before, const Study& after, const Compa
 
 std::string comparison_json(const Study& before, const Study& after, const Comparison& comparison) {
   using Json = nlohmann::ordered_json;
-  const auto verdict = [](answers::Verdict v) { return v == answers::Verdict::none ? Json(nullptr) : Json(show::words_of(v)); };
+  const auto verdict = [](answers::Verdict v) {
+    return v == answers::Verdict::none ? Json(nullptr) : Json(show::words_of(v));
+  };
   Json numbers = Json::object();
   for (const auto& n : comparison.numbers) {
     std::string key = n.name;
     for (int i = 2; numbers.contains(key); ++i) key = fmt::format("{} {}", n.name, i);
-    numbers[key] = {{"kind", n.kind}, {"before", number(n.before)}, {"after", number(n.after)},
-                    {"difference", number(n.difference)}, {"pairs", n.pairs},
-                    {"difference_band", Json::array({number(n.difference_low), number(n.difference_median), number(n.difference_high)})}};
+    numbers[key] = {{"kind", n.kind},
+                    {"before", number(n.before)},
+                    {"after", number(n.after)},
+                    {"difference", number(n.difference)},
+                    {"pairs", n.pairs},
+                    {"difference_band",
+                     Json::array({number(n.difference_low), number(n.difference_median), number(n.difference_high)})}};
   }
   Json limits = Json::object();
   for (const auto& limit : before.limits) {
@@ -166,11 +182,14 @@ std::string comparison_json(const Study& before, const Study& after, const Compa
       limits[limit.name] = {{"before", verdict(limit.verdict)}, {"after", verdict(other->verdict)}};
     }
   }
-  return show::json_text({{"headband", after.provenance.version}, {"verb", "compare"},
+  return show::json_text({{"headband", after.provenance.version},
+                          {"verb", "compare"},
                           {"before", show::file_name_of(before.provenance.case_file)},
                           {"after", show::file_name_of(after.provenance.case_file)},
                           {"verdict", Json::array({verdict(before.verdict), verdict(after.verdict)})},
-                          {"paired", comparison.paired}, {"numbers", std::move(numbers)}, {"limits", std::move(limits)}});
+                          {"paired", comparison.paired},
+                          {"numbers", std::move(numbers)},
+                          {"limits", std::move(limits)}});
 }
 
 }  // namespace
@@ -179,7 +198,8 @@ ExitCode verb_compare(const Options& options) {
   const auto work = [&] {
     const answers::Study before = resultfile::read(options.words[0]), after = resultfile::read(options.words[1]);
     const Comparison comparison = compare(before, after);
-    print(options.json ? comparison_json(before, after, comparison) : comparison_text(before, after, comparison, options.units));
+    print(options.json ? comparison_json(before, after, comparison)
+                       : comparison_text(before, after, comparison, options.units));
     return ExitCode::done;
   };
   return guarded(options.words[0] + " or " + options.words[1], [&] { return told(options, work); });

@@ -19,7 +19,8 @@ ExitCode verb_new(const Options& options) {
   const std::string& kind = options.words.front();
   const std::string starter = casefile::starter(kind);
   if (starter.empty()) {
-    throw UsageError(fmt::format("no starter case '{}'; there are: {}{}", kind, fmt::join(kinds, ", "), did_you_mean(kind, kinds)));
+    throw UsageError(
+        fmt::format("no starter case '{}'; there are: {}{}", kind, fmt::join(kinds, ", "), did_you_mean(kind, kinds)));
   }
   const std::string path = options.words.size() > 1 ? options.words[1] : kind + ".toml";
   // A case is the user's work from the first edit on: never replaced without -f, whoever named it.

@@ -77,7 +77,8 @@ class SideFiles {
  public:
   explicit SideFiles(const answers::Provenance& provenance) {
     std::string pattern = (std::filesystem::temp_directory_path() / "headband-XXXXXX").string();
-    if (::mkdtemp(pattern.data()) == nullptr) throw base::IoError(base::IoFailure::cannot_create, "cannot create a folder for the tables of the case");
+    if (::mkdtemp(pattern.data()) == nullptr)
+      throw base::IoError(base::IoFailure::cannot_create, "cannot create a folder for the tables of the case");
     folder_ = pattern;
     for (const auto& file : provenance.side_files) {
       std::ofstream(std::filesystem::path(folder_) / file_name(file[0]), std::ios::binary) << file[2];
@@ -115,10 +116,15 @@ ExitCode replay(const Options& options) {
   const long long draw = draw_meant(options, study);
   const SideFiles side(study.provenance);
   const auto reading = casefile::read_text(study.provenance.case_file, study.provenance.case_text, side.folder());
-  if (!reading.problems.empty()) throw base::IoError(base::IoFailure::damaged, fmt::format("{}: the case it holds cannot be read", result));
+  if (!reading.problems.empty())
+    throw base::IoError(base::IoFailure::damaged, fmt::format("{}: the case it holds cannot be read", result));
   const auto scores = montecarlo::scores_of_draw(reading.value, study.bands->seed, study.bands->draws, draw);
-  const std::string note = fmt::format("draw {} of {} ({}, seed {}) of {}", draw, study.bands->draws, study.bands->design,
-                                       study.bands->seed, study.provenance.case_file);
+  const std::string note = fmt::format("draw {} of {} ({}, seed {}) of {}",
+                                       draw,
+                                       study.bands->draws,
+                                       study.bands->design,
+                                       study.bands->seed,
+                                       study.provenance.case_file);
   const std::string text = casefile::write_case(reading.value, scores, note);
   if (options.out.empty()) {
     print(text);

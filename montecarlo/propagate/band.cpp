@@ -13,9 +13,9 @@
 #include "montecarlo/propagate/stored_runs.hpp"
 #include "montecarlo/sampling/sampler.hpp"
 
+#include <fmt/format.h>
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
 
 namespace headband::montecarlo {
 
@@ -23,14 +23,17 @@ namespace {
 
 using network::Design;
 
-constexpr long long first_look = 256;          ///< draws before an `until` rule is asked for the first time
-constexpr long long most_draws = 1LL << 20;    ///< where an `until` rule gives up
+constexpr long long first_look = 256;        ///< draws before an `until` rule is asked for the first time
+constexpr long long most_draws = 1LL << 20;  ///< where an `until` rule gives up
 
 std::string design_word(Design design) {
   switch (design) {
-    case Design::plain: return "plain";
-    case Design::latin_hypercube: return "latin hypercube";
-    case Design::sobol: return "sobol";
+    case Design::plain:
+      return "plain";
+    case Design::latin_hypercube:
+      return "latin hypercube";
+    case Design::sobol:
+      return "sobol";
   }
   return {};
 }
@@ -55,11 +58,16 @@ class BandRun {
     const bool until = c.band.until_share > 0.0;
     draws_ = draws_of_design(c.band.design, until ? first_look : wish_);
     if (until && c.band.design == Design::latin_hypercube) {
-      throw base::InputError({{c.band.place, "band/until", "a Latin hypercube needs its number of draws beforehand", "until", "",
+      throw base::InputError({{c.band.place,
+                               "band/until",
+                               "a Latin hypercube needs its number of draws beforehand",
+                               "until",
+                               "",
                                "use design = \"sobol\", or give draws"}});
     }
     if (!until && draws_ != c.band.draws) {
-      warn(fmt::format("draws: {} rounded up to {} (a Sobol' design takes 16 times a power of two)", c.band.draws, draws_));
+      warn(fmt::format(
+          "draws: {} rounded up to {} (a Sobol' design takes 16 times a power of two)", c.band.draws, draws_));
     }
   }
 
@@ -87,7 +95,8 @@ class BandRun {
 
   void make_models(const std::vector<double>& times) {
     models_.clear();
-    for (int t = 0; t < std::max(1, options_.threads); ++t) models_.push_back(make_model(case_, plan_, options_.surge, times));
+    for (int t = 0; t < std::max(1, options_.threads); ++t)
+      models_.push_back(make_model(case_, plan_, options_.surge, times));
   }
 
   void warn(const std::string& words) { outcome_.warnings.push_back(words); }
@@ -106,7 +115,9 @@ class BandRun {
     o.blocks_at_once = options_.surge ? 1 : 64;
     o.stop = options_.stop;
     if (options_.progress) {
-      o.progress = [this, done_before](long long done) { options_.progress(done_before + done, std::max(all_work_, done_before + done)); };
+      o.progress = [this, done_before](long long done) {
+        options_.progress(done_before + done, std::max(all_work_, done_before + done));
+      };
     }
     return o;
   }
@@ -123,10 +134,11 @@ class BandRun {
     if (options_.surge && case_.surge.time_step.given()) {
       for (const auto& pipe : case_.pipes) {
         if (!transient::wave_speed_is_uncertain(case_, pipe)) continue;
-        warn(fmt::format("time_step is given: the wave speed of {} is rounded to that grid in every draw (by 1 % at most, "
-                         "unless wave_speed_change allows more), and a spread smaller than that may not show; reaches in "
-                         "its place follow each draw",
-                         pipe.name));
+        warn(fmt::format(
+            "time_step is given: the wave speed of {} is rounded to that grid in every draw (by 1 % at most, "
+            "unless wave_speed_change allows more), and a spread smaller than that may not show; reaches in "
+            "its place follow each draw",
+            pipe.name));
         break;
       }
     }
@@ -144,7 +156,8 @@ class BandRun {
     }
     if (options_.resumed) {
       taken_up_ = take_up_runs(*options_.resumed, table_);
-      if (taken_up_ == 0 && !options_.resumed->run_status.empty()) warn("the draws of the interrupted band do not fit this case: started anew");
+      if (taken_up_ == 0 && !options_.resumed->run_status.empty())
+        warn("the draws of the interrupted band do not fit this case: started anew");
     }
     const long long passes = static_cast<long long>(ranges_.points.size());
     all_work_ = draws_ * passes + budget_work(inputs_, std::min(draws_, budget_draws), options_.surge);
@@ -179,8 +192,10 @@ class BandRun {
       const double reached = widest_doubt();
       if (reached <= share) return true;
       if (draws_ >= most_draws) {
-        warn(fmt::format("until: after {} draws the ends of a band are known to {:.3g} % of its width, not to {:.3g} %", draws_,
-                         100.0 * reached, 100.0 * share));
+        warn(fmt::format("until: after {} draws the ends of a band are known to {:.3g} % of its width, not to {:.3g} %",
+                         draws_,
+                         100.0 * reached,
+                         100.0 * share));
         return true;
       }
       first = draws_;
@@ -190,7 +205,8 @@ class BandRun {
   }
 
   [[nodiscard]] SampleShape shape() const {
-    return {.replicates = case_.band.design == Design::sobol ? sobol_replicates : 1, .confidence = case_.band.confidence};
+    return {.replicates = case_.band.design == Design::sobol ? sobol_replicates : 1,
+            .confidence = case_.band.confidence};
   }
 
   /// The largest half-width of a band end's interval over the answers, as a share of its band.
@@ -198,7 +214,8 @@ class BandRun {
     double widest = 0.0;
     for (const auto& column : table_.answer) {
       const Sample sample(column, table_.status, shape());
-      const auto low = sample.quantile(0.5 * (1.0 - case_.band.coverage)), high = sample.quantile(0.5 * (1.0 + case_.band.coverage));
+      const auto low = sample.quantile(0.5 * (1.0 - case_.band.coverage)),
+                 high = sample.quantile(0.5 * (1.0 + case_.band.coverage));
       const double width = high.value - low.value;
       for (const auto& end : {low, high}) {
         const double doubt = 0.5 * (end.upper - end.lower) / width;
@@ -251,7 +268,8 @@ class BandRun {
       answer.failed = sample.failed();
       const auto median = std::ranges::find(answer.quantiles, 0.5, &answers::QuantileAnswer::probability);
       answer.budget_sampling = 0.5 * (median->upper - median->lower);
-      answer.budget_grid = computed_[i] < central_.answer_grid_bound.size() ? central_.answer_grid_bound[computed_[i]] : 0.0;
+      answer.budget_grid =
+          computed_[i] < central_.answer_grid_bound.size() ? central_.answer_grid_bound[computed_[i]] : 0.0;
       if (medians_[i].size() > 1) {
         const auto [least, most] = std::ranges::minmax(medians_[i]);
         answer.range = {least, most};
@@ -267,7 +285,8 @@ class BandRun {
   }
 
   bool form_budget() {
-    BudgetRequest request{.inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .names = {}, .surge = options_.surge};
+    BudgetRequest request{
+        .inputs = &inputs_, .ranges = &ranges_, .sampler = &*sampler_, .names = {}, .surge = options_.surge};
     for (const auto& answer : outcome_.bands.answers) request.names.push_back(answer.name);
     request.draw_options = draw_options(static_cast<long long>(ranges_.points.size()) * draws_);
     Budget budget = find_budget(request, table_, models_);
@@ -305,7 +324,8 @@ class BandRun {
   /// Quantiles of the head at each kept place over time.
   void form_history() {
     form_histories(table_, outcome_.bands);
-    const long long kept = outcome_.bands.history_draws, wanted = std::min<long long>(table_.draws(), most_history_draws);
+    const long long kept = outcome_.bands.history_draws,
+                    wanted = std::min<long long>(table_.draws(), most_history_draws);
     if (kept > 0 && kept < wanted) warn(fmt::format("bands of histories are those of the first {} draws", kept));
   }
 
@@ -317,13 +337,20 @@ class BandRun {
     bands.failed = bands.draws - by_status[0];
     bands.with_cavity = std::ranges::count(table_.cavity, 1);
     if (bands.failed > 0) {
-      warn(fmt::format("{} of {} draws failed: {} without a steady state, {} not finite, {} with a boundary that did not "
-                       "converge, {} refused by the grid; they count against every upper bound",
-                       bands.failed, bands.draws, by_status[1], by_status[2], by_status[3], by_status[4]));
+      warn(fmt::format(
+          "{} of {} draws failed: {} without a steady state, {} not finite, {} with a boundary that did not "
+          "converge, {} refused by the grid; they count against every upper bound",
+          bands.failed,
+          bands.draws,
+          by_status[1],
+          by_status[2],
+          by_status[3],
+          by_status[4]));
     }
     if (bands.with_cavity > 0 && !central_.cavity) {
       warn(fmt::format("a cavity formed in {} of {} draws, none in the central run: its grid bound does not cover them",
-                       bands.with_cavity, bands.draws));
+                       bands.with_cavity,
+                       bands.draws));
     }
     outcome_.all_failed = bands.draws > 0 && bands.failed == bands.draws;
   }
@@ -377,7 +404,10 @@ class BandRun {
 
 }  // namespace
 
-BandOutcome run_band(const network::Case& c, const network::Plan& plan, const CentralRun& central, const BandOptions& options) {
+BandOutcome run_band(const network::Case& c,
+                     const network::Plan& plan,
+                     const CentralRun& central,
+                     const BandOptions& options) {
   base::Problems problems = check_together(c);
   if (!problems.empty()) throw base::InputError(std::move(problems));
   return BandRun(c, plan, central, options).run();

@@ -14,10 +14,10 @@ namespace headband::montecarlo {
 
 /// What the verb `band` asks beyond the case.
 struct BandOptions {
-  bool surge = false;                      ///< march every draw
-  int threads = 1;                         ///< >= 1
+  bool surge = false;                           ///< march every draw
+  int threads = 1;                              ///< >= 1
   std::optional<unsigned long long> seed = {};  ///< overrides the case's
-  const std::atomic<bool>* stop = nullptr; ///< set by Ctrl-C: finish the block, keep what is done
+  const std::atomic<bool>* stop = nullptr;      ///< set by Ctrl-C: finish the block, keep what is done
   std::function<void(long long done, long long all)> progress = {};  ///< called from the calling thread
   /// Draws of a stopped band of the same case, seed and verb, as `checkpoint` or a stopped BandOutcome gave them.
   std::optional<answers::Bands> resumed = {};
@@ -31,7 +31,7 @@ struct BandOutcome {
   std::vector<answers::LimitAnswer> limits;
   std::vector<std::string> warnings;
   std::vector<std::string> left_out;  ///< answers that this verb does not compute, in words (for standard error)
-  bool stopped = false;    ///< by the user; `bands` holds the draws done
+  bool stopped = false;               ///< by the user; `bands` holds the draws done
   bool all_failed = false;
 };
 
@@ -44,11 +44,15 @@ struct CentralRun {
 };
 
 /// Samples the case: draws, propagates, forms quantiles, probabilities, verdicts, budget.
-[[nodiscard]] BandOutcome run_band(const network::Case& c, const network::Plan& plan, const CentralRun& central,
+[[nodiscard]] BandOutcome run_band(const network::Case& c,
+                                   const network::Plan& plan,
+                                   const CentralRun& central,
                                    const BandOptions& options);
 
 /// Scores of draw `draw` of the case's design: one uniform number per unknown, correlated as the case says.
-[[nodiscard]] std::vector<double> scores_of_draw(const network::Case& c, unsigned long long seed, long long draws,
+[[nodiscard]] std::vector<double> scores_of_draw(const network::Case& c,
+                                                 unsigned long long seed,
+                                                 long long draws,
                                                  long long draw);
 
 }  // namespace headband::montecarlo

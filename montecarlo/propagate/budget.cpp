@@ -75,8 +75,11 @@ std::vector<std::size_t> random_unknowns(const std::vector<Input>& inputs, const
   return random;
 }
 
-void freeze_groups(Passes& passes, const std::vector<Input>& inputs, const std::vector<std::size_t>& random,
-                   const DrawTable& table, Budget& budget) {
+void freeze_groups(Passes& passes,
+                   const std::vector<Input>& inputs,
+                   const std::vector<std::size_t>& random,
+                   const DrawTable& table,
+                   Budget& budget) {
   const auto is_law = [&](std::size_t u) { return inputs[u].friction_law; };
   const auto laws = std::ranges::count_if(random, is_law);
   const bool any_law = laws > 0, any_input = static_cast<std::size_t>(laws) < random.size();
@@ -96,8 +99,11 @@ void freeze_groups(Passes& passes, const std::vector<Input>& inputs, const std::
   }
 }
 
-void exchange_inputs(Passes& passes, const BudgetRequest& request, const std::vector<std::size_t>& random,
-                     const DrawTable& table, Budget& budget) {
+void exchange_inputs(Passes& passes,
+                     const BudgetRequest& request,
+                     const std::vector<std::size_t>& random,
+                     const DrawTable& table,
+                     Budget& budget) {
   const Sampler twin = request.sampler->twin();
   const Exchanger exchanger(*request.sampler, twin);
   const DrawTable other = passes.run([&](long long first, network::Scores<8>& block) { twin.block(first, block); });
@@ -111,9 +117,10 @@ void exchange_inputs(Passes& passes, const BudgetRequest& request, const std::ve
     if (exchanger.correlated(u)) alone = mixed(Exchange::alone);
     const DrawTable& changed = alone ? *alone : company;
     for (std::size_t a = 0; a < budget.answers.size(); ++a) {
-      budget.answers[a].shares.push_back({.input = (*request.inputs)[u].name,
-                                          .first = first_share(other.answer[a], company.answer[a]),
-                                          .total = total_share(first_draws(table.answer[a], budget.draws), changed.answer[a])});
+      budget.answers[a].shares.push_back(
+          {.input = (*request.inputs)[u].name,
+           .first = first_share(other.answer[a], company.answer[a]),
+           .total = total_share(first_draws(table.answer[a], budget.draws), changed.answer[a])});
     }
   }
 }

@@ -65,7 +65,11 @@ class Dealer {
 };
 
 /// One thread's work: blocks until the dealer has none.
-void work(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockModel& model, DrawTable& table,
+void work(Dealer& dealer,
+          std::size_t thread,
+          const ScoreSource& scores,
+          BlockModel& model,
+          DrawTable& table,
           const std::atomic<bool>* stop) {
   network::Scores<8> block_scores;
   BlockAnswers block;
@@ -92,7 +96,6 @@ void work(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockMo
 }
 
 }  // namespace
-
 
 void DrawTable::resize(long long draws) {
   const auto n = static_cast<std::size_t>(draws);
@@ -169,8 +172,12 @@ void DrawTable::store_lane(std::size_t draw, int lane, const BlockAnswers& block
   }
 }
 
-DrawSummary run_draws(long long first, long long last, const ScoreSource& scores, std::vector<BlockModel>& models,
-                      DrawTable& table, const DrawOptions& options) {
+DrawSummary run_draws(long long first,
+                      long long last,
+                      const ScoreSource& scores,
+                      std::vector<BlockModel>& models,
+                      DrawTable& table,
+                      const DrawOptions& options) {
   Dealer dealer(first, last, 8LL * std::max(1, options.blocks_at_once), models.size());
   std::mutex mutex;
   std::condition_variable ended;

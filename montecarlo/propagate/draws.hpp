@@ -28,11 +28,11 @@ inline constexpr std::size_t most_history_draws = 4096, most_history_numbers = s
 
 /// Every number of every draw; failed draws hold not-a-number.
 struct DrawTable {
-  std::vector<std::vector<double>> answer, limit;        ///< [which][draw]
-  std::vector<std::vector<double>> head_max, head_min;   ///< [station][draw], at most 512 MB of them
-  std::size_t history_cells = 0;                         ///< times times probes
-  std::vector<double> history;                           ///< of the draws kept, see `history_place`
-  std::vector<std::int8_t> status, cavity;               ///< [draw]
+  std::vector<std::vector<double>> answer, limit;       ///< [which][draw]
+  std::vector<std::vector<double>> head_max, head_min;  ///< [station][draw], at most 512 MB of them
+  std::size_t history_cells = 0;                        ///< times times probes
+  std::vector<double> history;                          ///< of the draws kept, see `history_place`
+  std::vector<std::int8_t> status, cavity;              ///< [draw]
 
   DrawTable(std::size_t answers, std::size_t limits, std::size_t stations, std::size_t histories = 0)
       : answer(answers), limit(limits), head_max(stations), head_min(stations), history_cells(histories) {}
@@ -45,8 +45,8 @@ struct DrawTable {
   [[nodiscard]] std::size_t history_place(std::size_t cell, std::size_t draw) const {
     return (draw / 8 * history_cells + cell) * 8 + draw % 8;
   }
-  /// Stores the first `lanes` lanes of a block as the draws from `first` on; an answer or limit that is not finite makes
-  /// its draw a failed one (status 2).
+  /// Stores the first `lanes` lanes of a block as the draws from `first` on; an answer or limit that is not finite
+  /// makes its draw a failed one (status 2).
   void store(std::size_t first, int lanes, const BlockAnswers& block);
 
  private:
@@ -56,24 +56,28 @@ struct DrawTable {
 };
 
 struct DrawOptions {
-  int blocks_at_once = 1;                   ///< how many blocks a thread takes at a time, >= 1
-  const std::atomic<bool>* stop = nullptr;  ///< set: threads finish the blocks they hold
-  std::function<void(long long done)> progress = {};  ///< calling thread, about five times a second
+  int blocks_at_once = 1;                               ///< how many blocks a thread takes at a time, >= 1
+  const std::atomic<bool>* stop = nullptr;              ///< set: threads finish the blocks they hold
+  std::function<void(long long done)> progress = {};    ///< calling thread, about five times a second
   std::function<void(long long done)> checkpoint = {};  ///< calling thread: draws `first` … `done - 1` are stored
   double checkpoint_seconds = 60.0;
 };
 
 /// How a run of draws ended.
 struct DrawSummary {
-  long long done = 0;        ///< draws up to this one are stored, whatever stopped the run
+  long long done = 0;  ///< draws up to this one are stored, whatever stopped the run
   bool stopped = false;
-  std::string complaint;     ///< of an exception in a model, the first in draw order; its draws are failed ones
+  std::string complaint;  ///< of an exception in a model, the first in draw order; its draws are failed ones
 };
 
 /// Computes the draws `first` … `last - 1` into `table`, which holds at least `last`.
 /// @param first a multiple of 8
 /// @param models one per thread
-[[nodiscard]] DrawSummary run_draws(long long first, long long last, const ScoreSource& scores,
-                                    std::vector<BlockModel>& models, DrawTable& table, const DrawOptions& options);
+[[nodiscard]] DrawSummary run_draws(long long first,
+                                    long long last,
+                                    const ScoreSource& scores,
+                                    std::vector<BlockModel>& models,
+                                    DrawTable& table,
+                                    const DrawOptions& options);
 
 }  // namespace headband::montecarlo

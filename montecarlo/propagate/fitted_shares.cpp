@@ -4,9 +4,9 @@
 #include "core/base/spread.hpp"
 #include "montecarlo/sensitivity/polynomial.hpp"
 
+#include <fmt/format.h>
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
 
 namespace headband::montecarlo {
 
@@ -23,7 +23,8 @@ Columns scores_of(const Sampler& sampler, long long draws) {
   for (long long first = 0; first < draws; first += 8) {
     sampler.block(first, block);
     for (int lane = 0; lane < 8 && first + lane < draws; ++lane)
-      for (std::size_t u = 0; u < columns.size(); ++u) columns[u][static_cast<std::size_t>(first + lane)] = block[u][lane];
+      for (std::size_t u = 0; u < columns.size(); ++u)
+        columns[u][static_cast<std::size_t>(first + lane)] = block[u][lane];
   }
   return columns;
 }
@@ -86,7 +87,8 @@ void fit_inputs(const BudgetRequest& request, const DrawTable& table, Budget& bu
   const Columns scores = scores_of(*request.sampler, budget.draws);
   std::vector<std::size_t> alone;  // unknowns without correlated company
   for (std::size_t u = 0; u < inputs.size(); ++u) {
-    const bool member = std::ranges::any_of(dependence.members, [u](const auto& m) { return m.unknown == static_cast<int>(u); });
+    const bool member =
+        std::ranges::any_of(dependence.members, [u](const auto& m) { return m.unknown == static_cast<int>(u); });
     const bool range = std::ranges::find(request.ranges->unknown, u) != request.ranges->unknown.end();
     if (!member && !range) alone.push_back(u);
   }
@@ -114,7 +116,8 @@ void fit_inputs(const BudgetRequest& request, const DrawTable& table, Budget& bu
   std::vector<FitInput> stand_alone;
   for (const std::size_t u : alone) stand_alone.push_back(plain_input(inputs[u], scores[u]));
 
-  std::vector<std::vector<answers::SensitivityAnswer>> shares(table.answer.size(), std::vector<answers::SensitivityAnswer>(inputs.size()));
+  std::vector<std::vector<answers::SensitivityAnswer>> shares(table.answer.size(),
+                                                              std::vector<answers::SensitivityAnswer>(inputs.size()));
   std::vector<double> explained(table.answer.size(), 1.0);
   for (const Order& order : orders) {
     std::vector<FitInput> fits = stand_alone;
@@ -122,7 +125,8 @@ void fit_inputs(const BudgetRequest& request, const DrawTable& table, Budget& bu
       for (auto& fit : innovations(dependence, order.members, scores)) fits.push_back(std::move(fit));
     }
     for (std::size_t a = 0; a < table.answer.size(); ++a) {
-      const std::vector<double> answer(table.answer[a].begin(), table.answer[a].begin() + static_cast<std::ptrdiff_t>(budget.draws));
+      const std::vector<double> answer(table.answer[a].begin(),
+                                       table.answer[a].begin() + static_cast<std::ptrdiff_t>(budget.draws));
       const FittedShares fitted = fit_shares(fits, answer);
       explained[a] = std::min(explained[a], fitted.explained);
       if (order.first_of < 0 && order.last_of < 0) {
@@ -148,8 +152,10 @@ void fit_inputs(const BudgetRequest& request, const DrawTable& table, Budget& bu
       budget.answers[a].shares.push_back(share);
     }
     if (!(explained[a] >= remark_under)) {
-      budget.warnings.push_back(fmt::format("variance shares of {}: a smooth model explains {:.0f} % of its variance{}", a < request.names.size() ? request.names[a] : "",
-                                            100.0 * std::max(0.0, explained[a]), explained[a] >= too_little ? "" : "; none are stated"));
+      budget.warnings.push_back(fmt::format("variance shares of {}: a smooth model explains {:.0f} % of its variance{}",
+                                            a < request.names.size() ? request.names[a] : "",
+                                            100.0 * std::max(0.0, explained[a]),
+                                            explained[a] >= too_little ? "" : "; none are stated"));
     }
   }
 }

@@ -3,31 +3,33 @@
 
 #include "montecarlo/bands/sample.hpp"
 
-#include <algorithm>
 #include <fmt/format.h>
+#include <algorithm>
 
 namespace headband::montecarlo {
 
 namespace {
 
-constexpr std::size_t worth_a_band = 64;     ///< draws under which a band of histories says nothing
+constexpr std::size_t worth_a_band = 64;  ///< draws under which a band of histories says nothing
 
 }  // namespace
 
-std::vector<double> history_times(const std::vector<double>& rows, double duration, std::size_t probes, long long draws,
-                                  std::string& warning) {
+std::vector<double> history_times(
+    const std::vector<double>& rows, double duration, std::size_t probes, long long draws, std::string& warning) {
   warning.clear();
   if (probes == 0 || draws <= 0) return {};
   const auto all = static_cast<std::size_t>(draws);
   const std::size_t fit = most_history_numbers / probes;
   if (fit / least_history_times < std::min(all, worth_a_band)) {
-    warning = fmt::format("histories carry no bands: {} places times the draws are too many; name fewer with show places", probes);
+    warning = fmt::format(
+        "histories carry no bands: {} places times the draws are too many; name fewer with show places", probes);
     return {};
   }
   const std::size_t most = std::clamp(fit / std::min(all, most_history_draws), least_history_times, most_history_times);
   std::vector<double> times;
   if (rows.size() < 2) {
-    for (std::size_t i = 0; i < most; ++i) times.push_back(duration * static_cast<double>(i) / static_cast<double>(most - 1));
+    for (std::size_t i = 0; i < most; ++i)
+      times.push_back(duration * static_cast<double>(i) / static_cast<double>(most - 1));
   } else {
     // draws march to the duration; the last row of the central run may lie a little behind it
     std::size_t count = rows.size();
@@ -37,7 +39,8 @@ std::vector<double> history_times(const std::vector<double>& rows, double durati
     times.push_back(rows[count - 1]);
   }
   if (most < most_history_times && times.size() < rows.size()) {
-    warning = fmt::format("bands of histories stand at {} times: {} places times the draws leave no room for more", times.size(), probes);
+    warning = fmt::format(
+        "bands of histories stand at {} times: {} places times the draws leave no room for more", times.size(), probes);
   }
   return times;
 }

@@ -4,9 +4,9 @@
 #include "core/base/units.hpp"
 #include "montecarlo/sampling/sobol.hpp"
 
+#include <fmt/format.h>
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
 
 namespace headband::montecarlo {
 
@@ -21,18 +21,24 @@ std::string distribution_words(const base::Quantity& q) {
   const std::string words = std::visit(
       Overloaded{
           [](const base::Exact&) { return std::string("exact"); },
-          [&](const base::Normal& n) { return fmt::format("normal, median {}, standard deviation {}", q.value, n.standard_deviation); },
+          [&](const base::Normal& n) {
+            return fmt::format("normal, median {}, standard deviation {}", q.value, n.standard_deviation);
+          },
           [&](const base::LogNormal& n) {
-            return fmt::format("lognormal, median {}, standard deviation of the logarithm {}", q.value, n.log_standard_deviation);
+            return fmt::format(
+                "lognormal, median {}, standard deviation of the logarithm {}", q.value, n.log_standard_deviation);
           },
           [](const base::Even& e) { return fmt::format("even, {} to {}", e.low, e.high); },
-          [&](const base::Triangle& t) { return fmt::format("triangle, {} to {}, most likely {}", t.low, t.high, q.value); },
+          [&](const base::Triangle& t) {
+            return fmt::format("triangle, {} to {}, most likely {}", t.low, t.high, q.value);
+          },
           [](const base::NotRandom& r) { return fmt::format("not random, {} to {}", r.low, r.high); },
       },
       q.spread);
   if (!q.cut.active()) return words;
   const bool low = std::isfinite(q.cut.low), high = std::isfinite(q.cut.high);
-  return words + (low ? fmt::format(", not below {}", q.cut.low) : "") + (high ? fmt::format(", not above {}", q.cut.high) : "");
+  return words + (low ? fmt::format(", not below {}", q.cut.low) : "") +
+         (high ? fmt::format(", not above {}", q.cut.high) : "");
 }
 
 template <class T>
@@ -51,15 +57,21 @@ void fill_choice(const network::Choice<T>& choice, std::vector<Input>& inputs) {
   double before = 0.0;
   for (std::size_t i = 0; i < best; ++i) before += input.weights[i];
   input.central_score = before + 0.5 * input.weights[best];
-  input.distribution = fmt::format("choice of {}, numbered from 0, weights {:.6g}", input.weights.size(), fmt::join(input.weights, " : "));
+  input.distribution = fmt::format(
+      "choice of {}, numbered from 0, weights {:.6g}", input.weights.size(), fmt::join(input.weights, " : "));
 }
 
-std::string point_name(const network::Case& c, const std::vector<Input>& inputs, const Ranges& ranges,
+std::string point_name(const network::Case& c,
+                       const std::vector<Input>& inputs,
+                       const Ranges& ranges,
                        const std::vector<double>& place) {
   std::string words;
   for (std::size_t i = 0; i < place.size(); ++i) {
     const Input& input = inputs[ranges.unknown[i]];
-    words += fmt::format("{}{} = {:.6g}{}", words.empty() ? "" : ", ", c.unknowns[ranges.unknown[i]].name, input.value(place[i]),
+    words += fmt::format("{}{} = {:.6g}{}",
+                         words.empty() ? "" : ", ",
+                         c.unknowns[ranges.unknown[i]].name,
+                         input.value(place[i]),
                          input.units == "1" ? "" : " " + input.units);
   }
   return words;
@@ -89,7 +101,8 @@ std::vector<Input> inputs_of(const network::Case& c) {
     input.units = unit.empty() ? "1" : std::string(unit);
     input.distribution = distribution_words(q);
     const bool range = std::holds_alternative<base::NotRandom>(q.spread);
-    if (!range) input.central_score = std::clamp(base::probability(q.spread, q.cut, q.value, q.value), 0x1p-53, 1.0 - 0x1p-53);
+    if (!range)
+      input.central_score = std::clamp(base::probability(q.spread, q.cut, q.value, q.value), 0x1p-53, 1.0 - 0x1p-53);
   });
   fill_choice(c.friction.law, inputs);
   fill_choice(c.friction.transition, inputs);

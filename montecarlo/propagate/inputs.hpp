@@ -13,10 +13,10 @@ namespace headband::montecarlo {
 /// One unknown as the result tells it.
 struct Input {
   std::string name, units, distribution;
-  const base::Quantity* quantity = nullptr;           ///< none: a choice between models
-  std::vector<double> weights;                        ///< of a choice's options, summing to 1
-  double central_score = 0.5;                         ///< the score of the value a single run uses
-  bool friction_law = false;                          ///< group of the budget: law, transition, scatter
+  const base::Quantity* quantity = nullptr;  ///< none: a choice between models
+  std::vector<double> weights;               ///< of a choice's options, summing to 1
+  double central_score = 0.5;                ///< the score of the value a single run uses
+  bool friction_law = false;                 ///< group of the budget: law, transition, scatter
 
   /// Value [SI] at a score; the option's number (from 0) for a choice.
   [[nodiscard]] double value(double score) const;

@@ -3,10 +3,10 @@
 
 #include "montecarlo/bands/verdict.hpp"
 
+#include <fmt/format.h>
 #include <algorithm>
 #include <array>
 #include <cmath>
-#include <fmt/format.h>
 
 namespace headband::montecarlo {
 
@@ -37,7 +37,9 @@ double mean_excess(const Bound& bound, const std::vector<double>& values) {
 }
 
 /// The range whose two ends differ most in the probability, the other ranges as they are.
-std::string deciding_range(const Ranges& ranges, const network::Case& c, const std::vector<PointJudgement>& points,
+std::string deciding_range(const Ranges& ranges,
+                           const network::Case& c,
+                           const std::vector<PointJudgement>& points,
                            std::size_t limit) {
   double largest = -1.0;
   std::string name;
@@ -48,7 +50,8 @@ std::string deciding_range(const Ranges& ranges, const network::Case& c, const s
       if (place == 0.5) continue;
       const std::size_t side = place > 0.5 ? 1 : 0;
       const LimitAnswer& answer = points[p].limits[limit];
-      const double chance = std::isnan(answer.probability) ? 0.5 * (answer.probability_lower + answer.probability_upper) : answer.probability;
+      const double chance = std::isnan(answer.probability) ? 0.5 * (answer.probability_lower + answer.probability_upper)
+                                                           : answer.probability;
       sum[side] += chance;
       count[side] += 1.0;
     }
@@ -65,12 +68,18 @@ std::string deciding_range(const Ranges& ranges, const network::Case& c, const s
 
 std::string kind_word(network::AnswerKind kind) {
   switch (kind) {
-    case network::AnswerKind::pressure_drop: return "pressure_drop";
-    case network::AnswerKind::flow: return "flow";
-    case network::AnswerKind::head: return "head";
-    case network::AnswerKind::highest_pressure: return "highest_pressure";
-    case network::AnswerKind::lowest_pressure: return "lowest_pressure";
-    case network::AnswerKind::velocity: return "velocity";
+    case network::AnswerKind::pressure_drop:
+      return "pressure_drop";
+    case network::AnswerKind::flow:
+      return "flow";
+    case network::AnswerKind::head:
+      return "head";
+    case network::AnswerKind::highest_pressure:
+      return "highest_pressure";
+    case network::AnswerKind::lowest_pressure:
+      return "lowest_pressure";
+    case network::AnswerKind::velocity:
+      return "velocity";
   }
   return {};
 }
@@ -79,10 +88,14 @@ std::string unit_word(network::AnswerKind kind) {
   switch (kind) {
     case network::AnswerKind::pressure_drop:
     case network::AnswerKind::highest_pressure:
-    case network::AnswerKind::lowest_pressure: return "Pa";
-    case network::AnswerKind::flow: return "m3/s";
-    case network::AnswerKind::head: return "m";
-    case network::AnswerKind::velocity: return "m/s";
+    case network::AnswerKind::lowest_pressure:
+      return "Pa";
+    case network::AnswerKind::flow:
+      return "m3/s";
+    case network::AnswerKind::head:
+      return "m";
+    case network::AnswerKind::velocity:
+      return "m/s";
   }
   return {};
 }
@@ -95,8 +108,12 @@ std::string where_words(const network::AnswerPlan& answer) {
 namespace {
 
 /// The chance that any pipe exceeds its own rating, from the judged ratings of the pipes.
-void judge_whole_line(const network::Case& c, const network::Plan& plan, const CentralRun& central, const DrawTable& table,
-                      bool surge, PointJudgement& point) {
+void judge_whole_line(const network::Case& c,
+                      const network::Plan& plan,
+                      const CentralRun& central,
+                      const DrawTable& table,
+                      bool surge,
+                      PointJudgement& point) {
   std::vector<Part> parts;
   LimitAnswer answer;
   answer.name = any_rated_pipe;
@@ -106,7 +123,9 @@ void judge_whole_line(const network::Case& c, const network::Plan& plan, const C
   for (std::size_t i = 0; i < plan.limits.size(); ++i) {
     const network::LimitPlan& limit = plan.limits[i];
     if (limit.rating_of_pipe < 0) continue;
-    parts.push_back({{limit.bound, limit.not_over}, table.limit[i], i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0});
+    parts.push_back({{limit.bound, limit.not_over},
+                     table.limit[i],
+                     i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0});
     answer.margin = std::fmin(answer.margin, point.limits[i].margin);
     answer.confidence = std::fmax(answer.confidence, limit.confidence);
     worse_by = parts.size() == 1 ? point.worse_by[i] : std::fmax(worse_by, point.worse_by[i]);
@@ -126,8 +145,8 @@ void judge_whole_line(const network::Case& c, const network::Plan& plan, const C
 
 }  // namespace
 
-PointJudgement judge_limits(const network::Case& c, const network::Plan& plan, const CentralRun& central,
-                            const DrawTable& table, bool surge) {
+PointJudgement judge_limits(
+    const network::Case& c, const network::Plan& plan, const CentralRun& central, const DrawTable& table, bool surge) {
   PointJudgement point;
   for (std::size_t i = 0; i < plan.limits.size(); ++i) {
     const network::LimitPlan& limit = plan.limits[i];
@@ -163,7 +182,9 @@ PointJudgement judge_limits(const network::Case& c, const network::Plan& plan, c
   return point;
 }
 
-std::vector<LimitAnswer> over_ranges(const Ranges& ranges, const network::Case& c, const std::vector<PointJudgement>& points) {
+std::vector<LimitAnswer> over_ranges(const Ranges& ranges,
+                                     const network::Case& c,
+                                     const std::vector<PointJudgement>& points) {
   std::vector<LimitAnswer> limits = points.front().limits;
   if (points.size() < 2) return limits;
   for (std::size_t i = 0; i < limits.size(); ++i) {
@@ -172,7 +193,8 @@ std::vector<LimitAnswer> over_ranges(const Ranges& ranges, const network::Case& 
     std::size_t worst_point = 0;
     const auto key = [&](std::size_t p) {
       const auto& each = points[p].limits[i];
-      return std::array{std::isnan(each.probability) ? each.probability_lower : each.probability, points[p].worse_by[i]};
+      return std::array{std::isnan(each.probability) ? each.probability_lower : each.probability,
+                        points[p].worse_by[i]};
     };
     const auto span_of = [&](double LimitAnswer::* number) {
       std::array<double, 2> span{answers::missing, answers::missing};
@@ -198,7 +220,9 @@ std::vector<LimitAnswer> over_ranges(const Ranges& ranges, const network::Case& 
       answer.reason.clear();
     } else if (!needs_surge) {
       const bool all = std::ranges::all_of(verdicts, [](Verdict v) { return v == Verdict::cannot_tell; });
-      if (!all) answer.reason = fmt::format("the range of {} decides; worst at {}", deciding_range(ranges, c, points, i), answer.worst_corner);
+      if (!all)
+        answer.reason = fmt::format(
+            "the range of {} decides; worst at {}", deciding_range(ranges, c, points, i), answer.worst_corner);
     }
   }
   return limits;

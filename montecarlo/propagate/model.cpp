@@ -14,7 +14,11 @@ namespace {
 class PipelineModel {
  public:
   PipelineModel(const network::Case& c, const network::Plan& plan, bool surge, const std::vector<double>& history_times)
-      : case_(&c), plan_(&plan), answers_(answers_computed(c, plan, surge)), realiser_(c, plan), solver_(c, plan),
+      : case_(&c),
+        plan_(&plan),
+        answers_(answers_computed(c, plan, surge)),
+        realiser_(c, plan),
+        solver_(c, plan),
         values_(realiser_.prepare<8>()) {
     if (surge) marcher_.emplace(c, plan, history_times);
   }
@@ -115,7 +119,9 @@ std::vector<std::size_t> answers_computed(const network::Case& c, const network:
   return computed;
 }
 
-BlockModel make_model(const network::Case& c, const network::Plan& plan, bool surge,
+BlockModel make_model(const network::Case& c,
+                      const network::Plan& plan,
+                      bool surge,
                       const std::vector<double>& history_times) {
   const auto model = std::make_shared<PipelineModel>(c, plan, surge, history_times);
   return [model](const network::Scores<8>& scores, BlockAnswers& out) { model->answer(scores, out); };

@@ -20,7 +20,8 @@ std::vector<double> rows_of(const std::vector<std::vector<double>>& columns, std
 
 void columns_of(const std::vector<double>& rows, std::vector<std::vector<double>>& columns, std::size_t draws) {
   for (std::size_t i = 0; i < columns.size(); ++i)
-    for (std::size_t draw = 0; draw < std::min(draws, columns[i].size()); ++draw) columns[i][draw] = rows[draw * columns.size() + i];
+    for (std::size_t draw = 0; draw < std::min(draws, columns[i].size()); ++draw)
+      columns[i][draw] = rows[draw * columns.size() + i];
 }
 
 }  // namespace
@@ -32,7 +33,8 @@ std::vector<double> history_rows(const DrawTable& table, std::size_t kept) {
   std::vector<double> rows;
   rows.reserve(kept * table.history_cells);
   for (std::size_t draw = 0; draw < kept; ++draw)
-    for (std::size_t cell = 0; cell < table.history_cells; ++cell) rows.push_back(table.history[table.history_place(cell, draw)]);
+    for (std::size_t cell = 0; cell < table.history_cells; ++cell)
+      rows.push_back(table.history[table.history_place(cell, draw)]);
   return rows;
 }
 
@@ -40,7 +42,9 @@ std::vector<double> history_rows(const DrawTable& table, std::size_t kept) {
 
 long long stride_of(long long draws) { return std::max(1LL, (draws + most_stored_runs - 1) / most_stored_runs); }
 
-void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const network::Plan& plan,
+void name_runs(answers::Bands& bands,
+               const std::vector<Input>& inputs,
+               const network::Plan& plan,
                const std::vector<std::size_t>&) {
   for (const auto& input : inputs) {
     bands.input_name.push_back(input.name);
@@ -50,8 +54,14 @@ void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const ne
   for (const auto& limit : plan.limits) bands.limit_name.push_back(limit.name);
 }
 
-void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, const std::vector<Input>& inputs,
-               const Sampler& sampler, const Ranges& ranges, long long stride, bool with_envelopes) {
+void keep_runs(answers::Bands& bands,
+               const DrawTable& table,
+               long long draws,
+               const std::vector<Input>& inputs,
+               const Sampler& sampler,
+               const Ranges& ranges,
+               long long stride,
+               bool with_envelopes) {
   const auto n = static_cast<std::size_t>(draws), step = static_cast<std::size_t>(stride);
   bands.draws = draws;
   bands.stride = stride;

@@ -16,13 +16,22 @@ namespace headband::montecarlo {
 [[nodiscard]] long long stride_of(long long draws);
 
 /// Names, units and distributions of inputs, names of limits.
-void name_runs(answers::Bands& bands, const std::vector<Input>& inputs, const network::Plan& plan,
+void name_runs(answers::Bands& bands,
+               const std::vector<Input>& inputs,
+               const network::Plan& plan,
                const std::vector<std::size_t>& answers);
 
 /// Fills the runs of the first `draws` draws, every `stride`-th of them.
-/// @param with_envelopes each draw's envelopes and histories too, so that the band can be taken up again (needs stride 1)
-void keep_runs(answers::Bands& bands, const DrawTable& table, long long draws, const std::vector<Input>& inputs,
-               const Sampler& sampler, const Ranges& ranges, long long stride, bool with_envelopes);
+/// @param with_envelopes each draw's envelopes and histories too, so that the band can be taken up again (needs stride
+/// 1)
+void keep_runs(answers::Bands& bands,
+               const DrawTable& table,
+               long long draws,
+               const std::vector<Input>& inputs,
+               const Sampler& sampler,
+               const Ranges& ranges,
+               long long stride,
+               bool with_envelopes);
 
 /// Puts the runs of a stopped band back into `table`.
 /// @return draws taken up, a multiple of 8; 0 when they do not fit

@@ -3,10 +3,10 @@
 
 #include "core/network/nearest_word.hpp"
 
+#include <fmt/format.h>
 #include <Eigen/Eigenvalues>
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
 #include <numbers>
 
 namespace headband::montecarlo {
@@ -63,10 +63,14 @@ std::string offer(const network::Case& c, const Dependence& d) {
     std::string words;
     for (std::size_t i = 0; i < nearest.size; ++i) {
       for (std::size_t j = i + 1; j < nearest.size; ++j) {
-        const double rank = std::trunc(rank_correlation(nearest.at(i, j)) * shrink * 100.0 + (nearest.at(i, j) < 0.0 ? -0.5 : 0.5)) / 100.0;
+        const double rank =
+            std::trunc(rank_correlation(nearest.at(i, j)) * shrink * 100.0 + (nearest.at(i, j) < 0.0 ? -0.5 : 0.5)) /
+            100.0;
         rounded.at(i, j) = rounded.at(j, i) = copula_correlation(rank);
         if (rank == 0.0) continue;
-        const auto name = [&](std::size_t k) { return c.unknowns[static_cast<std::size_t>(d.members[k].unknown)].name; };
+        const auto name = [&](std::size_t k) {
+          return c.unknowns[static_cast<std::size_t>(d.members[k].unknown)].name;
+        };
         words += fmt::format("{}\"{}, {}\" = {:.2f}", words.empty() ? "" : ", ", name(i), name(j), rank);
       }
     }
@@ -122,21 +126,30 @@ base::Problems check_together(const network::Case& c) {
   for (std::size_t k = 0; k < c.together.size(); ++k) {
     const auto& pair = c.together[k];
     const std::string path = "together/" + pair.first + ", " + pair.second;
-    const auto say = [&](const std::string& what, const std::string& value, const std::string& bound,
-                         const std::string& hint) { problems.push_back({pair.place, path, what, value, bound, hint}); };
+    const auto say =
+        [&](const std::string& what, const std::string& value, const std::string& bound, const std::string& hint) {
+          problems.push_back({pair.place, path, what, value, bound, hint});
+        };
     for (const auto& name : {pair.first, pair.second}) {
       const int unknown = unknown_named(c, name);
       if (unknown < 0) {
         const std::string near = network::nearest_word(name, names);
-        say("no unknown has this name", name, "", near.empty() ? "only a value with a spread is an unknown" : "did you mean `" + near + "`?");
+        say("no unknown has this name",
+            name,
+            "",
+            near.empty() ? "only a value with a spread is an unknown" : "did you mean `" + near + "`?");
       } else if (!c.unknowns[static_cast<std::size_t>(unknown)].random) {
-        say("a range that is not random has no correlation", name, "", "leave the pair out, or give the value a spread");
+        say("a range that is not random has no correlation",
+            name,
+            "",
+            "leave the pair out, or give the value a spread");
       }
     }
     if (!(std::fabs(pair.rank_correlation) <= 1.0)) {
       say("a rank correlation lies between -1 and 1", fmt::format("{}", pair.rank_correlation), "-1 … 1", "");
     }
-    if (pair.first == pair.second) say("an unknown is always together with itself", pair.first, "", "name two unknowns");
+    if (pair.first == pair.second)
+      say("an unknown is always together with itself", pair.first, "", "name two unknowns");
     for (std::size_t other = 0; other < k; ++other) {
       const auto& before = c.together[other];
       const bool same = (before.first == pair.first && before.second == pair.second) ||
@@ -148,8 +161,11 @@ base::Problems check_together(const network::Case& c) {
   const Dependence d = collect(c);
   const double least = least_eigenvalue(d.correlation);
   if (least < workable_eigenvalue) {
-    problems.push_back({c.together.front().place, "together", "no unknowns can have these rank correlations at the same time",
-                        fmt::format("least eigenvalue {:.3g}", least), "a least eigenvalue of 0",
+    problems.push_back({c.together.front().place,
+                        "together",
+                        "no unknowns can have these rank correlations at the same time",
+                        fmt::format("least eigenvalue {:.3g}", least),
+                        "a least eigenvalue of 0",
                         "the nearest that work: " + offer(c, d)});
   }
   return problems;

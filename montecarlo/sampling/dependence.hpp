@@ -32,10 +32,10 @@ struct CorrelationMatrix {
 
 /// One unknown's normal score as a sum over independent ones.
 struct DependentScore {
-  int unknown = -1;                              ///< index into Case::unknowns
+  int unknown = -1;                                   ///< index into Case::unknowns
   std::vector<std::pair<std::size_t, double>> terms;  ///< member, weight
-  int same_as = -1;                              ///< member whose score this one repeats (rank correlation 1)
-  bool mirrored = false;                         ///< … or mirrors (rank correlation -1)
+  int same_as = -1;                                   ///< member whose score this one repeats (rank correlation 1)
+  bool mirrored = false;                              ///< … or mirrors (rank correlation -1)
   [[nodiscard]] bool independent(std::size_t own) const { return terms.size() == 1 && terms[0].first == own; }
 };
 

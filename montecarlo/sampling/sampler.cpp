@@ -5,9 +5,9 @@
 #include "core/base/hash.hpp"
 #include "montecarlo/sampling/latin.hpp"
 
+#include <fmt/format.h>
 #include <algorithm>
 #include <bit>
-#include <fmt/format.h>
 #include <utility>
 
 namespace headband::montecarlo {
@@ -33,18 +33,31 @@ Sampler::Sampler(const network::Case& c, network::Design design, std::uint64_t s
   }
   const auto& place = c.band.place;
   if (design == network::Design::sobol && 2 * names_.size() > most_sobol_dimensions) {
-    throw base::InputError({{place, "band/design", "a Sobol' design takes at most 1833 unknowns",
-                             fmt::format("{} unknowns", names_.size()), "1833", "use design = \"plain\""}});
+    throw base::InputError({{place,
+                             "band/design",
+                             "a Sobol' design takes at most 1833 unknowns",
+                             fmt::format("{} unknowns", names_.size()),
+                             "1833",
+                             "use design = \"plain\""}});
   }
   if (design == network::Design::latin_hypercube && draws > most_latin_draws) {
-    throw base::InputError({{place, "band/draws", "a Latin hypercube takes at most 1073741823 draws",
-                             fmt::format("{}", draws), "1073741823", "use design = \"sobol\""}});
+    throw base::InputError({{place,
+                             "band/draws",
+                             "a Latin hypercube takes at most 1073741823 draws",
+                             fmt::format("{}", draws),
+                             "1073741823",
+                             "use design = \"sobol\""}});
   }
   make_points();
 }
 
-Sampler::Sampler(network::Design design, std::uint64_t seed, long long draws, std::vector<std::uint64_t> names,
-                 std::vector<bool> random, Dependence dependence, std::size_t first_dimension)
+Sampler::Sampler(network::Design design,
+                 std::uint64_t seed,
+                 long long draws,
+                 std::vector<std::uint64_t> names,
+                 std::vector<bool> random,
+                 Dependence dependence,
+                 std::size_t first_dimension)
     : design_(design),
       seed_(seed),
       draws_(draws),
@@ -70,7 +83,8 @@ void Sampler::make_points() {
     }
   }
   if (design_ == network::Design::latin_hypercube) {
-    for (const std::uint64_t name : names_) strata_.push_back(latin_strata(seed_, name, static_cast<std::uint32_t>(draws_)));
+    for (const std::uint64_t name : names_)
+      strata_.push_back(latin_strata(seed_, name, static_cast<std::uint32_t>(draws_)));
   }
 }
 

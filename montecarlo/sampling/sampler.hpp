@@ -39,8 +39,13 @@ class Sampler {
   [[nodiscard]] std::size_t unknowns() const { return names_.size(); }
 
  private:
-  Sampler(network::Design design, std::uint64_t seed, long long draws, std::vector<std::uint64_t> names,
-          std::vector<bool> random, Dependence dependence, std::size_t first_dimension);
+  Sampler(network::Design design,
+          std::uint64_t seed,
+          long long draws,
+          std::vector<std::uint64_t> names,
+          std::vector<bool> random,
+          Dependence dependence,
+          std::size_t first_dimension);
   void make_points();
   template <int W>
   void depend(network::Scores<W>& scores) const;
@@ -53,8 +58,8 @@ class Sampler {
   std::vector<bool> random_;
   Dependence dependence_;
   std::size_t first_dimension_ = 0;
-  std::vector<ScrambledSobol> sobol_;                 ///< per unknown, Sobol' design
-  std::vector<std::vector<std::uint32_t>> strata_;    ///< per unknown, Latin hypercube
+  std::vector<ScrambledSobol> sobol_;               ///< per unknown, Sobol' design
+  std::vector<std::vector<std::uint32_t>> strata_;  ///< per unknown, Latin hypercube
 };
 
 /// How many draws the design takes for a wish: Sobol' rounds up to 16·2^m, the others take what is asked.

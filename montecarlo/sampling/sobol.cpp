@@ -39,7 +39,8 @@ std::uint64_t sobol_point(const std::array<std::uint64_t, sobol_index_bits>& dir
   return point;
 }
 
-ScrambledSobol::ScrambledSobol(const std::array<std::uint64_t, sobol_index_bits>& direction, std::uint64_t seed,
+ScrambledSobol::ScrambledSobol(const std::array<std::uint64_t, sobol_index_bits>& direction,
+                               std::uint64_t seed,
                                std::uint64_t name) {
   for (std::size_t replicate = 0; replicate < static_cast<std::size_t>(sobol_replicates); ++replicate) {
     const std::uint64_t key = scramble_draws + 64 * replicate;

@@ -12,8 +12,8 @@
 namespace headband::montecarlo {
 
 inline constexpr int sobol_replicates = 16;
-inline constexpr int sobol_bits = 52;              ///< digits of a point
-inline constexpr int sobol_index_bits = 44;        ///< points 0 … 2^44 - 1
+inline constexpr int sobol_bits = 52;        ///< digits of a point
+inline constexpr int sobol_index_bits = 44;  ///< points 0 … 2^44 - 1
 inline constexpr std::size_t most_sobol_dimensions = 3667;
 
 /// Direction numbers of each dimension as 52-bit fractions: `[dimension][bit of the Gray code]`.
@@ -23,7 +23,8 @@ using SobolDirections = std::vector<std::array<std::uint64_t, sobol_index_bits>>
 [[nodiscard]] SobolDirections sobol_directions(std::size_t dimensions);
 
 /// The unscrambled point in Gray-code order as a 52-bit fraction.
-[[nodiscard]] std::uint64_t sobol_point(const std::array<std::uint64_t, sobol_index_bits>& direction, std::uint64_t index);
+[[nodiscard]] std::uint64_t sobol_point(const std::array<std::uint64_t, sobol_index_bits>& direction,
+                                        std::uint64_t index);
 
 /// One name's 16 scrambled sequences.
 struct ScrambledSobol {

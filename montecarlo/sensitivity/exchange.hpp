@@ -31,7 +31,7 @@ class Exchanger {
  private:
   const Sampler* first_;
   const Sampler* second_;
-  std::vector<int> member_;                     ///< per unknown: index among the correlated ones, or -1
+  std::vector<int> member_;                      ///< per unknown: index among the correlated ones, or -1
   std::vector<std::vector<double>> regression_;  ///< per member: weights of the others in its conditional mean
 };
 

@@ -58,7 +58,8 @@ Functions options(const std::vector<double>& score, const std::vector<double>& e
     std::vector<double> column(score.size(), 0.0);
     if (here > 0.0 && behind > 0.0) {
       for (std::size_t i = 0; i < score.size(); ++i) {
-        if (score[i] >= from) column[i] = (score[i] < ends[k] ? 1.0 / here : -1.0 / behind) / std::sqrt(1.0 / here + 1.0 / behind);
+        if (score[i] >= from)
+          column[i] = (score[i] < ends[k] ? 1.0 / here : -1.0 / behind) / std::sqrt(1.0 / here + 1.0 / behind);
       }
       f.push_back(std::move(column));
     }
@@ -71,7 +72,11 @@ Functions options(const std::vector<double>& score, const std::vector<double>& e
 using Term = std::vector<std::pair<std::size_t, int>>;  ///< input, degree >= 1
 
 /// All terms of total degree up to `degree` in `inputs`, with `highest[i]` functions of input i.
-void add_terms(const std::vector<std::size_t>& inputs, const std::vector<int>& highest, int degree, std::size_t from, Term& term,
+void add_terms(const std::vector<std::size_t>& inputs,
+               const std::vector<int>& highest,
+               int degree,
+               std::size_t from,
+               Term& term,
                std::vector<Term>& terms) {
   for (std::size_t k = from; k < inputs.size(); ++k) {
     for (int d = 1; d <= std::min(degree, highest[inputs[k]]); ++d) {
@@ -85,7 +90,7 @@ void add_terms(const std::vector<std::size_t>& inputs, const std::vector<int>& h
 
 struct Fit {
   std::vector<Term> terms;
-  Eigen::VectorXd coefficient;  ///< of 1 first, then of the terms
+  Eigen::VectorXd coefficient;       ///< of 1 first, then of the terms
   double left_out_error = INFINITY;  ///< mean square error in draws left out
 };
 
@@ -97,7 +102,8 @@ Fit fit(const std::vector<Functions>& functions, std::vector<Term> terms, const 
     auto column = columns.col(t);
     column.setOnes();
     for (const auto& [input, degree] : terms[static_cast<std::size_t>(t - 1)]) {
-      column.array() *= Eigen::Map<const Eigen::ArrayXd>(functions[input][static_cast<std::size_t>(degree - 1)].data(), n);
+      column.array() *=
+          Eigen::Map<const Eigen::ArrayXd>(functions[input][static_cast<std::size_t>(degree - 1)].data(), n);
     }
   }
   Eigen::MatrixXd gram = Eigen::MatrixXd::Zero(p, p);
@@ -157,8 +163,10 @@ FittedShares fit_shares(const std::vector<FitInput>& inputs, const std::vector<d
                         : inputs[u].normal             ? hermite(score)
                                                        : legendre(score));
     highest.push_back(static_cast<int>(functions.back().size()));
-    for (std::size_t k = 0; k < std::min<std::size_t>(functions.back().size(), 3); ++k) {  // screening: plain projections
-      const double projection = Eigen::Map<const Eigen::VectorXd>(functions[u][k].data(), n).dot(y) / static_cast<double>(n);
+    for (std::size_t k = 0; k < std::min<std::size_t>(functions.back().size(), 3);
+         ++k) {  // screening: plain projections
+      const double projection =
+          Eigen::Map<const Eigen::VectorXd>(functions[u][k].data(), n).dot(y) / static_cast<double>(n);
       main_effect[u] += projection * projection;
     }
   }

@@ -11,9 +11,9 @@ namespace headband::montecarlo {
 
 /// One independent input of a fit.
 struct FitInput {
-  std::vector<double> score;          ///< even in (0, 1), one per draw
-  bool normal = false;                ///< Hermite polynomials of the normal score; else Legendre of the score itself
-  std::vector<double> option_ends;    ///< a choice: ends of its options on the score, the last one 1; else empty
+  std::vector<double> score;        ///< even in (0, 1), one per draw
+  bool normal = false;              ///< Hermite polynomials of the normal score; else Legendre of the score itself
+  std::vector<double> option_ends;  ///< a choice: ends of its options on the score, the last one 1; else empty
 };
 
 /// Shares of one answer.

@@ -23,8 +23,10 @@ struct QuadrantPoint {
 
 /// WH or WB times (alpha^2 + v^2).
 /// @param curve FourQuadrants::head or ::torque
-[[nodiscard]] QuadrantPoint read_quadrants(
-    const FourQuadrants& table, const std::vector<double>& curve, double flow, double speed);
+[[nodiscard]] QuadrantPoint read_quadrants(const FourQuadrants& table,
+                                           const std::vector<double>& curve,
+                                           double flow,
+                                           double speed);
 
 /// The table of specific speed 25 (SI). Source: see four_quadrants_ns25.cpp.
 [[nodiscard]] const FourQuadrants& quadrants_ns25();

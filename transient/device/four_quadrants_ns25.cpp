@@ -4,8 +4,8 @@
 // points of x over 0 .. 2 pi.
 // Source: published: Donsky (1961), Thomas (1972), tabulated in Wylie & Streeter, Fluid Transients, and in Chaudhry,
 // Applied Hydraulic Transients; the numbers here are those of the outside reference file T07c_suter_Ns25.csv, whose own
-// source line says: seen in a public plant-component documentation and recalled; WB of row 29 is 0.756 from memory where
-// the page seen has 0.758.
+// source line says: seen in a public plant-component documentation and recalled; WB of row 29 is 0.756 from memory
+// where the page seen has 0.758.
 #include "transient/device/four_quadrants.hpp"
 
 #include <array>

@@ -23,9 +23,8 @@ double position_at(const std::vector<Segment>& chain, double time) {
 
 void add_stroke(std::vector<Segment>& chain, const Stroke& stroke, double grid_step) {
   const double held = position_at(chain, stroke.at);
-  const double begin = stroke.over > 0.0 || !stroke.travel_time.empty() || stroke.swing != 0.0
-                           ? stroke.at
-                           : stroke.at + 0.5 * grid_step;
+  const double begin =
+      stroke.over > 0.0 || !stroke.travel_time.empty() || stroke.swing != 0.0 ? stroke.at : stroke.at + 0.5 * grid_step;
   while (chain.size() > 1 && chain.back().start >= begin) chain.pop_back();
   if (stroke.swing != 0.0) {
     chain.push_back({begin, held, 0.0, stroke.swing, stroke.period});

@@ -72,7 +72,7 @@ class Movement {
   base::PerLane<std::size_t, W> at_{};
   Lanes<W> start_, from_, slope_, next_, position_;
   double low_ = -std::numeric_limits<double>::infinity(), high_ = std::numeric_limits<double>::infinity();
-  bool still_ = true;   ///< no lane will move any more
+  bool still_ = true;  ///< no lane will move any more
   bool swings_ = false;
 };
 

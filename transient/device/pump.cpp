@@ -21,7 +21,8 @@ struct Value {
 Value by_affinity(const network::PumpCurve<1>& curve, double v, double speed, double rated_flow) {
   const double least = least_speed * std::fabs(v);
   if (speed <= least) {  // no speed to speak of: the square of the flow alone
-    const double value = least * least * curve.at(base::Lanes<1>(std::copysign(rated_flow / least_speed, v))).value.number;
+    const double value =
+        least * least * curve.at(base::Lanes<1>(std::copysign(rated_flow / least_speed, v))).value.number;
     return {value, v == 0.0 ? 0.0 : 2.0 * value / v, 0.0};
   }
   const double flow = v * rated_flow;

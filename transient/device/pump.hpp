@@ -19,15 +19,15 @@ struct PumpPoint {
 /// elsewhere. Speeds are shares of the rated one.
 struct PumpModel {
   bool has_curve = true;
-  network::PumpCurve<1> curve;          ///< head against flow at rated speed
+  network::PumpCurve<1> curve;  ///< head against flow at rated speed
   bool has_torque_table = false;
-  network::PumpCurve<1> torque_curve;   ///< share of rated torque against flow at rated speed
-  double shut_off_torque = 0.0;         ///< share of rated torque at no flow, where no table is given
-  double rated_flow = 1.0;              ///< [m3/s]
-  double rated_head = 1.0;              ///< [m]
-  double rated_speed = 1.0;             ///< [rad/s]
-  double rated_torque = 0.0;            ///< rho g Q H / (efficiency speed) [N m]
-  double inertia = 0.0;                 ///< m r2 [kg m2]
+  network::PumpCurve<1> torque_curve;        ///< share of rated torque against flow at rated speed
+  double shut_off_torque = 0.0;              ///< share of rated torque at no flow, where no table is given
+  double rated_flow = 1.0;                   ///< [m3/s]
+  double rated_head = 1.0;                   ///< [m]
+  double rated_speed = 1.0;                  ///< [rad/s]
+  double rated_torque = 0.0;                 ///< rho g Q H / (efficiency speed) [N m]
+  double inertia = 0.0;                      ///< m r2 [kg m2]
   const FourQuadrants* quadrants = nullptr;  ///< null: none used
 
   [[nodiscard]] PumpPoint at(double flow, double speed) const;

@@ -15,8 +15,9 @@ using base::Lanes;
 /// @param head      head difference at no flow [m], @param impedance of both sides together [s/m2], >= 0
 /// @param coefficient [m^2.5/s], >= 0
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> valve_flow(
-    const Lanes<W>& head, const Lanes<W>& impedance, const Lanes<W>& coefficient) {
+[[nodiscard]] HEADBAND_INLINE Lanes<W> valve_flow(const Lanes<W>& head,
+                                                  const Lanes<W>& impedance,
+                                                  const Lanes<W>& coefficient) {
   const Lanes<W> size = abs(head);
   const Lanes<W> stiff = impedance * coefficient;
   const Lanes<W> root = stiff + sqrt(stiff * stiff + 4.0 * size);

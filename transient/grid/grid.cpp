@@ -119,9 +119,8 @@ void choose_grid(const GridRequest& request, Grid& grid) {
   }
   Grid first;
   for (int factor = 1; factor <= 8; factor *= 2) {
-    const double dt = std::isnan(request.time_step)
-                          ? search_step(request, grid, shortest, request.reaches * factor)
-                          : request.time_step / factor;
+    const double dt = std::isnan(request.time_step) ? search_step(request, grid, shortest, request.reaches * factor)
+                                                    : request.time_step / factor;
     fill(request, dt, grid);
     grid.status = judge(request, grid);
     if (factor == 1) first = grid;
@@ -144,16 +143,23 @@ std::string refusal(const Grid& grid, const std::string& pipe) {
     case GridStatus::good:
       return {};
     case GridStatus::change_refused:
-      std::snprintf(text, sizeof text, "the grid would change the wave speed of pipe '%s' by %.1f %%, more than %.1f %%",
-                    pipe.c_str(), 100.0 * grid.worst_change, 100.0 * grid.allowed);
+      std::snprintf(text,
+                    sizeof text,
+                    "the grid would change the wave speed of pipe '%s' by %.1f %%, more than %.1f %%",
+                    pipe.c_str(),
+                    100.0 * grid.worst_change,
+                    100.0 * grid.allowed);
       return text;
     case GridStatus::uncertain_refused:
-      std::snprintf(text, sizeof text,
+      std::snprintf(text,
+                    sizeof text,
                     "even 8 times the reaches change the uncertain wave speed of pipe '%s' by more than %.1f %%",
-                    pipe.c_str(), 100.0 * grid.allowed);
+                    pipe.c_str(),
+                    100.0 * grid.allowed);
       return text;
     case GridStatus::rigid_refused:
-      std::snprintf(text, sizeof text,
+      std::snprintf(text,
+                    sizeof text,
                     "pipe '%s' is too short for a wave on this grid, and something at its end moves in less than two "
                     "steps",
                     pipe.c_str());

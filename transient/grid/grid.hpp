@@ -13,15 +13,16 @@ namespace headband::transient {
 struct GridPipe {
   double length = 0.0;      ///< [m], > 0
   double wave_speed = 0.0;  ///< [m/s], > 0
-  double allowed_change = std::numeric_limits<double>::quiet_NaN();  ///< the user's `wave_speed_change` [-]; NaN = default
-  bool uncertain = false;   ///< something that feeds the wave speed is sampled
+  double allowed_change =
+      std::numeric_limits<double>::quiet_NaN();  ///< the user's `wave_speed_change` [-]; NaN = default
+  bool uncertain = false;                        ///< something that feeds the wave speed is sampled
   /// Shortest movement of anything at the pipe's ends [s]; 0 = instant, infinity = nothing moves there.
   double fastest_movement = std::numeric_limits<double>::infinity();
 };
 
 /// What is asked of the grid.
 struct GridRequest {
-  int reaches = 40;  ///< of the shortest long pipe, >= 1
+  int reaches = 40;                                             ///< of the shortest long pipe, >= 1
   double time_step = std::numeric_limits<double>::quiet_NaN();  ///< [s]; NaN = searched
   std::vector<GridPipe> pipes;
 };
@@ -37,13 +38,13 @@ enum class GridStatus {
 /// Reaches and step of one draw.
 struct Grid {
   GridStatus status = GridStatus::good;
-  double time_step = 0.0;               ///< [s]
-  std::vector<int> reaches;             ///< per pipe; 0 = marches as a rigid column
-  std::vector<double> marched_speed;    ///< length / (reaches dt) [m/s]; the given speed for rigid pipes
-  std::vector<bool> long_pipe;          ///< travel time at least a 50th of the longest
-  double worst_change = 0.0;            ///< over the long pipes [-]
-  int worst_pipe = -1;                  ///< which one; also the pipe that was refused
-  double allowed = 0.0;                 ///< the bound that was broken [-]
+  double time_step = 0.0;             ///< [s]
+  std::vector<int> reaches;           ///< per pipe; 0 = marches as a rigid column
+  std::vector<double> marched_speed;  ///< length / (reaches dt) [m/s]; the given speed for rigid pipes
+  std::vector<bool> long_pipe;        ///< travel time at least a 50th of the longest
+  double worst_change = 0.0;          ///< over the long pipes [-]
+  int worst_pipe = -1;                ///< which one; also the pipe that was refused
+  double allowed = 0.0;               ///< the bound that was broken [-]
 };
 
 /// The grid of one draw by the rule of docs/methods.md "Grid".

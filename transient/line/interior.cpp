@@ -101,8 +101,7 @@ HEADBAND_INLINE Lanes<W> meet(const Wave<W>& on, const Wave<W>& back) {
 
 // Where lanes end at different rows, the first row of a pair may be the last of its lane.
 template <int W>
-HEADBAND_INLINE void meet_alone(
-    const PipeRows<W>& rows, int i, const Wave<W>& on, const Wave<W>& back, Met<W>& met) {
+HEADBAND_INLINE void meet_alone(const PipeRows<W>& rows, int i, const Wave<W>& on, const Wave<W>& back, Met<W>& met) {
   if (rows.reaches == nullptr) return;
   const auto ends = *rows.reaches == Lanes<W>(i + 1.0);
   if (any(ends)) met.first = select(ends, meet(on, back), met.first);
@@ -392,11 +391,10 @@ Arriving<W> arriving_at_to(const Resistance<W>& resistance,
 }
 
 #define HEADBAND_INTERIOR(W)                                                                                     \
-  template void march_interior<W>(const Resistance<W>&, const PipeRows<W>&, const Lanes<W>&, const Lanes<W>&,    \
-                                  bool, bool&, CavityTally<W>&);                                                 \
+  template void march_interior<W>(                                                                               \
+      const Resistance<W>&, const PipeRows<W>&, const Lanes<W>&, const Lanes<W>&, bool, bool&, CavityTally<W>&); \
   template Arriving<W> arriving_at_from<W>(const Resistance<W>&, const PipeRows<W>&, bool);                      \
-  template Arriving<W> arriving_at_to<W>(const Resistance<W>&, const PipeRows<W>&, const base::PerLane<int, W>&, \
-                                         bool);
+  template Arriving<W> arriving_at_to<W>(const Resistance<W>&, const PipeRows<W>&, const base::PerLane<int, W>&, bool);
 HEADBAND_INTERIOR(1)
 HEADBAND_INTERIOR(8)
 #undef HEADBAND_INTERIOR

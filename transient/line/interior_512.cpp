@@ -45,8 +45,10 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
     const __m512d a_carried = _mm512_mul_pd(carry, a_flow), b_carried = _mm512_mul_pd(carry, b_flow);
     const __m512d sum1 = _mm512_add_pd(on1_damp, a_damp), sum2 = _mm512_add_pd(on2_damp, b_damp);
     const __m512d inverse = _mm512_div_pd(one, _mm512_mul_pd(sum1, sum2));
-    const __m512d q1 = _mm512_mul_pd(_mm512_sub_pd(on1_head, _mm512_sub_pd(a_head, a_carried)), _mm512_mul_pd(sum2, inverse));
-    const __m512d q2 = _mm512_mul_pd(_mm512_sub_pd(on2_head, _mm512_sub_pd(b_head, b_carried)), _mm512_mul_pd(sum1, inverse));
+    const __m512d q1 =
+        _mm512_mul_pd(_mm512_sub_pd(on1_head, _mm512_sub_pd(a_head, a_carried)), _mm512_mul_pd(sum2, inverse));
+    const __m512d q2 =
+        _mm512_mul_pd(_mm512_sub_pd(on2_head, _mm512_sub_pd(b_head, b_carried)), _mm512_mul_pd(sum1, inverse));
     const __m512d h1 = _mm512_sub_pd(on1_head, _mm512_mul_pd(on1_damp, q1));
     const __m512d h2 = _mm512_sub_pd(on2_head, _mm512_mul_pd(on2_damp, q2));
     if constexpr (limited) {

@@ -16,7 +16,7 @@ namespace headband::transient {
 /// fell below its limit (nothing stored there).
 /// @param limited   whether the limits are looked at
 /// @param on1, on2  out: heads and damps of the waves that leave the row before the returned one, and that row itself
-[[nodiscard]] int march_pairs_512(const Resistance<8>& r, const PipeRows<8>& rows, bool limited, Arriving<8>& on1,
-                                  Arriving<8>& on2);
+[[nodiscard]] int march_pairs_512(
+    const Resistance<8>& r, const PipeRows<8>& rows, bool limited, Arriving<8>& on1, Arriving<8>& on2);
 
 }  // namespace headband::transient

@@ -26,13 +26,13 @@ enum class Form {
 template <int W>
 struct Resistance {
   Form form = Form::quadratic;
-  Lanes<W> carry = 0.0;      ///< impedance B of the marched wave speed, less half the linear loss [s/m2]
-  Lanes<W> damp = 0.0;       ///< B plus half the linear loss [s/m2]
-  Lanes<W> quadratic = 0.0;  ///< loss of a reach = quadratic Q|Q|: fixed factors and fittings [s2/m5]
-  Lanes<W> darcy = 0.0;      ///< loss of a reach = darcy f Q|Q|; 0 in lanes that do not follow f(Re) [s2/m5]
-  Lanes<W> reynolds = 0.0;   ///< Reynolds number of a flow of 1 m3/s [s/m3]
+  Lanes<W> carry = 0.0;            ///< impedance B of the marched wave speed, less half the linear loss [s/m2]
+  Lanes<W> damp = 0.0;             ///< B plus half the linear loss [s/m2]
+  Lanes<W> quadratic = 0.0;        ///< loss of a reach = quadratic Q|Q|: fixed factors and fittings [s2/m5]
+  Lanes<W> darcy = 0.0;            ///< loss of a reach = darcy f Q|Q|; 0 in lanes that do not follow f(Re) [s2/m5]
+  Lanes<W> reynolds = 0.0;         ///< Reynolds number of a flow of 1 m3/s [s/m3]
   friction::PreparedRule<W> rule;  ///< of the lanes that do
-  Lanes<W> power = 0.0;      ///< loss of a reach = power Q |Q|^0.852; 0 in lanes that do not follow it
+  Lanes<W> power = 0.0;            ///< loss of a reach = power Q |Q|^0.852; 0 in lanes that do not follow it
 };
 
 /// What a node sends along a characteristic.
@@ -62,8 +62,8 @@ template <int W, Form form>
   c.size = abs(q);
   if constexpr (form == Form::darcy) {
     const Lanes<W> re = max(c.size * r.reynolds, Lanes<W>(still));
-    const friction::Factor<W> f = root != nullptr ? friction::darcy_factor_near<W>(r.rule, re, *root)
-                                                  : friction::darcy_factor<W>(r.rule, re);
+    const friction::Factor<W> f =
+        root != nullptr ? friction::darcy_factor_near<W>(r.rule, re, *root) : friction::darcy_factor<W>(r.rule, re);
     c.loss = r.darcy * f.factor * max(c.size, still / r.reynolds);
     c.half = 0.5 * f.log_slope;
   } else if constexpr (form == Form::power) {
@@ -78,8 +78,10 @@ template <int W, Form form>
 /// @param fitting  extra quadratic loss of this reach (fittings with a place) [s2/m5]
 /// @param longer   extra equivalent length of this reach as a share of its own loss [-]
 template <int W, Form form, bool placed>
-[[nodiscard]] HEADBAND_INLINE Sent<W> sent_over(
-    const Resistance<W>& r, const Cost<W>& c, const Lanes<W>* fitting, const Lanes<W>* longer) {
+[[nodiscard]] HEADBAND_INLINE Sent<W> sent_over(const Resistance<W>& r,
+                                                const Cost<W>& c,
+                                                const Lanes<W>* fitting,
+                                                const Lanes<W>* longer) {
   Sent<W> s;
   if constexpr (placed) {
     s = {r.carry, r.damp + (r.quadratic + *fitting) * c.size};
@@ -96,15 +98,19 @@ template <int W, Form form, bool placed>
 
 /// Carry and damp of a node with flow `q`.
 template <int W, Form form>
-[[nodiscard]] HEADBAND_INLINE Sent<W> sent_by(
-    const Resistance<W>& r, const Lanes<W>& q, const Lanes<W>& fitting, const Lanes<W>& longer) {
+[[nodiscard]] HEADBAND_INLINE Sent<W> sent_by(const Resistance<W>& r,
+                                              const Lanes<W>& q,
+                                              const Lanes<W>& fitting,
+                                              const Lanes<W>& longer) {
   return sent_over<W, form, true>(r, cost_of<W, form>(r, q, nullptr), &fitting, &longer);
 }
 
 /// Loss of one reach at a steady flow [m], signed with the flow: what the march itself takes from a still wave.
 template <int W, Form form>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> steady_loss(
-    const Resistance<W>& r, const Lanes<W>& q, const Lanes<W>& fitting, const Lanes<W>& longer) {
+[[nodiscard]] HEADBAND_INLINE Lanes<W> steady_loss(const Resistance<W>& r,
+                                                   const Lanes<W>& q,
+                                                   const Lanes<W>& fitting,
+                                                   const Lanes<W>& longer) {
   const Sent<W> s = sent_by<W, form>(r, q, fitting, longer);
   return (s.damp - s.carry) * q;
 }

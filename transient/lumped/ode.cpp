@@ -28,7 +28,10 @@ double crossing(const Value& value, double from, double to, double at_from, doub
 
 }  // namespace
 
-OdeRun integrate(const OdeRates& rates, const OdeState& start, const std::vector<double>& times, const OdeEvent& event,
+OdeRun integrate(const OdeRates& rates,
+                 const OdeState& start,
+                 const std::vector<double>& times,
+                 const OdeEvent& event,
                  const OdeOptions& options) {
   OdeRun run;
   bool rates_finite = true;
@@ -37,7 +40,8 @@ OdeRun integrate(const OdeRates& rates, const OdeState& start, const std::vector
     rates(state, change, time);
     rates_finite = rates_finite && finite(change);
   };
-  auto stepper = odeint::make_dense_output(options.tolerance, options.tolerance, odeint::runge_kutta_dopri5<OdeState>());
+  auto stepper =
+      odeint::make_dense_output(options.tolerance, options.tolerance, odeint::runge_kutta_dopri5<OdeState>());
   stepper.initialize(start, times.front(), options.first_step);
   run.end_time = times.front();
   run.end_state = start;

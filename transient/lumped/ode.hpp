@@ -24,9 +24,9 @@ struct OdeOptions {
 /// What came of a run: the state at each asked time that was reached, and how it ended.
 struct OdeRun {
   OdeStatus status = OdeStatus::reached_end;
-  std::vector<double> time;       ///< [s], the asked times reached
-  std::vector<OdeState> state;    ///< as `time`
-  double end_time = 0.0;          ///< [s], the event's time where one ended the run
+  std::vector<double> time;     ///< [s], the asked times reached
+  std::vector<OdeState> state;  ///< as `time`
+  double end_time = 0.0;        ///< [s], the event's time where one ended the run
   OdeState end_state;
   long long steps = 0;
 };
@@ -35,7 +35,10 @@ struct OdeRun {
 /// (Boost.Odeint), giving the state at the asked times.
 /// @param times ascending, from the start time on [s]
 /// A rate that is not finite, a step that vanishes or too many steps are a status, not a throw.
-[[nodiscard]] OdeRun integrate(const OdeRates& rates, const OdeState& start, const std::vector<double>& times,
-                               const OdeEvent& event = {}, const OdeOptions& options = {});
+[[nodiscard]] OdeRun integrate(const OdeRates& rates,
+                               const OdeState& start,
+                               const std::vector<double>& times,
+                               const OdeEvent& event = {},
+                               const OdeOptions& options = {});
 
 }  // namespace headband::transient

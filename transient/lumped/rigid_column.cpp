@@ -22,9 +22,9 @@ OdeRun establish_flow(const RigidColumn& column, double head_difference, const s
   return integrate(rates, {0.0}, times);
 }
 
-OdeRun trip_pump(const RigidColumn& column, const RigidPump& pump, double lift, double flow,
-                 const std::vector<double>& times) {
-  const auto affinity = [](const double (&c)[3], double speed, double q) {
+OdeRun trip_pump(
+    const RigidColumn& column, const RigidPump& pump, double lift, double flow, const std::vector<double>& times) {
+  const auto affinity = [](const double(&c)[3], double speed, double q) {
     return c[0] * speed * speed + c[1] * speed * q + c[2] * q * q;
   };
   const auto rates = [&](const OdeState& state, OdeState& change, double) {
@@ -37,8 +37,8 @@ OdeRun trip_pump(const RigidColumn& column, const RigidPump& pump, double lift, 
   return integrate(rates, {flow, 1.0}, times, flow_stops);
 }
 
-OdeRun swing_tank(const RigidColumn& column, double tank_area, double level, double flow,
-                  const std::vector<double>& times) {
+OdeRun swing_tank(
+    const RigidColumn& column, double tank_area, double level, double flow, const std::vector<double>& times) {
   const auto rates = [&](const OdeState& state, OdeState& change, double) {
     change[0] = acceleration(column, -state[1], state[0]);
     change[1] = state[0] / tank_area;

@@ -19,8 +19,8 @@ class AuditSums {
 
  private:
   struct Exchange {
-    double in = 0.0;      ///< into the line [m3/s]
-    double passing = 0.0; ///< half the sum of all exchanges, sign aside [m3/s]
+    double in = 0.0;       ///< into the line [m3/s]
+    double passing = 0.0;  ///< half the sum of all exchanges, sign aside [m3/s]
   };
   [[nodiscard]] static Exchange exchange(const March<1>& march);
   [[nodiscard]] double stored(const March<1>& march) const;

@@ -15,8 +15,8 @@
 namespace headband::transient {
 namespace {
 
-constexpr double told_cavity = 1e-6;      // share of its section's volume below which a cavity is rounding
-constexpr int station_intervals = 40;     // of each pipe, for the whole-line bands
+constexpr double told_cavity = 1e-6;   // share of its section's volume below which a cavity is rounding
+constexpr int station_intervals = 40;  // of each pipe, for the whole-line bands
 
 std::size_t at(int i) { return static_cast<std::size_t>(i); }
 
@@ -41,9 +41,11 @@ Watch make_watch(const network::Plan& plan) {
   const auto look = [&](const AnswerPlan& a) {
     if (!a.needs_surge()) return;
     for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
-      const bool whole = !a.where.place.exists() && (!a.where.pipe.exists() || (a.where.pipe.at() == i && a.where.chainage < 0.0));
+      const bool whole =
+          !a.where.place.exists() && (!a.where.pipe.exists() || (a.where.pipe.at() == i && a.where.chainage < 0.0));
       if (a.kind == AnswerKind::velocity) {
-        const bool touches = a.where.place.exists() && (plan.pipes[i].from == a.where.place || plan.pipes[i].to == a.where.place);
+        const bool touches =
+            a.where.place.exists() && (plan.pipes[i].from == a.where.place || plan.pipes[i].to == a.where.place);
         if (whole || touches || (a.where.pipe.exists() && a.where.pipe.at() == i)) w.velocity[i] = true;
       } else if (whole) {
         profile[i] = true;
@@ -76,7 +78,8 @@ class HistoryTrack {
     for (std::size_t k = 0; k < probes.size(); ++k) {
       if (!probes[k].pipe.exists()) continue;
       for (int lane = 0; lane < W; ++lane)
-        spots_[k][at(lane)] = make_spot<W>(march, values, probes[k].pipe.index, std::max(0.0, probes[k].chainage), lane);
+        spots_[k][at(lane)] =
+            make_spot<W>(march, values, probes[k].pipe.index, std::max(0.0, probes[k].chainage), lane);
     }
     for (int lane = 0; lane < W; ++lane) await(march, lane);
     step(march, 0);
@@ -150,9 +153,18 @@ class HistoryTrack {
 template <int W>
 class BatchRecord {
  public:
-  BatchRecord(const Watch& watch, const std::vector<BatchStation>& stations, const std::vector<double>& times,
-              const network::Values<W>& values, const base::PerLane<bool, W>& take, DrawAnswers<W>& out)
-      : watch_(&watch), stations_(&stations), values_(&values), take_(take), out_(&out), history_(times, take, out.history) {}
+  BatchRecord(const Watch& watch,
+              const std::vector<BatchStation>& stations,
+              const std::vector<double>& times,
+              const network::Values<W>& values,
+              const base::PerLane<bool, W>& take,
+              DrawAnswers<W>& out)
+      : watch_(&watch),
+        stations_(&stations),
+        values_(&values),
+        take_(take),
+        out_(&out),
+        history_(times, take, out.history) {}
 
   void begin(March<W>& march) {
     const auto& plan = march.plan();
@@ -264,8 +276,8 @@ class BatchRecord {
         const double h = highest ? march.state().head_max[r][lane] : march.state().head_min[r][lane];
         take(weight * (h - row_elevation_[r][lane]));
       }
-      const double end_z = reaches > 0 ? row_elevation_[p.first_row + at(reaches)][lane]
-                                       : values_->pipes[i].elevation.back()[lane];
+      const double end_z =
+          reaches > 0 ? row_elevation_[p.first_row + at(reaches)][lane] : values_->pipes[i].elevation.back()[lane];
       take(weight * (place_head(plan.pipes[i].to.at()) - end_z));
     }
     if (a.kind != AnswerKind::velocity) {
@@ -393,7 +405,8 @@ void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyS
   for (std::size_t k = 0; k < plan.answers.size(); ++k)
     if (!plan.answers[k].needs_surge()) out.answer[k] = steady::answer<W>(plan, values, steady, plan.answers[k]);
   for (std::size_t k = 0; k < plan.limits.size(); ++k)
-    if (!plan.limits[k].subject.needs_surge()) out.limit[k] = steady::answer<W>(plan, values, steady, plan.limits[k].subject);
+    if (!plan.limits[k].subject.needs_surge())
+      out.limit[k] = steady::answer<W>(plan, values, steady, plan.limits[k].subject);
 
   Width<W>& width = parts_->template width<W>();
   base::PerLane<bool, W> waiting{};

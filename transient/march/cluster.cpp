@@ -7,10 +7,10 @@
 namespace headband::transient {
 namespace {
 
-constexpr int most_newton = 100;       // halving from any flow to 1e-12 of it takes 40
-constexpr double head_close = 1e-11;   // of 1 m + |head|
-constexpr double flow_close = 1e-13;   // of the largest flow
-constexpr double still_flow = 1e-9;    // [m3/s] added to that
+constexpr int most_newton = 100;         // halving from any flow to 1e-12 of it takes 40
+constexpr double head_close = 1e-11;     // of 1 m + |head|
+constexpr double flow_close = 1e-13;     // of the largest flow
+constexpr double still_flow = 1e-9;      // [m3/s] added to that
 constexpr double no_pipe_gives = 1e-14;  // [m2/s] keeps a place between shut devices at its head
 
 }  // namespace

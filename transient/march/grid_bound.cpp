@@ -7,7 +7,7 @@
 namespace headband::transient {
 namespace {
 
-constexpr double negligible = 1e-9;   // of the value
+constexpr double negligible = 1e-9;  // of the value
 constexpr double most_order = 2.5;
 constexpr double least_order = 0.5;
 

@@ -11,7 +11,10 @@ using network::DeviceKind;
 
 void add_pump(const network::Case& c, const network::Plan& plan, std::size_t device, Layout& layout) {
   const auto& d = plan.devices[device];
-  Branch b{.kind = BranchKind::pump, .device = static_cast<int>(device), .index = d.index, .from = d.from.index,
+  Branch b{.kind = BranchKind::pump,
+           .device = static_cast<int>(device),
+           .index = d.index,
+           .from = d.from.index,
            .to = d.to.index};
   int left = c.pumps[static_cast<std::size_t>(d.index)].count;
   for (std::size_t e = 0; e < plan.events.size(); ++e) {
@@ -33,7 +36,10 @@ void add_pump(const network::Case& c, const network::Plan& plan, std::size_t dev
 void add_devices(const network::Case& c, const network::Plan& plan, Layout& layout) {
   for (std::size_t i = 0; i < plan.devices.size(); ++i) {
     const auto& d = plan.devices[i];
-    Branch b{.kind = BranchKind::valve, .device = static_cast<int>(i), .index = d.index, .from = d.from.index,
+    Branch b{.kind = BranchKind::valve,
+             .device = static_cast<int>(i),
+             .index = d.index,
+             .from = d.from.index,
              .to = d.to.index};
     switch (d.kind) {
       case DeviceKind::valve:
@@ -132,8 +138,8 @@ Layout make_layout(const network::Case& c, const network::Plan& plan, const std:
   for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
     const auto& pipe = plan.pipes[i];
     if (rigid[i]) {
-      layout.branches.push_back({.kind = BranchKind::rigid_pipe, .index = static_cast<int>(i),
-                                 .from = pipe.from.index, .to = pipe.to.index});
+      layout.branches.push_back(
+          {.kind = BranchKind::rigid_pipe, .index = static_cast<int>(i), .from = pipe.from.index, .to = pipe.to.index});
       continue;
     }
     for (const bool far : {false, true}) {

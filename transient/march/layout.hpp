@@ -18,29 +18,29 @@ struct Side {
 };
 
 enum class BranchKind {
-  valve,        ///< in line, or to the air
-  orifice,      ///< pressure-dependent draw-off: a valve to the air
+  valve,    ///< in line, or to the air
+  orifice,  ///< pressure-dependent draw-off: a valve to the air
   check_valve,
-  pump,         ///< alike pumps of one set that share their fate
-  rigid_pipe    ///< a pipe too short for a wave: inertia and friction
+  pump,       ///< alike pumps of one set that share their fate
+  rigid_pipe  ///< a pipe too short for a wave: inertia and friction
 };
 
 /// Something that carries flow from a place to another, or to the air.
 struct Branch {
   BranchKind kind = BranchKind::valve;
-  int device = -1;   ///< into Plan::devices; rigid pipes: -1
-  int index = -1;    ///< into the case's vector of that kind; rigid pipes: into Plan::pipes
-  int from = 0;      ///< place
-  int to = -1;       ///< place; -1 = the air at the elevation of `from`
-  int count = 1;     ///< pumps in parallel
-  int trip = -1;     ///< event that takes the power from them; -1 = none
+  int device = -1;  ///< into Plan::devices; rigid pipes: -1
+  int index = -1;   ///< into the case's vector of that kind; rigid pipes: into Plan::pipes
+  int from = 0;     ///< place
+  int to = -1;      ///< place; -1 = the air at the elevation of `from`
+  int count = 1;    ///< pumps in parallel
+  int trip = -1;    ///< event that takes the power from them; -1 = none
 };
 
 /// Places that must be solved together: those joined by branches, basins apart.
 struct Cluster {
-  std::vector<int> places;    ///< without basins
+  std::vector<int> places;  ///< without basins
   std::vector<int> branches;
-  bool one_valve = false;     ///< a single valve between places that all have pipes: closed form
+  bool one_valve = false;  ///< a single valve between places that all have pipes: closed form
 };
 
 /// A draw-off of fixed flow.
@@ -50,17 +50,17 @@ struct FixedDraw {
 
 /// Topology of the march; const and shared. Depends on the plan and on which pipes march as rigid columns.
 struct Layout {
-  std::vector<bool> rigid;                       ///< per pipe
+  std::vector<bool> rigid;  ///< per pipe
   std::vector<Side> sides;
-  std::vector<std::vector<int>> sides_at;        ///< per place
-  std::vector<int> side_from, side_to;           ///< per pipe: its sides; -1 for rigid pipes
+  std::vector<std::vector<int>> sides_at;  ///< per place
+  std::vector<int> side_from, side_to;     ///< per pipe: its sides; -1 for rigid pipes
   std::vector<Branch> branches;
   std::vector<FixedDraw> draws;
-  std::vector<std::vector<int>> draws_at;        ///< per place: into `draws`
+  std::vector<std::vector<int>> draws_at;  ///< per place: into `draws`
   std::vector<Cluster> clusters;
-  std::vector<int> basins;                       ///< places with a held level
-  std::vector<int> cluster_of_place;             ///< -1 for basins
-  std::vector<std::vector<int>> branches_at;     ///< per place
+  std::vector<int> basins;                         ///< places with a held level
+  std::vector<int> cluster_of_place;               ///< -1 for basins
+  std::vector<std::vector<int>> branches_at;       ///< per place
   std::size_t most_places = 1, most_branches = 0;  ///< of a cluster
 };
 

@@ -208,8 +208,8 @@ void March<W>::march_pipes() {
     const PipeNumbers<W>& p = numbers_.pipes[i];
     if (p.most_reaches < 2) continue;
     bool cavities = state_.cavities[i] != 0;
-    march_interior(p.resistance, rows_of(i), numbers_.time_step, p.per_section_volume, numbers_.limited, cavities,
-                   state_.tally);
+    march_interior(
+        p.resistance, rows_of(i), numbers_.time_step, p.per_section_volume, numbers_.limited, cavities, state_.tally);
     state_.cavities[i] = cavities ? 1 : 0;
   }
 }
@@ -264,8 +264,7 @@ void March<W>::give_head(int place, const Lanes<W>& head) {
     state_.side_flow[at(sides.front())] = branch_outflow(place) + draw_outflow(place);
     return;
   }
-  for (const int s : sides)
-    state_.side_flow[at(s)] = (state_.wave[at(s)].head - head) * state_.per_impedance[at(s)];
+  for (const int s : sides) state_.side_flow[at(s)] = (state_.wave[at(s)].head - head) * state_.per_impedance[at(s)];
 }
 
 template <int W>
@@ -282,7 +281,8 @@ void March<W>::solve_valve(const Cluster& cluster) {
     return place < 0 || plan_->places[at(place)].basin >= 0 ? zero : place_gives_[at(place)];
   };
   const Lanes<W> gives_from = gives(b.from), gives_to = gives(b.to);
-  Lanes<W> flow = valve_flow<W>(free_head(b.from) - free_head(b.to), gives_from + gives_to, state_.branch_coefficient[j]);
+  Lanes<W> flow =
+      valve_flow<W>(free_head(b.from) - free_head(b.to), gives_from + gives_to, state_.branch_coefficient[j]);
   if (b.to < 0) flow = max(flow, zero);  // air is never drawn in
   state_.branch_flow[j] = flow;
   auto low = zero > Lanes<W>(1.0);
@@ -290,7 +290,8 @@ void March<W>::solve_valve(const Cluster& cluster) {
     const std::size_t p = at(place);
     const Lanes<W> out = place == b.from ? flow : -flow;
     give_head(place, place_head_free_[p] - place_gives_[p] * out);
-    if (numbers_.limited) low = low | (state_.place_head[p] < numbers_.place_vapour[p]) | (state_.place_volume[p] > zero);
+    if (numbers_.limited)
+      low = low | (state_.place_head[p] < numbers_.place_vapour[p]) | (state_.place_volume[p] > zero);
   }
   if (!any(low)) return;
   for (int lane = 0; lane < W; ++lane)
@@ -351,15 +352,13 @@ void March<W>::rigid_losses() {
 }
 
 template <int W>
-void March<W>::load_branch(const Branch& b,
-                           std::size_t j,
-                           int lane,
-                           double time_step,
-                           ClusterBranch& out) {
+void March<W>::load_branch(const Branch& b, std::size_t j, int lane, double time_step, ClusterBranch& out) {
   const BranchMemory& m = state_.memory[j * W + at(lane)];
   out = ClusterBranch{};
   out.kind = b.kind;
-  const auto local = [&](int place) { return place < 0 || plan_->places[at(place)].basin >= 0 ? -1 : local_place_[at(place)]; };
+  const auto local = [&](int place) {
+    return place < 0 || plan_->places[at(place)].basin >= 0 ? -1 : local_place_[at(place)];
+  };
   out.from = local(b.from);
   out.to = local(b.to);
   out.head_from = state_.place_head[at(b.from)][lane];

@@ -105,9 +105,9 @@ class March {
   Lanes<W> time_;
   base::PerLane<MarchStatus, W> status_{};
   ClusterSolver solver_;
-  std::vector<PipeRows<W>> rows_;                      ///< per pipe, into the state
-  std::vector<int> local_place_;                       ///< place -> index in the cluster being solved
-  std::vector<Lanes<W>> rigid_offset_, rigid_slope_;   ///< per branch
+  std::vector<PipeRows<W>> rows_;                        ///< per pipe, into the state
+  std::vector<int> local_place_;                         ///< place -> index in the cluster being solved
+  std::vector<Lanes<W>> rigid_offset_, rigid_slope_;     ///< per branch
   std::vector<Lanes<W>> place_head_free_, place_gives_;  ///< Thevenin: head without outflow, impedance
 };
 

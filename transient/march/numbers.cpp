@@ -122,21 +122,22 @@ void fill_vapour(const network::Plan& plan, const Layout& layout, const network:
     if (!n.limited) continue;
     for (int row = 0; row <= p.most_reaches; ++row) {
       const Lanes<W> at = p.reach * static_cast<double>(row);
-      const Lanes<W> top = pipe::highest_point<W>(x, z, max(at - p.reach, Lanes<W>(0.0)), min(at + p.reach, v.length)).elevation;
+      const Lanes<W> top =
+          pipe::highest_point<W>(x, z, max(at - p.reach, Lanes<W>(0.0)), min(at + p.reach, v.length)).elevation;
       Lanes<W> limit = top + below;
       for (int lane = 0; lane < W; ++lane)
         if (row >= p.reaches[static_cast<std::size_t>(lane)]) limit.set(lane, -never);  // the end is its place's
       n.vapour[p.first_row + static_cast<std::size_t>(row)] = limit;
     }
     n.place_vapour[from] = max(n.place_vapour[from], n.vapour[p.first_row]);
-    const Lanes<W> top_end =
-        pipe::highest_point<W>(x, z, max(v.length - p.reach, Lanes<W>(0.0)), v.length).elevation;
+    const Lanes<W> top_end = pipe::highest_point<W>(x, z, max(v.length - p.reach, Lanes<W>(0.0)), v.length).elevation;
     n.place_vapour[to] = max(n.place_vapour[to], top_end + below);
   }
   for (std::size_t k = 0; k < plan.places.size(); ++k) {
     if (n.limited && layout.sides_at[k].empty() && plan.places[k].basin < 0)
       n.place_vapour[k] = values.places[k].elevation + below;
-    n.place_volume_scale[k] = select(place_volume[k] > Lanes<W>(0.0), 1.0 / max(place_volume[k], Lanes<W>(1e-300)), Lanes<W>(0.0));
+    n.place_volume_scale[k] =
+        select(place_volume[k] > Lanes<W>(0.0), 1.0 / max(place_volume[k], Lanes<W>(1e-300)), Lanes<W>(0.0));
   }
 }
 
@@ -191,13 +192,14 @@ void start_movements(const network::Case& c,
                      const Layout& layout,
                      const network::Values<W>& values,
                      Numbers<W>& n) {
-  const auto begin = [](Movement<W>& m, int lane, double position) { m.chain(lane).assign(1, Segment{-1.0, position}); };
+  const auto begin = [](Movement<W>& m, int lane, double position) {
+    m.chain(lane).assign(1, Segment{-1.0, position});
+  };
   for (int lane = 0; lane < W; ++lane) {
     for (std::size_t j = 0; j < layout.branches.size(); ++j) {
       const Branch& b = layout.branches[j];
-      const double start = b.kind == BranchKind::valve
-                               ? values.valves[static_cast<std::size_t>(b.index)].starting_opening[lane]
-                               : 1.0;
+      const double start =
+          b.kind == BranchKind::valve ? values.valves[static_cast<std::size_t>(b.index)].starting_opening[lane] : 1.0;
       begin(n.branch_movement[j], lane, start);
     }
     for (std::size_t j = 0; j < layout.draws.size(); ++j)
@@ -232,7 +234,9 @@ void add_events(const network::Case& c,
   for (int lane = 0; lane < W; ++lane) {
     const double dt = n.time_step[lane];
     for (std::size_t k = 0; k < order.size(); ++k) order[k] = k;
-    const auto begins = [&](std::size_t k) { return values.events[static_cast<std::size_t>(plan.events[k].index)].at[lane]; };
+    const auto begins = [&](std::size_t k) {
+      return values.events[static_cast<std::size_t>(plan.events[k].index)].at[lane];
+    };
     std::sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
       return begins(a) < begins(b) || (!(begins(b) < begins(a)) && a < b);
     });
@@ -351,7 +355,8 @@ void fill_checks(const network::Case& c,
       if (rule.kind == network::CheckValveKind::reverse_velocity) {
         double bore = pump ? values.pumps[index].check_bore[lane] : values.check_valves[index].bore[lane];
         if (!(bore > 0.0)) bore = bore_beside(plan, values, b.to, lane);
-        const double velocity = pump ? values.pumps[index].reverse_velocity[lane] : values.check_valves[index].reverse_velocity[lane];
+        const double velocity =
+            pump ? values.pumps[index].reverse_velocity[lane] : values.check_valves[index].reverse_velocity[lane];
         out = {true, velocity * 0.25 * std::numbers::pi * bore * bore * b.count, never};
       } else if (rule.kind == network::CheckValveKind::delay) {
         out = {true, never, pump ? values.pumps[index].check_delay[lane] : values.check_valves[index].delay[lane]};
@@ -388,7 +393,8 @@ void fill_pumps(const network::Case& c,
       const double flow = steady.device_flow[static_cast<std::size_t>(b.device)][lane] / given.count;
       const double head = steady.place_head[static_cast<std::size_t>(b.to)][lane] -
                           steady.place_head[static_cast<std::size_t>(b.from)][lane];
-      fill_pump(given, values.pumps[index], weight, flow, head, own, lane, n.pump[j * W + static_cast<std::size_t>(lane)]);
+      fill_pump(
+          given, values.pumps[index], weight, flow, head, own, lane, n.pump[j * W + static_cast<std::size_t>(lane)]);
     }
   }
 }
@@ -446,7 +452,8 @@ void fill_numbers(const network::Case& c,
   for (int lane = 0; lane < W; ++lane) {
     const auto l = static_cast<std::size_t>(lane);
     n.time_step.set(lane, grids[l]->time_step);
-    n.last_step[l] = grids[l]->status == GridStatus::good ? std::max(1LL, step_of(c.surge.duration.value, grids[l]->time_step)) : 0;
+    n.last_step[l] =
+        grids[l]->status == GridStatus::good ? std::max(1LL, step_of(c.surge.duration.value, grids[l]->time_step)) : 0;
   }
   for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
     PipeNumbers<W>& p = n.pipes[i];
@@ -486,8 +493,18 @@ bool wave_speed_is_uncertain(const network::Case& c, const network::Pipe& p) {
   if (sampled(p.wave_speed_scatter)) return true;
   if (p.wave_speed.given()) return sampled(p.wave_speed);
   const auto& l = c.liquid;
-  for (const base::Quantity* q : {&l.temperature, &l.density, &l.bulk_modulus, &l.free_gas, &p.outside, &p.wall, &p.bore,
-                                  &p.lining_thickness, &p.lining_modulus, &p.modulus, &p.poisson, &p.restraint_factor})
+  for (const base::Quantity* q : {&l.temperature,
+                                  &l.density,
+                                  &l.bulk_modulus,
+                                  &l.free_gas,
+                                  &p.outside,
+                                  &p.wall,
+                                  &p.bore,
+                                  &p.lining_thickness,
+                                  &p.lining_modulus,
+                                  &p.modulus,
+                                  &p.poisson,
+                                  &p.restraint_factor})
     if (sampled(*q)) return true;
   return false;
 }
@@ -496,7 +513,8 @@ namespace {
 
 // Shortest movement of an event on something at `place` [s].
 template <int W>
-double fastest_at(const network::Case& c, const network::Plan& plan, const network::Values<W>& values, int place, int lane) {
+double fastest_at(
+    const network::Case& c, const network::Plan& plan, const network::Values<W>& values, int place, int lane) {
   double fastest = never;
   for (const auto& event : plan.events) {
     const network::Event& e = c.events[static_cast<std::size_t>(event.index)];
@@ -542,12 +560,17 @@ GridRequest grid_request(const network::Case& c,
   return r;
 }
 
-#define HEADBAND_NUMBERS(W)                                                                                          \
-  template void fill_numbers<W>(const network::Case&, const network::Plan&, const Layout&,                           \
-                                const network::Values<W>&, const steady::SteadyState<W>&,                            \
-                                const base::PerLane<const Grid*, W>&, Numbers<W>&, std::vector<Jump>&);              \
-  template GridRequest grid_request<W>(const network::Case&, const network::Plan&, const network::Values<W>&,        \
-                                       const steady::SteadyState<W>&, int);
+#define HEADBAND_NUMBERS(W)                                           \
+  template void fill_numbers<W>(const network::Case&,                 \
+                                const network::Plan&,                 \
+                                const Layout&,                        \
+                                const network::Values<W>&,            \
+                                const steady::SteadyState<W>&,        \
+                                const base::PerLane<const Grid*, W>&, \
+                                Numbers<W>&,                          \
+                                std::vector<Jump>&);                  \
+  template GridRequest grid_request<W>(                               \
+      const network::Case&, const network::Plan&, const network::Values<W>&, const steady::SteadyState<W>&, int);
 HEADBAND_NUMBERS(1)
 HEADBAND_NUMBERS(8)
 #undef HEADBAND_NUMBERS

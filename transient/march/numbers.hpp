@@ -23,55 +23,55 @@ struct PipeNumbers {
   bool uniform = true;              ///< all lanes the same count
   Lanes<W> reach_count;             ///< `reaches` as numbers
   int most_reaches = 0;
-  std::size_t first_row = 0;        ///< into the state
-  bool placed = false;              ///< has fittings with a place
+  std::size_t first_row = 0;  ///< into the state
+  bool placed = false;        ///< has fittings with a place
   Resistance<W> resistance;
-  Lanes<W> impedance;               ///< marched wave speed / (g area) [s/m2]
-  Lanes<W> reach;                   ///< [m]
-  Lanes<W> per_section_volume;      ///< 1 / (area reach) [1/m3]
+  Lanes<W> impedance;           ///< marched wave speed / (g area) [s/m2]
+  Lanes<W> reach;               ///< [m]
+  Lanes<W> per_section_volume;  ///< 1 / (area reach) [1/m3]
   // a rigid column
-  Lanes<W> inertia;                 ///< length / (g area) [s2/m2]
+  Lanes<W> inertia;  ///< length / (g area) [s2/m2]
   steady::PipeFriction<W> friction;
-  Lanes<W> kept_factor;             ///< NaN: the law at each step
-  Lanes<W> friction_number;         ///< length / (2 g bore area^2), fittings' equivalent length included [s2/m5]
-  Lanes<W> fitting_number;          ///< loss of all fittings = this Q|Q| [s2/m5]
+  Lanes<W> kept_factor;      ///< NaN: the law at each step
+  Lanes<W> friction_number;  ///< length / (2 g bore area^2), fittings' equivalent length included [s2/m5]
+  Lanes<W> fitting_number;   ///< loss of all fittings = this Q|Q| [s2/m5]
 };
 
 /// When a check valve that lets the flow turn shuts, one draw.
 struct CheckRule {
-  bool lets_turn = false;       ///< false: shuts at zero flow, or there is none
-  double reverse_flow = 0.0;    ///< shuts in the row after one with this flow backwards [m3/s]; infinity = by delay
-  double delay = 0.0;           ///< shuts this long after the flow turned [s]; infinity = by flow
+  bool lets_turn = false;     ///< false: shuts at zero flow, or there is none
+  double reverse_flow = 0.0;  ///< shuts in the row after one with this flow backwards [m3/s]; infinity = by delay
+  double delay = 0.0;         ///< shuts this long after the flow turned [s]; infinity = by flow
 };
 
 /// Numbers of W draws; storage is kept between draws.
 template <int W>
 struct Numbers {
-  Lanes<W> time_step;                     ///< [s]
+  Lanes<W> time_step;  ///< [s]
   base::PerLane<long long, W> last_step{};
   Lanes<W> gravity, density, atmosphere;
-  bool limited = true;                    ///< cavities can form
+  bool limited = true;  ///< cavities can form
   std::vector<PipeNumbers<W>> pipes;
   std::size_t rows = 0;
-  std::vector<Lanes<W>> vapour, fitting, longer;  ///< per row
+  std::vector<Lanes<W>> vapour, fitting, longer;           ///< per row
   std::vector<Lanes<W>> place_vapour, place_volume_scale;  ///< [m], 1 / section volume [1/m3]
   std::vector<Lanes<W>> place_elevation;
-  std::vector<Lanes<W>> branch_full;      ///< per branch: fully open coefficient [m^2.5/s]
-  std::vector<Lanes<W>> seat_power;       ///< per branch
-  std::vector<Movement<W>> branch_movement;   ///< per branch: opening, or share of the starting flow
-  std::vector<Movement<W>> draw_movement;     ///< per fixed draw-off: flow
-  std::vector<Movement<W>> basin_movement;    ///< per place: head; only basins are used
-  std::vector<FourQuadrants> quadrants;   ///< the user's own tables, per pump of the case
-  std::vector<PumpModel> pump;            ///< per branch and lane, [branch * W + lane]
+  std::vector<Lanes<W>> branch_full;                      ///< per branch: fully open coefficient [m^2.5/s]
+  std::vector<Lanes<W>> seat_power;                       ///< per branch
+  std::vector<Movement<W>> branch_movement;               ///< per branch: opening, or share of the starting flow
+  std::vector<Movement<W>> draw_movement;                 ///< per fixed draw-off: flow
+  std::vector<Movement<W>> basin_movement;                ///< per place: head; only basins are used
+  std::vector<FourQuadrants> quadrants;                   ///< the user's own tables, per pump of the case
+  std::vector<PumpModel> pump;                            ///< per branch and lane, [branch * W + lane]
   std::vector<double> trip_time, start_time, start_over;  ///< per branch and lane; infinity = never
-  std::vector<CheckRule> check;           ///< per branch and lane
+  std::vector<CheckRule> check;                           ///< per branch and lane
 };
 
 /// Something that happens at once: the place is solved again at the row's own time.
 struct Jump {
   long long step = 0;
   int lane = 0;
-  int event = 0;  ///< into Plan::events
+  int event = 0;          ///< into Plan::events
   double off_grid = 0.0;  ///< how much later than asked [s]
 };
 

@@ -10,9 +10,9 @@ namespace headband::transient {
 struct Peak {
   static constexpr double none = std::numeric_limits<double>::quiet_NaN();
   double value = 0.0;
-  double time = 0.0;        ///< [s]
-  long long step = 0;       ///< row; an instant's state counts to its own row
-  double beside = 0.0;      ///< largest change between the row of the extreme and the rows beside it
+  double time = 0.0;    ///< [s]
+  long long step = 0;   ///< row; an instant's state counts to its own row
+  double beside = 0.0;  ///< largest change between the row of the extreme and the rows beside it
   double before_last = none, before = none, after = none, after_next = none;  ///< the two rows on either side
 
   void begin(double first) {

@@ -16,10 +16,10 @@ namespace headband::transient {
 /// A computed section of the line, or a profile point between two of them.
 struct Station {
   Spot spot;
-  bool section = true;        ///< false: a profile or answer point
-  bool end = false;           ///< a pipe end: its head is the place's
-  Extremes head;              ///< [m]
-  double top_speed = 0.0;     ///< largest |velocity| [m/s]
+  bool section = true;     ///< false: a profile or answer point
+  bool end = false;        ///< a pipe end: its head is the place's
+  Extremes head;           ///< [m]
+  double top_speed = 0.0;  ///< largest |velocity| [m/s]
   double top_speed_time = 0.0;
 };
 
@@ -57,9 +57,9 @@ class Record {
  private:
   struct OpenCavity {
     bool open = false;
-    double opens = 0.0;   ///< [s]
-    double volume = 0.0;  ///< largest of this opening [m3]
-    double largest = 0.0; ///< of the run [m3]
+    double opens = 0.0;     ///< [s]
+    double volume = 0.0;    ///< largest of this opening [m3]
+    double largest = 0.0;   ///< of the run [m3]
     double standing = 0.0;  ///< time with a cavity [s]
   };
   struct SeriesSource {
@@ -94,7 +94,7 @@ class Record {
   std::vector<Extremes> place_head_;
   std::vector<double> place_speed_, place_speed_time_;
   std::vector<OpenCavity> row_cavity_, place_cavity_;
-  std::vector<Spot> probe_spots_;                         ///< per probe; pipe < 0: a place
+  std::vector<Spot> probe_spots_;  ///< per probe; pipe < 0: a place
   std::vector<SeriesSource> series_;
   std::vector<Extremes> device_flow_, device_speed_;
   std::vector<double> first_flow_, first_head_, first_speed_;

@@ -19,7 +19,12 @@ void Record::take_extreme(const March<1>& march, const Station& s, bool highest,
   const Peak& peak = highest ? s.head.high : s.head.low;
   const double pressure = weight * (peak.value - s.spot.elevation);
   if (best.pipe >= 0 && !(highest ? pressure > best.value : pressure < best.value)) return;
-  best = {pressure, peak.time, weight * peak.beside, peak.value, s.spot.pipe, s.spot.chainage,
+  best = {pressure,
+          peak.time,
+          weight * peak.beside,
+          peak.value,
+          s.spot.pipe,
+          s.spot.chainage,
           weight * peak.missed(highest ? 1.0 : -1.0)};
 }
 
@@ -38,13 +43,19 @@ AnswerPeak Record::extreme_of(const March<1>& march, const network::AnswerPlan& 
     const Extremes& e = place_head_[where.place.at()];
     const Peak& peak = highest ? e.high : e.low;
     const double z = march.numbers().place_elevation[where.place.at()].number;
-    return {weight * (peak.value - z), peak.time, weight * peak.beside, peak.value, -1, answers::missing,
+    return {weight * (peak.value - z),
+            peak.time,
+            weight * peak.beside,
+            peak.value,
+            -1,
+            answers::missing,
             weight * peak.missed(highest ? 1.0 : -1.0)};
   }
   for (const Station& s : stations_) {
     if (where.pipe.exists() && s.spot.pipe != where.pipe.index) continue;
     if (where.pipe.exists() && where.chainage >= 0.0 && what.kind != network::AnswerKind::velocity &&
-        std::fabs(s.spot.chainage - std::clamp(where.chainage, 0.0, values_->pipes[where.pipe.at()].length.number)) > 1e-9)
+        std::fabs(s.spot.chainage - std::clamp(where.chainage, 0.0, values_->pipes[where.pipe.at()].length.number)) >
+            1e-9)
       continue;
     if (where.place.exists()) {  // velocity at a place: of the pipe ends that meet there
       const auto& p = march.plan().pipes[at(s.spot.pipe)];
@@ -84,8 +95,8 @@ void Record::finish_stations(const March<1>& march, SurgeRun& run) const {
     const OpenCavity& c = s.end ? place_cavity_[place] : row_cavity_[row];
     t.cavity_volume_max.push_back(c.largest);
     t.time_with_cavity.push_back(c.standing);
-    const double limit = s.end || p.most_reaches == 0 ? march.numbers().place_vapour[place].number
-                                                      : march.numbers().vapour[row].number;
+    const double limit =
+        s.end || p.most_reaches == 0 ? march.numbers().place_vapour[place].number : march.numbers().vapour[row].number;
     t.vapour_head.push_back(std::isfinite(limit) ? limit : answers::missing);
   }
 }

@@ -42,8 +42,8 @@ double Record::device_head(const March<1>& march, int device) const {
   const auto& d = march.plan().devices[at(device)];
   const double from = march.state().place_head[d.from.at()].number;
   if (d.kind == network::DeviceKind::draw_off) return from;
-  const double to = d.to.exists() ? march.state().place_head[d.to.at()].number
-                                  : march.numbers().place_elevation[d.from.at()].number;
+  const double to =
+      d.to.exists() ? march.state().place_head[d.to.at()].number : march.numbers().place_elevation[d.from.at()].number;
   return d.kind == network::DeviceKind::pump ? to - from : from - to;
 }
 
@@ -139,7 +139,11 @@ void Record::watch_cavities(const March<1>& march) {
     for (int row = 1; row < p.most_reaches; ++row) {
       const std::size_t r = p.first_row + at(row);
       if (state.volume[r].number > 0.0 || row_cavity_[r].open)
-        watch_cavity(row_cavity_[r], state.volume[r].number, p.per_section_volume.number, march, static_cast<int>(i),
+        watch_cavity(row_cavity_[r],
+                     state.volume[r].number,
+                     p.per_section_volume.number,
+                     march,
+                     static_cast<int>(i),
                      row * p.reach.number);
     }
   }
@@ -148,8 +152,12 @@ void Record::watch_cavities(const March<1>& march) {
     const auto& sides = march.layout().sides_at[k];
     if (sides.empty()) continue;
     const Side& side = march.layout().sides[at(sides.front())];
-    watch_cavity(place_cavity_[k], state.place_volume[k].number, march.numbers().place_volume_scale[k].number, march,
-                 side.pipe, side.far ? values_->pipes[at(side.pipe)].length.number : 0.0);
+    watch_cavity(place_cavity_[k],
+                 state.place_volume[k].number,
+                 march.numbers().place_volume_scale[k].number,
+                 march,
+                 side.pipe,
+                 side.far ? values_->pipes[at(side.pipe)].length.number : 0.0);
   }
 }
 
@@ -160,15 +168,21 @@ void Record::finish_cavities(const March<1>& march) {
     for (int row = 1; row < p.most_reaches; ++row) {
       const std::size_t r = p.first_row + at(row);
       if (row_cavity_[r].open)
-        close_cavity(row_cavity_[r], p.per_section_volume.number, answers::missing, march.plan().pipes[i].name,
+        close_cavity(row_cavity_[r],
+                     p.per_section_volume.number,
+                     answers::missing,
+                     march.plan().pipes[i].name,
                      row * p.reach.number);
     }
   }
   for (std::size_t k = 0; k < place_cavity_.size(); ++k) {
     if (!place_cavity_[k].open) continue;
     const Side& side = march.layout().sides[at(march.layout().sides_at[k].front())];
-    close_cavity(place_cavity_[k], march.numbers().place_volume_scale[k].number, answers::missing,
-                 march.plan().pipes[at(side.pipe)].name, side.far ? values_->pipes[at(side.pipe)].length.number : 0.0);
+    close_cavity(place_cavity_[k],
+                 march.numbers().place_volume_scale[k].number,
+                 answers::missing,
+                 march.plan().pipes[at(side.pipe)].name,
+                 side.far ? values_->pipes[at(side.pipe)].length.number : 0.0);
   }
 }
 
@@ -196,7 +210,8 @@ void Record::watch_devices(const March<1>& march) {
     if (b.kind != BranchKind::pump && b.kind != BranchKind::check_valve) continue;
     const char shut = state.memory[j].shut ? 1 : 0;
     if (shut != was_shut_[j])
-      add_event(time, name, shut != 0 ? "check_shut" : "check_open", shut != 0 ? "check valve shuts" : "check valve opens");
+      add_event(
+          time, name, shut != 0 ? "check_shut" : "check_open", shut != 0 ? "check valve shuts" : "check valve opens");
     const char forward = flow > 0.0 ? 1 : 0;
     if (b.kind == BranchKind::pump && was_forward_[j] != 0 && forward == 0)
       add_event(time, name, "zero_flow", "the flow has come to rest");
@@ -219,11 +234,13 @@ void Record::watch_limits(const March<1>& march) {
       crossed = crossed || (limit.not_over ? pressure > limit.bound : pressure < limit.bound);
     };
     if (where.place.exists()) {
-      judge(march.state().place_head[where.place.at()].number, march.numbers().place_elevation[where.place.at()].number);
+      judge(march.state().place_head[where.place.at()].number,
+            march.numbers().place_elevation[where.place.at()].number);
     } else {
       for (const Station& s : stations_) {
         if (where.pipe.exists() && s.spot.pipe != where.pipe.index) continue;
-        if (where.pipe.exists() && where.chainage >= 0.0 && std::fabs(s.spot.chainage - where.chainage) > 1e-9) continue;
+        if (where.pipe.exists() && where.chainage >= 0.0 && std::fabs(s.spot.chainage - where.chainage) > 1e-9)
+          continue;
         judge(head_at<1>(march, s.spot, 0), s.spot.elevation);
       }
     }

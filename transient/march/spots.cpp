@@ -60,7 +60,8 @@ double flow_at(const March<W>& march, const Spot& spot, int lane) {
   if (march.numbers().pipes[i].reaches[static_cast<std::size_t>(lane)] == 0) {
     const auto& branches = march.layout().branches;
     for (std::size_t j = 0; j < branches.size(); ++j)
-      if (branches[j].kind == BranchKind::rigid_pipe && branches[j].index == spot.pipe) return state.branch_flow[j][lane];
+      if (branches[j].kind == BranchKind::rigid_pipe && branches[j].index == spot.pipe)
+        return state.branch_flow[j][lane];
     return 0.0;
   }
   const bool cavities = state.cavities[i] != 0;
@@ -72,10 +73,10 @@ double flow_at(const March<W>& march, const Spot& spot, int lane) {
   return leaving + spot.share * (after - leaving);
 }
 
-#define HEADBAND_SPOTS(W)                                                                                       \
-  template double elevation_of<W>(const network::PipeValues<W>&, double, int);                                  \
-  template Spot make_spot<W>(const March<W>&, const network::Values<W>&, int, double, int);                     \
-  template double head_at<W>(const March<W>&, const Spot&, int);                                                \
+#define HEADBAND_SPOTS(W)                                                                   \
+  template double elevation_of<W>(const network::PipeValues<W>&, double, int);              \
+  template Spot make_spot<W>(const March<W>&, const network::Values<W>&, int, double, int); \
+  template double head_at<W>(const March<W>&, const Spot&, int);                            \
   template double flow_at<W>(const March<W>&, const Spot&, int);
 HEADBAND_SPOTS(1)
 HEADBAND_SPOTS(8)

@@ -10,15 +10,16 @@ namespace headband::transient {
 /// A chainage of a pipe between two rows of a lane: value = row + share (next row - row).
 struct Spot {
   int pipe = 0;
-  std::size_t row = 0;       ///< into the state
-  double share = 0.0;        ///< 0 .. 1
-  double chainage = 0.0;     ///< [m]
-  double elevation = 0.0;    ///< [m]
+  std::size_t row = 0;     ///< into the state
+  double share = 0.0;      ///< 0 .. 1
+  double chainage = 0.0;   ///< [m]
+  double elevation = 0.0;  ///< [m]
 };
 
 /// The spot of a chainage on the lane's grid; on a rigid pipe row and next row are its two ends.
 template <int W>
-[[nodiscard]] Spot make_spot(const March<W>& march, const network::Values<W>& values, int pipe, double chainage, int lane);
+[[nodiscard]] Spot make_spot(
+    const March<W>& march, const network::Values<W>& values, int pipe, double chainage, int lane);
 
 /// Elevation of a pipe at a chainage [m].
 template <int W>

@@ -71,7 +71,10 @@ void tell_grid(const network::Plan& plan, const Grid& grid, SurgeRun& run) {
   char text[300];
   constexpr double told_change = 0.02;
   if (grid.worst_change > told_change) {
-    std::snprintf(text, sizeof text, "grid: the wave speed of pipe '%s' is changed by %.1f %%", a.worst_pipe.c_str(),
+    std::snprintf(text,
+                  sizeof text,
+                  "grid: the wave speed of pipe '%s' is changed by %.1f %%",
+                  a.worst_pipe.c_str(),
                   100.0 * grid.worst_change);
     run.warnings.emplace_back(text);
   }
@@ -81,10 +84,12 @@ void tell_rigid(const network::Plan& plan, const network::Values<1>& values, con
   for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
     if (grid.reaches[i] != 0) continue;
     char text[300];
-    std::snprintf(text, sizeof text,
+    std::snprintf(text,
+                  sizeof text,
                   "pipe '%s' is too short for a wave on this grid and marches as a rigid column (2L/a = %.3g s, step "
                   "%.3g s)",
-                  plan.pipes[i].name.c_str(), 2.0 * values.pipes[i].length.number / grid.marched_speed[i],
+                  plan.pipes[i].name.c_str(),
+                  2.0 * values.pipes[i].length.number / grid.marched_speed[i],
                   grid.time_step);
     run.warnings.emplace_back(text);
   }
@@ -94,8 +99,11 @@ void tell_jumps(const network::Plan& plan, const March<1>& march, SurgeRun& run)
   for (const Jump& j : march.jumps()) {
     if (j.off_grid <= 1e-9 * march.numbers().time_step.number) continue;
     char text[300];
-    std::snprintf(text, sizeof text, "event '%s' acts at the next row of the grid, %.3g s later than asked",
-                  plan.events[at(j.event)].name.c_str(), j.off_grid);
+    std::snprintf(text,
+                  sizeof text,
+                  "event '%s' acts at the next row of the grid, %.3g s later than asked",
+                  plan.events[at(j.event)].name.c_str(),
+                  j.off_grid);
     run.warnings.emplace_back(text);
   }
 }
@@ -204,7 +212,10 @@ void fill_answers(const network::Plan& plan,
   for (const auto& l : plan.limits) fill(l.subject, run.limit_value, run.limit_grid_bound);
 }
 
-void fill_extremes(const network::Plan& plan, const GridRun& asked, const std::optional<Bounds>& bounds, SurgeRun& run) {
+void fill_extremes(const network::Plan& plan,
+                   const GridRun& asked,
+                   const std::optional<Bounds>& bounds,
+                   SurgeRun& run) {
   for (const bool highest : {true, false}) {
     const auto extreme = [&](const GridRun& r) { return r.record.extreme_everywhere(r.march, highest); };
     answers::Extreme e = as_extreme(plan, extreme(asked));
@@ -218,7 +229,8 @@ void fill_extremes(const network::Plan& plan, const GridRun& asked, const std::o
   }
 }
 
-// The built-in four-quadrant table is that of specific speed 25: told where a moving pump is further than a fifth from it.
+// The built-in four-quadrant table is that of specific speed 25: told where a moving pump is further than a fifth from
+// it.
 void tell_foreign_quadrants(const network::Plan& plan, const March<1>& march, SurgeRun& run) {
   constexpr double table_speed = 25.0, told = 0.2;
   const auto& n = march.numbers();
@@ -234,10 +246,14 @@ void tell_foreign_quadrants(const network::Plan& plan, const March<1>& march, Su
     const double specific = rev_per_min * std::sqrt(pump.rated_flow) / std::pow(pump.rated_head, 0.75);
     if (!moves || !(std::fabs(specific / table_speed - 1.0) > told)) continue;
     char text[300];
-    std::snprintf(text, sizeof text,
-                  "pump '%s' has specific speed %.3g (rev/min, m3/s, m); its reverse flow is taken from the table of %.3g, "
-                  "the only one there is",
-                  plan.devices[at(branches[j].device)].name.c_str(), specific, table_speed);
+    std::snprintf(
+        text,
+        sizeof text,
+        "pump '%s' has specific speed %.3g (rev/min, m3/s, m); its reverse flow is taken from the table of %.3g, "
+        "the only one there is",
+        plan.devices[at(branches[j].device)].name.c_str(),
+        specific,
+        table_speed);
     run.warnings.emplace_back(text);
   }
 }
@@ -252,9 +268,10 @@ void tell_pumps_beyond_their_curve(const network::Case& c, SurgeRun& run) {
     const std::size_t width = t.series_name.size();
     for (std::size_t k = static_cast<std::size_t>(found - t.series_name.begin()); k < t.series.size(); k += width)
       if (t.series[k] < 0.0) {
-        run.warnings.push_back("pump '" + pump.name +
-                               "': flow runs back through it, and without a four-quadrant characteristic its forward curve "
-                               "is followed there: not to be trusted");
+        run.warnings.push_back(
+            "pump '" + pump.name +
+            "': flow runs back through it, and without a four-quadrant characteristic its forward curve "
+            "is followed there: not to be trusted");
         break;
       }
   }
@@ -283,7 +300,8 @@ SurgeRun run_surge(const network::Case& c,
   std::optional<Bounds> bounds;
   if (c.surge.grid_check && asked.finished()) {
     fine.emplace(c, plan, values, steady, refined(grid, 2), layout, false);
-    if (asked.march.state().tally.closed[0] || third_grid_is_cheap(grid, c.surge.duration.value)) finest.emplace(c, plan, values, steady, refined(grid, 4), layout, false);
+    if (asked.march.state().tally.closed[0] || third_grid_is_cheap(grid, c.surge.duration.value))
+      finest.emplace(c, plan, values, steady, refined(grid, 4), layout, false);
     bounds.emplace(asked, &*fine, finest ? &*finest : nullptr);
     run.grid.grids = finest ? 3 : 2;
   } else if (!c.surge.grid_check) {
@@ -295,7 +313,9 @@ SurgeRun run_surge(const network::Case& c,
   tell_pumps_beyond_their_curve(c, run);
   if (run.audit.volume_residual_relative > 1e-2) {
     char text[200];
-    std::snprintf(text, sizeof text, "volume audit: the residual is %.2g of the volume passed",
+    std::snprintf(text,
+                  sizeof text,
+                  "volume audit: the residual is %.2g of the volume passed",
                   run.audit.volume_residual_relative);
     run.warnings.emplace_back(text);
   }

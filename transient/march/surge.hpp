@@ -18,11 +18,11 @@ using base::Lanes;
 
 /// What one marched run says: the blocks of a Study that verb `surge` fills.
 struct SurgeRun {
-  bool completed = false;                 ///< false: see `transient.status`
+  bool completed = false;  ///< false: see `transient.status`
   answers::Transient transient;
   answers::Extreme highest, lowest;
-  std::vector<answers::PlaceAnswer> places;       ///< only the surge keys are filled; as Plan::places
-  std::vector<answers::DeviceAnswer> devices;     ///< numbers of the run; as Plan::devices
+  std::vector<answers::PlaceAnswer> places;    ///< only the surge keys are filled; as Plan::places
+  std::vector<answers::DeviceAnswer> devices;  ///< numbers of the run; as Plan::devices
   std::vector<answers::EventAnswer> events;
   answers::Audit audit;
   answers::GridAnswer grid;
@@ -31,12 +31,14 @@ struct SurgeRun {
   std::vector<double> answer_grid_bound;  ///< >= 0 [the answer's unit]; NaN = not converging
   std::vector<double> limit_grid_bound;
   std::vector<std::string> warnings;
-  bool cavity = false;                    ///< a cavity over 1e-6 of its section's volume formed
+  bool cavity = false;  ///< a cavity over 1e-6 of its section's volume formed
 };
 
 /// One run with histories, envelopes, events, audit, and the grid bound from finer grids where the case asks for it.
 /// @throws base::InputError where the grid refuses a wave-speed change
-[[nodiscard]] SurgeRun run_surge(const network::Case& c, const network::Plan& plan, const network::Values<1>& values,
+[[nodiscard]] SurgeRun run_surge(const network::Case& c,
+                                 const network::Plan& plan,
+                                 const network::Values<1>& values,
                                  const steady::SteadyState<1>& steady);
 
 /// True where something that feeds the wave speed of the pipe is sampled.
@@ -45,11 +47,11 @@ struct SurgeRun {
 /// Answers of W marched draws.
 template <int W>
 struct DrawAnswers {
-  std::vector<Lanes<W>> answer;        ///< as Plan::answers
-  std::vector<Lanes<W>> limit;         ///< as Plan::limits
+  std::vector<Lanes<W>> answer;              ///< as Plan::answers
+  std::vector<Lanes<W>> limit;               ///< as Plan::limits
   std::vector<Lanes<W>> head_max, head_min;  ///< envelopes at `profile stations` (see BatchMarcher::stations)
-  std::vector<Lanes<W>> history;       ///< heads, row-major (time, probe): BatchMarcher's times, Plan::probes [m]
-  base::PerLane<std::int8_t, W> status{};  ///< 0 finished, 2 not finite, 3 boundary not converged, 4 grid refused
+  std::vector<Lanes<W>> history;             ///< heads, row-major (time, probe): BatchMarcher's times, Plan::probes [m]
+  base::PerLane<std::int8_t, W> status{};    ///< 0 finished, 2 not finite, 3 boundary not converged, 4 grid refused
   base::PerLane<bool, W> cavity{};
 };
 

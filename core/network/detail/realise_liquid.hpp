@@ -14,8 +14,8 @@ enum class LiquidKind { water, sea_water, own };
 
 [[nodiscard]] inline bool has_viscosity_law(const Liquid& liquid) { return liquid.viscosity_points.size() >= 2; }
 
-/// What follows from the temperature: the numbers of water at 0.1 MPa (a case has one liquid, not one per place), or the
-/// two-point viscosity law.
+/// What follows from the temperature: the numbers of water at 0.1 MPa (a case has one liquid, not one per place), or
+/// the two-point viscosity law.
 template <int W>
 void realise_by_temperature(const Liquid& liquid, const Draw<W>& draw, LiquidValues<W>& values) {
   values.temperature = draw(liquid.temperature);
