@@ -12,7 +12,7 @@ import shlex
 import subprocess
 import sys
 
-DROPPED = {"-c", "-Wno-psabi", "-Werror"}
+DROPPED = {"-c", "-Wno-psabi", "-Werror", "-mmove-max=256", "-mstore-max=256"}  # known to g++ alone
 
 
 def command_of(entry):

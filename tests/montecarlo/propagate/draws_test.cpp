@@ -8,6 +8,7 @@
 #include <bit>
 #include <chrono>
 #include <cmath>
+#include <limits>
 #include <optional>
 #include <stdexcept>
 #include <thread>
@@ -72,7 +73,7 @@ TEST(Draws, FailedDrawsAreKeptAsSuch) {
     for (int lane = 0; lane < 8; ++lane) {
       if (scores[0][lane] < 0.1) out.status[static_cast<std::size_t>(lane)] = 1;
       if (scores[0][lane] > 0.9) out.answer[0].set(lane, std::nan(""));
-      if (scores[1][lane] > 0.95) out.limit[0].set(lane, INFINITY);
+      if (scores[1][lane] > 0.95) out.limit[0].set(lane, std::numeric_limits<double>::infinity());
     }
   }};
   DrawTable table(1, 1, 0);

@@ -9,6 +9,7 @@
 
 #include <fmt/format.h>
 #include <cmath>
+#include <limits>
 #include <functional>
 #include <map>
 #include <numbers>
@@ -135,7 +136,7 @@ TEST(Sensitivity, SharesMatchAnalyticFunctions) {
     const Shares& s = done[id];
     const std::string& what = row[2];
     const double expected = std::stod(row[3]);
-    double seen = NAN;
+    double seen = std::numeric_limits<double>::quiet_NaN();
     if (what == "mean") {
       EXPECT_NEAR(s.mean, expected, 0.01 * std::fabs(expected));
     } else if (what == "variance") {
