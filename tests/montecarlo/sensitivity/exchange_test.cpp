@@ -9,8 +9,8 @@
 
 #include <fmt/format.h>
 #include <cmath>
-#include <limits>
 #include <functional>
+#include <limits>
 #include <map>
 #include <numbers>
 #include <sstream>
