@@ -68,7 +68,7 @@ def hollowmere():
     check("wave speed [m/s]", pipe["wave_speed_m_per_s"], 1157.5, 1158.5)
     for over, bar in (("3 s", 11.93), ("6 s", 8.4), ("12 s", 6.95)):
         peak = run(case, "surge", swap=[('over = "1 s"', f'over = "{over}"')])["extremes"]["max_pressure_Pa"] / BAR
-        check(f"closing in {over} [bar]", peak, bar - 0.05 if bar == 8.4 else bar - 0.02, bar + 0.05 if bar == 8.4 else bar + 0.02)
+        check(f"closing in {over} [bar]", peak, bar - 0.02, bar + 0.02)
     band = run(case, "band", "--surge")
     limit = band["limits"][0]
     check("P(> 12.0 bar)", limit["probability"], 0.23, 0.29)
@@ -77,6 +77,7 @@ def hollowmere():
     check("lower end [bar]", q["0.025"][0] / BAR, 11.60, 11.70)
     check("upper end [bar]", q["0.975"][0] / BAR, 12.15, 12.25)
     # a valve that ripples at an odd multiple of a/4L swings the head; at an even one only its first moments are seen
+    # "almost none" at 3.11 s has no number in the brief; the bound here was set after the result (0.205 bar) was seen
     for period, low, high in (("6.22 s", 0.56, 0.60), ("2.07 s", 0.56, 0.60), ("3.11 s", 0.0, 0.22)):
         swing = run(case, "surge", swap=[('to = "0 %"\nover = "1 s"', f'swing = "2.5 %"\nperiod = "{period}"'),
                                          ('flow = { value = "100 L/s ± 2 %", source = "site meter" }',
@@ -114,6 +115,8 @@ def ravelin():
         swap = [('over = "120 s ± 10 %"', f'over = "{over} s ± 10 %"'), ('duration = "160 s"', f'duration = "{over + 30} s"')]
         peak = run(case, "surge", swap=swap)
         # the first peak: the brief's number is the one before any cavity rejoins
+        # 60 s and 90 s: the brief gives whole bars (28, 24), so the check is the rounding, +/- 0.5; its +/- 0.15 bar read to
+        # the letter is NOT met there (28.47 and 24.24 bar)
         value = peak["places"]["works valve chamber"]["max_pressure_Pa"] / BAR
         spread = 0.5 if over < 120 else 0.15
         check(f"closing in {over} s [bar]", value, bar - spread, bar + spread)
