@@ -4,6 +4,8 @@
 #include "core/report/bars.hpp"
 #include "core/report/markup.hpp"
 
+#include "core/show/reported.hpp"
+
 #include <fmt/format.h>
 
 #include <algorithm>
@@ -470,10 +472,7 @@ std::vector<Plot> scatters(const Study& study, std::size_t index, std::size_t mo
   const std::size_t inputs = bands.input_name.size(), outputs = bands.answers.size();
   const std::size_t rows =
       inputs == 0 ? 0 : std::min(bands.input_value.size() / inputs, bands.output_value.size() / outputs);
-  std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;
-  std::sort(ranked.begin(), ranked.end(), [](const auto& a, const auto& b) {
-    return std::tie(b.total, a.input) < std::tie(a.total, b.input);
-  });
+  const auto ranked = show::ranked_unknowns(answer);
   for (const auto& unknown : ranked) {
     const auto found = std::find(bands.input_name.begin(), bands.input_name.end(), unknown.input);
     if (found == bands.input_name.end() || plots.size() == most) continue;

@@ -7,6 +7,8 @@
 #include "core/report/markup.hpp"
 #include "core/report/sections.hpp"
 
+#include "core/show/reported.hpp"
+
 #include <fmt/format.h>
 
 #include <cmath>
@@ -104,7 +106,7 @@ std::map<std::string, std::string> pictures(const answers::Study& study, const s
       files["budget-" + slug(answer.name) + ".svg"] =
           bars_svg("budget " + answer.name, "Where the width of " + answer.name + " comes from", budget);
     std::vector<Bar> ranking;
-    for (const auto& s : answer.sensitivity)
+    for (const auto& s : show::ranked_unknowns(answer))
       ranking.push_back({s.input, std::max(s.first, s.total), s.first, figures(s.total, 2)});
     if (!ranking.empty())
       files["sensitivity-" + slug(answer.name) + ".svg"] =

@@ -4,11 +4,12 @@
 #include "core/report/markup.hpp"
 #include "core/report/sections.hpp"
 
+#include "core/show/reported.hpp"
+
 #include <fmt/format.h>
 
 #include <algorithm>
 #include <cmath>
-#include <tuple>
 
 namespace headband::report {
 namespace {
@@ -47,10 +48,7 @@ std::string sensitivity(const answers::BandAnswer& answer) {
   Table table{fmt::format("Which unknowns move {}: shares of its variance", answer.name),
               {{"Unknown"}, {"alone", true}, {"with others", true}, {"alone (dark), with others (light)"}},
               {}};
-  std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;
-  std::sort(ranked.begin(), ranked.end(), [](const auto& a, const auto& b) {
-    return std::tie(b.total, a.input) < std::tie(a.total, b.input);
-  });
+  const auto ranked = show::ranked_unknowns(answer);
   for (const auto& s : ranked)
     table.rows.push_back({escaped(s.input),
                           figures(s.first, 2),

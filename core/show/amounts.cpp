@@ -57,6 +57,9 @@ Amounts::Amounts(const answers::Study& study, const std::string& units)
 
 std::string Amounts::number(double value, Dimension dimension, int digits) const {
   if (std::isnan(value)) return "-";
+  // what rounding leaves of a flow where nothing flows
+  const bool still = dimension == Dimension::flow || dimension == Dimension::velocity;
+  if (still && std::abs(value) < 1e-12) value = 0.0;
   return base::significant(base::to_display(base::display_unit(dimension, family_), value), digits);
 }
 

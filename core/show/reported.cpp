@@ -66,4 +66,13 @@ std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study
   return largest;
 }
 
+std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer) {
+  const auto weight = [](double share) { return std::isnan(share) ? -1.0 : share; };
+  std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;
+  std::sort(ranked.begin(), ranked.end(), [&](const auto& a, const auto& b) {
+    return weight(a.total) != weight(b.total) ? weight(a.total) > weight(b.total) : a.input < b.input;
+  });
+  return ranked;
+}
+
 }  // namespace headband::show

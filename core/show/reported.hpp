@@ -24,4 +24,7 @@ inline constexpr std::size_t reported_cavities_at_most = 200;
 /// Where the section's volume is not known the cavity is told.
 [[nodiscard]] std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study);
 
+/// Shares of an answer's variance, those that move it most first (with others, then by name); without a number last.
+[[nodiscard]] std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer);
+
 }  // namespace headband::show

@@ -420,9 +420,8 @@ void bands(Frame& f) {
     if (a.modes > 1) f.item(fmt::format("{}: the density has {} humps; mean and band hide that", a.name, a.modes));
     if (a.sensitivity.empty()) continue;
     std::string ranks;
-    for (const auto& s : a.sensitivity) {
-      ranks += fmt::format("{}{} {}", ranks.empty() ? "" : ", ", s.input, percent(s.first));
-    }
+    for (const auto& s : ranked_unknowns(a))
+      ranks += fmt::format("{}{} ({})", ranks.empty() ? "" : ", ", s.input, percent(s.first));
     f.item(fmt::format("{}: share of the variance by {}", a.name, ranks));
   }
 }

@@ -11,6 +11,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <tuple>
 
 namespace headband::show {
@@ -36,12 +37,20 @@ int badness(Verdict verdict) {
   return 0;
 }
 
-/// Likeliest to fail: by the probability's upper bound, else by the margin as a share of the limit.
-double closeness(const LimitAnswer& limit) {
+/// Likeliest to fail, by the probability's upper bound; 0 without one.
+double likelihood(const LimitAnswer& limit) {
   if (limit.probability_upper_range) return (*limit.probability_upper_range)[1];
-  if (!std::isnan(limit.probability_upper)) return limit.probability_upper;
-  if (std::isnan(limit.margin)) return 0.0;
-  return -limit.margin / std::max(std::abs(limit.limit), 1e-300);
+  return std::isnan(limit.probability_upper) ? 0.0 : limit.probability_upper;
+}
+
+/// Closest to its limit in the single run, as a share of the larger of both: tells limits of one probability apart.
+double closeness(const LimitAnswer& limit) {
+  if (std::isnan(limit.margin)) return std::numeric_limits<double>::lowest();
+  return -limit.margin / std::max({std::abs(limit.limit), std::abs(limit.value), 1e-300});
+}
+
+auto weight(const LimitAnswer& limit) {
+  return std::make_tuple(badness(limit.verdict), likelihood(limit), closeness(limit));
 }
 
 std::string limit_sentence(const Study& study, const LimitAnswer& limit, const Amounts& amounts) {
@@ -153,10 +162,9 @@ void append(std::string& text, const std::string& sentence) {
 }  // namespace
 
 const answers::LimitAnswer* deciding_limit(const Study& study) {
-  const auto worst =
-      std::max_element(study.limits.begin(), study.limits.end(), [](const LimitAnswer& a, const LimitAnswer& b) {
-        return std::make_tuple(badness(a.verdict), closeness(a)) < std::make_tuple(badness(b.verdict), closeness(b));
-      });
+  const auto worst = std::max_element(study.limits.begin(),
+                                      study.limits.end(),
+                                      [](const LimitAnswer& a, const LimitAnswer& b) { return weight(a) < weight(b); });
   return worst == study.limits.end() ? nullptr : &*worst;
 }
 

@@ -19,6 +19,7 @@ inline constexpr long long budget_draws = 4096;  ///< the first ones serve the b
 struct AnswerBudget {
   double inputs = answers::missing, friction_law = answers::missing;  ///< standard deviations that vanish when frozen
   std::vector<answers::SensitivityAnswer> shares;
+  double explained = 1.0;  ///< of the variance, by the fit the shares come from; 1 where inputs were exchanged
 };
 
 struct Budget {

@@ -144,18 +144,27 @@ void fit_inputs(const BudgetRequest& request, const DrawTable& table, Budget& bu
     }
   }
   for (std::size_t a = 0; a < table.answer.size(); ++a) {
+    AnswerBudget& answer = budget.answers[a];
+    answer.explained = explained[a];
     for (std::size_t u = 0; u < inputs.size(); ++u) {
       if (std::ranges::find(request.ranges->unknown, u) != request.ranges->unknown.end()) continue;
-      auto& share = shares[a][u];
-      share.input = inputs[u].name;
-      if (!(explained[a] >= too_little)) share.first = share.total = answers::missing;
-      budget.answers[a].shares.push_back(share);
+      shares[a][u].input = inputs[u].name;
+      answer.shares.push_back(shares[a][u]);
     }
-    if (!(explained[a] >= remark_under)) {
+  }
+}
+
+void judge_fits(const BudgetRequest& request, Budget& budget) {
+  for (std::size_t a = 0; a < budget.answers.size(); ++a) {
+    AnswerBudget& answer = budget.answers[a];
+    const bool enough = answer.explained >= too_little;
+    if (!enough)
+      for (auto& share : answer.shares) share.first = share.total = answers::missing;
+    if (!(answer.explained >= remark_under)) {
       budget.warnings.push_back(fmt::format("variance shares of {}: a smooth model explains {:.0f} % of its variance{}",
                                             a < request.names.size() ? request.names[a] : "",
-                                            100.0 * std::max(0.0, explained[a]),
-                                            explained[a] >= too_little ? "" : "; none are stated"));
+                                            100.0 * std::max(0.0, answer.explained),
+                                            enough ? "" : "; none are stated"));
     }
   }
 }

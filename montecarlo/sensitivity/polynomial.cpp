@@ -194,8 +194,11 @@ FittedShares fit_shares(const std::vector<FitInput>& inputs, const std::vector<d
   shares.terms = static_cast<int>(best.terms.size());
   std::ranges::fill(shares.first, 0.0);
   std::ranges::fill(shares.total, 0.0);
+  // Parts over the model's own variance, not over the sample's: that one carries the noise of the draws, which the
+  // coefficients of a good fit do not.
+  const double whole = best.coefficient.tail(best.coefficient.size() - 1).squaredNorm() + best.left_out_error;
   for (std::size_t t = 0; t < best.terms.size(); ++t) {
-    const double part = std::pow(best.coefficient(static_cast<Eigen::Index>(t) + 1), 2.0);
+    const double part = std::pow(best.coefficient(static_cast<Eigen::Index>(t) + 1), 2.0) / whole;
     for (const auto& [input, degree] : best.terms[t]) shares.total[input] += part;
     if (best.terms[t].size() == 1) shares.first[best.terms[t].front().first] += part;
   }

@@ -158,7 +158,8 @@ def T01i():
 def establishment(name, probe):
     ref = reference(name)
     i, e = ref["inputs"], ref["expected"]["scalars"]
-    r = run(name)
+    stated = i["a_m_s (for an elastic model)"]
+    r = run(name, speed=repr(stated))
     area = math.pi * i["D_m"] ** 2 / 4
     t = table(f"{name}_series.csv")
     velocity = r.flow[probe] / area
@@ -167,13 +168,11 @@ def establishment(name, probe):
     mine = np.interp(t["t_s"][inside], r.time, velocity)
     check(f"{name} outlet velocity", np.max(np.abs(mine - t["V_m_s"][inside])), ref["tolerance"]["tol"] * final)
     check(f"{name} final velocity", velocity[-1] - final, e["V_final"]["tol_rel"] * final)
-    # the times are those of a rigid column: five times the wave speed, and the mean over each tread (2L/a) of the
-    # elastic staircase, which runs ahead of its own mean by half a tread
-    stiff = run(f"{name}-stiff")
-    tread = round(2 * i["L_m"] / (5 * i["a_m_s (for an elastic model)"]) / stiff.step)
-    velocity = np.convolve(stiff.flow[probe] / area, np.ones(tread) / tread, mode="same")
+    # The times are those of a rigid column. At the stated wave speed one tread of the elastic staircase (2L/a) is longer
+    # than their tolerance, so they are met on the way to it: at twenty times that wave speed.
+    stiff = run(name, speed=repr(20 * stated))
     for share in (50, 90, 99):
-        reached = stiff.time[np.argmax(velocity >= share / 100 * final)]
+        reached = stiff.time[np.argmax(stiff.flow[probe] / area >= share / 100 * final)]
         key = e[f"t_{share}%"]
         check(f"{name} time of {share} %", reached - key["value"], key["tol_rel"] * key["value"])
 
@@ -197,19 +196,26 @@ def T09f():
     ref = reference("T09f")
     t = table("T09f_series.csv")
     area = math.pi * ref["inputs"]["D_m"] ** 2 / 4
-    for case, key in (("T09f", "a"), ("T09f-stiff", "5a")):
-        r = run(case)
+    stated = ref["inputs"]["a_m_s (for an elastic model)"]
+    e = ref["expected"]["scalars"]
+    for times, key in ((1, "a"), (5, "5a")):
+        r = run("T09f", speed=repr(times * stated))
         bound = ref["tolerance"][key]
         inside = t["t_s"] <= r.time[-1]
         velocity = np.interp(t["t_s"][inside], r.time, r.flow["outlet"] / area)
         head = np.interp(t["t_s"][inside], r.time, r.head["outlet"])
-        check(f"{case} velocity", np.max(np.abs(velocity - t["V_m_s"][inside])), bound["max_dV_over_V0"] * ref["inputs"]["V_final_m_s"])
+        final = ref["inputs"]["V_final_m_s"]
+        check(f"T09f {key} velocity", np.max(np.abs(velocity - t["V_m_s"][inside])), bound["max_dV_over_V0"] * final)
         later = t["t_s"][inside] > 0.1 * ref["inputs"]["tc_s"]
-        check(f"{case} head", np.max(np.abs(head - t["H_valve_m"][inside])[later]),
+        check(f"T09f {key} head", np.max(np.abs(head - t["H_valve_m"][inside])[later]),
               bound["max_dH_over_H0 (t>0.1tc)"] * ref["inputs"]["H_reservoir_m"])
-    e = ref["expected"]["scalars"]
-    # after the elastic swing of the first moments, which a rigid column does not have (the series' own exception)
-    check("T09f lowest head, stiff pipe", np.min(head[later]) - e["H_valve_min"]["value"], e["H_valve_min"]["tol_abs"])
+        opened = np.interp(ref["inputs"]["tc_s"], r.time, r.flow["outlet"] / area)
+        check(f"T09f {key} velocity at the end of the stroke", opened - e["V_at_tc"]["value"],
+              e["V_at_tc"]["tol_rel"] * e["V_at_tc"]["value"])
+    # Of the run at five times the wave speed, after the first tenth of the stroke: before it the elastic column swings
+    # below the rigid minimum at any wave speed, which the source's own series leaves out.
+    check("T09f lowest head", np.min(r.head["outlet"][r.time > 0.1 * ref["inputs"]["tc_s"]]) - e["H_valve_min"]["value"],
+          e["H_valve_min"]["tol_abs"])
 
 
 def splitting(name, probes):
@@ -386,8 +392,6 @@ def montecarlo():
             bound = 4 * float(ref[statistic]["standard_error_times_sqrt_n"]) / math.sqrt(draws)
             mine = answer["quantiles"][statistic[9:]][0] if statistic.startswith("quantile") else answer[statistic]
             check(f"{design} {statistic}", mine - expected, bound)
-        if design == "plain":
-            continue  # variance shares of 4 096 plain draws carry about 0.02 of noise: held to 0.01 on the structured designs
         for name, key in (("line roughness", "roughness"), ("liquid viscosity", "viscosity"), ("friction scatter", "correlation")):
             check(f"{design} first order {name}", answer["sensitivity"][name]["first"] - float(ref[f"S_{key}"]["value"]), 0.01)
             check(f"{design} total {name}", answer["sensitivity"][name]["total"] - float(ref[f"ST_{key}"]["value"]), 0.01)

@@ -37,5 +37,18 @@ TEST(Reported, ACavityOfUnknownReachIsTold) {
   EXPECT_TRUE(reported_cavities(study).empty());
 }
 
+TEST(Reported, UnknownsThatMoveMostComeFirst) {
+  answers::BandAnswer answer;
+  answer.sensitivity = {{"main wall", 0.1, 0.1},
+                        {"end valve over", 0.5, 0.6},
+                        {"b", answers::missing, answers::missing},
+                        {"a", answers::missing, answers::missing},
+                        {"friction scatter", 0.1, 0.1}};
+  const auto ranked = ranked_unknowns(answer);
+  ASSERT_EQ(ranked.size(), 5U);
+  const char* order[] = {"end valve over", "friction scatter", "main wall", "a", "b"};
+  for (std::size_t i = 0; i < 5; ++i) EXPECT_EQ(ranked[i].input, order[i]);
+}
+
 }  // namespace
 }  // namespace headband::show

@@ -6,6 +6,7 @@
 #include <gtest/gtest.h>
 
 #include <algorithm>
+#include <cmath>
 
 namespace headband::show {
 namespace {
@@ -19,6 +20,16 @@ TEST(Words, TheWorstLimitDecides) {
   EXPECT_EQ(deciding_limit(study)->name, "no vacuum");  // CANNOT TELL is worse than OK
   study.limits[1].verdict = answers::Verdict::ok;
   EXPECT_EQ(deciding_limit(study)->name, "surge rating");  // the likeliest of those that are OK
+  for (auto& limit : study.limits) {                       // a tie: the closest in the single run
+    limit.probability_upper = 0.0;
+    limit.probability_upper_range.reset();
+    limit.verdict = answers::Verdict::ok;
+  }
+  study.limits[0].margin = 0.5 * study.limits[0].limit;
+  study.limits[1].margin = 0.08 * std::abs(study.limits[1].value);
+  EXPECT_EQ(deciding_limit(study)->name, "no vacuum");
+  study.limits[0].margin = 0.05 * study.limits[0].limit;
+  EXPECT_EQ(deciding_limit(study)->name, "surge rating");
   study.limits.clear();
   EXPECT_EQ(deciding_limit(study), nullptr);
 }

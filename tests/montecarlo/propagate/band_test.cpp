@@ -137,7 +137,7 @@ TEST(Band, BudgetAndSharesAddUp) {
   EXPECT_NEAR(std::hypot(a.budget_inputs, a.budget_friction_law) / a.standard_deviation, 1.0, 0.02);
   double first = 0.0;
   for (const auto& s : a.sensitivity) first += s.first;
-  EXPECT_NEAR(first, 1.0, 0.03);
+  EXPECT_NEAR(first, 1.0, 0.003);
   EXPECT_EQ(a.budget_draws, 4096);
   EXPECT_EQ(a.budget_grid, 0.0);
   EXPECT_GT(a.budget_sampling, 0.0);
