@@ -11,6 +11,7 @@
 #include "montecarlo/program/output.hpp"
 #include "montecarlo/program/verbs.hpp"
 #include "montecarlo/propagate/band.hpp"
+#include "montecarlo/propagate/draw_step.hpp"
 
 #include <fmt/format.h>
 
@@ -115,10 +116,16 @@ ExitCode replay(const Options& options) {
   if (!study.bands) throw UsageError(fmt::format("{} holds no draws: it is a result of {}", result, study.verb));
   const long long draw = draw_meant(options, study);
   const SideFiles side(study.provenance);
-  const auto reading = casefile::read_text(study.provenance.case_file, study.provenance.case_text, side.folder());
+  auto reading = casefile::read_text(study.provenance.case_file, study.provenance.case_text, side.folder());
   if (!reading.problems.empty())
     throw base::IoError(base::IoFailure::damaged, fmt::format("{}: the case it holds cannot be read", result));
   const auto scores = montecarlo::scores_of_draw(reading.value, study.bands->seed, study.bands->draws, draw);
+  if (study.bands->surged)
+    if (const auto step = montecarlo::step_of_its_own(reading.value, scores)) {
+      reading.value.surge.time_step = {};
+      reading.value.surge.time_step.value = *step;
+      reading.value.surge.time_step.dimension = base::Dimension::time;
+    }
   const std::string note = fmt::format("draw {} of {} ({}, seed {}) of {}",
                                        draw,
                                        study.bands->draws,

@@ -12,6 +12,7 @@
 #include "montecarlo/propagate/model.hpp"
 #include "montecarlo/propagate/stored_runs.hpp"
 #include "montecarlo/sampling/sampler.hpp"
+#include "transient/march/grid_request.hpp"
 
 #include <fmt/format.h>
 #include <algorithm>
@@ -133,7 +134,7 @@ class BandRun {
     name_runs(bands, inputs_, plan_, computed_);
     if (options_.surge && case_.surge.time_step.given()) {
       for (const auto& pipe : case_.pipes) {
-        if (!transient::wave_speed_is_uncertain(case_, pipe)) continue;
+        if (!transient::travel_time_is_uncertain(case_, pipe)) continue;
         warn(fmt::format(
             "time_step is given: the wave speed of {} is rounded to that grid in every draw (by 1 % at most, "
             "unless wave_speed_change allows more), and a spread smaller than that may not show; reaches in "

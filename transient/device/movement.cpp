@@ -15,14 +15,15 @@ double position_of(const Segment& s, double time) {
 
 }  // namespace
 
-double position_at(const std::vector<Segment>& chain, double time) {
+double position_at(const std::vector<Segment>& chain, double time, double low, double high) {
   std::size_t i = 0;
   while (i + 1 < chain.size() && chain[i + 1].start <= time) ++i;
-  return position_of(chain[i], time);
+  const double position = position_of(chain[i], time);
+  return chain[i].swing == 0.0 ? position : std::clamp(position, low, high);
 }
 
-void add_stroke(std::vector<Segment>& chain, const Stroke& stroke, double grid_step) {
-  const double held = position_at(chain, stroke.at);
+void add_stroke(std::vector<Segment>& chain, const Stroke& stroke, double grid_step, double low, double high) {
+  const double held = position_at(chain, stroke.at, low, high);
   const double begin =
       stroke.over > 0.0 || !stroke.travel_time.empty() || stroke.swing != 0.0 ? stroke.at : stroke.at + 0.5 * grid_step;
   while (chain.size() > 1 && chain.back().start >= begin) chain.pop_back();

@@ -30,13 +30,23 @@ struct Stroke {
   std::vector<double> travel_time, travel_position;  ///< seconds after `at`; empty = straight stroke
 };
 
-/// Position of the chain at `time`: that of the last segment begun.
-[[nodiscard]] double position_at(const std::vector<Segment>& chain, double time);
+inline constexpr double unbounded = std::numeric_limits<double>::infinity();
+
+/// Position of the chain at `time`: that of the last segment begun; a swing is cut at `low` and `high`.
+[[nodiscard]] double position_at(const std::vector<Segment>& chain,
+                                 double time,
+                                 double low = -unbounded,
+                                 double high = unbounded);
 
 /// Adds a stroke that takes over from the position held at its time. `chain` holds at least one segment.
 /// @param grid_step an instant stroke acts for t > at, so that the row stored at `at` is the state before: its segment
 ///        begins half a step later and position_at(at + step/2) is the state after
-void add_stroke(std::vector<Segment>& chain, const Stroke& stroke, double grid_step);
+/// @param low, high where a swing taken over is cut (shares: 0 and 1)
+void add_stroke(std::vector<Segment>& chain,
+                const Stroke& stroke,
+                double grid_step,
+                double low = -unbounded,
+                double high = unbounded);
 
 /// Position of W draws over time; times only grow.
 template <int W>
@@ -49,6 +59,11 @@ class Movement {
   /// The chain of a lane; fill before `rewind`.
   [[nodiscard]] std::vector<Segment>& chain(int lane) { return chains_[static_cast<std::size_t>(lane)]; }
   [[nodiscard]] const std::vector<Segment>& chain(int lane) const { return chains_[static_cast<std::size_t>(lane)]; }
+
+  /// Adds a stroke to the chain of a lane.
+  void add(int lane, const Stroke& stroke, double grid_step) {
+    add_stroke(chain(lane), stroke, grid_step, low_, high_);
+  }
 
   void rewind();
 
@@ -71,7 +86,7 @@ class Movement {
   base::PerLane<std::vector<Segment>, W> chains_;
   base::PerLane<std::size_t, W> at_{};
   Lanes<W> start_, from_, slope_, next_, position_;
-  double low_ = -std::numeric_limits<double>::infinity(), high_ = std::numeric_limits<double>::infinity();
+  double low_ = -unbounded, high_ = unbounded;
   bool still_ = true;  ///< no lane will move any more
   bool swings_ = false;
 };

@@ -15,7 +15,7 @@ struct GridPipe {
   double wave_speed = 0.0;  ///< [m/s], > 0
   double allowed_change =
       std::numeric_limits<double>::quiet_NaN();  ///< the user's `wave_speed_change` [-]; NaN = default
-  bool uncertain = false;                        ///< something that feeds the wave speed is sampled
+  bool uncertain = false;                        ///< something that feeds length or wave speed is sampled
   /// Shortest movement of anything at the pipe's ends [s]; 0 = instant, infinity = nothing moves there.
   double fastest_movement = std::numeric_limits<double>::infinity();
 };
@@ -52,7 +52,10 @@ struct Grid {
 /// Travel times T = length / wave speed; long: T >= T_max / 50. The step divides the shortest long pipe by
 /// n = reaches … 1.25 reaches, the others get max(1, round(T / dt)); kept is the smallest worst change of a wave speed
 /// over the long pipes, the larger step on a tie (1e-12). A pipe shorter than half a step, or a short one still changed
-/// by more than 5 %, marches as a rigid column.
+/// by more than 5 %, marches as a rigid column. Where something at such a pipe's end moves in under two steps, the pipe
+/// has to carry waves: the search keeps to steps at which it does, with up to 8 times the reaches, else the grid is
+/// refused. Where a long pipe's travel time is uncertain its wave speed is changed by 1 % at most (or what its user
+/// allows), the reaches doubled up to 8 times the asked ones, else refused with the pipe named.
 void choose_grid(const GridRequest& request, Grid& grid);
 
 /// The same grid with every count multiplied (a grid pair doubles the very same counts).

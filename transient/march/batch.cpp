@@ -3,6 +3,7 @@
 // Many draws, of which only the asked extremes are kept.
 #include "core/pipe/profile.hpp"
 #include "core/steady/evaluate.hpp"
+#include "transient/march/grid_request.hpp"
 #include "transient/march/spots.hpp"
 #include "transient/march/surge.hpp"
 

@@ -275,7 +275,7 @@ void add_events(const network::Case& c,
         const double start = values.draw_offs[static_cast<std::size_t>(d.index)].flow[lane];
         if (c.draw_offs[static_cast<std::size_t>(d.index)].pressure_dependent) s.to = start > 0.0 ? s.to / start : 0.0;
       }
-      for (Movement<W>* m : mover.of(event)) add_stroke(m->chain(lane), s, dt);
+      for (Movement<W>* m : mover.of(event)) m->add(lane, s, dt);
     }
   }
   std::sort(jumps.begin(), jumps.end(), [](const Jump& a, const Jump& b) {
@@ -488,78 +488,6 @@ void fill_numbers(const network::Case& c,
   add_events(c, plan, layout, values, n, jumps);
 }
 
-bool wave_speed_is_uncertain(const network::Case& c, const network::Pipe& p) {
-  const auto sampled = [](const base::Quantity& q) { return q.given() && !q.exact(); };
-  if (sampled(p.wave_speed_scatter)) return true;
-  if (p.wave_speed.given()) return sampled(p.wave_speed);
-  const auto& l = c.liquid;
-  for (const base::Quantity* q : {&l.temperature,
-                                  &l.density,
-                                  &l.bulk_modulus,
-                                  &l.free_gas,
-                                  &p.outside,
-                                  &p.wall,
-                                  &p.bore,
-                                  &p.lining_thickness,
-                                  &p.lining_modulus,
-                                  &p.modulus,
-                                  &p.poisson,
-                                  &p.restraint_factor})
-    if (sampled(*q)) return true;
-  return false;
-}
-
-namespace {
-
-// Shortest movement of an event on something at `place` [s].
-template <int W>
-double fastest_at(
-    const network::Case& c, const network::Plan& plan, const network::Values<W>& values, int place, int lane) {
-  double fastest = never;
-  for (const auto& event : plan.events) {
-    const network::Event& e = c.events[static_cast<std::size_t>(event.index)];
-    const auto& v = values.events[static_cast<std::size_t>(event.index)];
-    bool here = false;
-    if (event.device >= 0) {
-      const auto& d = plan.devices[static_cast<std::size_t>(event.device)];
-      here = d.from.index == place || d.to.index == place;
-    } else if (event.basin >= 0) {
-      here = plan.places[static_cast<std::size_t>(place)].basin == event.basin;
-    }
-    if (!here || event.kind == network::EventKind::trip_pump) continue;
-    double over = e.instant ? 0.0 : v.over[lane];
-    if (event.kind == network::EventKind::swing_valve) over = 0.25 * v.period[lane];
-    if (!v.travel_time.empty()) over = v.travel_time.back()[lane] - v.travel_time.front()[lane];
-    if (over < fastest) fastest = over;
-  }
-  return fastest;
-}
-
-}  // namespace
-
-template <int W>
-GridRequest grid_request(const network::Case& c,
-                         const network::Plan& plan,
-                         const network::Values<W>& values,
-                         const steady::SteadyState<W>& steady,
-                         int lane) {
-  GridRequest r;
-  r.reaches = c.surge.reaches;
-  if (c.surge.time_step.given()) r.time_step = c.surge.time_step.value;
-  r.pipes.resize(plan.pipes.size());
-  for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
-    GridPipe& p = r.pipes[i];
-    p.length = values.pipes[i].length[lane];
-    p.wave_speed = steady.wave_speed[i][lane];
-    const auto& allowed = c.pipes[i].wave_speed_change;
-    if (allowed.given()) p.allowed_change = allowed.value;
-    p.uncertain = wave_speed_is_uncertain(c, c.pipes[i]);
-    p.fastest_movement = std::min(fastest_at(c, plan, values, plan.pipes[i].from.index, lane),
-                                  fastest_at(c, plan, values, plan.pipes[i].to.index, lane));
-  }
-  return r;
-}
-
 #define HEADBAND_NUMBERS(W)                                           \
   template void fill_numbers<W>(const network::Case&,                 \
                                 const network::Plan&,                 \
@@ -568,9 +496,7 @@ GridRequest grid_request(const network::Case& c,
                                 const steady::SteadyState<W>&,        \
                                 const base::PerLane<const Grid*, W>&, \
                                 Numbers<W>&,                          \
-                                std::vector<Jump>&);                  \
-  template GridRequest grid_request<W>(                               \
-      const network::Case&, const network::Plan&, const network::Values<W>&, const steady::SteadyState<W>&, int);
+                                std::vector<Jump>&);
 HEADBAND_NUMBERS(1)
 HEADBAND_NUMBERS(8)
 #undef HEADBAND_NUMBERS

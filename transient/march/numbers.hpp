@@ -86,12 +86,4 @@ void fill_numbers(const network::Case& c,
                   Numbers<W>& numbers,
                   std::vector<Jump>& jumps);
 
-/// What the grid needs of one lane of values.
-template <int W>
-[[nodiscard]] GridRequest grid_request(const network::Case& c,
-                                       const network::Plan& plan,
-                                       const network::Values<W>& values,
-                                       const steady::SteadyState<W>& steady,
-                                       int lane);
-
 }  // namespace headband::transient

@@ -4,6 +4,7 @@
 #include "core/base/error.hpp"
 #include "core/steady/evaluate.hpp"
 #include "transient/march/grid_bound.hpp"
+#include "transient/march/grid_request.hpp"
 #include "transient/march/record.hpp"
 
 #include <algorithm>
@@ -59,7 +60,7 @@ struct GridRun {
   throw base::InputError({p});
 }
 
-void tell_grid(const network::Plan& plan, const Grid& grid, SurgeRun& run) {
+void tell_grid(const network::Plan& plan, const steady::SteadyState<1>& steady, const Grid& grid, SurgeRun& run) {
   answers::GridAnswer& a = run.grid;
   a.time_step = grid.time_step;
   a.worst_wave_speed_change = grid.worst_change;
@@ -68,16 +69,23 @@ void tell_grid(const network::Plan& plan, const Grid& grid, SurgeRun& run) {
   a.marched_wave_speed = grid.marched_speed;
   for (std::size_t i = 0; i < plan.pipes.size(); ++i)
     if (grid.reaches[i] == 0) a.rigid_pipes.push_back(plan.pipes[i].name);
-  char text[300];
   constexpr double told_change = 0.02;
-  if (grid.worst_change > told_change) {
-    std::snprintf(text,
-                  sizeof text,
-                  "grid: the wave speed of pipe '%s' is changed by %.1f %%",
-                  a.worst_pipe.c_str(),
-                  100.0 * grid.worst_change);
+  const auto tell = [&](const std::string& pipe, double change) {
+    char text[300];
+    std::snprintf(
+        text, sizeof text, "grid: the wave speed of pipe '%s' is changed by %.1f %%", pipe.c_str(), 100.0 * change);
     run.warnings.emplace_back(text);
+  };
+  if (grid.worst_change > told_change) tell(a.worst_pipe, grid.worst_change);
+  double worst = told_change;
+  int pipe = -1;
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
+    const double change = std::fabs(grid.marched_speed[i] / steady.wave_speed[i].number - 1.0);
+    if (grid.reaches[i] == 0 || grid.long_pipe[i] || !(change > worst)) continue;
+    worst = change;
+    pipe = static_cast<int>(i);
   }
+  if (pipe >= 0) tell(plan.pipes[at(pipe)].name, worst);
 }
 
 void tell_rigid(const network::Plan& plan, const network::Values<1>& values, const Grid& grid, SurgeRun& run) {
@@ -287,7 +295,7 @@ SurgeRun run_surge(const network::Case& c,
   Grid grid;
   choose_grid(grid_request(c, plan, values, steady, 0), grid);
   if (grid.status != GridStatus::good) refuse(c, plan, grid);
-  tell_grid(plan, grid, run);
+  tell_grid(plan, steady, grid, run);
   tell_rigid(plan, values, grid, run);
   std::vector<bool> rigid(plan.pipes.size());
   for (std::size_t i = 0; i < rigid.size(); ++i) rigid[i] = grid.reaches[i] == 0;

@@ -41,9 +41,6 @@ struct SurgeRun {
                                  const network::Values<1>& values,
                                  const steady::SteadyState<1>& steady);
 
-/// True where something that feeds the wave speed of the pipe is sampled.
-[[nodiscard]] bool wave_speed_is_uncertain(const network::Case& c, const network::Pipe& pipe);
-
 /// Answers of W marched draws.
 template <int W>
 struct DrawAnswers {

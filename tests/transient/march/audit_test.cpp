@@ -2,6 +2,7 @@
 #include "transient/march/audit.hpp"
 
 #include "tests/transient/march/run_case.hpp"
+#include "transient/march/grid_request.hpp"
 
 #include <gtest/gtest.h>
 

@@ -163,48 +163,6 @@ TEST(Pump, TripThroughReverseFlowToRunaway) {  // T07c
   }
 }
 
-TEST(Pump, FourQuadrantTableGivesItsKnots) {
-  const auto& table = transient::quadrants_ns25();
-  const auto rows = reference_rows("transient/T07c_suter_Ns25.csv");
-  ASSERT_EQ(rows.size(), table.angle.size());
-  for (std::size_t k = 0; k < rows.size(); ++k) {
-    EXPECT_NEAR(table.angle[k], std::stod(rows[k][1]), 1e-11);
-    EXPECT_EQ(table.head[k], std::stod(rows[k][2]));
-    EXPECT_EQ(table.torque[k], std::stod(rows[k][3]));
-    if (k == 0 || k + 1 == rows.size()) continue;
-    const double v = -std::sin(table.angle[k]), alpha = -std::cos(table.angle[k]);  // atan2(v, alpha) = x - pi
-    EXPECT_NEAR(transient::read_quadrants(table, table.head, v, alpha).value, table.head[k], 1e-12);
-  }
-}
-
-TEST(Pump, SlopesAreThoseOfTheValues) {
-  CaseBuilder b = tripping_plant(1000.0, 1.0);
-  const network::Case c = b.finish();
-  transient::PumpModel pump;
-  pump.curve.fit({0.0, 0.2, 0.36}, {57.0, 45.0, 30.0});
-  pump.shut_off_torque = 0.45;
-  pump.rated_flow = 0.28;
-  pump.rated_head = 40.0;
-  pump.quadrants = &transient::quadrants_ns25();
-  for (const auto& [q, a] : {std::pair{0.2, 0.8}, {-0.05, 0.7}, {-0.2, 0.1}, {0.1, -0.03}, {0.1, -0.4}, {-0.2, -0.6}}) {
-    const double dq = 1e-7, da = 1e-7;
-    const auto p = pump.at(q, a);
-    EXPECT_NEAR(p.head_by_flow, (pump.at(q + dq, a).head - pump.at(q - dq, a).head) / (2 * dq), 1e-3) << q << " " << a;
-    EXPECT_NEAR(p.head_by_speed, (pump.at(q, a + da).head - pump.at(q, a - da).head) / (2 * da), 1e-3) << q << " " << a;
-    EXPECT_NEAR(p.torque_by_flow, (pump.at(q + dq, a).torque - pump.at(q - dq, a).torque) / (2 * dq), 1e-4);
-    EXPECT_NEAR(p.torque_by_speed, (pump.at(q, a + da).torque - pump.at(q, a - da).torque) / (2 * da), 1e-4);
-  }
-  // joined without a jump where flow and speed turn
-  for (const double a : {0.2, 0.6, 1.0}) {
-    EXPECT_NEAR(pump.at(1e-12, a).head, pump.at(-1e-12, a).head, 1e-8);
-    EXPECT_NEAR(pump.at(1e-12, a).torque, pump.at(-1e-12, a).torque, 1e-8);
-  }
-  for (const double q : {0.05, 0.2}) {
-    EXPECT_NEAR(pump.at(q, 1e-12).head, pump.at(q, -1e-12).head, 1e-8);
-    EXPECT_NEAR(pump.at(q, 1e-12).torque, pump.at(q, -1e-12).torque, 1e-8);
-  }
-}
-
 TEST(Pump, OneOfTwoTripsBehindItsCheckValve) {
   CaseBuilder b(998.0);
   b.basin("sump", 0.0);
