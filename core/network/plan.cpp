@@ -228,11 +228,19 @@ class PlanMaker {
       entry.at_most = limit.at_most;
       entry.confidence = limit.confidence;
       plan_.limits.push_back(std::move(entry));
+      if (case_.band.answers.empty()) add_answer_once(answer(limit.subject));  // nothing asked: what is judged
     }
     for (std::size_t i = 0; i < case_.pipes.size(); ++i)
       if (case_.pipes[i].rating.given()) plan_.limits.push_back(rating_limit(i));
+    if (case_.band.answers.empty() && case_.limits.empty())
+      for (const auto& limit : plan_.limits) add_answer_once(limit.subject);
     number_repeated_names(plan_.answers);
     number_repeated_names(plan_.limits);
+  }
+
+  void add_answer_once(AnswerPlan entry) {
+    const auto same = [&](const AnswerPlan& a) { return a.name == entry.name; };
+    if (std::ranges::none_of(plan_.answers, same)) plan_.answers.push_back(std::move(entry));
   }
 
   [[nodiscard]] LimitPlan rating_limit(std::size_t pipe) const {

@@ -24,7 +24,10 @@ std::string list_of(const std::vector<std::string>& items) {
 
 std::string events(const Study& study) {
   Table table{"What happened, in order", {{"time", true}, {"what"}, {"event"}, {"in words"}}, {}};
-  for (const auto& event : study.events) {
+  const auto told = show::told_events(study);
+  if (told.size() < study.events.size())
+    table.caption += "; of the cavities of a pipe the first that opens and the last that closes";
+  for (const auto& event : told) {
     std::string kind = event.kind;
     std::replace(kind.begin(), kind.end(), '_', ' ');
     table.rows.push_back({both(event.time, Shown::time), escaped(event.subject), escaped(kind), escaped(event.what)});

@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstddef>
+#include <map>
 #include <numbers>
 #include <numeric>
 
@@ -64,6 +65,24 @@ std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study
   largest.reserve(order.size());
   for (const std::size_t i : order) largest.push_back(told[i]);
   return largest;
+}
+
+std::vector<answers::EventAnswer> told_events(const answers::Study& study) {
+  const auto pipe_of = [](const answers::EventAnswer& e) { return e.subject.substr(0, e.subject.rfind(" @ ")); };
+  std::map<std::string, std::size_t> first_open, last_close;
+  for (std::size_t i = 0; i < study.events.size(); ++i) {
+    const auto& event = study.events[i];
+    if (event.kind == "cavity_opens") first_open.try_emplace(pipe_of(event), i);
+    if (event.kind == "cavity_closes") last_close[pipe_of(event)] = i;
+  }
+  std::vector<answers::EventAnswer> told;
+  for (std::size_t i = 0; i < study.events.size(); ++i) {
+    const auto& event = study.events[i];
+    const bool hidden = (event.kind == "cavity_opens" && first_open.at(pipe_of(event)) != i) ||
+                        (event.kind == "cavity_closes" && last_close.at(pipe_of(event)) != i);
+    if (!hidden) told.push_back(event);
+  }
+  return told;
 }
 
 std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer) {

@@ -24,6 +24,10 @@ inline constexpr std::size_t reported_cavities_at_most = 200;
 /// Where the section's volume is not known the cavity is told.
 [[nodiscard]] std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study);
 
+/// What people are told of the events, in time order: of a pipe's cavities only the first that opens and the last that
+/// closes. JSON and result file hold them all.
+[[nodiscard]] std::vector<answers::EventAnswer> told_events(const answers::Study& study);
+
 /// Shares of an answer's variance, those that move it most first (with others, then by name); without a number last.
 [[nodiscard]] std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer);
 

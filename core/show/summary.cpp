@@ -286,9 +286,10 @@ void extremes(Frame& f) {
 }
 
 void cavities(Frame& f) {
-  const auto all = reported_cavities(f.study);
+  auto all = reported_cavities(f.study);
   if (all.empty()) return;
-  f.heading("Vapour cavities");
+  std::ranges::stable_sort(all, std::ranges::greater{}, &answers::CavityAnswer::max_volume);
+  f.heading("Vapour cavities, the largest first");
   TextTable table = f.table({"pipe", "chainage", "opens", "closes", "largest"});
   for (std::size_t i = 0; i < std::min(most_rows, all.size()); ++i) {
     const auto& c = all[i];
@@ -303,7 +304,7 @@ void cavities(Frame& f) {
 }
 
 void events(Frame& f) {
-  const auto& all = f.study.events;
+  const auto all = told_events(f.study);
   if (all.empty()) return;
   f.heading("Events");
   TextTable table = f.table({"time", "", "what"});
@@ -314,6 +315,9 @@ void events(Frame& f) {
   }
   f.out += table.text(2);
   f.more(all.size());
+  if (all.size() < f.study.events.size()) {
+    f.line("Of the cavities of a pipe the first that opens and the last that closes; all of them in the result file.");
+  }
 }
 
 /// Chance of not keeping a limit, with its bounds.

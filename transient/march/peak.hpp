@@ -14,10 +14,11 @@ struct Peak {
   long long step = 0;   ///< row; an instant's state counts to its own row
   double beside = 0.0;  ///< largest change between the row of the extreme and the rows beside it
   double before_last = none, before = none, after = none, after_next = none;  ///< the two rows on either side
+  double timed = 0.0;                                                         ///< the value that `time` belongs to
 
   void begin(double first) {
     *this = Peak{};
-    value = first;
+    value = timed = first;
   }
 
   /// The next row. @param sign +1 for the largest, -1 for the smallest
@@ -29,11 +30,11 @@ struct Peak {
     } else if (row == step + 2) {
       after_next = now;
     }
-    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, std::fabs(now - last), earlier, last, none, none};
+    if (higher(sign, now)) *this = Peak{now, at, row, std::fabs(now - last), earlier, last, none, none, now};
   }
   /// The state at 0+ of an instant at a row: its own jump is no change between rows.
   void take_instant(double sign, double now, double at, long long row) {
-    if (sign * (now - value) > 0.0) *this = Peak{now, at, row, 0.0, none, none, none, none};
+    if (higher(sign, now)) *this = Peak{now, at, row, 0.0, none, none, none, none, now};
   }
 
   /// How much higher (lower) the history may have stood between the rows, where it bends there: the straight lines
@@ -50,6 +51,14 @@ struct Peak {
   }
 
  private:
+  /// Whether `now` passes the extreme by more than rounding. What passes it by less is its value too, at its time: a
+  /// line that stands still has its extremes at the start, not where the last bit falls.
+  [[nodiscard]] bool higher(double sign, double now) {
+    if (!(sign * (now - value) > 0.0)) return false;
+    if (std::fabs(now - timed) > 1e-9 * (1.0 + std::fabs(timed))) return true;
+    value = now;
+    return false;
+  }
   [[nodiscard]] static bool alike(double change, double beside_it) {
     return change * beside_it > 0.0 && std::fabs(beside_it) >= 0.5 * std::fabs(change);
   }

@@ -37,6 +37,21 @@ TEST(Reported, ACavityOfUnknownReachIsTold) {
   EXPECT_TRUE(reported_cavities(study).empty());
 }
 
+TEST(Reported, OfAPipesCavitiesTheFirstAndTheLastEventAreTold) {
+  answers::Study study;
+  study.events = {{0.0, "closing", "starts", "begins to move"},
+                  {1.0, "main @ 40 m", "cavity_opens", "the liquid boils"},
+                  {1.1, "main @ 80 m", "cavity_opens", "the liquid boils"},
+                  {1.2, "spur @ 5 m", "cavity_opens", "the liquid boils"},
+                  {2.0, "main @ 80 m", "cavity_closes", "largest volume 0.1 m3"},
+                  {2.1, "pump", "check_shut", "check valve shuts"},
+                  {3.0, "main @ 40 m", "cavity_closes", "largest volume 0.2 m3"}};
+  const auto told = told_events(study);
+  ASSERT_EQ(told.size(), 5U);
+  const double times[] = {0.0, 1.0, 1.2, 2.1, 3.0};
+  for (std::size_t i = 0; i < 5; ++i) EXPECT_EQ(told[i].time, times[i]);
+}
+
 TEST(Reported, UnknownsThatMoveMostComeFirst) {
   answers::BandAnswer answer;
   answer.sensitivity = {{"main wall", 0.1, 0.1},

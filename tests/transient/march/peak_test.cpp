@@ -48,5 +48,14 @@ TEST(Peak, times_and_changes_beside_the_extreme_are_kept) {
   EXPECT_EQ(e.low.value, 0.0);
 }
 
+TEST(Peak, rounding_moves_the_value_but_not_its_time) {
+  const Extremes e = sampled([](double t) { return 80.0 + 1e-12 * t; });
+  EXPECT_EQ(e.high.value, 80.0 + 1e-12 * 20.0);  // a draw marched in the batch, which keeps no times, has the same
+  EXPECT_EQ(e.high.time, 0.0);
+  EXPECT_EQ(e.low.time, 0.0);
+  const Extremes creeping = sampled([](double t) { return 80.0 + 3e-8 * t; });  // slow, but no rounding
+  EXPECT_GE(creeping.high.time, 17.0);
+}
+
 }  // namespace
 }  // namespace headband::transient
