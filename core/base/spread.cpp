@@ -4,10 +4,12 @@
 #include "core/base/elementary.hpp"
 
 #include <algorithm>
+#include <array>
 #include <boost/math/quadrature/gauss_kronrod.hpp>
 #include <cmath>
+#include <cstdint>
+#include <cstring>
 #include <numbers>
-#include <tuple>
 #include <utility>
 
 namespace headband::base {
@@ -76,27 +78,44 @@ constexpr std::array<double, 8> far_under{1.0,
                                           1.42151175831644588870e-7,
                                           2.04426310338993978564e-15};
 
-/// Normal quantile from both tails at once: `below` + `above` = 1, each exact in its own tail.
+constexpr double central_half_width = 0.425;
+
+/// Quotient of the middle part: over / under.
 template <int W>
-HEADBAND_INLINE Lanes<W> quantile_of_tails(const Lanes<W>& below, const Lanes<W>& above, const Lanes<W>& middle) {
+HEADBAND_INLINE Lanes<W> central_quantile(const Lanes<W>& middle) {
   const Lanes<W> r = 0.180625 - middle * middle;
-  const Mask<W> central = abs(middle) <= 0.425;
-  Lanes<W> over = middle * polynomial(central_over, r), under = polynomial(central_under, r);
-  if (!all(central)) {
-    const Lanes<W> tail = min(below, above);
-    const Lanes<W> root = sqrt(-log(tail));
-    const Lanes<W> t = root - 1.6;
-    Lanes<W> size_over = polynomial(tail_over, t), size_under = polynomial(tail_under, t);
-    const Mask<W> far = root > 5.0;
-    if (any(far)) {
-      const Lanes<W> u = root - 5.0;
-      size_over = select(far, polynomial(far_over, u), size_over);
-      size_under = select(far, polynomial(far_under, u), size_under);
-    }
-    over = select(central, over, select(middle < Lanes<W>(0.0), -size_over, size_over));
-    under = select(central, under, size_under);
+  return (middle * polynomial(central_over, r)) / polynomial(central_under, r);
+}
+
+/// Size of the quantile at a tail's probability, at most 0.075.
+template <int W>
+HEADBAND_INLINE Lanes<W> tail_quantile(const Lanes<W>& tail) {
+  const Lanes<W> root = sqrt(-log(tail));
+  const Lanes<W> t = root - 1.6;
+  Lanes<W> over = polynomial(tail_over, t), under = polynomial(tail_under, t);
+  const Mask<W> far = root > 5.0;
+  if (any(far)) {
+    const Lanes<W> u = root - 5.0;
+    over = select(far, polynomial(far_over, u), over);
+    under = select(far, polynomial(far_under, u), under);
   }
   return over / under;
+}
+
+/// A score inside a cut, told by both tails at once: `below` + `above` = 1, each exact in its own tail.
+template <int W>
+struct Tails {
+  Lanes<W> below, above, middle;
+};
+
+/// Normal quantile from both tails.
+template <int W>
+HEADBAND_INLINE Lanes<W> quantile_of_tails(const Tails<W>& t) {
+  const Mask<W> central = abs(t.middle) <= central_half_width;
+  const Lanes<W> z = central_quantile<W>(t.middle);
+  if (all(central)) return z;
+  const Lanes<W> size = tail_quantile<W>(min(t.below, t.above));
+  return select(central, z, select(t.middle < Lanes<W>(0.0), -size, size));
 }
 
 /// 1e-33 is under the last place of every score: a cut further out than this changes nothing.
@@ -121,18 +140,6 @@ CutTails tails_of(double low, double high) {
   }
   t.inside = low > 0.0 ? t.above_low - t.above_high : t.below_high - t.below_low;
   return t;
-}
-
-/// Standard normal inside [low, high] at `score`.
-template <int W>
-HEADBAND_INLINE Lanes<W> cut_normal(double low, double high, const Lanes<W>& score) {
-  if (low <= -no_effect_distance && high >= no_effect_distance) {
-    return quantile_of_tails<W>(score, 1.0 - score, score - 0.5);
-  }
-  const CutTails t = tails_of(low, high);
-  const Lanes<W> below = t.below_low + score * t.inside;
-  const Lanes<W> above = t.above_high + (1.0 - score) * t.inside;
-  return max(min(quantile_of_tails<W>(below, above, 0.5 * (below - above)), Lanes<W>(high)), Lanes<W>(low));
 }
 
 /// The cut in standard deviations about ln(central); [low, high].
@@ -167,17 +174,14 @@ TriangleTails triangle_tails(double low, double mode, double high, double x) {
 }
 
 template <int W>
-Lanes<W> triangle_quantile(double low, double mode, double high, const Cut& cut, const Lanes<W>& score) {
+Lanes<W> triangle_quantile(const ReadySpread& s, const Lanes<W>& score) {
+  const double low = s.low, mode = s.central, high = s.high, width = s.size;
   if (!(high > low)) return mode;
   Lanes<W> below = score, above = 1.0 - score;
-  if (cut.active()) {
-    const TriangleTails at_low = triangle_tails(low, mode, high, cut.low);
-    const TriangleTails at_high = triangle_tails(low, mode, high, cut.high);
-    const double inside = at_low.below > 0.5 ? at_low.above - at_high.above : at_high.below - at_low.below;
-    below = at_low.below + score * inside;
-    above = at_high.above + (1.0 - score) * inside;
+  if (s.cut) {
+    below = s.below_low + score * s.inside;
+    above = s.above_high + (1.0 - score) * s.inside;
   }
-  const double width = high - low;
   const Lanes<W> rising = low + sqrt(below * (width * (mode - low)));
   const Lanes<W> falling = high - sqrt(above * (width * (high - mode)));
   return select(below < Lanes<W>((mode - low) / width), rising, falling);
@@ -286,11 +290,94 @@ Moments moments(const Spread& spread, const Cut& cut, double central) {
                     spread);
 }
 
-template <int W>
-HEADBAND_INLINE Lanes<W> even_quantile(double low, double high, const Cut& cut, const Lanes<W>& score) {
-  const double a = std::max(low, cut.low), b = std::min(high, cut.high);
-  return a + (b - a) * score;
+[[nodiscard]] bool is_normal(const ReadySpread& s) {
+  return s.kind == ReadySpread::Kind::normal || s.kind == ReadySpread::Kind::log_normal;
 }
+
+/// Where a score stands in the standard normal behind `s`.
+template <int W>
+HEADBAND_INLINE Tails<W> tails_at(const ReadySpread& s, const Lanes<W>& score) {
+  if (!s.cut) return {score, 1.0 - score, score - 0.5};
+  const Lanes<W> below = s.below_low + score * s.inside;
+  const Lanes<W> above = s.above_high + (1.0 - score) * s.inside;
+  return {below, above, 0.5 * (below - above)};
+}
+
+/// From the standard normal to the value.
+template <int W>
+HEADBAND_INLINE Lanes<W> value_of_normal(const ReadySpread& s, const Lanes<W>& standard) {
+  const Lanes<W> z = s.cut ? max(min(standard, Lanes<W>(s.high)), Lanes<W>(s.low)) : standard;
+  const Lanes<W> x = s.kind == ReadySpread::Kind::normal ? s.central + s.size * z : s.central * exp(s.size * z);
+  return max(min(x, Lanes<W>(s.most)), Lanes<W>(s.least));
+}
+
+/// Spreads without a normal behind them.
+template <int W>
+HEADBAND_INLINE Lanes<W> straight_quantile(const ReadySpread& s, const Lanes<W>& score) {
+  switch (s.kind) {
+    case ReadySpread::Kind::even:
+      return s.central + s.size * score;
+    case ReadySpread::Kind::triangle:
+      return triangle_quantile<W>(s, score);
+    default:
+      return s.central;
+  }
+}
+
+/// The cut of a normal at [low, high] standard deviations.
+void cut_normal(ReadySpread& s, double low, double high) {
+  if (low <= -no_effect_distance && high >= no_effect_distance) return;
+  const CutTails t = tails_of(low, high);
+  s.cut = true;
+  s.low = low;
+  s.high = high;
+  s.below_low = t.below_low;
+  s.above_high = t.above_high;
+  s.inside = t.inside;
+}
+
+void even_between(ReadySpread& s, double low, double high, const Cut& cut) {
+  s.kind = ReadySpread::Kind::even;
+  s.central = std::max(low, cut.low);
+  s.size = std::min(high, cut.high) - s.central;
+}
+
+/// Tails of eight scores each that wait for their evaluation, with the sign of the quantile, and whose they are.
+struct WaitingTails {
+  static constexpr std::size_t most_spreads = 32, room = 8 * most_spreads;
+  alignas(64) std::array<double, room + 8> tail;
+  std::array<std::uint16_t, room + 8> owner;
+  std::size_t count = 0;
+
+  /// Notes the lanes outside the middle; `from`: eight times the spread's place.
+  void note(const Tails<8>& t, std::size_t from) {
+    const Mask<8> outside = abs(t.middle) > central_half_width;
+    const Lanes<8> least = min(t.below, t.above);
+    const Lanes<8> with_sign = select(t.middle < Lanes<8>(0.0), -least, least);
+    for (int lane = 0; lane < 8; ++lane) {  // no branch: every lane is written, those in the middle are written over
+      tail[count] = with_sign[lane];
+      owner[count] = static_cast<std::uint16_t>(from + static_cast<std::size_t>(lane));
+      count += outside[lane] ? 1U : 0U;
+    }
+  }
+
+  /// Replaces each tail's quantile in `z`.
+  void settle(std::span<Lanes<8>> z) {
+    for (std::size_t i = 0; i < 8; ++i) tail[count + i] = 0.07;  // something harmless behind the last
+    for (std::size_t i = 0; i < count; i += 8) {
+      Lanes<8> with_sign;
+      std::memcpy(&with_sign.part[0], &tail[i], sizeof(Quad));
+      std::memcpy(&with_sign.part[1], &tail[i + 4], sizeof(Quad));
+      const Lanes<8> size = tail_quantile<8>(abs(with_sign));
+      const Lanes<8> quantile = select(with_sign < Lanes<8>(0.0), -size, size);
+      const std::size_t here = std::min<std::size_t>(8, count - i);
+      for (std::size_t lane = 0; lane < here; ++lane) {
+        const std::size_t whose = owner[i + lane];
+        z[whose / 8].set(static_cast<int>(whose % 8), quantile[static_cast<int>(lane)]);
+      }
+    }
+  }
+};
 
 }  // namespace
 
@@ -298,31 +385,83 @@ double normal_probability(double z) { return 0.5 * std::erfc(-z / std::numbers::
 
 template <int W>
 Lanes<W> normal_quantile(const Lanes<W>& probability) {
-  return quantile_of_tails<W>(probability, 1.0 - probability, probability - 0.5);
+  return quantile_of_tails<W>({probability, 1.0 - probability, probability - 0.5});
+}
+
+ReadySpread ready_spread(const Spread& spread, const Cut& cut, double central) {
+  using Kind = ReadySpread::Kind;
+  ReadySpread s;
+  s.central = central;
+  std::visit(Overloaded{
+                 [&](const Exact&) {},
+                 [&](const Normal& n) {
+                   s.kind = Kind::normal;
+                   s.size = n.standard_deviation;
+                   s.least = cut.low;
+                   s.most = cut.high;
+                   cut_normal(s, (cut.low - central) / s.size, (cut.high - central) / s.size);
+                 },
+                 [&](const LogNormal& n) {
+                   s.kind = Kind::log_normal;
+                   s.size = n.log_standard_deviation;
+                   s.least = cut.low;
+                   s.most = cut.high;
+                   if (!cut.active()) return;
+                   const auto [low, high] = log_cut(cut, central, s.size);
+                   cut_normal(s, low, high);
+                 },
+                 [&](const Even& e) { even_between(s, e.low, e.high, cut); },
+                 [&](const Triangle& t) {
+                   s.kind = Kind::triangle;
+                   s.low = t.low;
+                   s.high = t.high;
+                   s.size = t.high - t.low;
+                   if (!cut.active() || !(t.high > t.low)) return;
+                   const TriangleTails at_low = triangle_tails(t.low, central, t.high, cut.low);
+                   const TriangleTails at_high = triangle_tails(t.low, central, t.high, cut.high);
+                   s.cut = true;
+                   s.below_low = at_low.below;
+                   s.above_high = at_high.above;
+                   s.inside = at_low.below > 0.5 ? at_low.above - at_high.above : at_high.below - at_low.below;
+                 },
+                 [&](const NotRandom& r) { even_between(s, r.low, r.high, cut); },
+             },
+             spread);
+  return s;
+}
+
+template <int W>
+Lanes<W> quantile(const ReadySpread& spread, const Lanes<W>& score) {
+  if (!is_normal(spread)) return straight_quantile<W>(spread, score);
+  return value_of_normal<W>(spread, quantile_of_tails<W>(tails_at<W>(spread, score)));
 }
 
 template <int W>
 Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const Lanes<W>& score) {
-  return std::visit(
-      Overloaded{
-          [&](const Exact&) -> Lanes<W> { return central; },
-          [&](const Normal& n) -> Lanes<W> {
-            const double s = n.standard_deviation;
-            const Lanes<W> x = central + s * cut_normal<W>((cut.low - central) / s, (cut.high - central) / s, score);
-            return max(min(x, Lanes<W>(cut.high)), Lanes<W>(cut.low));
-          },
-          [&](const LogNormal& n) -> Lanes<W> {
-            const double s = n.log_standard_deviation;
-            double low = -std::numeric_limits<double>::infinity(), high = -low;
-            if (cut.active()) std::tie(low, high) = log_cut(cut, central, s);
-            const Lanes<W> x = central * exp(s * cut_normal<W>(low, high, score));
-            return max(min(x, Lanes<W>(cut.high)), Lanes<W>(cut.low));
-          },
-          [&](const Even& e) -> Lanes<W> { return even_quantile<W>(e.low, e.high, cut, score); },
-          [&](const Triangle& t) -> Lanes<W> { return triangle_quantile<W>(t.low, central, t.high, cut, score); },
-          [&](const NotRandom& r) -> Lanes<W> { return even_quantile<W>(r.low, r.high, cut, score); },
-      },
-      spread);
+  return quantile<W>(ready_spread(spread, cut, central), score);
+}
+
+void quantiles(std::span<const ReadySpread> spreads, std::span<const Lanes<8>> scores, std::span<Lanes<8>> values) {
+  WaitingTails waiting;
+  for (std::size_t first = 0; first < spreads.size(); first += WaitingTails::most_spreads) {
+    const std::size_t many = std::min(WaitingTails::most_spreads, spreads.size() - first);
+    const auto here = spreads.subspan(first, many);
+    const auto value = values.subspan(first, many);
+    waiting.count = 0;
+    for (std::size_t i = 0; i < many; ++i) {
+      const Lanes<8>& score = scores[first + i];
+      if (!is_normal(here[i])) {
+        value[i] = straight_quantile<8>(here[i], score);
+        continue;
+      }
+      const Tails<8> tails = tails_at<8>(here[i], score);
+      value[i] = central_quantile<8>(tails.middle);
+      waiting.note(tails, 8 * i);
+    }
+    waiting.settle(value);
+    for (std::size_t i = 0; i < many; ++i)
+      if (is_normal(here[i])) value[i] = value_of_normal<8>(here[i], value[i]);
+  }
 }
 
 double probability(const Spread& spread, const Cut& cut, double central, double x) {
@@ -367,6 +506,8 @@ double standard_deviation(const Spread& spread, const Cut& cut, double central) 
 
 template Lanes<1> quantile<1>(const Spread&, const Cut&, double, const Lanes<1>&);
 template Lanes<8> quantile<8>(const Spread&, const Cut&, double, const Lanes<8>&);
+template Lanes<1> quantile<1>(const ReadySpread&, const Lanes<1>&);
+template Lanes<8> quantile<8>(const ReadySpread&, const Lanes<8>&);
 template Lanes<1> normal_quantile<1>(const Lanes<1>&);
 template Lanes<8> normal_quantile<8>(const Lanes<8>&);
 

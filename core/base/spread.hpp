@@ -7,6 +7,7 @@
 #include "core/base/lanes.hpp"
 
 #include <limits>
+#include <span>
 #include <variant>
 
 namespace headband::base {
@@ -53,6 +54,30 @@ struct Cut {
 template <int W>
 [[nodiscard]] Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const Lanes<W>& score);
 
+/// A spread made ready for many scores: what hangs on no score is computed once.
+struct ReadySpread {
+  enum class Kind { exact, normal, log_normal, even, triangle };
+  Kind kind = Kind::exact;
+  double central = 0.0;                                     ///< [SI]; lower bound of `even`, mode of `triangle`
+  double size = 0.0;                                        ///< standard deviation, that of the logarithm, or width
+  bool cut = false;                                         ///< the cut takes something away
+  double low = 0.0, high = 0.0;                             ///< the cut in standard deviations; ends of a triangle [SI]
+  double below_low = 0.0, above_high = 0.0;                 ///< shares beyond the cut
+  double inside = 1.0;                                      ///< share inside it
+  double least = -std::numeric_limits<double>::infinity();  ///< the cut [SI]
+  double most = std::numeric_limits<double>::infinity();
+};
+[[nodiscard]] ReadySpread ready_spread(const Spread& spread, const Cut& cut, double central);
+
+/// The same as `quantile` of the spread, bit by bit.
+template <int W>
+[[nodiscard]] Lanes<W> quantile(const ReadySpread& spread, const Lanes<W>& score);
+
+/// Quantiles of many spreads at eight scores each: the same bits as one by one. The tails of all normal ones are
+/// gathered and evaluated together, which is where the time goes otherwise.
+/// @param scores, values as `spreads`
+void quantiles(std::span<const ReadySpread> spreads, std::span<const Lanes<8>> scores, std::span<Lanes<8>> values);
+
 /// Distribution function of the spread about `central` inside `cut`: the score at which `quantile` gives `x`, in
 /// [0, 1]. An exact value has no distribution: 0.5.
 [[nodiscard]] double probability(const Spread& spread, const Cut& cut, double central, double x);
@@ -70,6 +95,8 @@ template <int W>
 
 extern template Lanes<1> quantile<1>(const Spread&, const Cut&, double, const Lanes<1>&);
 extern template Lanes<8> quantile<8>(const Spread&, const Cut&, double, const Lanes<8>&);
+extern template Lanes<1> quantile<1>(const ReadySpread&, const Lanes<1>&);
+extern template Lanes<8> quantile<8>(const ReadySpread&, const Lanes<8>&);
 extern template Lanes<1> normal_quantile<1>(const Lanes<1>&);
 extern template Lanes<8> normal_quantile<8>(const Lanes<8>&);
 

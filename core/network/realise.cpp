@@ -234,7 +234,10 @@ bool varies_in_rows(const Table& rows) {
 
 }  // namespace
 
-Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan) {
+Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan), spreads_(c.unknowns.size()) {
+  for_each_quantity(c, [this](const Quantity& q) {
+    if (q.unknown >= 0) spreads_[static_cast<std::size_t>(q.unknown)] = base::ready_spread(q.spread, q.cut, q.value);
+  });
   site_ = varies(c.site.atmosphere, c.site.gravity);
   const Liquid& l = c.liquid;
   temperature_ = varies(l.temperature) || varies_in_rows(l.viscosity_points);
@@ -304,13 +307,19 @@ template <int W>
 Values<W> Realiser::prepare() const {
   Values<W> values;
   realise_all(*case_, *plan_, Draw<W>(nullptr), values);
+  values.drawn.resize(spreads_.size());
   return values;
 }
 
 template <int W>
 void Realiser::draw(const Scores<W>& scores, Values<W>& values) const {
   const Case& c = *case_;
-  const Draw<W> drawn(&scores);
+  if constexpr (W == 8) {
+    base::quantiles(spreads_, scores, values.drawn);
+  } else {
+    for (std::size_t u = 0; u < spreads_.size(); ++u) values.drawn[u] = base::quantile<W>(spreads_[u], scores[u]);
+  }
+  const Draw<W> drawn(scores, values.drawn);
   if (site_) realise_site(c.site, drawn, values);
   if (temperature_) detail::realise_by_temperature(c.liquid, drawn, values.liquid);
   if (liquid_) detail::realise_given_numbers(c.liquid, drawn, values.liquid);

@@ -113,6 +113,7 @@ struct Values {
   std::vector<EventValues<W>> events;
   base::PerLane<FrictionLaw, W> law{};
   base::PerLane<Transition, W> transition{};
+  std::vector<Lanes<W>> drawn;  ///< as Case::unknowns: values at the scores, a Realiser's own; choices unset
 };
 
 /// Scores of W draws: `score[unknown]`, uniform in (0, 1).
@@ -143,6 +144,7 @@ class Realiser {
   };
   const Case* case_;
   const Plan* plan_;
+  std::vector<base::ReadySpread> spreads_;  ///< as Case::unknowns
   bool site_ = false, liquid_ = false, temperature_ = false, places_ = false, choices_ = false;
   std::vector<PipeChanges> pipes_;
   std::vector<bool> valves_, pumps_, check_valves_, draw_offs_, events_;

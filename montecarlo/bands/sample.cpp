@@ -1,10 +1,13 @@
 // SPDX-License-Identifier: MIT
 #include "montecarlo/bands/sample.hpp"
 
+#include "core/base/lanes.hpp"
+
 #include <algorithm>
 #include <array>
 #include <boost/math/distributions/students_t.hpp>
 #include <cmath>
+#include <cstring>
 #include <numbers>
 #include <utility>
 
@@ -21,7 +24,7 @@ std::vector<double> density(const Ranked& ranked, double low, double high, doubl
     count[static_cast<std::size_t>(std::min(static_cast<int>((x - low) * per_step), bins - 1))] += many;
   };
   const Ranked::Bins counted = ranked.bins();
-  if (!counted.count.empty() && counted.width < 0.1 * width) {  // what is counted already is fine enough
+  if (!counted.count.empty() && counted.width < 0.2 * width) {  // what is counted already is fine enough
     for (std::size_t b = 0; b < counted.count.size(); ++b) {
       add(counted.low + (static_cast<double>(b) + 0.5) * counted.width, static_cast<double>(counted.count[b]));
     }
@@ -46,15 +49,69 @@ std::vector<double> density(const Ranked& ranked, double low, double high, doubl
   return result;
 }
 
+/// Sums over numbers about a pivot, and their ends. Not a number where one of them is not.
+struct Sums {
+  double sum = 0.0, squares = 0.0;
+  Extent extent;
+};
+
+/// Eight sums side by side, added up in a fixed order: a function of the numbers alone.
+Sums sums_about(double pivot, std::span<const double> numbers) {
+  using base::Lanes;
+  Lanes<8> sum = 0.0, squares = 0.0, low = pivot, high = pivot;
+  const auto add = [&](const Lanes<8>& x) {
+    const Lanes<8> off = x - pivot;
+    sum += off;
+    squares += off * off;
+    low = base::min(low, x);
+    high = base::max(high, x);
+  };
+  const std::size_t whole = numbers.size() / 8 * 8;
+  for (std::size_t i = 0; i < whole; i += 8) {
+    Lanes<8> x;
+    std::memcpy(&x.part[0], &numbers[i], sizeof(base::Quad));
+    std::memcpy(&x.part[1], &numbers[i + 4], sizeof(base::Quad));
+    add(x);
+  }
+  if (whole < numbers.size()) {
+    Lanes<8> x = pivot;  // adds nothing in the lanes left over
+    for (std::size_t i = whole; i < numbers.size(); ++i) x.set(static_cast<int>(i - whole), numbers[i]);
+    add(x);
+  }
+  Sums sums{0.0, 0.0, {pivot, pivot}};
+  for (int lane = 0; lane < 8; ++lane) {
+    sums.sum += sum[lane];
+    sums.squares += squares[lane];
+    sums.extent.low = std::min(sums.extent.low, low[lane]);
+    sums.extent.high = std::max(sums.extent.high, high[lane]);
+  }
+  return sums;
+}
+
+bool all_zero(std::span<const std::int8_t> status) {
+  int any = 0;
+  for (const std::int8_t s : status) any |= s;
+  return any == 0;
+}
+
+/// The finished ones among the values.
+std::vector<double> finished_of(std::span<const double> values, std::span<const std::int8_t> status) {
+  std::vector<double> finished;
+  finished.reserve(values.size());
+  for (std::size_t i = 0; i < values.size(); ++i)
+    if (status[i] == 0 && !std::isnan(values[i])) finished.push_back(values[i]);
+  return finished;
+}
+
+/// Where the shape of the density is looked at.
+constexpr std::array<double, 4> shape_probabilities{0.001, 0.25, 0.75, 0.999};
+
 }  // namespace
 
 std::vector<double> plain_quantiles(std::span<const double> values,
                                     std::span<const std::int8_t> status,
                                     std::span<const double> probabilities) {
-  std::vector<double> finished;
-  finished.reserve(values.size());
-  for (std::size_t i = 0; i < values.size(); ++i)
-    if (status[i] == 0 && !std::isnan(values[i])) finished.push_back(values[i]);
+  std::vector<double> finished = finished_of(values, status);
   if (finished.empty()) return std::vector<double>(probabilities.size(), answers::missing);
   const Ranked ranked(std::move(finished));
   std::vector<double> result;
@@ -80,33 +137,24 @@ std::vector<double> asked_probabilities(double coverage) {
 
 Sample::Sample(std::span<const double> values, std::span<const std::int8_t> status, SampleShape shape)
     : shape_(shape), draws_(static_cast<long long>(values.size())) {
-  const auto replicates = static_cast<std::size_t>(std::max(1, shape.replicates));
-  std::vector<double> finished;
-  finished.reserve(values.size());
-  std::vector<std::vector<double>> parts(replicates > 1 ? replicates : 0);
-  for (auto& part : parts) part.reserve(values.size() / replicates + 1);
-  const auto good = [&](std::size_t i) { return status[i] == 0 && !std::isnan(values[i]); };
-  bool all_good = true;
-  for (std::size_t i = 0; i < values.size(); ++i) all_good &= good(i);
-  if (all_good) {
-    finished.assign(values.begin(), values.end());
+  if (values.empty()) return;
+  Sums sums = sums_about(values.front(), values);
+  const bool all_finished = all_zero(status.first(values.size())) && !std::isnan(sums.sum);
+  if (all_finished) {
+    find_moments(values, sums.sum, sums.squares);
+    ranked_ = Ranked::of(values, sums.extent);
   } else {
-    for (std::size_t i = 0; i < values.size(); ++i)
-      if (good(i)) finished.push_back(values[i]);
+    std::vector<double> finished = finished_of(values, status);
+    if (finished.empty()) return;
+    sums = sums_about(finished.front(), finished);
+    find_moments(finished, sums.sum, sums.squares);
+    ranked_ = Ranked(std::move(finished));
   }
-  for (std::size_t r = 0; r < parts.size(); ++r) {
-    for (std::size_t i = r; i < values.size(); i += replicates) {
-      if (good(i)) parts[r].push_back(values[i]);
-    }
-  }
-  if (finished.empty()) return;
-  // in draw order and about a pivot: no digits lost, the same bits for any threads
+  deal_out(values, status, all_finished);
+}
+
+void Sample::find_moments(std::span<const double> finished, double sum, double squares) {
   const double pivot = finished.front(), n = static_cast<double>(finished.size());
-  double sum = 0.0, squares = 0.0;
-  for (const double x : finished) {
-    sum += x - pivot;
-    squares += (x - pivot) * (x - pivot);
-  }
   const double shift = sum / n;
   if (squares > 1e8 * (squares - n * shift * shift)) {  // the pivot was a far one: once more about the mean
     squares = 0.0;
@@ -116,8 +164,19 @@ Sample::Sample(std::span<const double> values, std::span<const std::int8_t> stat
   }
   mean_ = pivot + shift;
   standard_deviation_ = n > 1.0 ? std::sqrt(std::max(0.0, squares) / (n - 1.0)) : 0.0;
-  ranked_ = Ranked(std::move(finished));
-  replicate_.reserve(parts.size());
+}
+
+void Sample::deal_out(std::span<const double> values, std::span<const std::int8_t> status, bool all_finished) {
+  const auto replicates = static_cast<std::size_t>(std::max(1, shape_.replicates));
+  if (replicates == 1) return;
+  std::vector<std::vector<double>> parts(replicates);
+  for (auto& part : parts) part.reserve(values.size() / replicates + 1);
+  std::size_t whose = 0;
+  for (std::size_t i = 0; i < values.size(); ++i) {
+    if (all_finished || (status[i] == 0 && !std::isnan(values[i]))) parts[whose].push_back(values[i]);
+    whose = whose + 1 == replicates ? 0 : whose + 1;
+  }
+  replicate_.reserve(replicates);
   for (auto& part : parts) replicate_.emplace_back(std::move(part));
 }
 
@@ -173,6 +232,7 @@ std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> p
     const Places places = places_of(p);
     wanted.insert(wanted.end(), {places.value, places.lower, places.upper});
   }
+  for (const double p : shape_probabilities) wanted.push_back(ranked_.place_of(p));  // `modes` asks for them
   ranked_.announce(wanted);
   for (const auto& r : replicate_) {
     if (!replicated()) break;
@@ -188,8 +248,9 @@ std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> p
 int Sample::modes() const {
   if (ranked_.empty()) return 0;
   const auto n = static_cast<double>(ranked_.size());
-  ranked_.announce(
-      std::array{ranked_.place_of(0.001), ranked_.place_of(0.25), ranked_.place_of(0.75), ranked_.place_of(0.999)});
+  std::array<double, 4> places{};
+  std::ranges::transform(shape_probabilities, places.begin(), [this](double p) { return ranked_.place_of(p); });
+  ranked_.announce(places);
   const double quartiles = ranked_.quantile(0.75) - ranked_.quantile(0.25);
   const double spread = quartiles > 0.0 ? std::min(standard_deviation_, quartiles / 1.34) : standard_deviation_;
   if (!(spread > 1e-12 * std::fabs(mean_)) || ranked_.size() < 50) return 1;

@@ -21,7 +21,7 @@ struct SampleShape {
 /// One answer's finished draws, ready for questions.
 class Sample {
  public:
-  /// @param values one per draw, NaN or a status other than 0 = failed
+  /// @param values one per draw, NaN or a status other than 0 = failed; not copied: they must outlive the questions
   Sample(std::span<const double> values, std::span<const std::int8_t> status, SampleShape shape);
 
   [[nodiscard]] long long draws() const { return draws_; }
@@ -51,7 +51,10 @@ class Sample {
   };
   [[nodiscard]] Places places_of(double probability) const;
   [[nodiscard]] bool replicated() const;
-
+  /// Mean and deviation of the finished draws from their sums about the first of them.
+  void find_moments(std::span<const double> finished, double sum, double squares);
+  /// Fills the replicates.
+  void deal_out(std::span<const double> values, std::span<const std::int8_t> status, bool all_finished);
   SampleShape shape_;
   long long draws_ = 0;
   Ranked ranked_{{}};

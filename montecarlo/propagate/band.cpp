@@ -230,7 +230,7 @@ class BandRun {
   bool outer_points() {
     judged_.push_back(judge_limits(case_, plan_, central_, table_, options_.surge));
     medians_.assign(computed_.size(), {});
-    note_medians(table_);
+    if (ranges_.points.size() > 1) note_medians(table_);  // only a range of them is told
     for (std::size_t p = 1; p < ranges_.points.size(); ++p) {
       DrawTable there(computed_.size(), plan_.limits.size(), 0);
       there.resize(draws_);

@@ -67,7 +67,7 @@ class Passes {
   bool stopped_ = false;
 };
 
-[[nodiscard]] std::span<const double> first_draws(const std::vector<double>& column, long long draws) {
+[[nodiscard]] std::span<const double> first_draws(const Column& column, long long draws) {
   return {column.data(), static_cast<std::size_t>(draws)};
 }
 

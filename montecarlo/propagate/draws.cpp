@@ -5,6 +5,7 @@
 #include <chrono>
 #include <cmath>
 #include <condition_variable>
+#include <cstring>
 #include <exception>
 #include <limits>
 #include <mutex>
@@ -100,7 +101,7 @@ void work(Dealer& dealer,
 void DrawTable::resize(long long draws) {
   const auto n = static_cast<std::size_t>(draws);
   for (auto* columns : {&answer, &limit})
-    for (auto& column : *columns) column.resize(n, nothing);
+    for (auto& column : *columns) column.resize(n);
   const std::size_t envelopes = head_max.empty() ? 0 : std::min(n, most_envelope_numbers / (2 * head_max.size()));
   for (auto* columns : {&head_max, &head_min})
     for (auto& column : *columns) column.resize(envelopes, nothing);
@@ -125,10 +126,10 @@ bool DrawTable::all_finished(const BlockAnswers& block) {
 void DrawTable::store(std::size_t first, int lanes, const BlockAnswers& block) {
   // the usual block: eight finished draws, whole columns at once
   if (lanes == 8 && head_max.empty() && history_cells == 0 && all_finished(block)) {
-    const auto put = [first](const std::vector<Lanes<8>>& from, std::vector<std::vector<double>>& to) {
+    const auto put = [first](const std::vector<Lanes<8>>& from, std::vector<Column>& to) {
       for (std::size_t i = 0; i < to.size(); ++i) {
-        double* const column = to[i].data() + first;
-        for (int lane = 0; lane < 8; ++lane) column[lane] = from[i][lane];
+        std::memcpy(to[i].data() + first, &from[i].part[0], sizeof(base::Quad));
+        std::memcpy(to[i].data() + first + 4, &from[i].part[1], sizeof(base::Quad));
       }
     };
     put(block.answer, answer);

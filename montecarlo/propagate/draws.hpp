@@ -5,6 +5,7 @@
 // depends on which thread took which block, or in what order.
 
 #include "core/network/values.hpp"
+#include "montecarlo/propagate/column.hpp"
 #include "transient/march/surge.hpp"
 
 #include <atomic>
@@ -26,9 +27,9 @@ using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;
 /// Histories are kept of the first draws, and of so many that draws times times times probes fit 256 MB.
 inline constexpr std::size_t most_history_draws = 4096, most_history_numbers = std::size_t{32} << 20;
 
-/// Every number of every draw; failed draws hold not-a-number.
+/// Every number of every draw; failed draws hold not-a-number, draws not yet run anything.
 struct DrawTable {
-  std::vector<std::vector<double>> answer, limit;       ///< [which][draw]
+  std::vector<Column> answer, limit;                    ///< [which][draw]
   std::vector<std::vector<double>> head_max, head_min;  ///< [station][draw], at most 512 MB of them
   std::size_t history_cells = 0;                        ///< times times probes
   std::vector<double> history;                          ///< of the draws kept, see `history_place`
@@ -37,6 +38,7 @@ struct DrawTable {
   DrawTable(std::size_t answers, std::size_t limits, std::size_t stations, std::size_t histories = 0)
       : answer(answers), limit(limits), head_max(stations), head_min(stations), history_cells(histories) {}
   [[nodiscard]] long long draws() const { return static_cast<long long>(status.size()); }
+  /// Makes room, or cuts off; new draws have the status of failed ones.
   void resize(long long draws);
   /// Of so many draws, how many first ones keep their histories.
   [[nodiscard]] std::size_t histories_kept(std::size_t draws) const;

@@ -89,6 +89,11 @@ double Input::value(double score) const {
   return static_cast<double>(weights.size()) - 1.0;
 }
 
+base::ReadySpread Input::spread() const {
+  if (quantity == nullptr) return {};
+  return base::ready_spread(quantity->spread, quantity->cut, quantity->value);
+}
+
 std::vector<Input> inputs_of(const network::Case& c) {
   std::vector<Input> inputs(c.unknowns.size());
   for (std::size_t u = 0; u < inputs.size(); ++u) inputs[u].name = c.unknowns[u].name;

@@ -20,6 +20,8 @@ struct Input {
 
   /// Value [SI] at a score; the option's number (from 0) for a choice.
   [[nodiscard]] double value(double score) const;
+  /// Spread of the quantity; of a choice, an exact number that says nothing.
+  [[nodiscard]] base::ReadySpread spread() const;
 };
 
 /// As Case::unknowns. Points into `c`.

@@ -7,6 +7,7 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
+#include <span>
 
 namespace headband::montecarlo {
 
@@ -26,7 +27,7 @@ std::string reason_of(const Judged& j, double grid_bound) {
 }
 
 /// Mean distance over the bound of the finished draws, negative when kept.
-double mean_excess(const Bound& bound, const std::vector<double>& values) {
+double mean_excess(const Bound& bound, std::span<const double> values) {
   double sum = 0.0, n = 0.0;
   for (const double v : values) {
     if (std::isnan(v)) continue;

@@ -10,7 +10,8 @@ namespace {
 constexpr long long most_stored_runs = 100000;
 
 /// Columns by draw → rows of a file, every `stride`-th of the first `draws`.
-std::vector<double> rows_of(const std::vector<std::vector<double>>& columns, std::size_t draws, std::size_t stride) {
+template <class Columns>
+std::vector<double> rows_of(const Columns& columns, std::size_t draws, std::size_t stride) {
   std::vector<double> rows;
   rows.reserve((draws + stride - 1) / stride * columns.size());
   for (std::size_t draw = 0; draw < draws; draw += stride)
@@ -18,7 +19,8 @@ std::vector<double> rows_of(const std::vector<std::vector<double>>& columns, std
   return rows;
 }
 
-void columns_of(const std::vector<double>& rows, std::vector<std::vector<double>>& columns, std::size_t draws) {
+template <class Columns>
+void columns_of(const std::vector<double>& rows, Columns& columns, std::size_t draws) {
   for (std::size_t i = 0; i < columns.size(); ++i)
     for (std::size_t draw = 0; draw < std::min(draws, columns[i].size()); ++draw)
       columns[i][draw] = rows[draw * columns.size() + i];
@@ -27,6 +29,31 @@ void columns_of(const std::vector<double>& rows, std::vector<std::vector<double>
 }  // namespace
 
 namespace {
+
+/// Values of the inputs, (run, input): drawn again, eight runs at a time.
+std::vector<double> input_rows(const std::vector<Input>& inputs,
+                               const Sampler& sampler,
+                               const Ranges& ranges,
+                               std::size_t draws,
+                               std::size_t stride) {
+  const std::size_t runs = (draws + stride - 1) / stride, many = inputs.size();
+  std::vector<base::ReadySpread> spreads(many);
+  for (std::size_t u = 0; u < many; ++u) spreads[u] = inputs[u].spread();
+  std::vector<double> rows(runs * many);
+  network::Scores<8> scores, values(many);
+  for (std::size_t run = 0; run < runs; run += 8) {
+    sampler.spaced(static_cast<long long>(run * stride), static_cast<long long>(stride), scores);
+    for (const std::size_t unknown : ranges.unknown) scores[unknown] = 0.5;
+    base::quantiles(spreads, scores, values);
+    for (std::size_t lane = 0; lane < std::min<std::size_t>(8, runs - run); ++lane) {
+      for (std::size_t u = 0; u < many; ++u) {
+        const int at = static_cast<int>(lane);
+        rows[(run + lane) * many + u] = inputs[u].quantity != nullptr ? values[u][at] : inputs[u].value(scores[u][at]);
+      }
+    }
+  }
+  return rows;
+}
 
 /// Histories by draw, (draw, time, probe).
 std::vector<double> history_rows(const DrawTable& table, std::size_t kept) {
@@ -69,15 +96,11 @@ void keep_runs(answers::Bands& bands,
   bands.limit_value = rows_of(table.limit, n, step);
   bands.run_status.clear();
   bands.run_cavity.clear();
-  bands.input_value.clear();
-  bands.input_value.reserve((n + step - 1) / step * inputs.size());
   for (std::size_t draw = 0; draw < n; draw += step) {
     bands.run_status.push_back(table.status[draw]);
     if (bands.surged) bands.run_cavity.push_back(table.cavity[draw]);
-    network::Scores<1> scores = sampler.draw(static_cast<long long>(draw));
-    for (const std::size_t unknown : ranges.unknown) scores[unknown] = 0.5;
-    for (std::size_t u = 0; u < inputs.size(); ++u) bands.input_value.push_back(inputs[u].value(scores[u].number));
   }
+  bands.input_value = input_rows(inputs, sampler, ranges, n, step);
   bands.run_head_max.clear();
   bands.run_head_min.clear();
   bands.run_history_head.clear();
@@ -90,7 +113,7 @@ void keep_runs(answers::Bands& bands,
 
 long long take_up_runs(const answers::Bands& bands, DrawTable& table) {
   const std::size_t runs = bands.run_status.size();
-  const auto fits = [&](const std::vector<double>& rows, const std::vector<std::vector<double>>& columns) {
+  const auto fits = [&](const std::vector<double>& rows, const auto& columns) {
     return rows.size() == runs * columns.size();
   };
   if (bands.stride != 1 || !fits(bands.output_value, table.answer) || !fits(bands.limit_value, table.limit) ||

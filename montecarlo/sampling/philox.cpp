@@ -63,13 +63,14 @@ PhiloxKey::PhiloxKey(std::uint64_t seed) {
   }
 }
 
-void philox_scores(const PhiloxKey& key, std::uint64_t first, std::uint64_t name, base::Lanes<8>& scores) {
+void philox_scores(
+    const PhiloxKey& key, std::uint64_t first, std::uint64_t name, base::Lanes<8>& scores, std::uint64_t stride) {
 #if defined(__AVX2__)
-  const __m256i start = _mm256_set1_epi64x(static_cast<long long>(first));
+  const auto draw = [first, stride](std::uint64_t lane) { return static_cast<long long>(first + lane * stride); };
   const __m256i name_low = _mm256_set1_epi64x(static_cast<long long>(name & 0xffffffffU));
   const __m256i name_high = _mm256_set1_epi64x(static_cast<long long>(name >> 32));
-  const __m256i draws_a = _mm256_add_epi64(start, _mm256_set_epi64x(3, 2, 1, 0));
-  const __m256i draws_b = _mm256_add_epi64(start, _mm256_set_epi64x(7, 6, 5, 4));
+  const __m256i draws_a = _mm256_set_epi64x(draw(3), draw(2), draw(1), draw(0));
+  const __m256i draws_b = _mm256_set_epi64x(draw(7), draw(6), draw(5), draw(4));
   FourCounters a{draws_a, _mm256_srli_epi64(draws_a, 32), name_low, name_high};
   FourCounters b{draws_b, _mm256_srli_epi64(draws_b, 32), name_low, name_high};
   for (const auto& k : key.round) {  // two chains side by side hide the multiplier's latency
@@ -81,9 +82,9 @@ void philox_scores(const PhiloxKey& key, std::uint64_t first, std::uint64_t name
   scores.part[0] = four_scores(a);
   scores.part[1] = four_scores(b);
 #else
-  const std::uint64_t seed = static_cast<std::uint64_t>(key.round[0][1]) << 32 | key.round[0][0];
+  const std::uint64_t seed = key.round[0][1] << 32 | key.round[0][0];
   for (int lane = 0; lane < 8; ++lane) {
-    scores.set(lane, score_of_bits(philox_bits(seed, first + static_cast<std::uint64_t>(lane), name)));
+    scores.set(lane, score_of_bits(philox_bits(seed, first + static_cast<std::uint64_t>(lane) * stride, name)));
   }
 #endif
 }

@@ -114,22 +114,28 @@ void Sampler::depend(network::Scores<W>& scores) const {
   }
 }
 
-void Sampler::block(long long first, network::Scores<8>& scores) const {
+void Sampler::block(long long first, network::Scores<8>& scores) const { spaced(first, 1, scores); }
+
+void Sampler::spaced(long long first, long long stride, network::Scores<8>& scores) const {
   scores.resize(names_.size());
-  const auto start = static_cast<std::uint64_t>(first);
+  const auto start = static_cast<std::uint64_t>(first), step = static_cast<std::uint64_t>(stride);
   for (std::size_t u = 0; u < names_.size(); ++u) {
     Lanes<8>& score = scores[u];
     if (!random_[u]) {
       score = 0.5;
     } else if (design_ == network::Design::sobol) {
       std::array<std::uint64_t, 8> point{};
-      sobol_[u].points(start, point);
+      if (stride == 1) {
+        sobol_[u].points(start, point);
+      } else {
+        for (std::size_t lane = 0; lane < 8; ++lane) point[lane] = sobol_[u].point(start + lane * step);
+      }
       for (int lane = 0; lane < 8; ++lane) score.set(lane, score_of_point(point[static_cast<std::size_t>(lane)]));
     } else {
-      philox_scores(key_, start, names_[u], score);
+      philox_scores(key_, start, names_[u], score, step);
       if (design_ == network::Design::latin_hypercube) {
         for (int lane = 0; lane < 8; ++lane) {
-          const auto draw = static_cast<std::size_t>(std::min(first + lane, draws_ - 1));
+          const auto draw = static_cast<std::size_t>(std::min(first + lane * stride, draws_ - 1));
           score.set(lane, latin_score(strata_[u][draw], score[lane], static_cast<std::uint32_t>(draws_)));
         }
       }

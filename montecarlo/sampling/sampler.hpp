@@ -28,6 +28,9 @@ class Sampler {
   /// @param scores one entry per unknown; storage is kept
   void block(long long first, network::Scores<8>& scores) const;
 
+  /// Scores of the draws `first`, `first + stride`, … `first + 7 stride`: the bits they have in their blocks.
+  void spaced(long long first, long long stride, network::Scores<8>& scores) const;
+
   /// Scores of one draw: the bits it has in its block.
   [[nodiscard]] network::Scores<1> draw(long long draw) const;
 

@@ -23,10 +23,13 @@ template <int W>
 class Draw {
  public:
   explicit Draw(const Scores<W>* scores) : scores_(scores) {}
+  /// @param drawn the value of each unknown at its score, where it is known already
+  Draw(const Scores<W>& scores, const std::vector<Lanes<W>>& drawn) : scores_(&scores), drawn_(&drawn) {}
 
   /// Number of the quantity [SI]; NaN where it is not given.
   [[nodiscard]] Lanes<W> operator()(const Quantity& quantity) const {
     if (scores_ == nullptr || quantity.unknown < 0) return Lanes<W>(central(quantity));
+    if (drawn_ != nullptr) return (*drawn_)[static_cast<std::size_t>(quantity.unknown)];
     return base::value<W>(quantity, (*scores_)[static_cast<std::size_t>(quantity.unknown)]);
   }
   /// The same with a default for what is not given.
@@ -42,6 +45,7 @@ class Draw {
 
  private:
   const Scores<W>* scores_;
+  const std::vector<Lanes<W>>* drawn_ = nullptr;
 };
 
 /// True where some draw changes one of the quantities.
