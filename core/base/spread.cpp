@@ -5,6 +5,7 @@
 
 #include <algorithm>
 #include <array>
+#include <bit>
 #include <boost/math/quadrature/gauss_kronrod.hpp>
 #include <cmath>
 #include <cstdint>
@@ -342,6 +343,38 @@ void even_between(ReadySpread& s, double low, double high, const Cut& cut) {
   s.size = std::min(high, cut.high) - s.central;
 }
 
+#if defined(__AVX2__)
+/// Of four lanes those whose bit is set, moved to the front: their halves as `_mm256_permutevar8x32_epi32` takes them.
+struct alignas(32) FrontOrder {
+  std::array<std::uint32_t, 8> half{};
+};
+constexpr std::array<FrontOrder, 16> front_order = [] {
+  std::array<FrontOrder, 16> table{};
+  for (std::uint32_t which = 0; which < 16; ++which) {
+    std::size_t at = 0;
+    for (std::uint32_t lane = 0; lane < 4; ++lane) {
+      if ((which >> lane & 1U) == 0) continue;
+      table[which].half[at++] = 2 * lane;
+      table[which].half[at++] = 2 * lane + 1;
+    }
+  }
+  return table;
+}();
+/// The numbers of those lanes, 16 bits each.
+constexpr std::array<std::uint64_t, 16> front_lanes = [] {
+  std::array<std::uint64_t, 16> table{};
+  for (std::uint32_t which = 0; which < 16; ++which) {
+    unsigned at = 0;
+    for (std::uint64_t lane = 0; lane < 4; ++lane) {
+      if ((which >> lane & 1U) == 0) continue;
+      table[which] |= lane << at;
+      at += 16;
+    }
+  }
+  return table;
+}();
+#endif
+
 /// Tails of eight scores each that wait for their evaluation, with the sign of the quantile, and whose they are.
 struct WaitingTails {
   static constexpr std::size_t most_spreads = 32, room = 8 * most_spreads;
@@ -349,15 +382,33 @@ struct WaitingTails {
   std::array<std::uint16_t, room + 8> owner;
   std::size_t count = 0;
 
-  /// Notes the lanes outside the middle; `from`: eight times the spread's place.
-  void note(const Tails<8>& t, std::size_t from) {
-    const Mask<8> outside = abs(t.middle) > central_half_width;
-    const Lanes<8> least = min(t.below, t.above);
-    const Lanes<8> with_sign = select(t.middle < Lanes<8>(0.0), -least, least);
-    for (int lane = 0; lane < 8; ++lane) {  // no branch: every lane is written, those in the middle are written over
+  HEADBAND_INLINE void note_four(const QuadBits& outside, const Quad& with_sign, std::size_t from) {
+#if defined(__AVX2__)
+    const auto which = static_cast<std::size_t>(_mm256_movemask_pd(reinterpret_cast<__m256d>(outside)));
+    const __m256i order = _mm256_load_si256(reinterpret_cast<const __m256i*>(&front_order[which]));
+    const __m256i moved = _mm256_permutevar8x32_epi32(reinterpret_cast<__m256i>(with_sign), order);
+    std::memcpy(&tail[count], &moved, sizeof moved);
+    const std::uint64_t owners = front_lanes[which] + from * 0x0001000100010001U;
+    std::memcpy(&owner[count], &owners, sizeof owners);
+    count += static_cast<std::size_t>(std::popcount(which));
+#else
+    for (int lane = 0; lane < 4; ++lane) {
       tail[count] = with_sign[lane];
       owner[count] = static_cast<std::uint16_t>(from + static_cast<std::size_t>(lane));
-      count += outside[lane] ? 1U : 0U;
+      count += outside[lane] != 0 ? 1U : 0U;
+    }
+#endif
+  }
+
+  /// Notes the lanes outside the middle; `from`: eight times the spread's place. No branch: four lanes are written
+  /// each time, those outside first, and the rest is written over.
+  HEADBAND_INLINE void note(const Tails<8>& t, std::size_t from) {
+    const Mask<8> outside = abs(t.middle) > central_half_width;
+    const Lanes<8> least = min(t.below, t.above);
+    for (std::size_t part = 0; part < 2; ++part) {
+      const Quad with_sign = reinterpret_cast<Quad>(reinterpret_cast<QuadBits>(least.part[part]) |
+                                                    (reinterpret_cast<QuadBits>(t.middle.part[part]) & INT64_MIN));
+      note_four(outside.part[part], with_sign, from + 4 * part);
     }
   }
 

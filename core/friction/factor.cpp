@@ -207,24 +207,19 @@ void prepare_lane(PreparedRule<W>& p, FrictionLaw law, const Transition& transit
   p.from.set(lane, transition.from);
   p.to.set(lane, step ? transition.from : transition.to);
   p.one_over_span.set(lane, step ? 0.0 : 1.0 / (transition.to - transition.from));
-  if (law == FrictionLaw::smooth) {
-    p.rough_by_reynolds.set(lane, 0.0);
-    p.root_constant.set(lane, prandtl_constant);
-  }
+  if (law == FrictionLaw::smooth) p.root_constant.set(lane, prandtl_constant);
 }
 
 /// The same for every lane at once, from a rule of one lane.
 template <int W>
 void prepare_all(PreparedRule<W>& p, FrictionLaw law, const Transition& transition) {
   PreparedRule<1> one;
-  one.rough_by_reynolds = Lanes<1>(1.0);
   one.root_constant = Lanes<1>(colebrook_constant);
   prepare_lane<1>(one, law, transition, 0);
   p.from = Lanes<W>(one.from.number);
   p.to = Lanes<W>(one.to.number);
   p.one_over_span = Lanes<W>(one.one_over_span.number);
   p.root_constant = Lanes<W>(one.root_constant.number);
-  if (law == FrictionLaw::smooth) p.rough_by_reynolds = Lanes<W>(0.0);
   const auto everywhere = [](bool on) { return Lanes<W>(on ? 1.0 : 0.0) > Lanes<W>(0.5); };
   p.sudden = everywhere(one.sudden[0]);
   p.churchill = everywhere(one.churchill[0]);
@@ -235,15 +230,27 @@ void prepare_all(PreparedRule<W>& p, FrictionLaw law, const Transition& transiti
 }  // namespace
 
 template <int W>
+void refresh(PreparedRule<W>& p,
+             const Lanes<W>& relative_roughness,
+             const Lanes<W>& scatter,
+             const Lanes<W>& laminar_scatter) {
+  p.relative_roughness = relative_roughness;
+  p.scatter = scatter;
+  p.laminar_scatter = laminar_scatter;
+  p.rough_by_reynolds = relative_roughness * colebrook_rough;
+  if ((p.laws_present & bit(FrictionLaw::smooth)) != 0) {
+    for (int lane = 0; lane < W; ++lane)
+      if (p.laws[static_cast<std::size_t>(lane)] == FrictionLaw::smooth) p.rough_by_reynolds.set(lane, 0.0);
+  }
+  if ((p.laws_present & bit(FrictionLaw::haaland)) != 0) p.rough_term = base::pow(relative_roughness / 3.7, 1.11);
+}
+
+template <int W>
 PreparedRule<W> prepare(const FactorRule<W>& rule) {
   PreparedRule<W> p;
   p.law = rule.law[0];
   p.kind = rule.transition[0].kind;
   p.laws = rule.law;
-  p.relative_roughness = rule.relative_roughness;
-  p.scatter = rule.scatter;
-  p.laminar_scatter = rule.laminar_scatter;
-  p.rough_by_reynolds = rule.relative_roughness * colebrook_rough;
   p.root_constant = Lanes<W>(colebrook_constant);
   bool alike = true;
   for (std::size_t lane = 0; lane < static_cast<std::size_t>(W); ++lane) {
@@ -259,7 +266,7 @@ PreparedRule<W> prepare(const FactorRule<W>& rule) {
   }
   p.root_kept = (p.laws_present & root_laws) != 0;
   p.rough_term = Lanes<W>(0.0);
-  if ((p.laws_present & bit(FrictionLaw::haaland)) != 0) p.rough_term = base::pow(rule.relative_roughness / 3.7, 1.11);
+  refresh<W>(p, rule.relative_roughness, rule.scatter, rule.laminar_scatter);
   return p;
 }
 
@@ -278,6 +285,8 @@ Factor<W> darcy_factor_near(const PreparedRule<W>& rule, const Lanes<W>& reynold
   return evaluate<W>(rule, reynolds, OlderRoot<W>{root, {}});
 }
 
+template void refresh<1>(PreparedRule<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
+template void refresh<8>(PreparedRule<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
 template PreparedRule<1> prepare<1>(const FactorRule<1>&);
 template PreparedRule<8> prepare<8>(const FactorRule<8>&);
 template Factor<1> darcy_factor<1>(const PreparedRule<1>&, const Lanes<1>&);

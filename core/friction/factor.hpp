@@ -50,6 +50,13 @@ struct PreparedRule {
 template <int W>
 [[nodiscard]] PreparedRule<W> prepare(const FactorRule<W>& rule);
 
+/// Gives a prepared rule the numbers of other draws whose laws and transitions are the same: the bits of `prepare`.
+template <int W>
+void refresh(PreparedRule<W>& prepared,
+             const Lanes<W>& relative_roughness,
+             const Lanes<W>& scatter,
+             const Lanes<W>& laminar_scatter);
+
 /// Darcy factor f(Re) with laminar part, transition and scatter (conventions k and l of the case file).
 /// `sudden`: laminar below its Reynolds number, turbulent from it on. Churchill's joint is used with any law; the law
 /// `churchill` is the paper's full formula under every transition. `none`: factor 0. Hazen-Williams and Manning have no
@@ -73,6 +80,8 @@ template <int W>
 
 extern template PreparedRule<1> prepare<1>(const FactorRule<1>&);
 extern template PreparedRule<8> prepare<8>(const FactorRule<8>&);
+extern template void refresh<1>(PreparedRule<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
+extern template void refresh<8>(PreparedRule<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
 extern template Factor<1> darcy_factor<1>(const FactorRule<1>&, const Lanes<1>&);
 extern template Factor<8> darcy_factor<8>(const FactorRule<8>&, const Lanes<8>&);
 extern template Factor<1> darcy_factor<1>(const PreparedRule<1>&, const Lanes<1>&);

@@ -234,7 +234,7 @@ bool varies_in_rows(const Table& rows) {
 
 }  // namespace
 
-Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan), spreads_(c.unknowns.size()) {
+Realiser::Realiser(const Case& c, const Plan& plan, bool waves) : case_(&c), plan_(&plan), spreads_(c.unknowns.size()) {
   for_each_quantity(c, [this](const Quantity& q) {
     if (q.unknown >= 0) spreads_[static_cast<std::size_t>(q.unknown)] = base::ready_spread(q.spread, q.cut, q.value);
   });
@@ -252,8 +252,9 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan), s
     changes.geometry = varies(p.length, p.outside, p.wall, p.bore) || lining || profile;
     changes.rating = varies(p.rating) || (site_ && p.rating.given() && !p.rating.gauge);
     changes.wave =
-        changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
-        varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed, p.wave_speed_scatter);
+        waves &&
+        (changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
+         varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed, p.wave_speed_scatter));
     changes.friction = varies(p.roughness,
                               p.hazen_williams,
                               p.manning,
@@ -265,7 +266,7 @@ Realiser::Realiser(const Case& c, const Plan& plan) : case_(&c), plan_(&plan), s
       changes.friction = changes.friction || varies(c.friction.pipe_scatter[pipes_.size()]);
     for (const auto& f : p.fittings)
       changes.fittings = changes.fittings || varies(f.count, f.k, f.equivalent_length, f.at);
-    changes.profile = changes.geometry;
+    changes.profile = varies(p.length) || profile;
     pipes_.push_back(changes);
   }
   places_ = any_profile;

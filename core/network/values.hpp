@@ -127,7 +127,8 @@ using Scores = std::vector<Lanes<W>>;
 /// Shared between threads; the case and the plan must outlive it.
 class Realiser {
  public:
-  Realiser(const Case& c, const Plan& plan);
+  /// @param waves false: steady answers alone are asked, and what only a wave speed needs stays the central run's
+  Realiser(const Case& c, const Plan& plan, bool waves = true);
 
   /// The central run with its storage: where every Values handed to `draw` must come from.
   template <int W>

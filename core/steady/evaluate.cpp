@@ -206,11 +206,13 @@ VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>&
   check.shortfall = 0.0;
   const Lanes<W> vapour_head =
       (values.liquid.vapour_pressure - values.atmosphere) / (values.liquid.density * values.gravity);
+  if (!base::any(vapour_head == vapour_head)) return check;  // no vapour pressure is known
   for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe)
     for_each_point(
         plan, values, state, pipe, [&](const Lanes<W>& chainage, const Lanes<W>& head, const Lanes<W>& elevation) {
           const Lanes<W> shortfall = elevation + vapour_head - head;
           const base::Mask<W> deeper = shortfall > check.shortfall;  // false without a vapour pressure
+          if (!base::any(deeper)) return;
           for (int lane = 0; lane < W; ++lane)
             if (deeper[lane]) check.pipe[static_cast<std::size_t>(lane)] = static_cast<int>(pipe);
           check.chainage = base::select(deeper, chainage, check.chainage);

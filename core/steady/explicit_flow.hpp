@@ -35,8 +35,8 @@ template <int W>
 template <int W>
 void solve_explicit(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W>& flows) {
   const Lanes<W> zero(0.0);
-  flows.flow.resize(graph.links.size());
-  flows.losses.resize(numbers.pipes.size());
+  if (flows.flow.size() != graph.links.size()) flows.flow.resize(graph.links.size());
+  if (flows.losses.size() != numbers.pipes.size()) flows.losses.resize(numbers.pipes.size());
   flows.possible = zero == zero;
   for (auto step = graph.steps.rbegin(); step != graph.steps.rend(); ++step) {
     const Link& link = graph.links[static_cast<std::size_t>(step->link)];

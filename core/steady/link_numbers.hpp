@@ -24,10 +24,14 @@ struct LinkNumbers {
   std::vector<Lanes<W>> node_head;            ///< per node of the graph: held heads filled, others unset [m]
   std::vector<Lanes<W>> outflow;              ///< per node: known flows out of the network of links [m3/s]
 
+  /// Makes room for the numbers; once per solver.
+  void size(const network::Values<W>& values, const FlowGraph& graph);
+  /// @param one_law no draw changes friction law or transition: what hangs on them is kept from the last time
   void fill(const network::Case& c,
             const network::Plan& plan,
             const FlowGraph& graph,
-            const network::Values<W>& values);
+            const network::Values<W>& values,
+            bool one_law);
 };
 
 /// Flow of a known flow, in the direction of its device [m3/s].
@@ -39,33 +43,45 @@ template <int W>
 }
 
 template <int W>
+void LinkNumbers<W>::size(const network::Values<W>& values, const FlowGraph& graph) {
+  pipes.resize(values.pipes.size());
+  area.resize(values.pipes.size());
+  valve_share.resize(values.valves.size());
+  valve_resistance.resize(values.valves.size());
+  check_resistance.resize(values.check_valves.size());
+  curves.resize(values.pumps.size());
+  pump_count.resize(values.pumps.size());
+  last_curve_flow.resize(values.pumps.size());
+  node_head.resize(static_cast<std::size_t>(graph.nodes()));
+  outflow.resize(static_cast<std::size_t>(graph.nodes()));
+}
+
+template <int W>
 void LinkNumbers<W>::fill(const network::Case& c,
                           const network::Plan& plan,
                           const FlowGraph& graph,
-                          const network::Values<W>& values) {
-  pipes.resize(values.pipes.size());
-  area.resize(values.pipes.size());
+                          const network::Values<W>& values,
+                          bool one_law) {
+  const bool made_before = outflow.size() == static_cast<std::size_t>(graph.nodes());
+  if (!made_before) size(values, graph);
   for (std::size_t i = 0; i < pipes.size(); ++i) {
-    pipes[i] = pipe_friction(plan, values, i);
+    const auto& rule = pipes[i].rule;
+    const bool kept =
+        one_law && made_before && rule.law[0] == values.law[0] && rule.transition[0] == values.transition[0];
+    renew_pipe_friction(plan, values, i, kept, pipes[i]);
     area[i] = values.pipes[i].area;
   }
 
-  valve_share.resize(values.valves.size());
-  valve_resistance.resize(values.valves.size());
   for (std::size_t i = 0; i < values.valves.size(); ++i) {
     const network::ValveValues<W>& valve = values.valves[i];
     valve_share[i] = network::share_of_full<W>(c.valves[i].law, valve.starting_opening, valve.seat_power);
     const Lanes<W> coefficient = valve.coefficient * valve_share[i];
     valve_resistance[i] = 1.0 / (coefficient * coefficient);
   }
-  check_resistance.resize(values.check_valves.size());
   for (std::size_t i = 0; i < check_resistance.size(); ++i) {
     const Lanes<W> coefficient = values.check_valves[i].coefficient;
     check_resistance[i] = 1.0 / (coefficient * coefficient);
   }
-  curves.resize(values.pumps.size());
-  pump_count.resize(values.pumps.size());
-  last_curve_flow.resize(values.pumps.size());
   for (std::size_t i = 0; i < curves.size(); ++i) {
     const network::PumpValues<W>& pump = values.pumps[i];
     pump_count[i] = static_cast<double>(c.pumps[i].count);
@@ -83,8 +99,7 @@ void LinkNumbers<W>::fill(const network::Case& c,
     last_curve_flow[i] = pump.curve_flow.back();
   }
 
-  node_head.resize(static_cast<std::size_t>(graph.nodes()));
-  outflow.assign(static_cast<std::size_t>(graph.nodes()), Lanes<W>(0.0));
+  for (auto& flow : outflow) flow = 0.0;
   for (std::size_t n = 0; n < values.places.size(); ++n) node_head[n] = values.places[n].held_head;
   for (std::size_t a = 0; a < graph.air_of_node.size(); ++a)
     node_head[values.places.size() + a] = values.places[static_cast<std::size_t>(graph.air_of_node[a])].elevation;

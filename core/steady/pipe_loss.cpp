@@ -7,27 +7,39 @@
 
 namespace headband::steady {
 template <int W>
-PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W>& values, std::size_t index) {
+void renew_pipe_friction(const network::Plan& plan,
+                         const network::Values<W>& values,
+                         std::size_t index,
+                         bool laws_kept,
+                         PipeFriction<W>& out) {
   const network::PipeValues<W>& pipe = values.pipes[index];
-  PipeFriction<W> out;
   out.kind = plan.pipes[index].loss;
-  out.reynolds_per_flow = pipe.bore / (pipe.area * values.liquid.kinematic_viscosity);
-  out.velocity_head = 1.0 / (2.0 * values.gravity * pipe.area * pipe.area);
+  // two quotients for four: bore / (area viscosity), 1 / (2 g area^2), and two by the bore
+  const Lanes<W> slow = pipe.area * values.liquid.kinematic_viscosity;
+  const Lanes<W> quick = 2.0 * values.gravity * pipe.area * pipe.area;
+  const Lanes<W> both = 1.0 / (slow * quick);
+  out.reynolds_per_flow = pipe.bore * (quick * both);
+  out.velocity_head = slow * both;
+  const Lanes<W> per_bore = 1.0 / pipe.bore;
   out.k = pipe.spread_k;
   Lanes<W> length = pipe.length + pipe.spread_equivalent_length;
   for (const auto& fitting : pipe.placed_fittings) {
     out.k += fitting.k;
     length += fitting.equivalent_length;
   }
-  out.diameters = length / pipe.bore;
+  out.diameters = length * per_bore;
   switch (out.kind) {
     case network::LossKind::darcy:
-      out.rule.law = values.law;
-      out.rule.transition = values.transition;
-      out.rule.relative_roughness = pipe.roughness / pipe.bore;
+      out.rule.relative_roughness = pipe.roughness * per_bore;
       out.rule.scatter = pipe.friction_scatter;
       out.rule.laminar_scatter = pipe.laminar_scatter;
-      out.prepared = friction::prepare(out.rule);
+      if (laws_kept) {
+        friction::refresh(out.prepared, out.rule.relative_roughness, out.rule.scatter, out.rule.laminar_scatter);
+      } else {
+        out.rule.law = values.law;
+        out.rule.transition = values.transition;
+        out.prepared = friction::prepare(out.rule);
+      }
       break;
     case network::LossKind::hazen_williams:
       // f = h 2 g D A^2 / (L Q^2) at Q = 1
@@ -47,6 +59,12 @@ PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W
     case network::LossKind::none:
       break;
   }
+}
+
+template <int W>
+PipeFriction<W> pipe_friction(const network::Plan& plan, const network::Values<W>& values, std::size_t index) {
+  PipeFriction<W> out;
+  renew_pipe_friction<W>(plan, values, index, false, out);
   return out;
 }
 
@@ -69,9 +87,10 @@ friction::Factor<W> factor_at_flow(const PipeFriction<W>& pipe, const Lanes<W>& 
 template <int W>
 PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
   const Lanes<W> size = base::abs(flow);
-  const Lanes<W> least = Lanes<W>(least_reynolds) / pipe.reynolds_per_flow;
-  const base::Mask<W> moving = size > least;
-  const Lanes<W> effective = base::select(moving, size, least);
+  const Lanes<W> reynolds = pipe.reynolds_per_flow * size;
+  const base::Mask<W> moving = reynolds > Lanes<W>(least_reynolds);
+  Lanes<W> effective = size;
+  if (!base::all(moving)) effective = base::select(moving, size, Lanes<W>(least_reynolds) / pipe.reynolds_per_flow);
   const friction::Factor<W> factor = factor_at_flow(pipe, effective);
   const Lanes<W> head_per_velocity_head = pipe.velocity_head * effective;
   const Lanes<W> friction_part = factor.factor * pipe.diameters * head_per_velocity_head;  // head per flow [s/m2]
@@ -82,12 +101,16 @@ PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
   loss.slope =
       base::select(moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part, friction_part + fitting_part);
   loss.factor = factor.factor;
-  loss.reynolds = pipe.reynolds_per_flow * size;
+  loss.reynolds = reynolds;
   return loss;
 }
 
 template PipeFriction<1> pipe_friction<1>(const network::Plan&, const network::Values<1>&, std::size_t);
 template PipeFriction<8> pipe_friction<8>(const network::Plan&, const network::Values<8>&, std::size_t);
+template void renew_pipe_friction<1>(
+    const network::Plan&, const network::Values<1>&, std::size_t, bool, PipeFriction<1>&);
+template void renew_pipe_friction<8>(
+    const network::Plan&, const network::Values<8>&, std::size_t, bool, PipeFriction<8>&);
 template friction::Factor<1> factor_at_flow<1>(const PipeFriction<1>&, const Lanes<1>&);
 template friction::Factor<8> factor_at_flow<8>(const PipeFriction<8>&, const Lanes<8>&);
 template PipeLoss<1> pipe_loss<1>(const PipeFriction<1>&, const Lanes<1>&);

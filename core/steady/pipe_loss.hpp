@@ -28,6 +28,15 @@ template <int W>
                                             const network::Values<W>& values,
                                             std::size_t index);
 
+/// The same in place of the numbers of other draws. @param laws_kept `out` was made for this pipe, and the laws and
+/// transitions of all its draws are still those
+template <int W>
+void renew_pipe_friction(const network::Plan& plan,
+                         const network::Values<W>& values,
+                         std::size_t index,
+                         bool laws_kept,
+                         PipeFriction<W>& out);
+
 /// Darcy factor (scatter included) and d ln f / d ln Q at a flow.
 ///
 /// Hazen-Williams h = 10.67 L Q^1.852 / (C^1.852 D^4.8704) and Manning h = n^2 V^2 L / (D/4)^(4/3), both SI, are told
@@ -54,6 +63,10 @@ template <int W>
 
 extern template PipeFriction<1> pipe_friction<1>(const network::Plan&, const network::Values<1>&, std::size_t);
 extern template PipeFriction<8> pipe_friction<8>(const network::Plan&, const network::Values<8>&, std::size_t);
+extern template void renew_pipe_friction<1>(
+    const network::Plan&, const network::Values<1>&, std::size_t, bool, PipeFriction<1>&);
+extern template void renew_pipe_friction<8>(
+    const network::Plan&, const network::Values<8>&, std::size_t, bool, PipeFriction<8>&);
 extern template friction::Factor<1> factor_at_flow<1>(const PipeFriction<1>&, const Lanes<1>&);
 extern template friction::Factor<8> factor_at_flow<8>(const PipeFriction<8>&, const Lanes<8>&);
 extern template PipeLoss<1> pipe_loss<1>(const PipeFriction<1>&, const Lanes<1>&);

@@ -50,6 +50,7 @@ struct SteadySolver::Parts {
   Parts(const network::Case& c, const network::Plan& plan, SteadyOptions chosen)
       : model(&c), topology(&plan), options(chosen), graph(make_flow_graph(c, plan)) {
     gas_possible = c.liquid.free_gas.given() && (c.liquid.free_gas.unknown >= 0 || c.liquid.free_gas.value > 0.0);
+    one_law = c.friction.law.unknown < 0 && c.friction.transition.unknown < 0;
     if (!graph.is_tree_each) newton.emplace(graph);
   }
 
@@ -59,6 +60,7 @@ struct SteadySolver::Parts {
   FlowGraph graph;
   std::optional<NewtonFlow> newton;  ///< where continuity alone does not fix the flows
   bool gas_possible = false;
+  bool one_law = false;  ///< no draw changes law or transition
   std::tuple<Workspace<1>, Workspace<8>> workspaces;
 
   template <int W>
@@ -68,16 +70,22 @@ struct SteadySolver::Parts {
 
   template <int W>
   void size_state(SteadyState<W>& state) const {
-    const std::size_t pipes = topology->pipes.size();
-    state.pipe_flow.resize(pipes);
-    state.friction_factor.resize(pipes);
-    state.reynolds.resize(pipes);
-    state.head_loss.resize(pipes);
-    state.wave_speed.resize(pipes);
-    state.place_head.resize(topology->places.size());
-    state.device_flow.assign(topology->devices.size(), Lanes<W>(0.0));
-    state.valve_coefficient.resize(model->valves.size());
-    state.pump_speed.resize(model->pumps.size());
+    const std::size_t pipes = topology->pipes.size(), devices = topology->devices.size();
+    const bool sized = state.pipe_flow.size() == pipes && state.place_head.size() == topology->places.size() &&
+                       state.device_flow.size() == devices && state.pump_speed.size() == model->pumps.size() &&
+                       state.valve_coefficient.size() == model->valves.size();
+    if (!sized) {
+      state.pipe_flow.resize(pipes);
+      state.friction_factor.resize(pipes);
+      state.reynolds.resize(pipes);
+      state.head_loss.resize(pipes);
+      state.wave_speed.resize(pipes);
+      state.place_head.resize(topology->places.size());
+      state.device_flow.resize(devices);
+      state.valve_coefficient.resize(model->valves.size());
+      state.pump_speed.resize(model->pumps.size());
+    }
+    for (auto& flow : state.device_flow) flow = 0.0;
     state.status.fill(SteadyStatus::converged);
     state.residual = 0.0;
     state.iterations = 0;
@@ -89,6 +97,7 @@ struct SteadySolver::Parts {
     Workspace<W>& work = workspace<W>();
     if (!newton) {
       solve_explicit(graph, work.numbers, work.flows);
+      if (base::all(work.flows.possible)) return;
       for (int lane = 0; lane < W; ++lane)
         if (!work.flows.possible[lane]) set_status(state, lane, SteadyStatus::not_converged);
       return;
@@ -107,6 +116,7 @@ struct SteadySolver::Parts {
   /// A pipe on the jump of its law loses what the heads at its ends say, between both sides of the jump.
   template <int W>
   void tell_losses_on_jumps(SteadyState<W>& state) {
+    if (!newton) return;  // where continuity gives the flow, it decides the side of the jump
     const Workspace<W>& work = workspace<W>();
     for (int lane = 0; lane < W; ++lane) {
       if (state.status[static_cast<std::size_t>(lane)] != SteadyStatus::on_jump) continue;
@@ -207,6 +217,7 @@ struct SteadySolver::Parts {
     for (const auto& flow : state.pipe_flow) sum += flow * 0.0;
     for (const auto& flow : state.device_flow) sum += flow * 0.0;
     const base::Mask<W> finite = sum == Lanes<W>(0.0);
+    if (base::all(finite)) return;
     for (int lane = 0; lane < W; ++lane)
       if (!finite[lane]) state.status[static_cast<std::size_t>(lane)] = SteadyStatus::not_finite;
   }
@@ -226,7 +237,7 @@ template <int W>
 void SteadySolver::solve(const network::Values<W>& values, SteadyState<W>& state) {
   Workspace<W>& work = parts_->workspace<W>();
   parts_->size_state(state);
-  work.numbers.fill(*parts_->model, *parts_->topology, parts_->graph, values);
+  work.numbers.fill(*parts_->model, *parts_->topology, parts_->graph, values, parts_->one_law);
   parts_->solve_flows(state);
   parts_->copy_flows(values, state);
   parts_->tell_losses_on_jumps(state);

@@ -17,7 +17,7 @@ class PipelineModel {
       : case_(&c),
         plan_(&plan),
         answers_(answers_computed(c, plan, surge)),
-        realiser_(c, plan),
+        realiser_(c, plan, surge),
         solver_(c, plan),
         values_(realiser_.prepare<8>()) {
     if (surge) marcher_.emplace(c, plan, history_times);
@@ -66,13 +66,14 @@ class PipelineModel {
 
   [[nodiscard]] base::PerLane<std::int8_t, 8> statuses() const {
     base::PerLane<std::int8_t, 8> status{};
-    const bool vapour = case_->surge.cavities != network::Cavities::off;
-    std::optional<steady::VapourCheck<8>> below;
-    if (vapour) below = steady::check_vapour<8>(*plan_, values_, state_);
     for (std::size_t lane = 0; lane < 8; ++lane) {
-      const bool usable = steady::is_usable(state_.status[lane]) && !(below && below->pipe[lane] >= 0);
-      status[lane] = usable ? 0 : (state_.status[lane] == steady::SteadyStatus::not_finite ? 2 : 1);
+      const auto steady = state_.status[lane];
+      if (!steady::is_usable(steady)) status[lane] = steady == steady::SteadyStatus::not_finite ? 2 : 1;
     }
+    if (case_->surge.cavities == network::Cavities::off) return status;
+    const steady::VapourCheck<8> below = steady::check_vapour<8>(*plan_, values_, state_);
+    for (std::size_t lane = 0; lane < 8; ++lane)
+      if (below.pipe[lane] >= 0 && status[lane] == 0) status[lane] = 1;
     return status;
   }
 

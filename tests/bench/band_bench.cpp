@@ -1,8 +1,10 @@
 // SPDX-License-Identifier: MIT
 //
 // Bands: a million sampled pressure drops from draws to quantiles, product and plain loop in one run; and what the
-// design is worth: errors of mean and upper quantile of a peak head, scrambled Sobol' against plain draws.
+// design is worth: errors of mean and upper quantile of a peak head, scrambled Sobol' against plain draws; and three
+// order statistics of ten million numbers against the library's ways.
 //   bench_band --benchmark_filter=line --benchmark_repetitions=7 --benchmark_report_aggregates_only=true
+#include "montecarlo/bands/ranked.hpp"
 #include "montecarlo/propagate/band.hpp"
 #include "tests/support/case_builder.hpp"
 
@@ -13,6 +15,7 @@
 #include <cmath>
 #include <random>
 #include <string>
+#include <vector>
 
 namespace {
 
@@ -122,6 +125,76 @@ BENCHMARK(line_product)
     ->Arg(4000000)
     ->MeasureProcessCPUTime()
     ->Unit(benchmark::kMillisecond);
+
+/// Ten million numbers of which the exact 2.5, 50 and 97.5 % order statistics are asked.
+const std::vector<double>& many_numbers() {
+  static const std::vector<double> numbers = [] {
+    std::mt19937_64 bits(3);
+    std::normal_distribution<double> z(0.0, 1.0);
+    std::vector<double> x(10000000);
+    for (double& v : x) v = 278500.0 * std::exp(0.06 * z(bits));
+    return x;
+  }();
+  return numbers;
+}
+
+std::array<std::size_t, 3> asked_ranks(std::size_t n) {
+  const auto last = static_cast<double>(n - 1);
+  return {static_cast<std::size_t>(0.025 * last), n / 2, static_cast<std::size_t>(0.975 * last)};
+}
+
+std::array<double, 3> ranks_by_nth_element(std::vector<double>& x) {
+  const auto [low, middle, high] = asked_ranks(x.size());
+  const auto at = [&](std::size_t rank) { return x.begin() + static_cast<std::ptrdiff_t>(rank); };
+  std::nth_element(x.begin(), at(middle), x.end());
+  std::nth_element(x.begin(), at(low), at(middle));
+  std::nth_element(at(middle) + 1, at(high), x.end());
+  return {x[low], x[middle], x[high]};
+}
+
+/// The plain ways spoil their column: it is renewed outside the clock.
+template <class Way>
+void rank_plainly(benchmark::State& state, const Way& way) {
+  std::vector<double> x;
+  std::array<double, 3> found{};
+  for (auto _ : state) {
+    state.PauseTiming();
+    x = many_numbers();
+    state.ResumeTiming();
+    found = way(x);
+  }
+  state.counters["check_median"] = found[1];
+  state.SetItemsProcessed(state.iterations() * static_cast<std::int64_t>(many_numbers().size()));
+}
+
+void ranks_nth_element(benchmark::State& state) { rank_plainly(state, ranks_by_nth_element); }
+BENCHMARK(ranks_nth_element)->Unit(benchmark::kMillisecond);
+
+void ranks_sort(benchmark::State& state) {
+  rank_plainly(state, [](std::vector<double>& x) {
+    std::sort(x.begin(), x.end());
+    const auto [low, middle, high] = asked_ranks(x.size());
+    return std::array{x[low], x[middle], x[high]};
+  });
+}
+BENCHMARK(ranks_sort)->Unit(benchmark::kMillisecond);
+
+void ranks_product(benchmark::State& state) {
+  std::vector<double> spoilt = many_numbers();
+  const auto truth = ranks_by_nth_element(spoilt);
+  const auto ranks = asked_ranks(spoilt.size());
+  std::array<double, 3> found{};
+  for (auto _ : state) {
+    const auto ranked = montecarlo::Ranked::of(many_numbers());
+    ranked.announce(
+        std::array{static_cast<double>(ranks[0]), static_cast<double>(ranks[1]), static_cast<double>(ranks[2])});
+    for (std::size_t k = 0; k < 3; ++k) found[k] = ranked.at(ranks[k]);
+  }
+  if (found != truth) state.SkipWithError("other order statistics than nth_element's");
+  state.counters["check_median"] = found[1];
+  state.SetItemsProcessed(state.iterations() * static_cast<std::int64_t>(spoilt.size()));
+}
+BENCHMARK(ranks_product)->Unit(benchmark::kMillisecond);
 
 /// The sampled closing valve of the surge benchmarks on 16 reaches.
 network::Case peak_case(network::Design design, std::uint64_t seed) {

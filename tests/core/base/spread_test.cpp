@@ -162,6 +162,45 @@ TEST(Spread, EightLanesGiveTheBitsOfOne) {
   }
 }
 
+/// The tails of many spreads are evaluated together: nothing of that may show, wherever the scores fall.
+TEST(Spread, ManyAtOnceGiveTheBitsOfOneByOne) {
+  std::mt19937_64 bits(6);
+  std::uniform_real_distribution<double> even(0.0, 1.0);
+  std::vector<Sample> all = samples();
+  all.push_back({"exact", Exact{}, {}, 2.5});
+  all.push_back({"lognormal cut", LogNormal{0.5}, {0.8, 2.0}, 1.0});
+  all.push_back({"negative lognormal cut", LogNormal{0.5}, {-2.0, -0.1}, -1.0});
+  all.push_back({"far tail", Normal{1.0}, {4.0, std::numeric_limits<double>::infinity()}, 0.0});
+  all.push_back({"cut that takes nothing", Normal{0.01}, {0.0, 9.0}, 1.0});
+  all.push_back({"triangle cut", Triangle{0.0, 4.0}, {0.5, 3.0}, 1.0});
+  all.push_back({"not random", NotRandom{1.0, 1.4}, {}, 1.2});
+  while (all.size() < 71) all.push_back(all[all.size() % 13]);  // more than are taken at a time
+  for (const std::size_t many : {std::size_t{1}, std::size_t{4}, std::size_t{32}, std::size_t{33}, all.size()}) {
+    std::vector<ReadySpread> ready;
+    for (std::size_t i = 0; i < many; ++i) ready.push_back(ready_spread(all[i].spread, all[i].cut, all[i].central));
+    for (int round = 0; round < 60; ++round) {
+      std::vector<Lanes<8>> scores(many), values(many);
+      for (auto& score : scores) {
+        for (int lane = 0; lane < 8; ++lane) {
+          const double u = even(bits);
+          // rounds of middles alone, tails alone, far tails, and scores as they come
+          const double tail = std::pow(u, 20.0) + 0x1p-53;
+          const double there[] = {0.1 + 0.8 * u, 0.074 * u + 1e-9, 1.0 - 0.074 * u - 1e-9, tail, 1.0 - tail, u};
+          score.set(lane, there[round % 6]);
+        }
+      }
+      quantiles(ready, scores, values);
+      for (std::size_t i = 0; i < many; ++i) {
+        for (int lane = 0; lane < 8; ++lane) {
+          ASSERT_EQ(std::bit_cast<std::uint64_t>(values[i][lane]),
+                    std::bit_cast<std::uint64_t>(at(all[i].spread, all[i].cut, all[i].central, scores[i][lane])))
+              << all[i].name << " at " << scores[i][lane];
+        }
+      }
+    }
+  }
+}
+
 TEST(Spread, ProbabilityUndoesQuantile) {
   std::vector<Sample> all = samples();
   all.push_back({"lognormal cut", LogNormal{0.5}, {0.8, 2.0}, 1.0});

@@ -5,7 +5,10 @@
 
 #include <algorithm>
 #include <cmath>
+#include <functional>
 #include <random>
+#include <utility>
+#include <vector>
 
 namespace headband::montecarlo {
 namespace {
@@ -33,6 +36,52 @@ TEST(Ranked, TiesAndConstantsAreFine) {
   const Ranked ranked(two);
   EXPECT_EQ(ranked.at(3999), 1.0);
   EXPECT_EQ(ranked.at(4000), 2.0);
+}
+
+/// Numbers held elsewhere are ranked where they stand: every rank of a sort, ties and all, whatever else is asked.
+TEST(Ranked, NumbersHeldElsewhereStayWhereTheyAre) {
+  std::mt19937_64 bits(2);
+  std::normal_distribution<double> normal;
+  const auto even = [&] { return std::uniform_real_distribution<double>(0.0, 1.0)(bits); };
+  using Make = std::function<double(std::size_t)>;
+  const std::vector<std::pair<const char*, Make>> kinds = {
+      {"normal", [&](std::size_t) { return normal(bits); }},
+      {"heavy tail", [&](std::size_t) { return std::pow(even() + 1e-9, -3.0); }},
+      {"few values", [&](std::size_t) { return std::floor(5.0 * even()); }},
+      {"one value and a few", [&](std::size_t i) { return i % 1000 == 7 ? normal(bits) : 1.0; }},
+      {"rising", [](std::size_t i) { return static_cast<double>(i); }},
+      {"two far groups", [&](std::size_t i) { return normal(bits) + (i % 2 == 0 ? 1e12 : -1e12); }},
+      {"tiny", [&](std::size_t) { return 1e-310 * even(); }},
+      {"all but over the range", [&](std::size_t i) { return i == 0   ? -1.7e308
+                                                             : i == 1 ? 1.7e308
+                                                                      : normal(bits); }},
+  };
+  for (const auto& [name, make] : kinds) {
+    for (const std::size_t n : {1U, 2U, 255U, 2048U, 2049U, 30011U}) {
+      std::vector<double> x(n);
+      for (std::size_t i = 0; i < n; ++i) x[i] = make(i);
+      const std::vector<double> before = x;
+      auto sorted = x;
+      std::sort(sorted.begin(), sorted.end());
+      const Ranked ranked = Ranked::of(x);
+      const Ranked told = Ranked::of(x, {sorted.front(), sorted.back()});
+      told.announce(std::vector{-1.0, 0.5 * static_cast<double>(n), static_cast<double>(n), std::nan("")});
+      for (std::size_t k = 0; k < n; k += 1 + n / 97) {
+        ASSERT_EQ(ranked.at(k), sorted[k]) << name << " " << n;
+        ASSERT_EQ(told.at(n - 1 - k), sorted[n - 1 - k]) << name << " " << n;
+      }
+      EXPECT_EQ(x, before);
+      std::size_t counted = 0;
+      for (const std::size_t many : ranked.bins().count) counted += many;
+      EXPECT_TRUE(counted == n || ranked.bins().count.empty());
+    }
+  }
+}
+
+TEST(Ranked, CanBeMoved) {
+  std::vector<Ranked> many;
+  for (int i = 0; i < 5; ++i) many.emplace_back(std::vector<double>(3000, i));  // the vector grows and moves them
+  for (int i = 0; i < 5; ++i) EXPECT_EQ(many[static_cast<std::size_t>(i)].at(1234), i);
 }
 
 TEST(Ranked, QuantilesAreStraightLines) {

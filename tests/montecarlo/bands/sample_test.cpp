@@ -48,6 +48,54 @@ TEST(Sample, FailedDrawsWidenBothEnds) {
   EXPECT_EQ(q.upper, 974.0);  // rank 964 with the failed above all: the 964th finished one is 974
 }
 
+/// A draw may be failed by its status, by its number, or both: the rest must say what it says alone.
+TEST(Sample, FailedDrawsAreLeftOutOfEverything) {
+  for (const int n : {3, 8, 9, 100, 5003}) {
+    std::vector<double> x = normals(n, 3), rest;
+    auto status = finished(static_cast<std::size_t>(n));
+    for (std::size_t i = 0; i < x.size(); ++i) {
+      if (i % 7 == 0) status[i] = 1;
+      if (i % 5 == 0) x[i] = std::nan("");
+      if (i % 7 != 0 && i % 5 != 0) rest.push_back(x[i]);
+    }
+    const Sample some(x, status, {}), alone(rest, finished(rest.size()), {});
+    EXPECT_EQ(some.finished(), alone.finished());
+    EXPECT_EQ(some.mean(), alone.mean());
+    EXPECT_EQ(some.standard_deviation(), alone.standard_deviation());
+    for (const double p : {0.01, 0.5, 0.975}) EXPECT_EQ(some.quantile(p).value, alone.quantile(p).value);
+    const Sample none(std::vector<double>(x.size(), std::nan("")), status, {});
+    EXPECT_EQ(none.finished(), 0);
+    EXPECT_TRUE(std::isnan(none.mean()));
+  }
+}
+
+/// Moments against sums in twice the precision, from few to many numbers, far from zero too.
+TEST(Sample, MomentsAreThoseOfTheNumbers) {
+  for (const double offset : {0.0, 1e9}) {
+    for (const int n : {1, 2, 7, 8, 9, 4099, 100000}) {
+      auto x = normals(n, 9);
+      for (double& v : x) v += offset;
+      long double sum = 0.0L, squares = 0.0L;
+      for (const double v : x) sum += v;
+      const long double mean = sum / n;
+      for (const double v : x) squares += (v - mean) * (v - mean);
+      const Sample s(x, finished(x.size()), {});
+      EXPECT_NEAR(s.mean(), static_cast<double>(mean), 1e-15 * (1.0 + offset));
+      if (n == 1) continue;
+      const double deviation = static_cast<double>(std::sqrt(squares / (n - 1)));
+      EXPECT_NEAR(s.standard_deviation() / deviation, 1.0, 1e-12) << n;
+    }
+  }
+  std::vector<double> far(1000, 1.0);  // the first number lies far from all others
+  for (std::size_t i = 0; i < far.size(); ++i) far[i] = 1.0 + 1e-3 * static_cast<double>(i % 2);
+  far[0] = 1e12;
+  long double sum = 0.0L, squares = 0.0L;
+  for (const double v : far) sum += v;
+  for (const double v : far) squares += (v - sum / 1000) * (v - sum / 1000);
+  const Sample s(far, finished(far.size()), {});
+  EXPECT_NEAR(s.standard_deviation() / static_cast<double>(std::sqrt(squares / 999)), 1.0, 1e-12);
+}
+
 TEST(Sample, TooFewDrawsLeaveAnEndOpen) {
   const Sample s(normals(20, 1), finished(20), {.confidence = 0.95});
   EXPECT_TRUE(std::isnan(s.quantile(0.025).lower));

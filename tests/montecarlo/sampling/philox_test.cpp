@@ -41,6 +41,12 @@ TEST(Philox, EightDrawsAreTheBitsOfOne) {
         for (int lane = 0; lane < 8; ++lane) {
           EXPECT_EQ(scores[lane], score_of_bits(philox_bits(seed, first + static_cast<std::uint64_t>(lane), name)));
         }
+        constexpr std::uint64_t stride = 0x30000001U;  // carries into the upper word
+        philox_scores(key, first, name, scores, stride);
+        for (int lane = 0; lane < 8; ++lane) {
+          const std::uint64_t draw = first + stride * static_cast<std::uint64_t>(lane);
+          EXPECT_EQ(scores[lane], score_of_bits(philox_bits(seed, draw, name)));
+        }
       }
     }
   }

@@ -85,6 +85,16 @@ TEST(Sampler, OneDrawHasTheBitsOfItsBlock) {
       EXPECT_EQ(one[4].number, 0.5);
       EXPECT_EQ(one[1].number, one[3].number);
     }
+    network::Scores<8> spaced;
+    for (const long long stride : {1LL, 3LL, 13LL}) {
+      for (long long first = 0; first < 100; first += 8 * stride) {
+        s.spaced(first, stride, spaced);
+        for (int lane = 0; lane < 8 && first + lane * stride < 100; ++lane) {
+          const auto draw = static_cast<std::size_t>(first + lane * stride);
+          for (std::size_t u = 0; u < 5; ++u) ASSERT_EQ(spaced[u][lane], all[u][draw]) << stride;
+        }
+      }
+    }
   }
 }
 
