@@ -9,6 +9,7 @@ namespace {
 
 constexpr double negligible = 1e-9;  // of the value
 constexpr double most_order = 2.5;
+constexpr double most_order_with_cavities = 1.0;
 constexpr double least_order = 0.5;
 
 double difference(double from, double to) {
@@ -20,17 +21,19 @@ double difference(double from, double to) {
 
 GridBound bound_from_two(double asked, double fine) { return {3.0 * std::fabs(difference(asked, fine)), true}; }
 
-GridBound bound_from_three(double asked, double fine, double finest, double swing) {
-  const double first = difference(asked, fine), last = difference(fine, finest);
-  const double whole = std::fabs(difference(asked, finest));
-  if (last == 0.0) return {whole, true};
-  if (first * last < 0.0) return {whole + 3.0 * std::fabs(last), true};
-  const double order = std::min(most_order, std::log2(std::fabs(first / last)));
-  if (!(order >= least_order)) {
-    const double larger = std::max(std::fabs(first), std::fabs(last));
-    if (larger <= small_share * swing) return {whole + 3.0 * larger, true};
+GridBound bound_from_three(const ThreeGrids& g) {
+  const double first = difference(g.asked, g.fine), last = difference(g.fine, g.finest);
+  const double whole = std::fabs(difference(g.asked, g.finest));
+  const double larger = std::max(std::fabs(first), std::fabs(last));
+  const bool opposite = first * last < 0.0;
+  if (last == 0.0 && !g.different_peaks) return {whole, true};
+  const double most = g.cavity_closed ? most_order_with_cavities : most_order;
+  const double order = std::min(most, std::log2(std::fabs(first / last)));
+  if (!opposite && !(order >= least_order) && larger > small_share * g.swing)
     return {std::numeric_limits<double>::quiet_NaN(), false};
-  }
+  if (g.different_peaks) return {whole + 3.0 * larger, true};
+  if (opposite) return {whole + 3.0 * std::fabs(last), true};
+  if (!(order >= least_order)) return {whole + 3.0 * larger, true};
   return {whole + 1.25 * std::fabs(last) / (std::exp2(order) - 1.0), true};
 }
 

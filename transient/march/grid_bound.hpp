@@ -18,10 +18,18 @@ struct GridBound {
 /// row they come and go with the place of the rows.
 inline constexpr double small_share = 1e-3;
 
-/// Three grids: |asked - finest| + 1.25 |last difference| / (2^p - 1), p the observed order, at most 2.5; differences
-/// of opposite sign: 3 |last difference| in its place; p < 0.5: not converging, but where both differences are small
-/// (see small_share) |asked - finest| + 3 times the larger one. Differences under 1e-9 of the value are 0.
-/// @param swing highest minus lowest value of the run, in the value's unit, >= 0
-[[nodiscard]] GridBound bound_from_three(double asked, double fine, double finest, double swing);
+/// What three grids say of one extreme.
+struct ThreeGrids {
+  double asked = 0.0, fine = 0.0, finest = 0.0;
+  double swing = 0.0;            ///< highest minus lowest value of the run, in the value's unit, >= 0
+  bool cavity_closed = false;    ///< the method is of first order there
+  bool different_peaks = false;  ///< the grids find the extreme at times that cannot be the same peak
+};
+
+/// Three grids: |asked - finest| + 1.25 |last difference| / (2^p - 1), p the observed order, at most 2.5, at most 1
+/// once a cavity closed; differences of opposite sign: 3 |last difference| in its place, of different peaks: 3 times
+/// the larger one; p < 0.5: not converging, but where both differences are small (see small_share) |asked - finest| + 3
+/// times the larger one. Differences under 1e-9 of the value are 0.
+[[nodiscard]] GridBound bound_from_three(const ThreeGrids& grids);
 
 }  // namespace headband::transient

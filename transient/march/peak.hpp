@@ -13,8 +13,9 @@ struct Peak {
   double time = 0.0;    ///< [s]
   long long step = 0;   ///< row; an instant's state counts to its own row
   double beside = 0.0;  ///< largest change between the row of the extreme and the rows beside it
-  double before_last = none, before = none, after = none, after_next = none;  ///< the two rows on either side
-  double timed = 0.0;                                                         ///< the value that `time` belongs to
+  double before_first = none, before_last = none, before = none;  ///< the three rows before
+  double after = none, after_next = none, after_last = none;      ///< the three rows behind
+  double timed = 0.0;                                             ///< the value that `time` belongs to
 
   void begin(double first) {
     *this = Peak{};
@@ -22,35 +23,43 @@ struct Peak {
   }
 
   /// The next row. @param sign +1 for the largest, -1 for the smallest
-  /// @param last the value of the row before @param earlier of the row before that
-  void take(double sign, double now, double last, double earlier, double at, long long row) {
+  /// @param last the value of the row before @param earlier, earliest of the two rows before that
+  void take(double sign, double now, double last, double earlier, double earliest, double at, long long row) {
     if (row == step + 1) {
       beside = std::fmax(beside, std::fabs(now - value));
       after = now;
     } else if (row == step + 2) {
       after_next = now;
+    } else if (row == step + 3) {
+      after_last = now;
     }
-    if (higher(sign, now)) *this = Peak{now, at, row, std::fabs(now - last), earlier, last, none, none, now};
+    if (higher(sign, now))
+      *this = Peak{now, at, row, std::fabs(now - last), earliest, earlier, last, none, none, none, now};
   }
   /// The state at 0+ of an instant at a row: its own jump is no change between rows.
   void take_instant(double sign, double now, double at, long long row) {
-    if (higher(sign, now)) *this = Peak{now, at, row, 0.0, none, none, none, none, now};
+    if (higher(sign, now)) *this = Peak{now, at, row, 0.0, none, none, none, none, none, none, now};
   }
 
-  /// How much higher (lower) the history may have stood between the rows, where it bends there: the straight lines
-  /// through the two rows before and the two rows behind meet above it. Exact for a bend between straight parts, of
-  /// second order in the step for a smooth top, zero for a bend on a row and for fronts (a side counts as straight when
-  /// it rises alike over two rows). >= 0
+  /// How much higher (lower) the history may have stood between the rows. >= 0
+  ///
+  /// A side is regular when it changes alike over two rows. Where the bend lies towards the other side, that one is
+  /// followed by its straight line if it is straight over the two rows beside: the lines meet, exact for a bend between
+  /// straight parts and zero for one on a row. Where it is not (a front, a cusp as at the end of a stroke by the square
+  /// root, a smooth top) the bend may lie anywhere up to the row beside: the regular side's change over one row.
   [[nodiscard]] double missed(double sign) const {
     double most = 0.0;
-    const double rise = value - before, rise_before = before - before_last;
-    const double fall = after - value, fall_next = after_next - after;
-    if (alike(rise, rise_before)) most = std::fmax(most, sign * (meeting(rise, value, after, fall_next) - value));
-    if (alike(fall, fall_next)) most = std::fmax(most, sign * (meeting(rise_before, before, value, fall) - value));
+    const double rise = value - before, fall = after - value;
+    if (alike(rise, before - before_last))
+      most = std::fmax(most, sign * above(rise, after, after_next - after, after_last - after_next));
+    if (alike(fall, after_next - after))
+      most = std::fmax(most, sign * above(-fall, before, before_last - before, before_first - before_last));
     return most;
   }
 
  private:
+  static constexpr double rounding = 1e-6;  // of a row: a bend this close to one is on it
+
   /// Whether `now` passes the extreme by more than rounding. What passes it by less is its value too, at its time: a
   /// line that stands still has its extremes at the start, not where the last bit falls.
   [[nodiscard]] bool higher(double sign, double now) {
@@ -62,36 +71,40 @@ struct Peak {
   [[nodiscard]] static bool alike(double change, double beside_it) {
     return change * beside_it > 0.0 && std::fabs(beside_it) >= 0.5 * std::fabs(change);
   }
-  /// Where the line of slope `rise` through (0, left) meets the line of slope `fall` through (1, right); NaN when not
-  /// between 0 and 1.
-  [[nodiscard]] static double meeting(double rise, double left, double right, double fall) {
-    const double x = (right - fall - left) / (rise - fall);
-    return x > 0.0 && x < 1.0 ? left + rise * x : none;
+  /// How far the regular side climbs on before it meets the other one. @param climb of the regular side over one row
+  /// @param next value of the row beyond the bend @param change, change_beyond over the two rows after that
+  [[nodiscard]] double above(double climb, double next, double change, double change_beyond) const {
+    if (std::isnan(next)) return 0.0;  // the history begins or ends here
+    const bool straight = std::fabs(change - change_beyond) <= 0.1 * std::fabs(change);
+    const double meeting = (next - change - value) / (climb - change);
+    if (!straight || meeting < -rounding || meeting > 1.0 + rounding) return climb;
+    return climb * std::fmin(std::fmax(meeting, 0.0), 1.0);
   }
 };
 
 /// Both ends of one history.
 struct Extremes {
   Peak high, low;
-  double first = 0.0;    ///< of the first steady state
-  double last = 0.0;     ///< value of the row before
-  double earlier = 0.0;  ///< of the row before that
+  double first = 0.0;                    ///< of the first steady state
+  double last = 0.0;                     ///< value of the row before
+  double earlier = 0.0, earliest = 0.0;  ///< of the two rows before that
 
   void begin(double value) {
     high.begin(value);
     low.begin(value);
-    first = last = earlier = value;
+    first = last = earlier = earliest = value;
   }
   void take(double now, double at, long long row) {
-    high.take(1.0, now, last, earlier, at, row);
-    low.take(-1.0, now, last, earlier, at, row);
+    high.take(1.0, now, last, earlier, earliest, at, row);
+    low.take(-1.0, now, last, earlier, earliest, at, row);
+    earliest = earlier;
     earlier = last;
     last = now;
   }
   void take_instant(double now, double at, long long row) {
     high.take_instant(1.0, now, at, row);
     low.take_instant(-1.0, now, at, row);
-    earlier = last = now;
+    earliest = earlier = last = now;
   }
 };
 

@@ -136,6 +136,9 @@ std::vector<double> bends(const March<1>& march) {
   return times;
 }
 
+/// Extremes of three grids further apart than this many asked steps are not one peak.
+constexpr double one_peak = 2.0;
+
 /// Bounds of the extremes from the runs on 1, 2 or 3 grids.
 class Bounds {
  public:
@@ -157,8 +160,14 @@ class Bounds {
       b = bound_from_two(a.value, fine.value);
       b.bound += fine.missed;
     } else if (finest_->finished()) {
-      const AnswerPeak finest = extreme(*finest_);
-      b = bound_from_three(a.value, extreme(*fine_).value, finest.value, swing_);
+      const AnswerPeak fine = extreme(*fine_), finest = extreme(*finest_);
+      const double apart = std::max({a.time, fine.time, finest.time}) - std::min({a.time, fine.time, finest.time});
+      b = bound_from_three({.asked = a.value,
+                            .fine = fine.value,
+                            .finest = finest.value,
+                            .swing = swing_,
+                            .cavity_closed = asked_->march.state().tally.closed[0],
+                            .different_peaks = apart > one_peak * asked_->grid.time_step});
       b.bound += finest.missed;
     } else {
       return {std::numeric_limits<double>::quiet_NaN(), false};

@@ -34,6 +34,21 @@ TEST(Peak, a_bend_on_a_row_and_a_plateau_hide_nothing) {
   EXPECT_NEAR(sampled([](double t) { return std::fmin(3.0 * t, 22.0); }).high.missed(1.0), 0.0, 1e-12);
 }
 
+TEST(Peak, behind_a_front_or_a_cusp_the_straight_side_may_reach_back_a_whole_row) {
+  // the history of a square-root closing law: a cusp, then straight down (and its mirror in time)
+  for (const double end : {7.05, 7.3, 7.6, 7.95}) {
+    const auto cusp = [&](double t) { return t < end ? -50.0 * std::sqrt(end - t) : -0.8 * (t - end); };
+    const Extremes e = sampled(cusp);
+    EXPECT_GE(e.high.value + e.high.missed(1.0), 0.0) << end;
+    EXPECT_LE(e.high.missed(1.0), 0.8 + 1e-12) << end;
+    const Extremes mirrored = sampled([&](double t) { return -cusp(14.5 - t); });
+    EXPECT_LE(mirrored.low.value - mirrored.low.missed(-1.0), 0.0) << end;
+    EXPECT_LE(mirrored.low.missed(-1.0), 0.8 + 1e-12) << end;
+    const auto front = [&](double t) { return t < end ? -90.0 : -0.8 * (t - end); };
+    EXPECT_GE(sampled(front).high.value + sampled(front).high.missed(1.0), 0.0) << end;
+  }
+}
+
 TEST(Peak, a_smooth_top_hides_a_second_order_amount) {
   const auto top = [](double scale) {
     return sampled([scale](double t) { return -std::pow(scale * (t - 10.3), 2); }).high.missed(1.0);
