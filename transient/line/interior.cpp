@@ -8,6 +8,8 @@
 namespace headband::transient {
 namespace {
 
+constexpr double cavity_rounding = 1e-12;  // of a volume
+
 // What leaves a row: towards `to` (on) and towards `from` (back).
 template <int W>
 struct Wave {
@@ -209,6 +211,10 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
 }
 
 // One row that may hold a cavity, after the flow `q` it has without one. Returns whether it holds one in some lane.
+//
+// The flows on either side differ by the growth of the volume, which is integrated by the trapezoid rule. A volume that
+// would be used up before the next row is filled by just the difference that uses it up: the head then stands between
+// the vapour limit and that of a row without cavity, and no volume is lost or made.
 template <int W, bool envelope>
 HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
                             int i,
@@ -229,18 +235,22 @@ HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
     const Lanes<W> from_row = (limit - back.head) / back.damp;
     const Lanes<W> was = rows.flow[i] - rows.flow_before[i];
     const Lanes<W> grows = from_row - to_row;
-    const Lanes<W> volume = rows.volume[i] + 0.5 * dt * (grows + was);
-    const auto shut = held & (volume <= zero);
-    const auto pinned = low | (held & !shut);
-    tally.reset = select(shut, tally.reset - volume, tally.reset);
-    tally.allowance = select(shut, tally.allowance + max(abs(was), abs(grows)) * dt, tally.allowance);
-    tally.closed = tally.closed | shut;
-    h = select(pinned, limit, h);
-    before = select(pinned, to_row, q);
-    q = select(pinned, from_row, q);
-    rows.volume[i] = select(pinned, max(volume, zero), zero);
-    tally.share = max(tally.share, rows.volume[i] * per_volume);
-    some = any(pinned);
+    // what is left if nothing grows from this row on; less than rounding is nothing
+    const Lanes<W> half = rows.volume[i] + 0.5 * dt * was;
+    const Lanes<W> left = select(half > cavity_rounding * rows.volume[i], half, zero);
+    const auto pinned = low | (held & (left + dt * grows > zero));
+    const auto closing = held & !pinned & (left > zero);
+    const Lanes<W> fills = -left / dt;
+    const Lanes<W> head = limit + (fills - grows) * (on.damp * back.damp / (on.damp + back.damp));
+    h = select(pinned, limit, select(closing, head, h));
+    before = select(pinned, to_row, select(closing, (on.head - head) / on.damp, q));
+    q = select(pinned, from_row, select(closing, (head - back.head) / back.damp, q));
+    const Lanes<W> volume = select(pinned, max(left + 0.5 * dt * grows, zero), select(closing, 0.5 * left, zero));
+    tally.allowance = select(closing, tally.allowance + max(abs(was), abs(grows)) * dt, tally.allowance);
+    tally.closed = tally.closed | closing;
+    rows.volume[i] = volume;
+    tally.share = max(tally.share, volume * per_volume);
+    some = any(volume > zero);
   }
   rows.flow_before[i] = before;
   keep_row<W, envelope>(rows, i, h, q);

@@ -7,11 +7,12 @@
 namespace headband::transient {
 namespace {
 
-constexpr int most_newton = 100;         // halving from any flow to 1e-12 of it takes 40
-constexpr double head_close = 1e-11;     // of 1 m + |head|
-constexpr double flow_close = 1e-13;     // of the largest flow
-constexpr double still_flow = 1e-9;      // [m3/s] added to that
-constexpr double no_pipe_gives = 1e-14;  // [m2/s] keeps a place between shut devices at its head
+constexpr int most_newton = 100;           // halving from any flow to 1e-12 of it takes 40
+constexpr double head_close = 1e-11;       // of 1 m + |head|
+constexpr double flow_close = 1e-13;       // of the largest flow
+constexpr double still_flow = 1e-9;        // [m3/s] added to that
+constexpr double cavity_rounding = 1e-12;  // of a volume
+constexpr double no_pipe_gives = 1e-14;    // [m2/s] keeps a place between shut devices at its head
 
 }  // namespace
 
@@ -86,7 +87,7 @@ void ClusterSolver::assemble() {
     }
     const double gives = p.gives > 0.0 ? p.gives : no_pipe_gives;
     entry(i, i) = -gives;
-    rest_[i] = -(p.waves - p.gives * p.head - outflow(i));
+    rest_[i] = -(p.waves - p.gives * p.head - outflow(i) - p.fills);
     for (std::size_t j = 0; j < branch_count; ++j) {
       if (branches[j].from == static_cast<int>(i)) entry(i, place_count + j) -= 1.0;
       if (branches[j].to == static_cast<int>(i)) entry(i, place_count + j) += 1.0;
@@ -180,13 +181,21 @@ bool ClusterSolver::settle_states() {
 }
 
 bool ClusterSolver::solve(double time_step) {
+  // what is left of a cavity if nothing grows from this row on; less than rounding is nothing
+  const auto left = [&](const ClusterPlace& p) {
+    const double rest = p.volume + 0.5 * time_step * p.growth;
+    return rest > cavity_rounding * p.volume ? rest : 0.0;
+  };
   for (std::size_t i = 0; i < place_count; ++i) {
     ClusterPlace& p = places[i];
-    p.pinned = p.volume > 0.0;
-    p.reset = p.allowance = 0.0;
+    p.pinned = left(p) > 0.0;
+    p.fills = p.allowance = 0.0;
     p.closed = false;
     if (p.pinned) p.head = p.vapour;
   }
+  const auto growth_at_vapour = [&](std::size_t i) {
+    return outflow(i) - (places[i].waves - places[i].gives * places[i].vapour);
+  };
   bool good = true;
   const std::size_t most_changes = 3 * (place_count + branch_count) + 4;
   for (std::size_t change = 0; change < most_changes; ++change) {
@@ -197,14 +206,13 @@ bool ClusterSolver::solve(double time_step) {
     }
     if (time_step <= 0.0) break;
     bool reopened = false;
-    for (std::size_t i = 0; i < place_count; ++i) {  // a cavity whose volume is used up gives its place free again
+    for (std::size_t i = 0; i < place_count; ++i) {  // a cavity used up before the next row is filled by just its rest
       ClusterPlace& p = places[i];
-      if (!p.pinned || p.closed || !(p.volume > 0.0)) continue;
-      const double growth = outflow(i) - (p.waves - p.gives * p.vapour);
-      const double volume = p.volume + 0.5 * time_step * (growth + p.growth);
-      if (volume > 0.0) continue;
+      if (!p.pinned || p.closed || !(left(p) > 0.0)) continue;
+      const double growth = growth_at_vapour(i);
+      if (left(p) + time_step * growth > 0.0) continue;
       p.closed = true;
-      p.reset = -volume;
+      p.fills = left(p) / time_step;
       p.allowance = std::max(std::abs(p.growth), std::abs(growth)) * time_step;
       p.pinned = false;
       reopened = true;
@@ -213,9 +221,8 @@ bool ClusterSolver::solve(double time_step) {
   }
   for (std::size_t i = 0; i < place_count; ++i) {
     ClusterPlace& p = places[i];
-    const double growth = p.pinned ? outflow(i) - (p.waves - p.gives * p.vapour) : 0.0;
-    if (time_step > 0.0)
-      p.volume = p.pinned && !p.closed ? std::max(0.0, p.volume + 0.5 * time_step * (growth + p.growth)) : 0.0;
+    const double growth = p.pinned ? growth_at_vapour(i) : -p.fills;
+    if (time_step > 0.0) p.volume = std::max(0.0, left(p) + 0.5 * time_step * growth);
     p.growth = growth;
   }
   for (std::size_t j = 0; j < branch_count; ++j) {

@@ -21,7 +21,7 @@ struct ClusterPlace {
   double growth = 0.0;                                       ///< of the cavity, outflow less inflow [m3/s]; in and out
   double head = 0.0;                                         ///< in: the guess; out [m]
   bool pinned = false;                                       ///< out: held at the vapour head
-  double reset = 0.0;                                        ///< out: negative volume set to zero [m3]
+  double fills = 0.0;                                        ///< flow that uses up the rest of a cavity [m3/s]
   double allowance = 0.0;                                    ///< out: |flow jump| dt of a closing [m3]
   bool closed = false;                                       ///< out: its cavity closed in this step
 };

@@ -464,12 +464,11 @@ void March<W>::store_lane(const Cluster& cluster, int lane, double time_step) {
     state_.place_growth[p].set(lane, in.growth);
     const auto& sides = layout_.sides_at[p];
     for (const int s : sides) {
-      const double flow = sides.size() == 1 && !in.pinned
+      const double flow = sides.size() == 1 && !in.pinned && !in.closed
                               ? branch_outflow(cluster.places[i])[lane] + draw_outflow(cluster.places[i])[lane]
                               : (state_.wave[at(s)].head[lane] - in.head) * state_.per_impedance[at(s)][lane];
       state_.side_flow[at(s)].set(lane, flow);
     }
-    state_.tally.reset.set(lane, state_.tally.reset[lane] + in.reset);
     state_.tally.allowance.set(lane, state_.tally.allowance[lane] + in.allowance);
     if (in.closed) state_.tally.closed.set(lane, true);
     const double share = in.volume * numbers_.place_volume_scale[p][lane];
