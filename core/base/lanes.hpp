@@ -3,14 +3,16 @@
 //
 // W numbers that travel together: one number each for W draws (or a plain double for W = 1).
 //
-// The same templates compute one run (W = 1) and a batch of eight draws (W = 8). Every operation here is the
-// same IEEE operation per lane for every W, and nothing is contracted (-ffp-contract=off), so a draw gives the
-// same bits alone and in a batch.
+// The same templates compute one run (W = 1) and a batch of eight draws (W = 8). W = 16 holds two rows of eight draws,
+// or sixteen rows of one run: long formulas wait for their own results, and two rows at once fill the waiting. Every
+// operation here is the same IEEE operation per lane for every W, and nothing is contracted (-ffp-contract=off), so a
+// draw gives the same bits alone and in a batch.
 
 #include <array>
 #include <cmath>
 #include <cstddef>
 #include <cstdint>
+#include <cstring>
 #if defined(__AVX__)
 #include <immintrin.h>
 #endif
@@ -29,10 +31,10 @@ using PerLane = std::array<T, static_cast<std::size_t>(W)>;
 typedef double Quad [[gnu::vector_size(32)]];
 typedef std::int64_t QuadBits [[gnu::vector_size(32)]];
 
-/// Outcome of a comparison, all ones = true. W is 1 or 8.
+/// Outcome of a comparison, all ones = true. W is 1, 8 or 16.
 template <int W>
 struct Mask {
-  static_assert(W == 8, "one draw or eight");
+  static_assert(W == 8 || W == 16, "one draw or eight, or two rows of eight");
   static constexpr int parts = W / 4;
   QuadBits part[static_cast<std::size_t>(parts)];
   [[nodiscard]] HEADBAND_INLINE bool operator[](int lane) const { return part[lane / 4][lane % 4] != 0; }
@@ -46,10 +48,10 @@ struct Mask<1> {
   HEADBAND_INLINE void set(int, bool on) { bit = on; }
 };
 
-/// W doubles, one per draw, in one cache line. Implicit from double (the same number in each lane).
+/// W doubles, one per draw, eight in one cache line. Implicit from double (the same number in each lane).
 template <int W>
 struct alignas(64) Lanes {
-  static_assert(W == 8, "one draw or eight");
+  static_assert(W == 8 || W == 16, "one draw or eight, or two rows of eight");
   static constexpr int parts = W / 4;
   Quad part[static_cast<std::size_t>(parts)];
   Lanes() = default;
@@ -57,16 +59,25 @@ struct alignas(64) Lanes {
   HEADBAND_INLINE Lanes(const Lanes& other) {
     part[0] = other.part[0];
     part[1] = other.part[1];
+    if constexpr (W == 16) {
+      part[2] = other.part[2];
+      part[3] = other.part[3];
+    }
   }
   HEADBAND_INLINE Lanes& operator=(const Lanes& other) {
     part[0] = other.part[0];
     part[1] = other.part[1];
+    if constexpr (W == 16) {
+      part[2] = other.part[2];
+      part[3] = other.part[3];
+    }
     return *this;
   }
   ~Lanes() = default;
   HEADBAND_INLINE Lanes(double x) {  // NOLINT(google-explicit-constructor)
     part[0] = Quad{x, x, x, x};
     part[1] = part[0];
+    if constexpr (W == 16) part[3] = part[2] = part[0];
   }
   [[nodiscard]] HEADBAND_INLINE double operator[](int lane) const { return part[lane / 4][lane % 4]; }
   HEADBAND_INLINE void set(int lane, double x) { part[lane / 4][lane % 4] = x; }
@@ -81,6 +92,51 @@ struct Lanes<1> {
   HEADBAND_INLINE void set(int, double x) { number = x; }
 };
 
+/// Eight numbers that stand one behind the other, at any address.
+[[nodiscard]] HEADBAND_INLINE Lanes<8> load_eight(const double* from) {
+  Lanes<8> r;
+  std::memcpy(&r.part[0], from, sizeof(Quad));
+  std::memcpy(&r.part[1], from + 4, sizeof(Quad));
+  return r;
+}
+HEADBAND_INLINE void store_eight(const Lanes<8>& x, double* to) {
+  std::memcpy(to, &x.part[0], sizeof(Quad));
+  std::memcpy(to + 4, &x.part[1], sizeof(Quad));
+}
+
+/// Two rows of eight side by side, and each of them.
+[[nodiscard]] HEADBAND_INLINE Lanes<16> side_by_side(const Lanes<8>& a, const Lanes<8>& b) {
+  Lanes<16> r;
+  r.part[0] = a.part[0];
+  r.part[1] = a.part[1];
+  r.part[2] = b.part[0];
+  r.part[3] = b.part[1];
+  return r;
+}
+[[nodiscard]] HEADBAND_INLINE Lanes<8> first_eight(const Lanes<16>& x) {
+  Lanes<8> r;
+  r.part[0] = x.part[0];
+  r.part[1] = x.part[1];
+  return r;
+}
+[[nodiscard]] HEADBAND_INLINE Lanes<8> last_eight(const Lanes<16>& x) {
+  Lanes<8> r;
+  r.part[0] = x.part[2];
+  r.part[1] = x.part[3];
+  return r;
+}
+
+/// The draws of a number in V lanes, for one row or for two of them.
+template <int W, int V>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> for_rows(const Lanes<V>& x) {
+  if constexpr (W == V) {
+    return x;
+  } else {
+    static_assert(W == 16 && V == 8);
+    return side_by_side(x, x);
+  }
+}
+
 #define HEADBAND_LANES_OPERATOR(op)                                                          \
   template <int W>                                                                           \
   [[nodiscard]] HEADBAND_INLINE Lanes<W> operator op(const Lanes<W>& a, const Lanes<W>& b) { \
@@ -90,6 +146,10 @@ struct Lanes<1> {
       Lanes<W> r;                                                                            \
       r.part[0] = a.part[0] op b.part[0];                                                    \
       r.part[1] = a.part[1] op b.part[1];                                                    \
+      if constexpr (W == 16) {                                                               \
+        r.part[2] = a.part[2] op b.part[2];                                                  \
+        r.part[3] = a.part[3] op b.part[3];                                                  \
+      }                                                                                      \
       return r;                                                                              \
     }                                                                                        \
   }                                                                                          \
@@ -120,6 +180,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = -a.part[0];
     r.part[1] = -a.part[1];
+    if constexpr (W == 16) {
+      r.part[2] = -a.part[2];
+      r.part[3] = -a.part[3];
+    }
     return r;
   }
 }
@@ -133,6 +197,10 @@ template <int W>
       Mask<W> r;                                                                            \
       r.part[0] = a.part[0] op b.part[0];                                                   \
       r.part[1] = a.part[1] op b.part[1];                                                   \
+      if constexpr (W == 16) {                                                              \
+        r.part[2] = a.part[2] op b.part[2];                                                 \
+        r.part[3] = a.part[3] op b.part[3];                                                 \
+      }                                                                                     \
       return r;                                                                             \
     }                                                                                       \
   }                                                                                         \
@@ -156,6 +224,10 @@ HEADBAND_LANES_COMPARE(==)
       Mask<W> r;                                                                          \
       r.part[0] = a.part[0] op b.part[0];                                                 \
       r.part[1] = a.part[1] op b.part[1];                                                 \
+      if constexpr (W == 16) {                                                            \
+        r.part[2] = a.part[2] op b.part[2];                                               \
+        r.part[3] = a.part[3] op b.part[3];                                               \
+      }                                                                                   \
       return r;                                                                           \
     }                                                                                     \
   }
@@ -171,6 +243,10 @@ template <int W>
     Mask<W> r;
     r.part[0] = ~a.part[0];
     r.part[1] = ~a.part[1];
+    if constexpr (W == 16) {
+      r.part[2] = ~a.part[2];
+      r.part[3] = ~a.part[3];
+    }
     return r;
   }
 }
@@ -184,6 +260,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = where.part[0] ? yes.part[0] : no.part[0];
     r.part[1] = where.part[1] ? yes.part[1] : no.part[1];
+    if constexpr (W == 16) {
+      r.part[2] = where.part[2] ? yes.part[2] : no.part[2];
+      r.part[3] = where.part[3] ? yes.part[3] : no.part[3];
+    }
     return r;
   }
 }
@@ -193,7 +273,8 @@ template <int W>
   if constexpr (W == 1) {
     return m.bit;
   } else {
-    const QuadBits some = m.part[0] | m.part[1];
+    QuadBits some = m.part[0] | m.part[1];
+    if constexpr (W == 16) some = some | (m.part[2] | m.part[3]);
 #if defined(__AVX__)
     return _mm256_movemask_pd(reinterpret_cast<__m256d>(some)) != 0;
 #else
@@ -214,6 +295,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = _mm256_min_pd(b.part[0], a.part[0]);
     r.part[1] = _mm256_min_pd(b.part[1], a.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = _mm256_min_pd(b.part[2], a.part[2]);
+      r.part[3] = _mm256_min_pd(b.part[3], a.part[3]);
+    }
     return r;
   }
 #endif
@@ -227,6 +312,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = _mm256_max_pd(b.part[0], a.part[0]);
     r.part[1] = _mm256_max_pd(b.part[1], a.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = _mm256_max_pd(b.part[2], a.part[2]);
+      r.part[3] = _mm256_max_pd(b.part[3], a.part[3]);
+    }
     return r;
   }
 #endif
@@ -240,6 +329,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[0]) & INT64_MAX);
     r.part[1] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[1]) & INT64_MAX);
+    if constexpr (W == 16) {
+      r.part[2] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[2]) & INT64_MAX);
+      r.part[3] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[3]) & INT64_MAX);
+    }
     return r;
   }
 }
@@ -254,6 +347,10 @@ template <int W>
 #if defined(__AVX__)
     r.part[0] = _mm256_sqrt_pd(a.part[0]);
     r.part[1] = _mm256_sqrt_pd(a.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = _mm256_sqrt_pd(a.part[2]);
+      r.part[3] = _mm256_sqrt_pd(a.part[3]);
+    }
 #else
     for (int j = 0; j < 4; ++j) {
       r.part[0][j] = std::sqrt(a.part[0][j]);

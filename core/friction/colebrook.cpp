@@ -2,9 +2,7 @@
 #include "core/friction/colebrook.hpp"
 
 #include <algorithm>
-#include <array>
 #include <cmath>
-#include <cstring>
 
 namespace headband::friction {
 
@@ -37,20 +35,37 @@ PlainRoot colebrook_plain(double relative_roughness, double reynolds) {
 namespace {
 
 template <int W>
+Lanes<W> root_anew(const Lanes<W>& rough, const Lanes<W>& b) {
+  if constexpr (W == 16) {
+    return side_by_side(colebrook_root<8>(first_eight(rough), first_eight(b)),
+                        colebrook_root<8>(last_eight(rough), last_eight(b)));
+  } else {
+    return colebrook_root<W>(rough, b);
+  }
+}
+
+}  // namespace
+
+template <int W>
+Lanes<W> colebrook_root_far(const Lanes<W>& rough,
+                            const Lanes<W>& reynolds,
+                            const Lanes<W>& constant,
+                            const Lanes<W>& once) {
+  const detail::Corrected<W> c = detail::corrected_once<W>(rough, reynolds, constant, once);
+  if (all(c.enough)) return c.x;
+  return select(c.enough, c.x, root_anew<W>(rough, constant / reynolds));
+}
+template Lanes<1> colebrook_root_far<1>(const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
+template Lanes<8> colebrook_root_far<8>(const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
+template Lanes<16> colebrook_root_far<16>(const Lanes<16>&, const Lanes<16>&, const Lanes<16>&, const Lanes<16>&);
+
+namespace {
+
+template <int W>
 HEADBAND_INLINE Lanes<W> factor_of(const Lanes<W>& relative_roughness, const Lanes<W>& reynolds) {
   const Lanes<W> re = max(reynolds, Lanes<W>(least_turbulent_reynolds));
   const Lanes<W> x = colebrook_root<W>(relative_roughness * colebrook_rough * re, colebrook_constant / re);
   return 1.0 / (x * x);
-}
-
-/// Register by register: a copy of the whole struct would pass through memory.
-HEADBAND_INLINE Lanes<8> load(const double* from) {
-  Lanes<8> r;
-  for (int i = 0; i < Lanes<8>::parts; ++i) std::memcpy(&r.part[i], from + 4 * i, sizeof(base::Quad));
-  return r;
-}
-HEADBAND_INLINE void store(const Lanes<8>& from, double* to) {
-  for (int i = 0; i < Lanes<8>::parts; ++i) std::memcpy(to + 4 * i, &from.part[i], sizeof(base::Quad));
 }
 
 }  // namespace
@@ -66,7 +81,8 @@ void colebrook_factors(std::span<const double> relative_roughness,
   const std::size_t n = std::min({relative_roughness.size(), reynolds.size(), factor.size()});
   std::size_t i = 0;
   for (; i + lanes <= n; i += lanes) {
-    store(factor_of<8>(load(&relative_roughness[i]), load(&reynolds[i])), &factor[i]);
+    base::store_eight(factor_of<8>(base::load_eight(&relative_roughness[i]), base::load_eight(&reynolds[i])),
+                      &factor[i]);
   }
   for (; i < n; ++i) factor[i] = colebrook_factor(relative_roughness[i], reynolds[i]);
 }

@@ -16,6 +16,21 @@ struct Root {
   Lanes<W> x, dx;
 };
 
+/// The turbulent side of a law [-].
+template <int W>
+struct Turbulent {
+  Lanes<W> x, factor, slope;  ///< 1/sqrt(f), f without scatter, d ln f/d ln Re
+};
+
+/// Factor and slope at a root of Colebrook-White or the smooth law, by one quotient for both.
+/// @param rough as in colebrook.hpp
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> colebrook_side(const Lanes<W>& rough, const Lanes<W>& x) {
+  const Lanes<W> square = x * x, sum = rough + x + two_over_ln_10;
+  const Lanes<W> both = 1.0 / (square * sum);
+  return {x, sum * both, (-2.0 * two_over_ln_10) * (square * both)};
+}
+
 namespace detail {
 
 inline constexpr double one_over_ln_10 = 0.43429448190325182765;
@@ -28,14 +43,17 @@ template <int W>
 
 }  // namespace detail
 
-/// Haaland 1983, J. Fluids Eng. 105, 89: x = -1.8 log((e/3.7)^1.11 + 6.9/Re).
-/// @param rough_term (e/3.7)^1.11 @param inverse 1/Re
+/// Haaland 1983, J. Fluids Eng. 105, 89: x = -1.8 log((e/3.7)^1.11 + 6.9/Re). Two quotients.
+/// @param rough_term (e/3.7)^1.11 @param reynolds >= 100
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Root<W> haaland(const Lanes<W>& rough_term, const Lanes<W>& inverse) {
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> haaland(const Lanes<W>& rough_term, const Lanes<W>& reynolds) {
   constexpr double c = 1.8 * detail::one_over_ln_10;
-  const Lanes<W> viscous = 6.9 * inverse;
-  const Lanes<W> w = rough_term + viscous;
-  return {-c * base::log(w), c * (viscous / w)};
+  const Lanes<W> over = rough_term * reynolds + 6.9;  // the argument of the logarithm is over/Re
+  const base::LogAndInverse<W> l = base::log_of_ratio(reynolds, over, over);
+  const Lanes<W> x = c * l.log;
+  const Lanes<W> factor = 1.0 / (x * x);
+  // d x / d ln Re = c 6.9/over, d ln f / d ln Re = -2 (d x / d ln Re)/x
+  return {x, factor, (-2.0 * c * 6.9) * (l.inverse * x * factor)};
 }
 
 /// Swamee & Jain 1976, J. Hydraul. Div. ASCE 102, 657: f = 0.25/log(e/3.7 + 5.74/Re^0.9)^2; stated for Re 5e3 .. 1e8

@@ -32,21 +32,20 @@ struct OlderRoot {
 };
 
 template <int W>
-HEADBAND_INLINE Lanes<W> solve(const Lanes<W>& rough, const Lanes<W>& b, const NoRoot&) {
-  return colebrook_root<W>(rough, b);
+HEADBAND_INLINE Lanes<W> solve(
+    const PreparedRule<W>& rule, const Lanes<W>& rough, const Lanes<W>&, const Lanes<W>& inverse, const NoRoot&) {
+  return colebrook_root<W>(rough, rule.root_constant * inverse);
 }
 template <int W>
-HEADBAND_INLINE Lanes<W> solve(const Lanes<W>& rough, const Lanes<W>& b, const OlderRoot<W>& older) {
-  const Lanes<W> x = colebrook_correct<W>(rough, b, older.root, older.idle);
+HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
+                               const Lanes<W>& rough,
+                               const Lanes<W>& reynolds,
+                               const Lanes<W>&,
+                               const OlderRoot<W>& older) {
+  const Lanes<W> x = colebrook_correct<W>(rough, reynolds, rule.root_constant, older.root, older.idle);
   older.root = select(older.idle, older.root, x);
   return x;
 }
-
-/// The turbulent side: x = 1/sqrt(f), f without scatter, d ln f/d ln Re.
-template <int W>
-struct Turbulent {
-  Lanes<W> x, factor, slope;
-};
 
 template <int W>
 HEADBAND_INLINE Turbulent<W> explicit_side(const Root<W>& r) {
@@ -62,14 +61,10 @@ HEADBAND_INLINE Turbulent<W> side_of(
     case FrictionLaw::colebrook_white:
     case FrictionLaw::smooth: {
       const Lanes<W> rough = rule.rough_by_reynolds * reynolds;
-      const Lanes<W> x = solve<W>(rough, rule.root_constant * inverse, kept);
-      // f = 1/x^2 and the slope -2k/(rough + x + k) by one quotient
-      const Lanes<W> square = x * x, sum = rough + x + two_over_ln_10;
-      const Lanes<W> both = 1.0 / (square * sum);
-      return {x, sum * both, (-2.0 * two_over_ln_10) * (square * both)};
+      return colebrook_side<W>(rough, solve<W>(rule, rough, reynolds, inverse, kept));
     }
     case FrictionLaw::haaland:
-      return explicit_side<W>(haaland<W>(rule.rough_term, inverse));
+      return haaland<W>(rule.rough_term, reynolds);
     case FrictionLaw::swamee_jain:
       return explicit_side<W>(swamee_jain<W>(rule.relative_roughness * (1.0 / 3.7), inverse));
     case FrictionLaw::serghides:
@@ -265,8 +260,38 @@ PreparedRule<W> prepare(const FactorRule<W>& rule) {
       prepare_lane<W>(p, rule.law[static_cast<std::size_t>(i)], rule.transition[static_cast<std::size_t>(i)], i);
   }
   p.root_kept = (p.laws_present & root_laws) != 0;
+  const bool swift_law = p.law == FrictionLaw::haaland || (bit(p.law) & root_laws) != 0;
+  p.swift = p.uniform && swift_law && p.kind != Transition::Kind::churchill;
+  p.all_turbulent_from = max(p.to, Lanes<W>(least_turbulent_reynolds));
   p.rough_term = Lanes<W>(0.0);
   refresh<W>(p, rule.relative_roughness, rule.scatter, rule.laminar_scatter);
+  return p;
+}
+
+PreparedRule<8> in_every_lane(const PreparedRule<1>& rule) {
+  PreparedRule<8> p;
+  p.uniform = rule.uniform;
+  p.swift = rule.swift;
+  p.root_kept = rule.root_kept;
+  p.law = rule.law;
+  p.kind = rule.kind;
+  p.laws_present = rule.laws_present;
+  p.laws.fill(rule.law);
+  const auto everywhere = [](bool on) { return Lanes<8>(on ? 1.0 : 0.0) > Lanes<8>(0.5); };
+  p.sudden = everywhere(rule.sudden[0]);
+  p.churchill = everywhere(rule.churchill[0]);
+  p.lossless = everywhere(rule.lossless[0]);
+  p.no_factor = everywhere(rule.no_factor[0]);
+  p.from = rule.from.number;
+  p.to = rule.to.number;
+  p.one_over_span = rule.one_over_span.number;
+  p.all_turbulent_from = rule.all_turbulent_from.number;
+  p.relative_roughness = rule.relative_roughness.number;
+  p.rough_by_reynolds = rule.rough_by_reynolds.number;
+  p.root_constant = rule.root_constant.number;
+  p.rough_term = rule.rough_term.number;
+  p.scatter = rule.scatter.number;
+  p.laminar_scatter = rule.laminar_scatter.number;
   return p;
 }
 

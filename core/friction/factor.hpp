@@ -4,6 +4,7 @@
 // Reynolds number to Darcy factor: law, transition, scatter. The laws stand in explicit_laws.hpp and colebrook.hpp.
 
 #include "core/base/lanes.hpp"
+#include "core/friction/explicit_laws.hpp"
 #include "core/friction/law.hpp"
 
 namespace headband::friction {
@@ -33,6 +34,7 @@ struct Factor {
 template <int W>
 struct PreparedRule {
   bool uniform = true;        ///< every lane the same law and kind of transition
+  bool swift = false;         ///< one law that turbulent_factor_near knows, and no joint
   bool root_kept = false;     ///< some lane solves for a root (Colebrook-White, smooth): see darcy_factor_near
   FrictionLaw law{};          ///< of lane 0
   Transition::Kind kind{};    ///< of lane 0
@@ -40,6 +42,7 @@ struct PreparedRule {
   PerLane<FrictionLaw, W> laws{};
   Mask<W> sudden{}, churchill{}, lossless{}, no_factor{};  ///< lanes of that transition or law
   Lanes<W> from, to, one_over_span;  ///< of the transition; for `sudden` both ends are its Reynolds number
+  Lanes<W> all_turbulent_from;       ///< Reynolds number from which `swift` holds
   Lanes<W> relative_roughness;       ///< e
   Lanes<W> rough_by_reynolds;        ///< e/(3.7 2.51); 0 in lanes of the smooth law
   Lanes<W> root_constant;            ///< 2.51; 10^0.4 in lanes of the smooth law
@@ -56,6 +59,9 @@ void refresh(PreparedRule<W>& prepared,
              const Lanes<W>& relative_roughness,
              const Lanes<W>& scatter,
              const Lanes<W>& laminar_scatter);
+
+/// The rule of one draw in every lane, for places in the lanes instead of draws.
+[[nodiscard]] PreparedRule<8> in_every_lane(const PreparedRule<1>& rule);
 
 /// Darcy factor f(Re) with laminar part, transition and scatter (conventions k and l of the case file).
 /// `sudden`: laminar below its Reynolds number, turbulent from it on. Churchill's joint is used with any law; the law
@@ -77,6 +83,24 @@ template <int W>
 /// @param root kept between calls; 0 at first. Untouched by laws that need none
 template <int W>
 [[nodiscard]] Factor<W> darcy_factor_near(const PreparedRule<W>& rule, const Lanes<W>& reynolds, Lanes<W>& root);
+
+/// The bits of `darcy_factor_near` where the rule is `swift` and every lane at or above `all_turbulent_from`; inline,
+/// for the inner loop of the march. Two quotients and a logarithm, from a root close by where the law needs one. W =
+/// 16, V = 8: two rows of the same eight draws.
+template <int W, int V>
+[[nodiscard]] HEADBAND_INLINE Factor<W> turbulent_factor_near(const PreparedRule<V>& rule,
+                                                              const Lanes<W>& reynolds,
+                                                              Lanes<W>& root) {
+  Turbulent<W> side;
+  if (rule.law == FrictionLaw::haaland) {
+    side = haaland<W>(base::for_rows<W>(rule.rough_term), reynolds);
+  } else {
+    const Lanes<W> rough = base::for_rows<W>(rule.rough_by_reynolds) * reynolds;
+    root = colebrook_correct<W>(rough, reynolds, base::for_rows<W>(rule.root_constant), root);
+    side = colebrook_side<W>(rough, root);
+  }
+  return {base::for_rows<W>(rule.scatter) * side.factor, side.slope};
+}
 
 extern template PreparedRule<1> prepare<1>(const FactorRule<1>&);
 extern template PreparedRule<8> prepare<8>(const FactorRule<8>&);

@@ -90,10 +90,10 @@ struct Draws {
     }
   }
 
-  /// Peaks by the plain loop [m].
-  std::vector<double> plain(long long& sections) const {
+  /// Peaks of the first `count` draws by the plain loop [m].
+  std::vector<double> plain(long long& sections, std::size_t count = 8 * blocks) const {
     std::vector<double> peaks;
-    for (std::size_t i = 0; i < runs.size(); ++i) {
+    for (std::size_t i = 0; i < count; ++i) {
       const double reynolds = 1.0 / (0.25 * M_PI * runs[i].bore * runs[i].viscosity), s = scatter[i];
       const double rough = roughness / runs[i].bore;
       if (friction == Friction::fixed) {
@@ -193,12 +193,36 @@ void surge_product(benchmark::State& state, Friction friction) {
   report(state, peaks, plain, sections);
 }
 
+/// One draw with nothing beside it (one run of the program, or a replayed draw): steady state, grid, march.
+void surge_alone(benchmark::State& state, Friction friction) {
+  const Draws draws(static_cast<int>(state.range(0)), friction);
+  long long sections = 0;
+  const std::vector<double> plain = draws.plain(sections, 1);
+  network::Scores<1> scores(draws.c.unknowns.size());
+  for (std::size_t u = 0; u < scores.size(); ++u) scores[u] = draws.scores[0][u][0];
+  network::Values<1> values;
+  network::realise<1>(draws.c, draws.plan, scores, values);
+  steady::SteadySolver solver(draws.c, draws.plan);
+  steady::SteadyState<1> first;
+  transient::BatchMarcher marcher(draws.c, draws.plan);
+  transient::DrawAnswers<1> answers;
+  for (auto _ : state) {
+    solver.solve<1>(values, first);
+    marcher.march<1>(values, first, answers);
+    benchmark::DoNotOptimize(answers.answer.data());
+  }
+  report(state, {answers.answer[0].number / (1000.0 * 9.81)}, plain, sections);
+}
+
 BENCHMARK_CAPTURE(surge_plain, fixed, Friction::fixed)->Arg(64)->Arg(128)->Arg(1000);
 BENCHMARK_CAPTURE(surge_product, fixed, Friction::fixed)->Arg(64)->Arg(128)->Arg(1000);
 BENCHMARK_CAPTURE(surge_plain, haaland, Friction::haaland)->Arg(64);
 BENCHMARK_CAPTURE(surge_product, haaland, Friction::haaland)->Arg(64);
 BENCHMARK_CAPTURE(surge_plain, colebrook, Friction::colebrook)->Arg(64);
 BENCHMARK_CAPTURE(surge_product, colebrook, Friction::colebrook)->Arg(64);
+BENCHMARK_CAPTURE(surge_alone, fixed, Friction::fixed)->Arg(64)->Arg(1000);
+BENCHMARK_CAPTURE(surge_alone, haaland, Friction::haaland)->Arg(64)->Arg(1000);
+BENCHMARK_CAPTURE(surge_alone, colebrook, Friction::colebrook)->Arg(64)->Arg(256);
 
 /// 1024 draws dealt to threads: wall time, to be read on a quiet machine. The answers are those of one thread.
 void surge_threads(benchmark::State& state) {

@@ -2,6 +2,7 @@
 #include "transient/line/interior.hpp"
 
 #include "transient/line/interior_512.hpp"
+#include "transient/line/interior_alone.hpp"
 
 #include <array>
 
@@ -49,9 +50,11 @@ HEADBAND_INLINE Lanes<W>* root_at(Lanes<W>* roots, int row) {
 
 // What leaves a row without cavity; nothing goes on from the last row, nothing comes back from row 0.
 template <int W, Form form, bool placed>
-HEADBAND_INLINE Leaving<W> leaving(const Resistance<W>& r, const PipeRows<W>& rows, int i) {
+HEADBAND_INLINE Leaving<W> leaving_at_cost(const Resistance<W>& r,
+                                           const PipeRows<W>& rows,
+                                           int i,
+                                           const Cost<W>& cost) {
   const Lanes<W> head = rows.head[i], flow = rows.flow[i];
-  const Cost<W> cost = cost_of<W, form>(r, flow, root_at(rows.root, i));
   if constexpr (placed) {
     return {on_over<W, form, placed>(r, rows, i + 1 < rows.rows ? i : i - 1, head, flow, cost),
             back_over<W, form, placed>(r, rows, i > 0 ? i - 1 : 0, head, flow, cost)};
@@ -59,6 +62,37 @@ HEADBAND_INLINE Leaving<W> leaving(const Resistance<W>& r, const PipeRows<W>& ro
     const Sent<W> s = sent_over<W, form, placed>(r, cost, nullptr, nullptr);
     const Lanes<W> carried = s.carry * flow;
     return {{head + carried, s.damp}, {head - carried, s.damp}};
+  }
+}
+
+template <int W, Form form, bool placed>
+[[gnu::noinline]] Leaving<W> leaving(const Resistance<W>& r, const PipeRows<W>& rows, int i) {
+  const Cost<W> cost = cost_of<W, form>(r, rows.flow[i], root_at(rows.root, i));
+  return leaving_at_cost<W, form, placed>(r, rows, i, cost);
+}
+
+// What leaves two neighbouring rows, `root` being their roots.
+template <int W, Form form, bool placed>
+HEADBAND_INLINE void leaving_two(
+    const Resistance<W>& r, const PipeRows<W>& rows, int i, Lanes<W>* roots, Leaving<W>& a, Leaving<W>& b) {
+  if constexpr (W == 8 && form == Form::darcy) {  // both rows at once: one fills the waiting of the other
+    Lanes<16> both;
+    if (roots != nullptr) both = side_by_side(roots[0], roots[1]);
+    const Cost<16> cost =
+        cost_of<16, form>(r, side_by_side(rows.flow[i], rows.flow[i + 1]), roots != nullptr ? &both : nullptr);
+    if (roots != nullptr) {
+      roots[0] = first_eight(both);
+      roots[1] = last_eight(both);
+    }
+    const Cost<8> first{first_eight(cost.size), first_eight(cost.loss), first_eight(cost.half)};
+    const Cost<8> second{last_eight(cost.size), last_eight(cost.loss), last_eight(cost.half)};
+    a = leaving_at_cost<W, form, placed>(r, rows, i, first);
+    b = leaving_at_cost<W, form, placed>(r, rows, i + 1, second);
+  } else {
+    const Cost<W> first = cost_of<W, form>(r, rows.flow[i], roots);
+    const Cost<W> second = cost_of<W, form>(r, rows.flow[i + 1], roots != nullptr ? roots + 1 : nullptr);
+    a = leaving_at_cost<W, form, placed>(r, rows, i, first);
+    b = leaving_at_cost<W, form, placed>(r, rows, i + 1, second);
   }
 }
 
@@ -111,8 +145,12 @@ HEADBAND_INLINE void meet_alone(const PipeRows<W>& rows, int i, const Wave<W>& o
 
 template <int W>
 HEADBAND_INLINE void keep_extremes(const PipeRows<W>& rows, int i, const Lanes<W>& h) {
-  rows.head_max[i] = max(rows.head_max[i], h);
-  rows.head_min[i] = min(rows.head_min[i], h);
+  const Lanes<W> highest = rows.head_max[i], lowest = rows.head_min[i];
+  if constexpr (W > 1) {  // most rows of most steps pass nothing that was: stores cost more than the question
+    if (!any((h > highest) | (h < lowest))) return;
+  }
+  rows.head_max[i] = max(highest, h);
+  rows.head_min[i] = min(lowest, h);
 }
 
 // The roots of three rows from `first` on, as they were: what is computed twice in a step starts from the same.
@@ -168,11 +206,19 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     on2 = leaving<W, form, placed>(r, rows, 1).on;
     i = 1;
   }
+  if constexpr (W == 1 && !placed) {
+    if (rows.reaches == nullptr && rows.rows >= least_rows_in_blocks) {
+      Arriving<1> row_before{on1.head, on1.damp}, row{on2.head, on2.damp};
+      i = march_blocks(given, rows, limited, row_before, row, old.root[0]);
+      on1 = {row_before.head, row_before.impedance};
+      on2 = {row.head, row.impedance};
+    }
+  }
   for (; i + 1 < last; i += 2) {
     OldRoots<W, form> ahead;
     if constexpr (limited) ahead.keep(rows, i + 1, 2);
-    const Leaving<W> a = leaving<W, form, placed>(r, rows, i + 1);
-    const Leaving<W> b = leaving<W, form, placed>(r, rows, i + 2);
+    Leaving<W> a, b;
+    leaving_two<W, form, placed>(r, rows, i + 1, root_at(rows.root, i + 1), a, b);
     Met<W> q = meet(on1, a.back, on2, b.back);
     meet_alone(rows, i, on1, a.back, q);
     const Lanes<W> h1 = on1.head - on1.damp * q.first;

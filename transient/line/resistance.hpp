@@ -35,6 +35,20 @@ struct Resistance {
   Lanes<W> power = 0.0;            ///< loss of a reach = power Q |Q|^0.852; 0 in lanes that do not follow it
 };
 
+/// The friction of one run in every lane, for its rows in the lanes instead of draws.
+[[nodiscard]] inline Resistance<8> in_every_lane(const Resistance<1>& r) {
+  Resistance<8> wide;
+  wide.form = r.form;
+  wide.carry = r.carry.number;
+  wide.damp = r.damp.number;
+  wide.quadratic = r.quadratic.number;
+  wide.darcy = r.darcy.number;
+  wide.reynolds = r.reynolds.number;
+  if (r.form == Form::darcy) wide.rule = friction::in_every_lane(r.rule);
+  wide.power = r.power.number;
+  return wide;
+}
+
 /// What a node sends along a characteristic.
 template <int W>
 struct Sent {
@@ -55,19 +69,54 @@ struct Cost {
   Lanes<W> half;  ///< half the law's slope s of that loss against flow
 };
 
+namespace detail {
+
+/// f(Re) by the general rule, for V lanes or for two rows of them.
+template <int W, int V>
+[[nodiscard]] friction::Factor<W> general_factor(const friction::PreparedRule<V>& rule,
+                                                 const Lanes<W>& reynolds,
+                                                 Lanes<W>* root) {
+  if constexpr (W == V) {
+    return root != nullptr ? friction::darcy_factor_near<W>(rule, reynolds, *root)
+                           : friction::darcy_factor<W>(rule, reynolds);
+  } else {
+    Lanes<V> one = 0.0, two = 0.0;
+    if (root != nullptr) {
+      one = first_eight(*root);
+      two = last_eight(*root);
+    }
+    const auto a = general_factor<V>(rule, first_eight(reynolds), root != nullptr ? &one : nullptr);
+    const auto b = general_factor<V>(rule, last_eight(reynolds), root != nullptr ? &two : nullptr);
+    if (root != nullptr) *root = side_by_side(one, two);
+    return {side_by_side(a.factor, b.factor), side_by_side(a.log_slope, b.log_slope)};
+  }
+}
+
+}  // namespace detail
+
+/// What the flow at a node costs. W = 16, V = 8: two rows of the same eight draws.
 /// @param root last root of the implicit laws at this node, see friction::darcy_factor_near; null: solved anew
-template <int W, Form form>
-[[nodiscard]] HEADBAND_INLINE Cost<W> cost_of(const Resistance<W>& r, const Lanes<W>& q, Lanes<W>* root) {
+template <int W, Form form, int V>
+[[nodiscard]] HEADBAND_INLINE Cost<W> cost_of(const Resistance<V>& r, const Lanes<W>& q, Lanes<W>* root) {
+  using base::for_rows;
   Cost<W> c;
   c.size = abs(q);
   if constexpr (form == Form::darcy) {
-    const Lanes<W> re = max(c.size * r.reynolds, Lanes<W>(still));
-    const friction::Factor<W> f =
-        root != nullptr ? friction::darcy_factor_near<W>(r.rule, re, *root) : friction::darcy_factor<W>(r.rule, re);
-    c.loss = r.darcy * f.factor * max(c.size, still / r.reynolds);
-    c.half = 0.5 * f.log_slope;
+    const Lanes<W> per_flow = for_rows<W>(r.reynolds), re = c.size * per_flow;
+    const bool swift = r.rule.swift && (root != nullptr || !r.rule.root_kept);
+    if (swift && all(re >= for_rows<W>(r.rule.all_turbulent_from))) [[likely]] {
+      Lanes<W> none = 0.0;
+      const auto f = friction::turbulent_factor_near<W>(r.rule, re, root != nullptr ? *root : none);
+      c.loss = for_rows<W>(r.darcy) * f.factor * c.size;
+      c.half = 0.5 * f.log_slope;
+    } else {
+      const auto f = detail::general_factor<W>(r.rule, max(re, Lanes<W>(still)), root);
+      c.loss = for_rows<W>(r.darcy) * f.factor * max(c.size, still / per_flow);
+      c.half = 0.5 * f.log_slope;
+    }
   } else if constexpr (form == Form::power) {
     // the loss per unit of flow: loss = g Q, g ~ |Q|^0.852
+    static_assert(W == V);
     c.loss = r.power * exp(hazen_williams_slope * log(max(c.size, Lanes<W>(1e-15))));
     c.half = Lanes<W>(0.5 * (hazen_williams_slope - 1.0));
   }
@@ -77,21 +126,23 @@ template <int W, Form form>
 /// Carry and damp of a node over one reach.
 /// @param fitting  extra quadratic loss of this reach (fittings with a place) [s2/m5]
 /// @param longer   extra equivalent length of this reach as a share of its own loss [-]
-template <int W, Form form, bool placed>
-[[nodiscard]] HEADBAND_INLINE Sent<W> sent_over(const Resistance<W>& r,
+template <int W, Form form, bool placed, int V>
+[[nodiscard]] HEADBAND_INLINE Sent<W> sent_over(const Resistance<V>& r,
                                                 const Cost<W>& c,
                                                 const Lanes<W>* fitting,
                                                 const Lanes<W>* longer) {
+  using base::for_rows;
   Sent<W> s;
   if constexpr (placed) {
     s = {r.carry, r.damp + (r.quadratic + *fitting) * c.size};
   } else {
-    s = {r.carry, r.damp + r.quadratic * c.size};
+    s = {for_rows<W>(r.carry), for_rows<W>(r.damp) + for_rows<W>(r.quadratic) * c.size};
   }
   if constexpr (form != Form::quadratic) {
     const Lanes<W> g = placed ? c.loss * (Lanes<W>(1.0) + *longer) : c.loss;
-    s.carry += g * c.half;
-    s.damp += g * (Lanes<W>(1.0) + c.half);
+    const Lanes<W> share = g * c.half;
+    s.carry += share;
+    s.damp += g + share;
   }
   return s;
 }

@@ -111,5 +111,34 @@ TEST(Elementary, EdgesAreThoseOfTheStandard) {
   EXPECT_EQ(pow(Lanes<1>(1.0), 123.0).number, 1.0);
 }
 
+TEST(Elementary, LogOfRatioAndInverseByOneQuotient) {
+  std::mt19937_64 bits(11);
+  std::uniform_real_distribution<double> u(0.0, 1.0);
+  for (int k = 0; k < 20000; ++k) {
+    Lanes<16> a, b, c;
+    for (int i = 0; i < 16; ++i) {
+      b.set(i, std::exp(60.0 * u(bits) - 30.0));
+      // ratios from 1 on, many close to it
+      a.set(i, b[i] * (k % 2 == 0 ? 1.0 + 1e-3 * u(bits) : std::exp(40.0 * u(bits))));
+      c.set(i, std::exp(20.0 * u(bits) - 10.0));
+    }
+    const auto sixteen = log_of_ratio<16>(a, b, c);
+    const auto eight = log_of_ratio<8>(last_eight(a), last_eight(b), last_eight(c));
+    for (int i = 0; i < 16; ++i) {
+      const auto one = log_of_ratio<1>(Lanes<1>(a[i]), Lanes<1>(b[i]), Lanes<1>(c[i]));
+      ASSERT_EQ(sixteen.log[i], one.log.number);
+      ASSERT_EQ(sixteen.inverse[i], one.inverse.number);
+      if (i >= 8) {
+        ASSERT_EQ(eight.log[i - 8], one.log.number);
+        ASSERT_EQ(eight.inverse[i - 8], one.inverse.number);
+      }
+      const long double exact = std::log(static_cast<long double>(a[i]) / static_cast<long double>(b[i]));
+      const auto error = static_cast<double>(std::abs(static_cast<long double>(one.log.number) - exact));
+      ASSERT_LT(error, 4e-16 * (1.0 + std::abs(one.log.number))) << a[i] << ' ' << b[i];
+      ASSERT_LT(ulps(one.inverse.number, 1.0L / static_cast<long double>(c[i])), 2.0);
+    }
+  }
+}
+
 }  // namespace
 }  // namespace headband::base

@@ -219,6 +219,55 @@ void expect_same_bits(const Eight& e) {
   }
 }
 
+// The inline form of the inner loop: turbulent lanes only, one row of eight draws or two rows of them.
+TEST(darcy_factor, the_inline_turbulent_form_gives_the_bits_of_the_general_one) {
+  for (const FrictionLaw law : {FrictionLaw::colebrook_white, FrictionLaw::smooth, FrictionLaw::haaland})
+    for (const auto& t : {transitions[0], transitions[1], transitions[2]}) {
+      const Eight e = eight([&](std::size_t) { return std::pair{law, t}; });
+      const auto rule = friction::prepare<8>(e.rule);
+      ASSERT_TRUE(rule.swift);
+      Lanes<8> root_a = 0.0, root_b = 0.0;
+      Lanes<16> root = 0.0;
+      for (int step = 0; step < 300; ++step) {
+        Lanes<8> a, b;
+        for (int i = 0; i < 8; ++i) {
+          a.set(i, rule.all_turbulent_from[i] * (1.0 + std::exp(4.0 + 4.0 * std::sin(0.02 * step + i))));
+          b.set(i, rule.all_turbulent_from[i] * (1.0 + (step % 50 == 0 ? 1e4 : 0.0) + 0.01 * i));
+        }
+        const auto both = friction::turbulent_factor_near<16>(rule, side_by_side(a, b), root);
+        const auto near_a = friction::darcy_factor_near<8>(rule, a, root_a);
+        const auto near_b = friction::darcy_factor_near<8>(rule, b, root_b);
+        for (int i = 0; i < 8; ++i) {
+          ASSERT_EQ(both.factor[i], near_a.factor[i]) << step << ' ' << i;
+          ASSERT_EQ(both.log_slope[i], near_a.log_slope[i]) << step << ' ' << i;
+          ASSERT_EQ(both.factor[8 + i], near_b.factor[i]) << step << ' ' << i;
+          ASSERT_EQ(root[i], root_a[i]);
+          ASSERT_EQ(root[8 + i], root_b[i]);
+        }
+      }
+    }
+  EXPECT_FALSE(friction::prepare<1>(rule_of(FrictionLaw::colebrook_white, transitions[4])).swift);
+  EXPECT_FALSE(friction::prepare<1>(rule_of(FrictionLaw::serghides, transitions[0])).swift);
+}
+
+TEST(darcy_factor, a_rule_of_one_draw_in_every_lane_gives_its_bits) {
+  for (const FrictionLaw law : laws)
+    for (const auto& t : transitions) {
+      const auto one = friction::prepare<1>(rule_of(law, t, 2e-4, 1.1, 0.9));
+      const auto wide = friction::in_every_lane(one);
+      Lanes<8> re, roots = 0.0;
+      for (int i = 0; i < 8; ++i) re.set(i, 10.0 * std::pow(7.0, i));
+      const auto f = friction::darcy_factor_near<8>(wide, re, roots);
+      for (int i = 0; i < 8; ++i) {
+        Lanes<1> root = 0.0;
+        const auto alone = friction::darcy_factor_near<1>(one, Lanes<1>(re[i]), root);
+        ASSERT_EQ(f.factor[i], alone.factor.number);
+        ASSERT_EQ(f.log_slope[i], alone.log_slope.number);
+        ASSERT_EQ(roots[i], root.number);
+      }
+    }
+}
+
 TEST(darcy_factor, one_draw_and_eight_give_the_same_bits_in_every_law) {
   for (const FrictionLaw law : laws)
     for (const auto& t : transitions) expect_same_bits(eight([&](std::size_t) { return std::pair{law, t}; }));
