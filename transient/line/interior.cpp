@@ -3,6 +3,7 @@
 
 #include "transient/line/interior_512.hpp"
 #include "transient/line/interior_alone.hpp"
+#include "transient/line/interior_halves.hpp"
 
 #include <array>
 
@@ -178,6 +179,12 @@ HEADBAND_INLINE void keep_row(const PipeRows<W>& rows, int i, const Lanes<W>& h,
 // (nothing stored there), or the last row's index when all are done; `wave` is then the one on its way to that row.
 template <int W, Form form, bool placed, bool limited, bool envelope>
 int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<W>& wave) {
+  if constexpr (W == 8 && form == Form::quadratic && !placed && !limited) {
+    if (given_rows.reaches == nullptr && !(envelope && has_512())) {
+      march_halves(given, given_rows);
+      return given_rows.rows - 1;
+    }
+  }
   const PipeRows<W> rows = given_rows;  // copies of our own, which no row can alias
   Resistance<W> own;
   if constexpr (form == Form::quadratic) {

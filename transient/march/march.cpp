@@ -80,6 +80,7 @@ void March<W>::prepare(const network::Values<W>& values,
     state_.head_min = state_.head;
   }
   point_rows();
+  find_simple();
 }
 
 template <int W>

@@ -42,6 +42,17 @@ struct State {
   CavityTally<W> tally;
 };
 
+/// An end of a pipe without fittings at a place, with fixed or linear friction: what it receives and where it sends.
+template <int W>
+struct PipeEnd {
+  const Lanes<W>*carry = nullptr, *damp = nullptr, *quadratic = nullptr;  ///< of the pipe's friction
+  const Lanes<W>*head = nullptr, *flow = nullptr;                         ///< of the row beside the end
+  Lanes<W>*end_head = nullptr, *end_flow = nullptr;                       ///< of the end's own row
+  int place = 0;
+  bool far = false;
+  bool shared = false;  ///< its place is a basin or joins several ends: 1 / impedance is needed
+};
+
 /// Marches W draws. Prepare, then run with an observer:
 ///   begin(march) · step(march, k) -> bool go on · before_jump(march, k), after_jump(march, k)
 template <int W>
@@ -78,6 +89,9 @@ class March {
   void set_initial_places(const steady::SteadyState<W>& steady);
   void set_initial_branches(const steady::SteadyState<W>& steady);
   void point_rows();
+  void find_simple();
+  void step_simply();
+  void solve_simply();
   void move_devices();
   void receive_waves();
   void march_pipes();
@@ -105,6 +119,9 @@ class March {
   Lanes<W> time_;
   base::PerLane<MarchStatus, W> status_{};
   ClusterSolver solver_;
+  bool simple_ = false;                                  ///< each step by step_simply
+  std::vector<PipeEnd<W>> ends_;                         ///< per side, while `simple_`
+  std::vector<int> outlets_;                             ///< per cluster, while `simple_`: its valve to the air, or -1
   std::vector<PipeRows<W>> rows_;                        ///< per pipe, into the state
   std::vector<int> local_place_;                         ///< place -> index in the cluster being solved
   std::vector<Lanes<W>> rigid_offset_, rigid_slope_;     ///< per branch
@@ -129,11 +146,15 @@ void March<W>::run(Observer& observe) {
   jump_if_due(0);
   for (long long step = 1; step <= last; ++step) {
     time_ = numbers_.time_step * static_cast<double>(step);
-    move_devices();
-    receive_waves();
-    march_pipes();
-    solve_places();
-    send_ends();
+    if (simple_) {
+      step_simply();
+    } else {
+      move_devices();
+      receive_waves();
+      march_pipes();
+      solve_places();
+      send_ends();
+    }
     if (!observe.step(*this, step)) return;
     jump_if_due(step);
   }
