@@ -78,6 +78,7 @@ void work(Dealer& dealer,
     const auto [from, to] = dealer.take(thread, stop != nullptr && stop->load(std::memory_order_relaxed));
     if (from == to) return;
     for (long long first = from; first < to; first += 8) {
+      block.keep_history = static_cast<std::size_t>(first) < table.histories_kept(table.status.size());
       try {
         scores(first, block_scores);
         model(block_scores, block);

@@ -32,7 +32,9 @@ struct Watch {
     double chainage = -1.0;  ///< a point of an answer [m]
   };
   std::vector<Point> points;
-  std::vector<bool> velocity;  ///< per pipe
+  std::vector<bool> velocity;     ///< per pipe
+  std::vector<std::size_t> fast;  ///< pipes whose velocity is asked
+  bool whole_pipes = false;       ///< some answer is the extreme of a whole pipe
 };
 
 Watch make_watch(const network::Plan& plan) {
@@ -49,7 +51,7 @@ Watch make_watch(const network::Plan& plan) {
             a.where.place.exists() && (plan.pipes[i].from == a.where.place || plan.pipes[i].to == a.where.place);
         if (whole || touches || (a.where.pipe.exists() && a.where.pipe.at() == i)) w.velocity[i] = true;
       } else if (whole) {
-        profile[i] = true;
+        profile[i] = w.whole_pipes = true;
       }
     }
     if (a.kind != AnswerKind::velocity && a.where.pipe.exists() && a.where.chainage >= 0.0)
@@ -57,6 +59,8 @@ Watch make_watch(const network::Plan& plan) {
   };
   for (const auto& a : plan.answers) look(a);
   for (const auto& l : plan.limits) look(l.subject);
+  for (std::size_t i = 0; i < plan.pipes.size(); ++i)
+    if (w.velocity[i]) w.fast.push_back(i);
   for (std::size_t i = 0; i < plan.pipes.size(); ++i)
     if (profile[i])
       for (int k = 1; k + 1 < plan.pipes[i].profile_points; ++k) w.points.push_back({static_cast<int>(i), k, -1.0});
@@ -168,7 +172,6 @@ class BatchRecord {
         history_(times, take, out.history) {}
 
   void begin(March<W>& march) {
-    const auto& plan = march.plan();
     const std::size_t count = watch_->points.size();
     spots_.resize(count);
     for (std::size_t k = 0; k < count; ++k) {
@@ -183,18 +186,10 @@ class BatchRecord {
       }
       t.low = t.high;
     }
-    top_flow_.assign(march.numbers().rows, Lanes<W>(0.0));
-    place_flow_.assign(march.layout().sides.size(), Lanes<W>(0.0));
-    row_elevation_.resize(march.numbers().rows);
-    for (std::size_t i = 0; i < plan.pipes.size(); ++i) {
-      const auto& p = march.numbers().pipes[i];
-      const auto& v = values_->pipes[i];
-      const std::span<const Lanes<W>> x(v.chainage), z(v.elevation);
-      for (int row = 0; row <= p.most_reaches; ++row) {
-        const Lanes<W> chainage = min(p.reach * static_cast<double>(row), v.length);
-        row_elevation_[p.first_row + at(row)] = pipe::elevation_at<W>(x, z, chainage);
-      }
-    }
+    if (!watch_->fast.empty()) top_flow_.assign(march.numbers().rows, Lanes<W>(0.0));
+    if (watch_->whole_pipes) find_elevations(march);
+    next_end_ = 0;
+    find_next_end(march);
     watch_velocity(march);
     history_.begin(march, *values_);
   }
@@ -209,8 +204,11 @@ class BatchRecord {
     }
     watch_velocity(march);
     history_.step(march, row);
-    for (int lane = 0; lane < W; ++lane)
-      if (march.numbers().last_step[at(lane)] == row && take_[at(lane)]) collect(march, lane);
+    if (row == next_end_) {
+      for (int lane = 0; lane < W; ++lane)
+        if (march.numbers().last_step[at(lane)] == row && take_[at(lane)]) collect(march, lane);
+      find_next_end(march);
+    }
     return true;
   }
   void before_jump(March<W>&, long long) {}
@@ -225,10 +223,30 @@ class BatchRecord {
     Lanes<W> elevation, high, low;
   };
 
+  /// The next row at which some lane's time is over.
+  void find_next_end(const March<W>& march) {
+    long long next = std::numeric_limits<long long>::max();
+    for (const long long end : march.numbers().last_step)
+      if (end > next_end_) next = std::min(next, end);
+    next_end_ = next;
+  }
+
+  void find_elevations(const March<W>& march) {
+    const auto& pipes = march.numbers().pipes;
+    row_elevation_.resize(march.numbers().rows);
+    for (std::size_t i = 0; i < pipes.size(); ++i) {
+      const auto& v = values_->pipes[i];
+      const std::span<const Lanes<W>> x(v.chainage), z(v.elevation);
+      for (int row = 0; row <= pipes[i].most_reaches; ++row) {
+        const Lanes<W> chainage = min(pipes[i].reach * static_cast<double>(row), v.length);
+        row_elevation_[pipes[i].first_row + at(row)] = pipe::elevation_at<W>(x, z, chainage);
+      }
+    }
+  }
+
   void watch_velocity(March<W>& march) {
     const auto& state = march.state();
-    for (std::size_t i = 0; i < watch_->velocity.size(); ++i) {
-      if (!watch_->velocity[i]) continue;
+    for (const std::size_t i : watch_->fast) {
       const auto& p = march.numbers().pipes[i];
       for (int row = 0; row <= p.most_reaches; ++row) {
         const std::size_t r = p.first_row + at(row);
@@ -309,28 +327,44 @@ class BatchRecord {
       if (plan.answers[k].needs_surge()) out_->answer[k].set(lane, extreme(march, plan.answers[k], lane));
     for (std::size_t k = 0; k < plan.limits.size(); ++k)
       if (plan.limits[k].subject.needs_surge()) out_->limit[k].set(lane, extreme(march, plan.limits[k].subject, lane));
-    for (std::size_t k = 0; k < stations_->size(); ++k) {
-      out_->head_max[k].set(lane, envelope(march, (*stations_)[k], true, lane));
-      out_->head_min[k].set(lane, envelope(march, (*stations_)[k], false, lane));
-    }
+    keep_envelopes(march, lane);
   }
 
-  // Envelope at a share of a pipe's length: a straight line between the sections beside it.
-  double envelope(const March<W>& march, const BatchStation& s, bool highest, int lane) const {
-    const auto& p = march.numbers().pipes[at(s.pipe)];
-    const auto& ends = march.plan().pipes[at(s.pipe)];
-    const int reaches = std::max(1, p.reaches[at(lane)]);
-    const auto& place = highest ? march.state().place_max : march.state().place_min;
-    const auto& rows = highest ? march.state().head_max : march.state().head_min;
-    const auto of_row = [&](int row) {
-      if (row == 0) return place[ends.from.at()][lane];
-      if (row == reaches) return place[ends.to.at()][lane];
-      return rows[p.first_row + at(row)][lane];
-    };
-    const double x = s.share * reaches;
-    const int row = std::clamp(static_cast<int>(x), 0, reaches - 1);
-    const double a = of_row(row), b = of_row(row + 1);
-    return a + (x - row) * (b - a);
+  // Envelopes at shares of the pipes' lengths: straight lines between the sections beside them.
+  void keep_envelopes(March<W>& march, int lane) {
+    const auto& pipes = march.numbers().pipes;
+    const auto& ends = march.plan().pipes;
+    auto& state = march.state();
+    for (std::size_t i = 0; i < pipes.size(); ++i) {  // the ends are their places'
+      if (pipes[i].most_reaches == 0) continue;
+      const std::size_t first = pipes[i].first_row, last = first + at(pipes[i].reaches[at(lane)]);
+      state.head_max[first].set(lane, state.place_max[ends[i].from.at()][lane]);
+      state.head_min[first].set(lane, state.place_min[ends[i].from.at()][lane]);
+      state.head_max[last].set(lane, state.place_max[ends[i].to.at()][lane]);
+      state.head_min[last].set(lane, state.place_min[ends[i].to.at()][lane]);
+    }
+    for (std::size_t k = 0; k < stations_->size(); ++k) {
+      const BatchStation& s = (*stations_)[k];
+      const auto& p = pipes[at(s.pipe)];
+      const int reaches = p.reaches[at(lane)];
+      if (reaches > 0) {
+        const double x = s.share * reaches;
+        const int row = std::clamp(static_cast<int>(x), 0, reaches - 1);
+        const std::size_t r = p.first_row + at(row);
+        const auto between = [&](const Lanes<W>& a, const Lanes<W>& b) {
+          return a[lane] + (x - row) * (b[lane] - a[lane]);
+        };
+        out_->head_max[k].set(lane, between(state.head_max[r], state.head_max[r + 1]));
+        out_->head_min[k].set(lane, between(state.head_min[r], state.head_min[r + 1]));
+      } else {
+        const std::size_t from = ends[at(s.pipe)].from.at(), to = ends[at(s.pipe)].to.at();
+        const auto between = [&](const Lanes<W>& a, const Lanes<W>& b) {
+          return a[lane] + s.share * (b[lane] - a[lane]);
+        };
+        out_->head_max[k].set(lane, between(state.place_max[from], state.place_max[to]));
+        out_->head_min[k].set(lane, between(state.place_min[from], state.place_min[to]));
+      }
+    }
   }
 
   const Watch* watch_;
@@ -340,7 +374,8 @@ class BatchRecord {
   DrawAnswers<W>* out_;
   HistoryTrack<W> history_;
   std::vector<SpotTrack> spots_;
-  std::vector<Lanes<W>> top_flow_, place_flow_, row_elevation_;
+  std::vector<Lanes<W>> top_flow_, row_elevation_;
+  long long next_end_ = 0;
 };
 
 /// The marches of one lane width, one per set of rigid pipes.
@@ -358,7 +393,7 @@ struct BatchMarcher::Parts {
   const network::Plan* plan;
   Watch watch;
   std::vector<BatchStation> stations;
-  std::vector<double> history_times;
+  std::vector<double> history_times, no_times;
   Width<1> one;
   Width<8> eight;
 
@@ -382,7 +417,7 @@ struct BatchMarcher::Parts {
 };
 
 BatchMarcher::BatchMarcher(const network::Case& c, const network::Plan& plan, std::vector<double> history_times)
-    : parts_(std::make_unique<Parts>(Parts{&c, &plan, make_watch(plan), {}, std::move(history_times), {}, {}})) {
+    : parts_(std::make_unique<Parts>(Parts{&c, &plan, make_watch(plan), {}, std::move(history_times), {}, {}, {}})) {
   for (std::size_t i = 0; i < plan.pipes.size(); ++i)
     for (int k = 0; k <= station_intervals; ++k)
       parts_->stations.push_back({static_cast<int>(i), static_cast<double>(k) / station_intervals});
@@ -401,7 +436,8 @@ void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyS
   out.limit.assign(plan.limits.size(), none);
   out.head_max.assign(parts_->stations.size(), none);
   out.head_min.assign(parts_->stations.size(), none);
-  out.history.assign(parts_->history_times.size() * plan.probes.size(), none);
+  const std::vector<double>& times = out.keep_history ? parts_->history_times : parts_->no_times;
+  out.history.assign(times.size() * plan.probes.size(), none);
   out.cavity = {};
   for (std::size_t k = 0; k < plan.answers.size(); ++k)
     if (!plan.answers[k].needs_surge()) out.answer[k] = steady::answer<W>(plan, values, steady, plan.answers[k]);
@@ -440,7 +476,7 @@ void BatchMarcher::march(const network::Values<W>& values, const steady::SteadyS
       if (same) waiting[at(lane)] = false;
     }
     March<W>& m = parts_->template march_for<W>(rigid);
-    BatchRecord<W> record(parts_->watch, parts_->stations, parts_->history_times, values, take, out);
+    BatchRecord<W> record(parts_->watch, parts_->stations, times, values, take, out);
     m.prepare(values, steady, grids, true);
     m.run(record);
   }

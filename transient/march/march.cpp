@@ -105,7 +105,11 @@ void March<W>::set_initial_pipes(const network::Values<W>& values, const steady:
     Lanes<W> head = steady.place_head[plan_->pipes[i].from.at()];
     for (int row = 0; row <= p.most_reaches; ++row) {
       const std::size_t r = p.first_row + at(row);
-      for (int lane = 0; lane < W; ++lane) {
+      if (p.uniform) {
+        state_.head[r] = row == p.most_reaches ? last : head;
+        state_.flow[r] = flow;
+      }
+      for (int lane = 0; !p.uniform && lane < W; ++lane) {
         if (row > p.reaches[at(lane)]) continue;  // nothing stands behind the far end
         state_.head[r].set(lane, row == p.reaches[at(lane)] ? last[lane] : head[lane]);
         state_.flow[r].set(lane, flow[lane]);

@@ -407,9 +407,10 @@ void fill_branches(const Layout& layout,
   const std::size_t count = layout.branches.size();
   n.branch_full.assign(count, Lanes<W>(0.0));
   n.seat_power.assign(count, Lanes<W>(1.0));
-  n.branch_movement.assign(count, Movement<W>(0.0, 1.0));
-  n.draw_movement.assign(layout.draws.size(), Movement<W>());
-  n.basin_movement.assign(values.places.size(), Movement<W>());
+  // their chains are begun anew below and keep their storage
+  n.branch_movement.resize(count, Movement<W>(0.0, 1.0));
+  n.draw_movement.resize(layout.draws.size());
+  n.basin_movement.resize(values.places.size());
   n.pump.resize(count * W);
   n.trip_time.assign(count * W, never);
   n.start_time.assign(count * W, never);

@@ -47,6 +47,7 @@ struct DrawAnswers {
   std::vector<Lanes<W>> answer;              ///< as Plan::answers
   std::vector<Lanes<W>> limit;               ///< as Plan::limits
   std::vector<Lanes<W>> head_max, head_min;  ///< envelopes at `profile stations` (see BatchMarcher::stations)
+  bool keep_history = true;                  ///< asked for: false leaves `history` empty
   std::vector<Lanes<W>> history;             ///< heads, row-major (time, probe): BatchMarcher's times, Plan::probes [m]
   base::PerLane<std::int8_t, W> status{};    ///< 0 finished, 2 not finite, 3 boundary not converged, 4 grid refused
   base::PerLane<bool, W> cavity{};
