@@ -144,10 +144,10 @@ HEADBAND_INLINE void meet_alone(const PipeRows<W>& rows, int i, const Wave<W>& o
   if (any(ends)) met.first = select(ends, meet(on, back), met.first);
 }
 
-template <int W>
+template <int W, bool ask>
 HEADBAND_INLINE void keep_extremes(const PipeRows<W>& rows, int i, const Lanes<W>& h) {
   const Lanes<W> highest = rows.head_max[i], lowest = rows.head_min[i];
-  if constexpr (W > 1) {  // most rows of most steps pass nothing that was: stores cost more than the question
+  if constexpr (W > 1 && ask) {  // most rows of most steps pass nothing that was: stores cost more than the question
     if (!any((h > highest) | (h < lowest))) return;
   }
   rows.head_max[i] = max(highest, h);
@@ -168,11 +168,11 @@ struct OldRoots {
   }
 };
 
-template <int W, bool envelope>
+template <int W, bool envelope, bool ask = true>
 HEADBAND_INLINE void keep_row(const PipeRows<W>& rows, int i, const Lanes<W>& h, const Lanes<W>& q) {
   rows.head[i] = h;
   rows.flow[i] = q;
-  if constexpr (envelope) keep_extremes(rows, i, h);
+  if constexpr (envelope) keep_extremes<W, ask>(rows, i, h);
 }
 
 // Rows without cavities from 1 on, two by two. Returns the first row of a pair in which a row fell below its limit
@@ -193,6 +193,7 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     own.quadratic = given.quadratic;
   }
   const Resistance<W>& r = form == Form::quadratic ? own : given;
+  constexpr bool ask = form != Form::quadratic;  // whose rows are done before a wrong guess of the answer is mended
   const int last = rows.rows - 1;
   if (last < 2) return last;
   Wave<W> on1{0.0, 0.0}, on2{0.0, 0.0};
@@ -239,8 +240,8 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
       }
     }
     if constexpr (limited && form == Form::darcy) old.root[0] = ahead.root[1];
-    keep_row<W, envelope>(rows, i, h1, q.first);
-    keep_row<W, envelope>(rows, i + 1, h2, q.second);
+    keep_row<W, envelope, ask>(rows, i, h1, q.first);
+    keep_row<W, envelope, ask>(rows, i + 1, h2, q.second);
     on1 = a.on;
     on2 = b.on;
   }
@@ -258,7 +259,7 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
         return i;
       }
     }
-    keep_row<W, envelope>(rows, i, h, q);
+    keep_row<W, envelope, ask>(rows, i, h, q);
   }
   return last;
 }
