@@ -91,7 +91,8 @@ HEADBAND_INLINE Lanes<W> central_quantile(const Lanes<W>& middle) {
 /// Size of the quantile at a tail's probability, at most 0.075.
 template <int W>
 HEADBAND_INLINE Lanes<W> tail_quantile(const Lanes<W>& tail) {
-  const Lanes<W> root = sqrt(-log(tail));
+  const bool usual = !any(tail < Lanes<W>(std::numeric_limits<double>::min()));  // `log` asks more, and says the same
+  const Lanes<W> root = sqrt(-(usual ? log_of_normal(tail) : log(tail)));
   const Lanes<W> t = root - 1.6;
   Lanes<W> over = polynomial(tail_over, t), under = polynomial(tail_under, t);
   const Mask<W> far = root > 5.0;
@@ -375,12 +376,39 @@ constexpr std::array<std::uint64_t, 16> front_lanes = [] {
 }();
 #endif
 
-/// Tails of eight scores each that wait for their evaluation, with the sign of the quantile, and whose they are.
-struct WaitingTails {
-  static constexpr std::size_t most_spreads = 32, room = 8 * most_spreads;
-  alignas(64) std::array<double, room + 8> tail;
-  std::array<std::uint16_t, room + 8> owner;
-  std::size_t count = 0;
+/// Normal quantiles of many blocks of eight scores: the middle part at once, the tails of all of them together.
+class NormalQuantiles {
+ public:
+  /// Takes a block; its value stands when `settle` was called.
+  HEADBAND_INLINE void add(const ReadySpread& spread, const Lanes<8>& score, Lanes<8>& value) {
+    if (!is_normal(spread)) {
+      value = straight_quantile<8>(spread, score);
+      return;
+    }
+    if (taken == most_blocks) settle();
+    const Tails<8> tails = tails_at<8>(spread, score);
+    value = central_quantile<8>(tails.middle);
+    note(tails, 8 * taken);
+    block[taken] = {&spread, &value};
+    ++taken;
+  }
+
+  void settle() {
+    settle_tails();
+    for (std::size_t i = 0; i < taken; ++i) *block[i].value = value_of_normal<8>(*block[i].spread, *block[i].value);
+    taken = count = 0;
+  }
+
+ private:
+  static constexpr std::size_t most_blocks = 64, room = 8 * most_blocks;
+  struct Block {
+    const ReadySpread* spread;
+    Lanes<8>* value;
+  };
+  std::array<Block, most_blocks> block;
+  alignas(64) std::array<double, room + 8> tail;  ///< those that wait, with the sign of the quantile
+  std::array<std::uint16_t, room + 8> owner;      ///< eight times the block, and the lane
+  std::size_t taken = 0, count = 0;
 
   HEADBAND_INLINE void note_four(const QuadBits& outside, const Quad& with_sign, std::size_t from) {
 #if defined(__AVX2__)
@@ -412,8 +440,8 @@ struct WaitingTails {
     }
   }
 
-  /// Replaces each tail's quantile in `z`.
-  void settle(std::span<Lanes<8>> z) {
+  /// Puts each tail's quantile in its place.
+  void settle_tails() {
     for (std::size_t i = 0; i < 8; ++i) tail[count + i] = 0.07;  // something harmless behind the last
     for (std::size_t i = 0; i < count; i += 8) {
       Lanes<8> with_sign;
@@ -424,7 +452,7 @@ struct WaitingTails {
       const std::size_t here = std::min<std::size_t>(8, count - i);
       for (std::size_t lane = 0; lane < here; ++lane) {
         const std::size_t whose = owner[i + lane];
-        z[whose / 8].set(static_cast<int>(whose % 8), quantile[static_cast<int>(lane)]);
+        block[whose / 8].value->set(static_cast<int>(whose % 8), quantile[static_cast<int>(lane)]);
       }
     }
   }
@@ -493,26 +521,19 @@ Lanes<W> quantile(const Spread& spread, const Cut& cut, double central, const La
 }
 
 void quantiles(std::span<const ReadySpread> spreads, std::span<const Lanes<8>> scores, std::span<Lanes<8>> values) {
-  WaitingTails waiting;
-  for (std::size_t first = 0; first < spreads.size(); first += WaitingTails::most_spreads) {
-    const std::size_t many = std::min(WaitingTails::most_spreads, spreads.size() - first);
-    const auto here = spreads.subspan(first, many);
-    const auto value = values.subspan(first, many);
-    waiting.count = 0;
-    for (std::size_t i = 0; i < many; ++i) {
-      const Lanes<8>& score = scores[first + i];
-      if (!is_normal(here[i])) {
-        value[i] = straight_quantile<8>(here[i], score);
-        continue;
-      }
-      const Tails<8> tails = tails_at<8>(here[i], score);
-      value[i] = central_quantile<8>(tails.middle);
-      waiting.note(tails, 8 * i);
-    }
-    waiting.settle(value);
-    for (std::size_t i = 0; i < many; ++i)
-      if (is_normal(here[i])) value[i] = value_of_normal<8>(here[i], value[i]);
+  NormalQuantiles normals;
+  for (std::size_t i = 0; i < spreads.size(); ++i) normals.add(spreads[i], scores[i], values[i]);
+  normals.settle();
+}
+
+void quantiles(std::span<const ReadySpread> spreads,
+               std::span<const std::vector<Lanes<8>>> scores,
+               std::span<std::vector<Lanes<8>>> values) {
+  NormalQuantiles normals;
+  for (std::size_t block = 0; block < scores.size(); ++block) {
+    for (std::size_t i = 0; i < spreads.size(); ++i) normals.add(spreads[i], scores[block][i], values[block][i]);
   }
+  normals.settle();
 }
 
 double probability(const Spread& spread, const Cut& cut, double central, double x) {

@@ -9,6 +9,7 @@
 #include <limits>
 #include <span>
 #include <variant>
+#include <vector>
 
 namespace headband::base {
 
@@ -77,6 +78,11 @@ template <int W>
 /// gathered and evaluated together, which is where the time goes otherwise.
 /// @param scores, values as `spreads`
 void quantiles(std::span<const ReadySpread> spreads, std::span<const Lanes<8>> scores, std::span<Lanes<8>> values);
+/// The same for several blocks of eight: the more tails there are, the better they fill the lanes.
+/// @param values as many as `scores`, each sized as `spreads`
+void quantiles(std::span<const ReadySpread> spreads,
+               std::span<const std::vector<Lanes<8>>> scores,
+               std::span<std::vector<Lanes<8>>> values);
 
 /// Distribution function of the spread about `central` inside `cut`: the score at which `quantile` gives `x`, in
 /// [0, 1]. An exact value has no distribution: 0.5.

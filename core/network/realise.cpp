@@ -314,13 +314,27 @@ Values<W> Realiser::prepare() const {
 
 template <int W>
 void Realiser::draw(const Scores<W>& scores, Values<W>& values) const {
-  const Case& c = *case_;
   if constexpr (W == 8) {
-    base::quantiles(spreads_, scores, values.drawn);
+    base::quantiles(spreads_, std::span<const Lanes<8>>(scores), values.drawn);
   } else {
     for (std::size_t u = 0; u < spreads_.size(); ++u) values.drawn[u] = base::quantile<W>(spreads_[u], scores[u]);
   }
-  const Draw<W> drawn(scores, values.drawn);
+  overwrite<W>(scores, values.drawn, values);
+}
+
+void Realiser::look_ahead(std::span<const Scores<8>> scores, std::vector<std::vector<Lanes<8>>>& drawn) const {
+  if (drawn.size() < scores.size()) drawn.resize(scores.size(), std::vector<Lanes<8>>(spreads_.size()));
+  base::quantiles(spreads_, scores, std::span(drawn).first(scores.size()));
+}
+
+void Realiser::draw(const Scores<8>& scores, const std::vector<Lanes<8>>& drawn, Values<8>& values) const {
+  overwrite<8>(scores, drawn, values);
+}
+
+template <int W>
+void Realiser::overwrite(const Scores<W>& scores, const std::vector<Lanes<W>>& known, Values<W>& values) const {
+  const Case& c = *case_;
+  const Draw<W> drawn(scores, known);
   if (site_) realise_site(c.site, drawn, values);
   if (temperature_) detail::realise_by_temperature(c.liquid, drawn, values.liquid);
   if (liquid_) detail::realise_given_numbers(c.liquid, drawn, values.liquid);

@@ -7,6 +7,7 @@
 #include "core/network/plan.hpp"
 
 #include <array>
+#include <span>
 #include <vector>
 
 namespace headband::network {
@@ -138,11 +139,19 @@ class Realiser {
   template <int W>
   void draw(const Scores<W>& scores, Values<W>& values) const;
 
+  /// Values of the unknowns at the scores of several blocks of eight draws, and a block with its values known: the
+  /// same bits as block by block, in less time.
+  void look_ahead(std::span<const Scores<8>> scores, std::vector<std::vector<Lanes<8>>>& drawn) const;
+  void draw(const Scores<8>& scores, const std::vector<Lanes<8>>& drawn, Values<8>& values) const;
+
  private:
   /// Which groups of a pipe's numbers some draw changes.
   struct PipeChanges {
     bool geometry = false, wave = false, friction = false, fittings = false, profile = false, rating = false;
   };
+  template <int W>
+  void overwrite(const Scores<W>& scores, const std::vector<Lanes<W>>& drawn, Values<W>& values) const;
+
   const Case* case_;
   const Plan* plan_;
   std::vector<base::ReadySpread> spreads_;  ///< as Case::unknowns

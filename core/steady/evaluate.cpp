@@ -198,6 +198,28 @@ Lanes<W> answer(const network::Plan& plan,
   return Lanes<W>(not_a_number);
 }
 
+namespace {
+
+/// True where every draw's head line clears the highest point of the pipe by more than rounding: without placed
+/// fittings it runs straight from end to end. Most lines do, and need no look at each of their points.
+template <int W>
+bool clears_every_point(const network::Plan& plan,
+                        const network::Values<W>& values,
+                        const SteadyState<W>& state,
+                        std::size_t pipe,
+                        const Lanes<W>& vapour_head) {
+  constexpr double rounding = 1e-6;  // [m]; heads are good to 1e-10 m
+  const network::PipeValues<W>& numbers = values.pipes[pipe];
+  if (!numbers.placed_fittings.empty()) return false;
+  Lanes<W> highest = numbers.elevation.front();
+  for (const auto& elevation : numbers.elevation) highest = base::max(highest, elevation);
+  const Lanes<W> from = state.place_head[plan.pipes[pipe].from.at()];
+  const Lanes<W> lowest = base::min(from, from - state.head_loss[pipe]);
+  return base::all(highest + vapour_head + rounding < lowest);
+}
+
+}  // namespace
+
 template <int W>
 VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>& values, const SteadyState<W>& state) {
   VapourCheck<W> check;
@@ -207,7 +229,8 @@ VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>&
   const Lanes<W> vapour_head =
       (values.liquid.vapour_pressure - values.atmosphere) / (values.liquid.density * values.gravity);
   if (!base::any(vapour_head == vapour_head)) return check;  // no vapour pressure is known
-  for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe)
+  for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe) {
+    if (clears_every_point(plan, values, state, pipe, vapour_head)) continue;
     for_each_point(
         plan, values, state, pipe, [&](const Lanes<W>& chainage, const Lanes<W>& head, const Lanes<W>& elevation) {
           const Lanes<W> shortfall = elevation + vapour_head - head;
@@ -218,6 +241,7 @@ VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>&
           check.chainage = base::select(deeper, chainage, check.chainage);
           check.shortfall = base::select(deeper, shortfall, check.shortfall);
         });
+  }
   return check;
 }
 

@@ -2,6 +2,7 @@
 #include "montecarlo/propagate/draws.hpp"
 
 #include <algorithm>
+#include <array>
 #include <chrono>
 #include <cmath>
 #include <condition_variable>
@@ -65,37 +66,71 @@ class Dealer {
   std::string complaint_;
 };
 
-/// One thread's work: blocks until the dealer has none.
-void work(Dealer& dealer,
-          std::size_t thread,
-          const ScoreSource& scores,
-          BlockModel& model,
-          DrawTable& table,
-          const std::atomic<bool>* stop) {
-  network::Scores<8> block_scores;
-  BlockAnswers block;
-  for (;;) {
-    const auto [from, to] = dealer.take(thread, stop != nullptr && stop->load(std::memory_order_relaxed));
-    if (from == to) return;
-    for (long long first = from; first < to; first += 8) {
-      block.keep_history = static_cast<std::size_t>(first) < table.histories_kept(table.status.size());
-      try {
-        scores(first, block_scores);
-        model(block_scores, block);
-      } catch (const std::exception& error) {
-        dealer.complain(first, error.what());
-        block.answer.assign(table.answer.size(), Lanes<8>(nothing));
-        block.limit.assign(table.limit.size(), Lanes<8>(nothing));
-        block.head_max.clear();
-        block.head_min.clear();
-        block.history.clear();
-        block.status.fill(not_finite);
-      }
-      const int lanes = static_cast<int>(std::min(8LL, to - first));
-      table.store(static_cast<std::size_t>(first), lanes, block);
+/// Draws that broke off: nothing but failed ones.
+void fail(const DrawTable& table, BlockAnswers& block) {
+  block.answer.assign(table.answer.size(), Lanes<8>(nothing));
+  block.limit.assign(table.limit.size(), Lanes<8>(nothing));
+  block.head_max.clear();
+  block.head_min.clear();
+  block.history.clear();
+  block.status.fill(not_finite);
+}
+
+/// One thread's work: blocks until the dealer has none, several at a time.
+class Worker {
+ public:
+  Worker(Dealer& dealer, std::size_t thread, const ScoreSource& scores, BlockModel& model, DrawTable& table)
+      : dealer_(dealer), thread_(thread), source_(scores), model_(model), table_(table) {}
+
+  void work(const std::atomic<bool>* stop) {
+    for (;;) {
+      const auto [from, to] = dealer_.take(thread_, stop != nullptr && stop->load(std::memory_order_relaxed));
+      if (from == to) return;
+      for (long long first = from; first < to; first += 8 * static_cast<long long>(at_once)) answer(first, to);
     }
   }
-}
+
+ private:
+  static constexpr std::size_t at_once = 16;
+
+  /// Calls `step`; false with a complaint about the draws from `first` on where it throws.
+  template <class Step>
+  bool tried(long long first, const Step& step) {
+    try {
+      step();
+      return true;
+    } catch (const std::exception& error) {
+      dealer_.complain(first, error.what());
+      return false;
+    }
+  }
+
+  void answer(long long first, long long to) {
+    const auto blocks = std::min(at_once, static_cast<std::size_t>((to - first + 7) / 8));
+    std::array<bool, at_once> drawn{};
+    bool all_drawn = true;
+    for (std::size_t k = 0; k < blocks; ++k) {
+      const long long draw = first + 8 * static_cast<long long>(k);
+      drawn[k] = tried(draw, [&] { source_(draw, scores_[k]); });
+      all_drawn = all_drawn && drawn[k];
+    }
+    if (all_drawn) tried(first, [&] { model_.expect({scores_.data(), blocks}); });
+    for (std::size_t k = 0; k < blocks; ++k) {
+      const long long draw = first + 8 * static_cast<long long>(k);
+      block_.keep_history = static_cast<std::size_t>(draw) < table_.histories_kept(table_.status.size());
+      if (!drawn[k] || !tried(draw, [&] { model_(scores_[k], block_); })) fail(table_, block_);
+      table_.store(static_cast<std::size_t>(draw), static_cast<int>(std::min(8LL, to - draw)), block_);
+    }
+  }
+
+  Dealer& dealer_;
+  std::size_t thread_;
+  const ScoreSource& source_;
+  BlockModel& model_;
+  DrawTable& table_;
+  std::array<network::Scores<8>, at_once> scores_;
+  BlockAnswers block_;
+};
 
 }  // namespace
 
@@ -189,7 +224,7 @@ DrawSummary run_draws(long long first,
     threads.reserve(models.size());
     for (std::size_t t = 0; t < models.size(); ++t) {
       threads.emplace_back([&, t] {
-        work(dealer, t, scores, models[t], table, options.stop);
+        Worker(dealer, t, scores, models[t], table).work(options.stop);
         const std::lock_guard lock(mutex);
         --running;
         ended.notify_one();

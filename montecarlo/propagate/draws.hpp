@@ -9,8 +9,11 @@
 #include "transient/march/surge.hpp"
 
 #include <atomic>
+#include <concepts>
 #include <functional>
+#include <span>
 #include <string>
+#include <utility>
 #include <vector>
 
 namespace headband::montecarlo {
@@ -19,7 +22,26 @@ namespace headband::montecarlo {
 using BlockAnswers = transient::DrawAnswers<8>;
 
 /// Answers eight draws from their scores. Keeps its storage; used by one thread at a time.
-using BlockModel = std::function<void(const network::Scores<8>&, BlockAnswers&)>;
+class BlockModel {
+ public:
+  using Answer = std::function<void(const network::Scores<8>&, BlockAnswers&)>;
+  using Expect = std::function<void(std::span<const network::Scores<8>>)>;
+
+  /// @param expect told the blocks that will be asked next, in their order, before they are: a model may do at once for
+  /// all of them what pays; its answers must not hang on it
+  BlockModel(Answer answer, Expect expect) : answer_(std::move(answer)), expect_(std::move(expect)) {}
+  template <std::invocable<const network::Scores<8>&, BlockAnswers&> F>
+  BlockModel(F answer) : answer_(std::move(answer)) {}  // NOLINT(google-explicit-constructor)
+
+  void operator()(const network::Scores<8>& scores, BlockAnswers& out) const { answer_(scores, out); }
+  void expect(std::span<const network::Scores<8>> blocks) const {
+    if (expect_) expect_(blocks);
+  }
+
+ private:
+  Answer answer_;
+  Expect expect_;
+};
 
 /// Fills the scores of the draws `first` … `first + 7`. Used by all threads at once.
 using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;

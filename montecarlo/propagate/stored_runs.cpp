@@ -44,11 +44,14 @@ std::vector<double> input_rows(const std::vector<Input>& inputs,
   for (std::size_t run = 0; run < runs; run += 8) {
     sampler.spaced(static_cast<long long>(run * stride), static_cast<long long>(stride), scores);
     for (const std::size_t unknown : ranges.unknown) scores[unknown] = 0.5;
-    base::quantiles(spreads, scores, values);
-    for (std::size_t lane = 0; lane < std::min<std::size_t>(8, runs - run); ++lane) {
-      for (std::size_t u = 0; u < many; ++u) {
-        const int at = static_cast<int>(lane);
-        rows[(run + lane) * many + u] = inputs[u].quantity != nullptr ? values[u][at] : inputs[u].value(scores[u][at]);
+    base::quantiles(spreads, std::span<const base::Lanes<8>>(scores), values);
+    const std::size_t here = std::min<std::size_t>(8, runs - run);
+    for (std::size_t u = 0; u < many; ++u) {
+      double* at = &rows[run * many + u];
+      const bool choice = inputs[u].quantity == nullptr;
+      for (std::size_t lane = 0; lane < here; ++lane, at += many) {
+        const int place = static_cast<int>(lane);
+        *at = choice ? inputs[u].value(scores[u][place]) : values[u][place];
       }
     }
   }

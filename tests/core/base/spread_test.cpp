@@ -189,12 +189,20 @@ TEST(Spread, ManyAtOnceGiveTheBitsOfOneByOne) {
           score.set(lane, there[round % 6]);
         }
       }
-      quantiles(ready, scores, values);
+      quantiles(ready, std::span<const Lanes<8>>(scores), values);
+      std::vector<std::vector<Lanes<8>>> blocks{scores, scores, scores}, block_values(3, std::vector<Lanes<8>>(many));
+      for (std::size_t i = 0; i < many; ++i) {  // other scores in the middle one
+        for (int lane = 0; lane < 8; ++lane) blocks[1][i].set(lane, scores[i][7 - lane]);
+      }
+      quantiles(ready, std::span<const std::vector<Lanes<8>>>(blocks), block_values);
       for (std::size_t i = 0; i < many; ++i) {
         for (int lane = 0; lane < 8; ++lane) {
           ASSERT_EQ(std::bit_cast<std::uint64_t>(values[i][lane]),
                     std::bit_cast<std::uint64_t>(at(all[i].spread, all[i].cut, all[i].central, scores[i][lane])))
               << all[i].name << " at " << scores[i][lane];
+          ASSERT_EQ(block_values[0][i][lane], values[i][lane]);
+          ASSERT_EQ(block_values[1][i][lane], values[i][7 - lane]);
+          ASSERT_EQ(block_values[2][i][lane], values[i][lane]);
         }
       }
     }

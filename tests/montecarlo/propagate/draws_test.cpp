@@ -5,11 +5,13 @@
 
 #include <gtest/gtest.h>
 
+#include <algorithm>
 #include <bit>
 #include <chrono>
 #include <cmath>
 #include <limits>
 #include <optional>
+#include <span>
 #include <stdexcept>
 #include <thread>
 
@@ -36,6 +38,38 @@ BlockModel sum_model() {
 
 ScoreSource source_of(const Sampler& s) {
   return [&s](long long first, network::Scores<8>& scores) { s.block(first, scores); };
+}
+
+/// A model is told of the blocks before it is asked for them, in their order, and of every one.
+TEST(Draws, ModelsKnowWhatComes) {
+  const auto c = two_unknowns();
+  const Sampler sampler(c, network::Design::plain, 3, 1003);
+  const BlockModel sum = sum_model();
+  std::span<const network::Scores<8>> coming;
+  std::size_t next = 0, asked = 0, most = 0;
+  std::vector<BlockModel> models{BlockModel(
+      [&](const network::Scores<8>& scores, BlockAnswers& out) {
+        ASSERT_LT(next, coming.size());
+        EXPECT_EQ(&scores, &coming[next]);
+        ++next;
+        ++asked;
+        sum(scores, out);
+      },
+      [&](std::span<const network::Scores<8>> blocks) {
+        EXPECT_EQ(next, coming.size());
+        coming = blocks;
+        next = 0;
+        most = std::max(most, blocks.size());
+      })};
+  DrawTable table(1, 1, 0);
+  table.resize(1003);
+  EXPECT_EQ(run_draws(0, 1003, source_of(sampler), models, table, {.blocks_at_once = 64}).done, 1003);
+  EXPECT_EQ(asked, 126U);
+  EXPECT_GT(most, 1U);
+  for (long long draw = 0; draw < 1003; ++draw) {
+    const auto one = sampler.draw(draw);
+    EXPECT_EQ(table.answer[0][static_cast<std::size_t>(draw)], one[0].number + 2.0 * one[1].number);
+  }
 }
 
 TEST(Draws, BitsDoNotDependOnThreadsOrBlocks) {
