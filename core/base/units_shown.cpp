@@ -16,7 +16,7 @@ constexpr double us_gallon = 3.785411784e-3;              // [m3], 231 in3
 constexpr double psi = 0.45359237 * 9.80665 / 6.4516e-4;  // [Pa], lbf/in2
 
 DisplayUnit of(std::string_view name) {
-  const Unit unit = find_unit(name)->unit;
+  const Unit unit = find_unit(name).value().unit;  // a name of our own: the table holds it
   return {std::string(name), unit.times, unit.by, unit.offset};
 }
 

@@ -83,7 +83,7 @@ void Root::finish() {
 }
 
 std::string element_name(Context& context, const toml::table& table, std::string_view kind, std::size_t index) {
-  const std::string stand_in = fmt::format("{} {}", kind, index + 1);
+  std::string stand_in = fmt::format("{} {}", kind, index + 1);
   const toml::node* node = table.get("name");
   if (node == nullptr) {
     context.names_doubtful = true;
@@ -96,7 +96,7 @@ std::string element_name(Context& context, const toml::table& table, std::string
     return stand_in;
   }
   const auto* text = node->as_string();
-  const std::string name = text == nullptr ? std::string() : text->get();
+  std::string name = text == nullptr ? std::string() : text->get();
   const auto complain = [&](std::string what, std::string bound) {
     context.names_doubtful = true;
     context.report(place_of(*node),

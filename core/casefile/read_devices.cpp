@@ -53,7 +53,9 @@ void read_places(Root& root, Case& c) {
   }
 }
 
-void read_protection(Root& root, Case& c) {
+namespace {
+
+void read_air_vessels(Root& root, Case& c) {
   std::size_t index = 0;
   for (const toml::table* table : root.list("air_vessel")) {
     AirVessel vessel;
@@ -74,7 +76,10 @@ void read_protection(Root& root, Case& c) {
     section.finish();
     c.air_vessels.push_back(std::move(vessel));
   }
-  index = 0;
+}
+
+void read_surge_tanks(Root& root, Case& c) {
+  std::size_t index = 0;
   for (const toml::table* table : root.list("surge_tank")) {
     SurgeTank tank;
     tank.name = element_name(root.context(), *table, "surge_tank", index++);
@@ -100,7 +105,10 @@ void read_protection(Root& root, Case& c) {
     section.finish();
     c.surge_tanks.push_back(std::move(tank));
   }
-  index = 0;
+}
+
+void read_reliefs(Root& root, Case& c) {
+  std::size_t index = 0;
   for (const toml::table* table : root.list("relief")) {
     Relief relief;
     relief.name = element_name(root.context(), *table, "relief", index++);
@@ -121,7 +129,10 @@ void read_protection(Root& root, Case& c) {
     section.finish();
     c.reliefs.push_back(std::move(relief));
   }
-  index = 0;
+}
+
+void read_air_valves(Root& root, Case& c) {
+  std::size_t index = 0;
   for (const toml::table* table : root.list("air_valve")) {
     AirValve valve;
     valve.name = element_name(root.context(), *table, "air_valve", index++);
@@ -135,6 +146,15 @@ void read_protection(Root& root, Case& c) {
     section.finish();
     c.air_valves.push_back(std::move(valve));
   }
+}
+
+}  // namespace
+
+void read_protection(Root& root, Case& c) {
+  read_air_vessels(root, c);
+  read_surge_tanks(root, c);
+  read_reliefs(root, c);
+  read_air_valves(root, c);
 }
 
 }  // namespace headband::casefile

@@ -116,6 +116,7 @@ void read_answers(Section& section, BandRequest& band) {
     band.answers.push_back(std::move(answer));
   }
   std::vector<std::string*> names;
+  names.reserve(band.answers.size());
   for (AnswerRequest& answer : band.answers) names.push_back(&answer.name);
   number_repeats(names);
 }
@@ -418,6 +419,7 @@ void read_limits(Root& root, Case& c) {
     c.limits.push_back(std::move(limit));
   }
   std::vector<std::string*> names;
+  names.reserve(c.limits.size());
   for (Limit& limit : c.limits) names.push_back(&limit.name);
   number_repeats(names);
   for (Limit& limit : c.limits) limit.subject.name = limit.name;
