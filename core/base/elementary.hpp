@@ -105,7 +105,7 @@ template <class Number>
 
 template <class Number>
 [[nodiscard]] HEADBAND_INLINE Number log_core(const Number& x) {
-  const Number usual = log_of_parts<Number>(part(x));
+  const auto usual = log_of_parts<Number>(part(x));
   Number r = x < std::numeric_limits<double>::infinity() ? usual : x;
   r = x == 0.0 ? same<Number>(-std::numeric_limits<double>::infinity()) : r;
   return x < 0.0 ? same<Number>(std::numeric_limits<double>::quiet_NaN()) : r;

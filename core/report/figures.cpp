@@ -413,7 +413,7 @@ Plot density(const Study& study, std::size_t index) {
   const auto count = static_cast<double>(draws.size());
   const auto quartile = [&](double share) { return draws[static_cast<std::size_t>(share * (count - 1.0))]; };
   const double low = draws.front(), high = draws.back();
-  const double reach = high > low ? high - low : std::max(1e-6 * std::abs(high), 1e-9);
+  const double reach = std::max({high - low, least_reach * std::abs(high), 1e-9});
   // Step of the histogram: Freedman & Diaconis (1981), 2 IQR n^(-1/3), from memory; kept between 8 and 72 steps.
   const double rule = 2.0 * (quartile(0.75) - quartile(0.25)) / std::cbrt(count);
   const int steps = std::clamp(rule > 0.0 ? static_cast<int>(std::ceil(reach / rule)) : 8, 8, 72);

@@ -11,7 +11,8 @@ void set_ranges(Plot& plot) {
     plot.x.low = plot.abscissa.front();
     plot.x.high = plot.abscissa.back();
   }
-  if (!(plot.x.high > plot.x.low)) plot.x.high = plot.x.low + 1.0;
+  const double size_x = std::max(std::abs(plot.x.low), std::abs(plot.x.high));
+  if (!(plot.x.high - plot.x.low > least_reach * size_x)) plot.x.high = plot.x.low + std::max(1.0, 1e-3 * size_x);
   if (std::isnan(plot.y.low)) {
     double low = std::numeric_limits<double>::infinity();
     double high = -low;
@@ -29,7 +30,8 @@ void set_ranges(Plot& plot) {
       if (!level.upright) take(level.value);
     for (const Point& point : plot.points) take(point.y);
     if (!(low <= high)) low = 0.0, high = 1.0;
-    const double air = high > low ? 0.06 * (high - low) : std::max(1e-3 * std::abs(high), 1e-6);
+    const double size = std::max(std::abs(low), std::abs(high));
+    const double air = high - low > least_reach * size ? 0.06 * (high - low) : std::max(1e-3 * size, 1e-6);
     plot.y.low = from_zero ? 0.0 : low - air;
     plot.y.high = high + air;
   }

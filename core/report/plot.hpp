@@ -84,6 +84,10 @@ struct Plot {
   int height = 330;  ///< of the picture, 720 wide [px]
 };
 
+/// Shortest reach of an axis as a share of its numbers. What differs by less is rounding, and marks closer than that
+/// cannot be told apart, nor counted through, in double precision.
+inline constexpr double least_reach = 1e-7;
+
 /// Sets ranges that are not set: x to the abscissa, y to everything drawn with a little air.
 void set_ranges(Plot& plot);
 

@@ -422,7 +422,8 @@ void bands(Frame& f) {
                          f.amounts.of((*a.range)[1], d)));
     }
     if (a.modes > 1) f.item(fmt::format("{}: the density has {} humps; mean and band hide that", a.name, a.modes));
-    if (a.sensitivity.empty()) continue;
+    const auto stated = [](const answers::SensitivityAnswer& s) { return !std::isnan(s.first); };
+    if (std::ranges::none_of(a.sensitivity, stated)) continue;
     std::string ranks;
     for (const auto& s : ranked_unknowns(a))
       ranks += fmt::format("{}{} ({})", ranks.empty() ? "" : ", ", s.input, percent(s.first));

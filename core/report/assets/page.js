@@ -256,7 +256,7 @@
           range: (self, low, high) => {
             if (isWhole(self) || low == null) return wholeY;
             if (stepped) return [0, high * 1.06];
-            const air = 0.06 * (high - low) || 0.06 * reachY;
+            const air = Math.max(0.06 * (high - low), 1e-6 * reachY);
             return [low - air, high + air];
           },
         },

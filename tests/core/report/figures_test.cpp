@@ -236,6 +236,11 @@ TEST(Density, a_few_draws_make_no_picture_and_equal_draws_no_trouble) {
   const Plot flat = density(study, 0);
   EXPECT_TRUE(std::all_of(flat.abscissa.begin(), flat.abscissa.end(), [](double v) { return std::isfinite(v); }));
   EXPECT_EQ(svg(flat, Family::si).find("nan"), std::string::npos);
+  for (std::size_t i = 0; i < study.bands->output_value.size(); ++i)  // a pressure held at the vapour limit
+    study.bands->output_value[i] = -99320.0 + (i % 2 == 0 ? 0.0 : 1e-11);
+  const Plot nearly = density(study, 0);
+  EXPECT_GE(nearly.x.high - nearly.x.low, 9e-3);
+  EXPECT_EQ(nearly.abscissa.back(), nearly.x.high);
   study.bands->output_value.resize(3 * 19);
   EXPECT_TRUE(density(study, 0).abscissa.empty());
   EXPECT_TRUE(density(study, 99).abscissa.empty());

@@ -49,6 +49,26 @@ TEST(Thinned, short_curves_are_kept_whole_and_missing_values_left_out) {
   EXPECT_TRUE(thinned({}, {}, 0, 1, 10).empty());
 }
 
+TEST(Ranges, rounding_is_no_reach) {
+  Plot plot;
+  plot.abscissa = {0.0, 1.0, 2.0};
+  plot.curves.push_back({"still", {22.0, 22.0 + 1e-14, 22.0 - 1e-14}, Ink::blue});
+  set_ranges(plot);
+  EXPECT_LE(plot.y.low, 22.0 - 0.02);
+  EXPECT_GE(plot.y.high, 22.0 + 0.02);
+
+  Plot upright;
+  upright.abscissa = {1e5, 1e5 + 2e-11};
+  set_ranges(upright);
+  EXPECT_GE(upright.x.high - upright.x.low, 1.0);
+
+  Plot slow;  // small, but real
+  slow.abscissa = {0.0, 1.0};
+  slow.curves.push_back({"creeping", {22.0, 22.001}, Ink::blue});
+  set_ranges(slow);
+  EXPECT_NEAR(slow.y.high - slow.y.low, 1.12e-3, 1e-9);
+}
+
 TEST(Ticks, are_round_and_inside) {
   for (const auto& [low, high] : {std::pair{0.0, 1.0},
                                   std::pair{-13.2, 987.0},
