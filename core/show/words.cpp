@@ -230,6 +230,12 @@ std::vector<std::string> cautions(const Study& study) {
   if (!reported_cavities(study).empty()) {
     add_once(list, "Vapour formed in this run; pressures after a cavity rejoins are of the right order of size only.");
   }
+  const auto stands_open = [](const answers::CavityAnswer& c) { return std::isnan(c.closes); };
+  if (std::ranges::any_of(reported_cavities(study), stands_open)) {
+    add_once(list,
+             "A vapour cavity stood open when the run ended: the pressure at its rejoining is not in these numbers; "
+             "give the run a longer duration.");
+  }
   if (study.bands) {
     const auto& b = *study.bands;
     if (b.surged && b.with_cavity > 0) {

@@ -131,6 +131,7 @@ class BandRun {
     bands.seed = seed_;
     bands.draws_asked = case_.band.draws;
     bands.surged = options_.surge;
+    name_answers();
     name_runs(bands, inputs_, plan_, computed_);
     if (options_.surge && case_.surge.time_step.given()) {
       for (const auto& pipe : case_.pipes) {
@@ -175,6 +176,7 @@ class BandRun {
       if (first < draws_) {
         DrawOptions o = draw_options(0);
         if (options_.checkpoint) {
+          o.checkpoint_seconds = options_.checkpoint_seconds;
           o.checkpoint = [this](long long done) {
             answers::Bands so_far = outcome_.bands;
             keep_runs(so_far, table_, done, inputs_, *sampler_, ranges_, 1, true);
@@ -251,16 +253,24 @@ class BandRun {
     }
   }
 
-  void form_answers() {
-    for (std::size_t i = 0; i < computed_.size(); ++i) {
-      const network::AnswerPlan& plan = plan_.answers[computed_[i]];
-      const Sample sample(table_.answer[i], table_.status, shape());
+  /// What is answered; the columns of stored draws hang on it.
+  void name_answers() {
+    for (const std::size_t i : computed_) {
+      const network::AnswerPlan& plan = plan_.answers[i];
       answers::BandAnswer answer;
       answer.name = plan.name;
       answer.kind = kind_word(plan.kind);
       answer.unit = unit_word(plan.kind);
       answer.where = where_words(plan);
-      if (computed_[i] < central_.answer_value.size()) answer.central = central_.answer_value[computed_[i]];
+      if (i < central_.answer_value.size()) answer.central = central_.answer_value[i];
+      outcome_.bands.answers.push_back(std::move(answer));
+    }
+  }
+
+  void form_answers() {
+    for (std::size_t i = 0; i < computed_.size(); ++i) {
+      const Sample sample(table_.answer[i], table_.status, shape());
+      answers::BandAnswer& answer = outcome_.bands.answers[i];
       answer.mean = sample.mean();
       answer.standard_deviation = sample.standard_deviation();
       answer.quantiles = sample.quantiles(asked_probabilities(case_.band.coverage));
@@ -275,7 +285,6 @@ class BandRun {
         const auto [least, most] = std::ranges::minmax(medians_[i]);
         answer.range = {least, most};
       }
-      outcome_.bands.answers.push_back(std::move(answer));
     }
     outcome_.limits = over_ranges(ranges_, case_, judged_);
     outcome_.bands.whole_line.clear();
@@ -364,7 +373,6 @@ class BandRun {
   /// What a stopped run hands over: the draws done, and what they say so far.
   BandOutcome stopped() {
     outcome_.stopped = true;
-    outcome_.bands.answers.clear();
     outcome_.limits.clear();
     if (table_.draws() > 0) {
       judged_.resize(std::min<std::size_t>(judged_.size(), 1));

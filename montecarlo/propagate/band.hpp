@@ -21,8 +21,10 @@ struct BandOptions {
   std::function<void(long long done, long long all)> progress = {};  ///< called from the calling thread
   /// Draws of a stopped band of the same case, seed and verb, as `checkpoint` or a stopped BandOutcome gave them.
   std::optional<answers::Bands> resumed = {};
-  /// Called from the calling thread about once a minute with all draws done so far (stride 1).
+  /// Called from the calling thread, `checkpoint_seconds` apart, with all draws done so far (stride 1); the answers
+  /// have names and no numbers yet.
   std::function<void(const answers::Bands&)> checkpoint = {};
+  double checkpoint_seconds = 60.0;  ///< >= 0
 };
 
 /// What the band of a case says: blocks of a Study.

@@ -232,7 +232,8 @@ DrawSummary run_draws(long long first,
     }
     auto saved = std::chrono::steady_clock::now();
     std::unique_lock lock(mutex);
-    while (!ended.wait_for(lock, std::chrono::milliseconds(200), [&] { return running == 0; })) {
+    const std::chrono::duration<double> glance(std::clamp(options.checkpoint_seconds, 1e-3, 0.2));
+    while (!ended.wait_for(lock, glance, [&] { return running == 0; })) {
       lock.unlock();
       const long long done = dealer.done();
       if (options.progress) options.progress(done);

@@ -92,6 +92,12 @@ TEST(Words, CautionsFollowTheNumbersAndAreNotRepeated) {
   EXPECT_TRUE(any(steady, "calculation aid"));
   EXPECT_FALSE(any(steady, "order of size"));
   auto broken = support::sample_surge();
+  EXPECT_EQ(any(cautions(broken), "stood open when the run ended"),
+            std::ranges::any_of(broken.transient->cavities, [](const auto& c) { return std::isnan(c.closes); }));
+  for (auto& cavity : broken.transient->cavities) cavity.closes = 9.0;
+  EXPECT_FALSE(any(cautions(broken), "stood open when the run ended"));
+  broken.transient->cavities.front().closes = answers::missing;
+  EXPECT_TRUE(any(cautions(broken), "stood open when the run ended"));
   broken.audit->volume_residual_relative = -0.02;
   EXPECT_TRUE(any(cautions(broken), "not accounted for"));
 }

@@ -3,6 +3,7 @@
 
 #include "core/base/error.hpp"
 #include "core/casefile/read.hpp"
+#include "core/resultfile/result_file.hpp"
 #include "core/steady/evaluate.hpp"
 #include "montecarlo/bands/counts.hpp"
 
@@ -322,6 +323,35 @@ seed = 3
 answers = [{ highest_pressure = "end", name = "peak" }, { flow = "main", name = "flow" }]
 )" + band +
          "\n" + more;
+}
+
+TEST(Band, EachCheckpointIsAFileThatCanBeTakenUp) {
+  for (const bool surge : {false, true}) {
+    const Ready r = ready(surge ? surge_words("draws = 4096") : words("draws = 1048576\nseed = 9", head_limit));
+    const std::string file = testing::TempDir() + "checkpoint.partial.h5";
+    long long kept = 0, files = 0;
+    BandOptions options{.surge = surge};
+    options.checkpoint_seconds = 0.0;
+    options.checkpoint = [&](const answers::Bands& bands) {
+      answers::Study so_far;
+      so_far.state = answers::RunState::partial;
+      so_far.pipes.emplace_back().name = "main";
+      so_far.bands = bands;
+      resultfile::write(so_far, file, {.replace = true});
+      kept = bands.draws;
+      ++files;
+    };
+    const auto whole = band(r, options);
+    ASSERT_GE(files, 1);
+    EXPECT_GT(kept, 0);
+    BandOptions resuming{.surge = surge, .threads = 2};
+    resuming.resumed = resultfile::read(file).bands;
+    ASSERT_TRUE(resuming.resumed.has_value());
+    EXPECT_EQ(resuming.resumed->draws, kept);
+    const auto resumed = band(r, resuming);
+    EXPECT_TRUE(resumed.warnings == whole.warnings);
+    EXPECT_EQ(resumed.bands.output_value, whole.bands.output_value);
+  }
 }
 
 TEST(Band, MarchedDrawsAreTheSameForAnyThreadsAndResume) {
