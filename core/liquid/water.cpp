@@ -13,8 +13,8 @@ namespace {
 /// x^n by repeated squaring; n of either sign.
 double integer_power(double x, int n) {
   double base = n < 0 ? 1.0 / x : x, result = 1.0;
-  for (unsigned k = static_cast<unsigned>(n < 0 ? -n : n); k != 0; k >>= 1) {
-    if (k & 1U) result *= base;
+  for (auto k = static_cast<unsigned>(n < 0 ? -n : n); k != 0; k >>= 1) {
+    if ((k & 1U) != 0) result *= base;
     base *= base;
   }
   return result;

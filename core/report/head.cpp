@@ -31,7 +31,7 @@ std::string word_of_verb(const std::string& verb) {
 std::string sentence(const Study& study, const char* units) {
   std::string text = show::decision(study, units);
   const std::string stamp = show::words_of(study.verdict) + ": ";
-  if (study.verdict != Verdict::none && text.rfind(stamp, 0) == 0) {
+  if (study.verdict != Verdict::none && text.starts_with(stamp)) {
     text.erase(0, stamp.size());
     if (!text.empty() && text[0] >= 'a' && text[0] <= 'z') text[0] = static_cast<char>(text[0] - 'a' + 'A');
   }

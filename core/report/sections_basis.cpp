@@ -45,7 +45,7 @@ std::string cavities(const Study& study) {
                           both(cavity.opens, Shown::time),
                           std::isnan(cavity.closes) ? "open at the end" : both(cavity.closes, Shown::time),
                           both(cavity.max_volume, Shown::volume, 3)});
-  const std::string body = html(table);
+  std::string body = html(table);
   if (body.empty()) return body;
   return body + "<p class=\"key\">Pressures after a cavity has closed are of the right order of size only.</p>\n";
 }

@@ -10,6 +10,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <ranges>
 #include <tuple>
 
 namespace headband::report {
@@ -120,9 +121,9 @@ void part(std::vector<SideLabel>& labels, double top, double bottom) {
     next = label.placed + line_height;
   }
   double limit = bottom;
-  for (auto label = labels.rbegin(); label != labels.rend(); ++label) {
-    label->placed = std::min(label->placed, limit);
-    limit = label->placed - line_height;
+  for (auto& label : std::views::reverse(labels)) {
+    label.placed = std::min(label.placed, limit);
+    limit = label.placed - line_height;
   }
 }
 

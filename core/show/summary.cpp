@@ -57,7 +57,7 @@ struct Frame {
 
 /// The verdict's words, coloured where asked: the words alone say it all.
 std::string stamp(Verdict verdict, bool colour) {
-  const std::string words = words_of(verdict);
+  std::string words = words_of(verdict);
   if (!colour || words.empty()) return words;
   const char* start = verdict == Verdict::ok ? "\x1b[1;32m" : verdict == Verdict::not_ok ? "\x1b[1;31m" : "\x1b[1;33m";
   return start + words + "\x1b[0m";
@@ -77,7 +77,7 @@ void decide(Frame& f) {
   const std::string verdict = words_of(f.study.verdict);
   std::string text = wrapped(f.plain(sentence), terminal_width, "");
   // The stamp stands first; where the sentence starts with it, it is that start.
-  if (!verdict.empty() && text.rfind(verdict, 0) == 0) {
+  if (!verdict.empty() && text.starts_with(verdict)) {
     text.replace(0, verdict.size(), stamp(f.study.verdict, f.options.colour));
   } else if (!verdict.empty()) {
     text = stamp(f.study.verdict, f.options.colour) + "\n" + text;

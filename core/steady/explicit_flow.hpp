@@ -37,7 +37,7 @@ void solve_explicit(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W
   const Lanes<W> zero(0.0);
   if (flows.flow.size() != graph.links.size()) flows.flow.resize(graph.links.size());
   if (flows.losses.size() != numbers.pipes.size()) flows.losses.resize(numbers.pipes.size());
-  flows.possible = zero == zero;
+  flows.possible = zero == zero;  // NOLINT(misc-redundant-expression): a mask with every lane on
   for (auto step = graph.steps.rbegin(); step != graph.steps.rend(); ++step) {
     const Link& link = graph.links[static_cast<std::size_t>(step->link)];
     const Lanes<W> outwards = numbers.outflow[static_cast<std::size_t>(step->child)];

@@ -12,8 +12,10 @@ namespace {
 
 [[gnu::constructor(101)]] void look_at_processor() {
   __builtin_cpu_init();
+  // NOLINTBEGIN(readability-implicit-bool-conversion): an int for one compiler, a bool for the other
   const bool fits = __builtin_cpu_supports("avx2") != 0 && __builtin_cpu_supports("bmi") != 0 &&
                     __builtin_cpu_supports("bmi2") != 0 && __builtin_cpu_supports("fma") != 0;
+  // NOLINTEND(readability-implicit-bool-conversion)
   if (fits) return;
   static const char text[] =
       "headband: this build needs a processor of level x86-64-v3 (AVX2, BMI, FMA; made since about 2013 to 2015);\n"

@@ -20,7 +20,7 @@ std::string progress_line(long long done, long long all, double seconds, bool un
   std::string left = "time left unknown";
   if (done > 0 && seconds > 0.0) {
     const double rest = std::min(seconds * (1.0 - share) / std::max(share, 1e-12), 359999.0);
-    const long whole = static_cast<long>(rest + 0.5);
+    const long whole = std::lround(rest);
     left = whole >= 3600 ? fmt::format("{} h {:02} min left", whole / 3600, whole / 60 % 60)
            : whole >= 60 ? fmt::format("{} min {:02} s left", whole / 60, whole % 60)
                          : fmt::format("{} s left", whole);

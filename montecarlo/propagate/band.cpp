@@ -161,7 +161,7 @@ class BandRun {
       if (taken_up_ == 0 && !options_.resumed->run_status.empty())
         warn("the draws of the interrupted band do not fit this case: started anew");
     }
-    const long long passes = static_cast<long long>(ranges_.points.size());
+    const auto passes = static_cast<long long>(ranges_.points.size());
     all_work_ = draws_ * passes + budget_work(inputs_, std::min(draws_, budget_draws), options_.surge);
   }
 

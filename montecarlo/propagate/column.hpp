@@ -18,7 +18,7 @@ namespace headband::montecarlo {
 template <class T>
 struct ColumnStorage {
   static_assert(std::is_trivially_copyable_v<T>);
-  using value_type = T;
+  using value_type = T;  // NOLINT(readability-identifier-naming): what the standard library asks for
   static constexpr std::size_t large_page = std::size_t{2} << 20;
   static constexpr std::size_t worth_large_pages = 2 * large_page;
 

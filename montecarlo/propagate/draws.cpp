@@ -27,13 +27,13 @@ constexpr std::size_t most_envelope_numbers = std::size_t{64} << 20;
 class Dealer {
  public:
   Dealer(long long first, long long last, long long width, std::size_t threads)
-      : next_(first), last_(last), width_(width), held_(threads, free_) {}
+      : next_(first), last_(last), width_(width), held_(threads, nobody) {}
 
   /// The next range for `thread`, after what it held is done; empty at the end.
   std::pair<long long, long long> take(std::size_t thread, bool stop) {
     const std::lock_guard lock(mutex_);
     if (stop || next_ >= last_) {
-      held_[thread] = free_;
+      held_[thread] = nobody;
       return {last_, last_};
     }
     const long long from = next_;
@@ -58,11 +58,11 @@ class Dealer {
   [[nodiscard]] const std::string& complaint() const { return complaint_; }
 
  private:
-  static constexpr long long free_ = std::numeric_limits<long long>::max();
+  static constexpr long long nobody = std::numeric_limits<long long>::max();
   std::mutex mutex_;
   long long next_, last_, width_;
   std::vector<long long> held_;
-  long long complaint_draw_ = free_;
+  long long complaint_draw_ = nobody;
   std::string complaint_;
 };
 
