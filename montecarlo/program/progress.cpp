@@ -7,6 +7,7 @@
 
 #include <unistd.h>
 #include <algorithm>
+#include <cmath>
 #include <cstdlib>
 
 namespace headband::program {
