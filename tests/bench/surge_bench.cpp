@@ -244,7 +244,7 @@ void surge_threads(benchmark::State& state) {
     montecarlo::DrawTable table(1, 0, 0);
     table.resize(count);
     (void)montecarlo::run_draws(0, count, scores, models, table, {});
-    return table.answer[0];
+    return std::vector<double>(table.answer[0].begin(), table.answer[0].end());
   };
   const std::vector<double> one = run(1);
   std::vector<double> answers;
