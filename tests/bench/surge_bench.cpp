@@ -246,8 +246,8 @@ void surge_threads(benchmark::State& state) {
     (void)montecarlo::run_draws(0, count, scores, models, table, {});
     return std::vector<double>(table.answer[0].begin(), table.answer[0].end());
   };
-  const std::vector<double> one = run(1);
-  std::vector<double> answers;
+  const auto one = run(1);
+  auto answers = one;
   for (auto _ : state) answers = run(static_cast<std::size_t>(state.range(0)));
   if (answers != one) state.SkipWithError("other numbers on more threads");
   state.counters["check_first_Pa"] = answers.front();

@@ -417,8 +417,10 @@ Arriving<W> arriving_at_from(const Resistance<W>& resistance, const PipeRows<W>&
   const Lanes<W> q = cavities ? rows.flow_before[1] : rows.flow[1];
   const Lanes<W> fitting = rows.fitting != nullptr ? rows.fitting[0] : Lanes<W>(0.0);
   const Lanes<W> longer = rows.fitting != nullptr ? rows.longer[0] : Lanes<W>(0.0);
+  // from the root the row itself starts from in this step: one correction instead of a solve anew
+  Lanes<W> root = rows.root != nullptr ? rows.root[1] : Lanes<W>(0.0);
   return with_form(resistance, [&]<Form form>() {
-    const Sent<W> s = sent_by<W, form>(resistance, q, fitting, longer);
+    const Sent<W> s = sent_by<W, form>(resistance, q, fitting, longer, rows.root != nullptr ? &root : nullptr);
     return Arriving<W>{rows.head[1] - s.carry * q, s.damp};
   });
 }
@@ -428,11 +430,12 @@ Arriving<W> arriving_at_to(const Resistance<W>& resistance,
                            const PipeRows<W>& rows,
                            const base::PerLane<int, W>& reaches,
                            bool uniform) {
-  Lanes<W> h(0.0), q(0.0), fitting(0.0), longer(0.0);
+  Lanes<W> h(0.0), q(0.0), fitting(0.0), longer(0.0), root(0.0);
   if (uniform) {
     const int row = reaches[0] - 1;
     h = rows.head[row];
     q = rows.flow[row];
+    if (rows.root != nullptr) root = rows.root[row];
     if (rows.fitting != nullptr) {
       fitting = rows.fitting[row];
       longer = rows.longer[row];
@@ -442,6 +445,7 @@ Arriving<W> arriving_at_to(const Resistance<W>& resistance,
       const int row = reaches[static_cast<std::size_t>(lane)] - 1;
       h.set(lane, rows.head[row][lane]);
       q.set(lane, rows.flow[row][lane]);
+      if (rows.root != nullptr) root.set(lane, rows.root[row][lane]);
       if (rows.fitting != nullptr) {
         fitting.set(lane, rows.fitting[row][lane]);
         longer.set(lane, rows.longer[row][lane]);
@@ -449,7 +453,7 @@ Arriving<W> arriving_at_to(const Resistance<W>& resistance,
     }
   }
   return with_form(resistance, [&]<Form form>() {
-    const Sent<W> s = sent_by<W, form>(resistance, q, fitting, longer);
+    const Sent<W> s = sent_by<W, form>(resistance, q, fitting, longer, rows.root != nullptr ? &root : nullptr);
     return Arriving<W>{h + s.carry * q, s.damp};
   });
 }

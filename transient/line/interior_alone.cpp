@@ -91,11 +91,8 @@ int march(const Resistance<8>& r, const PipeRows<1>& rows, int i, Arriving<1>& o
     store(new_head, head + i);
     store(new_flow, flow + i);
     if constexpr (envelope) {
-      const Lanes<B> highest = load<B>(head_max + i), lowest = load<B>(head_min + i);
-      if (any((new_head > highest) | (new_head < lowest))) {  // most steps pass nothing that was: stores cost more
-        store(max(highest, new_head), head_max + i);
-        store(min(lowest, new_head), head_min + i);
-      }
+      store(max(load<B>(head_max + i), new_head), head_max + i);
+      store(min(load<B>(head_min + i), new_head), head_min + i);
     }
     if (roots != nullptr) {
       root = roots[ahead + B - 1];

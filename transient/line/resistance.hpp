@@ -147,13 +147,14 @@ template <int W, Form form, bool placed, int V>
   return s;
 }
 
-/// Carry and damp of a node with flow `q`.
+/// Carry and damp of a node with flow `q`. @param root see cost_of
 template <int W, Form form>
 [[nodiscard]] HEADBAND_INLINE Sent<W> sent_by(const Resistance<W>& r,
                                               const Lanes<W>& q,
                                               const Lanes<W>& fitting,
-                                              const Lanes<W>& longer) {
-  return sent_over<W, form, true>(r, cost_of<W, form>(r, q, nullptr), &fitting, &longer);
+                                              const Lanes<W>& longer,
+                                              Lanes<W>* root = nullptr) {
+  return sent_over<W, form, true>(r, cost_of<W, form>(r, q, root), &fitting, &longer);
 }
 
 /// Loss of one reach at a steady flow [m], signed with the flow: what the march itself takes from a still wave.
