@@ -14,6 +14,7 @@ namespace {
 
 constexpr int highest_degree = 8;
 constexpr int most_terms = 120;
+constexpr double settled = 1e-9;  ///< share of the variance left open that no higher degree is worth trying for
 constexpr int draws_a_term = 8;  ///< a fit rests on at least this many draws per coefficient
 
 /// Functions of one input, orthonormal under its distribution: [degree - 1][draw].
@@ -189,6 +190,7 @@ FittedShares fit_shares(const std::vector<FitInput>& inputs, const std::vector<d
     if (static_cast<int>(terms.size()) > affordable) continue;
     Fit candidate = fit(functions, std::move(terms), y);
     if (candidate.left_out_error < best.left_out_error) best = std::move(candidate);
+    if (best.left_out_error < settled) break;
   }
   shares.explained = 1.0 - best.left_out_error;
   shares.terms = static_cast<int>(best.terms.size());
