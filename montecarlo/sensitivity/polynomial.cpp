@@ -15,7 +15,7 @@ namespace {
 constexpr int highest_degree = 8;
 constexpr int most_terms = 120;
 constexpr double settled = 1e-9;  ///< share of the variance left open that no higher degree is worth trying for
-constexpr int draws_a_term = 8;  ///< a fit rests on at least this many draws per coefficient
+constexpr int draws_a_term = 8;   ///< a fit rests on at least this many draws per coefficient
 
 /// Functions of one input, orthonormal under its distribution: [degree - 1][draw].
 using Functions = std::vector<std::vector<double>>;
