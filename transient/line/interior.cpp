@@ -294,11 +294,16 @@ HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
     const Lanes<W> left = select(half > cavity_rounding * rows.volume[i], half, zero);
     const auto pinned = low | (held & (left + dt * grows > zero));
     const auto closing = held & !pinned & (left > zero);
-    const Lanes<W> fills = -left / dt;
-    const Lanes<W> head = limit + (fills - grows) * (on.damp * back.damp / (on.damp + back.damp));
-    h = select(pinned, limit, select(closing, head, h));
-    before = select(pinned, to_row, select(closing, (on.head - head) / on.damp, q));
-    q = select(pinned, from_row, select(closing, (head - back.head) / back.damp, q));
+    h = select(pinned, limit, h);
+    before = select(pinned, to_row, before);
+    q = select(pinned, from_row, q);
+    if (any(closing)) {
+      const Lanes<W> fills = -left / dt;
+      const Lanes<W> head = limit + (fills - grows) * (on.damp * back.damp / (on.damp + back.damp));
+      h = select(closing, head, h);
+      before = select(closing, (on.head - head) / on.damp, before);
+      q = select(closing, (head - back.head) / back.damp, q);
+    }
     const Lanes<W> volume = select(pinned, max(left + 0.5 * dt * grows, zero), select(closing, 0.5 * left, zero));
     tally.allowance = select(closing, tally.allowance + max(abs(was), abs(grows)) * dt, tally.allowance);
     tally.closed = tally.closed | closing;
