@@ -69,31 +69,36 @@ TEST(Sample, FailedDrawsAreLeftOutOfEverything) {
   }
 }
 
+/// Sums in twice the precision.
+struct LongMoments {
+  long double mean = 0.0L, squares = 0.0L;
+  explicit LongMoments(const std::vector<double>& numbers) {
+    for (const double v : numbers) mean += static_cast<long double>(v);
+    mean /= static_cast<long double>(numbers.size());
+    for (const double v : numbers)
+      squares += (static_cast<long double>(v) - mean) * (static_cast<long double>(v) - mean);
+  }
+};
+
 /// Moments against sums in twice the precision, from few to many numbers, far from zero too.
 TEST(Sample, MomentsAreThoseOfTheNumbers) {
   for (const double offset : {0.0, 1e9}) {
     for (const int n : {1, 2, 7, 8, 9, 4099, 100000}) {
       auto x = normals(n, 9);
       for (double& v : x) v += offset;
-      long double sum = 0.0L, squares = 0.0L;
-      for (const double v : x) sum += v;
-      const long double mean = sum / n;
-      for (const double v : x) squares += (v - mean) * (v - mean);
+      const LongMoments exact(x);
       const Sample s(x, finished(x.size()), {});
-      EXPECT_NEAR(s.mean(), static_cast<double>(mean), 1e-15 * (1.0 + offset));
+      EXPECT_NEAR(s.mean(), static_cast<double>(exact.mean), 1e-15 * (1.0 + offset));
       if (n == 1) continue;
-      const double deviation = static_cast<double>(std::sqrt(squares / (n - 1)));
+      const double deviation = static_cast<double>(std::sqrt(exact.squares / (n - 1)));
       EXPECT_NEAR(s.standard_deviation() / deviation, 1.0, 1e-12) << n;
     }
   }
   std::vector<double> far(1000, 1.0);  // the first number lies far from all others
   for (std::size_t i = 0; i < far.size(); ++i) far[i] = 1.0 + 1e-3 * static_cast<double>(i % 2);
   far[0] = 1e12;
-  long double sum = 0.0L, squares = 0.0L;
-  for (const double v : far) sum += v;
-  for (const double v : far) squares += (v - sum / 1000) * (v - sum / 1000);
   const Sample s(far, finished(far.size()), {});
-  EXPECT_NEAR(s.standard_deviation() / static_cast<double>(std::sqrt(squares / 999)), 1.0, 1e-12);
+  EXPECT_NEAR(s.standard_deviation() / static_cast<double>(std::sqrt(LongMoments(far).squares / 999)), 1.0, 1e-12);
 }
 
 TEST(Sample, TooFewDrawsLeaveAnEndOpen) {

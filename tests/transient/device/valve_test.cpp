@@ -16,16 +16,19 @@ double flow(double head, double impedance, double coefficient) {
 }
 
 // Q = c sqrt(H - B Q) for H > 0 in long arithmetic: c^2 (H - B Q) = Q^2.
-long double quadratic(long double head, long double impedance, long double coefficient) {
+double quadratic(double of_head, double of_impedance, double of_coefficient) {
+  const auto head = static_cast<long double>(of_head), impedance = static_cast<long double>(of_impedance),
+             coefficient = static_cast<long double>(of_coefficient);
   const long double half = 0.5L * impedance * coefficient * coefficient;
-  return coefficient * coefficient * head / (half + sqrtl(half * half + coefficient * coefficient * head));
+  return static_cast<double>(coefficient * coefficient * head /
+                             (half + sqrtl(half * half + coefficient * coefficient * head)));
 }
 
 TEST(Valve, FlowSolvesItsQuadraticOverManyPowersOfTen) {
   test::Dice dice(11);
   for (int k = 0; k < 5000; ++k) {
     const double head = dice.about(1e-12, 1e4), impedance = dice.about(1e-2, 1e6), coefficient = dice.about(1e-9, 1e2);
-    const double expected = static_cast<double>(quadratic(head, impedance, coefficient));
+    const double expected = quadratic(head, impedance, coefficient);
     EXPECT_NEAR(flow(head, impedance, coefficient), expected, 4.0 * std::numeric_limits<double>::epsilon() * expected);
   }
 }
