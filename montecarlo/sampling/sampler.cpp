@@ -72,7 +72,7 @@ Sampler::Sampler(network::Design design,
 Sampler Sampler::twin() const {
   std::vector<std::uint64_t> names = names_;
   for (auto& name : names) name ^= twin_bit;
-  return Sampler(design_, seed_, draws_, std::move(names), random_, dependence_, first_dimension_ + names_.size());
+  return {design_, seed_, draws_, std::move(names), random_, dependence_, first_dimension_ + names_.size()};
 }
 
 void Sampler::make_points() {

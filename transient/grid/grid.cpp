@@ -65,7 +65,7 @@ double search_step(
   for (int n = reaches; n <= reaches + reaches / 4; ++n) {
     const double dt = shortest / n, worst = worst_at(r, g, dt, pipe);
     const bool carries = any_needs && waves_carried(r, g, needs_wave, dt);
-    if (carries < best_carries || (carries == best_carries && !(worst < best_worst - tie))) continue;
+    if ((best_carries && !carries) || (carries == best_carries && !(worst < best_worst - tie))) continue;
     best_carries = carries;
     best_worst = worst;
     best = dt;

@@ -98,8 +98,10 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
 }  // namespace
 
 bool has_512() {
+  // NOLINTBEGIN(readability-implicit-bool-conversion): an int for one compiler, a bool for the other
   static const bool has = __builtin_cpu_supports("avx512f") != 0 && __builtin_cpu_supports("avx512dq") != 0 &&
                           __builtin_cpu_supports("avx512vl") != 0;
+  // NOLINTEND(readability-implicit-bool-conversion)
   return has;
 }
 

@@ -115,7 +115,7 @@ class HistoryTrack {
     due_[l] = never;
     if (!take_[l] || next_[l] >= times_->size()) return;
     const double time = (*times_)[next_[l]], dt = march.numbers().time_step[lane];
-    long long row = static_cast<long long>(time / dt);
+    auto row = static_cast<long long>(time / dt);
     while (dt * static_cast<double>(row) < time) ++row;
     due_[l] = std::min(row, march.numbers().last_step[l]);
     soonest_ = std::min(soonest_, due_[l]);

@@ -123,8 +123,7 @@ void Record::begin(March<1>& march) {
 
 void Record::plan_events(const March<1>& march) {
   const auto& plan = march.plan();
-  for (std::size_t k = 0; k < plan.events.size(); ++k) {
-    const auto& event = plan.events[k];
+  for (const auto& event : plan.events) {
     const auto& e = march.the_case().events[at(event.index)];
     const auto& v = values_->events[at(event.index)];
     const double begin = v.at.number;
