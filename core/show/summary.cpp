@@ -426,7 +426,8 @@ void bands(Frame& f) {
     if (std::ranges::none_of(a.sensitivity, stated)) continue;
     std::string ranks;
     for (const auto& s : ranked_unknowns(a))
-      ranks += fmt::format("{}{} ({})", ranks.empty() ? "" : ", ", s.input, percent(s.first));
+      ranks += fmt::format(
+          "{}{} ({})", ranks.empty() ? "" : ", ", s.input, s.first < 1e-4 ? "under 0.01 %" : percent(s.first));
     f.item(fmt::format("{}: share of the variance by {}", a.name, ranks));
   }
 }
