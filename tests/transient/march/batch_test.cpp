@@ -24,12 +24,10 @@ class RandomCase {
     const int pipes = 1 + static_cast<int>(random_() % 5);
     for (int i = 0; i < pipes; ++i) {
       const int from = i == 0 ? -1 : static_cast<int>(random_() % static_cast<unsigned>(i));
-      auto& p = b.pipe("p" + std::to_string(i),
-                       from < 0 ? "B0" : "n" + std::to_string(from),
-                       "n" + std::to_string(i),
-                       uniform(200.0, 900.0),
-                       uniform(0.2, 0.6));
-      const double length = p.length.value;
+      const double bore = uniform(0.2, 0.6);  // one after the other: compilers order arguments as they like
+      const double length = uniform(200.0, 900.0);
+      auto& p = b.pipe(
+          "p" + std::to_string(i), from < 0 ? "B0" : "n" + std::to_string(from), "n" + std::to_string(i), length, bore);
       CaseBuilder::profile_point(p, 0.0, 0.0);
       CaseBuilder::profile_point(p, 0.37 * length, 0.0);
       CaseBuilder::profile_point(p, length, 0.0);
@@ -46,7 +44,9 @@ class RandomCase {
     valve.near_seat = exact(1.0);
     if (spreads_) valve.near_seat.spread = base::Normal{0.04};
     if (random_() % 2 == 0) b.draw_off("take", "n0", uniform(0.005, 0.02));
-    auto& e = b.move_valve("valve", 0.0, random_() % 2 == 0 ? 0.0 : 0.2, uniform(0.3, 4.0));
+    const double over = uniform(0.3, 4.0);
+    const double to = random_() % 2 == 0 ? 0.0 : 0.2;
+    auto& e = b.move_valve("valve", 0.0, to, over);
     if (spreads_) e.over.spread = base::Normal{0.1 * e.over.value};
     auto& surge = b.surge(8.0, 12);
     surge.cavities = random_() % 2 == 0 ? network::Cavities::vapour : network::Cavities::off;
