@@ -5,8 +5,8 @@
 //
 // The same templates compute one run (W = 1) and a batch of eight draws (W = 8). W = 16 holds two rows of eight draws,
 // or sixteen rows of one run: long formulas wait for their own results, and two rows at once fill the waiting. Every
-// operation here is the same IEEE operation per lane for every W, and nothing is contracted (-ffp-contract=off), so a
-// draw gives the same bits alone and in a batch.
+// operation here is the same IEEE operation per lane for every W, and nothing is contracted (-ffp-contract=off) but
+// where `fused` is written, so a draw gives the same bits alone and in a batch.
 
 #include <array>
 #include <cmath>
@@ -332,6 +332,67 @@ template <int W>
     if constexpr (W == 16) {
       r.part[2] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[2]) & INT64_MAX);
       r.part[3] = __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, a.part[3]) & INT64_MAX);
+    }
+    return r;
+  }
+}
+
+namespace detail {
+/// a b + c, rounded once where the processor has the instruction (every build but the portable one), else twice.
+HEADBAND_INLINE double fused(double a, double b, double c) {
+#if defined(__FMA__)
+  return __builtin_fma(a, b, c);
+#else
+  return a * b + c;
+#endif
+}
+HEADBAND_INLINE Quad fused(const Quad& a, const Quad& b, const Quad& c) {
+#if defined(__FMA__)
+  return _mm256_fmadd_pd(a, b, c);
+#else
+  return a * b + c;
+#endif
+}
+/// c - a b, likewise.
+HEADBAND_INLINE double fused_less(double c, double a, double b) { return fused(-a, b, c); }
+HEADBAND_INLINE Quad fused_less(const Quad& c, const Quad& a, const Quad& b) {
+#if defined(__FMA__)
+  return _mm256_fnmadd_pd(a, b, c);
+#else
+  return c - a * b;
+#endif
+}
+}  // namespace detail
+
+/// a b + c in every lane, rounded once (twice in a build for processors without the instruction): one operation where
+/// product and sum would be two. All widths round alike.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> fused(const Lanes<W>& a, const Lanes<W>& b, const Lanes<W>& c) {
+  if constexpr (W == 1) {
+    return Lanes<W>(detail::fused(a.number, b.number, c.number));
+  } else {
+    Lanes<W> r;
+    r.part[0] = detail::fused(a.part[0], b.part[0], c.part[0]);
+    r.part[1] = detail::fused(a.part[1], b.part[1], c.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = detail::fused(a.part[2], b.part[2], c.part[2]);
+      r.part[3] = detail::fused(a.part[3], b.part[3], c.part[3]);
+    }
+    return r;
+  }
+}
+/// c - a b in every lane, rounded once like `fused`.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> fused_less(const Lanes<W>& c, const Lanes<W>& a, const Lanes<W>& b) {
+  if constexpr (W == 1) {
+    return Lanes<W>(detail::fused_less(c.number, a.number, b.number));
+  } else {
+    Lanes<W> r;
+    r.part[0] = detail::fused_less(c.part[0], a.part[0], b.part[0]);
+    r.part[1] = detail::fused_less(c.part[1], a.part[1], b.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = detail::fused_less(c.part[2], a.part[2], b.part[2]);
+      r.part[3] = detail::fused_less(c.part[3], a.part[3], b.part[3]);
     }
     return r;
   }
