@@ -20,34 +20,51 @@ constexpr int draws_a_term = 8;   ///< a fit rests on at least this many draws p
 /// Functions of one input, orthonormal under its distribution: [degree - 1][draw].
 using Functions = std::vector<std::vector<double>>;
 
-Functions hermite(const std::vector<double>& score) {
-  Functions f(highest_degree, std::vector<double>(score.size()));
-  for (std::size_t i = 0; i < score.size(); ++i) {
-    const double z = base::normal_quantile<1>(base::Lanes<1>(score[i])).number;
-    double before = 1.0, now = z;
-    for (int k = 1; k <= highest_degree; ++k) {  // h_(k+1) = (z h_k - sqrt(k) h_(k-1)) / sqrt(k + 1)
-      f[static_cast<std::size_t>(k - 1)][i] = now;
-      const double next = (z * now - std::sqrt(static_cast<double>(k)) * before) / std::sqrt(k + 1.0);
-      before = now;
-      now = next;
-    }
+/// Normal scores of all draws, eight at a time.
+std::vector<double> normal_scores(const std::vector<double>& score) {
+  std::vector<double> z(score.size());
+  std::size_t i = 0;
+  for (; i + 8 <= score.size(); i += 8) base::store_eight(base::normal_quantile<8>(base::load_eight(&score[i])), &z[i]);
+  for (; i < score.size(); ++i) z[i] = base::normal_quantile<1>(base::Lanes<1>(score[i])).number;
+  return z;
+}
+
+/// Functions by a recurrence of three terms, f_(k+1) = rise_k x f_k - fall_k f_(k-1), f_0 = 1; `norm_k` times f_k.
+template <class Rise, class Fall, class Norm>
+Functions recurrent(const std::vector<double>& x, const Rise& rise, const Fall& fall, const Norm& norm) {
+  const std::size_t n = x.size();
+  Functions f(highest_degree);
+  std::vector<double> before(n, 1.0), now = x, next(n);
+  for (int k = 1; k <= highest_degree; ++k) {
+    const double up = rise(k), down = fall(k), factor = norm(k);
+    auto& out = f[static_cast<std::size_t>(k - 1)];
+    out.resize(n);
+    for (std::size_t i = 0; i < n; ++i) out[i] = factor * now[i];
+    for (std::size_t i = 0; i < n; ++i) next[i] = up * x[i] * now[i] - down * before[i];
+    before.swap(now);
+    now.swap(next);
   }
   return f;
 }
 
+Functions hermite(const std::vector<double>& score) {
+  // h_(k+1) = (z h_k - sqrt(k) h_(k-1)) / sqrt(k + 1)
+  return recurrent(
+      normal_scores(score),
+      [](int k) { return 1.0 / std::sqrt(k + 1.0); },
+      [](int k) { return std::sqrt(k / (k + 1.0)); },
+      [](int) { return 1.0; });
+}
+
 Functions legendre(const std::vector<double>& score) {
-  Functions f(highest_degree, std::vector<double>(score.size()));
-  for (std::size_t i = 0; i < score.size(); ++i) {
-    const double x = 2.0 * score[i] - 1.0;
-    double before = 1.0, now = x;
-    for (int k = 1; k <= highest_degree; ++k) {  // (k + 1) P_(k+1) = (2k + 1) x P_k - k P_(k-1); norm 1 / sqrt(2k + 1)
-      f[static_cast<std::size_t>(k - 1)][i] = std::sqrt(2.0 * k + 1.0) * now;
-      const double next = ((2.0 * k + 1.0) * x * now - k * before) / (k + 1.0);
-      before = now;
-      now = next;
-    }
-  }
-  return f;
+  std::vector<double> x(score.size());
+  for (std::size_t i = 0; i < x.size(); ++i) x[i] = 2.0 * score[i] - 1.0;
+  // (k + 1) P_(k+1) = (2k + 1) x P_k - k P_(k-1); norm 1 / sqrt(2k + 1)
+  return recurrent(
+      x,
+      [](int k) { return (2.0 * k + 1.0) / (k + 1.0); },
+      [](int k) { return k / (k + 1.0); },
+      [](int k) { return std::sqrt(2.0 * k + 1.0); });
 }
 
 /// Steps between options: function k tells option k from all behind it.
@@ -95,32 +112,85 @@ struct Fit {
   double left_out_error = INFINITY;  ///< mean square error in draws left out
 };
 
-Fit fit(const std::vector<Functions>& functions, std::vector<Term> terms, const Eigen::VectorXd& y) {
-  const Eigen::Index n = y.size(), p = static_cast<Eigen::Index>(terms.size()) + 1;
-  Eigen::MatrixXd columns(n, p);
-  columns.col(0).setOnes();
-  for (Eigen::Index t = 1; t < p; ++t) {
-    auto column = columns.col(t);
-    column.setOnes();
-    for (const auto& [input, degree] : terms[static_cast<std::size_t>(t - 1)]) {
-      column.array() *=
-          Eigen::Map<const Eigen::ArrayXd>(functions[input][static_cast<std::size_t>(degree - 1)].data(), n);
+/// Some draws of the columns of a fit at a time: so many stay in the second-level cache.
+class Columns {
+ public:
+  static constexpr Eigen::Index at_once = 256;
+
+  Columns(const std::vector<Functions>& functions, const std::vector<Term>& terms, Eigen::Index draws)
+      : functions_(&functions), terms_(&terms), room_(at_once, static_cast<Eigen::Index>(terms.size()) + 1) {
+    room_.col(0).setOnes();
+    left_ = draws;
+  }
+
+  /// Calls `use(first, rows)` with the draws from `first` on: a column of ones, then one per term.
+  template <class Use>
+  void for_each_part(const Use& use) {
+    for (Eigen::Index first = 0; first < left_; first += at_once) {
+      const Eigen::Index many = std::min(at_once, left_ - first);
+      for (std::size_t t = 0; t < terms_->size(); ++t) {
+        auto column = room_.col(static_cast<Eigen::Index>(t) + 1).head(many).array();
+        bool product = false;
+        for (const auto& [input, degree] : (*terms_)[t]) {
+          const double* values = (*functions_)[input][static_cast<std::size_t>(degree - 1)].data() + first;
+          const Eigen::Map<const Eigen::ArrayXd> factor(values, many);
+          if (product) {
+            column *= factor;
+          } else {
+            column = factor;
+          }
+          product = true;
+        }
+      }
+      use(first, room_.topRows(many));
     }
   }
+
+ private:
+  const std::vector<Functions>* functions_;
+  const std::vector<Term>* terms_;
+  Eigen::MatrixXd room_;
+  Eigen::Index left_ = 0;
+};
+
+Fit fit(const std::vector<Functions>& functions, std::vector<Term> terms, const Eigen::VectorXd& y) {
+  const Eigen::Index n = y.size(), p = static_cast<Eigen::Index>(terms.size()) + 1;
+  Columns columns(functions, terms, n);
   Eigen::MatrixXd gram = Eigen::MatrixXd::Zero(p, p);
-  gram.selfadjointView<Eigen::Lower>().rankUpdate(columns.transpose());
+  Eigen::VectorXd right = Eigen::VectorXd::Zero(p);
+  columns.for_each_part([&](Eigen::Index first, const auto& rows) {
+    gram.template selfadjointView<Eigen::Lower>().rankUpdate(rows.transpose());
+    right.noalias() += rows.transpose() * y.segment(first, rows.rows());
+  });
   gram.diagonal().array() += 1e-10 * static_cast<double>(n);
   const Eigen::LLT<Eigen::MatrixXd> factor(gram);
-  Fit result{.terms = std::move(terms), .coefficient = factor.solve(columns.transpose() * y)};
-  const Eigen::MatrixXd half = factor.matrixL().solve(columns.transpose());
-  const Eigen::VectorXd residual = y - columns * result.coefficient;
+  Fit result{.terms = {}, .coefficient = factor.solve(right)};
+  const Eigen::MatrixXd inverse = factor.matrixL().solve(Eigen::MatrixXd::Identity(p, p));
+  Eigen::MatrixXd half(Columns::at_once, p);
   double sum = 0.0;
-  for (Eigen::Index i = 0; i < n; ++i) {
-    const double leverage = std::min(half.col(i).squaredNorm(), 0.999);
-    sum += std::pow(residual(i) / (1.0 - leverage), 2.0);
-  }
+  columns.for_each_part([&](Eigen::Index first, const auto& rows) {
+    const Eigen::Index many = rows.rows();
+    half.topRows(many).noalias() = rows * inverse.transpose().template triangularView<Eigen::Upper>();
+    const Eigen::ArrayXd leverage = half.topRows(many).rowwise().squaredNorm();
+    const Eigen::VectorXd residual = y.segment(first, many) - rows * result.coefficient;
+    sum += (residual.array() / (1.0 - leverage.min(0.999))).square().sum();
+  });
+  result.terms = std::move(terms);
   result.left_out_error = sum / static_cast<double>(n);
   return result;
+}
+
+/// Share of the variance that `best` finds in terms which `candidate` has not: being orthonormal, they cannot be made
+/// up for by others, and the candidate leaves at least so much open.
+double given_up(const Fit& best, const std::vector<Term>& candidate) {
+  std::vector<Term> kept = candidate;
+  std::ranges::sort(kept);
+  double share = 0.0;
+  for (std::size_t t = 0; t < best.terms.size(); ++t) {
+    if (!std::ranges::binary_search(kept, best.terms[t]))
+      share += std::pow(best.coefficient(static_cast<Eigen::Index>(t) + 1), 2.0);
+  }
+  return share;
 }
 
 long long terms_in(std::size_t inputs, int degree) {  // (inputs + degree over degree) - 1
@@ -188,6 +258,7 @@ FittedShares fit_shares(const std::vector<FitInput>& inputs, const std::vector<d
     for (std::size_t k = strong; k < order.size() && static_cast<int>(terms.size()) < affordable; ++k)
       if (highest[order[k]] > 0) terms.push_back({{order[k], 1}});
     if (static_cast<int>(terms.size()) > affordable) continue;
+    if (given_up(best, terms) > 2.0 * best.left_out_error) continue;  // twice: both are known from the draws alone
     Fit candidate = fit(functions, std::move(terms), y);
     if (candidate.left_out_error < best.left_out_error) best = std::move(candidate);
     if (best.left_out_error < settled) break;

@@ -79,6 +79,49 @@ TEST(Polynomial, ChoicesAndManyInputs) {
   EXPECT_NEAR(s.total[7], 0.0, 1e-3);
 }
 
+/// High degrees in few inputs are tried where what the other inputs do is small beside what a low degree leaves open:
+/// sin(2 pi u) leaves 5e-8 of its variance open above degree 7 of the Legendre polynomials,
+/// and seven inputs allow no more than degree 3 in all of them.
+TEST(Polynomial, HighDegreesInTheStrongestInput) {
+  const auto inputs = inputs_of(7, 4096, false);
+  std::vector<double> y;
+  for (std::size_t i = 0; i < 4096; ++i) {
+    double sum = std::sin(2.0 * std::numbers::pi * inputs[2].score[i]);
+    for (std::size_t u = 0; u < 7; ++u) sum += u == 2 ? 0.0 : 0.02 * std::sqrt(12.0) * (inputs[u].score[i] - 0.5);
+    y.push_back(sum);
+  }
+  const double v = 0.5 + 6.0 * 0.02 * 0.02;
+  const auto s = fit_shares(inputs, y);
+  EXPECT_GT(s.explained, 1.0 - 1e-6);
+  EXPECT_NEAR(s.first[2], 0.5 / v, 2e-5);
+  EXPECT_NEAR(s.total[2], 0.5 / v, 2e-5);
+  for (const std::size_t u : {0U, 1U, 3U, 4U, 5U, 6U}) EXPECT_NEAR(s.first[u], 0.0004 / v, 2e-5) << u;
+}
+
+/// A smooth function of four inputs, one of them weak: its interactions keep all four in the fit, which degree 4 ends.
+/// Above it lie 0.14^5/5!/(e^0.14 - 1) = 3e-6 of the variance, and noise of that size leaves sqrt(3e-6/4096) in each
+/// coefficient: 2 sqrt(S) times it in a share S, 4e-5 at most, one standard error.
+TEST(Polynomial, AWeakInputKeepsItsInteractions) {
+  const auto inputs = inputs_of(4, 4096, true);
+  const double d[] = {0.3, 0.2, 0.1, 0.01};  // squares sum to 0.14
+  std::vector<double> y;
+  for (std::size_t i = 0; i < 4096; ++i) {
+    double log = 0.0;
+    for (std::size_t u = 0; u < 4; ++u) log += d[u] * normal(inputs[u].score[i]);
+    y.push_back(std::exp(log));
+  }
+  // a product of lognormals: V = prod e^(d^2) - 1, first = (e^(d^2) - 1) / V, total = first times the others' e^(d^2)
+  double all = 1.0;
+  for (const double x : d) all *= std::exp(x * x);
+  const auto s = fit_shares(inputs, y);
+  EXPECT_GT(s.explained, 1.0 - 1e-5);
+  for (std::size_t u = 0; u < 4; ++u) {
+    const double own = std::expm1(d[u] * d[u]);
+    EXPECT_NEAR(s.first[u], own / (all - 1.0), 1.6e-4) << u;
+    EXPECT_NEAR(s.total[u], own * all / std::exp(d[u] * d[u]) / (all - 1.0), 1.6e-4) << u;
+  }
+}
+
 TEST(Polynomial, SaysWhenItDoesNotFit) {
   const auto inputs = inputs_of(2, 1024, false);
   std::vector<double> noise;
