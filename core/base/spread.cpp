@@ -19,13 +19,23 @@ namespace {
 
 // ---------------------------------------------------------------- normal quantile
 
+/// An argument and its powers, for the polynomials of it.
+template <int W>
+struct Powers {
+  Lanes<W> x, square, fourth;
+};
+template <int W>
+HEADBAND_INLINE Powers<W> powers_of(const Lanes<W>& x) {
+  const Lanes<W> square = x * x;
+  return {x, square, square * square};
+}
+
 /// c0 + c1 x + … + c7 x^7, in pairs: a short chain of operations.
 template <int W>
-HEADBAND_INLINE Lanes<W> polynomial(const std::array<double, 8>& c, const Lanes<W>& x) {
-  const Lanes<W> square = x * x;
-  const Lanes<W> low = (c[0] + c[1] * x) + (c[2] + c[3] * x) * square;
-  const Lanes<W> high = (c[4] + c[5] * x) + (c[6] + c[7] * x) * square;
-  return low + high * (square * square);
+HEADBAND_INLINE Lanes<W> polynomial(const std::array<double, 8>& c, const Powers<W>& p) {
+  const auto pair = [&](std::size_t k) { return fused(Lanes<W>(c[k + 1]), p.x, Lanes<W>(c[k])); };
+  const Lanes<W> low = fused(pair(2), p.square, pair(0)), high = fused(pair(6), p.square, pair(4));
+  return fused(high, p.fourth, low);
 }
 
 // AS 241 (Wichura 1988, Applied Statistics 37, 477-484), routine PPND16: coefficients from memory, checked in the
@@ -84,7 +94,7 @@ constexpr double central_half_width = 0.425;
 /// Quotient of the middle part: over / under.
 template <int W>
 HEADBAND_INLINE Lanes<W> central_quantile(const Lanes<W>& middle) {
-  const Lanes<W> r = 0.180625 - middle * middle;
+  const Powers<W> r = powers_of(fused_less(Lanes<W>(0.180625), middle, middle));
   return (middle * polynomial(central_over, r)) / polynomial(central_under, r);
 }
 
@@ -93,11 +103,11 @@ template <int W>
 HEADBAND_INLINE Lanes<W> tail_quantile(const Lanes<W>& tail) {
   const bool usual = !any(tail < Lanes<W>(std::numeric_limits<double>::min()));  // `log` asks more, and says the same
   const Lanes<W> root = sqrt(-(usual ? log_of_normal(tail) : log(tail)));
-  const Lanes<W> t = root - 1.6;
+  const Powers<W> t = powers_of<W>(root - 1.6);
   Lanes<W> over = polynomial(tail_over, t), under = polynomial(tail_under, t);
   const Mask<W> far = root > 5.0;
   if (any(far)) {
-    const Lanes<W> u = root - 5.0;
+    const Powers<W> u = powers_of<W>(root - 5.0);
     over = select(far, polynomial(far_over, u), over);
     under = select(far, polynomial(far_under, u), under);
   }
@@ -305,12 +315,18 @@ HEADBAND_INLINE Tails<W> tails_at(const ReadySpread& s, const Lanes<W>& score) {
   return {below, above, 0.5 * (below - above)};
 }
 
-/// From the standard normal to the value.
-template <int W>
+/// From the standard normal to the value; `bounded`: the cut is looked at, which without one changes nothing.
+template <int W, bool bounded = true>
 HEADBAND_INLINE Lanes<W> value_of_normal(const ReadySpread& s, const Lanes<W>& standard) {
-  const Lanes<W> z = s.cut ? max(min(standard, Lanes<W>(s.high)), Lanes<W>(s.low)) : standard;
-  const Lanes<W> x = s.kind == ReadySpread::Kind::normal ? s.central + s.size * z : s.central * exp(s.size * z);
-  return max(min(x, Lanes<W>(s.most)), Lanes<W>(s.least));
+  const Lanes<W> z = bounded && s.cut ? max(min(standard, Lanes<W>(s.high)), Lanes<W>(s.low)) : standard;
+  const Lanes<W> x = s.kind == ReadySpread::Kind::normal ? fused(Lanes<W>(s.size), z, Lanes<W>(s.central))
+                                                         : s.central * exp(s.size * z);
+  if constexpr (bounded) return max(min(x, Lanes<W>(s.most)), Lanes<W>(s.least));
+  return x;
+}
+[[nodiscard]] bool is_bounded(const ReadySpread& s) {
+  return s.cut || s.most < std::numeric_limits<double>::infinity() ||
+         s.least > -std::numeric_limits<double>::infinity();
 }
 
 /// Spreads without a normal behind them.
@@ -395,7 +411,14 @@ class NormalQuantiles {
 
   void settle() {
     settle_tails();
-    for (std::size_t i = 0; i < taken; ++i) *block[i].value = value_of_normal<8>(*block[i].spread, *block[i].value);
+    for (std::size_t from = 0, to = 0; from < taken; from = to) {  // blocks of one spread together
+      const ReadySpread& spread = *block[from].spread;
+      while (to < taken && block[to].spread == &spread) ++to;
+      for (std::size_t i = from; i < to; ++i) {
+        Lanes<8>& x = *block[i].value;
+        x = is_bounded(spread) ? value_of_normal<8>(spread, x) : value_of_normal<8, false>(spread, x);
+      }
+    }
     taken = count = 0;
   }
 
@@ -530,8 +553,9 @@ void quantiles(std::span<const ReadySpread> spreads,
                std::span<const std::vector<Lanes<8>>> scores,
                std::span<std::vector<Lanes<8>>> values) {
   NormalQuantiles normals;
-  for (std::size_t block = 0; block < scores.size(); ++block) {
-    for (std::size_t i = 0; i < spreads.size(); ++i) normals.add(spreads[i], scores[block][i], values[block][i]);
+  for (std::size_t i = 0; i < spreads.size(); ++i) {
+    for (std::size_t block = 0; block < scores.size(); ++block)
+      normals.add(spreads[i], scores[block][i], values[block][i]);
   }
   normals.settle();
 }

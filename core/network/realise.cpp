@@ -207,9 +207,11 @@ void realise_all(const Case& c, const Plan& plan, const Draw<W>& draw, Values<W>
   realise_site(c.site, draw, values);
   detail::realise_by_temperature(c.liquid, draw, values.liquid);
   detail::realise_given_numbers(c.liquid, draw, values.liquid);
+  detail::realise_viscosity(c.liquid, draw, values.liquid);
   realise_places(c, plan, draw, values);
   for (std::size_t i = 0; i < c.pipes.size(); ++i) {
-    detail::realise_geometry(c.pipes[i], draw, values.pipes[i]);
+    detail::realise_length(c.pipes[i], draw, values.pipes[i]);
+    detail::realise_section(c.pipes[i], draw, values.pipes[i]);
     realise_rating(c.pipes[i], draw, values, values.pipes[i]);
     detail::realise_wave(c.pipes[i], plan.pipes[i], draw, values.liquid, values.pipes[i]);
     detail::realise_friction(c, i, plan.pipes[i].loss, draw, values.pipes[i]);
@@ -241,19 +243,20 @@ Realiser::Realiser(const Case& c, const Plan& plan, bool waves) : case_(&c), pla
   site_ = varies(c.site.atmosphere, c.site.gravity);
   const Liquid& l = c.liquid;
   temperature_ = varies(l.temperature) || varies_in_rows(l.viscosity_points);
-  liquid_ = temperature_ ||
-            varies(l.density, l.viscosity, l.viscosity_scatter, l.bulk_modulus, l.vapour_pressure, l.free_gas);
+  liquid_ = temperature_ || varies(l.density, l.bulk_modulus, l.vapour_pressure, l.free_gas);
+  viscosity_ = temperature_ || varies(l.density, l.viscosity, l.viscosity_scatter);
   bool any_profile = false;
   for (const auto& p : c.pipes) {
     PipeChanges changes;
     const bool lining = varies(p.lining_thickness);
     const bool profile = varies_in_rows(p.profile);
     any_profile = any_profile || profile;
-    changes.geometry = varies(p.length, p.outside, p.wall, p.bore) || lining || profile;
+    changes.length = varies(p.length) || profile;
+    changes.section = varies(p.outside, p.wall, p.bore) || lining;
     changes.rating = varies(p.rating) || (site_ && p.rating.given() && !p.rating.gauge);
     changes.wave =
         waves &&
-        (changes.geometry || temperature_ || varies(l.density, l.bulk_modulus) ||
+        (changes.length || changes.section || temperature_ || varies(l.density, l.bulk_modulus) ||
          varies(p.lining_modulus, p.modulus, p.poisson, p.restraint_factor, p.wave_speed, p.wave_speed_scatter));
     changes.friction = varies(p.roughness,
                               p.hazen_williams,
@@ -266,7 +269,7 @@ Realiser::Realiser(const Case& c, const Plan& plan, bool waves) : case_(&c), pla
       changes.friction = changes.friction || varies(c.friction.pipe_scatter[pipes_.size()]);
     for (const auto& f : p.fittings)
       changes.fittings = changes.fittings || varies(f.count, f.k, f.equivalent_length, f.at);
-    changes.profile = varies(p.length) || profile;
+    changes.profile = changes.length;
     pipes_.push_back(changes);
   }
   places_ = any_profile;
@@ -278,7 +281,7 @@ Realiser::Realiser(const Case& c, const Plan& plan, bool waves) : case_(&c), pla
   bool any_bore = false;
   for (auto& p : pipes_) {
     p.profile = p.profile || places_;
-    any_bore = any_bore || p.geometry;
+    any_bore = any_bore || p.section;
   }
   for (const auto& v : c.valves)
     valves_.push_back(site_ || any_bore ||
@@ -338,10 +341,12 @@ void Realiser::overwrite(const Scores<W>& scores, const std::vector<Lanes<W>>& k
   if (site_) realise_site(c.site, drawn, values);
   if (temperature_) detail::realise_by_temperature(c.liquid, drawn, values.liquid);
   if (liquid_) detail::realise_given_numbers(c.liquid, drawn, values.liquid);
+  if (viscosity_) detail::realise_viscosity(c.liquid, drawn, values.liquid);
   if (places_) realise_places(c, *plan_, drawn, values);
   for (std::size_t i = 0; i < pipes_.size(); ++i) {
     PipeValues<W>& pipe = values.pipes[i];
-    if (pipes_[i].geometry) detail::realise_geometry(c.pipes[i], drawn, pipe);
+    if (pipes_[i].length) detail::realise_length(c.pipes[i], drawn, pipe);
+    if (pipes_[i].section) detail::realise_section(c.pipes[i], drawn, pipe);
     if (pipes_[i].rating) realise_rating(c.pipes[i], drawn, values, pipe);
     if (pipes_[i].wave) detail::realise_wave(c.pipes[i], plan_->pipes[i], drawn, values.liquid, pipe);
     if (pipes_[i].friction) detail::realise_friction(c, i, plan_->pipes[i].loss, drawn, pipe);

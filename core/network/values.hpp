@@ -147,7 +147,8 @@ class Realiser {
  private:
   /// Which groups of a pipe's numbers some draw changes.
   struct PipeChanges {
-    bool geometry = false, wave = false, friction = false, fittings = false, profile = false, rating = false;
+    bool length = false, section = false, wave = false, friction = false, fittings = false, profile = false,
+         rating = false;
   };
   template <int W>
   void overwrite(const Scores<W>& scores, const std::vector<Lanes<W>>& drawn, Values<W>& values) const;
@@ -155,7 +156,7 @@ class Realiser {
   const Case* case_;
   const Plan* plan_;
   std::vector<base::ReadySpread> spreads_;  ///< as Case::unknowns
-  bool site_ = false, liquid_ = false, temperature_ = false, places_ = false, choices_ = false;
+  bool site_ = false, liquid_ = false, viscosity_ = false, temperature_ = false, places_ = false, choices_ = false;
   std::vector<PipeChanges> pipes_;
   std::vector<bool> valves_, pumps_, check_valves_, draw_offs_, events_;
 };

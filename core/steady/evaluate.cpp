@@ -104,6 +104,12 @@ Lanes<W> drop(const network::Plan& plan,
               const network::Values<W>& values,
               const SteadyState<W>& state,
               const network::AnswerPlan& what) {
+  if (what.where.place.exists() && what.other.place.exists()) {
+    const std::size_t from = what.where.place.at(), to = what.other.place.at();
+    const Lanes<W> weight = values.liquid.density * values.gravity;
+    return weight * (state.place_head[from] - values.places[from].elevation) -
+           weight * (state.place_head[to] - values.places[to].elevation);
+  }
   const bool whole_pipe = what.where.pipe.exists() && !what.other.pipe.exists() && !what.other.place.exists();
   if (!whole_pipe) return pressure_at(plan, values, state, what.where) - pressure_at(plan, values, state, what.other);
   const std::size_t pipe = what.where.pipe.at();
@@ -221,6 +227,16 @@ bool clears_every_point(const network::Plan& plan,
 }  // namespace
 
 template <int W>
+bool clears_vapour(const network::Plan& plan, const network::Values<W>& values, const SteadyState<W>& state) {
+  const Lanes<W> vapour_head =
+      (values.liquid.vapour_pressure - values.atmosphere) / (values.liquid.density * values.gravity);
+  if (!base::any(vapour_head == vapour_head)) return true;  // no vapour pressure is known
+  for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe)
+    if (!clears_every_point(plan, values, state, pipe, vapour_head)) return false;
+  return true;
+}
+
+template <int W>
 VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>& values, const SteadyState<W>& state) {
   VapourCheck<W> check;
   check.pipe.fill(-1);
@@ -257,6 +273,8 @@ template Lanes<8> answer<8>(const network::Plan&,
                             const network::Values<8>&,
                             const SteadyState<8>&,
                             const network::AnswerPlan&);
+template bool clears_vapour<1>(const network::Plan&, const network::Values<1>&, const SteadyState<1>&);
+template bool clears_vapour<8>(const network::Plan&, const network::Values<8>&, const SteadyState<8>&);
 template VapourCheck<1> check_vapour<1>(const network::Plan&, const network::Values<1>&, const SteadyState<1>&);
 template VapourCheck<8> check_vapour<8>(const network::Plan&, const network::Values<8>&, const SteadyState<8>&);
 

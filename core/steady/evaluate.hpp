@@ -33,6 +33,12 @@ template <int W>
                                           const network::Values<W>& values,
                                           const SteadyState<W>& state);
 
+/// A quick look at the same: true where `check_vapour` would find no lane below anywhere. False says nothing.
+template <int W>
+[[nodiscard]] bool clears_vapour(const network::Plan& plan,
+                                 const network::Values<W>& values,
+                                 const SteadyState<W>& state);
+
 extern template Lanes<1> head_at<1>(
     const network::Plan&, const network::Values<1>&, const SteadyState<1>&, network::PipeId, const Lanes<1>&);
 extern template Lanes<8> head_at<8>(
@@ -45,6 +51,8 @@ extern template Lanes<8> answer<8>(const network::Plan&,
                                    const network::Values<8>&,
                                    const SteadyState<8>&,
                                    const network::AnswerPlan&);
+extern template bool clears_vapour<1>(const network::Plan&, const network::Values<1>&, const SteadyState<1>&);
+extern template bool clears_vapour<8>(const network::Plan&, const network::Values<8>&, const SteadyState<8>&);
 extern template VapourCheck<1> check_vapour<1>(const network::Plan&, const network::Values<1>&, const SteadyState<1>&);
 extern template VapourCheck<8> check_vapour<8>(const network::Plan&, const network::Values<8>&, const SteadyState<8>&);
 

@@ -184,8 +184,9 @@ struct SteadySolver::Parts {
     for (std::size_t i = 0; i < values.pipes.size(); ++i) {
       const network::PipeValues<W>& pipe = values.pipes[i];
       state.wave_speed[i] = pipe.wave_speed_without_gas;
+      if (!gas_possible) continue;
       const bool by_formula = topology->pipes[i].wave_speed_known && !model->pipes[i].wave_speed.given();
-      if (!gas_possible || !by_formula) continue;
+      if (!by_formula) continue;
       const Lanes<W> mean = mean_absolute_pressure(values,
                                                    pipe,
                                                    work.numbers.pipes[i],

@@ -105,9 +105,10 @@ class BandRun {
 
   /// The source of the plain draws: scores of the sampler, ranges at a place.
   [[nodiscard]] ScoreSource source(const Sampler& sampler, const std::vector<double>& place) const {
-    return [&sampler, &place, this](long long first, network::Scores<8>& scores) {
-      sampler.block(first, scores);
-      for (std::size_t i = 0; i < ranges_.unknown.size(); ++i) scores[ranges_.unknown[i]] = place[i];
+    return [&sampler, &place, this](long long first, std::span<network::Scores<8>> blocks) {
+      sampler.blocks(first, blocks);
+      for (auto& scores : blocks)
+        for (std::size_t i = 0; i < ranges_.unknown.size(); ++i) scores[ranges_.unknown[i]] = place[i];
     };
   }
 

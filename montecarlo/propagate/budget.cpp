@@ -34,9 +34,10 @@ class Passes {
     DrawTable out(table_.answer.size(), table_.limit.size(), 0);
     out.resize(draws_);
     const auto& ranges = *request_.ranges;
-    const ScoreSource with_ranges = [&](long long first, network::Scores<8>& block) {
-      scores(first, block);
-      for (const std::size_t unknown : ranges.unknown) block[unknown] = 0.5;
+    const ScoreSource with_ranges = [&](long long first, std::span<network::Scores<8>> blocks) {
+      scores(first, blocks);
+      for (auto& block : blocks)
+        for (const std::size_t unknown : ranges.unknown) block[unknown] = 0.5;
     };
     DrawOptions options = request_.draw_options;
     if (options.progress) {
@@ -52,10 +53,11 @@ class Passes {
   template <class Frozen>
   DrawTable run_frozen(const Frozen& frozen) {
     const auto& inputs = *request_.inputs;
-    return run([&](long long first, network::Scores<8>& block) {
-      request_.sampler->block(first, block);
-      for (std::size_t u = 0; u < inputs.size(); ++u)
-        if (frozen(inputs[u])) block[u] = inputs[u].central_score;
+    return run([&](long long first, std::span<network::Scores<8>> blocks) {
+      request_.sampler->blocks(first, blocks);
+      for (auto& block : blocks)
+        for (std::size_t u = 0; u < inputs.size(); ++u)
+          if (frozen(inputs[u])) block[u] = inputs[u].central_score;
     });
   }
 
@@ -116,11 +118,17 @@ void exchange_inputs(Passes& passes,
     if (!(budget.answers[a].explained >= well_explained)) open.push_back(a);
   if (open.empty()) return;
   for (const std::size_t a : open) budget.answers[a] = {budget.answers[a].inputs, budget.answers[a].friction_law, {}};
-  const DrawTable other = passes.run([&](long long first, network::Scores<8>& block) { twin.block(first, block); });
+  const DrawTable other =
+      passes.run([&](long long first, std::span<network::Scores<8>> blocks) { twin.blocks(first, blocks); });
   for (const std::size_t u : random) {
     if (passes.stopped()) return;
     const auto mixed = [&](Exchange way) {
-      return passes.run([&](long long first, network::Scores<8>& block) { exchanger.block(first, u, way, block); });
+      return passes.run([&](long long first, std::span<network::Scores<8>> blocks) {
+        for (auto& block : blocks) {
+          exchanger.block(first, u, way, block);
+          first += 8;
+        }
+      });
     };
     const DrawTable company = mixed(Exchange::with_its_company);
     std::optional<DrawTable> alone;

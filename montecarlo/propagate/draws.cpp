@@ -105,15 +105,26 @@ class Worker {
     }
   }
 
+  /// Scores of the next blocks; `drawn`: of which of them there are any.
+  bool draw_scores(long long first, std::span<network::Scores<8>> blocks, std::array<bool, at_once>& drawn) {
+    try {
+      source_(first, blocks);
+      drawn.fill(true);
+      return true;
+    } catch (const std::exception&) {  // one by one: which of them is it?
+      for (std::size_t k = 0; k < blocks.size(); ++k) {
+        const long long draw = first + 8 * static_cast<long long>(k);
+        drawn[k] = tried(draw, [&] { source_(draw, blocks.subspan(k, 1)); });
+      }
+      return std::all_of(
+          drawn.begin(), drawn.begin() + static_cast<std::ptrdiff_t>(blocks.size()), [](bool d) { return d; });
+    }
+  }
+
   void answer(long long first, long long to) {
     const auto blocks = std::min(at_once, static_cast<std::size_t>((to - first + 7) / 8));
     std::array<bool, at_once> drawn{};
-    bool all_drawn = true;
-    for (std::size_t k = 0; k < blocks; ++k) {
-      const long long draw = first + 8 * static_cast<long long>(k);
-      drawn[k] = tried(draw, [&] { source_(draw, scores_[k]); });
-      all_drawn = all_drawn && drawn[k];
-    }
+    const bool all_drawn = draw_scores(first, {scores_.data(), blocks}, drawn);
     if (all_drawn) tried(first, [&] { model_.expect({scores_.data(), blocks}); });
     for (std::size_t k = 0; k < blocks; ++k) {
       const long long draw = first + 8 * static_cast<long long>(k);

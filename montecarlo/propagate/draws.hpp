@@ -43,8 +43,8 @@ class BlockModel {
   Expect expect_;
 };
 
-/// Fills the scores of the draws `first` … `first + 7`. Used by all threads at once.
-using ScoreSource = std::function<void(long long first, network::Scores<8>&)>;
+/// Fills the scores of the draws from `first` on, eight a block. Used by all threads at once.
+using ScoreSource = std::function<void(long long first, std::span<network::Scores<8>> blocks)>;
 
 /// Histories are kept of the first draws, and of so many that draws times times times probes fit 256 MB.
 inline constexpr std::size_t most_history_draws = 4096, most_history_numbers = std::size_t{32} << 20;

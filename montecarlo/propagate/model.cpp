@@ -3,6 +3,7 @@
 
 #include "core/steady/evaluate.hpp"
 
+#include <algorithm>
 #include <memory>
 #include <optional>
 #include <span>
@@ -35,30 +36,32 @@ class PipelineModel {
   void answer(const network::Scores<8>& scores, BlockAnswers& out) {
     solve(scores);
     const auto status = statuses();
-    int good = -1;
-    bool all_good = true;
-    for (int lane = 0; lane < 8; ++lane) {
-      const bool finished = status[static_cast<std::size_t>(lane)] == 0;
-      if (finished && good < 0) good = lane;
-      all_good = all_good && finished;
-    }
-    if (!marcher_) {
-      evaluate(out);
-      count_ratings(out);
-      out.status = status;
+    if (marcher_) {
+      march(scores, status, out);
       return;
     }
-    if (good < 0) {
+    evaluate(out);
+    count_ratings(out);
+    out.status = status;
+  }
+
+ private:
+  using Statuses = base::PerLane<std::int8_t, 8>;
+
+  void march(const network::Scores<8>& scores, const Statuses& status, BlockAnswers& out) {
+    const auto good = std::ranges::find(status, 0);
+    if (good == status.end()) {
       out.answer.resize(answers_.size());
       out.limit.resize(plan_->limits.size());
       out.status = status;
       return;
     }
-    if (!all_good) {
+    if (std::ranges::count(status, 0) != 8) {
+      const int lent = static_cast<int>(good - status.begin());
       spare_ = scores;
       for (auto& score : spare_)
         for (int lane = 0; lane < 8; ++lane)
-          if (status[static_cast<std::size_t>(lane)] != 0) score.set(lane, score[good]);
+          if (status[static_cast<std::size_t>(lane)] != 0) score.set(lane, score[lent]);
       solve(spare_);
     }
     marcher_->march<8>(values_, state_, out);
@@ -67,7 +70,6 @@ class PipelineModel {
       if (status[lane] != 0) out.status[lane] = status[lane];
   }
 
- private:
   void solve(const network::Scores<8>& scores) {
     if (next_ < expected_.size() && &scores == &expected_[next_]) {
       realiser_.draw(scores, ahead_[next_++], values_);
@@ -77,13 +79,16 @@ class PipelineModel {
     solver_.solve<8>(values_, state_);
   }
 
-  [[nodiscard]] base::PerLane<std::int8_t, 8> statuses() const {
-    base::PerLane<std::int8_t, 8> status{};
-    for (std::size_t lane = 0; lane < 8; ++lane) {
+  [[nodiscard]] Statuses statuses() const {
+    Statuses status{};
+    int odd = 0;  // the usual block has none
+    for (const auto steady : state_.status) odd |= static_cast<int>(steady);
+    for (std::size_t lane = 0; odd != 0 && lane < 8; ++lane) {
       const auto steady = state_.status[lane];
       if (!steady::is_usable(steady)) status[lane] = steady == steady::SteadyStatus::not_finite ? 2 : 1;
     }
     if (case_->surge.cavities == network::Cavities::off) return status;
+    if (steady::clears_vapour<8>(*plan_, values_, state_)) return status;
     const steady::VapourCheck<8> below = steady::check_vapour<8>(*plan_, values_, state_);
     for (std::size_t lane = 0; lane < 8; ++lane)
       if (below.pipe[lane] >= 0 && status[lane] == 0) status[lane] = 1;

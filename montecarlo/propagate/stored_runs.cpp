@@ -2,6 +2,8 @@
 #include "montecarlo/propagate/stored_runs.hpp"
 
 #include <algorithm>
+#include <array>
+#include <span>
 
 namespace headband::montecarlo {
 
@@ -30,7 +32,7 @@ void columns_of(const std::vector<double>& rows, Columns& columns, std::size_t d
 
 namespace {
 
-/// Values of the inputs, (run, input): drawn again, eight runs at a time.
+/// Values of the inputs, (run, input): drawn again, some blocks of eight runs at a time.
 std::vector<double> input_rows(const std::vector<Input>& inputs,
                                const Sampler& sampler,
                                const Ranges& ranges,
@@ -40,18 +42,22 @@ std::vector<double> input_rows(const std::vector<Input>& inputs,
   std::vector<base::ReadySpread> spreads(many);
   for (std::size_t u = 0; u < many; ++u) spreads[u] = inputs[u].spread();
   std::vector<double> rows(runs * many);
-  network::Scores<8> scores, values(many);
-  for (std::size_t run = 0; run < runs; run += 8) {
-    sampler.spaced(static_cast<long long>(run * stride), static_cast<long long>(stride), scores);
-    for (const std::size_t unknown : ranges.unknown) scores[unknown] = 0.5;
-    base::quantiles(spreads, std::span<const base::Lanes<8>>(scores), values);
-    const std::size_t here = std::min<std::size_t>(8, runs - run);
+  constexpr std::size_t at_once = 16;
+  std::array<network::Scores<8>, at_once> scores;
+  std::vector<network::Scores<8>> values(at_once, network::Scores<8>(many));
+  for (std::size_t run = 0; run < runs; run += 8 * at_once) {
+    const std::size_t here = std::min(8 * at_once, runs - run), blocks = (here + 7) / 8;
+    const auto drawn = std::span(scores).first(blocks);
+    sampler.spaced(static_cast<long long>(run * stride), static_cast<long long>(stride), drawn);
+    for (auto& block : drawn)
+      for (const std::size_t unknown : ranges.unknown) block[unknown] = 0.5;
+    base::quantiles(spreads, drawn, std::span(values).first(blocks));
     for (std::size_t u = 0; u < many; ++u) {
-      double* at = &rows[run * many + u];
       const bool choice = inputs[u].quantity == nullptr;
-      for (std::size_t lane = 0; lane < here; ++lane, at += many) {
-        const int place = static_cast<int>(lane);
-        *at = choice ? inputs[u].value(scores[u][place]) : values[u][place];
+      double* at = &rows[run * many + u];
+      for (std::size_t k = 0; k < here; ++k, at += many) {
+        const int lane = static_cast<int>(k % 8);
+        *at = choice ? inputs[u].value(scores[k / 8][u][lane]) : values[k / 8][u][lane];
       }
     }
   }

@@ -17,23 +17,69 @@ struct FourCounters {
   __m256i word0, word1, word2, word3;
 };
 
-HEADBAND_INLINE void one_round(__m256i k0, __m256i k1, FourCounters& c) {
-  const __m256i m0 = _mm256_set1_epi64x(static_cast<long long>(multiplier_0));
-  const __m256i m1 = _mm256_set1_epi64x(static_cast<long long>(multiplier_1));
-  const __m256i p0 = _mm256_mul_epu32(c.word0, m0);
-  const __m256i p1 = _mm256_mul_epu32(c.word2, m1);
-  c.word0 = _mm256_xor_si256(_mm256_srli_epi64(p1, 32), _mm256_xor_si256(c.word1, k0));
-  c.word2 = _mm256_xor_si256(_mm256_srli_epi64(p0, 32), _mm256_xor_si256(c.word3, k1));
+HEADBAND_INLINE __m256i high_half(__m256i x) { return _mm256_srli_epi64(x, 32); }
+HEADBAND_INLINE __m256i in_every_lane(std::uint64_t x) { return _mm256_set1_epi64x(static_cast<long long>(x)); }
+HEADBAND_INLINE __m256i round_key(const PhiloxKey& key, std::size_t round, std::size_t which) {
+  return _mm256_load_si256(reinterpret_cast<const __m256i*>(&key.in_lanes[round][which]));
+}
+
+HEADBAND_INLINE void one_round(const PhiloxKey& key, std::size_t round, FourCounters& c) {
+  const __m256i p0 = _mm256_mul_epu32(c.word0, in_every_lane(multiplier_0));
+  const __m256i p1 = _mm256_mul_epu32(c.word2, in_every_lane(multiplier_1));
+  c.word0 = _mm256_xor_si256(high_half(p1), _mm256_xor_si256(c.word1, round_key(key, round, 0)));
+  c.word2 = _mm256_xor_si256(high_half(p0), _mm256_xor_si256(c.word3, round_key(key, round, 1)));
   c.word1 = p1;
   c.word3 = p0;
 }
 
-/// Scores from the first two words: top 52 bits of out1 2^32 + out0, laid into the mantissa of 2^52.
+/// Scores from the first two words: top 52 bits of out1 2^32 + out0, laid into the mantissa of 1. The difference is
+/// exact: (top + 1/2) / 2^52.
 HEADBAND_INLINE base::Quad four_scores(const FourCounters& c) {
   const __m256i bits = _mm256_blend_epi32(c.word0, _mm256_slli_epi64(c.word1, 32), 0xAA);
-  const __m256i mantissa = _mm256_or_si256(_mm256_srli_epi64(bits, 12), _mm256_set1_epi64x(0x4330000000000000LL));
-  const __m256d number = _mm256_sub_pd(_mm256_castsi256_pd(mantissa), _mm256_set1_pd(0x1p52));
-  return _mm256_mul_pd(_mm256_add_pd(number, _mm256_set1_pd(0.5)), _mm256_set1_pd(0x1p-52));
+  const __m256i mantissa = _mm256_or_si256(_mm256_srli_epi64(bits, 12), in_every_lane(0x3ff0000000000000U));
+  return _mm256_sub_pd(_mm256_castsi256_pd(mantissa), _mm256_set1_pd(1.0 - 0x1p-53));
+}
+
+/// Low words of four draws.
+HEADBAND_INLINE __m256i four_draws(std::uint64_t first, std::uint64_t stride) {
+  const auto draw = [first, stride](std::uint64_t lane) { return static_cast<long long>(first + lane * stride); };
+  return _mm256_set_epi64x(draw(3), draw(2), draw(1), draw(0));
+}
+
+/// What the first two rounds make of the words that all draws have in common: name, and upper word of the draw.
+struct CommonRounds {
+  __m256i word2_of_first, word0_of_second, word2_of_second, word3_of_second;
+
+  CommonRounds(const PhiloxKey& key, std::uint64_t draw_high, std::uint64_t name) {
+    const std::uint64_t low = 0xffffffffU;
+    const std::uint64_t by_name = (name & low) * multiplier_1;
+    const std::uint64_t word0 = (by_name >> 32) ^ draw_high ^ key.round[0][0];
+    const std::uint64_t by_draw = word0 * multiplier_0;
+    word2_of_first = in_every_lane((name >> 32) ^ key.round[0][1]);
+    word0_of_second = in_every_lane((by_name & low) ^ key.round[1][0]);
+    word2_of_second = in_every_lane((by_draw >> 32) ^ key.round[1][1]);
+    word3_of_second = in_every_lane(by_draw & low);
+  }
+
+  /// The counters of four draws after two rounds, 32 bits of each 64 as everywhere.
+  [[nodiscard]] HEADBAND_INLINE FourCounters after(__m256i draws) const {
+    const __m256i p0 = _mm256_mul_epu32(draws, in_every_lane(multiplier_0));
+    const __m256i p1 = _mm256_mul_epu32(_mm256_xor_si256(high_half(p0), word2_of_first), in_every_lane(multiplier_1));
+    return {
+        _mm256_xor_si256(high_half(p1), word0_of_second), p1, _mm256_xor_si256(p0, word2_of_second), word3_of_second};
+  }
+};
+
+/// Rounds from `round` to the last of two chains side by side, which hides the multiplier's latency.
+HEADBAND_INLINE void last_rounds(
+    const PhiloxKey& key, std::size_t round, FourCounters& a, FourCounters& b, base::Lanes<8>& scores) {
+#pragma GCC unroll 10
+  for (; round < key.round.size(); ++round) {
+    one_round(key, round, a);
+    one_round(key, round, b);
+  }
+  scores.part[0] = four_scores(a);
+  scores.part[1] = four_scores(b);
 }
 #endif
 
@@ -56,35 +102,50 @@ std::uint64_t philox_bits(std::uint64_t seed, std::uint64_t draw, std::uint64_t 
 
 PhiloxKey::PhiloxKey(std::uint64_t seed) {
   auto k0 = static_cast<std::uint32_t>(seed), k1 = static_cast<std::uint32_t>(seed >> 32);
-  for (auto& k : round) {
-    k = {k0, k1};
+  for (std::size_t i = 0; i < round.size(); ++i) {
+    round[i] = {k0, k1};
     k0 += increment_0;
     k1 += increment_1;
   }
+  // a loop of its own: in the one above g++ 12 writes the first key in place of the second in the last two rounds
+  for (std::size_t i = 0; i < round.size(); ++i)
+    for (std::size_t which = 0; which < 2; ++which) in_lanes[i][which].fill(round[i][which]);
 }
 
-void philox_scores(
-    const PhiloxKey& key, std::uint64_t first, std::uint64_t name, base::Lanes<8>& scores, std::uint64_t stride) {
+void philox_scores(const PhiloxKey& key,
+                   std::uint64_t first,
+                   std::uint64_t name,
+                   std::span<base::Lanes<8>> scores,
+                   std::uint64_t stride) {
 #if defined(__AVX2__)
-  const auto draw = [first, stride](std::uint64_t lane) { return static_cast<long long>(first + lane * stride); };
-  const __m256i name_low = _mm256_set1_epi64x(static_cast<long long>(name & 0xffffffffU));
-  const __m256i name_high = _mm256_set1_epi64x(static_cast<long long>(name >> 32));
-  const __m256i draws_a = _mm256_set_epi64x(draw(3), draw(2), draw(1), draw(0));
-  const __m256i draws_b = _mm256_set_epi64x(draw(7), draw(6), draw(5), draw(4));
-  FourCounters a{draws_a, _mm256_srli_epi64(draws_a, 32), name_low, name_high};
-  FourCounters b{draws_b, _mm256_srli_epi64(draws_b, 32), name_low, name_high};
-  for (const auto& k : key.round) {  // two chains side by side hide the multiplier's latency
-    const __m256i k0 = _mm256_set1_epi64x(static_cast<long long>(k[0]));
-    const __m256i k1 = _mm256_set1_epi64x(static_cast<long long>(k[1]));
-    one_round(k0, k1, a);
-    one_round(k0, k1, b);
+  const std::uint64_t last = first + (8 * scores.size() - 1) * stride;
+  const std::uint64_t step = 8 * stride;
+  if (first >> 32 == last >> 32) {
+    const CommonRounds common(key, first >> 32, name);
+    const __m256i next = in_every_lane(4 * stride);
+    __m256i draws = four_draws(first, stride);
+    for (auto& block : scores) {
+      FourCounters a = common.after(draws);
+      draws = _mm256_add_epi64(draws, next);
+      FourCounters b = common.after(draws);
+      draws = _mm256_add_epi64(draws, next);
+      last_rounds(key, 2, a, b, block);
+    }
+    return;
   }
-  scores.part[0] = four_scores(a);
-  scores.part[1] = four_scores(b);
+  const __m256i name_low = in_every_lane(name & 0xffffffffU), name_high = in_every_lane(name >> 32);
+  for (auto& block : scores) {
+    const __m256i draws_a = four_draws(first, stride), draws_b = four_draws(first + 4 * stride, stride);
+    FourCounters a{draws_a, high_half(draws_a), name_low, name_high};
+    FourCounters b{draws_b, high_half(draws_b), name_low, name_high};
+    last_rounds(key, 0, a, b, block);
+    first += step;
+  }
 #else
   const std::uint64_t seed = key.round[0][1] << 32 | key.round[0][0];
-  for (int lane = 0; lane < 8; ++lane) {
-    scores.set(lane, score_of_bits(philox_bits(seed, first + static_cast<std::uint64_t>(lane) * stride, name)));
+  for (auto& block : scores) {
+    for (int lane = 0; lane < 8; ++lane, first += stride)
+      block.set(lane, score_of_bits(philox_bits(seed, first, name)));
   }
 #endif
 }

@@ -8,6 +8,7 @@
 
 #include <array>
 #include <cstdint>
+#include <span>
 
 namespace headband::montecarlo {
 
@@ -27,13 +28,18 @@ using PhiloxWords = std::array<std::uint32_t, 4>;
 /// Ten round keys of a seed, made once.
 struct PhiloxKey {
   explicit PhiloxKey(std::uint64_t seed);
-  std::array<std::array<std::uint64_t, 2>, 10> round{};  ///< 32 bits each, as wide as the registers take them
+  std::array<std::array<std::uint64_t, 2>, 10> round{};  ///< 32 bits each
+  /// The same, each as often as a register holds it.
+  alignas(32) std::array<std::array<std::array<std::uint64_t, 4>, 2>, 10> in_lanes{};
 };
 
-/// Scores of the draws `first`, `first + stride`, … `first + 7 stride` for one name; the same bits as
-/// `score_of_bits(philox_bits(…))`.
-void philox_scores(
-    const PhiloxKey& key, std::uint64_t first, std::uint64_t name, base::Lanes<8>& scores, std::uint64_t stride = 1);
+/// Scores of the draws `first`, `first + stride`, … for one name, eight in each of `scores`, which are not none; the
+/// same bits as `score_of_bits(philox_bits(…))` one by one.
+void philox_scores(const PhiloxKey& key,
+                   std::uint64_t first,
+                   std::uint64_t name,
+                   std::span<base::Lanes<8>> scores,
+                   std::uint64_t stride = 1);
 
 /// Draw words at and above these are never draws of a case: they key scrambles and shuffles.
 inline constexpr std::uint64_t scramble_draws = std::uint64_t{1} << 63;

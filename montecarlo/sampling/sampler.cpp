@@ -114,34 +114,52 @@ void Sampler::depend(network::Scores<W>& scores) const {
   }
 }
 
-void Sampler::block(long long first, network::Scores<8>& scores) const { spaced(first, 1, scores); }
+void Sampler::block(long long first, network::Scores<8>& scores) const { spaced(first, 1, {&scores, 1}); }
 
-void Sampler::spaced(long long first, long long stride, network::Scores<8>& scores) const {
-  scores.resize(names_.size());
+/// Scores of one unknown, before the case's correlations.
+void Sampler::fill(std::size_t unknown, long long first, long long stride, std::span<Lanes<8>> scores) const {
   const auto start = static_cast<std::uint64_t>(first), step = static_cast<std::uint64_t>(stride);
-  for (std::size_t u = 0; u < names_.size(); ++u) {
-    Lanes<8>& score = scores[u];
-    if (!random_[u]) {
-      score = 0.5;
-    } else if (design_ == network::Design::sobol) {
+  if (!random_[unknown]) {
+    std::ranges::fill(scores, Lanes<8>(0.5));
+    return;
+  }
+  if (design_ == network::Design::sobol) {
+    for (std::size_t k = 0; k < scores.size(); ++k) {
       std::array<std::uint64_t, 8> point{};
       if (stride == 1) {
-        sobol_[u].points(start, point);
+        sobol_[unknown].points(start + 8 * k, point);
       } else {
-        for (std::size_t lane = 0; lane < 8; ++lane) point[lane] = sobol_[u].point(start + lane * step);
+        for (std::size_t lane = 0; lane < 8; ++lane) point[lane] = sobol_[unknown].point(start + (8 * k + lane) * step);
       }
-      for (int lane = 0; lane < 8; ++lane) score.set(lane, score_of_point(point[static_cast<std::size_t>(lane)]));
-    } else {
-      philox_scores(key_, start, names_[u], score, step);
-      if (design_ == network::Design::latin_hypercube) {
-        for (int lane = 0; lane < 8; ++lane) {
-          const auto draw = static_cast<std::size_t>(std::min(first + lane * stride, draws_ - 1));
-          score.set(lane, latin_score(strata_[u][draw], score[lane], static_cast<std::uint32_t>(draws_)));
-        }
-      }
+      for (int lane = 0; lane < 8; ++lane) scores[k].set(lane, score_of_point(point[static_cast<std::size_t>(lane)]));
+    }
+    return;
+  }
+  philox_scores(key_, start, names_[unknown], scores, step);
+  if (design_ != network::Design::latin_hypercube) return;
+  long long draw = first;
+  for (auto& block : scores) {
+    for (int lane = 0; lane < 8; ++lane, draw += stride) {
+      const auto here = static_cast<std::size_t>(std::min(draw, draws_ - 1));
+      block.set(lane, latin_score(strata_[unknown][here], block[lane], static_cast<std::uint32_t>(draws_)));
     }
   }
-  depend<8>(scores);
+}
+
+void Sampler::spaced(long long first, long long stride, std::span<network::Scores<8>> scores) const {
+  std::array<Lanes<8>, at_once> column;
+  for (; !scores.empty(); scores = scores.subspan(std::min(at_once, scores.size()))) {
+    const auto here = scores.first(std::min(at_once, scores.size()));
+    for (auto& block : here)
+      if (block.size() != names_.size()) block.resize(names_.size());
+    for (std::size_t u = 0; u < names_.size(); ++u) {
+      fill(u, first, stride, std::span(column).first(here.size()));
+      for (std::size_t k = 0; k < here.size(); ++k) here[k][u] = column[k];
+    }
+    if (!dependence_.members.empty())
+      for (auto& block : here) depend<8>(block);
+    first += 8 * stride * static_cast<long long>(here.size());
+  }
 }
 
 network::Scores<1> Sampler::draw(long long draw) const {

@@ -7,6 +7,7 @@
 #include "montecarlo/sampling/sobol.hpp"
 
 #include <cstdint>
+#include <span>
 #include <vector>
 
 namespace headband::montecarlo {
@@ -28,8 +29,11 @@ class Sampler {
   /// @param scores one entry per unknown; storage is kept
   void block(long long first, network::Scores<8>& scores) const;
 
-  /// Scores of the draws `first`, `first + stride`, … `first + 7 stride`: the bits they have in their blocks.
-  void spaced(long long first, long long stride, network::Scores<8>& scores) const;
+  /// The same for the blocks that follow one another from `first` on, in less time than one by one.
+  void blocks(long long first, std::span<network::Scores<8>> scores) const { spaced(first, 1, scores); }
+
+  /// Scores of the draws `first`, `first + stride`, …, eight a block: the bits they have in their own blocks.
+  void spaced(long long first, long long stride, std::span<network::Scores<8>> scores) const;
 
   /// Scores of one draw: the bits it has in its block.
   [[nodiscard]] network::Scores<1> draw(long long draw) const;
@@ -52,6 +56,9 @@ class Sampler {
   void make_points();
   template <int W>
   void depend(network::Scores<W>& scores) const;
+  void fill(std::size_t unknown, long long first, long long stride, std::span<Lanes<8>> scores) const;
+
+  static constexpr std::size_t at_once = 16;  ///< blocks whose scores stand in the first-level cache
 
   network::Design design_;
   std::uint64_t seed_;

@@ -229,14 +229,17 @@ void surge_threads(benchmark::State& state) {
   const network::Case c = valve_case(64, Friction::fixed);
   const network::Plan plan = network::make_plan(c);
   constexpr long long count = 1024;
-  const montecarlo::ScoreSource scores = [&](long long first, network::Scores<8>& block) {
-    block.resize(c.unknowns.size());
-    for (std::size_t u = 0; u < block.size(); ++u)
-      for (int lane = 0; lane < 8; ++lane) {
-        const double x =
-            (static_cast<double>(first + lane) + 0.5) * (u % 2 == 0 ? 0.6180339887498949 : 0.7548776662466927);
-        block[u].set(lane, x - std::floor(x));
-      }
+  const montecarlo::ScoreSource scores = [&](long long first, std::span<network::Scores<8>> blocks) {
+    for (auto& block : blocks) {
+      block.resize(c.unknowns.size());
+      for (std::size_t u = 0; u < block.size(); ++u)
+        for (int lane = 0; lane < 8; ++lane) {
+          const double x =
+              (static_cast<double>(first + lane) + 0.5) * (u % 2 == 0 ? 0.6180339887498949 : 0.7548776662466927);
+          block[u].set(lane, x - std::floor(x));
+        }
+      first += 8;
+    }
   };
   const auto run = [&](std::size_t threads) {
     std::vector<montecarlo::BlockModel> models;

@@ -40,7 +40,7 @@ void realise_by_temperature(const Liquid& liquid, const Draw<W>& draw, LiquidVal
       {draw(first.first), draw(first.second), draw(second.first), draw(second.second)}, values.temperature);
 }
 
-/// Numbers given outright take the place of those that follow from the temperature.
+/// Numbers given outright take the place of those that follow from the temperature; the viscosity comes after them.
 template <int W>
 void realise_given_numbers(const Liquid& liquid, const Draw<W>& draw, LiquidValues<W>& values) {
   if (liquid.density.given()) values.density = draw(liquid.density);
@@ -50,7 +50,10 @@ void realise_given_numbers(const Liquid& liquid, const Draw<W>& draw, LiquidValu
   }
   if (liquid.vapour_pressure.given()) values.vapour_pressure = draw(liquid.vapour_pressure);
   values.free_gas = draw(liquid.free_gas, 0.0);
+}
 
+template <int W>
+void realise_viscosity(const Liquid& liquid, const Draw<W>& draw, LiquidValues<W>& values) {
   if (liquid.viscosity.given()) {
     values.kinematic_viscosity = draw(liquid.viscosity);
     if (liquid.viscosity.dimension == base::Dimension::dynamic_viscosity) values.kinematic_viscosity /= values.density;

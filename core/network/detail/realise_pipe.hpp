@@ -9,11 +9,15 @@
 
 namespace headband::network::detail {
 
+template <int W>
+void realise_length(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& values) {
+  values.length = pipe.length.given() ? draw(pipe.length) : draw(pipe.profile.back().first);
+}
+
 /// Bore, wall and inner diameter of the metal from what is given: outside + wall, bore + wall, outside + bore, or bore
 /// alone. One drawn wall feeds all three.
 template <int W>
-void realise_geometry(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& values) {
-  values.length = pipe.length.given() ? draw(pipe.length) : draw(pipe.profile.back().first);
+void realise_section(const Pipe& pipe, const Draw<W>& draw, PipeValues<W>& values) {
   const Lanes<W> lining = draw(pipe.lining_thickness, 0.0);
   if (pipe.outside.given() && pipe.wall.given()) {
     values.wall = draw(pipe.wall);

@@ -75,6 +75,7 @@ TEST(Evaluate, AnswersAgreeWithTheirDefinition) {
 TEST(Evaluate, VapourLimitNamesPipeChainageAndShortfall) {
   const Hill low(45.0), high(58.0);
   EXPECT_EQ(steady::check_vapour(low.plan, low.values, low.state).pipe[0], -1);
+  EXPECT_FALSE(steady::clears_vapour(high.plan, high.values, high.state));
   const auto check = steady::check_vapour(high.plan, high.values, high.state);
   ASSERT_EQ(check.pipe[0], 0);
   EXPECT_NEAR(check.chainage[0], 600.0, 1e-12);
@@ -99,6 +100,8 @@ TEST(Evaluate, VapourShortfallIsThatOfEveryPoint) {
     auto values = network::Realiser(c, plan).prepare<8>();
     steady::SteadySolver solver(c, plan);
     steady::SteadyState<8> state;
+    solver.solve(values, state);
+    EXPECT_EQ(steady::clears_vapour(plan, values, state), !fitting);  // the quick look knows no steps
     int above = 0, below = 0;
     for (int step = -60; step <= 60; ++step) {
       for (int lane = 0; lane < 8; ++lane) {
@@ -112,6 +115,7 @@ TEST(Evaluate, VapourShortfallIsThatOfEveryPoint) {
       }
       solver.solve(values, state);
       const auto check = steady::check_vapour(plan, values, state);
+      const bool clears = steady::clears_vapour(plan, values, state);
       const auto& pipe = values.pipes[0];
       for (int lane = 0; lane < 8; ++lane) {
         double deepest = 0.0;
@@ -123,6 +127,7 @@ TEST(Evaluate, VapourShortfallIsThatOfEveryPoint) {
         }
         EXPECT_EQ(check.shortfall[lane], deepest);
         EXPECT_EQ(check.pipe[static_cast<std::size_t>(lane)], deepest > 0.0 ? 0 : -1);
+        EXPECT_FALSE(clears && deepest > 0.0);
         (deepest > 0.0 ? below : above) += 1;
       }
     }

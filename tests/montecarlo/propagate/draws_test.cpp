@@ -37,7 +37,7 @@ BlockModel sum_model() {
 }
 
 ScoreSource source_of(const Sampler& s) {
-  return [&s](long long first, network::Scores<8>& scores) { s.block(first, scores); };
+  return [&s](long long first, std::span<network::Scores<8>> blocks) { s.blocks(first, blocks); };
 }
 
 /// A model is told of the blocks before it is asked for them, in their order, and of every one.
@@ -144,6 +144,30 @@ TEST(Draws, ExceptionsEndInFailedDrawsAndAComplaint) {
     const bool broke = sampler.draw(first)[0].number > 0.5;
     for (long long lane = 0; lane < 8; ++lane)
       EXPECT_EQ(table.status[static_cast<std::size_t>(first + lane)], broke ? 2 : 0);
+  }
+}
+
+/// A source that breaks off spoils the block it breaks off in, not those drawn with it.
+TEST(Draws, ASourceThatBreaksOffSpoilsItsBlockAlone) {
+  const auto c = two_unknowns();
+  const Sampler sampler(c, network::Design::plain, 3, 1024);
+  std::vector<BlockModel> models{sum_model()};
+  DrawTable table(1, 1, 0), whole(1, 1, 0);
+  table.resize(1024);
+  whole.resize(1024);
+  const ScoreSource breaking = [&](long long first, std::span<network::Scores<8>> blocks) {
+    sampler.blocks(first, blocks);
+    const long long behind = first + 8 * static_cast<long long>(blocks.size());
+    if (first <= 400 && 400 < behind) throw std::runtime_error("no score");
+  };
+  const auto summary = run_draws(0, 1024, breaking, models, table, {});
+  EXPECT_EQ(summary.complaint, "no score");
+  EXPECT_TRUE(run_draws(0, 1024, source_of(sampler), models, whole, {}).complaint.empty());
+  for (std::size_t draw = 0; draw < 1024; ++draw) {
+    const bool spoilt = draw / 8 == 50;
+    EXPECT_EQ(table.status[draw], spoilt ? 2 : 0) << draw;
+    if (spoilt) continue;
+    EXPECT_EQ(table.answer[0][draw], whole.answer[0][draw]) << draw;
   }
 }
 

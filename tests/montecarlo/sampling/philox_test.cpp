@@ -5,8 +5,10 @@
 
 #include <gtest/gtest.h>
 
+#include <array>
 #include <cmath>
 #include <cstdint>
+#include <span>
 #include <string>
 
 namespace headband::montecarlo {
@@ -31,21 +33,23 @@ TEST(Philox, MatchesKnownAnswers) {
   EXPECT_EQ(checked, 13);
 }
 
-TEST(Philox, EightDrawsAreTheBitsOfOne) {
+/// Blocks of eight, many in one go: within one upper word of the draw's number, across two, and over the end.
+TEST(Philox, BlocksAreTheBitsOfSingleDraws) {
+  std::array<base::Lanes<8>, 5> blocks;
   for (const std::uint64_t seed : {0ULL, 20ULL, 0xfedcba9876543210ULL}) {
     const PhiloxKey key(seed);
-    for (const std::uint64_t first : {0ULL, 8ULL, 0xfffffff8ULL, 0xfffffffcULL, 0x123456789abcdef0ULL}) {
+    for (const std::uint64_t first :
+         {0ULL, 8ULL, 0xfffffff8ULL, 0xfffffffcULL, 0x123456789abcdef0ULL, 0xfffffffffffffff0ULL}) {
       for (const std::uint64_t name : {0ULL, 1ULL, 0xba7816bf8f01cfeaULL}) {
-        base::Lanes<8> scores;
-        philox_scores(key, first, name, scores);
-        for (int lane = 0; lane < 8; ++lane) {
-          EXPECT_EQ(scores[lane], score_of_bits(philox_bits(seed, first + static_cast<std::uint64_t>(lane), name)));
-        }
-        constexpr std::uint64_t stride = 0x30000001U;  // carries into the upper word
-        philox_scores(key, first, name, scores, stride);
-        for (int lane = 0; lane < 8; ++lane) {
-          const std::uint64_t draw = first + stride * static_cast<std::uint64_t>(lane);
-          EXPECT_EQ(scores[lane], score_of_bits(philox_bits(seed, draw, name)));
+        for (const std::uint64_t stride : {1ULL, 10ULL, 0x30000001ULL}) {  // the last carries into the upper word
+          for (const std::size_t many : {1U, 5U}) {
+            philox_scores(key, first, name, std::span(blocks).first(many), stride);
+            for (std::size_t i = 0; i < 8 * many; ++i) {
+              EXPECT_EQ(blocks[i / 8][static_cast<int>(i % 8)],
+                        score_of_bits(philox_bits(seed, first + stride * i, name)))
+                  << first << " " << stride << " " << i;
+            }
+          }
         }
       }
     }

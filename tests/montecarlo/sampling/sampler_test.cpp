@@ -88,11 +88,32 @@ TEST(Sampler, OneDrawHasTheBitsOfItsBlock) {
     network::Scores<8> spaced;
     for (const long long stride : {1LL, 3LL, 13LL}) {
       for (long long first = 0; first < 100; first += 8 * stride) {
-        s.spaced(first, stride, spaced);
+        s.spaced(first, stride, {&spaced, 1});
         for (int lane = 0; lane < 8 && first + lane * stride < 100; ++lane) {
           const auto draw = static_cast<std::size_t>(first + lane * stride);
           for (std::size_t u = 0; u < 5; ++u) ASSERT_EQ(spaced[u][lane], all[u][draw]) << stride;
         }
+      }
+    }
+  }
+}
+
+/// Many blocks in one go, more than are worked on at a time and an odd number of them.
+TEST(Sampler, BlocksAreTheBitsOfOneByOne) {
+  auto c = case_of({"a", "b", "c", "range"});
+  c.unknowns[3].random = false;
+  c.together.push_back({.first = "a", .second = "c", .rank_correlation = 0.6, .place = {}});
+  for (const auto design : designs) {
+    const Sampler s(c, design, 11, 1000);
+    const auto all = all_scores(s);
+    for (const long long stride : {1LL, 3LL}) {
+      std::vector<network::Scores<8>> blocks(37);
+      s.spaced(16, stride, blocks);
+      for (std::size_t i = 0; i < 8 * blocks.size(); ++i) {
+        const std::size_t draw = 16 + i * static_cast<std::size_t>(stride);
+        if (draw >= 1000) continue;
+        for (std::size_t u = 0; u < 4; ++u)
+          ASSERT_EQ(blocks[i / 8][u][static_cast<int>(i % 8)], all[u][draw]) << draw << " " << stride;
       }
     }
   }
