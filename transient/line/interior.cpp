@@ -229,8 +229,8 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     leaving_two<W, form, placed>(r, rows, i + 1, root_at(rows.root, i + 1), a, b);
     Met<W> q = meet(on1, a.back, on2, b.back);
     meet_alone(rows, i, on1, a.back, q);
-    const Lanes<W> h1 = on1.head - on1.damp * q.first;
-    const Lanes<W> h2 = on2.head - on2.damp * q.second;
+    const Lanes<W> h1 = fused_less(on1.head, on1.damp, q.first);
+    const Lanes<W> h2 = fused_less(on2.head, on2.damp, q.second);
     if constexpr (limited) {
       if (any((h1 < rows.vapour[i]) | (h2 < rows.vapour[i + 1]))) {
         old.put_back(rows, i, 1);
@@ -250,7 +250,7 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     if constexpr (limited) ahead.keep(rows, last, 1);
     const Wave<W> back = leaving<W, form, placed>(r, rows, last).back;
     const Lanes<W> q = meet(on1, back);
-    const Lanes<W> h = on1.head - on1.damp * q;
+    const Lanes<W> h = fused_less(on1.head, on1.damp, q);
     if constexpr (limited) {
       if (any(h < rows.vapour[i])) {
         old.put_back(rows, i, 1);
@@ -279,7 +279,7 @@ HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
                             const Lanes<W>& per_volume,
                             CavityTally<W>& tally) {
   const Lanes<W> zero(0.0), limit = rows.vapour[i];
-  Lanes<W> h = on.head - on.damp * q;
+  Lanes<W> h = fused_less(on.head, on.damp, q);
   Lanes<W> before = q;
   const auto low = h < limit;
   const auto held = rows.volume[i] > zero;

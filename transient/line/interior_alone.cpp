@@ -84,7 +84,7 @@ int march(const Resistance<8>& r, const PipeRows<1>& rows, int i, Arriving<1>& o
     const Waves<B> leaving{h + carried, sent.damp}, back{h - carried, sent.damp};
     const Waves<B> on{two_rows_earlier(before_head, leaving.head), two_rows_earlier(before_damp, leaving.damp)};
     const Lanes<B> new_flow = (on.head - back.head) * shares(on.damp + back.damp);
-    const Lanes<B> new_head = on.head - on.damp * new_flow;
+    const Lanes<B> new_head = fused_less(on.head, on.damp, new_flow);
     if constexpr (limited) {
       if (any(new_head < load<B>(vapour + i))) break;
     }

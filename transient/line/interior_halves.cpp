@@ -6,6 +6,8 @@ namespace {
 
 using base::Quad;
 using base::QuadBits;
+using base::detail::fused;
+using base::detail::fused_less;
 
 HEADBAND_INLINE Quad size_of(const Quad& x) {
   return __builtin_bit_cast(Quad, __builtin_bit_cast(QuadBits, x) & INT64_MAX);
@@ -51,29 +53,29 @@ void march_half(const Resistance<8>& r, const PipeRows<8>& rows) {
   };
   const auto on_from = [&](int i) __attribute__((always_inline)) {
     const Quad flow = flows[i].part[half];
-    return Wave{heads[i].part[half] + carry * flow, damp + quadratic * size_of(flow)};
+    return Wave{heads[i].part[half] + carry * flow, fused(quadratic, size_of(flow), damp)};
   };
   Wave on1 = on_from(0), on2 = on_from(1);
   int i = 1;
   for (; i + 1 < last; i += 2) {
     const Quad head_a = heads[i + 1].part[half], flow_a = flows[i + 1].part[half];
     const Quad head_b = heads[i + 2].part[half], flow_b = flows[i + 2].part[half];
-    const Quad damp_a = damp + quadratic * size_of(flow_a), damp_b = damp + quadratic * size_of(flow_b);
+    const Quad damp_a = fused(quadratic, size_of(flow_a), damp), damp_b = fused(quadratic, size_of(flow_b), damp);
     const Quad carried_a = carry * flow_a, carried_b = carry * flow_b;
     const Quad sum1 = on1.damp + damp_a, sum2 = on2.damp + damp_b;
     const Quad inverse = one / (sum1 * sum2);
     const Quad flow1 = (on1.head - (head_a - carried_a)) * (sum2 * inverse);
     const Quad flow2 = (on2.head - (head_b - carried_b)) * (sum1 * inverse);
-    keep(i, on1.head - on1.damp * flow1, flow1);
-    keep(i + 1, on2.head - on2.damp * flow2, flow2);
+    keep(i, fused_less(on1.head, on1.damp, flow1), flow1);
+    keep(i + 1, fused_less(on2.head, on2.damp, flow2), flow2);
     on1 = {head_a + carried_a, damp_a};
     on2 = {head_b + carried_b, damp_b};
   }
   if (i < last) {  // a row without a neighbour
     const Quad flow_a = flows[last].part[half];
-    const Quad inverse = one / (on1.damp + (damp + quadratic * size_of(flow_a)));
+    const Quad inverse = one / (on1.damp + fused(quadratic, size_of(flow_a), damp));
     const Quad flow = (on1.head - (heads[last].part[half] - carry * flow_a)) * inverse;
-    keep(i, on1.head - on1.damp * flow, flow);
+    keep(i, fused_less(on1.head, on1.damp, flow), flow);
   }
 }
 

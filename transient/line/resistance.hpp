@@ -134,9 +134,9 @@ template <int W, Form form, bool placed, int V>
   using base::for_rows;
   Sent<W> s;
   if constexpr (placed) {
-    s = {r.carry, r.damp + (r.quadratic + *fitting) * c.size};
+    s = {r.carry, fused(r.quadratic + *fitting, c.size, r.damp)};
   } else {
-    s = {for_rows<W>(r.carry), for_rows<W>(r.damp) + for_rows<W>(r.quadratic) * c.size};
+    s = {for_rows<W>(r.carry), fused(for_rows<W>(r.quadratic), c.size, for_rows<W>(r.damp))};
   }
   if constexpr (form != Form::quadratic) {
     const Lanes<W> g = placed ? c.loss * (Lanes<W>(1.0) + *longer) : c.loss;

@@ -61,7 +61,7 @@ void March<W>::step_simply() {
     const Lanes<W> flow = *e.flow, carried = *e.carry * flow;
     Arriving<W>& wave = state_.wave[s];
     wave.head = e.far ? *e.head + carried : *e.head - carried;
-    wave.impedance = *e.damp + *e.quadratic * abs(flow);
+    wave.impedance = fused(*e.quadratic, abs(flow), *e.damp);
     if (e.shared) state_.per_impedance[s] = 1.0 / wave.impedance;
   }
   march_pipes();
