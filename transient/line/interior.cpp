@@ -118,30 +118,10 @@ HEADBAND_INLINE Leaving<W> leaving_cavity(const Resistance<W>& r, const PipeRows
   return {on, back};
 }
 
-// Flows of two neighbouring rows where the waves meet, by one quotient for both.
-template <int W>
-struct Met {
-  Lanes<W> first, second;
-};
-template <int W>
-HEADBAND_INLINE Met<W> meet(const Wave<W>& on1, const Wave<W>& back1, const Wave<W>& on2, const Wave<W>& back2) {
-  const Lanes<W> sum1 = on1.damp + back1.damp, sum2 = on2.damp + back2.damp;
-  const Lanes<W> inverse = 1.0 / (sum1 * sum2);
-  return {(on1.head - back1.head) * (sum2 * inverse), (on2.head - back2.head) * (sum1 * inverse)};
-}
-
-// A row without a neighbour, the last one before the far end: the same with a sum of 1 beside it.
+// Flow of a row where the waves meet.
 template <int W>
 HEADBAND_INLINE Lanes<W> meet(const Wave<W>& on, const Wave<W>& back) {
-  return (on.head - back.head) * (1.0 / (on.damp + back.damp));
-}
-
-// Where lanes end at different rows, the first row of a pair may be the last of its lane.
-template <int W>
-HEADBAND_INLINE void meet_alone(const PipeRows<W>& rows, int i, const Wave<W>& on, const Wave<W>& back, Met<W>& met) {
-  if (rows.reaches == nullptr) return;
-  const auto ends = *rows.reaches == Lanes<W>(i + 1.0);
-  if (any(ends)) met.first = select(ends, meet(on, back), met.first);
+  return (on.head - back.head) / (on.damp + back.damp);
 }
 
 template <int W, bool ask>
@@ -227,10 +207,9 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     if constexpr (limited) ahead.keep(rows, i + 1, 2);
     Leaving<W> a, b;
     leaving_two<W, form, placed>(r, rows, i + 1, root_at(rows.root, i + 1), a, b);
-    Met<W> q = meet(on1, a.back, on2, b.back);
-    meet_alone(rows, i, on1, a.back, q);
-    const Lanes<W> h1 = fused_less(on1.head, on1.damp, q.first);
-    const Lanes<W> h2 = fused_less(on2.head, on2.damp, q.second);
+    const Lanes<W> q1 = meet(on1, a.back), q2 = meet(on2, b.back);
+    const Lanes<W> h1 = fused_less(on1.head, on1.damp, q1);
+    const Lanes<W> h2 = fused_less(on2.head, on2.damp, q2);
     if constexpr (limited) {
       if (any((h1 < rows.vapour[i]) | (h2 < rows.vapour[i + 1]))) {
         old.put_back(rows, i, 1);
@@ -240,8 +219,8 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
       }
     }
     if constexpr (limited && form == Form::darcy) old.root[0] = ahead.root[1];
-    keep_row<W, envelope, ask>(rows, i, h1, q.first);
-    keep_row<W, envelope, ask>(rows, i + 1, h2, q.second);
+    keep_row<W, envelope, ask>(rows, i, h1, q1);
+    keep_row<W, envelope, ask>(rows, i + 1, h2, q2);
     on1 = a.on;
     on2 = b.on;
   }
@@ -333,10 +312,8 @@ bool march_cavities(const Resistance<W>& r,
   for (; i + 1 < last; i += 2) {
     const Leaving<W> a = leaving_cavity<W, form, placed>(r, rows, i + 1);
     const Leaving<W> b = leaving_cavity<W, form, placed>(r, rows, i + 2);
-    Met<W> q = meet(on1, a.back, on2, b.back);
-    meet_alone(rows, i, on1, a.back, q);
-    const bool one = settle<W, envelope>(rows, i, on1, a.back, q.first, dt, per_volume, tally);
-    const bool two = settle<W, envelope>(rows, i + 1, on2, b.back, q.second, dt, per_volume, tally);
+    const bool one = settle<W, envelope>(rows, i, on1, a.back, meet(on1, a.back), dt, per_volume, tally);
+    const bool two = settle<W, envelope>(rows, i + 1, on2, b.back, meet(on2, b.back), dt, per_volume, tally);
     left = left || one || two;
     on1 = a.on;
     on2 = b.on;

@@ -27,7 +27,7 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
   Lanes<8>* const flow = rows.flow;
   Lanes<8>* const head_max = rows.head_max;
   Lanes<8>* const head_min = rows.head_min;
-  const __m512d carry = load(r.carry), damp = load(r.damp), quadratic = load(r.quadratic), one = _mm512_set1_pd(1.0);
+  const __m512d carry = load(r.carry), damp = load(r.damp), quadratic = load(r.quadratic);
   __m512d h = load(head[0]), q = load(flow[0]);
   __m512d on1_head = _mm512_add_pd(h, _mm512_mul_pd(carry, q));
   __m512d on1_damp = _mm512_fmadd_pd(quadratic, _mm512_abs_pd(q), damp);
@@ -43,12 +43,10 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
     const __m512d a_damp = _mm512_fmadd_pd(quadratic, _mm512_abs_pd(a_flow), damp);
     const __m512d b_damp = _mm512_fmadd_pd(quadratic, _mm512_abs_pd(b_flow), damp);
     const __m512d a_carried = _mm512_mul_pd(carry, a_flow), b_carried = _mm512_mul_pd(carry, b_flow);
-    const __m512d sum1 = _mm512_add_pd(on1_damp, a_damp), sum2 = _mm512_add_pd(on2_damp, b_damp);
-    const __m512d inverse = _mm512_div_pd(one, _mm512_mul_pd(sum1, sum2));
     const __m512d q1 =
-        _mm512_mul_pd(_mm512_sub_pd(on1_head, _mm512_sub_pd(a_head, a_carried)), _mm512_mul_pd(sum2, inverse));
+        _mm512_div_pd(_mm512_sub_pd(on1_head, _mm512_sub_pd(a_head, a_carried)), _mm512_add_pd(on1_damp, a_damp));
     const __m512d q2 =
-        _mm512_mul_pd(_mm512_sub_pd(on2_head, _mm512_sub_pd(b_head, b_carried)), _mm512_mul_pd(sum1, inverse));
+        _mm512_div_pd(_mm512_sub_pd(on2_head, _mm512_sub_pd(b_head, b_carried)), _mm512_add_pd(on2_damp, b_damp));
     const __m512d h1 = _mm512_fnmadd_pd(on1_damp, q1, on1_head);
     const __m512d h2 = _mm512_fnmadd_pd(on2_damp, q2, on2_head);
     if constexpr (limited) {
@@ -74,9 +72,8 @@ HEADBAND_512 int march_pairs(const Resistance<8>& r, const PipeRows<8>& rows, Ar
   if (!stopped && i < last) {  // a row without a neighbour
     const __m512d a_head = load(head[last]), a_flow = load(flow[last]);
     const __m512d a_damp = _mm512_fmadd_pd(quadratic, _mm512_abs_pd(a_flow), damp);
-    const __m512d inverse = _mm512_div_pd(one, _mm512_add_pd(on1_damp, a_damp));
     const __m512d back = _mm512_sub_pd(a_head, _mm512_mul_pd(carry, a_flow));
-    const __m512d q1 = _mm512_mul_pd(_mm512_sub_pd(on1_head, back), inverse);
+    const __m512d q1 = _mm512_div_pd(_mm512_sub_pd(on1_head, back), _mm512_add_pd(on1_damp, a_damp));
     const __m512d h1 = _mm512_fnmadd_pd(on1_damp, q1, on1_head);
     if constexpr (limited) stopped = _mm512_cmp_pd_mask(h1, load(rows.vapour[i]), _CMP_LT_OQ) != 0;
     if (!stopped) {

@@ -45,22 +45,6 @@ HEADBAND_INLINE Lanes<B> two_rows_earlier(const Quad& before, const Lanes<B>& no
   return r;
 }
 
-// Share of the difference of heads that becomes flow, for eight rows: each pair of neighbours by one quotient.
-HEADBAND_INLINE Lanes<8> shares(const Lanes<8>& sum) {
-  // rows 0 4 2 6 and 1 5 3 7: the same shuffle leads there and back
-  const Quad even = __builtin_shufflevector(sum.part[0], sum.part[1], 0, 4, 2, 6);
-  const Quad odd = __builtin_shufflevector(sum.part[0], sum.part[1], 1, 5, 3, 7);
-  const Quad inverse = 1.0 / (even * odd);
-  const Quad for_even = odd * inverse, for_odd = even * inverse;
-  Lanes<8> share;
-  share.part[0] = __builtin_shufflevector(for_even, for_odd, 0, 4, 2, 6);
-  share.part[1] = __builtin_shufflevector(for_even, for_odd, 1, 5, 3, 7);
-  return share;
-}
-HEADBAND_INLINE Lanes<16> shares(const Lanes<16>& sum) {
-  return side_by_side(shares(first_eight(sum)), shares(last_eight(sum)));
-}
-
 // Blocks of B rows from row `i` on.
 template <int B, Form form, bool limited, bool envelope>
 int march(const Resistance<8>& r, const PipeRows<1>& rows, int i, Arriving<1>& on1, Arriving<1>& on2, Lanes<1>& root) {
@@ -83,7 +67,7 @@ int march(const Resistance<8>& r, const PipeRows<1>& rows, int i, Arriving<1>& o
     const Lanes<B> carried = sent.carry * q;
     const Waves<B> leaving{h + carried, sent.damp}, back{h - carried, sent.damp};
     const Waves<B> on{two_rows_earlier(before_head, leaving.head), two_rows_earlier(before_damp, leaving.damp)};
-    const Lanes<B> new_flow = (on.head - back.head) * shares(on.damp + back.damp);
+    const Lanes<B> new_flow = (on.head - back.head) / (on.damp + back.damp);
     const Lanes<B> new_head = fused_less(on.head, on.damp, new_flow);
     if constexpr (limited) {
       if (any(new_head < load<B>(vapour + i))) break;

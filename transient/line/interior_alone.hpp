@@ -2,7 +2,7 @@
 // SPDX-License-Identifier: MIT
 //
 // One run alone: no other draws fill a register, so eight of its rows stand in the lanes instead. The same operations
-// on the same numbers as row by row (interior.cpp), two neighbouring rows by one quotient, so the same bits.
+// on the same numbers as row by row (interior.cpp), so the same bits.
 
 #include "transient/line/interior.hpp"
 

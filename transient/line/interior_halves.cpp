@@ -42,7 +42,6 @@ void march_half(const Resistance<8>& r, const PipeRows<8>& rows) {
   Lanes<8>* const highest = rows.head_max;
   Lanes<8>* const lowest = rows.head_min;
   const Quad carry = r.carry.part[half], damp = r.damp.part[half], quadratic = r.quadratic.part[half];
-  const Quad one{1.0, 1.0, 1.0, 1.0};
   const auto keep = [&](int i, const Quad& head, const Quad& flow) __attribute__((always_inline)) {
     heads[i].part[half] = head;
     flows[i].part[half] = flow;
@@ -51,32 +50,27 @@ void march_half(const Resistance<8>& r, const PipeRows<8>& rows) {
       lowest[i].part[half] = smaller(lowest[i].part[half], head);
     }
   };
+  const auto damp_at = [&](const Quad& flow)
+                           __attribute__((always_inline)) { return fused(quadratic, size_of(flow), damp); };
   const auto on_from = [&](int i) __attribute__((always_inline)) {
     const Quad flow = flows[i].part[half];
-    return Wave{heads[i].part[half] + carry * flow, fused(quadratic, size_of(flow), damp)};
+    return Wave{heads[i].part[half] + carry * flow, damp_at(flow)};
   };
-  Wave on1 = on_from(0), on2 = on_from(1);
+  // row i from what rows i - 1 and i + 1 send; `on` becomes what row i + 1 sends on
+  const auto march_row = [&](int i, Wave& on) __attribute__((always_inline)) {
+    const Quad next_head = heads[i + 1].part[half], next_flow = flows[i + 1].part[half];
+    const Quad next_damp = damp_at(next_flow), carried = carry * next_flow;
+    const Quad flow = (on.head - (next_head - carried)) / (on.damp + next_damp);
+    keep(i, fused_less(on.head, on.damp, flow), flow);
+    on = {next_head + carried, next_damp};
+  };
+  Wave on_odd = on_from(0), on_even = on_from(1);
   int i = 1;
   for (; i + 1 < last; i += 2) {
-    const Quad head_a = heads[i + 1].part[half], flow_a = flows[i + 1].part[half];
-    const Quad head_b = heads[i + 2].part[half], flow_b = flows[i + 2].part[half];
-    const Quad damp_a = fused(quadratic, size_of(flow_a), damp), damp_b = fused(quadratic, size_of(flow_b), damp);
-    const Quad carried_a = carry * flow_a, carried_b = carry * flow_b;
-    const Quad sum1 = on1.damp + damp_a, sum2 = on2.damp + damp_b;
-    const Quad inverse = one / (sum1 * sum2);
-    const Quad flow1 = (on1.head - (head_a - carried_a)) * (sum2 * inverse);
-    const Quad flow2 = (on2.head - (head_b - carried_b)) * (sum1 * inverse);
-    keep(i, fused_less(on1.head, on1.damp, flow1), flow1);
-    keep(i + 1, fused_less(on2.head, on2.damp, flow2), flow2);
-    on1 = {head_a + carried_a, damp_a};
-    on2 = {head_b + carried_b, damp_b};
+    march_row(i, on_odd);
+    march_row(i + 1, on_even);
   }
-  if (i < last) {  // a row without a neighbour
-    const Quad flow_a = flows[last].part[half];
-    const Quad inverse = one / (on1.damp + fused(quadratic, size_of(flow_a), damp));
-    const Quad flow = (on1.head - (heads[last].part[half] - carry * flow_a)) * inverse;
-    keep(i, fused_less(on1.head, on1.damp, flow), flow);
-  }
+  if (i < last) march_row(i, on_odd);
 }
 
 }  // namespace

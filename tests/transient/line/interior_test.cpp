@@ -94,7 +94,7 @@ void fill(PipeState<W>& pipe, int lane, unsigned seed) {
   }
 }
 
-// Turned round, a pipe gives its mirror image; to rounding, because the pairs of rows that share a quotient differ.
+// Turned round, a pipe gives its mirror image; to rounding, because a head is worked out from the wave that comes on.
 TEST(interior, a_pipe_turned_round_gives_the_mirror_image) {
   for (const Friction& f : frictions)
     for (const std::size_t rows : {4U, 11U, 30U, 31U}) {
