@@ -155,7 +155,23 @@ HEADBAND_INLINE void keep_row(const PipeRows<W>& rows, int i, const Lanes<W>& h,
   if constexpr (envelope) keep_extremes<W, ask>(rows, i, h);
 }
 
-// Rows without cavities from 1 on, two by two. Returns the first row of a pair in which a row fell below its limit
+// Row i of quadratic friction from the wave `on` of row i - 1 and what row i + 1 sends; `on` becomes what row i + 1
+// sends on. Returns false, with nothing stored, where the row falls below its limit.
+template <int W, bool placed, bool limited, bool envelope>
+HEADBAND_INLINE bool march_row(const Resistance<W>& r, const PipeRows<W>& rows, int i, Wave<W>& on) {
+  const Cost<W> cost = cost_of<W, Form::quadratic>(r, rows.flow[i + 1], nullptr);
+  const Leaving<W> next = leaving_at_cost<W, Form::quadratic, placed>(r, rows, i + 1, cost);
+  const Lanes<W> q = meet(on, next.back), h = fused_less(on.head, on.damp, q);
+  if constexpr (limited) {
+    if (any(h < rows.vapour[i])) return false;
+  }
+  // these rows are done before a wrong guess of the question's answer is mended
+  keep_row<W, envelope, false>(rows, i, h, q);
+  on = next.on;
+  return true;
+}
+
+// Rows without cavities from 1 on. Returns the first row not done, because it or its neighbour fell below its limit
 // (nothing stored there), or the last row's index when all are done; `wave` is then the one on its way to that row.
 template <int W, Form form, bool placed, bool limited, bool envelope>
 int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<W>& wave) {
@@ -173,7 +189,6 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
     own.quadratic = given.quadratic;
   }
   const Resistance<W>& r = form == Form::quadratic ? own : given;
-  constexpr bool ask = form != Form::quadratic;  // whose rows are done before a wrong guess of the answer is mended
   const int last = rows.rows - 1;
   if (last < 2) return last;
   Wave<W> on1{0.0, 0.0}, on2{0.0, 0.0};
@@ -202,6 +217,17 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
       on2 = {row.head, row.impedance};
     }
   }
+  if constexpr (form == Form::quadratic) {
+    for (; i < last; i += 2) {
+      wave = on1;
+      if (!march_row<W, placed, limited, envelope>(r, rows, i, on1)) return i;
+      if (i + 1 == last) break;
+      wave = on2;
+      if (!march_row<W, placed, limited, envelope>(r, rows, i + 1, on2)) return i + 1;
+    }
+    return last;
+  }
+  // where a law of friction waits for its own results, two rows in one fill the waiting
   for (; i + 1 < last; i += 2) {
     OldRoots<W, form> ahead;
     if constexpr (limited) ahead.keep(rows, i + 1, 2);
@@ -219,8 +245,8 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
       }
     }
     if constexpr (limited && form == Form::darcy) old.root[0] = ahead.root[1];
-    keep_row<W, envelope, ask>(rows, i, h1, q1);
-    keep_row<W, envelope, ask>(rows, i + 1, h2, q2);
+    keep_row<W, envelope>(rows, i, h1, q1);
+    keep_row<W, envelope>(rows, i + 1, h2, q2);
     on1 = a.on;
     on2 = b.on;
   }
@@ -238,7 +264,7 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
         return i;
       }
     }
-    keep_row<W, envelope, ask>(rows, i, h, q);
+    keep_row<W, envelope>(rows, i, h, q);
   }
   return last;
 }
@@ -295,7 +321,7 @@ HEADBAND_INLINE bool settle(const PipeRows<W>& rows,
   return some;
 }
 
-// Rows with cavities from `first` on (odd), in the pairs of the rows without. Returns whether the pipe still holds one.
+// Rows with cavities from `first` on. Returns whether the pipe still holds one.
 template <int W, Form form, bool placed, bool envelope>
 bool march_cavities(const Resistance<W>& r,
                     const PipeRows<W>& rows,
@@ -307,21 +333,13 @@ bool march_cavities(const Resistance<W>& r,
   const int last = rows.rows - 1;
   bool left = false;
   if (first >= last) return left;
-  Wave<W> on1 = wave, on2 = leaving_cavity<W, form, placed>(r, rows, first).on;
-  int i = first;
-  for (; i + 1 < last; i += 2) {
-    const Leaving<W> a = leaving_cavity<W, form, placed>(r, rows, i + 1);
-    const Leaving<W> b = leaving_cavity<W, form, placed>(r, rows, i + 2);
-    const bool one = settle<W, envelope>(rows, i, on1, a.back, meet(on1, a.back), dt, per_volume, tally);
-    const bool two = settle<W, envelope>(rows, i + 1, on2, b.back, meet(on2, b.back), dt, per_volume, tally);
-    left = left || one || two;
-    on1 = a.on;
-    on2 = b.on;
-  }
-  if (i < last) {
-    const Wave<W> back = leaving_cavity<W, form, placed>(r, rows, last).back;
-    const bool one = settle<W, envelope>(rows, i, on1, back, meet(on1, back), dt, per_volume, tally);
-    left = left || one;
+  Wave<W> on = wave, on_next = leaving_cavity<W, form, placed>(r, rows, first).on;
+  for (int i = first; i < last; ++i) {
+    const Leaving<W> next = leaving_cavity<W, form, placed>(r, rows, i + 1);
+    const bool holds = settle<W, envelope>(rows, i, on, next.back, meet(on, next.back), dt, per_volume, tally);
+    left = left || holds;
+    on = on_next;
+    on_next = next.on;
   }
   return left;
 }
