@@ -221,6 +221,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = detail::log_of_parts<Quad>(detail::part_normal(x.part[0]));
     r.part[1] = detail::log_of_parts<Quad>(detail::part_normal(x.part[1]));
+    if constexpr (W == 16) {
+      r.part[2] = detail::log_of_parts<Quad>(detail::part_normal(x.part[2]));
+      r.part[3] = detail::log_of_parts<Quad>(detail::part_normal(x.part[3]));
+    }
     return r;
   }
 }
@@ -308,6 +312,10 @@ template <int W>
     Lanes<W> r;
     r.part[0] = detail::quick_log_core<Quad>(x.part[0]);
     r.part[1] = detail::quick_log_core<Quad>(x.part[1]);
+    if constexpr (W == 16) {
+      r.part[2] = detail::quick_log_core<Quad>(x.part[2]);
+      r.part[3] = detail::quick_log_core<Quad>(x.part[3]);
+    }
     return r;
   }
 }

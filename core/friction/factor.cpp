@@ -300,6 +300,23 @@ Factor<W> darcy_factor(const PreparedRule<W>& rule, const Lanes<W>& reynolds) {
   return evaluate<W>(rule, reynolds, NoRoot{});
 }
 
+std::array<Factor<8>, 2> darcy_factor_of_two(const PreparedRule<8>& first,
+                                             const Lanes<8>& first_reynolds,
+                                             const PreparedRule<8>& second,
+                                             const Lanes<8>& second_reynolds) {
+  const bool by_root = first.swift && second.swift && (bit(first.law) & bit(second.law) & root_laws) != 0;
+  const bool turbulent =
+      all((first_reynolds >= first.all_turbulent_from) & (second_reynolds >= second.all_turbulent_from));
+  if (!by_root || !turbulent) return {darcy_factor<8>(first, first_reynolds), darcy_factor<8>(second, second_reynolds)};
+  const auto both = [](const Lanes<8>& a, const Lanes<8>& b) { return base::side_by_side(a, b); };
+  const Lanes<16> rough = both(first.rough_by_reynolds * first_reynolds, second.rough_by_reynolds * second_reynolds);
+  const Lanes<16> inverse = 1.0 / both(first_reynolds, second_reynolds);
+  const Lanes<16> x = colebrook_root<16>(rough, both(first.root_constant, second.root_constant) * inverse);
+  const Turbulent<16> side = colebrook_side<16>(rough, x);
+  return {Factor<8>{first.scatter * base::first_eight(side.factor), base::first_eight(side.slope)},
+          Factor<8>{second.scatter * base::last_eight(side.factor), base::last_eight(side.slope)}};
+}
+
 template <int W>
 Factor<W> darcy_factor(const FactorRule<W>& rule, const Lanes<W>& reynolds) {
   return darcy_factor<W>(prepare<W>(rule), reynolds);

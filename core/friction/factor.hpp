@@ -7,6 +7,8 @@
 #include "core/friction/explicit_laws.hpp"
 #include "core/friction/law.hpp"
 
+#include <array>
+
 namespace headband::friction {
 
 using base::Lanes;
@@ -76,6 +78,13 @@ template <int W>
 /// The same with a rule made ready: the form for loops. Identical bits to the form above.
 template <int W>
 [[nodiscard]] Factor<W> darcy_factor(const PreparedRule<W>& rule, const Lanes<W>& reynolds);
+
+/// Two rules of eight draws each, at a Reynolds number each: the bits of `darcy_factor` one by one. A root waits for
+/// its own logarithms and quotients most of the time; two at once fill the waiting.
+[[nodiscard]] std::array<Factor<8>, 2> darcy_factor_of_two(const PreparedRule<8>& first,
+                                                           const Lanes<8>& first_reynolds,
+                                                           const PreparedRule<8>& second,
+                                                           const Lanes<8>& second_reynolds);
 
 /// The same for a march in time, with the last root 1/sqrt(f) of Colebrook-White or the smooth law kept by the caller
 /// per section: one logarithm where the flow changed by a few per cent, else the full solve. The factor differs from

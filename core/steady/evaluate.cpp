@@ -206,33 +206,33 @@ Lanes<W> answer(const network::Plan& plan,
 
 namespace {
 
-/// True where every draw's head line clears the highest point of the pipe by more than rounding: without placed
-/// fittings it runs straight from end to end. Most lines do, and need no look at each of their points.
+/// By how much a pipe's head line stays over its highest point at least, less what rounding can do to it: without
+/// placed fittings it runs straight from end to end. Most lines clear their vapour head by that and need no look at
+/// each of their points.
 template <int W>
-bool clears_every_point(const network::Plan& plan,
-                        const network::Values<W>& values,
-                        const SteadyState<W>& state,
-                        std::size_t pipe,
-                        const Lanes<W>& vapour_head) {
+Lanes<W> least_clearance(const network::Plan& plan,
+                         const network::Values<W>& values,
+                         const SteadyState<W>& state,
+                         std::size_t pipe) {
   constexpr double rounding = 1e-6;  // [m]; heads are good to 1e-10 m
   const network::PipeValues<W>& numbers = values.pipes[pipe];
-  if (!numbers.placed_fittings.empty()) return false;
+  if (!numbers.placed_fittings.empty()) return Lanes<W>(-endless);
   Lanes<W> highest = numbers.elevation.front();
   for (const auto& elevation : numbers.elevation) highest = base::max(highest, elevation);
   const Lanes<W> from = state.place_head[plan.pipes[pipe].from.at()];
   const Lanes<W> lowest = base::min(from, from - state.head_loss[pipe]);
-  return base::all(highest + vapour_head + rounding < lowest);
+  return lowest - (highest + rounding);
 }
 
 }  // namespace
 
 template <int W>
 bool clears_vapour(const network::Plan& plan, const network::Values<W>& values, const SteadyState<W>& state) {
-  const Lanes<W> vapour_head =
-      (values.liquid.vapour_pressure - values.atmosphere) / (values.liquid.density * values.gravity);
-  if (!base::any(vapour_head == vapour_head)) return true;  // no vapour pressure is known
+  const Lanes<W> vapour = values.liquid.vapour_pressure - values.atmosphere;
+  if (!base::any(vapour == vapour)) return true;  // no vapour pressure is known
+  const Lanes<W> weight = values.liquid.density * values.gravity;
   for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe)
-    if (!clears_every_point(plan, values, state, pipe, vapour_head)) return false;
+    if (!base::all(weight * least_clearance(plan, values, state, pipe) > vapour)) return false;
   return true;
 }
 
@@ -246,7 +246,7 @@ VapourCheck<W> check_vapour(const network::Plan& plan, const network::Values<W>&
       (values.liquid.vapour_pressure - values.atmosphere) / (values.liquid.density * values.gravity);
   if (!base::any(vapour_head == vapour_head)) return check;  // no vapour pressure is known
   for (std::size_t pipe = 0; pipe < plan.pipes.size(); ++pipe) {
-    if (clears_every_point(plan, values, state, pipe, vapour_head)) continue;
+    if (base::all(least_clearance(plan, values, state, pipe) > vapour_head)) continue;
     for_each_point(
         plan, values, state, pipe, [&](const Lanes<W>& chainage, const Lanes<W>& head, const Lanes<W>& elevation) {
           const Lanes<W> shortfall = elevation + vapour_head - head;

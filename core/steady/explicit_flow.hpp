@@ -31,9 +31,9 @@ template <int W>
   return zero;
 }
 
-/// Flows by continuity from the far ends inwards, then heads outwards from the held ones. Needs graph.is_tree_each.
+/// Flows by continuity from the far ends inwards. Needs graph.is_tree_each.
 template <int W>
-void solve_explicit(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W>& flows) {
+void flows_by_continuity(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W>& flows) {
   const Lanes<W> zero(0.0);
   if (flows.flow.size() != graph.links.size()) flows.flow.resize(graph.links.size());
   if (flows.losses.size() != numbers.pipes.size()) flows.losses.resize(numbers.pipes.size());
@@ -44,20 +44,59 @@ void solve_explicit(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W
     numbers.outflow[static_cast<std::size_t>(step->parent)] += outwards;
     flows.flow[static_cast<std::size_t>(step->link)] = link.from == step->parent ? outwards : -outwards;
   }
+}
+
+/// The head behind a link, from the head before it and what the link loses; of a pipe the loss stands in `flows`.
+template <int W>
+void head_behind(const FlowGraph& graph, const TreeStep& step, LinkNumbers<W>& numbers, LinkFlows<W>& flows) {
+  const Link& link = graph.links[static_cast<std::size_t>(step.link)];
+  Lanes<W> loss;
+  if (link.kind == LinkKind::pipe) {
+    loss = flows.losses[static_cast<std::size_t>(link.index)].head;
+  } else {
+    const Lanes<W> flow = flows.flow[static_cast<std::size_t>(step.link)];
+    loss = device_loss(numbers, link, flow);
+    if (link.one_way) flows.possible = flows.possible & (flow >= Lanes<W>(0.0));
+  }
+  const Lanes<W> parent = numbers.node_head[static_cast<std::size_t>(step.parent)];
+  numbers.node_head[static_cast<std::size_t>(step.child)] = link.from == step.parent ? parent - loss : parent + loss;
+}
+
+/// Flows by continuity, then heads outwards from the held ones. Needs graph.is_tree_each.
+template <int W>
+void solve_explicit(const FlowGraph& graph, LinkNumbers<W>& numbers, LinkFlows<W>& flows) {
+  flows_by_continuity(graph, numbers, flows);
   for (const auto& step : graph.steps) {
     const Link& link = graph.links[static_cast<std::size_t>(step.link)];
-    const Lanes<W> flow = flows.flow[static_cast<std::size_t>(step.link)];
-    Lanes<W> loss;
     if (link.kind == LinkKind::pipe) {
-      auto& pipe = flows.losses[static_cast<std::size_t>(link.index)];
-      pipe = pipe_loss(numbers.pipes[static_cast<std::size_t>(link.index)], flow);
-      loss = pipe.head;
-    } else {
-      loss = device_loss(numbers, link, flow);
-      if (link.one_way) flows.possible = flows.possible & (flow >= zero);
+      const auto pipe = static_cast<std::size_t>(link.index);
+      flows.losses[pipe] = pipe_loss(numbers.pipes[pipe], flows.flow[static_cast<std::size_t>(step.link)]);
     }
-    const Lanes<W> parent = numbers.node_head[static_cast<std::size_t>(step.parent)];
-    numbers.node_head[static_cast<std::size_t>(step.child)] = link.from == step.parent ? parent - loss : parent + loss;
+    head_behind(graph, step, numbers, flows);
+  }
+}
+
+/// The same for two blocks of draws side by side, bit by bit.
+inline void solve_explicit_two(const FlowGraph& graph,
+                               LinkNumbers<8>& first,
+                               LinkFlows<8>& first_flows,
+                               LinkNumbers<8>& second,
+                               LinkFlows<8>& second_flows) {
+  flows_by_continuity(graph, first, first_flows);
+  flows_by_continuity(graph, second, second_flows);
+  for (const auto& step : graph.steps) {
+    const auto at = static_cast<std::size_t>(step.link);
+    if (graph.links[at].kind == LinkKind::pipe) {
+      const auto pipe = static_cast<std::size_t>(graph.links[at].index);
+      pipe_loss_of_two(first.pipes[pipe],
+                       first_flows.flow[at],
+                       first_flows.losses[pipe],
+                       second.pipes[pipe],
+                       second_flows.flow[at],
+                       second_flows.losses[pipe]);
+    }
+    head_behind(graph, step, first, first_flows);
+    head_behind(graph, step, second, second_flows);
   }
 }
 

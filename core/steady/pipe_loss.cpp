@@ -84,25 +84,69 @@ friction::Factor<W> factor_at_flow(const PipeFriction<W>& pipe, const Lanes<W>& 
   return {pipe.fixed_factor, Lanes<W>(0.0)};
 }
 
+namespace {
+
+/// What a flow asks of its pipe, before the factor is known.
 template <int W>
-PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
+struct AskedFlow {
+  Lanes<W> reynolds, effective;  ///< of the flow; its size, not under the least one looked at
+  base::Mask<W> moving;
+};
+
+template <int W>
+HEADBAND_INLINE AskedFlow<W> ask(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
+  AskedFlow<W> asked;
   const Lanes<W> size = base::abs(flow);
-  const Lanes<W> reynolds = pipe.reynolds_per_flow * size;
-  const base::Mask<W> moving = reynolds > Lanes<W>(least_reynolds);
-  Lanes<W> effective = size;
-  if (!base::all(moving)) effective = base::select(moving, size, Lanes<W>(least_reynolds) / pipe.reynolds_per_flow);
-  const friction::Factor<W> factor = factor_at_flow(pipe, effective);
-  const Lanes<W> head_per_velocity_head = pipe.velocity_head * effective;
+  asked.reynolds = pipe.reynolds_per_flow * size;
+  asked.moving = asked.reynolds > Lanes<W>(least_reynolds);
+  asked.effective = size;
+  if (!base::all(asked.moving))
+    asked.effective = base::select(asked.moving, size, Lanes<W>(least_reynolds) / pipe.reynolds_per_flow);
+  return asked;
+}
+
+template <int W>
+HEADBAND_INLINE PipeLoss<W> loss_of(const PipeFriction<W>& pipe,
+                                    const Lanes<W>& flow,
+                                    const AskedFlow<W>& asked,
+                                    const friction::Factor<W>& factor) {
+  const Lanes<W> head_per_velocity_head = pipe.velocity_head * asked.effective;
   const Lanes<W> friction_part = factor.factor * pipe.diameters * head_per_velocity_head;  // head per flow [s/m2]
   const Lanes<W> fitting_part = pipe.k * head_per_velocity_head;
 
   PipeLoss<W> loss;
   loss.head = (friction_part + fitting_part) * flow;
-  loss.slope =
-      base::select(moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part, friction_part + fitting_part);
+  loss.slope = base::select(
+      asked.moving, friction_part * (2.0 + factor.log_slope) + 2.0 * fitting_part, friction_part + fitting_part);
   loss.factor = factor.factor;
-  loss.reynolds = reynolds;
+  loss.reynolds = asked.reynolds;
   return loss;
+}
+
+}  // namespace
+
+template <int W>
+PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow) {
+  const AskedFlow<W> asked = ask(pipe, flow);
+  return loss_of(pipe, flow, asked, factor_at_flow(pipe, asked.effective));
+}
+
+void pipe_loss_of_two(const PipeFriction<8>& first,
+                      const Lanes<8>& first_flow,
+                      PipeLoss<8>& first_loss,
+                      const PipeFriction<8>& second,
+                      const Lanes<8>& second_flow,
+                      PipeLoss<8>& second_loss) {
+  const AskedFlow<8> a = ask(first, first_flow), b = ask(second, second_flow);
+  if (first.kind != network::LossKind::darcy || second.kind != network::LossKind::darcy) {
+    first_loss = loss_of(first, first_flow, a, factor_at_flow(first, a.effective));
+    second_loss = loss_of(second, second_flow, b, factor_at_flow(second, b.effective));
+    return;
+  }
+  const auto factor = friction::darcy_factor_of_two(
+      first.prepared, first.reynolds_per_flow * a.effective, second.prepared, second.reynolds_per_flow * b.effective);
+  first_loss = loss_of(first, first_flow, a, factor[0]);
+  second_loss = loss_of(second, second_flow, b, factor[1]);
 }
 
 template PipeFriction<1> pipe_friction<1>(const network::Plan&, const network::Values<1>&, std::size_t);

@@ -61,6 +61,14 @@ struct PipeLoss {
 template <int W>
 [[nodiscard]] PipeLoss<W> pipe_loss(const PipeFriction<W>& pipe, const Lanes<W>& flow);
 
+/// Losses of two pipes, or of one pipe in two blocks of draws: the bits of `pipe_loss` one by one, in less time.
+void pipe_loss_of_two(const PipeFriction<8>& first,
+                      const Lanes<8>& first_flow,
+                      PipeLoss<8>& first_loss,
+                      const PipeFriction<8>& second,
+                      const Lanes<8>& second_flow,
+                      PipeLoss<8>& second_loss);
+
 extern template PipeFriction<1> pipe_friction<1>(const network::Plan&, const network::Values<1>&, std::size_t);
 extern template PipeFriction<8> pipe_friction<8>(const network::Plan&, const network::Values<8>&, std::size_t);
 extern template void renew_pipe_friction<1>(

@@ -62,6 +62,7 @@ struct SteadySolver::Parts {
   bool gas_possible = false;
   bool one_law = false;  ///< no draw changes law or transition
   std::tuple<Workspace<1>, Workspace<8>> workspaces;
+  Workspace<8> second;  ///< of the second block of two
 
   template <int W>
   [[nodiscard]] Workspace<W>& workspace() {
@@ -91,15 +92,19 @@ struct SteadySolver::Parts {
     state.iterations = 0;
   }
 
+  template <int W>
+  static void refuse_impossible(const Workspace<W>& work, SteadyState<W>& state) {
+    if (base::all(work.flows.possible)) return;
+    for (int lane = 0; lane < W; ++lane)
+      if (!work.flows.possible[lane]) set_status(state, lane, SteadyStatus::not_converged);
+  }
+
   /// Flows by continuity, or by Newton lane after lane.
   template <int W>
-  void solve_flows(SteadyState<W>& state) {
-    Workspace<W>& work = workspace<W>();
+  void solve_flows(Workspace<W>& work, SteadyState<W>& state) {
     if (!newton) {
       solve_explicit(graph, work.numbers, work.flows);
-      if (base::all(work.flows.possible)) return;
-      for (int lane = 0; lane < W; ++lane)
-        if (!work.flows.possible[lane]) set_status(state, lane, SteadyStatus::not_converged);
+      refuse_impossible(work, state);
       return;
     }
     for (int lane = 0; lane < W; ++lane) {
@@ -115,9 +120,8 @@ struct SteadySolver::Parts {
 
   /// A pipe on the jump of its law loses what the heads at its ends say, between both sides of the jump.
   template <int W>
-  void tell_losses_on_jumps(SteadyState<W>& state) {
+  void tell_losses_on_jumps(const Workspace<W>& work, SteadyState<W>& state) {
     if (!newton) return;  // where continuity gives the flow, it decides the side of the jump
-    const Workspace<W>& work = workspace<W>();
     for (int lane = 0; lane < W; ++lane) {
       if (state.status[static_cast<std::size_t>(lane)] != SteadyStatus::on_jump) continue;
       for (std::size_t i = 0; i < state.pipe_flow.size(); ++i) {
@@ -134,8 +138,7 @@ struct SteadySolver::Parts {
   }
 
   template <int W>
-  void copy_flows(const network::Values<W>& values, SteadyState<W>& state) {
-    Workspace<W>& work = workspace<W>();
+  void copy_flows(const network::Values<W>& values, const Workspace<W>& work, SteadyState<W>& state) {
     for (std::size_t i = 0; i < state.place_head.size(); ++i) state.place_head[i] = work.numbers.node_head[i];
     for (std::size_t l = 0; l < graph.links.size(); ++l) {
       const Link& link = graph.links[l];
@@ -157,8 +160,7 @@ struct SteadySolver::Parts {
 
   /// Coefficients of valves; those sized by `flow` get what passes it at the starting opening (convention n).
   template <int W>
-  void size_valves(const network::Values<W>& values, SteadyState<W>& state) {
-    const Workspace<W>& work = workspace<W>();
+  void size_valves(const network::Values<W>& values, const Workspace<W>& work, SteadyState<W>& state) {
     for (std::size_t i = 0; i < values.valves.size(); ++i) state.valve_coefficient[i] = values.valves[i].coefficient;
     for (const auto& known : graph.known) {
       const network::DevicePlan& device = topology->devices[static_cast<std::size_t>(known.device)];
@@ -179,8 +181,7 @@ struct SteadySolver::Parts {
 
   /// Wave speeds: free gas is compressed to the pipe's mean steady pressure, not below the vapour pressure.
   template <int W>
-  void find_wave_speeds(const network::Values<W>& values, SteadyState<W>& state) {
-    const Workspace<W>& work = workspace<W>();
+  void find_wave_speeds(const network::Values<W>& values, const Workspace<W>& work, SteadyState<W>& state) {
     for (std::size_t i = 0; i < values.pipes.size(); ++i) {
       const network::PipeValues<W>& pipe = values.pipes[i];
       state.wave_speed[i] = pipe.wave_speed_without_gas;
@@ -223,6 +224,23 @@ struct SteadySolver::Parts {
       if (!finite[lane]) state.status[static_cast<std::size_t>(lane)] = SteadyStatus::not_finite;
   }
 
+  /// Before the flows: room, and what each link does.
+  template <int W>
+  void begin(const network::Values<W>& values, Workspace<W>& work, SteadyState<W>& state) {
+    size_state(state);
+    work.numbers.fill(*model, *topology, graph, values, one_law);
+  }
+
+  /// Behind the flows: everything else of a state.
+  template <int W>
+  void finish(const network::Values<W>& values, const Workspace<W>& work, SteadyState<W>& state) {
+    copy_flows(values, work, state);
+    tell_losses_on_jumps(work, state);
+    size_valves(values, work, state);
+    find_wave_speeds(values, work, state);
+    find_lost_lanes(state);
+  }
+
   static constexpr double least_gas_pressure = 100.0;  ///< keeps the gas modulus above zero in lost lines [Pa]
 };
 
@@ -237,14 +255,23 @@ bool SteadySolver::is_explicit() const { return parts_->graph.is_tree_each; }
 template <int W>
 void SteadySolver::solve(const network::Values<W>& values, SteadyState<W>& state) {
   Workspace<W>& work = parts_->workspace<W>();
-  parts_->size_state(state);
-  work.numbers.fill(*parts_->model, *parts_->topology, parts_->graph, values, parts_->one_law);
-  parts_->solve_flows(state);
-  parts_->copy_flows(values, state);
-  parts_->tell_losses_on_jumps(state);
-  parts_->size_valves(values, state);
-  parts_->find_wave_speeds(values, state);
-  Parts::find_lost_lanes(state);
+  parts_->begin(values, work, state);
+  parts_->solve_flows(work, state);
+  parts_->finish(values, work, state);
+}
+
+void SteadySolver::solve(const std::array<network::Values<8>, 2>& values, std::array<SteadyState<8>, 2>& states) {
+  if (!is_explicit()) {
+    for (std::size_t k = 0; k < 2; ++k) solve<8>(values[k], states[k]);
+    return;
+  }
+  const std::array<Workspace<8>*, 2> work{&parts_->workspace<8>(), &parts_->second};
+  for (std::size_t k = 0; k < 2; ++k) parts_->begin(values[k], *work[k], states[k]);
+  solve_explicit_two(parts_->graph, work[0]->numbers, work[0]->flows, work[1]->numbers, work[1]->flows);
+  for (std::size_t k = 0; k < 2; ++k) {
+    Parts::refuse_impossible(*work[k], states[k]);
+    parts_->finish(values[k], *work[k], states[k]);
+  }
 }
 
 template void SteadySolver::solve<1>(const network::Values<1>&, SteadyState<1>&);

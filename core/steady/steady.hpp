@@ -62,6 +62,9 @@ class SteadySolver {
   template <int W>
   void solve(const network::Values<W>& values, SteadyState<W>& state);
 
+  /// Solves two blocks of eight draws: the bits of one after the other, in less time where continuity gives the flows.
+  void solve(const std::array<network::Values<8>, 2>& values, std::array<SteadyState<8>, 2>& states);
+
  private:
   struct Parts;
   std::unique_ptr<Parts> parts_;

@@ -14,6 +14,7 @@ namespace {
 constexpr std::size_t worth_binning = 2048;  ///< fewer numbers are sorted at once
 constexpr std::size_t numbers_a_bin = 128;
 constexpr std::size_t most_bins = 4096;  ///< their counts fill half the first-level cache
+constexpr std::size_t few_bins = 32;  ///< so many are looked for one by one in less time than each number is sorted out
 
 /// Which bin each of some numbers falls into: worked out for many at a time, which takes a quarter of the time.
 class BinNumbers {
@@ -35,7 +36,34 @@ class BinNumbers {
  private:
   double low_, scale_;
   std::int32_t last_;
-  std::array<std::int32_t, at_once> bin_;
+  std::array<std::int32_t, at_once> bin_{};
+};
+
+/// Which of some numbers fall into one of a few bins.
+class Finder {
+ public:
+  explicit Finder(const std::vector<std::size_t>& bins) {
+    for (const std::size_t b : bins) bins_.push_back(static_cast<std::int32_t>(b));
+  }
+
+  /// Calls `found(i)` for each of the first `count` bin numbers that is wanted.
+  template <class Found>
+  void search(const std::array<std::int32_t, BinNumbers::at_once>& bin, std::size_t count, const Found& found) {
+    hit_.fill(0);
+    for (const std::int32_t wanted : bins_)
+      for (std::size_t i = 0; i < bin.size(); ++i) hit_[i] |= bin[i] == wanted ? 1 : 0;
+    for (std::size_t from = 0; from < count; from += 8) {
+      int any = 0;
+      for (std::size_t i = 0; i < 8; ++i) any |= hit_[from + i];
+      if (any == 0) continue;  // most of the time: the bins are few
+      for (std::size_t i = from; i < std::min(from + 8, count); ++i)
+        if (hit_[i] != 0) found(i);
+    }
+  }
+
+ private:
+  std::vector<std::int32_t> bins_;
+  std::array<std::int32_t, BinNumbers::at_once> hit_{};
 };
 
 Extent extent_of(std::span<const double> numbers) {
@@ -104,14 +132,46 @@ std::size_t Ranked::bin_of_rank(std::size_t rank) const {
 }
 
 void Ranked::gather(const std::vector<std::size_t>& bins) const {
-  std::vector<std::uint8_t> wanted(gathered_.size(), 0);
-  std::size_t room = 1;  // one more than there are: every number is written before it is known to be wanted
-  for (const std::size_t bin : bins) {
-    if (gathered_[bin].done() || wanted[bin] != 0) continue;
-    wanted[bin] = 1;
-    room += first_[bin + 1] - first_[bin];
+  std::vector<std::size_t> wanted = bins;
+  std::ranges::sort(wanted);
+  wanted.erase(std::unique(wanted.begin(), wanted.end()), wanted.end());
+  std::erase_if(wanted, [this](std::size_t b) { return gathered_[b].done(); });
+  if (wanted.empty()) return;
+  for (const std::size_t b : wanted) gathered_[b].sorted.reserve(first_[b + 1] - first_[b]);
+  if (wanted.size() <= few_bins) {
+    pick(wanted);
+  } else {
+    sort_out(wanted);
   }
-  if (room == 1) return;
+  for (const std::size_t b : wanted) {
+    auto& numbers_here = gathered_[b].sorted;
+    if (numbers_here.size() > numbers_.size() / 4) {  // a far outlier: bins of their own are worth it
+      gathered_[b].crowd = std::make_unique<Ranked>(std::exchange(numbers_here, {}));
+    } else {
+      std::sort(numbers_here.begin(), numbers_here.end());
+    }
+  }
+}
+
+void Ranked::pick(const std::vector<std::size_t>& wanted) const {
+  BinNumbers numbers(low_, scale_, gathered_.size());
+  Finder finder(wanted);
+  for (std::size_t from = 0; from < numbers_.size(); from += BinNumbers::at_once) {
+    const std::size_t many = std::min(BinNumbers::at_once, numbers_.size() - from);
+    const auto& bin = numbers.of(&numbers_[from], many);
+    finder.search(bin, many, [&](std::size_t i) {
+      gathered_[static_cast<std::size_t>(bin[i])].sorted.push_back(numbers_[from + i]);
+    });
+  }
+}
+
+void Ranked::sort_out(const std::vector<std::size_t>& wanted) const {
+  std::vector<std::uint8_t> is_wanted(gathered_.size(), 0);
+  std::size_t room = 1;  // one more than there are: every number is written before it is known to be wanted
+  for (const std::size_t b : wanted) {
+    is_wanted[b] = 1;
+    room += first_[b + 1] - first_[b];
+  }
   std::vector<double> found(room);
   std::vector<std::uint16_t> whose(room);
   std::size_t count = 0;
@@ -123,21 +183,10 @@ void Ranked::gather(const std::vector<std::size_t>& bins) const {
       const auto b = static_cast<std::size_t>(bin[i]);
       found[count] = numbers_[from + i];
       whose[count] = static_cast<std::uint16_t>(b);
-      count += wanted[b];
+      count += is_wanted[b];
     }
   }
-  for (std::size_t b = 0; b < wanted.size(); ++b)
-    if (wanted[b] != 0) gathered_[b].sorted.reserve(first_[b + 1] - first_[b]);
   for (std::size_t i = 0; i < count; ++i) gathered_[whose[i]].sorted.push_back(found[i]);
-  for (std::size_t b = 0; b < wanted.size(); ++b) {
-    if (wanted[b] == 0) continue;
-    auto& numbers_here = gathered_[b].sorted;
-    if (numbers_here.size() > numbers_.size() / 4) {  // a far outlier: bins of their own are worth it
-      gathered_[b].crowd = std::make_unique<Ranked>(std::exchange(numbers_here, {}));
-    } else {
-      std::sort(numbers_here.begin(), numbers_here.end());
-    }
-  }
 }
 
 void Ranked::announce(std::span<const double> places) const {

@@ -201,10 +201,15 @@ Sample::Places Sample::places_of(double probability) const {
 }
 
 answers::QuantileAnswer Sample::quantile(double probability) const {
+  if (!ranked_.empty()) return quantile(probability, places_of(probability));
   answers::QuantileAnswer q;
   q.probability = probability;
-  if (ranked_.empty()) return q;
-  const Places places = places_of(probability);
+  return q;
+}
+
+answers::QuantileAnswer Sample::quantile(double probability, const Places& places) const {
+  answers::QuantileAnswer q;
+  q.probability = probability;
   ranked_.announce(std::array{places.value, places.lower, places.upper});
   q.value = ranked_.at_place(places.value);
   double half = 0.0;
@@ -226,10 +231,16 @@ answers::QuantileAnswer Sample::quantile(double probability) const {
 }
 
 std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> probabilities) const {
+  std::vector<answers::QuantileAnswer> answers;
+  if (ranked_.empty()) {
+    for (const double p : probabilities) answers.push_back(quantile(p));
+    return answers;
+  }
   std::vector<double> wanted;
+  std::vector<Places> asked;
   for (const double p : probabilities) {
-    if (ranked_.empty()) break;
     const Places places = places_of(p);
+    asked.push_back(places);
     wanted.insert(wanted.end(), {places.value, places.lower, places.upper});
   }
   for (const double p : shape_probabilities) wanted.push_back(ranked_.place_of(p));  // `modes` asks for them
@@ -240,8 +251,7 @@ std::vector<answers::QuantileAnswer> Sample::quantiles(std::span<const double> p
     for (const double p : probabilities) wanted.push_back(r.place_of(p));
     r.announce(wanted);
   }
-  std::vector<answers::QuantileAnswer> answers;
-  for (const double p : probabilities) answers.push_back(quantile(p));
+  for (std::size_t i = 0; i < asked.size(); ++i) answers.push_back(quantile(probabilities[i], asked[i]));
   return answers;
 }
 

@@ -50,6 +50,7 @@ class Sample {
     double value, lower, upper;
   };
   [[nodiscard]] Places places_of(double probability) const;
+  [[nodiscard]] answers::QuantileAnswer quantile(double probability, const Places& places) const;
   [[nodiscard]] bool replicated() const;
   /// Mean and deviation of the finished draws from their sums about the first of them.
   void find_moments(std::span<const double> finished, double sum, double squares);

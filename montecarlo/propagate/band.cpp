@@ -344,8 +344,10 @@ class BandRun {
     answers::Bands& bands = outcome_.bands;
     bands.draws = table_.draws();
     std::array<long long, 5> by_status{};
-    for (const std::int8_t s : table_.status) ++by_status[static_cast<std::size_t>(std::clamp<int>(s, 0, 4))];
+    by_status[0] = std::ranges::count(table_.status, std::int8_t{0});
     bands.failed = bands.draws - by_status[0];
+    for (std::size_t i = 0; bands.failed > 0 && i < table_.status.size(); ++i)
+      if (table_.status[i] != 0) ++by_status[static_cast<std::size_t>(std::clamp<int>(table_.status[i], 1, 4))];
     bands.with_cavity = std::ranges::count(table_.cavity, 1);
     if (bands.failed > 0) {
       warn(fmt::format(

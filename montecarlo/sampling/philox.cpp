@@ -70,16 +70,41 @@ struct CommonRounds {
   }
 };
 
-/// Rounds from `round` to the last of two chains side by side, which hides the multiplier's latency.
-HEADBAND_INLINE void last_rounds(
-    const PhiloxKey& key, std::size_t round, FourCounters& a, FourCounters& b, base::Lanes<8>& scores) {
+/// Rounds from `round` to the last of some chains side by side, which hides the multiplier's latency.
+template <std::size_t chains>
+HEADBAND_INLINE void last_rounds(const PhiloxKey& key, std::size_t round, std::array<FourCounters, chains>& c) {
 #pragma GCC unroll 10
   for (; round < key.round.size(); ++round) {
-    one_round(key, round, a);
-    one_round(key, round, b);
+#pragma GCC unroll 4
+    for (std::size_t i = 0; i < chains; ++i) one_round(key, round, c[i]);
   }
-  scores.part[0] = four_scores(a);
-  scores.part[1] = four_scores(b);
+}
+
+/// Scores of blocks whose draws have their upper word in common, so many at a time: two chains a block. A function of
+/// its own: g++ 12 keeps fewer words in registers where it stands in the other.
+template <std::size_t blocks>
+[[gnu::noinline]] void score_blocks(const PhiloxKey& key,
+                                    std::uint64_t first,
+                                    std::uint64_t name,
+                                    std::uint64_t stride,
+                                    std::span<base::Lanes<8>> scores) {
+  const CommonRounds common(key, first >> 32, name);
+  const __m256i next = in_every_lane(4 * stride);
+  __m256i draws = four_draws(first, stride);
+  for (std::size_t k = 0; k < scores.size(); k += blocks) {
+    std::array<FourCounters, 2 * blocks> c;
+#pragma GCC unroll 4
+    for (std::size_t i = 0; i < 2 * blocks; ++i) {
+      c[i] = common.after(draws);
+      draws = _mm256_add_epi64(draws, next);
+    }
+    last_rounds(key, 2, c);
+#pragma GCC unroll 2
+    for (std::size_t i = 0; i < blocks; ++i) {
+      scores[k + i].part[0] = four_scores(c[2 * i]);
+      scores[k + i].part[1] = four_scores(c[2 * i + 1]);
+    }
+  }
 }
 #endif
 
@@ -121,24 +146,19 @@ void philox_scores(const PhiloxKey& key,
   const std::uint64_t last = first + (8 * scores.size() - 1) * stride;
   const std::uint64_t step = 8 * stride;
   if (first >> 32 == last >> 32) {
-    const CommonRounds common(key, first >> 32, name);
-    const __m256i next = in_every_lane(4 * stride);
-    __m256i draws = four_draws(first, stride);
-    for (auto& block : scores) {
-      FourCounters a = common.after(draws);
-      draws = _mm256_add_epi64(draws, next);
-      FourCounters b = common.after(draws);
-      draws = _mm256_add_epi64(draws, next);
-      last_rounds(key, 2, a, b, block);
-    }
+    const std::size_t even = scores.size() / 2 * 2;
+    score_blocks<2>(key, first, name, stride, scores.first(even));
+    if (even < scores.size()) score_blocks<1>(key, first + 8 * even * stride, name, stride, scores.subspan(even));
     return;
   }
   const __m256i name_low = in_every_lane(name & 0xffffffffU), name_high = in_every_lane(name >> 32);
   for (auto& block : scores) {
     const __m256i draws_a = four_draws(first, stride), draws_b = four_draws(first + 4 * stride, stride);
-    FourCounters a{draws_a, high_half(draws_a), name_low, name_high};
-    FourCounters b{draws_b, high_half(draws_b), name_low, name_high};
-    last_rounds(key, 0, a, b, block);
+    std::array<FourCounters, 2> c{FourCounters{draws_a, high_half(draws_a), name_low, name_high},
+                                  FourCounters{draws_b, high_half(draws_b), name_low, name_high}};
+    last_rounds(key, 0, c);
+    block.part[0] = four_scores(c[0]);
+    block.part[1] = four_scores(c[1]);
     first += step;
   }
 #else

@@ -250,6 +250,32 @@ TEST(darcy_factor, the_inline_turbulent_form_gives_the_bits_of_the_general_one) 
   EXPECT_FALSE(friction::prepare<1>(rule_of(FrictionLaw::serghides, transitions[0])).swift);
 }
 
+// Two rules at once: both by the root and turbulent, which is the short way, or one of them not.
+TEST(darcy_factor, two_rules_give_the_bits_of_one_by_one) {
+  for (const FrictionLaw law : laws)
+    for (const auto& t : transitions)
+      for (const FrictionLaw other : {law, FrictionLaw::colebrook_white, FrictionLaw::smooth}) {
+        const auto a = friction::prepare<8>(eight([&](std::size_t) { return std::pair{law, t}; }).rule);
+        const auto b = friction::prepare<8>(eight([&](std::size_t) { return std::pair{other, transitions[0]}; }).rule);
+        for (int step = 0; step < 40; ++step) {
+          Lanes<8> re_a, re_b;
+          for (int i = 0; i < 8; ++i) {
+            re_a.set(i, (step < 10 ? 1.0 : 1e4) * std::pow(10.0, 1.5 + 1.5 * std::sin(0.3 * step + i)));
+            re_b.set(i, (step % 10 == 0 ? 1.0 : 1e4) * std::pow(10.0, 2.0 + 1.2 * std::cos(0.4 * step + i)));
+          }
+          const auto both = friction::darcy_factor_of_two(a, re_a, b, re_b);
+          const auto f = friction::darcy_factor<8>(a, re_a), g = friction::darcy_factor<8>(b, re_b);
+          const auto same = [](double x, double y) { return x == y || (std::isnan(x) && std::isnan(y)); };
+          for (int i = 0; i < 8; ++i) {
+            ASSERT_TRUE(same(both[0].factor[i], f.factor[i])) << step << ' ' << i;
+            ASSERT_TRUE(same(both[0].log_slope[i], f.log_slope[i])) << step << ' ' << i;
+            ASSERT_TRUE(same(both[1].factor[i], g.factor[i])) << step << ' ' << i;
+            ASSERT_TRUE(same(both[1].log_slope[i], g.log_slope[i])) << step << ' ' << i;
+          }
+        }
+      }
+}
+
 TEST(darcy_factor, a_rule_of_one_draw_in_every_lane_gives_its_bits) {
   for (const FrictionLaw law : laws)
     for (const auto& t : transitions) {

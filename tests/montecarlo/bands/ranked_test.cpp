@@ -28,6 +28,31 @@ TEST(Ranked, EveryRankIsThatOfASort) {
   }
 }
 
+/// A few places are looked for one by one, many are sorted out: asked together, alone, or again, they are the same.
+TEST(Ranked, FewPlacesAndManyAreThoseOfASort) {
+  std::mt19937_64 bits(4);
+  std::normal_distribution<double> normal;
+  for (const std::size_t n : {5000U, 300001U}) {
+    std::vector<double> x(n);
+    for (auto& v : x) v = normal(bits);
+    std::vector<double> sorted = x;
+    std::sort(sorted.begin(), sorted.end());
+    for (const std::size_t asked : {1U, 9U, 31U, 32U, 33U, 200U}) {
+      const Ranked ranked(x);
+      std::vector<double> places;
+      for (std::size_t k = 0; k < asked; ++k) places.push_back(static_cast<double>((n - 1) * k / asked));
+      ranked.announce(places);
+      ranked.announce(places);
+      for (const double place : places) {
+        const auto rank = static_cast<std::size_t>(place);
+        ASSERT_EQ(ranked.at(rank), sorted[rank]) << n << " " << asked;
+        ASSERT_EQ(ranked.at(rank + 1), sorted[rank + 1]) << n << " " << asked;
+      }
+      ASSERT_EQ(ranked.at(n - 1), sorted[n - 1]);  // not announced
+    }
+  }
+}
+
 TEST(Ranked, TiesAndConstantsAreFine) {
   const Ranked same(std::vector<double>(5000, 2.5));
   EXPECT_EQ(same.quantile(0.3), 2.5);
