@@ -1,8 +1,9 @@
 #pragma once
 // SPDX-License-Identifier: MIT
 //
-// Logarithm, exponential and positive power for lanes. Branch-free: sums, products and quotients in a fixed order, so
-// W = 1 and W = 8 give the same bits, and so does every machine with IEEE arithmetic (no library call, no fused step).
+// Logarithm, exponential and positive power for lanes. Branch-free: sums, products and quotients in a fixed order, no
+// library call, so every W gives the same bits, and so does every machine with IEEE arithmetic. `log_of_ratio` alone
+// has fused steps (base/lanes.hpp): its last bits are those of every build but the portable one.
 //
 // Method: argument reduction by powers of two, then the Taylor series of exp and of the inverse hyperbolic tangent
 // (Abramowitz & Stegun 1964, 4.2.1 and 4.6.22), cut where the next term is below half a unit in the last place.
@@ -270,15 +271,18 @@ template <int W>
   }
 }
 
-/// (atanh(s) - s) / s for z = s^2 <= 0.0401: the quotient by z at the seven Chebyshev nodes of that range, as a
-/// polynomial; 2 s times its error is under 3e-17.
-template <class Number>
-[[nodiscard]] HEADBAND_INLINE Number atanh_rest_near(const Number& z) {
-  const Number z2 = z * z;
-  const Number a = 0x1.555555555556ep-2 + z * 0x1.999999997c60ap-3;
-  const Number b = 0x1.2492495208437p-3 + z * 0x1.c71c3cd5b95f4p-4;
-  const Number c = 0x1.746bbab7ddfe4p-4 + z * 0x1.39029fee44135p-4;
-  return z * (a + z2 * (b + z2 * (c + z2 * 0x1.35a069e7c1f02p-4)));
+/// 2 atanh(s) / s for z = s^2 <= 0.0401. What stands behind the 2 is the quotient by z at the seven Chebyshev nodes of
+/// that range, as a polynomial; s times its error is under 3e-17.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> twice_atanh_by_s(const Lanes<W>& z) {
+  const auto line = [&](double slope, double start)
+                        __attribute__((always_inline)) { return fused(z, Lanes<W>(slope), Lanes<W>(start)); };
+  const Lanes<W> z2 = z * z;
+  const Lanes<W> a = line(0x1.999999997c60ap-2, 0x1.555555555556ep-1);
+  const Lanes<W> b = line(0x1.c71c3cd5b95f4p-3, 0x1.2492495208437p-2);
+  const Lanes<W> c = line(0x1.39029fee44135p-3, 0x1.746bbab7ddfe4p-3);
+  const Lanes<W> series = fused(z2, fused(z2, fused(z2, Lanes<W>(0x1.35a069e7c1f02p-3), c), b), a);
+  return fused(z, series, Lanes<W>(2.0));
 }
 
 }  // namespace detail
@@ -289,18 +293,35 @@ struct LogAndInverse {
   Lanes<W> log, inverse;
 };
 
+/// The same up to its quotient: ln(a/b) = exponent ln 2 + 2 atanh(s).
+template <int W>
+struct LogBegun {
+  Lanes<W> exponent, s, inverse;
+};
+
+/// First half of log_of_ratio, for loops that do the halves of many numbers one after the other.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE LogBegun<W> begin_log_of_ratio(const Lanes<W>& a, const Lanes<W>& b, const Lanes<W>& c) {
+  const detail::Ratio<Lanes<W>> r = detail::ratio_of_lanes<W>(a, b);
+  const Lanes<W> sum = a + r.b_scaled;
+  const Lanes<W> both = 1.0 / (sum * c);
+  return {r.exponent, (a - r.b_scaled) * (c * both), sum * both};
+}
+
+/// The logarithm begun.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> finish_log(const LogBegun<W>& l) {
+  const Lanes<W> of_rest = l.s * detail::twice_atanh_by_s<W>(l.s * l.s);
+  return fused(l.exponent, Lanes<W>(0.6931471805599453), of_rest);
+}
+
 /// ln(a/b) and 1/c by one quotient for both, where a quotient costs more than all the rest. a >= b > 0, both normal;
 /// (a + b) c neither under- nor overflows. Error of the logarithm under 4e-16 (1 + |log|), of the inverse under 2 units
 /// in the last place.
 template <int W>
 [[nodiscard]] HEADBAND_INLINE LogAndInverse<W> log_of_ratio(const Lanes<W>& a, const Lanes<W>& b, const Lanes<W>& c) {
-  const detail::Ratio<Lanes<W>> r = detail::ratio_of_lanes<W>(a, b);
-  const Lanes<W> sum = a + r.b_scaled;
-  const Lanes<W> both = 1.0 / (sum * c);
-  const Lanes<W> s = (a - r.b_scaled) * (c * both);
-  const Lanes<W> twice = s + s;
-  const Lanes<W> rest = detail::atanh_rest_near<Lanes<W>>(s * s);
-  return {r.exponent * 0.6931471805599453 + (twice + twice * rest), sum * both};
+  const LogBegun<W> begun = begin_log_of_ratio<W>(a, b, c);
+  return {finish_log<W>(begun), begun.inverse};
 }
 
 /// Natural logarithm within 6e-4 (absolute), for the start of an iteration; x normal and positive.

@@ -21,6 +21,9 @@ inline constexpr double two_over_ln_10 = 0.86858896380650365530;
 inline constexpr double colebrook_constant = 2.51;
 /// 10^0.4: Prandtl's 2.0 log10(Re sqrt f) - 0.8 in the form of Colebrook-White.
 inline constexpr double prandtl_constant = 2.5118864315095801111;
+/// k ln of these: what is added where the logarithm is that of p/Re instead of b p.
+inline constexpr double colebrook_shift = 0.79934744296207627868;
+inline constexpr double prandtl_shift = 0.8;
 /// Factor of e Re in `rough`.
 inline constexpr double colebrook_rough = 1.0 / (3.7 * colebrook_constant);
 /// Least Reynolds number at which a turbulent factor is evaluated; below it the value there is taken.
@@ -85,6 +88,22 @@ inline constexpr double widest_correction = 0.014;
 
 namespace detail {
 
+/// The same of order 5 from q and u0 alone, with fused steps.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Lanes<W> corrected_near(
+    const Lanes<W>& x, const Lanes<W>& p, const Lanes<W>& u0, const Lanes<W>& square, const Lanes<W>& q) {
+  const auto next = [&](const Lanes<W>& series, double c)
+                        __attribute__((always_inline)) { return fused(q, series, Lanes<W>(c)); };
+  // u = u0 + q u0^2 (1/2 + c3 u0 + c4 u0^2 + c5 u0^3)
+  const Lanes<W> c3 = next(Lanes<W>(0.5), -1.0 / 3.0);
+  const Lanes<W> c4 = next(next(Lanes<W>(0.625), -5.0 / 6.0), 0.25);
+  const Lanes<W> c5 = next(next(next(Lanes<W>(0.875), -1.75), 13.0 / 12.0), -0.2);
+  const Lanes<W> series = fused(u0, fused(u0, fused(u0, c5, c4), c3), Lanes<W>(0.5));
+  return fused(p, fused(q * square, series, u0), x);
+}
+
+}  // namespace detail
+
 /// One correction of an older root, and where it was enough.
 template <int W>
 struct Corrected {
@@ -92,18 +111,53 @@ struct Corrected {
   base::Mask<W> enough;
 };
 
+/// One correction of an older root up to its quotient.
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Corrected<W> corrected_once(const Lanes<W>& rough,
+struct CorrectionBegun {
+  Lanes<W> x, p;          ///< the older root within its bounds, and p there
+  base::LogBegun<W> log;  ///< of Re/p; its inverse is 1/(p + k)
+};
+
+/// The correction with a logarithm begun before from the same numbers.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE CorrectionBegun<W> correction_with_log(const Lanes<W>& rough_share,
+                                                                     const Lanes<W>& reynolds,
+                                                                     const Lanes<W>& older,
+                                                                     const base::LogBegun<W>& log) {
+  // within these bounds p is under Re, and what is not a number becomes the lower one
+  const Lanes<W> x = min(Lanes<W>(20.0), max(Lanes<W>(1.0), older));
+  return {x, fused(rough_share, reynolds, x), log};
+}
+
+/// First half of a correction. @param rough_share, reynolds, older as in colebrook_correct
+template <int W>
+[[nodiscard]] HEADBAND_INLINE CorrectionBegun<W> begin_correction(const Lanes<W>& rough_share,
+                                                                  const Lanes<W>& reynolds,
+                                                                  const Lanes<W>& older) {
+  CorrectionBegun<W> c = correction_with_log<W>(rough_share, reynolds, older, {});
+  c.log = base::begin_log_of_ratio(reynolds, c.p, c.p + two_over_ln_10);
+  return c;
+}
+
+/// The root corrected, and where that was enough. @param shift as in colebrook_correct
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Corrected<W> finish_correction(const CorrectionBegun<W>& c, const Lanes<W>& shift) {
+  // k ln(b p) = shift - k ln(Re/p)
+  const Lanes<W> less = fused(Lanes<W>(two_over_ln_10), base::finish_log(c.log), -(c.x + shift));
+  const Lanes<W> u0 = less * c.log.inverse;
+  const Lanes<W> square = u0 * u0;
+  return {detail::corrected_near<W>(c.x, c.p, u0, square, two_over_ln_10 * c.log.inverse),
+          square <= Lanes<W>(widest_correction * widest_correction)};
+}
+
+namespace detail {
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Corrected<W> corrected_once(const Lanes<W>& rough_share,
                                                           const Lanes<W>& reynolds,
-                                                          const Lanes<W>& constant,
+                                                          const Lanes<W>& shift,
                                                           const Lanes<W>& older) {
-  // within these bounds the argument of the logarithm is under 1, and what is not a number becomes the lower one
-  const Lanes<W> safe = min(Lanes<W>(20.0), max(Lanes<W>(1.0), older));
-  const Lanes<W> p = rough + safe;
-  // -ln(b p) and 1/(p + k) by one quotient
-  const base::LogAndInverse<W> l = base::log_of_ratio(reynolds, constant * p, p + two_over_ln_10);
-  const Lanes<W> u0 = (two_over_ln_10 * l.log - safe) * l.inverse;
-  return {corrected_by<W, 5>(safe, p, u0, two_over_ln_10 * l.inverse), abs(u0) <= Lanes<W>(widest_correction)};
+  return finish_correction<W>(begin_correction<W>(rough_share, reynolds, older), shift);
 }
 
 }  // namespace detail
@@ -111,9 +165,9 @@ template <int W>
 /// The root where one correction of the older one was not enough: a second one, and the full solve where that was not
 /// enough either. @param once what the first correction gave
 template <int W>
-[[nodiscard]] Lanes<W> colebrook_root_far(const Lanes<W>& rough,
+[[nodiscard]] Lanes<W> colebrook_root_far(const Lanes<W>& rough_share,
                                           const Lanes<W>& reynolds,
-                                          const Lanes<W>& constant,
+                                          const Lanes<W>& shift,
                                           const Lanes<W>& once);
 extern template Lanes<1> colebrook_root_far<1>(const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
 extern template Lanes<8> colebrook_root_far<8>(const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);
@@ -124,30 +178,31 @@ extern template Lanes<16> colebrook_root_far<16>(const Lanes<16>&,
 
 /// The root from an older one of the same pipe, for a march in time: one logarithm where the flow has changed little
 /// (up to some tens per cent), two or three in the other lanes. Anything may stand in `older`, also not a number.
-/// @param rough as above @param reynolds >= 100 @param constant 2.51 (10^0.4 for the smooth law)
+/// @param rough_share e/(3.7 2.51), 0 for the smooth law: `rough` by Re; e up to 0.3
+/// @param reynolds >= 100 @param shift colebrook_shift, or prandtl_shift for the smooth law
 /// @param idle lanes whose result nobody reads: they never force more work
 /// Error of x under 5e-13 relative (factor: 1e-12) for x >= 2, f <= 0.25. The same bits for every W.
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough_share,
                                                          const Lanes<W>& reynolds,
-                                                         const Lanes<W>& constant,
+                                                         const Lanes<W>& shift,
                                                          const Lanes<W>& older,
                                                          const base::Mask<W>& idle) {
-  const detail::Corrected<W> c = detail::corrected_once<W>(rough, reynolds, constant, older);
+  const Corrected<W> c = detail::corrected_once<W>(rough_share, reynolds, shift, older);
   if (all(c.enough | idle)) [[likely]]
     return c.x;
-  return select(c.enough, c.x, colebrook_root_far<W>(rough, reynolds, constant, c.x));
+  return select(c.enough, c.x, colebrook_root_far<W>(rough_share, reynolds, shift, c.x));
 }
 
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough_share,
                                                          const Lanes<W>& reynolds,
-                                                         const Lanes<W>& constant,
+                                                         const Lanes<W>& shift,
                                                          const Lanes<W>& older) {
-  const detail::Corrected<W> c = detail::corrected_once<W>(rough, reynolds, constant, older);
+  const Corrected<W> c = detail::corrected_once<W>(rough_share, reynolds, shift, older);
   if (all(c.enough)) [[likely]]
     return c.x;
-  return select(c.enough, c.x, colebrook_root_far<W>(rough, reynolds, constant, c.x));
+  return select(c.enough, c.x, colebrook_root_far<W>(rough_share, reynolds, shift, c.x));
 }
 
 /// Slope d ln f / d ln Re [-] at the root.

@@ -19,16 +19,18 @@ struct Root {
 /// The turbulent side of a law [-].
 template <int W>
 struct Turbulent {
-  Lanes<W> x, factor, slope;  ///< 1/sqrt(f), f without scatter, d ln f/d ln Re
+  Lanes<W> x, factor, half_slope;  ///< 1/sqrt(f), f without scatter, half of d ln f/d ln Re
 };
 
 /// Factor and slope at a root of Colebrook-White or the smooth law, by one quotient for both.
-/// @param rough as in colebrook.hpp
+/// @param rough_share as in colebrook.hpp
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Turbulent<W> colebrook_side(const Lanes<W>& rough, const Lanes<W>& x) {
-  const Lanes<W> square = x * x, sum = rough + x + two_over_ln_10;
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> colebrook_side(const Lanes<W>& rough_share,
+                                                          const Lanes<W>& reynolds,
+                                                          const Lanes<W>& x) {
+  const Lanes<W> square = x * x, sum = fused(rough_share, reynolds, Lanes<W>(two_over_ln_10)) + x;
   const Lanes<W> both = 1.0 / (square * sum);
-  return {x, sum * both, (-2.0 * two_over_ln_10) * (square * both)};
+  return {x, sum * both, -two_over_ln_10 * (square * both)};
 }
 
 namespace detail {
@@ -43,17 +45,27 @@ template <int W>
 
 }  // namespace detail
 
-/// Haaland 1983, J. Fluids Eng. 105, 89: x = -1.8 log((e/3.7)^1.11 + 6.9/Re). Two quotients.
+/// Haaland 1983, J. Fluids Eng. 105, 89: x = -1.8 log((e/3.7)^1.11 + 6.9/Re). Two quotients; this is up to the first.
 /// @param rough_term (e/3.7)^1.11 @param reynolds >= 100
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Turbulent<W> haaland(const Lanes<W>& rough_term, const Lanes<W>& reynolds) {
+[[nodiscard]] HEADBAND_INLINE base::LogBegun<W> begin_haaland(const Lanes<W>& rough_term, const Lanes<W>& reynolds) {
+  const Lanes<W> over = fused(rough_term, reynolds, Lanes<W>(6.9));  // the argument of the logarithm is over/Re
+  return base::begin_log_of_ratio(reynolds, over, over);
+}
+
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> finish_haaland(const base::LogBegun<W>& begun) {
   constexpr double c = 1.8 * detail::one_over_ln_10;
-  const Lanes<W> over = rough_term * reynolds + 6.9;  // the argument of the logarithm is over/Re
-  const base::LogAndInverse<W> l = base::log_of_ratio(reynolds, over, over);
-  const Lanes<W> x = c * l.log;
-  const Lanes<W> factor = 1.0 / (x * x);
-  // d x / d ln Re = c 6.9/over, d ln f / d ln Re = -2 (d x / d ln Re)/x
-  return {x, factor, (-2.0 * c * 6.9) * (l.inverse * x * factor)};
+  const Lanes<W> log = base::finish_log(begun);
+  const Lanes<W> factor = (1.0 / (c * c)) / (log * log);
+  // x = c log, d x / d ln Re = c 6.9/over, d ln f / d ln Re = -2 (d x / d ln Re)/x
+  return {c * log, factor, (-6.9 * c * c) * begun.inverse * (log * factor)};
+}
+
+/// The whole of it.
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> haaland(const Lanes<W>& rough_term, const Lanes<W>& reynolds) {
+  return finish_haaland<W>(begin_haaland<W>(rough_term, reynolds));
 }
 
 /// Swamee & Jain 1976, J. Hydraul. Div. ASCE 102, 657: f = 0.25/log(e/3.7 + 5.74/Re^0.9)^2; stated for Re 5e3 .. 1e8

@@ -32,17 +32,18 @@ struct OlderRoot {
 };
 
 template <int W>
-HEADBAND_INLINE Lanes<W> solve(
-    const PreparedRule<W>& rule, const Lanes<W>& rough, const Lanes<W>&, const Lanes<W>& inverse, const NoRoot&) {
-  return colebrook_root<W>(rough, rule.root_constant * inverse);
+HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
+                               const Lanes<W>& reynolds,
+                               const Lanes<W>& inverse,
+                               const NoRoot&) {
+  return colebrook_root<W>(rule.rough_by_reynolds * reynolds, rule.root_constant * inverse);
 }
 template <int W>
 HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
-                               const Lanes<W>& rough,
                                const Lanes<W>& reynolds,
                                const Lanes<W>&,
                                const OlderRoot<W>& older) {
-  const Lanes<W> x = colebrook_correct<W>(rough, reynolds, rule.root_constant, older.root, older.idle);
+  const Lanes<W> x = colebrook_correct<W>(rule.rough_by_reynolds, reynolds, rule.root_shift, older.root, older.idle);
   older.root = select(older.idle, older.root, x);
   return x;
 }
@@ -50,7 +51,7 @@ HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
 template <int W>
 HEADBAND_INLINE Turbulent<W> explicit_side(const Root<W>& r) {
   const Lanes<W> inverse = 1.0 / r.x;
-  return {r.x, inverse * inverse, -2.0 * r.dx * inverse};
+  return {r.x, inverse * inverse, -r.dx * inverse};
 }
 
 /// One law; Colebrook-White and smooth through the shared solve.
@@ -59,10 +60,8 @@ HEADBAND_INLINE Turbulent<W> side_of(
     const PreparedRule<W>& rule, FrictionLaw law, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
   switch (law) {
     case FrictionLaw::colebrook_white:
-    case FrictionLaw::smooth: {
-      const Lanes<W> rough = rule.rough_by_reynolds * reynolds;
-      return colebrook_side<W>(rough, solve<W>(rule, rough, reynolds, inverse, kept));
-    }
+    case FrictionLaw::smooth:
+      return colebrook_side<W>(rule.rough_by_reynolds, reynolds, solve<W>(rule, reynolds, inverse, kept));
     case FrictionLaw::haaland:
       return haaland<W>(rule.rough_term, reynolds);
     case FrictionLaw::swamee_jain:
@@ -102,7 +101,7 @@ Turbulent<W> mixed_side(const PreparedRule<W>& rule,
     for (int i = 0; i < W; ++i) on.set(i, (family & bit(rule.laws[static_cast<std::size_t>(i)])) != 0);
     r.x = select(on, here.x, r.x);
     r.factor = select(on, here.factor, r.factor);
-    r.slope = select(on, here.slope, r.slope);
+    r.half_slope = select(on, here.half_slope, r.half_slope);
   }
   return r;
 }
@@ -162,7 +161,7 @@ HEADBAND_INLINE Factor<W> evaluate(const PreparedRule<W>& rule, const Lanes<W>& 
   const Lanes<W> held_inverse = select(low, Lanes<W>(1.0 / least_turbulent_reynolds), inverse);
   const Turbulent<W> side = rule.uniform ? side_of<W>(rule, rule.law, held, held_inverse, kept)
                                          : mixed_side<W, Kept>(rule, held, held_inverse, kept);
-  const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), side.slope);
+  const Lanes<W> plain_slope = select(low, Lanes<W>(0.0), 2.0 * side.half_slope);
 
   if (joint_only) return churchill_factor<W>(laminar, inverse, side.x, rule.scatter, plain_slope);
   Factor<W> turbulent{rule.scatter * side.factor, plain_slope};
@@ -202,7 +201,10 @@ void prepare_lane(PreparedRule<W>& p, FrictionLaw law, const Transition& transit
   p.from.set(lane, transition.from);
   p.to.set(lane, step ? transition.from : transition.to);
   p.one_over_span.set(lane, step ? 0.0 : 1.0 / (transition.to - transition.from));
-  if (law == FrictionLaw::smooth) p.root_constant.set(lane, prandtl_constant);
+  if (law == FrictionLaw::smooth) {
+    p.root_constant.set(lane, prandtl_constant);
+    p.root_shift.set(lane, prandtl_shift);
+  }
 }
 
 /// The same for every lane at once, from a rule of one lane.
@@ -210,11 +212,13 @@ template <int W>
 void prepare_all(PreparedRule<W>& p, FrictionLaw law, const Transition& transition) {
   PreparedRule<1> one;
   one.root_constant = Lanes<1>(colebrook_constant);
+  one.root_shift = Lanes<1>(colebrook_shift);
   prepare_lane<1>(one, law, transition, 0);
   p.from = Lanes<W>(one.from.number);
   p.to = Lanes<W>(one.to.number);
   p.one_over_span = Lanes<W>(one.one_over_span.number);
   p.root_constant = Lanes<W>(one.root_constant.number);
+  p.root_shift = Lanes<W>(one.root_shift.number);
   const auto everywhere = [](bool on) { return Lanes<W>(on ? 1.0 : 0.0) > Lanes<W>(0.5); };
   p.sudden = everywhere(one.sudden[0]);
   p.churchill = everywhere(one.churchill[0]);
@@ -247,6 +251,7 @@ PreparedRule<W> prepare(const FactorRule<W>& rule) {
   p.kind = rule.transition[0].kind;
   p.laws = rule.law;
   p.root_constant = Lanes<W>(colebrook_constant);
+  p.root_shift = Lanes<W>(colebrook_shift);
   bool alike = true;
   for (std::size_t lane = 0; lane < static_cast<std::size_t>(W); ++lane) {
     p.laws_present |= bit(rule.law[lane]);
@@ -289,6 +294,7 @@ PreparedRule<8> in_every_lane(const PreparedRule<1>& rule) {
   p.relative_roughness = rule.relative_roughness.number;
   p.rough_by_reynolds = rule.rough_by_reynolds.number;
   p.root_constant = rule.root_constant.number;
+  p.root_shift = rule.root_shift.number;
   p.rough_term = rule.rough_term.number;
   p.scatter = rule.scatter.number;
   p.laminar_scatter = rule.laminar_scatter.number;

@@ -36,7 +36,7 @@ struct Factor {
 template <int W>
 struct PreparedRule {
   bool uniform = true;        ///< every lane the same law and kind of transition
-  bool swift = false;         ///< one law that turbulent_factor_near knows, and no joint
+  bool swift = false;         ///< one law that turbulent_near knows, and no joint
   bool root_kept = false;     ///< some lane solves for a root (Colebrook-White, smooth): see darcy_factor_near
   FrictionLaw law{};          ///< of lane 0
   Transition::Kind kind{};    ///< of lane 0
@@ -48,6 +48,7 @@ struct PreparedRule {
   Lanes<W> relative_roughness;       ///< e
   Lanes<W> rough_by_reynolds;        ///< e/(3.7 2.51); 0 in lanes of the smooth law
   Lanes<W> root_constant;            ///< 2.51; 10^0.4 in lanes of the smooth law
+  Lanes<W> root_shift;               ///< k ln of that
   Lanes<W> rough_term;               ///< (e/3.7)^1.11 where Haaland is used
   Lanes<W> scatter, laminar_scatter;
 };
@@ -93,22 +94,17 @@ template <int W>
 template <int W>
 [[nodiscard]] Factor<W> darcy_factor_near(const PreparedRule<W>& rule, const Lanes<W>& reynolds, Lanes<W>& root);
 
-/// The bits of `darcy_factor_near` where the rule is `swift` and every lane at or above `all_turbulent_from`; inline,
-/// for the inner loop of the march. Two quotients and a logarithm, from a root close by where the law needs one. W =
-/// 16, V = 8: two rows of the same eight draws.
+/// The turbulent side where the rule is `swift` and every lane at or above `all_turbulent_from`: with the scatter on
+/// it, the bits of `darcy_factor_near`. Inline, for the inner loop of the march. Two quotients and a logarithm, from a
+/// root close by where the law needs one. W = 16, V = 8: two rows of the same eight draws.
 template <int W, int V>
-[[nodiscard]] HEADBAND_INLINE Factor<W> turbulent_factor_near(const PreparedRule<V>& rule,
-                                                              const Lanes<W>& reynolds,
-                                                              Lanes<W>& root) {
-  Turbulent<W> side;
-  if (rule.law == FrictionLaw::haaland) {
-    side = haaland<W>(base::for_rows<W>(rule.rough_term), reynolds);
-  } else {
-    const Lanes<W> rough = base::for_rows<W>(rule.rough_by_reynolds) * reynolds;
-    root = colebrook_correct<W>(rough, reynolds, base::for_rows<W>(rule.root_constant), root);
-    side = colebrook_side<W>(rough, root);
-  }
-  return {base::for_rows<W>(rule.scatter) * side.factor, side.slope};
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> turbulent_near(const PreparedRule<V>& rule,
+                                                          const Lanes<W>& reynolds,
+                                                          Lanes<W>& root) {
+  if (rule.law == FrictionLaw::haaland) return haaland<W>(base::for_rows<W>(rule.rough_term), reynolds);
+  const Lanes<W> share = base::for_rows<W>(rule.rough_by_reynolds);
+  root = colebrook_correct<W>(share, reynolds, base::for_rows<W>(rule.root_shift), root);
+  return colebrook_side<W>(share, reynolds, root);
 }
 
 extern template PreparedRule<1> prepare<1>(const FactorRule<1>&);

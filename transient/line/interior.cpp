@@ -3,6 +3,7 @@
 
 #include "transient/line/interior_512.hpp"
 #include "transient/line/interior_alone.hpp"
+#include "transient/line/interior_followed.hpp"
 #include "transient/line/interior_halves.hpp"
 
 #include <array>
@@ -226,6 +227,14 @@ int march_plain(const Resistance<W>& given, const PipeRows<W>& given_rows, Wave<
       if (!march_row<W, placed, limited, envelope>(r, rows, i + 1, on2)) return i + 1;
     }
     return last;
+  }
+  if constexpr (W == 8 && form == Form::darcy && !placed) {
+    if (rows.reaches == nullptr && followed_in_blocks(given, rows.root != nullptr)) {
+      Arriving<8> row_before{on1.head, on1.damp}, row{on2.head, on2.damp};
+      i = march_followed<8>(given, rows, limited, row_before, row, old.root[0]);
+      on1 = {row_before.head, row_before.impedance};
+      on2 = {row.head, row.impedance};
+    }
   }
   // where a law of friction waits for its own results, two rows in one fill the waiting
   for (; i + 1 < last; i += 2) {

@@ -1,11 +1,13 @@
 // SPDX-License-Identifier: MIT
 #include "transient/line/interior_alone.hpp"
 
+#include "transient/line/interior_followed.hpp"
+#include "transient/line/neighbours.hpp"
+
 namespace headband::transient {
 namespace {
 
 using base::load_eight;
-using base::Quad;
 using base::store_eight;
 
 template <int B>
@@ -31,19 +33,6 @@ template <int B>
 struct Waves {
   Lanes<B> head, damp;
 };
-
-// What left the two rows before (the upper half of `before`), then what leaves all but the last two of these.
-template <int B>
-HEADBAND_INLINE Lanes<B> two_rows_earlier(const Quad& before, const Lanes<B>& now) {
-  Lanes<B> r;
-  r.part[0] = __builtin_shufflevector(before, now.part[0], 2, 3, 4, 5);
-  r.part[1] = __builtin_shufflevector(now.part[0], now.part[1], 2, 3, 4, 5);
-  if constexpr (B == 16) {
-    r.part[2] = __builtin_shufflevector(now.part[1], now.part[2], 2, 3, 4, 5);
-    r.part[3] = __builtin_shufflevector(now.part[2], now.part[3], 2, 3, 4, 5);
-  }
-  return r;
-}
 
 // Blocks of B rows from row `i` on.
 template <int B, Form form, bool limited, bool envelope>
@@ -99,8 +88,11 @@ template <Form form, bool limited, bool envelope>
 int march(const Resistance<1>& given, const PipeRows<1>& rows, Arriving<1>& on1, Arriving<1>& on2, Lanes<1>& root) {
   const Resistance<8> r = in_every_lane(given);
   int i = 1;
-  // a law of friction waits for its own results: sixteen rows fill the waiting
-  if constexpr (form == Form::darcy) i = march<16, form, limited, envelope>(r, rows, i, on1, on2, root);
+  if constexpr (form == Form::darcy) {
+    if (followed_in_blocks(r, rows.root != nullptr)) return march_followed<1>(r, rows, limited, on1, on2, root);
+    // a law of friction waits for its own results: sixteen rows fill the waiting
+    i = march<16, form, limited, envelope>(r, rows, i, on1, on2, root);
+  }
   return march<8, form, limited, envelope>(r, rows, i, on1, on2, root);
 }
 

@@ -94,6 +94,15 @@ template <int W, int V>
 
 }  // namespace detail
 
+/// The cost of a turbulent flow from the law's side.
+template <int W, int V>
+[[nodiscard]] HEADBAND_INLINE Cost<W> turbulent_cost(const Resistance<V>& r,
+                                                     const Lanes<W>& size,
+                                                     const friction::Turbulent<W>& side) {
+  using base::for_rows;
+  return {size, (for_rows<W>(r.rule.scatter) * side.factor) * (for_rows<W>(r.darcy) * size), side.half_slope};
+}
+
 /// What the flow at a node costs. W = 16, V = 8: two rows of the same eight draws.
 /// @param root last root of the implicit laws at this node, see friction::darcy_factor_near; null: solved anew
 template <int W, Form form, int V>
@@ -106,12 +115,10 @@ template <int W, Form form, int V>
     const bool swift = r.rule.swift && (root != nullptr || !r.rule.root_kept);
     if (swift && all(re >= for_rows<W>(r.rule.all_turbulent_from))) [[likely]] {
       Lanes<W> none = 0.0;
-      const auto f = friction::turbulent_factor_near<W>(r.rule, re, root != nullptr ? *root : none);
-      c.loss = for_rows<W>(r.darcy) * f.factor * c.size;
-      c.half = 0.5 * f.log_slope;
+      return turbulent_cost<W>(r, c.size, friction::turbulent_near<W>(r.rule, re, root != nullptr ? *root : none));
     } else {
       const auto f = detail::general_factor<W>(r.rule, max(re, Lanes<W>(still)), root);
-      c.loss = for_rows<W>(r.darcy) * f.factor * max(c.size, still / per_flow);
+      c.loss = f.factor * (for_rows<W>(r.darcy) * max(c.size, still / per_flow));
       c.half = 0.5 * f.log_slope;
     }
   } else if constexpr (form == Form::power) {

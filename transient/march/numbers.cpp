@@ -73,7 +73,7 @@ void fill_friction(const network::Case& c,
   } else if (!all(kept)) {
     r.form = kind == network::LossKind::darcy ? Form::darcy : Form::power;
     if (r.form == Form::darcy) {
-      r.rule = friction::prepare<W>(p.friction.rule);
+      r.rule = p.friction.prepared;
       r.darcy = select(kept, zero, of_reach);
     } else {
       r.power = select(kept, zero, of_reach * p.friction.factor_at_unit);
@@ -471,7 +471,10 @@ void fill_numbers(const network::Case& c,
     p.impedance = p.impedance / (values.gravity * v.area);
     p.per_section_volume = 1.0 / (v.area * p.reach);
     p.inertia = v.length / (values.gravity * v.area);
-    p.friction = steady::pipe_friction<W>(plan, values, i);
+    const auto& rule = p.friction.rule;
+    const bool laws_kept =
+        p.friction.prepared.laws_present != 0 && rule.law == values.law && rule.transition == values.transition;
+    steady::renew_pipe_friction<W>(plan, values, i, laws_kept, p.friction);
     fill_friction(c, values, steady, i, p);
   }
   n.fitting.assign(n.rows, Lanes<W>(0.0));

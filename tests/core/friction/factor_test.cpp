@@ -234,13 +234,13 @@ TEST(darcy_factor, the_inline_turbulent_form_gives_the_bits_of_the_general_one) 
           a.set(i, rule.all_turbulent_from[i] * (1.0 + std::exp(4.0 + 4.0 * std::sin(0.02 * step + i))));
           b.set(i, rule.all_turbulent_from[i] * (1.0 + (step % 50 == 0 ? 1e4 : 0.0) + 0.01 * i));
         }
-        const auto both = friction::turbulent_factor_near<16>(rule, side_by_side(a, b), root);
+        const auto both = friction::turbulent_near<16>(rule, side_by_side(a, b), root);
         const auto near_a = friction::darcy_factor_near<8>(rule, a, root_a);
         const auto near_b = friction::darcy_factor_near<8>(rule, b, root_b);
         for (int i = 0; i < 8; ++i) {
-          ASSERT_EQ(both.factor[i], near_a.factor[i]) << step << ' ' << i;
-          ASSERT_EQ(both.log_slope[i], near_a.log_slope[i]) << step << ' ' << i;
-          ASSERT_EQ(both.factor[8 + i], near_b.factor[i]) << step << ' ' << i;
+          ASSERT_EQ(rule.scatter[i] * both.factor[i], near_a.factor[i]) << step << ' ' << i;
+          ASSERT_EQ(2.0 * both.half_slope[i], near_a.log_slope[i]) << step << ' ' << i;
+          ASSERT_EQ(rule.scatter[i] * both.factor[8 + i], near_b.factor[i]) << step << ' ' << i;
           ASSERT_EQ(root[i], root_a[i]);
           ASSERT_EQ(root[8 + i], root_b[i]);
         }

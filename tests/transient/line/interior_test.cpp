@@ -285,31 +285,54 @@ TEST(interior, one_draw_and_eight_give_the_same_bits_in_every_form) {
           for (const bool envelopes : {false, true}) expect_same_bits(f, rows, limited, placed, envelopes, true);
 }
 
+TEST(interior, one_draw_and_eight_give_the_same_bits_in_long_pipes) {
+  for (const Friction& f : {frictions[1], frictions[3], frictions[4]})
+    for (const bool limited : {false, true}) expect_same_bits(f, 141, limited, false, true, true);
+}
+
 TEST(interior, one_draw_and_eight_give_the_same_bits_without_kept_roots) {
   for (const bool limited : {false, true}) expect_same_bits(frictions[1], 37, limited, false, true, false);
 }
 
-// The rows of a run alone are marched in blocks; told that lanes may end at other rows, one by one.
+template <int W>
+void expect_blocks_give_the_bits_of_single_rows(const Friction& f, std::size_t rows) {
+  PipeState<W> blocks(rows);
+  for (int lane = 0; lane < W; ++lane) fill(blocks, lane, static_cast<unsigned>(rows) + static_cast<unsigned>(lane));
+  blocks.roots = true;
+  PipeState<W> one_by_one = blocks;
+  one_by_one.uneven = true;
+  one_by_one.reaches = static_cast<double>(rows - 1);
+  Resistance<W> r;
+  if constexpr (W == 1) {
+    r = resistance(f);
+  } else {
+    std::vector<Resistance<1>> alone;
+    for (int lane = 0; lane < W; ++lane) alone.push_back(resistance(f, lane));
+    r = test::together(alone, f.law, f.joint);
+  }
+  for (int step = 0; step < 20; ++step) {
+    blocks.march(r, false);
+    one_by_one.march(r, false);
+  }
+  for (std::size_t i = 0; i < rows; ++i)
+    for (int lane = 0; lane < W; ++lane) {
+      ASSERT_TRUE(same_bits(blocks.head[i][lane], one_by_one.head[i][lane])) << rows << ' ' << i;
+      ASSERT_TRUE(same_bits(blocks.flow[i][lane], one_by_one.flow[i][lane])) << rows << ' ' << i;
+      ASSERT_TRUE(same_bits(blocks.root[i][lane], one_by_one.root[i][lane])) << rows << ' ' << i;
+      ASSERT_TRUE(same_bits(blocks.head_max[i][lane], one_by_one.head_max[i][lane])) << rows << ' ' << i;
+    }
+}
+
+// The rows of a run alone are marched in blocks, and so are those of draws with a law of friction; told that lanes may
+// end at other rows, one by one.
 TEST(interior, blocks_of_rows_give_the_bits_of_one_row_after_the_other) {
   for (const Friction& f : frictions)
     for (std::size_t rows = 10; rows <= 60; ++rows) {
-      PipeState<1> blocks(rows);
-      fill(blocks, 0, static_cast<unsigned>(rows));
-      blocks.roots = true;
-      PipeState<1> one_by_one = blocks;
-      one_by_one.uneven = true;
-      one_by_one.reaches = static_cast<double>(rows - 1);
-      const Resistance<1> r = resistance(f);
-      for (int step = 0; step < 20; ++step) {
-        blocks.march(r, false);
-        one_by_one.march(r, false);
-      }
-      for (std::size_t i = 0; i < rows; ++i) {
-        ASSERT_TRUE(same_bits(blocks.head[i].number, one_by_one.head[i].number)) << rows << ' ' << i;
-        ASSERT_TRUE(same_bits(blocks.flow[i].number, one_by_one.flow[i].number)) << rows << ' ' << i;
-        ASSERT_TRUE(same_bits(blocks.root[i].number, one_by_one.root[i].number)) << rows << ' ' << i;
-      }
+      expect_blocks_give_the_bits_of_single_rows<1>(f, rows);
+      expect_blocks_give_the_bits_of_single_rows<8>(f, rows);
     }
+  for (const Friction& f : frictions)
+    for (const std::size_t rows : {66U, 67U, 139U}) expect_blocks_give_the_bits_of_single_rows<1>(f, rows);
 }
 
 // What the other draws of a batch do leaves a draw alone: laminar, turbulent, at rest, not a number.

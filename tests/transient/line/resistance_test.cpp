@@ -5,6 +5,7 @@
 
 #include <gtest/gtest.h>
 
+#include <array>
 #include <cmath>
 
 namespace {
@@ -86,11 +87,13 @@ TEST(resistance, two_rows_at_once_cost_what_each_costs) {
   Lanes<8> one_root = 0.0, two_root = 0.0;
   Lanes<16> root = 0.0;
   for (int step = 0; step < 300; ++step) {
-    Lanes<8> one, two;
-    for (int lane = 0; lane < 8; ++lane) {
-      one.set(lane, 0.3 * std::cos(0.03 * step + 0.01 * lane));  // through rest: all lanes, some, none turbulent
-      two.set(lane, step % 90 < 45 ? 0.2 : 1e-3 * lane);         // jumps
+    std::array<double, 8> flow_one, flow_two;
+    for (std::size_t lane = 0; lane < 8; ++lane) {
+      const auto at = static_cast<double>(lane);
+      flow_one[lane] = 0.3 * std::cos(0.03 * step + 0.01 * at);  // through rest: all lanes, some, none turbulent
+      flow_two[lane] = step % 90 < 45 ? 0.2 : 1e-3 * at;         // jumps
     }
+    const Lanes<8> one = base::load_eight(flow_one.data()), two = base::load_eight(flow_two.data());
     const auto both = transient::cost_of<16, Form::darcy>(r, side_by_side(one, two), &root);
     const auto first = transient::cost_of<8, Form::darcy>(r, one, &one_root);
     const auto second = transient::cost_of<8, Form::darcy>(r, two, &two_root);

@@ -120,6 +120,44 @@ TEST(Batch, SameBitsAloneInAnyLaneAndInAFullRun) {
   EXPECT_GT(cavities, 20);
 }
 
+// A marcher keeps what its draws have in common; draws of other laws before leave nothing behind.
+TEST(Batch, AMarcherUsedBeforeGivesTheBitsOfAFreshOne) {
+  RandomCase made(7, true);
+  made.b.c.surge.friction_in_time = network::FrictionInTime::reynolds;
+  made.b.c.friction.law.options = {{network::FrictionLaw::colebrook_white, 0.4},
+                                   {network::FrictionLaw::haaland, 0.4},
+                                   {network::FrictionLaw::smooth, 0.2}};
+  const network::Case c = made.b.finish();
+  const network::Plan plan = network::make_plan(c);
+  steady::SteadySolver solver(c, plan);
+  transient::BatchMarcher used(c, plan);
+  bool laws_differ = false;
+  network::FrictionLaw before = network::FrictionLaw::none;
+  for (int block = 0; block < 6; ++block) {
+    network::Scores<8> scores(c.unknowns.size());
+    for (auto& s : scores) {
+      const double all = made.uniform(0.02, 0.98);  // odd blocks: lanes alike, so one law for all of them
+      for (int lane = 0; lane < 8; ++lane) s.set(lane, block % 2 == 0 ? made.uniform(0.02, 0.98) : all);
+    }
+    network::Values<8> values;
+    network::realise<8>(c, plan, scores, values);
+    steady::SteadyState<8> state;
+    solver.solve<8>(values, state);
+    transient::DrawAnswers<8> again, fresh;
+    used.march<8>(values, state, again);
+    transient::BatchMarcher(c, plan).march<8>(values, state, fresh);
+    for (int lane = 0; lane < 8; ++lane) {
+      laws_differ =
+          laws_differ || (before != network::FrictionLaw::none && values.law[static_cast<std::size_t>(lane)] != before);
+      before = values.law[static_cast<std::size_t>(lane)];
+      ASSERT_EQ(fresh.status[static_cast<std::size_t>(lane)], 0);
+      for (std::size_t k = 0; k < plan.answers.size(); ++k)
+        ASSERT_EQ(bits(again.answer[k][lane]), bits(fresh.answer[k][lane])) << block << " " << plan.answers[k].name;
+    }
+  }
+  EXPECT_TRUE(laws_differ);
+}
+
 /// Head of probe `k` in a run at a time between its rows.
 double on_the_line(const answers::Transient& t, std::size_t k, double time) {
   const std::size_t probes = t.probe_name.size(), last = t.time.size() - 1;
