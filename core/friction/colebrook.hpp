@@ -139,14 +139,21 @@ template <int W>
   return c;
 }
 
-/// The root corrected, and where that was enough. @param shift as in colebrook_correct
+/// u0 of a correction. @param shift as in colebrook_correct
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Corrected<W> finish_correction(const CorrectionBegun<W>& c, const Lanes<W>& shift) {
+[[nodiscard]] HEADBAND_INLINE Lanes<W> first_of_correction(const CorrectionBegun<W>& c, const Lanes<W>& shift) {
   // k ln(b p) = shift - k ln(Re/p)
-  const Lanes<W> less = fused(Lanes<W>(two_over_ln_10), base::finish_log(c.log), -(c.x + shift));
-  const Lanes<W> u0 = less * c.log.inverse;
+  return fused(Lanes<W>(two_over_ln_10), base::finish_log(c.log), -(c.x + shift)) * c.log.inverse;
+}
+
+/// The root corrected, and where that was enough. @param inverse 1/(p + k)
+template <int W>
+[[nodiscard]] HEADBAND_INLINE Corrected<W> finish_correction(const Lanes<W>& x,
+                                                             const Lanes<W>& p,
+                                                             const Lanes<W>& inverse,
+                                                             const Lanes<W>& u0) {
   const Lanes<W> square = u0 * u0;
-  return {detail::corrected_near<W>(c.x, c.p, u0, square, two_over_ln_10 * c.log.inverse),
+  return {detail::corrected_near<W>(x, p, u0, square, two_over_ln_10 * inverse),
           square <= Lanes<W>(widest_correction * widest_correction)};
 }
 
@@ -157,7 +164,8 @@ template <int W>
                                                           const Lanes<W>& reynolds,
                                                           const Lanes<W>& shift,
                                                           const Lanes<W>& older) {
-  return finish_correction<W>(begin_correction<W>(rough_share, reynolds, older), shift);
+  const CorrectionBegun<W> c = begin_correction<W>(rough_share, reynolds, older);
+  return finish_correction<W>(c.x, c.p, c.log.inverse, first_of_correction<W>(c, shift));
 }
 
 }  // namespace detail

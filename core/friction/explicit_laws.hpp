@@ -53,19 +53,20 @@ template <int W>
   return base::begin_log_of_ratio(reynolds, over, over);
 }
 
+/// From the first quotient on. @param log the logarithm begun @param inverse that of `begin_haaland`
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Turbulent<W> finish_haaland(const base::LogBegun<W>& begun) {
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> finish_haaland(const Lanes<W>& log, const Lanes<W>& inverse) {
   constexpr double c = 1.8 * detail::one_over_ln_10;
-  const Lanes<W> log = base::finish_log(begun);
   const Lanes<W> factor = (1.0 / (c * c)) / (log * log);
   // x = c log, d x / d ln Re = c 6.9/over, d ln f / d ln Re = -2 (d x / d ln Re)/x
-  return {c * log, factor, (-6.9 * c * c) * begun.inverse * (log * factor)};
+  return {c * log, factor, (-6.9 * c * c) * inverse * (log * factor)};
 }
 
 /// The whole of it.
 template <int W>
 [[nodiscard]] HEADBAND_INLINE Turbulent<W> haaland(const Lanes<W>& rough_term, const Lanes<W>& reynolds) {
-  return finish_haaland<W>(begin_haaland<W>(rough_term, reynolds));
+  const base::LogBegun<W> begun = begin_haaland<W>(rough_term, reynolds);
+  return finish_haaland<W>(base::finish_log(begun), begun.inverse);
 }
 
 /// Swamee & Jain 1976, J. Hydraul. Div. ASCE 102, 657: f = 0.25/log(e/3.7 + 5.74/Re^0.9)^2; stated for Re 5e3 .. 1e8

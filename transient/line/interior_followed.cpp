@@ -85,12 +85,22 @@ HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, B
       b.log[at] = friction::begin_haaland<8>(r.rule.rough_term, reynolds);
     }
   }
+  for (int k = 0; k < was.eights; ++k) {
+    base::LogBegun<8>& log = b.log[static_cast<std::size_t>(k)];
+    if constexpr (root_law) {
+      const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
+      const auto begun = friction::correction_with_log<8>(share, reynolds, load(was.root, k), log);
+      log.s = friction::first_of_correction<8>(begun, r.rule.root_shift);
+    } else {
+      log.s = base::finish_log(log);
+    }
+  }
   if constexpr (root_law) {
     for (int k = 0; k < was.eights; ++k) {
       const auto at = static_cast<std::size_t>(k);
       const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
       const auto begun = friction::correction_with_log<8>(share, reynolds, load(was.root, k), b.log[at]);
-      const auto corrected = friction::finish_correction<8>(begun, r.rule.root_shift);
+      const auto corrected = friction::finish_correction<8>(begun.x, begun.p, b.log[at].inverse, b.log[at].s);
       b.root[at] = corrected.x;
       usual = usual & corrected.enough;
     }
@@ -106,7 +116,7 @@ HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, B
     if constexpr (root_law) {
       side = friction::colebrook_side<8>(share, size * r.reynolds, b.root[at]);
     } else {
-      side = friction::finish_haaland<8>(b.log[at]);
+      side = friction::finish_haaland<8>(b.log[at].s, b.log[at].inverse);
     }
     b.leave(k, r, turbulent_cost<8>(r, size, side), was);
   }
