@@ -5,6 +5,7 @@
 
 #include <algorithm>
 #include <array>
+#include <bit>
 
 namespace headband::transient {
 namespace {
@@ -58,27 +59,23 @@ struct Block {
   }
 };
 
-HEADBAND_INLINE base::Mask<8> everywhere() { return Lanes<8>(0.0) < Lanes<8>(1.0); }
-
-/// What leaves the eights of a block one after the other: not all turbulent, or a root too far from the last one.
+/// What leaves one eight by the general rule: not all turbulent, or a root too far from the last one.
 template <int V>
-[[gnu::noinline]] void leave_one_by_one(const Resistance<8>& r, const Before<V>& was, Block<V>& b) {
-  for (int k = 0; k < was.eights; ++k) {
-    Lanes<8>& root = b.root[static_cast<std::size_t>(k)];
-    if (was.root != nullptr) root = load(was.root, k);
-    b.leave(k, r, cost_of<8, Form::darcy>(r, load(was.flow, k), was.root != nullptr ? &root : nullptr), was);
-  }
+[[gnu::noinline]] void leave_again(int k, const Resistance<8>& r, const Before<V>& was, Block<V>& b) {
+  Lanes<8>& root = b.root[static_cast<std::size_t>(k)];
+  if (was.root != nullptr) root = load(was.root, k);
+  b.leave(k, r, cost_of<8, Form::darcy>(r, load(was.flow, k), was.root != nullptr ? &root : nullptr), was);
 }
 
 /// What leaves the eights of a block, piece by piece.
 template <bool root_law, int V>
 HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, Block<V>& b) {
   const Lanes<8> share = r.rule.rough_by_reynolds, from = r.rule.all_turbulent_from;
-  auto usual = everywhere();
+  unsigned rare = 0;  // a bit for each eight that the pieces do not give
   for (int k = 0; k < was.eights; ++k) {
     const auto at = static_cast<std::size_t>(k);
     const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
-    usual = usual & (reynolds >= from);
+    rare |= static_cast<unsigned>(!all(reynolds >= from)) << at;
     if constexpr (root_law) {
       b.log[at] = friction::begin_correction<8>(share, reynolds, load(was.root, k)).log;
     } else {
@@ -102,12 +99,8 @@ HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, B
       const auto begun = friction::correction_with_log<8>(share, reynolds, load(was.root, k), b.log[at]);
       const auto corrected = friction::finish_correction<8>(begun.x, begun.p, b.log[at].inverse, b.log[at].s);
       b.root[at] = corrected.x;
-      usual = usual & corrected.enough;
+      rare |= static_cast<unsigned>(!all(corrected.enough)) << at;
     }
-  }
-  if (!all(usual)) [[unlikely]] {
-    leave_one_by_one(r, was, b);
-    return;
   }
   for (int k = 0; k < was.eights; ++k) {
     const auto at = static_cast<std::size_t>(k);
@@ -120,29 +113,26 @@ HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, B
     }
     b.leave(k, r, turbulent_cost<8>(r, size, side), was);
   }
+  for (; rare != 0; rare &= rare - 1) leave_again(std::countr_zero(rare), r, was, b);
+}
+
+/// The wave from two rows before the one that comes back into eight `k` of a block.
+struct Coming {
+  Lanes<8> head, damp;
+};
+HEADBAND_INLINE Coming coming(const Block<8>& b, std::size_t k) { return {b.on_head[k], b.damp[k]}; }
+HEADBAND_INLINE Coming coming(const Block<1>& b, std::size_t k) {
+  return {two_rows_earlier(b.on_head[k].part[1], b.on_head[k + 1]), two_rows_earlier(b.damp[k].part[1], b.damp[k + 1])};
 }
 
 /// Flows and heads where the waves of a block meet; `keep` gets them eight by eight.
-template <class Keep>
-HEADBAND_INLINE void meet_block(const Block<8>& b, int rows, Keep keep) {
-  for (int k = 0; k < rows; k += 2) {
-    const auto at = static_cast<std::size_t>(k);
-    const Lanes<8> sum1 = b.damp[at] + b.damp[at + 2], sum2 = b.damp[at + 1] + b.damp[at + 3];
-    const Lanes<8> inverse = 1.0 / (sum1 * sum2);
-    const Lanes<8> q1 = (b.on_head[at] - b.back_head[at]) * (sum2 * inverse);
-    const Lanes<8> q2 = (b.on_head[at + 1] - b.back_head[at + 1]) * (sum1 * inverse);
-    keep(k, b.on_head[at] - b.damp[at] * q1, q1);
-    keep(k + 1, b.on_head[at + 1] - b.damp[at + 1] * q2, q2);
-  }
-}
-template <class Keep>
-HEADBAND_INLINE void meet_block(const Block<1>& b, int eights, Keep keep) {
+template <int V, class Keep>
+HEADBAND_INLINE void meet_block(const Block<V>& b, int eights, Keep keep) {
   for (int k = 0; k < eights; ++k) {
     const auto at = static_cast<std::size_t>(k);
-    const Lanes<8> head = two_rows_earlier(b.on_head[at].part[1], b.on_head[at + 1]);
-    const Lanes<8> damp = two_rows_earlier(b.damp[at].part[1], b.damp[at + 1]);
-    const Lanes<8> q = (head - b.back_head[at]) * shares(damp + b.damp[at + 1]);
-    keep(k, head - damp * q, q);
+    const Coming on = coming(b, at);
+    const Lanes<8> flow = (on.head - b.back_head[at]) / (on.damp + b.damp[at + front<V>]);
+    keep(k, fused_less(on.head, on.damp, flow), flow);
   }
 }
 
@@ -174,7 +164,7 @@ int march(const Resistance<8>& given, const PipeRows<V>& rows, Arriving<V>& on1,
   put(b.damp, on1.impedance, on2.impedance);
   int i = 1;
   while (true) {
-    const int eights = std::min(most, V == 8 ? (last - i) & ~1 : (last - i) / rows_of_eight), ahead = i + 1;
+    const int eights = std::min(most, (last - i) / rows_of_eight), ahead = i + 1;
     if (eights <= 0) break;
     leave_block<root_law, V>(
         r, {rows.head + ahead, rows.flow + ahead, root_law ? rows.root + ahead : nullptr, eights}, b);
@@ -187,7 +177,7 @@ int march(const Resistance<8>& given, const PipeRows<V>& rows, Arriving<V>& on1,
       }
     };
     if constexpr (limited) {
-      auto low = !everywhere();
+      auto low = Lanes<8>(1.0) < Lanes<8>(0.0);
       meet_block(b, eights, [&](int k, const Lanes<8>& head, const Lanes<8>& flow) __attribute__((always_inline)) {
         low = low | (head < load(rows.vapour + i, k));
         b.new_head[static_cast<std::size_t>(k)] = head;

@@ -23,8 +23,8 @@ template <int W>
 /// @param on1, on2  in: heads and damps of the waves that leave rows 0 and 1; out: the row before the returned one, and
 ///                  that row itself
 /// @param root_before  in and out: root of the friction law at the later of these rows before this step
-/// @return first row not marched (odd): a block further on holds a row below its limit (nothing stored there), or the
-///         rest is less than two rows of eight draws, than eight rows of one run
+/// @return first row not marched: a block further on holds a row below its limit (nothing stored there), or the rest of
+///         one run is less than eight rows; the last row's index when all are done
 template <int V>
 [[nodiscard]] int march_followed(const Resistance<8>& r,
                                  const PipeRows<V>& rows,
