@@ -47,15 +47,15 @@ Lanes<W> root_anew(const Lanes<W>& rough, const Lanes<W>& b) {
 }  // namespace
 
 template <int W>
-Lanes<W> colebrook_root_far(const Lanes<W>& rough_share,
+Lanes<W> colebrook_root_far(const Lanes<W>& rough,
                             const Lanes<W>& reynolds,
                             const Lanes<W>& shift,
                             const Lanes<W>& once) {
-  const Corrected<W> c = detail::corrected_once<W>(rough_share, reynolds, shift, once);
+  const Corrected<W> c = detail::corrected_once<W>(rough, reynolds, shift, once);
   if (all(c.enough)) return c.x;
   const Lanes<W> constant =
       select(shift == Lanes<W>(prandtl_shift), Lanes<W>(prandtl_constant), Lanes<W>(colebrook_constant));
-  return select(c.enough, c.x, root_anew<W>(rough_share * reynolds, constant / reynolds));
+  return select(c.enough, c.x, root_anew<W>(rough, constant / reynolds));
 }
 template Lanes<1> colebrook_root_far<1>(const Lanes<1>&, const Lanes<1>&, const Lanes<1>&, const Lanes<1>&);
 template Lanes<8> colebrook_root_far<8>(const Lanes<8>&, const Lanes<8>&, const Lanes<8>&, const Lanes<8>&);

@@ -114,29 +114,18 @@ struct Corrected {
 /// One correction of an older root up to its quotient.
 template <int W>
 struct CorrectionBegun {
-  Lanes<W> x, p;          ///< the older root within its bounds, and p there
+  Lanes<W> x;             ///< the older root within its bounds
   base::LogBegun<W> log;  ///< of Re/p; its inverse is 1/(p + k)
 };
 
-/// The correction with a logarithm begun before from the same numbers.
+/// First half of a correction. @param rough, reynolds, older as in colebrook_correct
 template <int W>
-[[nodiscard]] HEADBAND_INLINE CorrectionBegun<W> correction_with_log(const Lanes<W>& rough_share,
-                                                                     const Lanes<W>& reynolds,
-                                                                     const Lanes<W>& older,
-                                                                     const base::LogBegun<W>& log) {
-  // within these bounds p is under Re, and what is not a number becomes the lower one
-  const Lanes<W> x = min(Lanes<W>(20.0), max(Lanes<W>(1.0), older));
-  return {x, fused(rough_share, reynolds, x), log};
-}
-
-/// First half of a correction. @param rough_share, reynolds, older as in colebrook_correct
-template <int W>
-[[nodiscard]] HEADBAND_INLINE CorrectionBegun<W> begin_correction(const Lanes<W>& rough_share,
+[[nodiscard]] HEADBAND_INLINE CorrectionBegun<W> begin_correction(const Lanes<W>& rough,
                                                                   const Lanes<W>& reynolds,
                                                                   const Lanes<W>& older) {
-  CorrectionBegun<W> c = correction_with_log<W>(rough_share, reynolds, older, {});
-  c.log = base::begin_log_of_ratio(reynolds, c.p, c.p + two_over_ln_10);
-  return c;
+  // within these bounds p is under Re, and what is not a number becomes the lower one
+  const Lanes<W> x = min(Lanes<W>(20.0), max(Lanes<W>(1.0), older)), p = rough + x;
+  return {x, base::begin_log_of_ratio(reynolds, p, p + two_over_ln_10)};
 }
 
 /// u0 of a correction. @param shift as in colebrook_correct
@@ -148,24 +137,24 @@ template <int W>
 
 /// The root corrected, and where that was enough. @param inverse 1/(p + k)
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Corrected<W> finish_correction(const Lanes<W>& x,
-                                                             const Lanes<W>& p,
+[[nodiscard]] HEADBAND_INLINE Corrected<W> finish_correction(const Lanes<W>& rough,
+                                                             const Lanes<W>& x,
                                                              const Lanes<W>& inverse,
                                                              const Lanes<W>& u0) {
   const Lanes<W> square = u0 * u0;
-  return {detail::corrected_near<W>(x, p, u0, square, two_over_ln_10 * inverse),
+  return {detail::corrected_near<W>(x, rough + x, u0, square, two_over_ln_10 * inverse),
           square <= Lanes<W>(widest_correction * widest_correction)};
 }
 
 namespace detail {
 
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Corrected<W> corrected_once(const Lanes<W>& rough_share,
+[[nodiscard]] HEADBAND_INLINE Corrected<W> corrected_once(const Lanes<W>& rough,
                                                           const Lanes<W>& reynolds,
                                                           const Lanes<W>& shift,
                                                           const Lanes<W>& older) {
-  const CorrectionBegun<W> c = begin_correction<W>(rough_share, reynolds, older);
-  return finish_correction<W>(c.x, c.p, c.log.inverse, first_of_correction<W>(c, shift));
+  const CorrectionBegun<W> c = begin_correction<W>(rough, reynolds, older);
+  return finish_correction<W>(rough, c.x, c.log.inverse, first_of_correction<W>(c, shift));
 }
 
 }  // namespace detail
@@ -173,7 +162,7 @@ template <int W>
 /// The root where one correction of the older one was not enough: a second one, and the full solve where that was not
 /// enough either. @param once what the first correction gave
 template <int W>
-[[nodiscard]] Lanes<W> colebrook_root_far(const Lanes<W>& rough_share,
+[[nodiscard]] Lanes<W> colebrook_root_far(const Lanes<W>& rough,
                                           const Lanes<W>& reynolds,
                                           const Lanes<W>& shift,
                                           const Lanes<W>& once);
@@ -186,31 +175,31 @@ extern template Lanes<16> colebrook_root_far<16>(const Lanes<16>&,
 
 /// The root from an older one of the same pipe, for a march in time: one logarithm where the flow has changed little
 /// (up to some tens per cent), two or three in the other lanes. Anything may stand in `older`, also not a number.
-/// @param rough_share e/(3.7 2.51), 0 for the smooth law: `rough` by Re; e up to 0.3
-/// @param reynolds >= 100 @param shift colebrook_shift, or prandtl_shift for the smooth law
+/// @param rough as above, e up to 0.3 @param reynolds >= 100 @param shift colebrook_shift, or prandtl_shift for the
+/// smooth law
 /// @param idle lanes whose result nobody reads: they never force more work
 /// Error of x under 5e-13 relative (factor: 1e-12) for x >= 2, f <= 0.25. The same bits for every W.
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough_share,
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
                                                          const Lanes<W>& reynolds,
                                                          const Lanes<W>& shift,
                                                          const Lanes<W>& older,
                                                          const base::Mask<W>& idle) {
-  const Corrected<W> c = detail::corrected_once<W>(rough_share, reynolds, shift, older);
+  const Corrected<W> c = detail::corrected_once<W>(rough, reynolds, shift, older);
   if (all(c.enough | idle)) [[likely]]
     return c.x;
-  return select(c.enough, c.x, colebrook_root_far<W>(rough_share, reynolds, shift, c.x));
+  return select(c.enough, c.x, colebrook_root_far<W>(rough, reynolds, shift, c.x));
 }
 
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough_share,
+[[nodiscard]] HEADBAND_INLINE Lanes<W> colebrook_correct(const Lanes<W>& rough,
                                                          const Lanes<W>& reynolds,
                                                          const Lanes<W>& shift,
                                                          const Lanes<W>& older) {
-  const Corrected<W> c = detail::corrected_once<W>(rough_share, reynolds, shift, older);
+  const Corrected<W> c = detail::corrected_once<W>(rough, reynolds, shift, older);
   if (all(c.enough)) [[likely]]
     return c.x;
-  return select(c.enough, c.x, colebrook_root_far<W>(rough_share, reynolds, shift, c.x));
+  return select(c.enough, c.x, colebrook_root_far<W>(rough, reynolds, shift, c.x));
 }
 
 /// Slope d ln f / d ln Re [-] at the root.

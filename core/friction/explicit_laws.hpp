@@ -23,12 +23,10 @@ struct Turbulent {
 };
 
 /// Factor and slope at a root of Colebrook-White or the smooth law, by one quotient for both.
-/// @param rough_share as in colebrook.hpp
+/// @param rough as in colebrook.hpp
 template <int W>
-[[nodiscard]] HEADBAND_INLINE Turbulent<W> colebrook_side(const Lanes<W>& rough_share,
-                                                          const Lanes<W>& reynolds,
-                                                          const Lanes<W>& x) {
-  const Lanes<W> square = x * x, sum = fused(rough_share, reynolds, Lanes<W>(two_over_ln_10)) + x;
+[[nodiscard]] HEADBAND_INLINE Turbulent<W> colebrook_side(const Lanes<W>& rough, const Lanes<W>& x) {
+  const Lanes<W> square = x * x, sum = (rough + two_over_ln_10) + x;
   const Lanes<W> both = 1.0 / (square * sum);
   return {x, sum * both, -two_over_ln_10 * (square * both)};
 }

@@ -32,18 +32,17 @@ struct OlderRoot {
 };
 
 template <int W>
-HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
-                               const Lanes<W>& reynolds,
-                               const Lanes<W>& inverse,
-                               const NoRoot&) {
-  return colebrook_root<W>(rule.rough_by_reynolds * reynolds, rule.root_constant * inverse);
+HEADBAND_INLINE Lanes<W> solve(
+    const PreparedRule<W>& rule, const Lanes<W>& rough, const Lanes<W>&, const Lanes<W>& inverse, const NoRoot&) {
+  return colebrook_root<W>(rough, rule.root_constant * inverse);
 }
 template <int W>
 HEADBAND_INLINE Lanes<W> solve(const PreparedRule<W>& rule,
+                               const Lanes<W>& rough,
                                const Lanes<W>& reynolds,
                                const Lanes<W>&,
                                const OlderRoot<W>& older) {
-  const Lanes<W> x = colebrook_correct<W>(rule.rough_by_reynolds, reynolds, rule.root_shift, older.root, older.idle);
+  const Lanes<W> x = colebrook_correct<W>(rough, reynolds, rule.root_shift, older.root, older.idle);
   older.root = select(older.idle, older.root, x);
   return x;
 }
@@ -60,8 +59,10 @@ HEADBAND_INLINE Turbulent<W> side_of(
     const PreparedRule<W>& rule, FrictionLaw law, const Lanes<W>& reynolds, const Lanes<W>& inverse, const Kept& kept) {
   switch (law) {
     case FrictionLaw::colebrook_white:
-    case FrictionLaw::smooth:
-      return colebrook_side<W>(rule.rough_by_reynolds, reynolds, solve<W>(rule, reynolds, inverse, kept));
+    case FrictionLaw::smooth: {
+      const Lanes<W> rough = rule.rough_by_reynolds * reynolds;
+      return colebrook_side<W>(rough, solve<W>(rule, rough, reynolds, inverse, kept));
+    }
     case FrictionLaw::haaland:
       return haaland<W>(rule.rough_term, reynolds);
     case FrictionLaw::swamee_jain:

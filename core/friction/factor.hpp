@@ -102,9 +102,9 @@ template <int W, int V>
                                                           const Lanes<W>& reynolds,
                                                           Lanes<W>& root) {
   if (rule.law == FrictionLaw::haaland) return haaland<W>(base::for_rows<W>(rule.rough_term), reynolds);
-  const Lanes<W> share = base::for_rows<W>(rule.rough_by_reynolds);
-  root = colebrook_correct<W>(share, reynolds, base::for_rows<W>(rule.root_shift), root);
-  return colebrook_side<W>(share, reynolds, root);
+  const Lanes<W> rough = base::for_rows<W>(rule.rough_by_reynolds) * reynolds;
+  root = colebrook_correct<W>(rough, reynolds, base::for_rows<W>(rule.root_shift), root);
+  return colebrook_side<W>(rough, root);
 }
 
 extern template PreparedRule<1> prepare<1>(const FactorRule<1>&);

@@ -45,7 +45,7 @@ struct Before {
 template <int V>
 struct Block {
   std::array<base::LogBegun<8>, most> log;
-  std::array<Lanes<8>, most> root, back_head;
+  std::array<Lanes<8>, most> root, rough, factor, half_slope, back_head;
   std::array<Lanes<8>, most> new_head, new_flow;        ///< till it is known whether a row is below its limit
   std::array<Lanes<8>, most + front<V>> on_head, damp;  ///< those of the rows before in front
 
@@ -70,36 +70,42 @@ template <int V>
 /// What leaves the eights of a block, piece by piece.
 template <bool root_law, int V>
 HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, Block<V>& b) {
-  const Lanes<8> share = r.rule.rough_by_reynolds, from = r.rule.all_turbulent_from;
+  const Lanes<8> from = r.rule.all_turbulent_from;
   unsigned rare = 0;  // a bit for each eight that the pieces do not give
   for (int k = 0; k < was.eights; ++k) {
     const auto at = static_cast<std::size_t>(k);
     const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
     rare |= static_cast<unsigned>(!all(reynolds >= from)) << at;
     if constexpr (root_law) {
-      b.log[at] = friction::begin_correction<8>(share, reynolds, load(was.root, k)).log;
+      const Lanes<8> rough = r.rule.rough_by_reynolds * reynolds;
+      const auto begun = friction::begin_correction<8>(rough, reynolds, load(was.root, k));
+      b.rough[at] = rough;
+      b.root[at] = begun.x;
+      b.log[at] = begun.log;
     } else {
       b.log[at] = friction::begin_haaland<8>(r.rule.rough_term, reynolds);
     }
   }
   for (int k = 0; k < was.eights; ++k) {
-    base::LogBegun<8>& log = b.log[static_cast<std::size_t>(k)];
+    const auto at = static_cast<std::size_t>(k);
     if constexpr (root_law) {
-      const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
-      const auto begun = friction::correction_with_log<8>(share, reynolds, load(was.root, k), log);
-      log.s = friction::first_of_correction<8>(begun, r.rule.root_shift);
+      b.log[at].s = friction::first_of_correction<8>({b.root[at], b.log[at]}, r.rule.root_shift);
     } else {
-      log.s = base::finish_log(log);
+      b.log[at].s = base::finish_log(b.log[at]);
     }
   }
   if constexpr (root_law) {
     for (int k = 0; k < was.eights; ++k) {
       const auto at = static_cast<std::size_t>(k);
-      const Lanes<8> reynolds = abs(load(was.flow, k)) * r.reynolds;
-      const auto begun = friction::correction_with_log<8>(share, reynolds, load(was.root, k), b.log[at]);
-      const auto corrected = friction::finish_correction<8>(begun.x, begun.p, b.log[at].inverse, b.log[at].s);
+      const auto corrected = friction::finish_correction<8>(b.rough[at], b.root[at], b.log[at].inverse, b.log[at].s);
       b.root[at] = corrected.x;
       rare |= static_cast<unsigned>(!all(corrected.enough)) << at;
+    }
+    for (int k = 0; k < was.eights; ++k) {
+      const auto at = static_cast<std::size_t>(k);
+      const auto side = friction::colebrook_side<8>(b.rough[at], b.root[at]);
+      b.factor[at] = side.factor;
+      b.half_slope[at] = side.half_slope;
     }
   }
   for (int k = 0; k < was.eights; ++k) {
@@ -107,7 +113,8 @@ HEADBAND_INLINE void leave_block(const Resistance<8>& r, const Before<V>& was, B
     const Lanes<8> size = abs(load(was.flow, k));
     friction::Turbulent<8> side;
     if constexpr (root_law) {
-      side = friction::colebrook_side<8>(share, size * r.reynolds, b.root[at]);
+      side.factor = b.factor[at];
+      side.half_slope = b.half_slope[at];
     } else {
       side = friction::finish_haaland<8>(b.log[at].s, b.log[at].inverse);
     }

@@ -127,7 +127,8 @@ TEST(colebrook, one_correction_follows_a_changing_flow) {
       // a swing with reversals of the trend, through low flow, and one jump
       re = 4e5 * std::abs(std::cos(0.01 * step)) + 150.0;
       if (step == 2000) re = 1e8;
-      x = friction::colebrook_correct<1>(e * friction::colebrook_rough, Lanes<1>(re), friction::colebrook_shift, x);
+      x = friction::colebrook_correct<1>(
+          e * friction::colebrook_rough * re, Lanes<1>(re), friction::colebrook_shift, x);
       const double f = 1.0 / (x.number * x.number);
       worst = std::max(worst, relative(f, friction::colebrook_factor(e, re)));
     }
@@ -140,7 +141,7 @@ TEST(colebrook, any_older_root_is_safe) {
        {-1.0, 0.0, 1e-300, 1e300, std::numeric_limits<double>::quiet_NaN(), std::numeric_limits<double>::infinity()}) {
     const double re = 1e5, e = 1e-4;
     const double x = friction::colebrook_correct<1>(
-                         e * friction::colebrook_rough, Lanes<1>(re), friction::colebrook_shift, Lanes<1>(older))
+                         e * friction::colebrook_rough * re, Lanes<1>(re), friction::colebrook_shift, Lanes<1>(older))
                          .number;
     EXPECT_LT(relative(1.0 / (x * x), friction::colebrook_factor(e, re)), 1e-12) << older;
   }
@@ -150,7 +151,7 @@ TEST(colebrook, a_correction_gives_the_same_bits_alone_and_among_eight) {
   Lanes<8> rough, reynolds, older;
   for (int i = 0; i < 8; ++i) {
     const double re = 3e3 * std::pow(7.0, i);
-    rough.set(i, 1e-4 * friction::colebrook_rough);
+    rough.set(i, 1e-4 * friction::colebrook_rough * re);
     reynolds.set(i, re);
     // half of the lanes near their root, half far away
     older.set(i, i % 2 == 0 ? 1.001 / std::sqrt(friction::colebrook_factor(1e-4, re)) : 3.0);
