@@ -320,8 +320,9 @@ std::array<Factor<8>, 2> darcy_factor_of_two(const PreparedRule<8>& first,
   const Lanes<16> inverse = 1.0 / both(first_reynolds, second_reynolds);
   const Lanes<16> x = colebrook_root<16>(rough, both(first.root_constant, second.root_constant) * inverse);
   const Turbulent<16> side = colebrook_side<16>(rough, x);
-  return {Factor<8>{first.scatter * base::first_eight(side.factor), base::first_eight(side.slope)},
-          Factor<8>{second.scatter * base::last_eight(side.factor), base::last_eight(side.slope)}};
+  const Lanes<16> slope = 2.0 * side.half_slope;
+  return {Factor<8>{first.scatter * base::first_eight(side.factor), base::first_eight(slope)},
+          Factor<8>{second.scatter * base::last_eight(side.factor), base::last_eight(slope)}};
 }
 
 template <int W>
