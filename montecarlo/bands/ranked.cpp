@@ -14,7 +14,6 @@ namespace {
 constexpr std::size_t worth_binning = 2048;  ///< fewer numbers are sorted at once
 constexpr std::size_t numbers_a_bin = 128;
 constexpr std::size_t most_bins = 4096;  ///< their counts fill half the first-level cache
-constexpr std::size_t few_bins = 32;  ///< so many are looked for one by one in less time than each number is sorted out
 
 /// Which bin each of some numbers falls into: worked out for many at a time, which takes a quarter of the time.
 class BinNumbers {
@@ -37,33 +36,6 @@ class BinNumbers {
   double low_, scale_;
   std::int32_t last_;
   std::array<std::int32_t, at_once> bin_{};
-};
-
-/// Which of some numbers fall into one of a few bins.
-class Finder {
- public:
-  explicit Finder(const std::vector<std::size_t>& bins) {
-    for (const std::size_t b : bins) bins_.push_back(static_cast<std::int32_t>(b));
-  }
-
-  /// Calls `found(i)` for each of the first `count` bin numbers that is wanted.
-  template <class Found>
-  void search(const std::array<std::int32_t, BinNumbers::at_once>& bin, std::size_t count, const Found& found) {
-    hit_.fill(0);
-    for (const std::int32_t wanted : bins_)
-      for (std::size_t i = 0; i < bin.size(); ++i) hit_[i] |= bin[i] == wanted ? 1 : 0;
-    for (std::size_t from = 0; from < count; from += 8) {
-      int any = 0;
-      for (std::size_t i = 0; i < 8; ++i) any |= hit_[from + i];
-      if (any == 0) continue;  // most of the time: the bins are few
-      for (std::size_t i = from; i < std::min(from + 8, count); ++i)
-        if (hit_[i] != 0) found(i);
-    }
-  }
-
- private:
-  std::vector<std::int32_t> bins_;
-  std::array<std::int32_t, BinNumbers::at_once> hit_{};
 };
 
 Extent extent_of(std::span<const double> numbers) {
@@ -137,11 +109,24 @@ void Ranked::gather(const std::vector<std::size_t>& bins) const {
   wanted.erase(std::unique(wanted.begin(), wanted.end()), wanted.end());
   std::erase_if(wanted, [this](std::size_t b) { return gathered_[b].done(); });
   if (wanted.empty()) return;
-  for (const std::size_t b : wanted) gathered_[b].sorted.reserve(first_[b + 1] - first_[b]);
-  if (wanted.size() <= few_bins) {
-    pick(wanted);
-  } else {
-    sort_out(wanted);
+  std::vector<std::uint8_t> is_wanted(gathered_.size(), 0);
+  for (const std::size_t b : wanted) {
+    is_wanted[b] = 1;
+    gathered_[b].sorted.reserve(first_[b + 1] - first_[b]);
+  }
+  BinNumbers numbers(low_, scale_, gathered_.size());
+  for (std::size_t from = 0; from < numbers_.size(); from += BinNumbers::at_once) {
+    const std::size_t many = std::min(BinNumbers::at_once, numbers_.size() - from);
+    const auto& bin = numbers.of(&numbers_[from], many);
+    for (std::size_t i = 0; i < many; i += 8) {  // most of the time none of eight is wanted
+      unsigned any = 0;
+      for (std::size_t k = i; k < i + 8; ++k) any |= is_wanted[static_cast<std::size_t>(bin[k])];
+      if (any == 0) continue;
+      for (std::size_t k = i; k < std::min(i + 8, many); ++k) {
+        const auto b = static_cast<std::size_t>(bin[k]);
+        if (is_wanted[b] != 0) gathered_[b].sorted.push_back(numbers_[from + k]);
+      }
+    }
   }
   for (const std::size_t b : wanted) {
     auto& numbers_here = gathered_[b].sorted;
@@ -151,42 +136,6 @@ void Ranked::gather(const std::vector<std::size_t>& bins) const {
       std::sort(numbers_here.begin(), numbers_here.end());
     }
   }
-}
-
-void Ranked::pick(const std::vector<std::size_t>& wanted) const {
-  BinNumbers numbers(low_, scale_, gathered_.size());
-  Finder finder(wanted);
-  for (std::size_t from = 0; from < numbers_.size(); from += BinNumbers::at_once) {
-    const std::size_t many = std::min(BinNumbers::at_once, numbers_.size() - from);
-    const auto& bin = numbers.of(&numbers_[from], many);
-    finder.search(bin, many, [&](std::size_t i) {
-      gathered_[static_cast<std::size_t>(bin[i])].sorted.push_back(numbers_[from + i]);
-    });
-  }
-}
-
-void Ranked::sort_out(const std::vector<std::size_t>& wanted) const {
-  std::vector<std::uint8_t> is_wanted(gathered_.size(), 0);
-  std::size_t room = 1;  // one more than there are: every number is written before it is known to be wanted
-  for (const std::size_t b : wanted) {
-    is_wanted[b] = 1;
-    room += first_[b + 1] - first_[b];
-  }
-  std::vector<double> found(room);
-  std::vector<std::uint16_t> whose(room);
-  std::size_t count = 0;
-  BinNumbers numbers(low_, scale_, gathered_.size());
-  for (std::size_t from = 0; from < numbers_.size(); from += BinNumbers::at_once) {
-    const std::size_t many = std::min(BinNumbers::at_once, numbers_.size() - from);
-    const auto& bin = numbers.of(&numbers_[from], many);
-    for (std::size_t i = 0; i < many; ++i) {
-      const auto b = static_cast<std::size_t>(bin[i]);
-      found[count] = numbers_[from + i];
-      whose[count] = static_cast<std::uint16_t>(b);
-      count += is_wanted[b];
-    }
-  }
-  for (std::size_t i = 0; i < count; ++i) gathered_[whose[i]].sorted.push_back(found[i]);
 }
 
 void Ranked::announce(std::span<const double> places) const {

@@ -60,9 +60,6 @@ class Ranked {
   void sort_all();
   [[nodiscard]] std::size_t bin_of_rank(std::size_t rank) const;
   void gather(const std::vector<std::size_t>& bins) const;
-  /// The numbers of the wanted bins: a few looked for, or every number sorted out.
-  void pick(const std::vector<std::size_t>& wanted) const;
-  void sort_out(const std::vector<std::size_t>& wanted) const;
 
   /// The numbers of one bin: sorted, or where they are most of all, binned in their turn.
   struct Gathered {

@@ -28,7 +28,7 @@ TEST(Ranked, EveryRankIsThatOfASort) {
   }
 }
 
-/// A few places are looked for one by one, many are sorted out: asked together, alone, or again, they are the same.
+/// One place, a few and many: asked together, alone, or again, they are the same.
 TEST(Ranked, FewPlacesAndManyAreThoseOfASort) {
   std::mt19937_64 bits(4);
   std::normal_distribution<double> normal;
