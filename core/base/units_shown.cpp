@@ -55,7 +55,7 @@ DisplayUnit display_unit(Dimension dimension, UnitFamily family, double magnitud
       return of(size < foot * foot ? "in2" : "ft2");
     case Dimension::volume:
       if (si) return of(size < 0.1 ? "L" : "m3");
-      return {"gal", us_gallon, 1.0, 0.0};
+      return {"US gal", us_gallon, 1.0, 0.0};
     case Dimension::time:
       return of("s");
     case Dimension::velocity:

@@ -49,6 +49,19 @@ class Echoes {
     list_.push_back({place, std::move(e)});
   }
 
+  /// Rotor inertia in all three forms, whichever was written: they differ by a factor four or by the unit.
+  void tell_inertia(const Quantity& q) {
+    for (Placed& p : list_) {
+      if (p.echo.path != q.path) continue;
+      const auto in = [](double value, base::UnitFamily family) {
+        return base::shown(value, base::Dimension::inertia, family);
+      };
+      p.echo.shown_si =
+          fmt::format("GD2 {} = mr2 {}", in(4.0 * q.value, base::UnitFamily::si), in(q.value, base::UnitFamily::si));
+      p.echo.shown_us = "WR2 " + p.echo.shown_us;
+    }
+  }
+
   std::vector<ValueEcho> take() {
     std::sort(list_.begin(), list_.end(), [](const Placed& a, const Placed& b) {
       return std::tie(a.place, a.echo.path) < std::tie(b.place, b.echo.path);
@@ -94,6 +107,8 @@ std::vector<ValueEcho> echo(const Case& c) {
       echoes.add(time);
       echoes.add(level);
     }
+  for (const Pump& p : c.pumps)
+    if (p.inertia.given()) echoes.tell_inertia(p.inertia);
   for (const Pump& p : c.pumps)
     if (p.check_valve.guess)
       echoes.add_choice(p.place, "pump/" + p.name + "/check_valve", p.name + " check_valve", "ideal", true);

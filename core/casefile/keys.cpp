@@ -191,7 +191,7 @@ constexpr std::array rules{
     positive("air_valve", "discharge_coefficient", Dimension::number, "0.6"),
     any("draw_off", "flow", Dimension::flow, "1500 gpm"),
     // events
-    any("event", "at", Dimension::time, "0 s"),
+    not_negative("event", "at", Dimension::time, "0 s"),
     between("event", "to opening", Dimension::share, 0.0, 1.0, "0 %"),
     any("event", "to flow", Dimension::flow, "0 L/s"),
     any("event", "to level", Dimension::length, "98 m"),

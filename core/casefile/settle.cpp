@@ -1,6 +1,8 @@
 // SPDX-License-Identifier: MIT
 #include "core/casefile/parts.hpp"
 
+#include "core/base/units.hpp"
+
 #include <fmt/format.h>
 
 #include <algorithm>
@@ -116,6 +118,89 @@ void guess_elevations(Context& context, const Case& c) {
       context.guesses.push_back(fmt::format("place {}: elevation 0 m, nobody stated it", name));
 }
 
+/// When a movement has ended [s]; that of a sudden one is its start. NaN where it is not known.
+double end_of(const Event& e) {
+  double end = e.at.value;
+  if (e.kind == EventKind::swing_valve || e.kind == EventKind::trip_pump || e.instant) return end;
+  if (!e.travel.rows.empty() && !e.travel_in_shares) return end + e.travel.rows.back().first.value;
+  return end + e.over.value;
+}
+
+// Events of which the run sees nothing, or not all.
+void warn_of_late_events(Context& context, const Case& c) {
+  if (!c.surge.duration.given()) return;
+  const double duration = c.surge.duration.value;
+  for (const Event& e : c.events) {
+    if (!e.at.given()) continue;
+    const std::string& name = e.name.empty() ? e.subject : e.name;
+    if (e.at.value >= duration)
+      context.warnings.push_back(fmt::format("event '{}' comes at {}, but the run ends at {}: it does nothing here",
+                                             name,
+                                             base::shown(e.at.value, base::Dimension::time, c.show.units),
+                                             base::shown(duration, base::Dimension::time, c.show.units)));
+    else if (end_of(e) > duration)
+      context.warnings.push_back(
+          fmt::format("event '{}' ends at {}, but the run ends at {}: the extremes are those of a part of it",
+                      name,
+                      base::shown(end_of(e), base::Dimension::time, c.show.units),
+                      base::shown(duration, base::Dimension::time, c.show.units)));
+  }
+}
+
+// A valve asked to go where it stands already does not move: perhaps its `opening` was forgotten.
+void warn_of_standing_valves(Context& context, const Case& c) {
+  for (const Valve& v : c.valves) {
+    const Event* first = nullptr;
+    for (const Event& e : c.events)
+      if (e.subject == v.name && e.kind == EventKind::move_valve && e.at.given() &&
+          (first == nullptr || e.at.value < first->at.value))
+        first = &e;
+    if (first == nullptr || !first->travel.rows.empty() || !first->to.given()) continue;
+    const double stands = v.opening.given() ? v.opening.value : 1.0;
+    if (first->to.value == stands)
+      context.warnings.push_back(fmt::format("event '{}' moves valve '{}' to {}, where it stands already",
+                                             first->name.empty() ? first->subject : first->name,
+                                             v.name,
+                                             first->to.written));
+  }
+}
+
+// Sizes that no pipeline has: a unit is wrong more often than not.
+void warn_of_sizes(Context& context, const Case& c) {
+  constexpr double least_bore = 2e-3, most_bore = 15.0, least_speed = 20.0, most_speed = 1600.0;
+  const auto ask = [&](const Pipe& p, const Quantity& q, const char* what, double least, double most) {
+    if (q.given() && !(q.value >= least && q.value <= most))
+      context.warnings.push_back(fmt::format("pipe '{}': {} {}, read as {}: is the unit right?",
+                                             p.name,
+                                             what,
+                                             q.written,
+                                             base::shown(q.value, q.dimension, c.show.units)));
+  };
+  for (const Pipe& p : c.pipes) {
+    ask(p, p.bore, "bore", least_bore, most_bore);
+    ask(p, p.outside, "outside", least_bore, most_bore);
+    ask(p, p.wave_speed, "wave speed", least_speed, most_speed);
+  }
+}
+
+// Elevations below the datum all along a pipe whose basins stand above it: perhaps depths under the ground.
+void warn_of_depths(Context& context, const Case& c) {
+  const bool above = !c.basins.empty() && std::all_of(c.basins.begin(), c.basins.end(), [](const Basin& b) {
+    return b.level.given() && b.level.value > 0.0;
+  });
+  if (!above) return;
+  for (const Pipe& p : c.pipes) {
+    const bool below = !p.profile.empty() && std::all_of(p.profile.begin(), p.profile.end(), [](const auto& point) {
+      return point.second.value < 0.0;
+    });
+    if (below)
+      context.warnings.push_back(
+          fmt::format("pipe '{}' lies below the datum all along and every basin above it: elevations and levels count "
+                      "from one datum, are these depths under the ground?",
+                      p.name));
+  }
+}
+
 }  // namespace
 
 void settle(Context& context, Case& c) {
@@ -123,6 +208,10 @@ void settle(Context& context, Case& c) {
   settle_spots(c);
   count_guesses(context, c);
   guess_elevations(context, c);
+  warn_of_late_events(context, c);
+  warn_of_standing_valves(context, c);
+  warn_of_sizes(context, c);
+  warn_of_depths(context, c);
   c.guesses = context.guesses;
   c.warnings = context.warnings;
 }

@@ -57,7 +57,7 @@ Measure measure(Shown shown, Family family, double largest) {
     case Shown::time:
       return in("s", "s");
     case Shown::volume:
-      if (us) return in("US gal", "gal");
+      if (us) return in("US gal", "US gal");
       return most < 0.1 ? in("L", "L") : in("m3", "m³");
     case Shown::density:
       return us ? in("lb/ft3", "lb/ft³") : in("kg/m3", "kg/m³");

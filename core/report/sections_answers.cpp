@@ -21,13 +21,13 @@ std::string place_of(const answers::Extreme& extreme) {
 }
 
 /// What has to be said of a pressure at this time in a run with vapour cavities.
-std::string cavity_remark(const std::vector<answers::CavityAnswer>& cavities, double time) {
-  if (cavities.empty()) return {};
-  double opens = cavities.front().opens;
+std::string cavity_remark(const Study& study, double time) {
+  const auto* first = show::first_cavity(study);
+  if (first == nullptr) return {};
+  const double opens = first->opens;
   double closes = -1.0;
   bool still_open = false;
-  for (const auto& cavity : cavities) {
-    opens = std::min(opens, cavity.opens);
+  for (const auto& cavity : show::reported_cavities(study)) {
     if (std::isnan(cavity.closes))
       still_open = true;
     else
@@ -62,7 +62,6 @@ std::string hand_check(const Study& study, const answers::Extreme& extreme) {
 }
 
 std::string extremes(const Study& study) {
-  const auto cavities = show::reported_cavities(study);
   Table table{"Highest and lowest pressure of the run",
               {{"Extreme"},
                {"pressure ± grid bound", true},
@@ -75,7 +74,7 @@ std::string extremes(const Study& study) {
   for (const auto& [name, extreme] : {std::pair{"Highest", &study.highest}, std::pair{"Lowest", &study.lowest}}) {
     if (!*extreme) continue;
     const auto& e = **extreme;
-    std::string remark = cavity_remark(cavities, e.time);
+    std::string remark = cavity_remark(study, e.time);
     if (!e.grid_converging)
       remark += (remark.empty() ? "" : "; ") + std::string("<strong>grids not converging</strong>");
     if (std::isnan(e.grid_bound)) remark += (remark.empty() ? "" : "; ") + std::string("no grid bound");

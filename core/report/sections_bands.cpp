@@ -48,12 +48,16 @@ std::string sensitivity(const answers::BandAnswer& answer) {
   Table table{fmt::format("Which unknowns move {}: shares of its variance", answer.name),
               {{"Unknown"}, {"alone", true}, {"with others", true}, {"alone (dark), with others (light)"}},
               {}};
+  if (show::stands_still(answer))
+    return paragraph(
+        fmt::format("{} is the same in every draw: no unknown has a share of its variance.", escaped(answer.name)));
+  const auto share = [](double value) {
+    return value < show::least_share ? std::string("under 0.0001") : figures(value, 2);
+  };
   const auto ranked = show::ranked_unknowns(answer);
   for (const auto& s : ranked)
-    table.rows.push_back({escaped(s.input),
-                          figures(s.first, 2),
-                          figures(s.total, 2),
-                          bar_cell(std::max(s.first, s.total), s.first, 1.0)});
+    table.rows.push_back(
+        {escaped(s.input), share(s.first), share(s.total), bar_cell(std::max(s.first, s.total), s.first, 1.0)});
   return html(table);
 }
 

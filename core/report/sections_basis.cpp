@@ -30,7 +30,12 @@ std::string events(const Study& study) {
   for (const auto& event : told) {
     std::string kind = event.kind;
     std::replace(kind.begin(), kind.end(), '_', ' ');
-    table.rows.push_back({both(event.time, Shown::time), escaped(event.subject), escaped(kind), escaped(event.what)});
+    std::string subject = escaped(event.subject), what = escaped(event.what);
+    if (const auto* cavity = show::cavity_of(study, event)) {
+      subject = escaped(cavity->pipe) + " at " + both(cavity->chainage, Shown::chainage);
+      if (kind == "cavity closes") what = "largest volume " + both(cavity->max_volume, Shown::volume, 3);
+    }
+    table.rows.push_back({both(event.time, Shown::time), subject, escaped(kind), what});
   }
   return folded(table, 60);
 }

@@ -44,7 +44,7 @@ KeyWords words_of_key(const std::string& key) {
       return {words_of_kind(key.substr(0, key.size() - ending.text.size())), ending.dimension};
     }
   }
-  return {words_of_kind(key), Dimension::number};
+  return {words_of_kind(key), key == "opening" ? Dimension::share : Dimension::number};
 }
 
 std::string percent(double share) {

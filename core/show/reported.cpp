@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstddef>
+#include <cstdlib>
 #include <map>
 #include <numbers>
 #include <numeric>
@@ -22,6 +23,11 @@ double section_volume(const answers::Study& study, const std::string& name) {
     return 0.25 * std::numbers::pi * pipe.bore * pipe.bore * pipe.length / reaches;
   }
   return answers::missing;
+}
+
+/// Not "volume > share": an unknown section volume (NaN) must not hide a cavity.
+bool worth_telling(const answers::Study& study, const answers::CavityAnswer& cavity) {
+  return !(cavity.max_volume <= reported_cavity_share * section_volume(study, cavity.pipe));
 }
 
 }  // namespace
@@ -48,11 +54,8 @@ std::string file_name_of(const std::string& path) {
 std::vector<answers::CavityAnswer> reported_cavities(const answers::Study& study) {
   std::vector<answers::CavityAnswer> told;
   if (!study.transient) return told;
-  for (const auto& cavity : study.transient->cavities) {
-    // Not "volume > share": an unknown section volume (NaN) must not hide a cavity.
-    const bool small = cavity.max_volume <= reported_cavity_share * section_volume(study, cavity.pipe);
-    if (!small) told.push_back(cavity);
-  }
+  for (const auto& cavity : study.transient->cavities)
+    if (worth_telling(study, cavity)) told.push_back(cavity);
   if (told.size() <= reported_cavities_at_most) return told;
   std::vector<std::size_t> order(told.size());
   std::iota(order.begin(), order.end(), std::size_t{0});
@@ -83,6 +86,34 @@ std::vector<answers::EventAnswer> told_events(const answers::Study& study) {
     if (!hidden) told.push_back(event);
   }
   return told;
+}
+
+const answers::CavityAnswer* cavity_of(const answers::Study& study, const answers::EventAnswer& event) {
+  const bool opens = event.kind == "cavity_opens";
+  if (!study.transient || (!opens && event.kind != "cavity_closes")) return nullptr;
+  const std::size_t cut = event.subject.rfind(" @ ");
+  if (cut == std::string::npos) return nullptr;
+  const std::string pipe = event.subject.substr(0, cut);
+  const double chainage = std::strtod(event.subject.c_str() + cut + 3, nullptr);
+  const answers::CavityAnswer* nearest = nullptr;
+  for (const auto& c : study.transient->cavities) {
+    if (c.pipe != pipe || (opens ? c.opens : c.closes) != event.time) continue;
+    if (nearest == nullptr || std::abs(c.chainage - chainage) < std::abs(nearest->chainage - chainage)) nearest = &c;
+  }
+  return nearest;
+}
+
+const answers::CavityAnswer* first_cavity(const answers::Study& study) {
+  const answers::CavityAnswer* first = nullptr;
+  if (!study.transient) return first;
+  for (const auto& c : study.transient->cavities)
+    if (worth_telling(study, c) && (first == nullptr || c.opens < first->opens)) first = &c;
+  return first;
+}
+
+bool stands_still(const answers::BandAnswer& answer) {
+  constexpr double rounding = 1e-9;  // of the value
+  return answer.standard_deviation <= rounding * std::abs(answer.mean);
 }
 
 std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer) {

@@ -28,7 +28,21 @@ inline constexpr std::size_t reported_cavities_at_most = 200;
 /// closes. JSON and result file hold them all.
 [[nodiscard]] std::vector<answers::EventAnswer> told_events(const answers::Study& study);
 
+/// The cavity whose opening or closing an event tells of; null for other events. The event's own words are SI.
+[[nodiscard]] const answers::CavityAnswer* cavity_of(const answers::Study& study, const answers::EventAnswer& event);
+
+/// When the first cavity worth telling formed, and where; null where none did. Not among the largest alone: what comes
+/// before it is free of vapour.
+[[nodiscard]] const answers::CavityAnswer* first_cavity(const answers::Study& study);
+
 /// Shares of an answer's variance, those that move it most first (with others, then by name); without a number last.
 [[nodiscard]] std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer);
+
+/// Whether an answer is the same in every draw but for rounding (a pressure held at that of vapour): shares of such a
+/// variance mean nothing.
+[[nodiscard]] bool stands_still(const answers::BandAnswer& answer);
+
+/// A share of the variance under this is told as "under 0.01 %" [-].
+inline constexpr double least_share = 1e-4;
 
 }  // namespace headband::show

@@ -256,13 +256,12 @@ void extremes(Frame& f) {
   f.out += table.text(2);
   const std::string remark = vapour_remark(f.study);
   if (!remark.empty()) f.line("Pressures: " + remark + ".");
-  const auto strongest = std::max_element(f.study.pipes.begin(), f.study.pipes.end(), [](const auto& a, const auto& b) {
-    return std::abs(a.joukowsky_head) < std::abs(b.joukowsky_head);
-  });
-  if (strongest != f.study.pipes.end() && !std::isnan(strongest->joukowsky_head)) {
+  // of the pipe of the highest pressure, as on the page: a short narrow spool elsewhere says nothing of it
+  const auto its_pipe = std::ranges::find(f.study.pipes, f.study.highest->pipe, &answers::PipeAnswer::name);
+  if (its_pipe != f.study.pipes.end() && its_pipe->joukowsky_head > 0.0) {
     f.line(fmt::format("Hand check, wave speed x velocity / gravity: {} in {}.",
-                       f.amounts.of(std::abs(strongest->joukowsky_head), Dimension::length, 3),
-                       strongest->name));
+                       f.amounts.of(its_pipe->joukowsky_head, Dimension::length, 3),
+                       its_pipe->name));
   }
   if (grid) {
     std::string text = fmt::format("Grid: step {}, {} marched",
@@ -311,7 +310,8 @@ void events(Frame& f) {
   table.left(1);
   table.left(2);
   for (std::size_t i = 0; i < std::min(most_rows, all.size()); ++i) {
-    table.add({f.amounts.of(all[i].time, Dimension::time), all[i].subject, all[i].what});
+    const auto [subject, what] = event_words(f.study, all[i], f.amounts);
+    table.add({f.amounts.of(all[i].time, Dimension::time), subject, what});
   }
   f.out += table.text(2);
   f.more(all.size());
@@ -323,8 +323,8 @@ void events(Frame& f) {
 /// Chance of not keeping a limit, with its bounds.
 std::string chance_of(const answers::LimitAnswer& l) {
   if (l.probability_range) {
-    std::string chance =
-        fmt::format("{} .. {}", percent((*l.probability_range)[0]), percent((*l.probability_range)[1]));
+    const std::string least = percent((*l.probability_range)[0]), most = percent((*l.probability_range)[1]);
+    std::string chance = least == most ? least : least + " .. " + most;
     if (l.probability_upper_range) chance += fmt::format(" (<= {})", percent((*l.probability_upper_range)[1]));
     return chance;
   }
@@ -350,6 +350,10 @@ void limits(Frame& f) {
                std::isnan(l.at_most) ? "-" : percent(l.at_most)});
   }
   f.out += table.text(2);
+  const bool first_state = f.study.transient && std::ranges::any_of(all, [](const answers::LimitAnswer& l) {
+                             return l.kind == "flow" || l.kind == "head" || l.kind == "pressure_drop";
+                           });
+  if (first_state) f.line("Limits of flow, head and pressure drop are judged by the first steady state.");
   for (const auto& l : all) {
     std::string reason = l.reason;
     if (!l.worst_corner.empty()) reason += (reason.empty() ? "worst at " : "; worst at ") + l.worst_corner;
@@ -416,18 +420,21 @@ void bands(Frame& f) {
   for (const auto& a : b.answers) {
     if (a.range) {
       const Dimension d = dimension_of_kind(a.kind);
-      f.item(fmt::format("{}: median {} to {} by a range that is not chance",
-                         a.name,
-                         f.amounts.of((*a.range)[0], d),
-                         f.amounts.of((*a.range)[1], d)));
+      const std::string least = f.amounts.of((*a.range)[0], d), most = f.amounts.of((*a.range)[1], d);
+      f.item(least == most ? fmt::format("{}: no range that is not chance moves its median", a.name)
+                           : fmt::format("{}: median {} to {} by a range that is not chance", a.name, least, most));
     }
     if (a.modes > 1) f.item(fmt::format("{}: the density has {} humps; mean and band hide that", a.name, a.modes));
+    if (stands_still(a)) {
+      f.item(fmt::format("{}: the same in every draw, so no unknown has a share", a.name));
+      continue;
+    }
     const auto stated = [](const answers::SensitivityAnswer& s) { return !std::isnan(s.first); };
     if (std::ranges::none_of(a.sensitivity, stated)) continue;
     std::string ranks;
     for (const auto& s : ranked_unknowns(a))
       ranks += fmt::format(
-          "{}{} ({})", ranks.empty() ? "" : ", ", s.input, s.first < 1e-4 ? "under 0.01 %" : percent(s.first));
+          "{}{} ({})", ranks.empty() ? "" : ", ", s.input, s.first < least_share ? "under 0.01 %" : percent(s.first));
     f.item(fmt::format("{}: share of the variance by {}", a.name, ranks));
   }
 }
@@ -456,7 +463,8 @@ std::string summary(const Study& study, const TerminalOptions& options) {
   limits(f);
   bands(f);
   list(f, "Warnings", study.warnings);
-  list(f, fmt::format("Guesses: {} values nobody stated", study.guesses.size()), study.guesses);
+  const std::size_t guesses = study.guesses.size();
+  list(f, fmt::format("Guesses: {} {} nobody stated", guesses, guesses == 1 ? "value" : "values"), study.guesses);
   list(f, "Cautions", cautions(study));
   return f.plain(f.out);  // once more for the marks of shortened text
 }

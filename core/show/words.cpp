@@ -172,11 +172,13 @@ std::string chance_words(const LimitAnswer& limit) {
   const std::string sure = std::isnan(limit.confidence) ? "" : percent(limit.confidence) + " sure: ";
   if (limit.probability_range) {
     const auto& range = *limit.probability_range;
-    std::string text = fmt::format("{} to {} of the draws", percent(range[0]), percent(range[1]));
+    const std::string least = percent(range[0]), most = percent(range[1]);
+    std::string text = least == most ? least + " of the draws" : fmt::format("{} to {} of the draws", least, most);
     if (limit.probability_upper_range) {
       text += fmt::format(" ({}at most {})", sure, percent((*limit.probability_upper_range)[1]));
     }
-    return text.append(" by a range that is not chance");
+    return text.append(least == most ? " wherever the range that is not chance lies"
+                                     : " by a range that is not chance");
   }
   if (std::isnan(limit.probability)) return {};
   return fmt::format("{} of the draws ({}{} to {})",
@@ -187,12 +189,20 @@ std::string chance_words(const LimitAnswer& limit) {
 }
 
 std::string vapour_remark(const Study& study) {
-  const auto cavities = reported_cavities(study);
-  if (cavities.empty()) return {};
-  const auto first = std::min_element(
-      cavities.begin(), cavities.end(), [](const auto& a, const auto& b) { return a.opens < b.opens; });
+  const auto* first = first_cavity(study);
+  if (first == nullptr) return {};
   return fmt::format(
       "order of size only after {} s, where vapour formed in {}", base::significant(first->opens, 3), first->pipe);
+}
+
+EventWords event_words(const Study& study, const answers::EventAnswer& event, const Amounts& amounts) {
+  const auto* cavity = cavity_of(study, event);
+  if (cavity == nullptr) return {event.subject, event.what};
+  const std::string spot = fmt::format("{} @ {}", cavity->pipe, amounts.of(cavity->chainage, Dimension::length, 5));
+  if (event.kind == "cavity_opens") return {spot, event.what};
+  return {spot,
+          fmt::format("the cavity closes; its largest volume was {}",
+                      amounts.of(cavity->max_volume, Dimension::volume, 3))};
 }
 
 std::string decision(const Study& study, const std::string& units) {

@@ -4,6 +4,7 @@
 // What a study says in sentences, the same on the terminal and on the page.
 
 #include "core/answers/study.hpp"
+#include "core/show/amounts.hpp"
 
 #include <string>
 #include <vector>
@@ -20,6 +21,14 @@ namespace headband::show {
 
 /// "order of size only" with the reason where vapour formed in the run; empty otherwise.
 [[nodiscard]] std::string vapour_remark(const answers::Study& study);
+
+/// Who and what of an event, in the units people are shown; the study itself tells it in SI.
+struct EventWords {
+  std::string subject, what;
+};
+[[nodiscard]] EventWords event_words(const answers::Study& study,
+                                     const answers::EventAnswer& event,
+                                     const Amounts& amounts);
 
 /// The limit that decides the verdict: the worst verdict, among those the likeliest or closest. Null without limits.
 [[nodiscard]] const answers::LimitAnswer* deciding_limit(const answers::Study& study);

@@ -16,10 +16,22 @@ double moved_away(const Bound& bound, double value, double by) { return moved_to
 
 double margin(const Bound& bound, double value) { return bound.not_over ? bound.bound - value : value - bound.bound; }
 
-Verdict verdict_of_run(const Bound& bound, double value, double grid_bound) {
-  if (!std::isfinite(value) || !std::isfinite(grid_bound)) return Verdict::cannot_tell;
-  if (kept(bound, moved_towards(bound, value, grid_bound))) return Verdict::ok;
-  return kept(bound, moved_away(bound, value, grid_bound)) ? Verdict::cannot_tell : Verdict::not_ok;
+namespace {
+
+bool may_be_broken(const Bound& bound, double value, const GridRoom& room) {
+  return !std::isfinite(room.broken) || !kept(bound, moved_towards(bound, value, room.broken));
+}
+
+bool surely_broken(const Bound& bound, double value, const GridRoom& room) {
+  return std::isfinite(room.kept) && !kept(bound, moved_away(bound, value, room.kept));
+}
+
+}  // namespace
+
+Verdict verdict_of_run(const Bound& bound, double value, GridRoom room) {
+  if (!std::isfinite(value)) return Verdict::cannot_tell;
+  if (!may_be_broken(bound, value, room)) return Verdict::ok;
+  return surely_broken(bound, value, room) ? Verdict::not_ok : Verdict::cannot_tell;
 }
 
 Verdict verdict_of_probability(double lower, double upper, double at_most) {
@@ -56,12 +68,11 @@ void count_up(Judged& j, double confidence) {
 Judged judge(const Bound& bound,
              std::span<const double> values,
              std::span<const std::int8_t> status,
-             double grid_bound,
+             GridRoom room,
              double at_most,
              double confidence) {
   Judged j;
   j.draws = static_cast<long long>(values.size());
-  const bool bound_known = std::isfinite(grid_bound);
   for (std::size_t i = 0; i < values.size(); ++i) {
     const double value = values[i];
     if (status[i] != 0 || std::isnan(value)) {
@@ -69,8 +80,8 @@ Judged judge(const Bound& bound,
       continue;
     }
     j.broken += kept(bound, value) ? 0 : 1;
-    j.broken_towards += bound_known && kept(bound, moved_towards(bound, value, grid_bound)) ? 0 : 1;
-    j.broken_away += !bound_known || kept(bound, moved_away(bound, value, grid_bound)) ? 0 : 1;
+    j.broken_towards += may_be_broken(bound, value, room) ? 1 : 0;
+    j.broken_away += surely_broken(bound, value, room) ? 1 : 0;
   }
   if (j.draws == 0) return j;
   count_up(j, confidence);
@@ -86,11 +97,10 @@ Judged judge_any(std::span<const Part> parts, std::span<const std::int8_t> statu
     bool failed = status[i] != 0, broken = false, towards = false, away = false;
     for (const Part& p : parts) {
       const double value = p.values[i];
-      const bool bound_known = std::isfinite(p.grid_bound);
       failed = failed || std::isnan(value);
       broken = broken || !kept(p.bound, value);
-      towards = towards || !bound_known || !kept(p.bound, moved_towards(p.bound, value, p.grid_bound));
-      away = away || (bound_known && !kept(p.bound, moved_away(p.bound, value, p.grid_bound)));
+      towards = towards || may_be_broken(p.bound, value, p.room);
+      away = away || surely_broken(p.bound, value, p.room);
     }
     if (failed) {
       ++j.failed;

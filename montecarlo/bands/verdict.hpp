@@ -21,6 +21,18 @@ struct Bound {
 
 [[nodiscard]] bool kept(const Bound& bound, double value);
 
+/// How far the true extreme may lie from the computed one, each >= 0; NaN: not known.
+/// A run that shows the extreme before any vapour formed may know `kept` where `broken` stays unknown: finer grids may
+/// move the later peak, not the earlier one.
+struct GridRoom {
+  double broken = 0.0;  ///< towards breaking the bound
+  double kept = 0.0;    ///< towards keeping it
+
+  GridRoom(double both = 0.0)
+      : broken(both), kept(both) {}  // NOLINT(google-explicit-constructor): one bound, both ways
+  GridRoom(double towards_broken, double towards_kept) : broken(towards_broken), kept(towards_kept) {}
+};
+
 /// `value` moved by `by` >= 0 towards the bound (and through it), and away from it.
 [[nodiscard]] double moved_towards(const Bound& bound, double value, double by);
 [[nodiscard]] double moved_away(const Bound& bound, double value, double by);
@@ -29,8 +41,8 @@ struct Bound {
 [[nodiscard]] double margin(const Bound& bound, double value);
 
 /// Verdict of a single run: kept by value ± grid bound, broken by value ± grid bound, else it cannot be told.
-/// A value or a grid bound that is not a number cannot be told.
-[[nodiscard]] Verdict verdict_of_run(const Bound& bound, double value, double grid_bound);
+/// A value that is not a number cannot be told; room that is not known settles nothing on its side.
+[[nodiscard]] Verdict verdict_of_run(const Bound& bound, double value, GridRoom room);
 
 /// Verdict of a probability known to lie in [lower, upper], each end at its confidence, against what is allowed.
 [[nodiscard]] Verdict verdict_of_probability(double lower, double upper, double at_most);
@@ -53,11 +65,11 @@ struct Judged {
 };
 
 /// Judges draws: failed ones (NaN, or status not 0) count against in the upper bound and not at all in the lower one.
-/// @param grid_bound >= 0; not a number: the bound of the grid is not known, nothing can be told
+/// @param room of the grid; not known towards broken: every draw may be broken, towards kept: none is for sure
 [[nodiscard]] Judged judge(const Bound& bound,
                            std::span<const double> values,
                            std::span<const std::int8_t> status,
-                           double grid_bound,
+                           GridRoom room,
                            double at_most,
                            double confidence);
 
@@ -65,7 +77,7 @@ struct Judged {
 struct Part {
   Bound bound;
   std::span<const double> values;  ///< one per draw
-  double grid_bound = 0.0;         ///< as in `judge`
+  GridRoom room = 0.0;             ///< as in `judge`
 };
 
 /// The same for "any of these is broken": a draw breaks the whole when it breaks a part, each part moved by its own

@@ -162,6 +162,9 @@ void add_band(answers::Study& study, const network::Case& c, montecarlo::BandOut
   for (const auto& limit : c.limits) {
     if (limit.at_most < 0.0) add_once(study.guesses, fmt::format("limit {}: at_most 5 % (default)", limit.name));
   }
+  for (const auto& pipe : c.pipes) {
+    if (pipe.rating.given()) add_once(study.guesses, fmt::format("limit {} rating: at_most 5 % (default)", pipe.name));
+  }
   if (c.friction.scatter.guess) add_once(study.guesses, guessed_scatter);
   for (const auto& warning : outcome.warnings) add_once(study.warnings, warning);
   study.limits = std::move(outcome.limits);

@@ -53,7 +53,9 @@ answers::PipeAnswer pipe_answer(const Central& central, std::size_t i) {
   answer.flow = state.pipe_flow[i].number;
   answer.velocity = answer.flow / values.area.number;
   answer.reynolds = state.reynolds[i].number;
-  answer.friction_factor = state.friction_factor[i].number;
+  // where nothing flows there is no factor: 64/Re would only tell of the guard against a division by zero
+  constexpr double still = 1e-12;  // [m/s]
+  if (std::abs(answer.velocity) > still) answer.friction_factor = state.friction_factor[i].number;
   answer.head_loss = state.head_loss[i].number;
   answer.wave_speed = state.wave_speed[i].number;
   answer.rating = values.rating.number;

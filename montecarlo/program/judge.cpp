@@ -105,13 +105,18 @@ std::vector<LimitAnswer> judge_steady(const network::Case& c, const Central& cen
 
 std::vector<LimitAnswer> judge_run(const network::Plan& plan,
                                    const std::vector<double>& value,
-                                   const std::vector<double>& grid_bound) {
+                                   const std::vector<double>& grid_bound,
+                                   const std::vector<double>& bound_to_kept) {
   std::vector<LimitAnswer> answers;
   for (std::size_t i = 0; i < plan.limits.size(); ++i) {
     const auto& limit = plan.limits[i];
     LimitAnswer answer = blank(limit);
     set_value(answer, limit, value.at(i));
-    answer.verdict = montecarlo::verdict_of_run({limit.bound, limit.not_over}, value[i], grid_bound.at(i));
+    answer.verdict =
+        montecarlo::verdict_of_run({limit.bound, limit.not_over}, value[i], {grid_bound.at(i), bound_to_kept.at(i)});
+    const bool by_the_grid_alone =
+        montecarlo::verdict_of_run({limit.bound, limit.not_over}, value[i], grid_bound[i]) == answer.verdict;
+    if (!by_the_grid_alone) answer.reason = "not kept already before vapour formed";
     if (answer.verdict == Verdict::cannot_tell) {
       answer.reason = !std::isfinite(value[i])        ? "the value is not known"
                       : !std::isfinite(grid_bound[i]) ? "the grid is not converging"

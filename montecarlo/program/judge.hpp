@@ -17,10 +17,11 @@ namespace headband::program {
 /// The limits by the steady state. In a case with events, extremes of pressure and velocity can only be told NOT OK.
 [[nodiscard]] std::vector<answers::LimitAnswer> judge_steady(const network::Case& c, const Central& central);
 
-/// The limits by one run: its value and grid bound per limit, as Plan::limits.
+/// The limits by one run: its value, grid bound and bound on the side of keeping per limit, as Plan::limits.
 [[nodiscard]] std::vector<answers::LimitAnswer> judge_run(const network::Plan& plan,
                                                           const std::vector<double>& value,
-                                                          const std::vector<double>& grid_bound);
+                                                          const std::vector<double>& grid_bound,
+                                                          const std::vector<double>& bound_to_kept);
 
 /// All limits CANNOT TELL, because of `reason`.
 [[nodiscard]] std::vector<answers::LimitAnswer> judge_nothing(const network::Plan& plan, const std::string& reason);

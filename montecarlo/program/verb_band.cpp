@@ -80,8 +80,13 @@ montecarlo::CentralRun run_central(const network::Case& c, const Central& centra
   if (!central.solved) return {};
   if (!surge) return steady_central(central);
   transient::SurgeRun run = transient::run_surge(c, central.plan, central.values, central.state);
-  montecarlo::CentralRun numbers{
-      run.answer_value, run.limit_value, run.answer_grid_bound, run.limit_grid_bound, run.cavity, run.transient.time};
+  montecarlo::CentralRun numbers{run.answer_value,
+                                 run.limit_value,
+                                 run.answer_grid_bound,
+                                 run.limit_grid_bound,
+                                 run.limit_bound_to_kept,
+                                 run.cavity,
+                                 run.transient.time};
   add_run(study, std::move(run));
   return numbers;
 }

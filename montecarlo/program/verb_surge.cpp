@@ -17,7 +17,7 @@ ExitCode verb_surge(const Options& options) {
     study.limits_shown = true;
     if (central.solved) {
       transient::SurgeRun run = transient::run_surge(c, central.plan, central.values, central.state);
-      study.limits = judge_run(central.plan, run.limit_value, run.limit_grid_bound);
+      study.limits = judge_run(central.plan, run.limit_value, run.limit_grid_bound, run.limit_bound_to_kept);
       add_run(study, std::move(run));
     } else {
       study.limits = judge_nothing(central.plan, central.failure);

@@ -41,6 +41,7 @@ struct BandOutcome {
 struct CentralRun {
   std::vector<double> answer_value, limit_value;            ///< as Plan::answers, Plan::limits
   std::vector<double> answer_grid_bound, limit_grid_bound;  ///< zero for steady answers; NaN = not converging
+  std::vector<double> limit_bound_to_kept = {};             ///< as SurgeRun's; none: limit_grid_bound
   bool cavity = false;
   std::vector<double> time = {};  ///< its rows [s]; none: the bands of histories stand at even times
 };

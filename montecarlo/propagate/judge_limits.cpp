@@ -26,6 +26,12 @@ std::string reason_of(const Judged& j, double grid_bound) {
   return "the allowed probability lies between the two bounds: more draws may tell";
 }
 
+/// What the grid leaves open about limit `i` in every draw: that of the central run.
+GridRoom room_of(const CentralRun& central, std::size_t i) {
+  const double bound = i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0;
+  return {bound, i < central.limit_bound_to_kept.size() ? central.limit_bound_to_kept[i] : bound};
+}
+
 /// Mean distance over the bound of the finished draws, negative when kept.
 double mean_excess(const Bound& bound, std::span<const double> values) {
   double sum = 0.0, n = 0.0;
@@ -124,9 +130,7 @@ void judge_whole_line(const network::Case& c,
   for (std::size_t i = 0; i < plan.limits.size(); ++i) {
     const network::LimitPlan& limit = plan.limits[i];
     if (limit.rating_of_pipe < 0) continue;
-    parts.push_back({{limit.bound, limit.not_over},
-                     table.limit[i],
-                     i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0});
+    parts.push_back({{limit.bound, limit.not_over}, table.limit[i], room_of(central, i)});
     answer.margin = std::fmin(answer.margin, point.limits[i].margin);
     answer.confidence = std::fmax(answer.confidence, limit.confidence);
     worse_by = parts.size() == 1 ? point.worse_by[i] : std::fmax(worse_by, point.worse_by[i]);
@@ -162,13 +166,15 @@ PointJudgement judge_limits(
     answer.confidence = limit.confidence;
     if (i < central.limit_value.size()) answer.value = central.limit_value[i];
     answer.margin = margin(bound, answer.value);
-    const double grid_bound = i < central.limit_grid_bound.size() ? central.limit_grid_bound[i] : 0.0;
-    const Judged j = judge(bound, table.limit[i], table.status, grid_bound, answer.at_most, answer.confidence);
+    const GridRoom room = room_of(central, i);
+    const Judged j = judge(bound, table.limit[i], table.status, room, answer.at_most, answer.confidence);
     answer.probability = j.probability;
     answer.probability_lower = j.lower;
     answer.probability_upper = j.upper;
     answer.verdict = j.verdict;
-    if (j.verdict == Verdict::cannot_tell) answer.reason = reason_of(j, grid_bound);
+    if (j.verdict == Verdict::cannot_tell) answer.reason = reason_of(j, room.broken);
+    if (j.verdict == Verdict::not_ok && !std::isfinite(room.broken))
+      answer.reason = "not kept already before vapour formed";
     if (!surge && !c.events.empty() && limit.subject.needs_surge() && j.verdict != Verdict::not_ok) {
       // a surge can only add broken draws: what the steady state says is a lower bound and nothing more
       answer.probability = answers::missing;

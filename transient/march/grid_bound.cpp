@@ -29,7 +29,8 @@ GridBound bound_from_three(const ThreeGrids& g) {
   if (last == 0.0 && !g.different_peaks) return {whole, true};
   const double most = g.cavity_closed ? most_order_with_cavities : most_order;
   const double order = std::min(most, std::log2(std::fabs(first / last)));
-  if (!opposite && !(order >= least_order) && larger > small_share * g.swing)
+  const bool by_the_rows = !g.cavity_closed && larger <= g.between_rows;
+  if (!opposite && !(order >= least_order) && larger > small_share * g.swing && !by_the_rows)
     return {std::numeric_limits<double>::quiet_NaN(), false};
   if (g.different_peaks) return {whole + 3.0 * larger, true};
   if (opposite) return {whole + 3.0 * std::fabs(last), true};

@@ -127,7 +127,11 @@ void Record::plan_events(const March<1>& march) {
     const auto& e = march.the_case().events[at(event.index)];
     const auto& v = values_->events[at(event.index)];
     const double begin = v.at.number;
-    if (!std::isfinite(begin)) continue;
+    const double dt = march.numbers().time_step.number;
+    const double last = (static_cast<double>(march.numbers().last_step[0]) + 0.5) * dt;
+    if (!(begin <= last)) continue;  // the run ends before
+    const bool draw_off = event.kind == network::EventKind::move_draw_off;
+    const std::string what = draw_off ? "flow " : event.kind == network::EventKind::move_basin ? "level " : "";
     switch (event.kind) {
       case network::EventKind::trip_pump:
         add_event(begin, event.name, "tripped", "power lost");
@@ -141,12 +145,23 @@ void Record::plan_events(const March<1>& march) {
       case network::EventKind::move_valve:
       case network::EventKind::move_draw_off:
       case network::EventKind::move_basin:
-        add_event(begin, event.name, "starts", e.instant ? "moves at once" : "begins to move");
+        add_event(begin,
+                  event.name,
+                  "starts",
+                  what + (e.instant  ? draw_off ? "changes at once" : "moves at once"
+                          : draw_off ? "begins to change"
+                                     : "begins to move"));
         break;
     }
     double end = e.instant ? begin : begin + v.over.number;
     if (!v.travel_time.empty()) end = begin + v.travel_time.back().number;
-    if (std::isfinite(end)) add_event(end, event.name, "ends", "has moved");
+    // a movement that another one takes over never ends
+    const bool taken_over = std::any_of(plan.events.begin(), plan.events.end(), [&](const network::EventPlan& other) {
+      const double at_other = values_->events[at(other.index)].at.number;
+      return other.index != event.index && other.device == event.device && other.basin == event.basin &&
+             at_other > begin && at_other < end;
+    });
+    if (!taken_over && end <= last) add_event(end, event.name, "ends", what + (draw_off ? "has changed" : "has moved"));
   }
 }
 
@@ -187,8 +202,11 @@ void Record::before_jump(March<1>& march, long long row) {
 
 void Record::after_jump(March<1>& march, long long row) {
   audit_.after_jump(march);
+  watch_first_vapour(march);
   watch_stations(march, row, true);
-  if (histories_) watch_devices(march);
+  if (!histories_) return;
+  watch_devices(march);
+  watch_limits(march);
 }
 
 bool Record::finite(const March<1>& march) const {
@@ -206,6 +224,7 @@ bool Record::step(March<1>& march, long long row) {
     return false;
   }
   out_.last_good_time = march.time().number;
+  watch_first_vapour(march);
   watch_stations(march, row, false);
   audit_.step(march);
   watch_cavities(march);

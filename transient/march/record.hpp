@@ -8,6 +8,7 @@
 #include "transient/march/spots.hpp"
 #include "transient/march/surge.hpp"
 
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -51,6 +52,8 @@ class Record {
   [[nodiscard]] AnswerPeak extreme_of(const March<1>& march, const network::AnswerPlan& what) const;
   /// Highest or lowest pressure of the whole line.
   [[nodiscard]] AnswerPeak extreme_everywhere(const March<1>& march, bool highest) const;
+  /// What limit `limit` asks for, as it stood in the last row before a cavity formed; nothing where none formed.
+  [[nodiscard]] std::optional<AnswerPeak> extreme_before_vapour(std::size_t limit) const;
   [[nodiscard]] bool finished() const { return finished_; }
   [[nodiscard]] bool cavity(const March<1>& march) const;
 
@@ -76,6 +79,7 @@ class Record {
   void finish_cavities(const March<1>& march);
   void watch_devices(const March<1>& march);
   void watch_limits(const March<1>& march);
+  void watch_first_vapour(const March<1>& march);
   void plan_events(const March<1>& march);
   [[nodiscard]] double series_value(const March<1>& march, const SeriesSource& s) const;
   [[nodiscard]] double device_flow(const March<1>& march, int device) const;
@@ -99,6 +103,8 @@ class Record {
   std::vector<Extremes> device_flow_, device_speed_;
   std::vector<double> first_flow_, first_head_, first_speed_;
   std::vector<char> was_shut_, was_refused_, was_forward_, limit_crossed_;
+  bool vapour_seen_ = false;
+  std::vector<AnswerPeak> before_vapour_;  ///< per limit; empty: no cavity formed
   answers::Transient out_;
   std::vector<answers::EventAnswer> events_;
   AuditSums audit_;

@@ -12,6 +12,18 @@ namespace {
 
 std::size_t at(int i) { return static_cast<std::size_t>(i); }
 
+// At one time what is done comes before what follows from it.
+int rank_of(const std::string& kind) {
+  static constexpr const char* order[] = {
+      "zero_flow", "check_shut", "check_open", "air_refused", "cavity_opens", "cavity_closes", "limit_crossed"};
+  int rank = 1;
+  for (const char* each : order) {
+    if (kind == each) return rank;
+    ++rank;
+  }
+  return 0;  // movements and trips, in the order of the case
+}
+
 }  // namespace
 
 void Record::take_extreme(const March<1>& march, const Station& s, bool highest, AnswerPeak& best) const {
@@ -130,8 +142,11 @@ void Record::finish(March<1>& march, SurgeRun& run) {
   std::sort(out_.cavities.begin(), out_.cavities.end(), [](const auto& a, const auto& b) {
     return std::tie(a.opens, a.pipe, a.chainage) < std::tie(b.opens, b.pipe, b.chainage);
   });
-  std::sort(events_.begin(), events_.end(), [](const auto& a, const auto& b) {
-    return std::tie(a.time, a.kind, a.subject, a.what) < std::tie(b.time, b.kind, b.subject, b.what);
+  std::stable_sort(events_.begin(), events_.end(), [](const auto& a, const auto& b) {
+    if (a.time != b.time) return a.time < b.time;
+    const int first = rank_of(a.kind), second = rank_of(b.kind);
+    if (first != second) return first < second;
+    return first > 0 && std::tie(a.subject, a.what) < std::tie(b.subject, b.what);
   });
   if (std::isnan(out_.last_good_time)) out_.last_good_time = 0.0;
   run.transient = std::move(out_);

@@ -3,9 +3,10 @@
 // What the record looks at in every row: devices, cavities, limits, histories.
 #include "transient/march/record.hpp"
 
+#include "core/base/units.hpp"
+
 #include <algorithm>
 #include <cmath>
-#include <cstdio>
 
 namespace headband::transient {
 namespace {
@@ -15,15 +16,11 @@ constexpr double told_cavity = 1e-6;  // share of its section's volume below whi
 std::size_t at(int i) { return static_cast<std::size_t>(i); }
 
 std::string spot_words(const std::string& pipe, double chainage) {
-  char text[64];
-  std::snprintf(text, sizeof text, " @ %.4g m", chainage);
-  return pipe + text;
+  return pipe + " @ " + base::significant(chainage, 5) + " m";
 }
 
 std::string volume_words(double volume) {
-  char text[64];
-  std::snprintf(text, sizeof text, "largest volume %.3g m3", volume);
-  return text;
+  return "the cavity closes; its largest volume was " + base::significant(volume, 3) + " m3";
 }
 
 }  // namespace
@@ -184,6 +181,20 @@ void Record::finish_cavities(const March<1>& march) {
                  march.plan().pipes[at(side.pipe)].name,
                  side.far ? values_->pipes[at(side.pipe)].length.number : 0.0);
   }
+}
+
+// The extremes the limits ask for, kept once before the first row with vapour: later peaks are of the right order only,
+// these are as good as any of a run without cavities.
+void Record::watch_first_vapour(const March<1>& march) {
+  if (vapour_seen_ || !cavity(march)) return;
+  vapour_seen_ = true;
+  for (const auto& limit : march.plan().limits)
+    before_vapour_.push_back(limit.subject.needs_surge() ? extreme_of(march, limit.subject) : AnswerPeak{});
+}
+
+std::optional<AnswerPeak> Record::extreme_before_vapour(std::size_t limit) const {
+  if (before_vapour_.empty()) return std::nullopt;
+  return before_vapour_[limit];
 }
 
 void Record::watch_devices(const March<1>& march) {

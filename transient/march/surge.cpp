@@ -150,8 +150,9 @@ class Bounds {
         swing_(asked.record.extreme_everywhere(asked.march, true).value -
                asked.record.extreme_everywhere(asked.march, false).value) {}
 
+  /// @param vapour whether the extreme may be one of a run with cavities; false: one before they formed
   template <class F>
-  [[nodiscard]] GridBound of(const F& extreme) const {
+  [[nodiscard]] GridBound of(const F& extreme, bool vapour = true) const {
     const AnswerPeak a = extreme(*asked_);
     GridBound b;
     if (fine_ == nullptr || !fine_->finished()) return {std::numeric_limits<double>::quiet_NaN(), false};
@@ -166,8 +167,9 @@ class Bounds {
                             .fine = fine.value,
                             .finest = finest.value,
                             .swing = swing_,
-                            .cavity_closed = asked_->march.state().tally.closed[0],
-                            .different_peaks = apart > one_peak * asked_->grid.time_step});
+                            .cavity_closed = vapour && asked_->march.state().tally.closed[0],
+                            .different_peaks = apart > one_peak * asked_->grid.time_step,
+                            .between_rows = a.missed});
       b.bound += finest.missed;
     } else {
       return {std::numeric_limits<double>::quiet_NaN(), false};
@@ -207,6 +209,24 @@ answers::Extreme as_extreme(const network::Plan& plan, const AnswerPeak& p) {
   return e;
 }
 
+// How far the extreme of a limit may lie on the side of keeping it: the grid bound, or the distance to what stood
+// before any vapour formed and its own bound.
+double bound_to_kept(const network::LimitPlan& limit,
+                     std::size_t k,
+                     double value,
+                     double grid_bound,
+                     const GridRun& asked,
+                     const std::optional<Bounds>& bounds) {
+  if (!bounds || !limit.subject.needs_surge() || !asked.record.extreme_before_vapour(k)) return grid_bound;
+  const auto early = [&](const GridRun& r) {
+    const auto before = r.record.extreme_before_vapour(k);
+    return before ? *before : r.record.extreme_of(r.march, limit.subject);
+  };
+  const GridBound b = bounds->of(early, false);
+  const double room = std::fabs(value - early(asked).value) + b.bound;
+  return std::isnan(grid_bound) || room < grid_bound ? room : grid_bound;
+}
+
 // Value and bound of answers and limits.
 void fill_answers(const network::Plan& plan,
                   const network::Values<1>& values,
@@ -226,7 +246,11 @@ void fill_answers(const network::Plan& plan,
     if (std::isnan(bound.back())) run.grid.converging = false;
   };
   for (const auto& a : plan.answers) fill(a, run.answer_value, run.answer_grid_bound);
-  for (const auto& l : plan.limits) fill(l.subject, run.limit_value, run.limit_grid_bound);
+  for (std::size_t k = 0; k < plan.limits.size(); ++k) {
+    fill(plan.limits[k].subject, run.limit_value, run.limit_grid_bound);
+    run.limit_bound_to_kept.push_back(
+        bound_to_kept(plan.limits[k], k, run.limit_value[k], run.limit_grid_bound[k], asked, bounds));
+  }
 }
 
 void fill_extremes(const network::Plan& plan,

@@ -30,6 +30,9 @@ struct SurgeRun {
   std::vector<double> limit_value;        ///< as Plan::limits
   std::vector<double> answer_grid_bound;  ///< >= 0 [the answer's unit]; NaN = not converging
   std::vector<double> limit_grid_bound;
+  /// As limit_grid_bound, on the side of keeping the limit alone: at most the grid bound, and less where the extreme
+  /// stood there already before any vapour formed. NaN = not known.
+  std::vector<double> limit_bound_to_kept;
   std::vector<std::string> warnings;
   bool cavity = false;  ///< a cavity over 1e-6 of its section's volume formed
 };

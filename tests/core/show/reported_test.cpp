@@ -43,9 +43,9 @@ TEST(Reported, OfAPipesCavitiesTheFirstAndTheLastEventAreTold) {
                   {1.0, "main @ 40 m", "cavity_opens", "the liquid boils"},
                   {1.1, "main @ 80 m", "cavity_opens", "the liquid boils"},
                   {1.2, "spur @ 5 m", "cavity_opens", "the liquid boils"},
-                  {2.0, "main @ 80 m", "cavity_closes", "largest volume 0.1 m3"},
+                  {2.0, "main @ 80 m", "cavity_closes", "the cavity closes; its largest volume was 0.1 m3"},
                   {2.1, "pump", "check_shut", "check valve shuts"},
-                  {3.0, "main @ 40 m", "cavity_closes", "largest volume 0.2 m3"}};
+                  {3.0, "main @ 40 m", "cavity_closes", "the cavity closes; its largest volume was 0.2 m3"}};
   const auto told = told_events(study);
   ASSERT_EQ(told.size(), 5U);
   const double times[] = {0.0, 1.0, 1.2, 2.1, 3.0};
@@ -63,6 +63,34 @@ TEST(Reported, UnknownsThatMoveMostComeFirst) {
   ASSERT_EQ(ranked.size(), 5U);
   const char* order[] = {"end valve over", "friction scatter", "main wall", "a", "b"};
   for (std::size_t i = 0; i < 5; ++i) EXPECT_EQ(ranked[i].input, order[i]);
+}
+
+TEST(Reported, TheCavityOfAnEventAndTheFirstOfARunAreFound) {
+  answers::Study study;
+  study.transient.emplace();
+  study.transient->cavities = {
+      {"main", 80.0, 2.0, 5.0, 0.1}, {"main", 40.0, 2.0, 3.0, 0.2}, {"branch @ 2", 40.0, 1.5, answers::missing, 0.3}};
+  const auto* cavity = cavity_of(study, {2.0, "main @ 40 m", "cavity_opens", "the liquid boils"});
+  ASSERT_NE(cavity, nullptr);
+  EXPECT_EQ(cavity->max_volume, 0.2);
+  ASSERT_NE(cavity_of(study, {5.0, "main @ 80 m", "cavity_closes", ""}), nullptr);
+  ASSERT_NE(cavity_of(study, {1.5, "branch @ 2 @ 40 m", "cavity_opens", ""}), nullptr);
+  EXPECT_EQ(cavity_of(study, {2.0, "main", "starts", "begins to move"}), nullptr);
+  ASSERT_NE(first_cavity(study), nullptr);
+  EXPECT_EQ(first_cavity(study)->opens, 1.5);
+  study.transient->cavities.clear();
+  EXPECT_EQ(first_cavity(study), nullptr);
+}
+
+TEST(Reported, AnAnswerHeldAtOneValueStandsStill) {
+  answers::BandAnswer answer;
+  answer.mean = -95540.0;
+  answer.standard_deviation = 3e-11;  // what summing leaves
+  EXPECT_TRUE(stands_still(answer));
+  answer.standard_deviation = 1.0;
+  EXPECT_FALSE(stands_still(answer));
+  answer.standard_deviation = answers::missing;
+  EXPECT_FALSE(stands_still(answer));
 }
 
 }  // namespace

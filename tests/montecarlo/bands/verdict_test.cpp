@@ -22,6 +22,9 @@ TEST(Verdict, OfARunHeedsTheGridBound) {
   EXPECT_EQ(verdict_of_run(under, -2.3, 0.2), Verdict::not_ok);
   EXPECT_EQ(verdict_of_run(over, answers::missing, 0.0), Verdict::cannot_tell);
   EXPECT_EQ(verdict_of_run(over, 1.0, answers::missing), Verdict::cannot_tell);
+  EXPECT_EQ(verdict_of_run(over, 14.0, GridRoom(answers::missing, 1.0)), Verdict::not_ok);
+  EXPECT_EQ(verdict_of_run(over, 12.5, GridRoom(answers::missing, 1.0)), Verdict::cannot_tell);
+  EXPECT_EQ(verdict_of_run(over, 1.0, GridRoom(answers::missing, 1.0)), Verdict::cannot_tell);
   EXPECT_DOUBLE_EQ(margin(over, 11.5), 0.5);
   EXPECT_DOUBLE_EQ(margin(under, -2.5), -0.5);
 }

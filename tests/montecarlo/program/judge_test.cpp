@@ -25,7 +25,7 @@ network::Plan plan_with_limits() {
 }
 
 TEST(JudgeRun, ValueMarginAndVerdictStandOnTheRightSide) {
-  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.6e5}, {0.05e5, 0.05e5});
+  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.6e5}, {0.05e5, 0.05e5}, {0.05e5, 0.05e5});
   ASSERT_EQ(limits.size(), 2U);
   EXPECT_EQ(limits[0].verdict, Verdict::ok);
   EXPECT_NEAR(limits[0].margin, 0.1e5, 1e-6);
@@ -40,11 +40,24 @@ TEST(JudgeRun, ValueMarginAndVerdictStandOnTheRightSide) {
 
 TEST(JudgeRun, InsideTheGridBoundOrWithoutOneNobodyCanTell) {
   const double nan = std::numeric_limits<double>::quiet_NaN();
-  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.4e5}, {0.2e5, nan});
+  const auto limits = judge_run(plan_with_limits(), {11.9e5, -0.4e5}, {0.2e5, nan}, {0.2e5, nan});
   EXPECT_EQ(limits[0].verdict, Verdict::cannot_tell);
   EXPECT_NE(limits[0].reason.find("grid bound"), std::string::npos);
   EXPECT_EQ(limits[1].verdict, Verdict::cannot_tell);
   EXPECT_NE(limits[1].reason.find("not converging"), std::string::npos);
+}
+
+TEST(JudgeRun, WhatWasBrokenBeforeVapourStaysBrokenWhateverTheGridSaysLater) {
+  const double nan = std::numeric_limits<double>::quiet_NaN();
+  // 18.7 bar on a grid that does not converge, but 17.7 bar stood there before vapour formed
+  const auto broken = judge_run(plan_with_limits(), {18.7e5, -0.4e5}, {nan, nan}, {1.1e5, nan});
+  EXPECT_EQ(broken[0].verdict, Verdict::not_ok);
+  EXPECT_EQ(broken[0].reason, "not kept already before vapour formed");
+  // not broken before vapour: nobody can tell, and never OK by that room
+  const auto open = judge_run(plan_with_limits(), {12.5e5, -0.4e5}, {nan, nan}, {1.1e5, 0.01e5});
+  EXPECT_EQ(open[0].verdict, Verdict::cannot_tell);
+  EXPECT_EQ(open[1].verdict, Verdict::cannot_tell);
+  EXPECT_NE(open[1].reason.find("not converging"), std::string::npos);
 }
 
 TEST(JudgeNothing, EveryLimitCannotTellAndSaysWhy) {

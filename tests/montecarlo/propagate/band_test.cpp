@@ -273,6 +273,11 @@ TEST(Band, GridBoundOfTheCentralRunMovesTheCounts) {
   EXPECT_LT(bounded.limits[0].probability_lower, exact.limits[0].probability_lower);
   r.central.limit_grid_bound = {answers::missing};
   EXPECT_EQ(band(r).limits[0].verdict, answers::Verdict::cannot_tell);
+  // where the central run knows the side of keeping, the lower bound counts by it and the upper one stays open
+  r.central.limit_bound_to_kept = {0.5};
+  const auto one_side = band(r);
+  EXPECT_EQ(one_side.limits[0].probability_lower, bounded.limits[0].probability_lower);
+  EXPECT_EQ(one_side.limits[0].probability_upper, 1.0);
 }
 
 TEST(Band, ImpossibleCorrelationsAreRefused) {

@@ -56,6 +56,16 @@ TEST(GridBound, differences_of_different_peaks_have_no_order) {
   EXPECT_EQ(bound_from_three({100.0, 100.0, 100.0, 50.0, false, true}).bound, 0.0);
 }
 
+TEST(GridBound, what_the_rows_leave_out_says_nothing_of_an_order) {
+  // differences of 1 and 2 under a swing of 100: not converging, unless a row beside a cusp may miss as much
+  EXPECT_FALSE(bound_from_three({100.0, 101.0, 103.0, 100.0, false, false, 1.9}).converging);
+  const auto beside_a_cusp = bound_from_three({100.0, 101.0, 103.0, 100.0, false, false, 2.1});
+  EXPECT_TRUE(beside_a_cusp.converging);
+  EXPECT_DOUBLE_EQ(beside_a_cusp.bound, 3.0 + 3.0 * 2.0);
+  EXPECT_FALSE(
+      bound_from_three({100.0, 101.0, 103.0, 100.0, true, false, 2.1}).converging);  // with cavities it may be more
+}
+
 TEST(GridBound, rounding_is_no_difference) {
   EXPECT_EQ(bound_from_three({100.0, 100.0 + 1e-8, 100.0 - 1e-8, 10.0}).bound, 0.0);
   EXPECT_EQ(bound_from_two(100.0, 100.0 + 1e-8).bound, 0.0);
