@@ -94,7 +94,7 @@ struct Audit {
   double volume_residual_relative = missing;  ///< share of the volume passed; NaN: nothing passed
   double volume_passed = missing;             ///< [m3]
   double cavity_allowance = missing;          ///< summed |flow jump| dt of closings [m3]
-  double cavity_reset_volume = missing;       ///< negative cavity volumes set to zero [m3]
+  double cavity_reset_volume = missing;       ///< always 0, see docs/result-file.md [m3]
 };
 
 struct GridAnswer {

@@ -106,8 +106,7 @@ std::string checks(const Study& study) {
         {"Volume passed", both(audit.volume_passed, Shown::volume, 3)},
         {"Left over, as a share of it",
          std::isnan(audit.volume_residual_relative) ? "nothing passed" : figures(audit.volume_residual_relative, 2)},
-        {"Allowed for closing cavities", both(audit.cavity_allowance, Shown::volume, 3)},
-        {"Negative cavity volume set to zero", both(audit.cavity_reset_volume, Shown::volume, 3)}});
+        {"Allowed for closing cavities", both(audit.cavity_allowance, Shown::volume, 3)}});
   }
   if (study.transient && !study.transient->status.empty())
     out += html(std::vector<std::pair<std::string, std::string>>{

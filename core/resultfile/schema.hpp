@@ -251,7 +251,9 @@ void exchange_audit(Archive& a, Audit& audit) {
       "volume_residual_relative", audit.volume_residual_relative, {"1", "The same as a share of the volume passed"});
   a.number("volume_passed", audit.volume_passed, {"m3", "Volume passed"});
   a.number("cavity_allowance", audit.cavity_allowance, {"m3", "Sum of flow jump x time step where cavities closed"});
-  a.number("cavity_reset_volume", audit.cavity_reset_volume, {"m3", "Negative cavity volumes set to zero"});
+  a.number("cavity_reset_volume",
+           audit.cavity_reset_volume,
+           {"m3", "Negative cavity volumes set to zero; always 0: a cavity is filled by just what is left of it"});
 }
 
 template <class Archive, class Grid>

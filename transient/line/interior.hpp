@@ -29,7 +29,6 @@ struct PipeRows {
 /// What a step with cavities adds up, per lane.
 template <int W>
 struct CavityTally {
-  Lanes<W> reset = 0.0;      ///< negative volumes set to zero [m3]
   Lanes<W> allowance = 0.0;  ///< sum of |flow jump| dt over closings [m3]
   Lanes<W> share = 0.0;      ///< largest volume as a share of its section's volume [-]
   base::Mask<W> closed{};    ///< a cavity closed in this lane

@@ -13,19 +13,18 @@ AuditSums::Exchange AuditSums::exchange(const March<1>& march) {
   };
   const auto& layout = march.layout();
   const auto& state = march.state();
-  for (const int place : layout.basins) {
+  const auto outside = [&](int place) {
+    return place < 0 || march.plan().places[static_cast<std::size_t>(place)].basin >= 0;
+  };
+  for (const int place : layout.basins)
     for (const int s : layout.sides_at[static_cast<std::size_t>(place)])
       add(-state.side_flow[static_cast<std::size_t>(s)].number);
-    for (const int j : layout.branches_at[static_cast<std::size_t>(place)]) {
-      const Branch& b = layout.branches[static_cast<std::size_t>(j)];
-      const double flow = state.branch_flow[static_cast<std::size_t>(j)].number;
-      if (b.from == place) add(flow);
-      if (b.to == place) add(-flow);
-    }
+  for (std::size_t j = 0; j < layout.branches.size(); ++j) {  // what has no end in the line passes beside it
+    const bool from = outside(layout.branches[j].from), to = outside(layout.branches[j].to);
+    if (from != to) add(from ? state.branch_flow[j].number : -state.branch_flow[j].number);
   }
-  for (std::size_t j = 0; j < layout.branches.size(); ++j)
-    if (layout.branches[j].to < 0) add(-state.branch_flow[j].number);
-  for (const auto& draw : state.draw) add(-draw.number);
+  for (std::size_t j = 0; j < layout.draws.size(); ++j)
+    if (!outside(layout.draws[j].place)) add(-state.draw[j].number);
   return e;
 }
 
@@ -79,7 +78,7 @@ answers::Audit AuditSums::result(const March<1>& march) const {
   a.volume_passed = passed_;
   if (passed_ > 0.0) a.volume_residual_relative = std::fabs(a.volume_residual) / passed_;
   a.cavity_allowance = march.state().tally.allowance.number;
-  a.cavity_reset_volume = march.state().tally.reset.number;
+  a.cavity_reset_volume = 0.0;  // a cavity is filled by just its rest: no volume goes below zero
   return a;
 }
 
