@@ -12,6 +12,8 @@ constexpr double head_close = 1e-11;       // of 1 m + |head|
 constexpr double flow_close = 1e-13;       // of the largest flow
 constexpr double still_flow = 1e-9;        // [m3/s] added to that
 constexpr double cavity_rounding = 1e-12;  // of a volume
+constexpr double growth_rounding = 1e-12;  // of the flows that meet at a place
+constexpr double least_slope = 1e-9;       // [s/m2] of a loss: under it the square law goes straight to zero
 constexpr double no_pipe_gives = 1e-14;    // [m2/s] keeps a place between shut devices at its head
 
 }  // namespace
@@ -60,8 +62,10 @@ void ClusterSolver::assemble_branch(std::size_t j) {
     loss = b.offset + b.slope * b.flow;
     slope = b.slope;
   } else {
-    loss = b.resistance * b.flow * std::abs(b.flow);
-    slope = 2.0 * b.resistance * std::abs(b.flow) + 1e-9;
+    const double stiff = b.resistance * std::abs(b.flow);
+    const bool straight = b.resistance > 0.0 && stiff < least_slope;  // else no step finds the zero of a square
+    loss = (straight ? least_slope : stiff) * b.flow;
+    slope = straight ? least_slope : 2.0 * stiff + least_slope;
   }
   if (b.pump != nullptr) {
     const PumpPoint p = b.pump->at(b.flow / b.count, b.speed);
@@ -196,29 +200,34 @@ bool ClusterSolver::solve(double time_step) {
   const auto growth_at_vapour = [&](std::size_t i) {
     return outflow(i) - (places[i].waves - places[i].gives * places[i].vapour);
   };
-  bool good = true;
-  const std::size_t most_changes = 3 * (place_count + branch_count) + 4;
-  for (std::size_t change = 0; change < most_changes; ++change) {
-    if (!newton()) good = false;
-    if (!settle_states()) {
-      if (change + 1 == most_changes) good = false;
-      continue;
-    }
-    if (time_step <= 0.0) break;
-    bool reopened = false;
-    for (std::size_t i = 0; i < place_count; ++i) {  // a cavity used up before the next row is filled by just its rest
+  // Lets go of the vapour head where no cavity is and none would grow (another place's cavity relieves this one), and
+  // where a cavity is used up before the next row: that one is filled by just its rest. True where one did.
+  const auto let_go = [&] {
+    bool changed = false;
+    for (std::size_t i = 0; i < place_count; ++i) {
       ClusterPlace& p = places[i];
-      if (!p.pinned || p.closed || !(left(p) > 0.0)) continue;
-      const double growth = growth_at_vapour(i);
-      if (left(p) + time_step * growth > 0.0) continue;
-      p.closed = true;
-      p.fills = left(p) / time_step;
-      p.allowance = std::max(std::abs(p.growth), std::abs(growth)) * time_step;
+      if (!p.pinned) continue;
+      const double growth = growth_at_vapour(i), rest = left(p);
+      if (!(rest > 0.0)) {
+        if (growth >= -growth_rounding * (std::abs(p.waves) + std::abs(p.gives * p.vapour))) continue;
+      } else {
+        if (time_step <= 0.0 || p.closed || rest + time_step * growth > 0.0) continue;
+        p.closed = true;
+        p.fills = rest / time_step;
+        p.allowance = std::max(std::abs(p.growth), std::abs(growth)) * time_step;
+      }
       p.pinned = false;
-      reopened = true;
+      changed = true;
     }
-    if (!reopened) break;
+    return changed;
+  };
+  bool good = true, settled = false;
+  const std::size_t most_changes = 3 * (place_count + branch_count) + 4;
+  for (std::size_t change = 0; change < most_changes && !settled; ++change) {
+    if (!newton()) good = false;
+    settled = settle_states() && !let_go();
   }
+  good = good && settled;
   for (std::size_t i = 0; i < place_count; ++i) {
     ClusterPlace& p = places[i];
     const double growth = p.pinned ? growth_at_vapour(i) : -p.fills;
