@@ -187,6 +187,7 @@ class BatchRecord {
       t.low = t.high;
     }
     if (!watch_->fast.empty()) top_flow_.assign(march.numbers().rows, Lanes<W>(0.0));
+    find_rigid(march);
     if (watch_->whole_pipes) find_elevations(march);
     next_end_ = 0;
     find_next_end(march);
@@ -195,13 +196,7 @@ class BatchRecord {
   }
 
   bool step(March<W>& march, long long row) {
-    for (SpotTrack& t : spots_) {
-      for (int lane = 0; lane < W; ++lane) {
-        const double h = head_at<W>(march, t.spot[at(lane)], lane);
-        if (h > t.high[lane]) t.high.set(lane, h);
-        if (h < t.low[lane]) t.low.set(lane, h);
-      }
-    }
+    watch_spots(march);
     watch_velocity(march);
     history_.step(march, row);
     if (row == next_end_) {
@@ -214,6 +209,7 @@ class BatchRecord {
   void before_jump(March<W>&, long long) {}
   void after_jump(March<W>& march, long long row) {
     (void)row;
+    watch_spots(march);
     watch_velocity(march);
   }
 
@@ -244,10 +240,32 @@ class BatchRecord {
     }
   }
 
-  void watch_velocity(March<W>& march) {
+  /// The branches of rigid pipes whose velocity is asked.
+  void find_rigid(const March<W>& march) {
+    const auto& branches = march.layout().branches;
+    rigid_branch_.assign(march.numbers().pipes.size(), 0);
+    for (std::size_t j = 0; j < branches.size(); ++j)
+      if (branches[j].kind == BranchKind::rigid_pipe) rigid_branch_[at(branches[j].index)] = j;
+  }
+
+  void watch_spots(const March<W>& march) {
+    for (SpotTrack& t : spots_) {
+      for (int lane = 0; lane < W; ++lane) {
+        const double h = head_at<W>(march, t.spot[at(lane)], lane);
+        if (h > t.high[lane]) t.high.set(lane, h);
+        if (h < t.low[lane]) t.low.set(lane, h);
+      }
+    }
+  }
+
+  void watch_velocity(const March<W>& march) {
     const auto& state = march.state();
     for (const std::size_t i : watch_->fast) {
       const auto& p = march.numbers().pipes[i];
+      if (p.most_reaches == 0) {  // a rigid pipe has one flow, and one row to keep it
+        top_flow_[p.first_row] = max(top_flow_[p.first_row], abs(state.branch_flow[rigid_branch_[i]]));
+        continue;
+      }
       for (int row = 0; row <= p.most_reaches; ++row) {
         const std::size_t r = p.first_row + at(row);
         Lanes<W> q = abs(state.flow[r]);
@@ -375,6 +393,7 @@ class BatchRecord {
   HistoryTrack<W> history_;
   std::vector<SpotTrack> spots_;
   std::vector<Lanes<W>> top_flow_, row_elevation_;
+  std::vector<std::size_t> rigid_branch_;  ///< per pipe; of rigid ones
   long long next_end_ = 0;
 };
 
