@@ -145,10 +145,23 @@ class Writer {
       if (q->given()) cells += fmt::format("{}{} = {}", cells.empty() ? "" : ", ", key, written(*q));
     return "{ " + cells + " }";
   }
-  [[nodiscard]] static std::string spots(const std::vector<Spot>& list) {
+  [[nodiscard]] double drawn_length(const Pipe& p) const {
+    return p.length.given() || p.profile.empty() ? drawn(p.length) : drawn(p.profile.back().first);
+  }
+  /// As the user wrote it; a chainage beyond the end of a pipe drawn shorter is that end, as in the draw.
+  [[nodiscard]] std::string spot(const Spot& s) const {
+    for (const Pipe& p : case_.pipes)
+      if (s.chainage && p.name == s.element && *s.chainage > drawn_length(p))
+        return quoted(fmt::format("{} @ {} m", s.element, drawn_length(p)));
+    return quoted(s.written);
+  }
+  [[nodiscard]] std::string cells_of(const std::vector<Spot>& list) const {
     std::string cells;
-    for (const Spot& s : list) cells += fmt::format("{}{}", cells.empty() ? "" : ", ", quoted(s.written));
-    return list.size() == 1 ? cells : "[" + cells + "]";
+    for (const Spot& s : list) cells += fmt::format("{}{}", cells.empty() ? "" : ", ", spot(s));
+    return cells;
+  }
+  [[nodiscard]] std::string spots(const std::vector<Spot>& list) const {
+    return list.size() == 1 ? cells_of(list) : fmt::format("[{}]", cells_of(list));
   }
 
   void frame(const std::string& note) {
@@ -158,12 +171,7 @@ class Writer {
     text("note", case_.about.note.empty() || note.empty() ? case_.about.note + note : case_.about.note + "; " + note);
     head("[show]");
     raw("units", case_.show.units == base::UnitFamily::us ? "\"us\"" : "\"si\"");
-    if (!case_.show.places.empty()) {
-      std::string cells;
-      for (const Spot& s : case_.show.places)
-        cells += fmt::format("{}{}", cells.empty() ? "" : ", ", quoted(s.written));
-      raw("places", "[" + cells + "]");
-    }
+    if (!case_.show.places.empty()) raw("places", fmt::format("[{}]", cells_of(case_.show.places)));
     head("[site]");
     raw("atmosphere", written(case_.site.atmosphere));
     raw("gravity", written(case_.site.gravity));
@@ -250,8 +258,12 @@ class Writer {
     if (p.fittings.empty()) return;
     std::string cells;
     for (const Fitting& f : p.fittings) {
+      Quantity end;  // a fitting beyond the end of a pipe drawn shorter acts in its last reach
+      end.value = drawn_length(p);
+      end.dimension = Dimension::length;
+      const Quantity* at = f.at.given() && drawn(f.at) > end.value ? &end : &f.at;
       const std::string numbers =
-          inner({{"count", &f.count}, {"k", &f.k}, {"equivalent_length", &f.equivalent_length}, {"at", &f.at}});
+          inner({{"count", &f.count}, {"k", &f.k}, {"equivalent_length", &f.equivalent_length}, {"at", at}});
       cells += fmt::format("{}{{ name = {}, {}", cells.empty() ? "" : ", ", quoted(f.name), numbers.substr(2));
     }
     raw("fittings", "[" + cells + "]");

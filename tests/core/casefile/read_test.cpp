@@ -325,6 +325,37 @@ highest_pressure = "12 bar g"
   EXPECT_EQ(write_case(again.value, {}, ""), written);
 }
 
+TEST(Read, ADrawWithAShorterPipeKeepsWhatLiesAtItsEnd) {
+  std::string text = frame + valve;
+  const auto at = text.find("profile = ");
+  text.replace(at,
+               text.find('\n', at) - at,
+               "length = \"800 m ± 10 %\"\nfittings = [{ name = \"bend\", k = 1, at = \"790 m\" }]");
+  text += R"([show]
+places = ["main @ 795 m", "main @ 100 m"]
+[[limit]]
+highest_pressure = "12 bar g"
+where = "main @ 800 m"
+)";
+  const Case c = sound(text);
+  const auto unknown = static_cast<std::size_t>(c.pipes[0].length.unknown);
+  std::vector<double> scores(c.unknowns.size(), 0.5);
+  scores[unknown] = 0.1;  // 747.7 m
+  const std::string written = write_case(c, scores, "");
+  const Reading again = read_text("draw.toml", written, "");
+  ASSERT_TRUE(again.problems.empty()) << problems_text("draw.toml", written, again.problems) << written;
+  const double length = again.value.pipes[0].length.value;
+  EXPECT_NEAR(length, 747.7, 0.1);
+  EXPECT_EQ(again.value.show.places[0].chainage, length);
+  EXPECT_EQ(again.value.show.places[1].chainage, 100.0);
+  EXPECT_EQ(again.value.limits[0].subject.where[0].chainage, length);
+  EXPECT_EQ(again.value.pipes[0].fittings[0].at.value, length);
+  scores[unknown] = 0.9;  // what lies inside stays as it was written
+  const Reading longer = read_text("draw.toml", write_case(c, scores, ""), "");
+  EXPECT_EQ(longer.value.show.places[0].written, "main @ 795 m");
+  EXPECT_EQ(longer.value.pipes[0].fittings[0].at.value, 790.0);
+}
+
 TEST(Read, MissingFileIsAnIoError) {
   try {
     (void)read_file("/nowhere/case.toml");
