@@ -7,6 +7,7 @@ are printed only where the stored runs of the longest band have the peaks of a p
     tests/bench/whole_program.py build/release/montecarlo/program/headband [n] [rounds] [fixed|reynolds] [off|vapour]
 """
 import math
+import pathlib
 import resource
 import subprocess
 import sys
@@ -14,6 +15,9 @@ import tempfile
 
 import h5py
 import numpy as np
+
+sys.path.insert(0, str(pathlib.Path(__file__).resolve().parent.parent / "support"))
+from level_line import level_line
 
 CASE = """
 [about]
@@ -26,18 +30,7 @@ density = "1000 kg/m3"
 viscosity = "1e-06 m2/s"
 bulk_modulus = "2.2 GPa"
 vapour_pressure = "1000 Pa abs"
-[[basin]]
-name = "tank"
-level = "50 m"
-[[pipe]]
-name = "main"
-from = "tank"
-to = "end"
-length = "1000 m"
-profile = [["0 m", "0 m"], ["1000 m", "0 m"]]
-bore = "0.5 m"
-wave_speed = "1000 m/s ± 5.88 %"
-{friction}
+""" + level_line("50 m", "0.5 m", 'wave_speed = "1000 m/s ± 5.88 %"', "{friction}") + """\
 [[valve]]
 name = "gate"
 from = "end"

@@ -4,8 +4,13 @@
 The trap of the Cedar Flats line (cases/): the same line as 57 half-mile pieces must say what one piece says.
 """
 import itertools
+import pathlib
+import sys
 
 from outside import *
+
+sys.path.insert(0, str(pathlib.Path(__file__).resolve().parent.parent / "support"))
+from level_line import level_line
 
 PSI = 6894.757293168361
 PIECES = 57
@@ -94,18 +99,8 @@ RANGES = """\
 [liquid]
 name = "water"
 temperature = "15 degC"
-[[basin]]
-name = "tank"
-level = "60 m"
-[[pipe]]
-name = "main"
-from = "tank"
-to = "end"
-length = "1000 m"
-profile = [["0 m", "0 m"], ["1000 m", "0 m"]]
-bore = "300 mm"
-roughness = "0.1 mm .. 0.4 mm, not random"
-fittings = [{ name = "bends", k = "2 .. 6, not random" }]
+""" + level_line("60 m", "300 mm", 'roughness = "0.1 mm .. 0.4 mm, not random"',
+                 'fittings = [{ name = "bends", k = "2 .. 6, not random" }]') + """\
 [[draw_off]]
 name = "out"
 at = "end"
