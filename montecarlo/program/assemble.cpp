@@ -179,7 +179,10 @@ void conclude(answers::Study& study, const network::Case& c, const network::Plan
   const bool surged = study.transient.has_value() || (study.bands && study.bands->surged);
   if (surged) study.cautions = cautions_of_case(c, plan);
   if (study.state == answers::RunState::incomplete && study.limits_shown) {
-    for (auto& limit : study.limits) limit.verdict = answers::Verdict::cannot_tell;
+    for (auto& limit : study.limits) {
+      limit.verdict = answers::Verdict::cannot_tell;
+      if (limit.reason.empty()) limit.reason = "the run did not finish";
+    }
     study.verdict = answers::Verdict::cannot_tell;
   } else {
     study.verdict = study.limits_shown ? worst(study.limits) : answers::Verdict::none;
