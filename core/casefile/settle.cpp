@@ -1,5 +1,6 @@
 // SPDX-License-Identifier: MIT
 #include "core/casefile/parts.hpp"
+#include "core/network/plan.hpp"
 
 #include "core/base/units.hpp"
 
@@ -80,7 +81,7 @@ void count_guesses(Context& context, const Case& c) {
     const bool trips = std::any_of(c.events.begin(), c.events.end(), [&](const Event& e) {
       return (e.kind == EventKind::trip_pump || e.kind == EventKind::start_pump) && e.subject == p.name;
     });
-    if (trips && !p.rated_flow.given())
+    if (trips && !p.rated_flow.given() && !network::starts_at_rest(c, p))
       guesses.push_back(
           fmt::format("pump {}: rated point taken as the first operating point, nobody stated it", p.name));
   }

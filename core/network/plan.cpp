@@ -3,6 +3,7 @@
 #include "core/network/plan.hpp"
 
 #include <algorithm>
+#include <cmath>
 #include <set>
 #include <tuple>
 #include <unordered_map>
@@ -290,10 +291,13 @@ bool starts_shut(const Valve& valve) {
 }
 
 bool starts_at_rest(const Case& c, const Pump& pump) {
-  for (const auto& event : c.events)
-    if (event.subject == pump.name && (event.kind == EventKind::start_pump || event.kind == EventKind::trip_pump))
-      return event.kind == EventKind::start_pump;
-  return false;
+  const Event* first = nullptr;  // in time, as the central run has it; what a condition starts has no time
+  for (const auto& event : c.events) {
+    if (event.subject != pump.name || (event.kind != EventKind::start_pump && event.kind != EventKind::trip_pump))
+      continue;
+    if (first == nullptr || event.at.value < first->at.value || std::isnan(first->at.value)) first = &event;
+  }
+  return first != nullptr && first->kind == EventKind::start_pump;
 }
 
 int Plan::place_named(const std::string& name) const { return index_of_name(places, name); }

@@ -319,6 +319,12 @@ void need_for_surge(const Case& c, detail::ProblemList& problems) {
       need_number(pump.speed, "speed", "speed = \"1480 rpm\"");
       need_number(pump.inertia, "inertia", "inertia_mr2, inertia_gd2 or inertia_wr2");
       need_number(pump.efficiency, "efficiency", "efficiency = \"82 %\"");
+      if (starts_at_rest(c, pump) && !(pump.rated_flow.given() && pump.rated_head.given()))
+        problems.missing(pump.place,
+                         "pump/" + pump.name + "/rated",
+                         "a pump that stands still at the start has no operating point to take as its rated one",
+                         "rated = { flow = \"175 L/s\", head = \"60 m\" }",
+                         "give it");
       const bool by_table = pump.characteristic == Characteristic::table && !pump.curve.given();
       if (!pump.torque.given() && !by_table)
         need_number(pump.shut_off_torque, "shut_off_torque", "shut_off_torque = \"45 %\"");

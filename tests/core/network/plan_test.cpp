@@ -49,6 +49,24 @@ head = "end"
 not_under = "20 m"
 )";
 
+TEST(Plan, APumpStandsStillWhereItsFirstEventInTimeIsAStart) {
+  for (const bool start_written_first : {false, true}) {
+    for (const bool starts_first : {false, true}) {
+      Case c;
+      Pump pump;
+      pump.name = "pump";
+      for (const bool start : {start_written_first, !start_written_first}) {
+        Event e;
+        e.subject = "pump";
+        e.kind = start ? EventKind::start_pump : EventKind::trip_pump;
+        e.at.value = start == starts_first ? 1.0 : 5.0;
+        c.events.push_back(e);
+      }
+      EXPECT_EQ(starts_at_rest(c, pump), starts_first) << start_written_first;
+    }
+  }
+}
+
 TEST(Plan, WithoutAnswersWhatIsJudgedIsAnswered) {
   const Plan plan = plan_with(limits);
   ASSERT_EQ(plan.limits.size(), 3U);

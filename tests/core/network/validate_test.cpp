@@ -235,5 +235,20 @@ TEST(ValidateFor, TrippedPumpNeedsItsRotor) {
   EXPECT_NE(text.find("pump/pump A/inertia"), std::string::npos);
 }
 
+TEST(ValidateFor, APumpAtRestNeedsItsRatedPoint) {
+  CaseBuilder build = sound();
+  auto& event = build.trip_pump("pump A", 1.0);
+  const auto refused = [&] {
+    return text_of(network::validate_for(build.finish(), "surge")).find("pump/pump A/rated") != std::string::npos;
+  };
+  EXPECT_FALSE(refused());  // runs at the start: its first operating point is the rated one
+  event.kind = network::EventKind::start_pump;
+  event.instant = true;
+  EXPECT_TRUE(refused());
+  build.c.pumps[0].rated_flow = exact(0.1, Dimension::flow);
+  build.c.pumps[0].rated_head = exact(40.0, Dimension::length);
+  EXPECT_FALSE(refused());
+}
+
 }  // namespace
 }  // namespace headband
