@@ -23,26 +23,39 @@ double position_at(const std::vector<Segment>& chain, double time, double low, d
 }
 
 void add_stroke(std::vector<Segment>& chain, const Stroke& stroke, double grid_step, double low, double high) {
-  const double held = position_at(chain, stroke.at, low, high);
-  const double begin =
-      stroke.over > 0.0 || !stroke.travel_time.empty() || stroke.swing != 0.0 ? stroke.at : stroke.at + 0.5 * grid_step;
-  while (chain.size() > 1 && chain.back().start >= begin) chain.pop_back();
+  const bool instant = !(stroke.over > 0.0) && stroke.travel_time.empty() && stroke.swing == 0.0;
+  const double begin = instant ? stroke.at + 0.5 * grid_step : stroke.at;
+  double held = position_at(chain, stroke.at, low, high);
+  while (chain.size() > 1 && chain.back().start >= begin && (instant || !chain.back().instant)) chain.pop_back();
+  if (instant) {
+    chain.push_back({.start = begin, .position = stroke.to, .instant = true});
+    return;
+  }
+  // an instant that came first acts half a step after its row: this stroke, on its own clock, is seen from then on
+  double earliest = begin;
+  if (chain.back().instant && chain.back().start >= begin) {
+    held = chain.back().position;
+    earliest = chain.back().start + 1e-9 * grid_step;
+  }
+  const auto add = [&](double start, double position, double slope) {
+    const double from = std::max(start, earliest);
+    while (chain.back().start >= from) chain.pop_back();
+    chain.push_back({.start = from, .position = position + slope * (from - start), .slope = slope});
+  };
   if (stroke.swing != 0.0) {
-    chain.push_back({begin, held, 0.0, stroke.swing, stroke.period});
+    chain.push_back({.start = earliest, .position = held, .swing = stroke.swing, .period = stroke.period});
   } else if (!stroke.travel_time.empty()) {
     const auto& t = stroke.travel_time;
     const auto& x = stroke.travel_position;
-    if (t.front() > 0.0) chain.push_back({begin, held, (x.front() - held) / t.front()});
+    if (t.front() > 0.0) add(begin, held, (x.front() - held) / t.front());
     for (std::size_t i = 0; i < t.size(); ++i) {
       const bool last = i + 1 == t.size();
       const double slope = last || !(t[i + 1] > t[i]) ? 0.0 : (x[i + 1] - x[i]) / (t[i + 1] - t[i]);
-      chain.push_back({stroke.at + t[i], x[i], slope});
+      add(stroke.at + t[i], x[i], slope);
     }
-  } else if (stroke.over > 0.0) {
-    chain.push_back({begin, held, (stroke.to - held) / stroke.over});
-    chain.push_back({stroke.at + stroke.over, stroke.to, 0.0});
   } else {
-    chain.push_back({begin, stroke.to, 0.0});
+    add(begin, held, (stroke.to - held) / stroke.over);
+    add(stroke.at + stroke.over, stroke.to, 0.0);
   }
 }
 

@@ -19,6 +19,7 @@ struct Segment {
   double slope = 0.0;     ///< [unit/s]
   double swing = 0.0;     ///< half-width of the sine [unit]; 0 = none
   double period = 1.0;    ///< [s]
+  bool instant = false;   ///< where an instant stroke arrived; what follows takes over from it
 };
 
 /// One movement of one draw, as an event orders it.
@@ -40,7 +41,8 @@ inline constexpr double unbounded = std::numeric_limits<double>::infinity();
 
 /// Adds a stroke that takes over from the position held at its time. `chain` holds at least one segment.
 /// @param grid_step an instant stroke acts for t > at, so that the row stored at `at` is the state before: its segment
-///        begins half a step later and position_at(at + step/2) is the state after
+///        begins half a step later and position_at(at + step/2) is the state after. Any other stroke within that time
+///        takes over from where the instant one arrived
 /// @param low, high where a swing taken over is cut (shares: 0 and 1)
 void add_stroke(std::vector<Segment>& chain,
                 const Stroke& stroke,

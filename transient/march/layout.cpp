@@ -2,6 +2,7 @@
 #include "transient/march/layout.hpp"
 
 #include <algorithm>
+#include <cmath>
 #include <numeric>
 
 namespace headband::transient {
@@ -9,28 +10,54 @@ namespace {
 
 using network::DeviceKind;
 
+// The pumps of a set, those that share every trip and start in one branch. An event acts on the first of those it can
+// act on (a trip on running ones), in the order of time of the central run; the ones it acts on stand first.
 void add_pump(const network::Case& c, const network::Plan& plan, std::size_t device, Layout& layout) {
   const auto& d = plan.devices[device];
-  Branch b{.kind = BranchKind::pump,
-           .device = static_cast<int>(device),
-           .index = d.index,
-           .from = d.from.index,
-           .to = d.to.index};
-  int left = c.pumps[static_cast<std::size_t>(d.index)].count;
+  const network::Pump& pump = c.pumps[static_cast<std::size_t>(d.index)];
+  struct Group {
+    Branch branch;
+    bool runs;
+  };
+  Branch all;
+  all.kind = BranchKind::pump;
+  all.device = static_cast<int>(device);
+  all.index = d.index;
+  all.from = d.from.index;
+  all.to = d.to.index;
+  all.count = pump.count;
+  std::vector<Group> groups;
+  groups.push_back({all, !network::starts_at_rest(c, pump)});
+  const auto time_of = [&](int e) {
+    return c.events[static_cast<std::size_t>(plan.events[static_cast<std::size_t>(e)].index)].at.value;
+  };
+  std::vector<int> events;
   for (std::size_t e = 0; e < plan.events.size(); ++e) {
-    const auto& event = plan.events[e];
-    if (event.kind != network::EventKind::trip_pump || event.device != static_cast<int>(device) || left == 0) continue;
+    const auto kind = plan.events[e].kind;
+    const bool power = kind == network::EventKind::trip_pump || kind == network::EventKind::start_pump;
+    if (power && plan.events[e].device == static_cast<int>(device) && std::isfinite(time_of(static_cast<int>(e))))
+      events.push_back(static_cast<int>(e));
+  }
+  std::ranges::stable_sort(events, {}, time_of);
+  for (const int e : events) {
+    const auto& event = plan.events[static_cast<std::size_t>(e)];
+    const bool trips = event.kind == network::EventKind::trip_pump;
     const int asked = c.events[static_cast<std::size_t>(event.index)].tripping;
-    b.count = asked <= 0 ? left : std::min(asked, left);
-    b.trip = static_cast<int>(e);
-    left -= b.count;
-    layout.branches.push_back(b);
+    int left = asked <= 0 ? pump.count : asked;
+    for (std::size_t g = 0; g < groups.size() && left > 0; ++g) {
+      if (groups[g].runs != trips) continue;
+      const int others = groups[g].branch.count - left;
+      if (others > 0) {
+        groups.insert(groups.begin() + static_cast<std::ptrdiff_t>(g) + 1, groups[g]);
+        groups[g + 1].branch.count = others;
+        groups[g].branch.count = left;
+      }
+      left -= groups[g].branch.count;
+      groups[g].branch.power.push_back(e);
+      groups[g].runs = !trips;
+    }
   }
-  if (left > 0) {
-    b.count = left;
-    b.trip = -1;
-    layout.branches.push_back(b);
-  }
+  for (const Group& group : groups) layout.branches.push_back(group.branch);
 }
 
 void add_devices(const network::Case& c, const network::Plan& plan, Layout& layout) {

@@ -28,12 +28,12 @@ enum class BranchKind {
 /// Something that carries flow from a place to another, or to the air.
 struct Branch {
   BranchKind kind = BranchKind::valve;
-  int device = -1;  ///< into Plan::devices; rigid pipes: -1
-  int index = -1;   ///< into the case's vector of that kind; rigid pipes: into Plan::pipes
-  int from = 0;     ///< place
-  int to = -1;      ///< place; -1 = the air at the elevation of `from`
-  int count = 1;    ///< pumps in parallel
-  int trip = -1;    ///< event that takes the power from them; -1 = none
+  int device = -1;              ///< into Plan::devices; rigid pipes: -1
+  int index = -1;               ///< into the case's vector of that kind; rigid pipes: into Plan::pipes
+  int from = 0;                 ///< place
+  int to = -1;                  ///< place; -1 = the air at the elevation of `from`
+  int count = 1;                ///< pumps in parallel
+  std::vector<int> power = {};  ///< events that take the power from these pumps or give it to them
 };
 
 /// Places that must be solved together: those joined by branches, basins apart.

@@ -173,20 +173,25 @@ void March<W>::set_initial_branches(const steady::SteadyState<W>& steady) {
 }
 
 template <int W>
+void March<W>::open_branch(std::size_t j, const Lanes<W>& opening) {
+  const Branch& b = layout_.branches[j];
+  state_.branch_opening[j] = opening;
+  state_.branch_coefficient[j] =
+      numbers_.branch_full[j] *
+      (b.kind == BranchKind::valve
+           ? network::share_of_full<W>(case_->valves[at(b.index)].law, opening, numbers_.seat_power[j])
+           : opening);
+}
+
+template <int W>
 void March<W>::move_devices() {
   for (std::size_t j = 0; j < layout_.branches.size(); ++j) {
     const Branch& b = layout_.branches[j];
-    if (b.kind == BranchKind::valve) {
+    if (b.kind == BranchKind::valve || b.kind == BranchKind::orifice) {
       const Lanes<W> opening = numbers_.branch_movement[j].move_to(time_);
       const auto same = opening == state_.branch_opening[j];
       if (time_[0] > 0.0 && all(same)) continue;
-      state_.branch_opening[j] = opening;
-      state_.branch_coefficient[j] =
-          numbers_.branch_full[j] *
-          network::share_of_full<W>(case_->valves[at(b.index)].law, opening, numbers_.seat_power[j]);
-    } else if (b.kind == BranchKind::orifice) {
-      state_.branch_opening[j] = numbers_.branch_movement[j].move_to(time_);
-      state_.branch_coefficient[j] = numbers_.branch_full[j] * state_.branch_opening[j];
+      open_branch(j, opening);
     } else if (b.kind == BranchKind::check_valve) {
       state_.branch_coefficient[j] = numbers_.branch_full[j];
     }
@@ -408,18 +413,20 @@ void March<W>::load_pump(const Branch& b, std::size_t k, int lane, double time_s
   out.shut = checked && m.shut;
   out.speed = out.speed_before = m.speed;
   out.torque_before = m.torque;
-  if (time_step <= 0.0) return;
-  const double now = time_[lane];
-  const bool started = now >= numbers_.start_time[k];
-  const bool again = started && numbers_.start_time[k] > numbers_.trip_time[k];
-  if (now > numbers_.trip_time[k] && !again) {
+  const bool instant = time_step <= 0.0;
+  const double now = instant ? time_[lane] + 0.5 * numbers_.time_step[lane] : time_[lane];
+  const PowerChange* last = nullptr;
+  for (const PowerChange& change : numbers_.power[k])
+    if (change.on ? now >= change.at : now > change.at) last = &change;
+  if (last == nullptr || (instant && !(last->on && last->over == 0.0)))
+    return;  // a speed does not jump but for a start
+  if (!last->on) {
     out.free_speed = true;
     // the first part of a step may still be powered
-    const double down = std::min(time_step, now - numbers_.trip_time[k]);
+    const double down = std::min(time_step, now - last->at);
     out.run_down = 0.5 * pump.rated_torque * down / (pump.inertia * pump.rated_speed);
-  } else if (started) {
-    const double since = now - numbers_.start_time[k];
-    const double ramp = numbers_.start_over[k] > 0.0 ? std::min(1.0, since / numbers_.start_over[k]) : 1.0;
+  } else {
+    const double ramp = last->over > 0.0 ? std::min(1.0, (now - last->at) / last->over) : 1.0;
     out.speed = std::max(ramp, std::min(1.0, m.speed));  // one that still turns is taken up where the ramp meets it
   }
 }
@@ -487,7 +494,6 @@ void March<W>::remember(std::size_t j, int lane, const ClusterBranch& b, double 
   const double before = m.flow;
   m.flow = b.flow;
   m.shut = b.shut;
-  if (time_step <= 0.0) return;
   m.speed = b.speed;
   m.torque = b.torque;
   const CheckRule& rule = numbers_.check[j * W + at(lane)];
@@ -498,10 +504,11 @@ void March<W>::remember(std::size_t j, int lane, const ClusterBranch& b, double 
     return;
   }
   const double now = time_[lane];
-  if (m.reversed_at < 0.0)  // between two rows by a straight line
+  if (m.reversed_at < 0.0)  // between two rows by a straight line; at an instant at once
     m.reversed_at = now - (before > 0.0 ? b.flow / (b.flow - before) * time_step : 0.0);
   // shut from the next row on; of the two rows beside the end of the delay the nearer one
-  if (-b.flow >= rule.reverse_flow || now + 1.5 * time_step >= m.reversed_at + rule.delay) m.may_reverse = false;
+  const double soon = now + 1.5 * numbers_.time_step[lane];
+  if (-b.flow >= rule.reverse_flow || soon >= m.reversed_at + rule.delay) m.may_reverse = false;
 }
 
 template <int W>
@@ -536,7 +543,10 @@ void March<W>::jump(long long step) {
     state_.wave[s] = {state_.place_head[at(side.place)] + impedance * state_.side_flow[s], impedance};
     state_.per_impedance[s] = 1.0 / impedance;
   }
-  for (; next_jump_ < jumps_.size() && jumps_[next_jump_].step == step; ++next_jump_) jump_lane(jumps_[next_jump_]);
+  // what moves at this instant moves together, then the places beside it are solved
+  const std::size_t first = next_jump_;
+  for (; next_jump_ < jumps_.size() && jumps_[next_jump_].step == step; ++next_jump_) move_subject(jumps_[next_jump_]);
+  for (std::size_t k = first; k < next_jump_; ++k) solve_around(jumps_[k]);
   send_ends();
   for (std::size_t p = 0; p < plan_->places.size(); ++p) {
     state_.place_max[p] = max(state_.place_max[p], state_.place_head[p]);
@@ -544,39 +554,69 @@ void March<W>::jump(long long step) {
   }
 }
 
+// A run ends with its last row: what acts there acts on nothing.
 template <int W>
-void March<W>::jump_lane(const Jump& j) {
+bool March<W>::is_over(const Jump& j) const {
+  return j.step >= numbers_.last_step[at(j.lane)];
+}
+
+// Brings the subject of an instant event to its state at 0+; whatever else moves stays where it is at this row.
+template <int W>
+void March<W>::move_subject(const Jump& j) {
+  if (is_over(j)) return;
   const network::EventPlan& event = plan_->events[at(j.event)];
-  if (j.step >= numbers_.last_step[at(j.lane)] + 1) return;
-  const Lanes<W> now = time_;
-  time_.set(j.lane, now[j.lane] + 0.5 * numbers_.time_step[j.lane]);
-  move_devices();
-  const auto solve_around = [&](int place) {
-    for (const int k : layout_.branches_at[at(place)]) {
-      const Branch& b = layout_.branches[at(k)];
-      for (const int end : {b.from, b.to})
-        if (end >= 0 && layout_.cluster_of_place[at(end)] >= 0)
-          solve_lane(layout_.clusters[at(layout_.cluster_of_place[at(end)])], j.lane, 0.0);
-    }
-    if (layout_.cluster_of_place[at(place)] >= 0)
-      solve_lane(layout_.clusters[at(layout_.cluster_of_place[at(place)])], j.lane, 0.0);
+  Lanes<W> after = time_;
+  after.set(j.lane, after[j.lane] + 0.5 * numbers_.time_step[j.lane]);
+  const auto moved = [&](Movement<W>& movement) {
+    (void)movement.move_to(after);           // into the movement that begins here
+    return movement.move_to(time_)[j.lane];  // where that one stands now
   };
   if (event.kind == network::EventKind::move_basin) {
     for (const int place : layout_.basins) {
       if (plan_->places[at(place)].basin != event.basin) continue;
-      const double head = numbers_.basin_movement[at(place)].move_to(time_)[j.lane];
+      const double head = moved(numbers_.basin_movement[at(place)]);
       state_.place_head[at(place)].set(j.lane, head);
       for (const int s : layout_.sides_at[at(place)])
         state_.side_flow[at(s)].set(j.lane,
                                     (state_.wave[at(s)].head[j.lane] - head) * state_.per_impedance[at(s)][j.lane]);
-      solve_around(place);
     }
-  } else {
-    const auto& device = plan_->devices[at(event.device)];
-    solve_around(device.from.index);
-    if (device.to.exists()) solve_around(device.to.index);
+    return;
   }
-  time_ = now;
+  for (std::size_t k = 0; k < layout_.branches.size(); ++k) {
+    const Branch& b = layout_.branches[k];
+    if (b.device != event.device || (b.kind != BranchKind::valve && b.kind != BranchKind::orifice)) continue;
+    Lanes<W> opening = state_.branch_opening[k];
+    opening.set(j.lane, moved(numbers_.branch_movement[k]));
+    open_branch(k, opening);
+  }
+  for (std::size_t k = 0; k < layout_.draws.size(); ++k)
+    if (layout_.draws[k].device == event.device) state_.draw[k].set(j.lane, moved(numbers_.draw_movement[k]));
+}
+
+// Solves the places beside the subject of an instant event anew.
+template <int W>
+void March<W>::solve_around(const Jump& j) {
+  if (is_over(j)) return;
+  const auto solve = [&](int place) {
+    if (place >= 0 && layout_.cluster_of_place[at(place)] >= 0)
+      solve_lane(layout_.clusters[at(layout_.cluster_of_place[at(place)])], j.lane, 0.0);
+  };
+  const auto solve_beside = [&](int place) {
+    for (const int k : layout_.branches_at[at(place)]) {
+      solve(layout_.branches[at(k)].from);
+      solve(layout_.branches[at(k)].to);
+    }
+    solve(place);
+  };
+  const network::EventPlan& event = plan_->events[at(j.event)];
+  if (event.kind == network::EventKind::move_basin) {
+    for (const int place : layout_.basins)
+      if (plan_->places[at(place)].basin == event.basin) solve_beside(place);
+    return;
+  }
+  const auto& device = plan_->devices[at(event.device)];
+  solve_beside(device.from.index);
+  if (device.to.exists()) solve_beside(device.to.index);
 }
 
 template class March<1>;

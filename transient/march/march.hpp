@@ -92,6 +92,7 @@ class March {
   void find_simple();
   void step_simply();
   void solve_simply();
+  void open_branch(std::size_t j, const Lanes<W>& opening);
   void move_devices();
   void receive_waves();
   void march_pipes();
@@ -106,7 +107,9 @@ class March {
   void give_head(int place, const Lanes<W>& head);
   void send_ends();
   void jump(long long step);
-  void jump_lane(const Jump& j);
+  [[nodiscard]] bool is_over(const Jump& j) const;
+  void move_subject(const Jump& j);
+  void solve_around(const Jump& j);
   void rigid_losses();
 
   const network::Case* case_;

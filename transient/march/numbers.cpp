@@ -240,23 +240,27 @@ void add_events(const network::Case& c,
     std::sort(order.begin(), order.end(), [&](std::size_t a, std::size_t b) {
       return begins(a) < begins(b) || (!(begins(b) < begins(a)) && a < b);
     });
+    const auto add_jump = [&](double asked, std::size_t event) {  // the time it acts
+      const long long step = step_of(asked, dt);
+      const double grid_time = static_cast<double>(step) * dt;
+      jumps.push_back({step, lane, static_cast<int>(event), grid_time - asked});
+      return grid_time;
+    };
     for (const std::size_t k : order) {
       const network::EventPlan& event = plan.events[k];
       const auto& v = values.events[static_cast<std::size_t>(event.index)];
       const network::Event& e = c.events[static_cast<std::size_t>(event.index)];
       if (!std::isfinite(v.at[lane])) continue;  // started by a condition
       if (event.kind == network::EventKind::trip_pump || event.kind == network::EventKind::start_pump) {
-        for (std::size_t j = 0; j < layout.branches.size(); ++j) {
-          const Branch& b = layout.branches[j];
-          if (b.kind != BranchKind::pump || b.device != event.device) continue;
-          const std::size_t at = j * W + static_cast<std::size_t>(lane);
-          if (event.kind == network::EventKind::start_pump) {
-            n.start_time[at] = v.at[lane];
-            n.start_over[at] = e.instant ? 0.0 : v.over[lane];
-          } else if (b.trip == static_cast<int>(k)) {
-            n.trip_time[at] = v.at[lane];
-          }
+        PowerChange change{.at = v.at[lane], .on = event.kind == network::EventKind::start_pump, .over = 0.0};
+        if (change.on && e.instant) {
+          change.at = add_jump(change.at, k) + 0.5 * dt;
+        } else if (change.on) {
+          change.over = v.over[lane];
         }
+        for (std::size_t j = 0; j < layout.branches.size(); ++j)
+          if (std::ranges::count(layout.branches[j].power, static_cast<int>(k)) > 0)
+            n.power[j * W + static_cast<std::size_t>(lane)].push_back(change);
         continue;
       }
       Stroke s = stroke_of(c, event, v, lane);
@@ -264,12 +268,7 @@ void add_events(const network::Case& c,
         for (std::size_t p = 0; p < plan.places.size(); ++p)
           if (plan.places[p].basin == event.basin) s.to += values.places[p].surface_head[lane];
       const bool instant = e.instant && s.travel_time.empty() && s.swing == 0.0;
-      if (instant) {
-        const long long step = step_of(s.at, dt);
-        const double grid_time = static_cast<double>(step) * dt;
-        jumps.push_back({step, lane, static_cast<int>(k), grid_time - s.at});
-        s.at = grid_time;
-      }
+      if (instant) s.at = add_jump(s.at, k);
       if (event.kind == network::EventKind::move_draw_off) {
         const auto& d = plan.devices[static_cast<std::size_t>(event.device)];
         const double start = values.draw_offs[static_cast<std::size_t>(d.index)].flow[lane];
@@ -412,9 +411,8 @@ void fill_branches(const Layout& layout,
   n.draw_movement.resize(layout.draws.size());
   n.basin_movement.resize(values.places.size());
   n.pump.resize(count * W);
-  n.trip_time.assign(count * W, never);
-  n.start_time.assign(count * W, never);
-  n.start_over.assign(count * W, 0.0);
+  n.power.resize(count * W);
+  for (auto& changes : n.power) changes.clear();
   for (std::size_t j = 0; j < count; ++j) {
     const Branch& b = layout.branches[j];
     const auto at = static_cast<std::size_t>(b.index);

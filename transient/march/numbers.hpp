@@ -44,6 +44,13 @@ struct CheckRule {
   double delay = 0.0;         ///< shuts this long after the flow turned [s]; infinity = by flow
 };
 
+/// Power taken from pumps, or given to them, one draw.
+struct PowerChange {
+  double at = 0.0;    ///< [s]; of a start at once half a step behind its row
+  bool on = false;    ///< a start
+  double over = 0.0;  ///< run-up of a start [s]; 0 = at once
+};
+
 /// Numbers of W draws; storage is kept between draws.
 template <int W>
 struct Numbers {
@@ -56,15 +63,15 @@ struct Numbers {
   std::vector<Lanes<W>> vapour, fitting, longer;           ///< per row
   std::vector<Lanes<W>> place_vapour, place_volume_scale;  ///< [m], 1 / section volume [1/m3]
   std::vector<Lanes<W>> place_elevation;
-  std::vector<Lanes<W>> branch_full;                      ///< per branch: fully open coefficient [m^2.5/s]
-  std::vector<Lanes<W>> seat_power;                       ///< per branch
-  std::vector<Movement<W>> branch_movement;               ///< per branch: opening, or share of the starting flow
-  std::vector<Movement<W>> draw_movement;                 ///< per fixed draw-off: flow
-  std::vector<Movement<W>> basin_movement;                ///< per place: head; only basins are used
-  std::vector<FourQuadrants> quadrants;                   ///< the user's own tables, per pump of the case
-  std::vector<PumpModel> pump;                            ///< per branch and lane, [branch * W + lane]
-  std::vector<double> trip_time, start_time, start_over;  ///< per branch and lane; infinity = never
-  std::vector<CheckRule> check;                           ///< per branch and lane
+  std::vector<Lanes<W>> branch_full;            ///< per branch: fully open coefficient [m^2.5/s]
+  std::vector<Lanes<W>> seat_power;             ///< per branch
+  std::vector<Movement<W>> branch_movement;     ///< per branch: opening, or share of the starting flow
+  std::vector<Movement<W>> draw_movement;       ///< per fixed draw-off: flow
+  std::vector<Movement<W>> basin_movement;      ///< per place: head; only basins are used
+  std::vector<FourQuadrants> quadrants;         ///< the user's own tables, per pump of the case
+  std::vector<PumpModel> pump;                  ///< per branch and lane, [branch * W + lane]
+  std::vector<std::vector<PowerChange>> power;  ///< per branch and lane, in order of time
+  std::vector<CheckRule> check;                 ///< per branch and lane
 };
 
 /// Something that happens at once: the place is solved again at the row's own time.

@@ -49,24 +49,17 @@ double Record::series_value(const March<1>& march, const SeriesSource& s) const 
   if (s.what == What::flow) return device_flow(march, s.device);
   if (s.what == What::head) return device_head(march, s.device);
   const auto& layout = march.layout();
-  double speed = 0.0, torque = 0.0;
-  int tripped_first = -1;
   for (std::size_t j = 0; j < layout.branches.size(); ++j) {
     const Branch& b = layout.branches[j];
     if (b.device != s.device) continue;
     if (s.what == What::opening) return march.state().branch_opening[j].number;
     if (b.kind != BranchKind::pump) continue;
+    // of a set that trips in part the pumps that lose their power are shown: they stand first
     const PumpModel& pump = march.numbers().pump[j];
-    // of a set that trips in part the pumps that lose their power are shown
-    if (tripped_first < 0 || b.trip >= 0) {
-      if (tripped_first < 0) {
-        speed = march.state().memory[j].speed * pump.rated_speed;
-        torque = march.state().memory[j].torque * pump.rated_torque;
-      }
-      tripped_first = static_cast<int>(j);
-    }
+    const BranchMemory& memory = march.state().memory[j];
+    return s.what == What::speed ? memory.speed * pump.rated_speed : memory.torque * pump.rated_torque;
   }
-  return s.what == What::speed ? speed : torque;
+  return 0.0;
 }
 
 double Record::probe_flow(const March<1>& march, std::size_t probe) const {

@@ -120,15 +120,10 @@ void tell_jumps(const network::Plan& plan, const March<1>& march, SurgeRun& run)
 std::vector<double> bends(const March<1>& march) {
   std::vector<double> times;
   const auto& n = march.numbers();
-  const double dt = n.time_step.number;
   const auto add = [&](const Movement<1>& m) {
     const auto& chain = m.chain(0);
-    for (std::size_t k = 1; k < chain.size(); ++k) {
-      const bool instant = std::any_of(march.jumps().begin(), march.jumps().end(), [&](const Jump& j) {
-        return std::fabs((static_cast<double>(j.step) + 0.5) * dt - chain[k].start) < 0.25 * dt;
-      });
-      if (!instant || chain[k].slope != 0.0) times.push_back(chain[k].start);
-    }
+    for (std::size_t k = 1; k < chain.size(); ++k)
+      if (!chain[k].instant) times.push_back(chain[k].start);
   };
   for (const auto& m : n.branch_movement) add(m);
   for (const auto& m : n.draw_movement) add(m);
@@ -147,12 +142,16 @@ class Bounds {
         fine_(fine),
         finest_(finest),
         bends_(bends(asked.march)),
-        swing_(asked.record.extreme_everywhere(asked.march, true).value -
-               asked.record.extreme_everywhere(asked.march, false).value) {}
+        pressure_swing_(asked.record.extreme_everywhere(asked.march, true).value -
+                        asked.record.extreme_everywhere(asked.march, false).value) {}
 
+  /// Of the whole run [Pa].
+  [[nodiscard]] double pressure_swing() const { return pressure_swing_; }
+
+  /// @param swing highest minus lowest value of the run, in the unit of `extreme`
   /// @param vapour whether the extreme may be one of a run with cavities; false: one before they formed
   template <class F>
-  [[nodiscard]] GridBound of(const F& extreme, bool vapour = true) const {
+  [[nodiscard]] GridBound of(const F& extreme, double swing, bool vapour = true) const {
     const AnswerPeak a = extreme(*asked_);
     GridBound b;
     if (fine_ == nullptr || !fine_->finished()) return {std::numeric_limits<double>::quiet_NaN(), false};
@@ -166,7 +165,7 @@ class Bounds {
       b = bound_from_three({.asked = a.value,
                             .fine = fine.value,
                             .finest = finest.value,
-                            .swing = swing_,
+                            .swing = swing,
                             .cavity_closed = vapour && asked_->march.state().tally.closed[0],
                             .different_peaks = apart > one_peak * asked_->grid.time_step,
                             .between_rows = a.missed});
@@ -188,7 +187,7 @@ class Bounds {
   const GridRun* fine_;
   const GridRun* finest_;
   std::vector<double> bends_;
-  double swing_;  // of the whole run [Pa]
+  double pressure_swing_;
 };
 
 // A third grid costs sixteen times the asked one; without cavities it is marched where that stays a matter of a second.
@@ -209,6 +208,11 @@ answers::Extreme as_extreme(const network::Plan& plan, const AnswerPeak& p) {
   return e;
 }
 
+// Highest minus lowest value of the run, in the unit of an answer; a velocity swings from rest to its top, `value`.
+double swing_of(const network::AnswerPlan& what, double value, const Bounds& bounds) {
+  return what.kind == network::AnswerKind::velocity ? value : bounds.pressure_swing();
+}
+
 // How far the extreme of a limit may lie on the side of keeping it: the grid bound, or the distance to what stood
 // before any vapour formed and its own bound.
 double bound_to_kept(const network::LimitPlan& limit,
@@ -222,7 +226,7 @@ double bound_to_kept(const network::LimitPlan& limit,
     const auto before = r.record.extreme_before_vapour(k);
     return before ? *before : r.record.extreme_of(r.march, limit.subject);
   };
-  const GridBound b = bounds->of(early, false);
+  const GridBound b = bounds->of(early, swing_of(limit.subject, early(asked).value, *bounds), false);
   const double room = std::fabs(value - early(asked).value) + b.bound;
   return std::isnan(grid_bound) || room < grid_bound ? room : grid_bound;
 }
@@ -242,7 +246,7 @@ void fill_answers(const network::Plan& plan,
     }
     const auto extreme = [&](const GridRun& r) { return r.record.extreme_of(r.march, what); };
     value.push_back(extreme(asked).value);
-    bound.push_back(bounds ? bounds->of(extreme).bound : 0.0);
+    bound.push_back(bounds ? bounds->of(extreme, swing_of(what, value.back(), *bounds)).bound : 0.0);
     if (std::isnan(bound.back())) run.grid.converging = false;
   };
   for (const auto& a : plan.answers) fill(a, run.answer_value, run.answer_grid_bound);
@@ -261,7 +265,7 @@ void fill_extremes(const network::Plan& plan,
     const auto extreme = [&](const GridRun& r) { return r.record.extreme_everywhere(r.march, highest); };
     answers::Extreme e = as_extreme(plan, extreme(asked));
     if (bounds) {
-      const GridBound b = bounds->of(extreme);
+      const GridBound b = bounds->of(extreme, bounds->pressure_swing());
       e.grid_bound = b.bound;
       e.grid_converging = b.converging;
       if (!b.converging) run.grid.converging = false;

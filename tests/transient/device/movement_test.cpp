@@ -138,6 +138,28 @@ TEST(Movement, AStrokeTakesOverFromASwingWhereItIsCut) {
   EXPECT_EQ(x.back(), 0.0);
 }
 
+TEST(Movement, AStrokeBesideAnInstantTakesOverWhereThatOneEnded) {
+  for (const double at : {0.3, 0.32, 0.35}) {  // the instant's own time, and just before and at its place between rows
+    auto chain = held(1.0);
+    add_stroke(chain, straight(0.3, 0.5, 0.0), step);
+    add_stroke(chain, straight(at, 0.0, 1.0), step);
+    const auto x = marched(chain, 20);
+    EXPECT_EQ(x[3], 1.0) << at;  // the row at te is the state before
+    for (int k = 4; k <= 20; ++k)
+      EXPECT_NEAR(x[static_cast<std::size_t>(k)], std::max(0.0, 0.5 * (1.0 - (step * k - at))), 1e-13)
+          << at << " " << k;
+  }
+}
+
+TEST(Movement, AnInstantBesideAStrokeEndsIt) {
+  auto chain = held(1.0);
+  add_stroke(chain, straight(0.3, 0.0, 1.0), step);
+  add_stroke(chain, straight(0.3, 0.5, 0.0), step);
+  const auto x = marched(chain, 20);
+  EXPECT_EQ(x[3], 1.0);
+  for (std::size_t k = 4; k <= 20; ++k) EXPECT_EQ(x[k], 0.5) << k;
+}
+
 TEST(Movement, EightDrawsMoveAsEachAlone) {
   test::Dice dice(5);
   for (int k = 0; k < 200; ++k) {

@@ -71,6 +71,37 @@ TEST(Audit, SeesAThousandthOfAPipePutInByHand) {
   }
 }
 
+/// A frictionless line with a draw-off half way and a valve at its end.
+CaseBuilder line_with_draw_off(const std::string& draw_off_at) {
+  CaseBuilder b;
+  b.c.friction.law.options = {{network::FrictionLaw::none, 1.0}};
+  b.basin("tank", 60.0);
+  b.pipe("upper", "tank", "mid", 600.0, 0.4).wave_speed = exact(1200.0, Dimension::velocity);
+  b.pipe("lower", "mid", "end", 600.0, 0.4).wave_speed = exact(1200.0, Dimension::velocity);
+  b.draw_off("take", draw_off_at, 0.02);
+  b.valve_by_flow("valve", "end", "air", 0.05);
+  b.surge(6.0, 10).cavities = network::Cavities::off;
+  b.c.surge.grid_check = false;
+  return b;
+}
+
+TEST(Audit, AnInstantMovesNothingButItsSubject) {
+  CaseBuilder b = line_with_draw_off("mid");
+  b.move_draw_off("take", 0.0, 0.05, 3.0);
+  b.move_valve("valve", 1.0, 0.0, 0.0);
+  const Marched m(b);
+  ASSERT_TRUE(m.run.completed);
+  EXPECT_LT(m.run.audit.volume_residual_relative, 1e-12);
+}
+
+TEST(Audit, WhatABasinGivesAwayItselfDoesNotPassTheLine) {
+  CaseBuilder b = line_with_draw_off("tank");
+  b.move_valve("valve", 1.0, 0.0, 2.0);
+  const Marched m(b);
+  ASSERT_TRUE(m.run.completed);
+  EXPECT_LT(m.run.audit.volume_residual_relative, 1e-12);
+}
+
 /// A line whose low pressure travels through a sloping or level pipe, with a dead leg or without, after a quick
 /// closing.
 struct CavityLine {
@@ -124,6 +155,41 @@ TEST(Audit, CavitiesThatCloseAllAlongTheLineLoseAndMakeNoVolume) {
       EXPECT_GE(closed_cavities(m), 10) << k << " " << reaches;
       EXPECT_LT(m.run.audit.volume_residual_relative, 1e-12) << k << " " << reaches;
       EXPECT_EQ(m.run.audit.cavity_reset_volume, 0.0);
+    }
+}
+
+TEST(Audit, CavitiesOnBothSidesOfAValveLoseNoVolume) {
+  for (const double drop : {0.0, 1.0, 3.0})  // of the ground behind the valve
+    for (const int reaches : {10, 40}) {
+      CaseBuilder b;
+      b.c.friction.law.options = {{network::FrictionLaw::none, 1.0}};
+      b.basin("upper tank", 30.0);
+      b.basin("lower tank", 10.0);
+      const auto add = [&](const char* name, const char* from, const char* to, double low, double high) {
+        auto& p = b.pipe(name, from, to, 500.0, 0.4);
+        p.wave_speed = exact(1000.0, Dimension::velocity);
+        CaseBuilder::profile_point(p, 0.0, low);
+        CaseBuilder::profile_point(p, 500.0, high);
+      };
+      add("first", "upper tank", "a", 0.0, 8.0);
+      add("second", "b", "c", 8.0 - drop, 8.0 - drop);
+      add("third", "d", "lower tank", 8.0 - drop, 0.0);
+      b.valve_by_area("upstream", "a", "b", 0.02);
+      b.valve_by_area("middle", "c", "d", 0.05);
+      b.move_valve("upstream", 0.5, 0.0, 0.3);
+      b.move_valve("upstream", 6.0, 0.6, 0.5);
+      b.surge(20.0, reaches);
+      b.c.surge.grid_check = false;
+      const Marched m(b);
+      ASSERT_TRUE(m.run.completed) << m.run.transient.status << " " << drop << " " << reaches;
+      int at_the_valve = 0;  // cavities on either side of the open one
+      for (const auto& cavity : m.run.transient.cavities)
+        at_the_valve +=
+            (cavity.pipe == "second" && cavity.chainage == 500.0) || (cavity.pipe == "third" && cavity.chainage == 0.0)
+                ? 1
+                : 0;
+      EXPECT_GE(at_the_valve, 2);
+      EXPECT_LT(m.run.audit.volume_residual_relative, 1e-12) << drop << " " << reaches;
     }
 }
 

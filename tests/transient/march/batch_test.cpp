@@ -158,6 +158,54 @@ TEST(Batch, AMarcherUsedBeforeGivesTheBitsOfAFreshOne) {
   EXPECT_TRUE(laws_differ);
 }
 
+/// What a case answers by a run with everything kept and by a batch: the same bits, or the batch forgets something.
+void expect_batch_meets_run(CaseBuilder& b) {
+  const Marched m(b);
+  ASSERT_TRUE(m.run.completed);
+  transient::DrawAnswers<1> draw;
+  transient::BatchMarcher(m.c, m.plan).march<1>(m.values, m.steady, draw);
+  ASSERT_EQ(draw.status[0], 0);
+  for (std::size_t k = 0; k < m.plan.answers.size(); ++k)
+    EXPECT_EQ(bits(draw.answer[k].number), bits(m.run.answer_value[k]))
+        << m.plan.answers[k].name << ": " << draw.answer[k].number << " and " << m.run.answer_value[k];
+}
+
+TEST(Batch, ARigidPipeHasItsVelocity) {
+  CaseBuilder b;
+  b.basin("tank", 60.0);
+  b.pipe("main", "tank", "mid", 1000.0, 0.4).wave_speed = exact(1000.0, Dimension::velocity);
+  b.pipe("stub", "mid", "end", 4.0, 0.2).wave_speed = exact(1000.0, Dimension::velocity);
+  b.valve_by_flow("valve", "end", "air", 0.1);
+  b.move_valve("valve", 0.5, 0.0, 4.0);
+  b.surge(8.0, 12).cavities = network::Cavities::off;
+  b.answer(network::AnswerKind::velocity, "stub", {CaseBuilder::along_pipe("stub")});
+  b.answer(network::AnswerKind::velocity, "everywhere", {});
+  b.answer(network::AnswerKind::velocity, "at the end", {CaseBuilder::at_place("end")});
+  expect_batch_meets_run(b);
+}
+
+TEST(Batch, TheStateRightAfterAnInstantCountsAtPointsOfPipesToo) {
+  ValveLine line({.flow = 0.2});
+  line.b.move_valve("valve", 0.5, 0.0, 0.0);
+  line.b.move_valve("valve", 0.53, 1.0, 0.2);  // before the next row: the peak is over by then
+  line.b.surge(2.0, 10).cavities = network::Cavities::off;
+  for (const double x : {600.0, 590.0, 300.0})
+    line.b.answer(network::AnswerKind::highest_pressure, std::to_string(x), {CaseBuilder::on_pipe("line", x)});
+  line.b.answer(network::AnswerKind::highest_pressure, "end", {CaseBuilder::at_place("end")});
+  line.b.answer(network::AnswerKind::lowest_pressure, "low", {CaseBuilder::on_pipe("line", 600.0)});
+  expect_batch_meets_run(line.b);
+}
+
+TEST(Batch, AnInstantOnTheLastRowIsTheSameForARunAndABatch) {
+  ValveLine line({.flow = 0.2});
+  line.b.move_valve("valve", 2.0, 0.0, 0.0);
+  line.b.surge(2.0, 10).cavities = network::Cavities::off;
+  line.b.answer(network::AnswerKind::highest_pressure, "end", {CaseBuilder::at_place("end")});
+  line.b.answer(network::AnswerKind::highest_pressure, "everywhere", {});
+  line.b.answer(network::AnswerKind::velocity, "speed", {CaseBuilder::at_place("end")});
+  expect_batch_meets_run(line.b);
+}
+
 /// Head of probe `k` in a run at a time between its rows.
 double on_the_line(const answers::Transient& t, std::size_t k, double time) {
   const std::size_t probes = t.probe_name.size(), last = t.time.size() - 1;

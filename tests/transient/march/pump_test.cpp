@@ -195,6 +195,149 @@ TEST(Pump, OneOfTwoTripsBehindItsCheckValve) {
   EXPECT_NEAR(m.series(end, "pair flow"), one.series(0, "one flow"), 1e-3 * one.series(0, "one flow"));
 }
 
+TEST(Pump, StartedAtOnceIsAnInstantLikeAnyOther) {
+  for (const double at : {0.0, 0.5, 0.52}) {
+    CaseBuilder b;
+    b.basin("sump", 0.0);
+    b.basin("upper", 30.0);
+    rising_main(b, 600.0, 0.4, 0.02, 1200.0);
+    auto& pump = b.pump("pump", "sump", "delivery", {{0.0, 50.0}, {0.1, 40.0}, {0.2, 20.0}});
+    pump.shut_off_torque = exact(0.45, Dimension::share);
+    pump.speed = exact(100.0, Dimension::rotational_speed);
+    pump.efficiency = exact(0.8, Dimension::share);
+    pump.inertia = exact(5.0, Dimension::inertia);
+    pump.rated_flow = exact(0.1, Dimension::flow);
+    pump.rated_head = exact(40.0, Dimension::length);
+    auto& event = b.trip_pump("pump", at);
+    event.kind = network::EventKind::start_pump;
+    event.instant = true;
+    b.c.show.places = {CaseBuilder::at_place("delivery"), CaseBuilder::on_pipe("main", 60.0)};
+    b.surge(2.0, 10).cavities = network::Cavities::off;
+    b.c.surge.grid_check = false;
+    const Marched m(b);
+    ASSERT_TRUE(m.run.completed) << m.run.transient.status;
+    const std::size_t te = at > 0.51 ? 11 : m.row_at(at);  // dt = 0.05 s
+    // head and flow behind the front: the curve against the pipe's impedance
+    const double impedance = 1200.0 / (g * area(0.4));
+    const auto behind = [&](double q) { return m.head(0, "delivery") + impedance * q; };
+    for (std::size_t row = 0; row <= te; ++row) {
+      EXPECT_EQ(m.series(row, "pump speed"), 0.0) << at;  // the row at te is the state before
+      EXPECT_EQ(m.head(row, "delivery"), m.head(0, "delivery")) << at;
+    }
+    const double q = m.series(te + 1, "pump flow");
+    EXPECT_GT(q, 0.01);
+    EXPECT_NEAR(m.head(te + 1, "delivery"), behind(q), 1e-2);
+    EXPECT_NEAR(m.head(te + 1, "main @ 60.000000 m"), behind(q), 1e-2) << at;  // one reach away one row later
+    EXPECT_NEAR(m.place("delivery").time_of_max, m.time(te), 1.0) << at;
+    const auto told = std::count_if(m.run.warnings.begin(), m.run.warnings.end(), [](const std::string& w) {
+      return w.find("next row of the grid, 0.03 s later") != std::string::npos;
+    });
+    EXPECT_EQ(told, at > 0.51 ? 1 : 0);
+  }
+}
+
+struct Power {
+  double at;
+  bool on;
+  int pumps = 0;  ///< 0 = all
+};
+
+/// Speed of a set of pumps at 12, 25 and 40 s after its events, as a share of the rated speed; its flow in L/s.
+struct Powered {
+  std::vector<double> speed, flow;
+};
+Powered powered(const std::vector<Power>& events, int count) {
+  CaseBuilder b;
+  b.basin("sump", 0.0);
+  b.basin("upper", 30.0);
+  rising_main(b, 600.0, 0.4, 0.02, 1200.0);
+  auto& pump = b.pump("pump", "sump", "delivery", {{0.0, 50.0}, {0.1, 40.0}, {0.2, 20.0}});
+  pump.count = count;
+  pump.shut_off_torque = exact(0.45, Dimension::share);
+  pump.speed = exact(100.0, Dimension::rotational_speed);
+  pump.efficiency = exact(0.8, Dimension::share);
+  pump.inertia = exact(5.0, Dimension::inertia);
+  pump.rated_flow = exact(0.1, Dimension::flow);
+  pump.rated_head = exact(40.0, Dimension::length);
+  for (const Power& p : events) {
+    auto& event = b.trip_pump("pump", p.at);
+    event.tripping = p.pumps;
+    if (!p.on) continue;
+    event.kind = network::EventKind::start_pump;
+    event.over = exact(2.0, Dimension::time);
+  }
+  b.surge(40.0, 10).cavities = network::Cavities::off;
+  b.c.surge.grid_check = false;
+  const Marched m(b);
+  EXPECT_TRUE(m.run.completed) << m.run.transient.status;
+  Powered p;
+  for (const double t : {12.0, 25.0, 40.0}) {
+    p.speed.push_back(m.series(m.row_at(t), "pump speed") / 100.0);
+    p.flow.push_back(1e3 * m.series(m.row_at(t), "pump flow"));
+  }
+  return p;
+}
+
+TEST(Pump, FollowsEveryTripAndStart) {
+  {
+    const Powered p = powered({{1.0, false}, {6.0, true}, {16.0, false}}, 1);
+    EXPECT_EQ(p.speed[0], 1.0);
+    EXPECT_LT(p.speed[1], 0.6);
+    EXPECT_EQ(p.flow[2], 0.0);
+  }
+  {
+    const Powered p = powered({{0.0, true}, {14.0, false}, {30.0, true}}, 1);
+    EXPECT_EQ(p.speed[0], 1.0);
+    EXPECT_GT(p.flow[0], 50.0);
+    EXPECT_LT(p.speed[1], 0.6);
+    EXPECT_EQ(p.speed[2], 1.0);
+  }
+  {  // as written in the file, or in order of time: the same
+    const Powered p = powered({{20.0, true}, {1.0, false}}, 1), q = powered({{1.0, false}, {20.0, true}}, 1);
+    EXPECT_LT(p.speed[0], 0.6);
+    EXPECT_EQ(p.speed[1], 1.0);
+    EXPECT_EQ(p.speed, q.speed);
+    EXPECT_EQ(p.flow, q.flow);
+  }
+}
+
+TEST(Pump, OfASetAsManyTripAndStartAsAreNamed) {
+  const double both = powered({}, 2).flow[2], one = powered({}, 1).flow[2];
+  // one trips, then the other one: an event takes running pumps
+  const Powered p = powered({{1.0, false, 1}, {14.0, false, 1}}, 2);
+  EXPECT_NEAR(p.flow[0], one, 0.05 * one);
+  EXPECT_EQ(p.flow[2], 0.0);
+  // both trip though one was written to trip later; the later event finds none that runs
+  const Powered q = powered({{14.0, false, 1}, {1.0, false}}, 2);
+  EXPECT_EQ(q.flow[1], 0.0);
+  // both at rest, one starts, later the other one
+  const Powered r = powered({{0.0, true, 1}, {14.0, true, 1}}, 2);
+  EXPECT_NEAR(r.flow[0], one, 0.05 * one);
+  EXPECT_NEAR(r.flow[2], both, 0.02 * both);
+}
+
+TEST(CheckValve, AnInstantReversalStartsItsDelayAtOnce) {
+  CaseBuilder b;
+  b.basin("lower", 31.0);
+  b.basin("upper", 30.0);
+  rising_main(b, 600.0, 0.3, 0.02, 1200.0);
+  auto& check = b.check_valve("check", "lower", "delivery");
+  check.k = exact(1e-6);
+  check.bore = exact(0.3, Dimension::length);
+  check.rule.kind = network::CheckValveKind::delay;
+  check.rule.delay = exact(0.2, Dimension::time);
+  b.move_basin("lower", 0.5, -60.0, 0.0);  // 91 m at once: 0.74 m/s less at once, the flow turns
+  b.surge(2.0, 10).cavities = network::Cavities::off;
+  b.c.surge.grid_check = false;
+  const Marched m(b);
+  ASSERT_TRUE(m.run.completed);
+  ASSERT_LT(m.flow(m.row_at(0.55), "delivery"), 0.0);
+  double shut = -1.0;
+  for (const auto& e : m.run.events)
+    if (e.kind == "check_shut" && shut < 0.0) shut = e.time;
+  EXPECT_NEAR(shut, 0.7, 1e-9);  // a row of the grid
+}
+
 TEST(CheckValve, ShutsAtTheReverseVelocityOneRowLater) {  // T09h with a = 5000 m/s
   for (const double reverse : {0.0, 0.15}) {
     CaseBuilder b;
