@@ -5,9 +5,12 @@
 
 #include "tests/core/base/csv.hpp"
 #include "tests/transient/march/run_case.hpp"
+#include "transient/march/grid_bound.hpp"
 
 #include <gtest/gtest.h>
 
+#include <algorithm>
+#include <cmath>
 #include <numbers>
 
 namespace headband::test {
@@ -142,6 +145,43 @@ TEST(Surge, HollowmereGravityMain) {
     const Marched n(other.b);
     EXPECT_NEAR(n.place("end").max_pressure / 1e5, bar, bar == 8.4 ? 0.05 : 0.02) << over;
   }
+}
+
+/// Top velocity in a dead leg of a line whose column parts, on a grid `finer` times the one of 10 reaches, and its
+/// bound.
+struct TopVelocity {
+  double value, bound;
+};
+TopVelocity top_velocity(double closing, int finer) {
+  ValveLine line({.length = 600.0, .wave_speed = 1200.0, .bore = 0.4, .level = 15.0, .flow = 0.2});
+  line.b.move_valve("valve", 0.0, 0.0, closing);
+  auto& leg = line.b.pipe("leg", "end", "cap", 300.0, 0.2);
+  leg.wave_speed = exact(1200.0, Dimension::velocity);
+  CaseBuilder::profile_point(leg, 0.0, 0.0);
+  CaseBuilder::profile_point(leg, 300.0, 1.0);
+  line.b.answer(network::AnswerKind::velocity, "leg", {CaseBuilder::along_pipe("leg")});
+  auto& surge = line.b.surge(12.0, 10);
+  surge.time_step = exact(0.05 / finer, Dimension::time);
+  surge.grid_check = finer == 1;
+  const Marched m(line.b);
+  EXPECT_EQ(m.run.grid.reaches[0], 10 * finer);
+  return {m.run.answer_value[0], m.run.answer_grid_bound[0]};
+}
+
+TEST(Surge, AVelocityThatDoesNotConvergeHasNoBound) {
+  int without = 0, with = 0;
+  for (double closing = 0.2; closing < 2.1; closing += 0.1) {
+    const TopVelocity asked = top_velocity(closing, 1);
+    const double fine = top_velocity(closing, 2).value, finest = top_velocity(closing, 4).value;
+    const double first = fine - asked.value, last = finest - fine;
+    const double larger = std::max(std::fabs(first), std::fabs(last)), swing = asked.value;  // from rest
+    const bool converges = first * last <= 0.0 || first / last >= std::sqrt(2.0);
+    if (larger < 2.0 * transient::small_share * swing) continue;
+    EXPECT_EQ(std::isnan(asked.bound), !converges) << closing << ": " << first << " " << last;
+    ++(converges ? with : without);
+  }
+  EXPECT_GE(without, 1);
+  EXPECT_GE(with, 1);
 }
 
 TEST(Surge, EstablishmentOfFlow) {  // T09c: valve with one velocity head opened at once
