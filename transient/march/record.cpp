@@ -223,7 +223,7 @@ bool Record::step(March<1>& march, long long row) {
     finished_ = false;
     return false;
   }
-  out_.last_good_time = march.time().number;
+  if (march.status(0) == MarchStatus::completed) out_.last_good_time = march.time().number;
   watch_first_vapour(march);
   watch_stations(march, row, false);
   audit_.step(march);

@@ -3,6 +3,7 @@
 
 #include "tests/transient/march/run_case.hpp"
 #include "transient/march/grid_request.hpp"
+#include "transient/march/record.hpp"
 
 #include <gtest/gtest.h>
 
@@ -69,6 +70,39 @@ TEST(Audit, SeesAThousandthOfAPipePutInByHand) {
       EXPECT_GT(meddled.volume_residual_relative, 100.0 * clean.volume_residual_relative) << factor;
     }
   }
+}
+
+/// A record of a march in which a place is not solved from one row on.
+struct Spoiled {
+  transient::Record record;
+  long long from;
+
+  void begin(transient::March<1>& march) { record.begin(march); }
+  bool step(transient::March<1>& march, long long row) {
+    if (row == from) march.set_status(0, transient::MarchStatus::boundary_not_converged);
+    return record.step(march, row);
+  }
+  void before_jump(transient::March<1>& march, long long row) { record.before_jump(march, row); }
+  void after_jump(transient::March<1>& march, long long row) { record.after_jump(march, row); }
+};
+
+TEST(Record, TheLastGoodTimeIsBeforeAPlaceThatWasNotSolved) {
+  ValveLine line({.length = 1000.0, .wave_speed = 1000.0});
+  line.b.move_valve("valve", 0.0, 0.3, 4.0);
+  line.b.surge(10.0, 20).cavities = network::Cavities::off;
+  const Marched m(line.b);
+  transient::Grid grid;
+  transient::choose_grid(transient::grid_request(m.c, m.plan, m.values, m.steady, 0), grid);
+  transient::March<1> march(m.c, m.plan, transient::make_layout(m.c, m.plan, std::vector<bool>(1, false)));
+  march.prepare(m.values, m.steady, {&grid}, false);
+  Spoiled spoiled{transient::Record(m.values, true), 57};
+  march.run(spoiled);
+  transient::SurgeRun run;
+  spoiled.record.finish(march, run);
+  EXPECT_FALSE(run.completed);
+  EXPECT_EQ(run.transient.status, "boundary not converged");
+  EXPECT_EQ(run.transient.last_good_time, m.time(56));
+  EXPECT_EQ(run.transient.time.size(), m.rows());  // the rows after it are kept, to be looked at
 }
 
 /// A frictionless line with a draw-off half way and a valve at its end.
