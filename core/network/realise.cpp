@@ -39,6 +39,13 @@ void realise_rating(const Pipe& pipe, const Draw<W>& draw, const Values<W>& valu
   out.rating = pipe.rating.given() ? gauge_pressure(pipe.rating, draw, values) : Lanes<W>(not_a_number);
 }
 
+/// Level of a basin at the start: as given, else the first of its table.
+template <int W>
+Lanes<W> first_level(const Basin& basin, const Draw<W>& draw) {
+  return basin.level.given() || !basin.level_table.given() ? draw(basin.level)
+                                                           : Lanes<W>(basin.level_table.rows.front().second.value);
+}
+
 template <int W>
 void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values<W>& values) {
   for (std::size_t i = 0; i < plan.places.size(); ++i) {
@@ -59,7 +66,7 @@ void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values
         out.elevation = draw(c.pipes[source].profile.back().second);
         break;
       case ElevationSource::level:
-        out.elevation = draw(c.basins[source].level);
+        out.elevation = first_level(c.basins[source], draw);
         break;
       case ElevationSource::nowhere:
         out.elevation = 0.0;
@@ -67,9 +74,7 @@ void realise_places(const Case& c, const Plan& plan, const Draw<W>& draw, Values
     }
     if (place.basin >= 0) {
       const Basin& basin = c.basins[static_cast<std::size_t>(place.basin)];
-      const Lanes<W> level = basin.level.given() || !basin.level_table.given()
-                                 ? draw(basin.level)
-                                 : Lanes<W>(basin.level_table.rows.front().second.value);
+      const Lanes<W> level = first_level(basin, draw);
       out.surface_head =
           gauge_pressure(basin.surface_pressure, draw, values) / (values.liquid.density * values.gravity);
       out.held_head = level + out.surface_head;

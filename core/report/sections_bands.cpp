@@ -45,7 +45,9 @@ std::string budget(const answers::BandAnswer& answer) {
 }
 
 std::string sensitivity(const answers::BandAnswer& answer) {
-  Table table{fmt::format("Which unknowns move {}: shares of its variance", answer.name),
+  Table table{fmt::format("Which unknowns move {}: shares of its variance{}",
+                          answer.name,
+                          show::overlapping_shares(answer) ? show::overlap_remark : ""),
               {{"Unknown"}, {"alone", true}, {"with others", true}, {"alone (dark), with others (light)"}},
               {}};
   if (show::stands_still(answer))

@@ -116,6 +116,14 @@ bool stands_still(const answers::BandAnswer& answer) {
   return answer.standard_deviation <= rounding * std::abs(answer.mean);
 }
 
+bool overlapping_shares(const answers::BandAnswer& answer) {
+  constexpr double sampled = 0.05;  // what the noise of the shares may add
+  double sum = 0.0;
+  for (const auto& s : answer.sensitivity)
+    if (!std::isnan(s.first)) sum += s.first;
+  return sum > 1.0 + sampled;
+}
+
 std::vector<answers::SensitivityAnswer> ranked_unknowns(const answers::BandAnswer& answer) {
   const auto weight = [](double share) { return std::isnan(share) ? -1.0 : share; };
   std::vector<answers::SensitivityAnswer> ranked = answer.sensitivity;

@@ -42,6 +42,11 @@ inline constexpr std::size_t reported_cavities_at_most = 200;
 /// variance mean nothing.
 [[nodiscard]] bool stands_still(const answers::BandAnswer& answer);
 
+/// Whether the shares of the unknowns alone sum to clearly over one: unknowns that go together carry each other's part.
+[[nodiscard]] bool overlapping_shares(const answers::BandAnswer& answer);
+inline constexpr const char* overlap_remark =
+    "; unknowns that go together carry each other's part, so these do not sum to 100 %";
+
 /// A share of the variance under this is told as "under 0.01 %" [-].
 inline constexpr double least_share = 1e-4;
 

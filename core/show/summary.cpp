@@ -435,7 +435,8 @@ void bands(Frame& f) {
     for (const auto& s : ranked_unknowns(a))
       ranks += fmt::format(
           "{}{} ({})", ranks.empty() ? "" : ", ", s.input, s.first < least_share ? "under 0.01 %" : percent(s.first));
-    f.item(fmt::format("{}: share of the variance by {}", a.name, ranks));
+    f.item(
+        fmt::format("{}: share of the variance by {}{}", a.name, ranks, overlapping_shares(a) ? overlap_remark : ""));
   }
 }
 

@@ -24,8 +24,10 @@ def check(name, good, shown=""):
 class Run:
     """A verb on a case: exit code, summary (or what was refused) and JSON."""
 
-    def __init__(self, text, verb="surge", *options):
+    def __init__(self, text, verb="surge", *options, files=None):
         with tempfile.TemporaryDirectory() as folder:
+            for name, content in (files or {}).items():
+                (pathlib.Path(folder) / name).write_text(content)
             (pathlib.Path(folder) / "case.toml").write_text(text)
 
             def call(*more):
@@ -136,6 +138,10 @@ def words_and_units():
     wrong = Run(MAIN.replace("200 mm", "200 m").replace("1000 m/s", "1000 mm/s") + surge(2), "check")
     check("sizes no pipeline has are asked about", "bore 200 m, read as 200 m: is the unit right?" in wrong.words
           and "wave speed 1000 mm/s, read as 1 m/s: is the unit right?" in wrong.words)
+    tide = Run(MAIN.replace('to = "air"', 'to = "sea"') + '[[basin]]\nname = "sea"\nlevel_table = "tide.csv"\n' + surge(4),
+               files={"tide.csv": "time [s],level [m]\n0,5\n30,6\n"})
+    check("a basin by a table stands at its first level", tide.json["places"]["sea"]["elevation_m"] == 5.0
+          and tide.json["places"]["sea"]["pressure_Pa"] == 0.0)
     deep = Run(MAIN.replace('["0 m", "10.0 m"], ["500 m", "0.0 m"]', '["0 m", "-10 m"], ["500 m", "-60 m"]'), "check")
     check("depths typed as elevations are asked about", "are these depths under the ground?" in deep.words)
 
@@ -167,8 +173,20 @@ def guesses():
     check("the share allowed to a rating is a guess", "limit main rating: at_most 5 % (default)" in run.json["guesses"])
 
 
+def shares():
+    """Two pipes in a row of one lot: each roughness carries the other's part, and the reader is told."""
+    text = (WATER + basin("tank", "50 m") + pipe("a", "tank", "x", 500, ELASTIC.replace("0.1 mm", "0.1 mm x/ 3"))
+            + pipe("b", "x", "y", 500, ELASTIC.replace("0.1 mm", "0.1 mm x/ 3")) + '[[draw_off]]\nname = "use"\nat = "y"\nflow = "30 L/s"\n'
+            + QUIET + '[band]\ndraws = 512\nanswers = [{ pressure_drop = ["tank", "y"], name = "drop" }]\n')
+    apart = Run(text, "band")
+    check("shares of unknowns of their own sum to one", "each other's part" not in apart.words)
+    together = Run(text + '[together]\n"a roughness, b roughness" = 0.9\n', "band")
+    total = sum(s["first"] for s in together.json["answers"]["drop"]["sensitivity"].values())
+    check("shares of unknowns that go together do not", total > 1.3 and "carry each other's part" in together.words, f"{total:.2f}")
+
+
 def main():
-    for each in (broken_before_vapour, events, words_and_units, inertia, viscous_peak, guesses):
+    for each in (broken_before_vapour, events, words_and_units, inertia, viscous_peak, guesses, shares):
         print(each.__name__)
         each()
     print(f"{len(failures)} failed" if failures else "all good")
