@@ -274,6 +274,9 @@ void expect_same_bits(const Friction& f, std::size_t rows, bool limited, bool pl
 TEST(interior, one_draw_and_eight_give_the_same_bits_in_every_length) {
   for (const Friction& f : {frictions[0], frictions[1], frictions[7]})
     for (std::size_t rows = 2; rows <= 52; ++rows) expect_same_bits(f, rows, rows % 2 == 0, false, true, true);
+  // a batch's halves take turns every 64 rows
+  for (const std::size_t rows : {64U, 65U, 66U, 67U, 128U, 129U, 130U, 131U, 200U})
+    expect_same_bits(frictions[0], rows, false, false, true, true);
 }
 
 TEST(interior, one_draw_and_eight_give_the_same_bits_in_every_form) {
