@@ -7,6 +7,7 @@ are printed only where the stored runs of the longest band have the peaks of a p
     tests/bench/whole_program.py build/release/montecarlo/program/headband [n] [rounds] [fixed|reynolds] [off|vapour]
 """
 import math
+import os
 import pathlib
 import resource
 import subprocess
@@ -95,7 +96,7 @@ def worst_error(file):
 
 
 def main():
-    program, options = sys.argv[1], sys.argv[2:] + [None] * 4
+    program, options = os.path.abspath(sys.argv[1]), sys.argv[2:] + [None] * 4
     n, rounds = int(options[0] or 8192), int(options[1] or 5)
     mode, cavities = options[2] or "fixed", options[3] or "off"
     friction = 'friction_factor = "0.018"' if mode == "fixed" else 'roughness = "0.4 mm"'
